@@ -1,0 +1,74 @@
+"""Everything `guys` raises on purpose.
+
+    GuysError
+    ├── ScenarioError          what the user wrote is wrong; holds every `Fault` found            exit status 2
+    ├── UnavailableError       asked for something this version does not do                       exit status 2
+    ├── OutputError            a result could not be written                                      exit status 1
+    └── SolverFault            the program failed, not the structure: a fault to report           exit status 1
+
+A structure that falls is not an exception: it is a result whose state is "none" or "unstable".
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from typing import ClassVar
+
+
+class GuysError(Exception):
+    """Root of the tree; `exit_status` is what a command that ends with it returns."""
+
+    exit_status: ClassVar[int] = 1
+
+
+@dataclass(frozen=True)
+class Fault:
+    """One thing wrong in a scenario file.
+
+    path : the file, None for text read from elsewhere; line, column : counted from 1, None where nothing in the text can be pointed at
+    key : key path such as ``guy_level[0].at``, empty for the file as a whole; message : what was found and what would do
+    """
+
+    path: str | None
+    line: int | None
+    column: int | None
+    key: str
+    message: str
+
+    def __str__(self) -> str:
+        place = ":".join(str(part) for part in (self.path or "scenario", self.line, self.column) if part is not None)
+        return ": ".join(part for part in (place, self.key, self.message) if part)
+
+
+class ScenarioError(GuysError):
+    """The scenario is wrong.  `faults` holds all that was found, in the order of the file."""
+
+    exit_status = 2
+
+    def __init__(self, faults: Iterable[Fault]) -> None:
+        self.faults = tuple(faults)
+        super().__init__("\n".join(str(fault) for fault in self.faults))
+
+
+class UnavailableError(GuysError):
+    """Something the program knows of and does not do yet; `what` names it."""
+
+    exit_status = 2
+
+    def __init__(self, what: str) -> None:
+        self.what = what
+        super().__init__(f"{what} is not available in this version")
+
+
+class OutputError(GuysError):
+    """A file could not be written; `path` names it.  Nothing half-written is left behind."""
+
+    def __init__(self, path: str, reason: str) -> None:
+        self.path = path
+        self.reason = reason
+        super().__init__(f"{path}: cannot be written: {reason}")
+
+
+class SolverFault(GuysError):
+    """The solver did not do its work: out of steps, not finite, or out of balance.  Never used for a structure that falls."""

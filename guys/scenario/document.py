@@ -1,0 +1,223 @@
+"""The scenario file as it is written: one model per table, before references are looked up and shorthands spelled out.
+
+What a table means once read is in `model`; where file and meaning agree (spars, sections, fittings, ice, ...) the very same class serves both.
+"""
+
+from __future__ import annotations
+
+import math
+from typing import Annotated, Any, Literal
+
+from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag
+
+from guys import constants
+from guys.scenario import quantity as q
+from guys.scenario.model import Analysis, End, Ice, Material, Model, Setting, Spar, SparPoint
+
+
+def _sweep(value: Any) -> Any:
+    """``every 30 deg`` → the step's text; a list passes as it is."""
+    if isinstance(value, str):
+        head, _, step = value.strip().partition(" ")
+        if head != "every" or not step.strip():
+            raise q.fault(f'"{value}" is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
+        return step.strip()
+    raise q.fault(f'{q.shown(value)} is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
+
+
+def _whole_step(step: float) -> float:
+    turns = math.tau / step
+    if abs(turns - round(turns)) > 1e-6:
+        raise q.fault(f"a full circle is not a whole number of steps of {math.degrees(step):.6g} deg")
+    if not 1 <= round(turns) <= MOST_DIRECTIONS:
+        raise q.fault(f"{round(turns)} directions are too many; at most {MOST_DIRECTIONS}")
+    return step
+
+
+MOST_DIRECTIONS = 3600
+Step = Annotated[q.PositiveAngle, BeforeValidator(_sweep), AfterValidator(_whole_step)]
+Directions = Annotated[
+    Annotated[Annotated[list[q.Angle], Field(min_length=1, max_length=MOST_DIRECTIONS)], Tag("<list>")] | Annotated[Step, Tag("<step>")],
+    Discriminator(lambda value: "<list>" if isinstance(value, (list, tuple)) else "<step>"),
+]
+
+
+class PowerProfile(Model):
+    """Wind speed rising with height as a power."""
+
+    power: q.Factor
+    """Exponent p of V = speed (z / height) ** p."""
+
+
+ProfileEntry = Annotated[
+    Annotated[PowerProfile, Tag("<power>")] | Annotated[Literal["uniform"], Tag("<uniform>")],
+    Discriminator(lambda value: "<uniform>" if isinstance(value, str) else "<power>"),
+]
+
+
+class AnchorEntry(Model):
+    """A point on the ground that cables run to: bearing and radius from the first spar's foot, or east and north."""
+
+    name: q.Name
+    """Name, unique among anchors."""
+    bearing: q.Angle | None = None
+    """Bearing from the first spar's foot."""
+    radius: q.PositiveLength | None = None
+    """Level distance from the first spar's foot."""
+    east: q.Length | None = None
+    """Distance east of the origin."""
+    north: q.Length | None = None
+    """Distance north of the origin."""
+    level: q.Length | None = None
+    """Height above the origin's level; left out: that of the first spar's foot."""
+    give: q.Spring | None = None
+    """The anchor moves by the sum of its pulls divided by this."""
+
+
+class CableEntry(Model):
+    """Any single cable: guy, stay, forestay, backstay, topping stay.  One of tension, length, tight."""
+
+    name: q.Name
+    """Name, unique among cables."""
+    from_: Annotated[SparPoint, Field(alias="from")]
+    """The point of a spar it leaves."""
+    to: End
+    """The anchor or point of a spar it runs to."""
+    rope: q.Name
+    """A [rope.NAME] of the file."""
+    tension: q.PositiveForce | None = None
+    """Initial tension at the `to` end, still air, at setting.temperature."""
+    length: q.PositiveLength | None = None
+    """Unstressed length at setting.temperature."""
+    tight: q.Flag | None = None
+    """true: just free of slack in the dead-load position."""
+
+
+class GuyLevel(Model):
+    """One guy to each named anchor from one height.  One of tension, length, tight."""
+
+    name: q.Name | None = None
+    """Cables are named after it: "low N"; left out: after the height, "9 m N"."""
+    spar: q.Name
+    """The spar they leave."""
+    at: q.LengthFromZero
+    """Distance along the spar from its foot."""
+    arm: q.LengthFromZero = 0.0
+    """Lug: level distance from the axis toward the anchor."""
+    rope: q.Name
+    """A [rope.NAME] of the file."""
+    to: Annotated[list[q.Name], Field(min_length=1)]
+    """The anchors."""
+    tension: q.PositiveForce | None = None
+    """Initial tension at the anchor end, still air, at setting.temperature."""
+    length: q.PositiveLength | None = None
+    """Unstressed length at setting.temperature."""
+    tight: q.Flag | None = None
+    """true: just free of slack in the dead-load position."""
+
+
+class RopeEntry(Model):
+    """A rope.  Its stiffness EA is given, or follows from modulus and metal_area."""
+
+    diameter: q.PositiveLength
+    """Outside diameter."""
+    mass: q.LinearMass
+    """Mass per length."""
+    stiffness: q.PositiveForce | None = None
+    """Axial stiffness EA."""
+    modulus: q.Stress | None = None
+    """Modulus on the metal area."""
+    metal_area: q.PositiveArea | None = None
+    """Metal area."""
+    strength: q.PositiveForce | None = None
+    """Least breaking load; left out: not judged."""
+    expansion: q.Expansion | None = None
+    """Thermal expansion."""
+    drag: q.Factor | None = None
+    """Force coefficient on the diameter."""
+
+
+class WindEntry(Model):
+    """The reference wind."""
+
+    speed: q.Speed
+    """Reference speed."""
+    averaging: q.Duration
+    """Time the speed is averaged over."""
+    height: q.PositiveLength
+    """Height of the reference speed."""
+    profile: ProfileEntry = "uniform"
+    """uniform, or { power = 0.14 }."""
+    air_density: q.Density | None = None
+    """Density of the air; left out: 1.225 kg/m3, or that of `altitude` and `temperature`."""
+    altitude: q.Length | None = None
+    """Altitude of the site, in place of air_density."""
+    temperature: q.Temperature | None = None
+    """Temperature of the air, with `altitude`; left out: the standard one of that altitude."""
+    directions: Directions = math.pi / 6
+    """Bearings the wind comes from: "every 30 deg" (the default), or a list."""
+
+
+class CaseEntry(Model):
+    """A load case."""
+
+    name: q.Name
+    """Name, unique among cases; "setting" is taken."""
+    dead: q.Factor = 1.0
+    """Factor on weights and fixed loads."""
+    wind: q.Factor = 1.0
+    """Factor on wind pressure."""
+    ice: q.Factor = 0.0
+    """Factor on the weight of ice."""
+    temperature: q.Temperature | None = None
+    """Temperature; left out: setting.temperature."""
+    without: list[q.Name] = []
+    """Cables taken away."""
+
+
+class AllowablesEntry(Model):
+    """Least factors asked for."""
+
+    cable: q.Ratio = 2.0
+    """Least strength / tension."""
+    anchor: q.Ratio = 1.5
+    """Least holding / pull."""
+    sliding: q.Ratio = 1.5
+    """Least factor against sliding of a base."""
+    lean: q.PositiveAngle = float(constants.DEGREE)
+    """Greatest head lean in service."""
+
+
+class ScenarioFile(Model):
+    """A structure of guyed masts, booms and pylons, its cables and anchors, the weather and what is asked."""
+
+    format: Annotated[int, Field(strict=True, ge=1, le=1)] = 1
+    """Version of this format."""
+    title: q.Line
+    """Title."""
+    note: q.Text | None = None
+    """Free text, printed on the sheet."""
+    spar: Annotated[list[Spar], Field(min_length=1)]
+    """Masts, booms and pylons."""
+    anchor: list[AnchorEntry] = []
+    """Points on the ground."""
+    guy_level: list[GuyLevel] = []
+    """Guys to several anchors from one height."""
+    cable: list[CableEntry] = []
+    """Single cables."""
+    rope: dict[q.Name, RopeEntry] = {}
+    """Ropes by name."""
+    material: dict[q.Name, Material] = {}
+    """Materials by name."""
+    setting: Setting = Setting()
+    """The state in which the cables are tensioned."""
+    wind: WindEntry | None = None
+    """The reference wind; may be left out when no case has wind."""
+    ice: Ice | None = None
+    """Ice; may be left out when no case has ice."""
+    case: list[CaseEntry] = []
+    """Load cases; left out: one named "design" with dead 1, wind 1, ice 0."""
+    allowables: AllowablesEntry = AllowablesEntry()
+    """Least factors asked for."""
+    analysis: Analysis = Analysis()
+    """How things are modelled."""

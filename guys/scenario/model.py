@@ -1,0 +1,346 @@
+"""The scenario as the rest of the program sees it: complete, resolved and in SI.
+
+Attribute names are the keys of the scenario file.  Lengths [m], forces [N], masses [kg], temperatures [K], angles [rad]; x east, y north, z up;
+bearings clockwise from grid north, wind bearings say where the wind comes from.  Everything is frozen; `model_copy(update=...)` gives
+a changed copy.  What the file leaves out and the contract gives a default for is filled in; None means "not given".
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from typing import Annotated, Any, Literal
+
+from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag
+
+from guys import constants
+from guys.scenario import quantity as q
+
+Base = Literal["pinned", "ball", "hinged", "fixed", "sprung"]
+
+
+class Model(BaseModel):
+    """Frozen, no unknown keys; the docstrings below each field become the descriptions of the JSON Schema."""
+
+    model_config = ConfigDict(frozen=True, extra="forbid", populate_by_name=True, use_attribute_docstrings=True)
+
+
+class Vector(Model):
+    """A place or an offset east, north and up."""
+
+    east: q.Length = 0.0
+    """Toward the east."""
+    north: q.Length = 0.0
+    """Toward the north."""
+    up: q.Length = 0.0
+    """Upward."""
+
+
+class ForceVector(Model):
+    """A force east, north and up."""
+
+    east: q.Force = 0.0
+    """Toward the east."""
+    north: q.Force = 0.0
+    """Toward the north."""
+    up: q.Force = 0.0
+    """Upward; a weight is negative."""
+
+
+class GroundFoot(Model):
+    """A foot on the ground."""
+
+    east: q.Length
+    """Distance east of the origin."""
+    north: q.Length
+    """Distance north of the origin."""
+    level: q.Length = 0.0
+    """Height above the origin's level."""
+
+
+class HeelFoot(Model):
+    """A heel carried by another spar."""
+
+    spar: q.Name
+    """The spar that carries it."""
+    at: q.LengthFromZero
+    """Distance along that spar from its foot."""
+
+
+def _key_tells(key: str, with_key: str, without: str) -> Discriminator:
+    """A union told apart by one key; tags start with '<' so that they never look like a key of the file."""
+
+    def tell(value: Any) -> str:
+        present = key in value if isinstance(value, Mapping) else hasattr(value, key)
+        return with_key if present else without
+
+    return Discriminator(tell)
+
+
+Foot = Annotated[Annotated[HeelFoot, Tag("<heel>")] | Annotated[GroundFoot, Tag("<ground>")], _key_tells("spar", "<heel>", "<ground>")]
+
+
+class Tube(Model):
+    """A round tube."""
+
+    diameter: q.PositiveLength
+    """Outside diameter."""
+    wall: q.PositiveLength
+    """Wall thickness."""
+
+
+class Section(Model):
+    """A straight stretch of a spar with one cross-section: a tube of a material, or its properties given outright."""
+
+    length: q.PositiveLength
+    """Length along the spar."""
+    tube: Tube | None = None
+    """A round tube; with `material` it gives mass, stiffness and width."""
+    material: q.Name | None = None
+    """steel, aluminium, timber, gfrp, or a [material.NAME] of the file."""
+    mass: q.LinearMass | None = None
+    """Mass per length."""
+    EA: q.PositiveForce | None = None
+    """Axial stiffness."""
+    EI: q.BendingStiffness | None = None
+    """Bending stiffness, the same about every axis."""
+    EI_x: q.BendingStiffness | None = None
+    """Bending stiffness about the spar's first local axis."""
+    EI_y: q.BendingStiffness | None = None
+    """Bending stiffness about the spar's second local axis."""
+    GJ: q.BendingStiffness | None = None
+    """Torsional stiffness."""
+    GA: q.PositiveForce | None = None
+    """Shear stiffness; left out: no shear flexibility."""
+    width: q.PositiveLength | None = None
+    """Width the wind meets; of a lattice the projected solid area per length."""
+    drag: q.Factor | None = None
+    """Force coefficient on the width."""
+    iced_mass: q.LinearMass | None = None
+    """Mass per length with the ice on it."""
+    iced_width: q.PositiveLength | None = None
+    """Width with the ice on it."""
+
+
+class Fitting(Model):
+    """Anything a spar carries: antenna, sign face, lamp, payload."""
+
+    name: q.Name
+    """Name, unique among all fittings."""
+    at: q.LengthFromZero
+    """Distance along the spar from its foot."""
+    mass: q.Mass = 0.0
+    """Mass."""
+    area: q.Area | None = None
+    """Area the wind meets."""
+    drag: q.Factor | None = None
+    """Force coefficient on the area."""
+    shape: Literal["any", "flat"] = "any"
+    """any: the same area from all bearings; flat: a face with a normal."""
+    face: q.Angle | None = None
+    """Bearing of the face's normal, for flat."""
+    face_tilt: q.Angle = 0.0
+    """How far a flat face leans back."""
+    offset: Vector = Vector()
+    """Place of its centre from the spar's axis."""
+    load: ForceVector = ForceVector()
+    """A fixed force; joins the dead load."""
+    iced_mass: q.Mass | None = None
+    """Mass with the ice on it."""
+    iced_area: q.Area | None = None
+    """Area with the ice on it."""
+
+
+class Spar(Model):
+    """A mast, a boom or a pylon: a straight chain of sections from its foot."""
+
+    name: q.Name
+    """Name, unique among spars."""
+    foot: Foot
+    """Where it stands: a place on the ground, or a point of another spar."""
+    lean: q.Angle = 0.0
+    """Angle from the vertical."""
+    toward: q.Angle = 0.0
+    """Bearing it leans toward."""
+    base: Base = "pinned"
+    """pinned: tilts but does not spin; ball: tilts and spins; hinged: turns about one level axis; fixed; sprung: see base_stiffness."""
+    base_stiffness: q.TurningSpring | None = None
+    """Moment per angle of a sprung base."""
+    hinge_axis: q.Angle | None = None
+    """Bearing of the axis of a hinged base; left out: square to `toward`."""
+    rigid: q.Flag = False
+    """true: does not bend; sections then need no stiffness."""
+    friction: q.Factor | None = None
+    """Coefficient between base plate and ground, for the sliding check."""
+    section: Annotated[tuple[Section, ...], Field(min_length=1)]
+    """Sections from the foot up."""
+    fitting: tuple[Fitting, ...] = ()
+    """What it carries."""
+
+    @property
+    def length(self) -> float:
+        """Sum of the sections [m]."""
+        return math.fsum(section.length for section in self.section)
+
+
+class Anchor(Model):
+    """A point on the ground that cables run to."""
+
+    name: str
+    east: float
+    north: float
+    level: float
+    give: float | None = None
+    """The anchor moves by the sum of its pulls divided by this [N/m]; None: it does not move."""
+
+
+class SparPoint(Model):
+    """A point of a spar that a cable is made fast to."""
+
+    spar: q.Name
+    """The spar."""
+    at: q.LengthFromZero
+    """Distance along the spar from its foot."""
+    arm: q.LengthFromZero = 0.0
+    """Lug: level distance from the axis toward the cable's other end."""
+
+
+class AnchorPoint(Model):
+    """An anchor as the end of a cable."""
+
+    anchor: q.Name
+    """The anchor."""
+
+
+End = Annotated[Annotated[AnchorPoint, Tag("<anchor>")] | Annotated[SparPoint, Tag("<point>")], _key_tells("anchor", "<anchor>", "<point>")]
+
+
+class Cable(Model):
+    """A guy or stay.  Exactly one of `tension`, `length`, `tight` is given."""
+
+    name: str
+    from_: Annotated[SparPoint, Field(alias="from")]
+    to: End
+    rope: str
+    tension: float | None = None
+    """Initial tension at the `to` end in still air at the setting temperature [N]."""
+    length: float | None = None
+    """Unstressed length at the setting temperature [m]."""
+    tight: bool = False
+    """Just free of slack in the dead-load position."""
+    level: str | None = None
+    """The guy level it came from, None for a single cable."""
+
+
+class Rope(Model):
+    """A rope: diameter [m], mass [kg/m], stiffness EA [N], strength [N], expansion [1/K], drag."""
+
+    diameter: float
+    mass: float
+    stiffness: float
+    strength: float | None = None
+    expansion: float | None = None
+    drag: float | None = None
+
+
+class Material(Model):
+    """A material of spars."""
+
+    density: q.Density
+    """Density."""
+    modulus: q.Stress
+    """Young's modulus."""
+    shear_modulus: q.Stress
+    """Shear modulus."""
+    yield_: Annotated[q.Stress | None, Field(alias="yield")] = None
+    """Yield stress."""
+    expansion: q.Expansion | None = None
+    """Thermal expansion."""
+
+
+class Setting(Model):
+    """The state in which the cables are tensioned."""
+
+    temperature: q.Temperature = float(constants.ZERO_CELSIUS) + 15.0
+    """Temperature at which tensions and lengths are given; left out: 15 degC."""
+    plumb: q.Flag = False
+    """true: tensions are targets; those nearest them that leave every spar as drawn are found."""
+
+
+class Profile(Model):
+    """Wind speed over height: uniform, or V = speed (z / height) ** exponent."""
+
+    kind: Literal["uniform", "power"] = "uniform"
+    exponent: float = 0.0
+
+
+class Wind(Model):
+    """speed [m/s] averaged over `averaging` [s] at `height` [m]; air_density [kg/m3]; directions: bearings it comes from [rad], in [0, 2 pi)."""
+
+    speed: float
+    averaging: float
+    height: float
+    profile: Profile = Profile()
+    air_density: float = constants.AIR_DENSITY
+    directions: tuple[float, ...]
+
+
+class Ice(Model):
+    """Ice on everything."""
+
+    thickness: q.PositiveLength
+    """Thickness all round."""
+    density: q.Density = constants.ICE_DENSITY
+    """Density; left out: 900 kg/m3."""
+
+
+class Case(Model):
+    """A load case: factors on the weights, the wind pressure and the weight of ice; the temperature [K]; cables taken away."""
+
+    name: str
+    dead: float = 1.0
+    wind: float = 1.0
+    ice: float = 0.0
+    temperature: float
+    without: tuple[str, ...] = ()
+
+
+class Allowables(Model):
+    """Least factors asked for; `defaulted` names those the user did not give."""
+
+    cable: float = 2.0
+    anchor: float = 1.5
+    sliding: float = 1.5
+    lean: float = math.radians(1.0)
+    defaulted: frozenset[str] = frozenset()
+
+
+class Analysis(Model):
+    """How things are modelled."""
+
+    cable: Literal["catenary", "straight"] = "catenary"
+    """catenary: own weight, ice and wind on the cable; straight: weightless, tension only."""
+
+
+class Scenario(Model):
+    """A whole scenario.  Cables: those of guy levels in file order, then the single ones.  Materials: the built-in ones and the file's own."""
+
+    format: int = 1
+    title: str
+    note: str | None = None
+    spar: tuple[Spar, ...]
+    anchor: tuple[Anchor, ...] = ()
+    cable: tuple[Cable, ...] = ()
+    rope: dict[str, Rope] = {}
+    material: dict[str, Material] = {}
+    setting: Setting = Setting()
+    wind: Wind | None = None
+    ice: Ice | None = None
+    case: tuple[Case, ...]
+    allowables: Allowables = Allowables()
+    analysis: Analysis = Analysis()
+    sha256: str
+    """Digest of the file's bytes."""
+    path: str | None = None
+    warnings: tuple[str, ...] = ()
+    """Values that look like a slip."""

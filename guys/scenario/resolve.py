@@ -1,0 +1,144 @@
+"""From the tables of a faultless file to the `Scenario`: references looked up, shorthands spelled out, defaults filled in."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Mapping
+from functools import cache
+
+from guys import constants, tables
+from guys.scenario import drawn
+from guys.scenario.document import AllowablesEntry, AnchorEntry, CableEntry, CaseEntry, GuyLevel, PowerProfile, RopeEntry, WindEntry
+from guys.scenario.model import (
+    Allowables,
+    Anchor,
+    AnchorPoint,
+    Cable,
+    Case,
+    Material,
+    Profile,
+    Rope,
+    Setting,
+    Spar,
+    SparPoint,
+    Wind,
+)
+
+DEFAULT_CASE = "design"
+
+
+@cache
+def built_in_materials() -> Mapping[str, Material]:
+    """The materials of ``guys/data/materials.csv``."""
+    found = {}
+    for row in tables.rows("materials"):
+        density, modulus, shear = float(row["density"]), float(row["modulus"]), float(row["shear_modulus"])
+        found[row["name"]] = Material(
+            density=density,
+            modulus=modulus,
+            shear_modulus=shear,
+            yield_=tables.number(row["yield"]),
+            expansion=tables.number(row["expansion"]),
+        )
+    return found
+
+
+def spar(entry: Spar) -> Spar:
+    """The spar with the axis of its hinge filled in."""
+    if entry.base == "hinged" and entry.hinge_axis is None:
+        return entry.model_copy(update={"hinge_axis": entry.toward + math.pi / 2})
+    return entry
+
+
+def anchor(entry: AnchorEntry, foot: drawn.Point) -> Anchor:
+    """The anchor's place, `foot` being that of the first spar."""
+    if entry.bearing is not None and entry.radius is not None:
+        east = foot[0] + entry.radius * math.sin(entry.bearing)
+        north = foot[1] + entry.radius * math.cos(entry.bearing)
+    else:
+        east, north = entry.east or 0.0, entry.north or 0.0
+    level = foot[2] if entry.level is None else entry.level
+    return Anchor(name=entry.name, east=east, north=north, level=level, give=entry.give)
+
+
+def guys_of(entry: GuyLevel, at_text: str) -> Iterator[Cable]:
+    """The cables of a guy level; `at_text` is its height as written."""
+    level = entry.name or " ".join(at_text.split())
+    for name in entry.to:
+        yield Cable(
+            name=f"{level} {name}",
+            from_=SparPoint(spar=entry.spar, at=entry.at, arm=entry.arm),
+            to=AnchorPoint(anchor=name),
+            rope=entry.rope,
+            tension=entry.tension,
+            length=entry.length,
+            tight=bool(entry.tight),
+            level=level,
+        )
+
+
+def cable(entry: CableEntry) -> Cable:
+    """A single cable."""
+    return Cable(
+        name=entry.name,
+        from_=entry.from_,
+        to=entry.to,
+        rope=entry.rope,
+        tension=entry.tension,
+        length=entry.length,
+        tight=bool(entry.tight),
+    )
+
+
+def rope(entry: RopeEntry) -> Rope:
+    """The rope, its stiffness worked out from modulus and metal area where so given."""
+    stiffness = entry.stiffness if entry.stiffness is not None else (entry.modulus or 0.0) * (entry.metal_area or 0.0)
+    given = entry.model_dump(include={"diameter", "mass", "strength", "expansion", "drag"})
+    return Rope(stiffness=stiffness, **given)
+
+
+def directions(entry: float | list[float]) -> tuple[float, ...]:
+    """Bearings in [0, 2 pi)."""
+    if isinstance(entry, list):
+        return tuple(bearing % math.tau % math.tau for bearing in entry)
+    count = round(math.tau / entry)
+    return tuple(math.tau * step / count for step in range(count))
+
+
+def wind(entry: WindEntry) -> Wind:
+    """The wind with its air density worked out."""
+    density = constants.AIR_DENSITY
+    if entry.air_density is not None:
+        density = entry.air_density
+    elif entry.altitude is not None:
+        density = constants.air_density(entry.altitude, entry.temperature)
+    profile = Profile(kind="power", exponent=entry.profile.power) if isinstance(entry.profile, PowerProfile) else Profile()
+    return Wind(
+        speed=entry.speed,
+        averaging=entry.averaging,
+        height=entry.height,
+        profile=profile,
+        air_density=density,
+        directions=directions(entry.directions),
+    )
+
+
+def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
+    """The load cases; the default one where the file gives none."""
+    return tuple(
+        Case(
+            name=entry.name,
+            dead=entry.dead,
+            wind=entry.wind,
+            ice=entry.ice,
+            temperature=setting.temperature if entry.temperature is None else entry.temperature,
+            without=tuple(entry.without),
+        )
+        for entry in entries or [CaseEntry(name=DEFAULT_CASE)]
+    )
+
+
+def allowables(entry: AllowablesEntry) -> Allowables:
+    """The allowables, with the names of those left out."""
+    given = entry.model_fields_set
+    return Allowables(**entry.model_dump(), defaulted=frozenset(set(AllowablesEntry.model_fields) - given))
