@@ -72,11 +72,16 @@ class Model:
     """One structure in openseespy's (single, global) domain.
 
     per_metre : beam elements per metre of spar; bars : 0 for one catenary element a cable, else the bars of its chain
+    system : the library's equation solver; cable_tolerance, cable_substeps : of `CatenaryCable`'s own iteration
     """
 
     inputs: Inputs
     per_metre: int
     bars: int = 0
+    system: str = "UmfPack"
+    cable_tolerance: float = CABLE_TOLERANCE
+    cable_substeps: int = CABLE_SUBSTEPS
+    step_tolerance: float = STEP_TOLERANCE
     spar_nodes: dict[str, list[int]] = field(default_factory=dict)
     spar_elements: dict[str, list[int]] = field(default_factory=dict)
     cable_nodes: dict[str, list[int]] = field(default_factory=dict)
@@ -99,8 +104,8 @@ class Model:
         self.positions = {n: np.array(ops.nodeCoord(n)) for n in ops.getNodeTags()}
         ops.constraints("Transformation")
         ops.numberer("RCM")
-        ops.system("UmfPack")
-        ops.test("NormDispIncr", STEP_TOLERANCE, 60, 0)
+        ops.system(self.system)
+        ops.test("NormDispIncr", self.step_tolerance, 60, 0)
         ops.algorithm("Newton")
         ops.timeSeries("Constant", 1)
 
@@ -171,10 +176,8 @@ class Model:
             self._add_bars(elements, nodes, float(np.linalg.norm(b - a)) / pieces, cable["length"] / pieces, stiffness)
         else:
             weight = self.inputs["rope"]["mass"] * GRAVITY
-            ops.element(
-                "CatenaryCable", elements[0], start, end, weight, stiffness, 1.0, cable["length"], 0.0, 0.0, 0.0,
-                CABLE_TOLERANCE, CABLE_SUBSTEPS, 0,
-            )  # fmt: skip
+            iteration = self.cable_tolerance, self.cable_substeps
+            ops.element("CatenaryCable", elements[0], start, end, weight, stiffness, 1.0, cable["length"], 0.0, 0.0, 0.0, *iteration, 0)
         self.cable_nodes[name], self.cable_elements[name] = nodes, elements
 
     def _add_bars(self, elements: list[int], nodes: list[int], drawn: float, unstressed: float, stiffness: float) -> None:
@@ -214,7 +217,12 @@ class Model:
         return np.asarray(load + per_chord * length / cable["length"])
 
     def solve(self, dead: float = 1.0, wind_from_deg: float | None = None) -> int:
-        """Equilibrium under the loads of a case, started from the state the domain is in; returns the number of Newton steps.
+        """Equilibrium under the loads of a case, started from the state the domain is in; returns the number of Newton steps."""
+        self.apply(dead, wind_from_deg)
+        return self.find()
+
+    def apply(self, dead: float, wind_from_deg: float | None) -> None:
+        """Put the loads of a case in place of those before.
 
         Wind is worked out on `positions`: the drawn ones until `remember_position` is called.
         """
@@ -233,8 +241,11 @@ class Model:
             self._put_on_cable(cable, self.cable_load[cable["name"]])
         ops.integrator("LoadControl", 1.0)
         ops.analysis("Static", "-noWarnings")
+
+    def find(self) -> int:
+        """Newton from the state the domain is in to equilibrium with the loads applied; returns the number of steps."""
         if ops.analyze(1) != 0:
-            raise RuntimeError(f"openseespy found no equilibrium: dead {dead}, wind from {wind_from_deg}")
+            raise RuntimeError("openseespy found no equilibrium")
         ops.reactions()
         return int(ops.testIter())
 
