@@ -1,0 +1,231 @@
+"""Symmetric block matrices over nodes, folded where a spar's foot rides on another spar, and factored as one band.
+
+Every element adds 6 x 6 blocks (translation, rotation) to pairs of nodes.  A node whose translation rides on a carrier by a rigid
+arm a (the heel of a boom) has u_s = u_m - [a]x theta_m, so its translation rows and columns fold into the carrier's; what remains is
+scattered into a lower band, nodes numbered by reverse Cuthill-McKee so that several spars stayed from each other keep it narrow.
+
+All cases lie end to end in one band, and one call of LAPACK's `pbtrf` factors them; where it stops it has found the case that is not
+positive definite, so it is the stability test too.
+
+Sources: Cuthill & McKee (1969), reversed after George (1971), from scipy; LAPACK Users' Guide (1999), band storage.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.linalg import lapack
+from scipy.sparse import coo_array
+from scipy.sparse.csgraph import reverse_cuthill_mckee
+
+from guys.rotation import Array, dyad_curvature, outer, skew
+
+Index = NDArray[np.int64]
+
+
+@dataclass(frozen=True)
+class Rides:
+    """Nodes that ride on others, outermost first.  node, carrier : (ride,); welded : rotation rides too."""
+
+    node: tuple[int, ...]
+    carrier: tuple[int, ...]
+    welded: tuple[bool, ...]
+
+
+@dataclass(frozen=True)
+class Pattern:
+    """Where blocks go.
+
+    pair : (pair, 2) row and column node, row >= column; of : {(row, column): index}; order, starts : sorting of contributions
+    free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry
+    """
+
+    nodes: int
+    pair: Index
+    of: dict[tuple[int, int], int]
+    order: Index
+    starts: Index
+    rides: Rides
+    free: Index
+    source: Index
+
+    @property
+    def unknowns(self) -> int:
+        return len(self.free)
+
+
+def lay_out(rows: Index, columns: Index, held: NDArray[np.bool_], rides: Rides) -> Pattern:
+    """Pattern for contributions to the node pairs (rows[k], columns[k]), rows >= columns; held : (node, 6) directions without unknown."""
+    nodes = len(held)
+    filled = _with_folds({(int(r), int(c)) for r, c in zip(rows, columns, strict=True)}, nodes, rides)
+    pair = np.array(sorted(filled), dtype=np.int64)
+    of = {(int(r), int(c)): k for k, (r, c) in enumerate(pair)}
+    extra = list(of.values())
+    target = np.concatenate([[of[int(r), int(c)] for r, c in zip(rows, columns, strict=True)], extra]).astype(np.int64)
+    order = np.argsort(target, kind="stable")
+    starts = np.searchsorted(target[order], np.arange(len(pair)))
+    fixed = held.copy()
+    for node, welded in zip(rides.node, rides.welded, strict=True):
+        fixed[node, : 6 if welded else 3] = True
+    free = _number(pair, ~fixed)
+    return Pattern(nodes, pair, of, order, starts, rides, free, _sources(pair, of, free))
+
+
+def _with_folds(pairs: set[tuple[int, int]], nodes: int, rides: Rides) -> set[tuple[int, int]]:
+    pairs = pairs | {(n, n) for n in range(nodes)}
+    for s, m in zip(rides.node, rides.carrier, strict=True):
+        touching = {a if b == s else b for a, b in pairs if s in (a, b)} | {m}
+        pairs |= {(max(m, b), min(m, b)) for b in touching} | {(max(m, s), min(m, s))}
+    return pairs
+
+
+def _number(pair: Index, unknown: NDArray[np.bool_]) -> Index:
+    nodes = len(unknown)
+    moving = unknown.any(axis=1)
+    pair = pair[moving[pair].all(axis=1)]
+    graph = coo_array((np.ones(len(pair)), (pair[:, 0], pair[:, 1])), shape=(nodes, nodes)).tocsr()
+    order = reverse_cuthill_mckee((graph + graph.T).tocsr(), symmetric_mode=True)
+    return np.array([(n, k) for n in order for k in range(6) if unknown[n, k]], dtype=np.int64).reshape(-1, 2)
+
+
+def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
+    number = {(int(n), int(k)): i for i, (n, k) in enumerate(free)}
+    by_node: dict[int, list[int]] = {}
+    for n, k in number:
+        by_node.setdefault(n, []).append(k)
+    entries: list[tuple[int, int, int]] = []
+    for (r, c), p in of.items():
+        for a in by_node.get(r, []):
+            for b in by_node.get(c, []):
+                i, j, at = number[r, a], number[c, b], p * 36 + a * 6 + b
+                if i >= j:
+                    entries.append((j, i - j, at))
+                elif r != c:
+                    entries.append((i, j - i, at))
+    width = 1 + max((offset for _, offset, _ in entries), default=0)
+    source = np.full((len(free), width), len(pair) * 36, dtype=np.int64)
+    for column, offset, at in entries:
+        source[column, offset] = at
+    return source
+
+
+def add_up(pattern: Pattern, contributions: Array) -> Array:
+    """Contributions (case, contribution, 6, 6), in the order given to `lay_out`, summed by pair: (case, pair, 6, 6)."""
+    cases = len(contributions)
+    whole = np.zeros((cases, len(pattern.order), 36))
+    whole[:, : contributions.shape[1]] = contributions.reshape(cases, -1, 36)
+    summed = np.add.reduceat(whole[:, pattern.order], pattern.starts, axis=1)
+    return np.asarray(summed).reshape(cases, -1, 6, 6)
+
+
+def fold_gradient(pattern: Pattern, gradient: Array, arms: Array) -> Array:
+    """Gradient (case, node, 6) with the riding nodes' forces moved to their carriers; arms (case, ride, 3) turned arms."""
+    if not pattern.rides.node:
+        return gradient
+    out = gradient.copy()
+    for k, (s, m) in enumerate(zip(pattern.rides.node, pattern.rides.carrier, strict=True)):
+        keep, onto = _ride(arms[:, k], pattern.rides.welded[k])
+        out[:, m] += (out[:, s, None] @ onto)[:, 0]
+        out[:, s] = out[:, s] * keep
+    return out
+
+
+def fold(pattern: Pattern, blocks: Array, gradient: Array, arms: Array) -> Array:
+    """Blocks (case, pair, 6, 6) after the folds; gradient unfolded (case, node, 6)."""
+    if not pattern.rides.node:
+        return blocks
+    pending = gradient.copy()
+    for k, (s, m) in enumerate(zip(pattern.rides.node, pattern.rides.carrier, strict=True)):
+        keep, onto = _ride(arms[:, k], pattern.rides.welded[k])
+        _fold_one(pattern, blocks, s, m, keep, onto)
+        blocks[:, pattern.of[m, m], 3:, 3:] += dyad_curvature(outer(arms[:, k], pending[:, s, :3]))
+        pending[:, m] += (pending[:, s, None] @ onto)[:, 0]
+    return blocks
+
+
+def _ride(arm: Array, welded: bool) -> tuple[Array, Array]:
+    """delta_s = keep * delta_s' + onto delta_m."""
+    onto = np.zeros((len(arm), 6, 6))
+    onto[:, (0, 1, 2), (0, 1, 2)] = 1
+    onto[:, :3, 3:] = -skew(arm)
+    if welded:
+        onto[:, (3, 4, 5), (3, 4, 5)] = 1
+    keep = np.array([0.0, 0, 0, 0, 0, 0] if welded else [0.0, 0, 0, 1, 1, 1])
+    return keep, onto
+
+
+def _fold_one(pattern: Pattern, blocks: Array, s: int, m: int, keep: Array, onto: Array) -> None:
+    def transposed(x: Array) -> Array:
+        return np.swapaxes(x, -1, -2)
+
+    def get(a: int, b: int) -> Array:
+        at = pattern.of.get((max(a, b), min(a, b)))
+        if at is None:
+            return np.zeros_like(onto)
+        return blocks[:, at].copy() if a >= b else transposed(blocks[:, at]).copy()
+
+    def put(a: int, b: int, value: Array) -> None:
+        at = pattern.of[max(a, b), min(a, b)]
+        blocks[:, at] = value if a >= b else transposed(value)
+
+    ss, sm = get(s, s), get(s, m)
+    carried = transposed(onto) @ sm
+    put(m, m, get(m, m) + transposed(onto) @ ss @ onto + carried + transposed(carried))
+    put(s, m, keep[:, None] * (ss @ onto + sm))
+    put(s, s, keep[:, None] * ss * keep)
+    neighbours = {a if b == s else b for a, b in pattern.of if s in (a, b)} - {s, m}
+    for b in neighbours:
+        sb = get(s, b)
+        put(m, b, get(m, b) + transposed(onto) @ sb)
+        put(s, b, keep[:, None] * sb)
+
+
+def to_band(pattern: Pattern, blocks: Array) -> Array:
+    """Lower band (case, unknown, width): entry [c, j, d] is K[j + d, j]."""
+    cases = len(blocks)
+    flat = np.zeros((cases, blocks.shape[1] * 36 + 1))
+    flat[:, :-1] = blocks.reshape(cases, -1)
+    return np.take(flat, pattern.source, axis=1)
+
+
+def factor(band: Array) -> tuple[Array, NDArray[np.bool_]]:
+    """Cholesky factors (case, unknown, width) and which cases are positive definite; the factor of any other is the identity."""
+    cases, n, width = band.shape
+    definite = np.ones(cases, dtype=bool)
+    factors = band.copy()
+    first = 0
+    while first < cases and n:
+        rest = factors[first:].reshape(-1, width)
+        out, stopped = lapack.dpbtrf(rest.T, lower=1, overwrite_ab=1)
+        if not np.shares_memory(out, factors):
+            factors[first:] = out.T.reshape(-1, n, width)
+        if stopped <= 0:
+            break
+        fell = first + (stopped - 1) // n
+        definite[fell] = False
+        factors[fell] = 0
+        factors[fell, :, 0] = 1
+        first = fell + 1
+    return factors, definite
+
+
+def solve(factors: Array, right: Array) -> Array:
+    """K x = b for every case: b and x are (case, unknown) or (case, unknown, column)."""
+    cases, n, width = factors.shape
+    if n == 0:
+        return right.copy()
+    flat = right.reshape(cases * n, -1)
+    x, _ = lapack.dpbtrs(factors.reshape(-1, width).T, flat, lower=1)
+    return np.asarray(x).reshape(right.shape)
+
+
+def dense(band: Array) -> Array:
+    """One case's band (unknown, width) as a full symmetric matrix."""
+    n, width = band.shape
+    out = np.zeros((n, n))
+    for d in range(min(width, n)):
+        k = np.arange(n - d)
+        out[k + d, k] = out[k, k + d] = band[: n - d, d]
+    return out

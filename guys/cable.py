@@ -1,0 +1,235 @@
+"""Cables: the elastic catenary under any uniform load, and the weightless tension-only tie.
+
+**Catenary.**  A cable of unstressed length L0 and stiffness EA carries the load vector w per unstressed length (weight, ice and wind
+together).  With T the tension vector at mid-length, pointing from end A to end B, and s the unstressed length from there,
+
+    T(s) = T - w s,      T_A = T + w L0/2,      T_B = T - w L0/2
+    chord r = x_B - x_A = int (1/EA + 1/|T(s)|) T(s) ds
+            = L0 [ T/EA + (2/S) (T_par + (atanh z / z) T_per) ],   S = |T_A| + |T_B|,   z = |w| L0 / S
+
+(par and per to w).  Nothing cancels, so one formula serves taut, sagging and hanging cables alike.  The flexibility
+
+    F = dr/dT = L0 [ I/EA + (2/S) (P_par + (atanh z / z) P_per) - (2/S^2) (T_par + T_per/(1 - z^2)) n^T ],
+    n = T_A/|T_A| + T_B/|T_B|,     1 - z^2 = 2 (|T_A| |T_B| + T_A.T_B) / S^2
+
+is symmetric positive definite: F^-1 is the stiffness between the ends, and Newton on T is the minimisation of a convex
+complementary energy.  The pull of the cable on A is T_A, on B it is -T_B.  Lengthening at given T moves the ends by
+dr/dL0 = half the sum over both ends of (1/EA + 1/|T|) T.
+
+**Straight.**  Weightless: T = EA (c/L0 - 1) along the chord c where that is positive, nothing otherwise.
+
+Sources: Irvine, Cable Structures (1981), section 1.3, for the elastic catenary; the vector form at mid-length is our own
+rearrangement and is tested against it and against direct integration.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys.rotation import dot, outer
+
+Array = NDArray[np.float64]
+
+LARGEST_ROUNDS = 60
+CLOSED = 2e-14
+"""Newton ends when the correction of T is below this share of the end tensions: rounding in the chord times EA is of that size."""
+TRUST = 0.3
+"""A start is kept only if Newton's first correction is below this share of |T| (measured: beyond it convergence is slower than afresh)."""
+NEARLY_CHORD = 1e-3
+"""... and the chord it gives is this close, relative to length plus chord."""
+LEVEL_FLOOR = 1e-12
+"""The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a loop."""
+TAUT_ABOVE = 1e-9
+"""Relative stretch above which a straight cable counts as taut (the contract's rule)."""
+
+
+@dataclass(frozen=True)
+class Hanging:
+    """State of cables (..., ) : `tension` T (..., 3) [N] at mid-length, end tension vectors `at_a`, `at_b`, `stiffness` F^-1 (..., 3, 3) [N/m]."""
+
+    tension: Array
+    at_a: Array
+    at_b: Array
+    stiffness: Array
+
+
+def start(chord: Array, length: Array, EA: Array, load: Array) -> Array:
+    """First tension vector: along the chord, from the cubic T^3 - EA (c/L0 - 1) T^2 - EA |w_per L0|^2 / 24 = 0.
+
+    chord (n, 3) [m], length (n,) [m], EA (n,) [N], load (n, 3) total load w L0 [N].
+    """
+    c = np.sqrt(dot(chord, chord))
+    e = chord / np.maximum(c, 1e-300)[:, None]
+    across2 = np.maximum(dot(load, load) - dot(load, e) ** 2, 1e-12 * dot(load, load))
+    taut = EA * (c / length - 1)
+    hanging = np.cbrt(EA * across2 / 24)
+    x = np.maximum(np.maximum(taut, 0), hanging) + 1e-9 * EA * (taut <= 0) * (across2 == 0)
+    for _ in range(12):
+        f = x * x * (x - taut) - EA * across2 / 24
+        x = x - f / np.maximum(3 * x * x - 2 * taut * x, 1e-300)
+    loose = np.clip(1 - c / length, 0, 1)
+    x = np.maximum(x, 1e-3 * np.sqrt(dot(load, load)) * (1 - loose))
+    return x[:, None] * e
+
+
+def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None = None) -> Hanging:
+    """Solve r(T) = chord for many cables at once.
+
+    chord : (n, 3) [m] from end A to end B;  length : (n,) [m] unstressed;  EA : (n,) [N]
+    load : (n, 3) [N] total load w L0 on the cable (not zero);  warm : (n, 3) [N] tensions to start from where they serve
+    Valid for any length > 0 and any chord not exactly in line with the load while slack.
+    """
+    chord = _off_line(chord, load)
+    tension = start(chord, length, EA, load)
+    if warm is not None:
+        tension = np.where(_serves(chord, length, EA, load, warm)[:, None], warm, tension)
+    open_ = np.arange(len(length))
+    for _ in range(LARGEST_ROUNDS):
+        gap, flexibility, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
+        change = -_solve3(flexibility, gap)
+        size = np.sqrt(dot(change, change))
+        tension[open_] += _damped(change, size, ends)[:, None] * change
+        open_ = open_[size > CLOSED * ends]
+        if len(open_) == 0:
+            break
+    _, flexibility, _ = _miss(chord, length, EA, load, tension)
+    return Hanging(tension, tension + load / 2, tension - load / 2, _invert3(flexibility))
+
+
+def _damped(change: Array, size: Array, ends: Array) -> Array:
+    """Share of the step: no step above half the sum of end tensions, which keeps Newton on the convex side of hanging cables."""
+    return np.minimum(1.0, 0.5 * ends / np.maximum(size, 1e-300))
+
+
+def _off_line(chord: Array, load: Array) -> Array:
+    w2 = np.maximum(dot(load, load), 1e-300)
+    along = (dot(chord, load) / w2)[:, None] * load
+    aside = chord - along
+    floor = LEVEL_FLOOR * np.sqrt(dot(chord, chord))
+    short = np.sqrt(dot(aside, aside)) < floor
+    if not short.any():
+        return chord
+    k = np.argmin(np.abs(load), axis=-1)
+    unit = np.eye(3)[k]
+    square = unit - (dot(unit, load) / w2)[:, None] * load
+    square = square / np.sqrt(dot(square, square))[:, None]
+    return np.where(short[:, None], chord + floor[:, None] * square, chord)
+
+
+def _serves(chord: Array, length: Array, EA: Array, load: Array, warm: Array) -> NDArray[np.bool_]:
+    has = dot(warm, warm) > 0
+    tried = np.where(has[:, None], warm, load + chord * (np.sqrt(dot(load, load)) / length)[:, None])
+    gap, flexibility, _ = _miss(chord, length, EA, load, tried)
+    change = _solve3(flexibility, gap)
+    reach = length + np.sqrt(dot(chord, chord))
+    near = dot(gap, gap) < (NEARLY_CHORD * reach) ** 2
+    return np.asarray(has & near & (dot(change, change) < TRUST**2 * dot(tried, tried)))
+
+
+def _miss(chord: Array, length: Array, EA: Array, load: Array, tension: Array) -> tuple[Array, Array, Array]:
+    """r(T) - chord, F = dr/dT, and |T_A| + |T_B|."""
+    w2 = dot(load, load)
+    unit = load / np.sqrt(w2)[:, None]
+    at_a, at_b = tension + load / 2, tension - load / 2
+    a, b = np.sqrt(dot(at_a, at_a)), np.sqrt(dot(at_b, at_b))
+    s = a + b
+    z = np.sqrt(w2) / s
+    rest = np.maximum(2 * (a * b + dot(at_a, at_b)) / (s * s), 1e-30)
+    phi = _atanh_ratio(z, rest)
+    par = dot(tension, unit)[:, None] * unit
+    per = tension - par
+    gap = length[:, None] * (tension / EA[:, None] + (2 / s)[:, None] * (par + phi[:, None] * per)) - chord
+    n = at_a / a[:, None] + at_b / b[:, None]
+    q = par + per / rest[:, None]
+    f = (2 / s)[:, None, None] * ((1 - phi)[:, None, None] * outer(unit, unit))
+    f[:, (0, 1, 2), (0, 1, 2)] += (1 / EA + 2 * phi / s)[:, None]
+    qn = outer(q, n)
+    f -= (1 / (s * s))[:, None, None] * (qn + np.swapaxes(qn, -1, -2))
+    return gap, length[:, None, None] * f, s
+
+
+def _atanh_ratio(z: Array, rest: Array) -> Array:
+    """atanh(z)/z with 1 - z^2 = rest given, so that z near one loses nothing."""
+    small = z < 1e-2
+    safe = np.where(small, 0.5, z)
+    z2 = z * z
+    series = 1 + z2 / 3 * (1 + 3 * z2 / 5 * (1 + 5 * z2 / 7))
+    return np.where(small, series, np.log((1 + safe) ** 2 / np.where(small, 0.75, rest)) / (2 * safe))
+
+
+def _invert3(m: Array) -> Array:
+    """Inverse of symmetric positive definite 3 x 3 matrices (n, 3, 3) by cofactors."""
+    a, b, c = m[:, 0, 0], m[:, 0, 1], m[:, 0, 2]
+    d, e, f = m[:, 1, 1], m[:, 1, 2], m[:, 2, 2]
+    out = np.empty_like(m)
+    out[:, 0, 0] = d * f - e * e
+    out[:, 0, 1] = out[:, 1, 0] = c * e - b * f
+    out[:, 0, 2] = out[:, 2, 0] = b * e - c * d
+    out[:, 1, 1] = a * f - c * c
+    out[:, 1, 2] = out[:, 2, 1] = b * c - a * e
+    out[:, 2, 2] = a * d - b * b
+    det = a * out[:, 0, 0] + b * out[:, 0, 1] + c * out[:, 0, 2]
+    return out / det[:, None, None]
+
+
+def _solve3(m: Array, v: Array) -> Array:
+    return np.asarray((_invert3(m) @ v[..., None])[..., 0])
+
+
+def length_rate(at_a: Array, at_b: Array, EA: Array) -> Array:
+    """dr/dL0 (n, 3) at given mid tension and given load per length."""
+    out: Array = np.zeros_like(at_a)
+    for end in (at_a, at_b):
+        out += 0.5 * (1 / EA + 1 / np.sqrt(dot(end, end)))[:, None] * end
+    return out
+
+
+def pull_straight(chord: Array, length: Array, EA: Array) -> Hanging:
+    """Weightless tension-only cables: zero tension and stiffness where the chord does not exceed the unstressed length.
+
+    Arguments as for `hang`.
+    """
+    c = np.sqrt(dot(chord, chord))
+    e = chord / c[:, None]
+    taut = c > length * (1 + TAUT_ABOVE)
+    size = np.where(taut, EA * (c / length - 1), 0.0)
+    ee = outer(e, e)
+    k = (np.where(taut, EA / length, 0.0))[:, None, None] * ee + (size / c)[:, None, None] * (np.eye(3) - ee)
+    tension = size[:, None] * e
+    return Hanging(tension, tension, tension, k)
+
+
+def curve(tension: Array, load: Array, length: Array, EA: Array, start_at: Array, points: int) -> Array:
+    """Positions along cables as they hang, (n, points, 3), from end A at `start_at` (n, 3) to end B.
+
+    Uses u with w sigma = p sinh u, p = |T_per|, in which the curve is r' = T(1/EA + 1/|T|) (p/w) cosh u: smooth however slack.
+    `tension` at mid-length, `load` total; a zero load gives the straight line.
+    """
+    fraction = np.linspace(-0.5, 0.5, points)
+    n = len(length)
+    out = np.empty((n, points, 3))
+    for k in range(n):
+        out[k] = start_at[k] + _arc(tension[k], load[k], float(length[k]), float(EA[k]), fraction)
+    return out
+
+
+def _arc(tension: Array, load: Array, length: float, EA: float, fraction: Array) -> Array:
+    """Positions relative to end A at unstressed fractions (-1/2 ... 1/2) of one cable."""
+    at = tension - load * fraction[:, None]
+    total = float(np.sqrt(load @ load))
+    elastic = length / EA * ((fraction + 0.5)[:, None] * tension - 0.5 * (fraction**2 - 0.25)[:, None] * load)
+    if total <= 1e-12 * float(np.sqrt(tension @ tension)):
+        e = tension / np.sqrt(tension @ tension)
+        return np.asarray(elastic + (fraction + 0.5)[:, None] * length * e)
+    unit = load / total
+    along = at @ unit
+    per = tension - (tension @ unit) * unit
+    p = max(float(np.sqrt(per @ per)), 1e-12 * total)
+    size = np.hypot(along, p)
+    u = np.arcsinh(along / p)
+    w = total / length
+    rise = (size[0] - size) / w
+    return np.asarray(elastic + rise[:, None] * unit + ((u[0] - u) / w)[:, None] * per)

@@ -1,0 +1,314 @@
+"""Net force and moment on every node of every case, and their tangent.
+
+The unknown is the pose of the nodes: displacement u and rotation R = I + psi.  All that pushes back has a potential (beams, cables,
+joints, springs of giving anchors, dead loads on rigid arms), so the residual is its gradient g and the tangent K its Hessian for the
+update u <- u + du, R <- exp(theta) R.  Equilibrium: g = 0 in every free direction; a positive definite K there is a stable one.
+
+A point of a node with the turned arm a = R r passes a force gradient g_p and a stiffness k on as
+
+    g_u = g_p,  g_theta = a x g_p,     K = [[k, -k [a]x], [[a]x k, -[a]x k [a]x + (a g_p^T + g_p a^T)/2 - (a.g_p) I]].
+
+Out-of-balance is the greatest net force over the reference force, or net moment over that times the length of its spar, whichever is
+greater; the reference force is the largest of total weight, total wind, greatest tension and 1 N.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys import band, beam, cable, joint
+from guys.loads import LoadCases
+from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, outer, skew, turn, turned
+from guys.structure import Points, Structure
+
+Index = NDArray[np.int64]
+
+
+@dataclass(frozen=True)
+class State:
+    """u (case, node, 3) [m]; psi (case, node, 3, 3); tension (case, cable, 3) [N] at mid-length (zero: not known); axial (case, element) [N]
+    the axial force to build the geometric stiffness with (NaN: that of the present position)."""
+
+    u: Array
+    psi: Array
+    tension: Array
+    axial: Array
+
+    def take(self, rows: Index) -> State:
+        return State(self.u[rows], self.psi[rows], self.tension[rows], self.axial[rows])
+
+    def put(self, rows: Index, other: State) -> None:
+        """Write the cases of `other` at `rows`."""
+        self.u[rows], self.psi[rows], self.tension[rows], self.axial[rows] = other.u, other.psi, other.tension, other.axial
+
+
+@dataclass(frozen=True)
+class Evaluation:
+    """Everything found at one state.  gradient (case, node, 6) before folding: net force of what acts on each node itself, joints and
+    folds left out of `structural` (case, node, 6); residual (case, unknown); error (case,) out-of-balance; reference (case,) [N]."""
+
+    bent: beam.Bent
+    hanging: cable.Hanging
+    structural: Array
+    residual: Array
+    error: Array
+    reference: Array
+    band: Array | None
+
+
+@dataclass(frozen=True)
+class Problem:
+    """A structure under load cases with given unstressed lengths (cable,) or (case, cable) [m] at the setting temperature."""
+
+    structure: Structure
+    loads: LoadCases
+    length: Array
+
+    @property
+    def cases(self) -> int:
+        return len(self.loads.lines)
+
+    @cached_property
+    def pattern(self) -> band.Pattern:
+        return pattern_of(self.structure)
+
+    @cached_property
+    def natural(self) -> Array:
+        """(case, cable) unstressed lengths at the cases' temperatures [m]."""
+        return np.asarray(self.length * (1 + self.structure.cables.expansion * self.loads.warming[:, None]))
+
+    @cached_property
+    def mass(self) -> Array:
+        """(unknown,) scale of the tangent's diagonal: the weight over the height for translations, times (height/4)^2 for rotations.
+        A least eigenvalue is called zero relative to it."""
+        s = self.structure
+        k = max(s.weight, 1.0) / s.height
+        return np.where(self.pattern.free[:, 1] < 3, k, k * (s.height / 4) ** 2)
+
+    @cached_property
+    def lever(self) -> Array:
+        """(unknown,) [m] what a net moment is divided by: 1 for forces, the length of the node's spar for moments."""
+        s = self.structure
+        spar = s.spar[self.pattern.free[:, 0]]
+        return np.where(self.pattern.free[:, 1] < 3, 1.0, s.length[spar])
+
+    def take(self, rows: Index) -> Problem:
+        """The cases `rows`."""
+        length = self.length if self.length.ndim == 1 else self.length[rows]
+        out = replace(self, loads=self.loads.take(rows), length=length)
+        out.__dict__["pattern"] = self.pattern
+        return out
+
+    def drawn(self) -> State:
+        """The unloaded geometry, for every case."""
+        s, c = self.structure, self.cases
+        return State(
+            np.zeros((c, s.nodes, 3)), np.zeros((c, s.nodes, 3, 3)), np.zeros((c, len(s.cables.EA), 3)), np.full((c, len(s.elements.i)), np.nan)
+        )
+
+    def repeat(self, state: State) -> State:
+        """One case's state for every case."""
+        c = self.cases
+        return State(*(np.repeat(x[:1], c, axis=0) for x in (state.u, state.psi, state.tension, state.axial)))
+
+    def arms(self, state: State) -> Array:
+        """(case, ride, 3) turned arms of riding nodes."""
+        carriers = np.array(self.structure.rides.carrier, dtype=np.int64)
+        return turned(state.psi[:, carriers], self.structure.ride_arm)
+
+    def reach(self, points: Points, state: State) -> tuple[Array, Array]:
+        """Turned arms (case, point, 3) and displacement from the drawn node position (case, point, 3) of points."""
+        arm = points.arm + self.loads.warming[:, None, None] * points.growth
+        a = turned(state.psi[:, points.node], arm)
+        return a, state.u[:, points.node] + a
+
+    def chords(self, state: State) -> tuple[Array, Array, Array]:
+        """Turned arms at ends A and B, and chord vectors B - A (case, cable, 3)."""
+        s = self.structure
+        arm_a, at_a = self.reach(s.cables.a, state)
+        arm_b, at_b = self.reach(s.cables.b, state)
+        apart = s.position[s.cables.b.node] - s.position[s.cables.a.node]
+        return arm_a, arm_b, apart + (at_b - at_a)
+
+    def pull(self, chord: Array, warm: Array) -> cable.Hanging:
+        """Cables of all cases at given chords (case, cable, 3)."""
+        c, k = chord.shape[:2]
+        flat = chord.reshape(-1, 3)
+        length = np.broadcast_to(self.natural, (c, k)).reshape(-1)
+        stiffness = np.broadcast_to(self.structure.cables.EA, (c, k)).reshape(-1)
+        if self.structure.scenario.analysis.cable == "straight":
+            out = cable.pull_straight(flat, length, stiffness)
+        else:
+            out = cable.hang(flat, length, stiffness, self.cable_total.reshape(-1, 3), warm.reshape(-1, 3))
+        shape = (c, k, 3)
+        return cable.Hanging(out.tension.reshape(shape), out.at_a.reshape(shape), out.at_b.reshape(shape), out.stiffness.reshape(c, k, 3, 3))
+
+    @cached_property
+    def cable_total(self) -> Array:
+        """(case, cable, 3) [N] whole load of every cable."""
+        return np.asarray(self.loads.cable_load * np.broadcast_to(self.length, self.loads.present.shape)[..., None])
+
+    def evaluate(self, state: State, tangent: bool = True) -> Evaluation:
+        """Residual and, if asked, the tangent as a lower band."""
+        s = self.structure
+        bent = self._bend(state)
+        arm_a, arm_b, chord = self.chords(state)
+        hanging = self.pull(chord, state.tension)
+        gradient = np.zeros((self.cases, s.nodes, 6))
+        ends = beam.gradient(bent)
+        for end, node in ((ends[..., :6], s.elements.i), (ends[..., 6:], s.elements.j)):
+            for _, rows in _rounds(node):
+                gradient[:, node[rows]] += end[:, rows]
+        present = self.loads.present[..., None]
+        for points, arm, force in ((s.cables.a, arm_a, -hanging.at_a * present), (s.cables.b, arm_b, hanging.at_b * present)):
+            both = np.concatenate([force, cross(arm, force)], axis=-1)
+            for _, rows in _rounds(points.node):
+                gradient[:, points.node[rows]] += both[:, rows]
+        dyad = self.loads.dyad + state.psi @ self.loads.dyad
+        gradient[..., :3] -= self.loads.force
+        gradient[..., 3:] -= dyad_moment(dyad)
+        give = np.isfinite(s.give)
+        spring = np.where(give, s.give, 0.0)
+        structural = gradient.copy()
+        gradient[:, s.anchor, :3] += spring[:, None] * state.u[:, s.anchor]
+        held, holding = joint.resist(s.joints, state.psi)
+        for k, (m, n) in enumerate(zip(s.joints.carrier_node, s.joints.spar_node, strict=True)):
+            gradient[:, m, 3:] += held[:, k, 0]
+            gradient[:, n, 3:] += held[:, k, 1]
+        arms = self.arms(state)
+        folded = band.fold_gradient(self.pattern, gradient, arms)
+        residual = folded[:, self.pattern.free[:, 0], self.pattern.free[:, 1]]
+        reference = self._reference(hanging)
+        error = np.max(np.abs(residual) / self.lever, axis=1, initial=0.0) / reference
+        k_band = self._tangent(state, bent, hanging, (arm_a, arm_b), dyad, spring, holding, gradient, arms) if tangent else None
+        return Evaluation(bent, hanging, structural, residual, error, reference, k_band)
+
+    def _reference(self, hanging: cable.Hanging) -> Array:
+        greatest = np.maximum(np.linalg.norm(hanging.at_a, axis=-1), np.linalg.norm(hanging.at_b, axis=-1)) * self.loads.present
+        tension = np.max(greatest, axis=1, initial=0.0)
+        wind = np.linalg.norm(self.cable_total, axis=-1).sum(axis=1) * (self.loads.wind_force > 0)
+        return np.asarray(np.maximum.reduce([self.loads.weight, self.loads.wind_force, np.minimum(wind, self.loads.wind_force), tension, np.ones(self.cases)]))
+
+    def _bend(self, state: State) -> beam.Bent:
+        e, s = self.structure.elements, self.structure
+        spar_axes = np.swapaxes(s.axes[np.maximum(s.spar, 0)][:, :2], -1, -2)
+        moved = state.psi @ spar_axes
+        d = state.u[:, e.j] - state.u[:, e.i]
+        thermal = self.loads.warming[:, None] * e.expansion
+        at_i, at_j = moved[:, e.i], moved[:, e.j]
+        return beam.bend(e.rods, d, at_i[..., 0], at_i[..., 1], at_j[..., 0], at_j[..., 1], thermal)
+
+    def _tangent(
+        self, state: State, bent: beam.Bent, hanging: cable.Hanging, arm: tuple[Array, Array], dyad: Array, spring: Array, holding: Array,
+        gradient: Array, arms: Array,
+    ) -> Array:  # fmt: skip
+        s = self.structure
+        axial = np.where(np.isnan(state.axial), bent.axial, state.axial)
+        h = beam.hessian(s.elements.rods, bent, axial)
+        parts = [h[..., :6, :6], h[..., 6:, 6:], h[..., 6:, :6], *self._cable_blocks(hanging, *arm), *_joint_blocks(holding, s.joints)]
+        blocks = band.add_up(self.pattern, np.concatenate(parts, axis=1))
+        diagonal = np.array([self.pattern.of[n, n] for n in range(s.nodes)])
+        blocks[:, diagonal, 3:, 3:] -= dyad_curvature(dyad)
+        if spring.any():
+            blocks[:, diagonal[s.anchor], :3, :3] += spring[:, None, None] * np.eye(3)
+        return band.to_band(self.pattern, band.fold(self.pattern, blocks, gradient, arms))
+
+    def _cable_blocks(self, hanging: cable.Hanging, arm_a: Array, arm_b: Array) -> tuple[Array, Array, Array]:
+        """(case, cable, 6, 6) at A, at B, and between them with the higher node's rows."""
+        s = self.structure
+        present = self.loads.present[..., None]
+        k = hanging.stiffness * present[..., None]
+        sides = []
+        for arm, force in ((arm_a, -hanging.at_a * present), (arm_b, hanging.at_b * present)):
+            passed = np.zeros((*k.shape[:2], 6, 3))
+            passed[..., :3, :] = np.eye(3)
+            passed[..., 3:, :] = skew(arm)
+            block = passed @ k @ np.swapaxes(passed, -1, -2)
+            block[..., 3:, 3:] += dyad_curvature(outer(arm, force))
+            sides.append((passed, block))
+        (to_a, at_a), (to_b, at_b) = sides
+        between = -to_a @ k @ np.swapaxes(to_b, -1, -2)
+        flip = s.cables.a.node < s.cables.b.node
+        between[:, flip] = np.swapaxes(between[:, flip], -1, -2)
+        same = s.cables.a.node == s.cables.b.node
+        between[:, same] += np.swapaxes(between[:, same], -1, -2)
+        return at_a, at_b, between
+
+    def whole_step(self, state: State, step: Array) -> Array:
+        """(case, node, 6) of a step (case, unknown), riding nodes moved with their carriers."""
+        out = np.zeros((self.cases, self.structure.nodes, 6))
+        out[:, self.pattern.free[:, 0], self.pattern.free[:, 1]] = step
+        arms = self.arms(state)
+        rides = self.structure.rides
+        for k in reversed(range(len(rides.node))):
+            node, carrier = rides.node[k], rides.carrier[k]
+            out[:, node, :3] = out[:, carrier, :3] + cross(out[:, carrier, 3:], arms[:, k])
+            if rides.welded[k]:
+                out[:, node, 3:] = out[:, carrier, 3:]
+        return out
+
+    def limited(self, state: State, step: Array, turning: float, moving: float) -> Array:
+        """The step (case, unknown), shortened where it would turn a node more than `turning` [rad] or move one more than `moving` [m]."""
+        whole = self.whole_step(state, step)
+        turns = np.max(np.abs(whole[..., 3:]), axis=(1, 2), initial=0.0)
+        moves = np.max(np.abs(whole[..., :3]), axis=(1, 2), initial=0.0)
+        share = np.minimum(1.0, np.minimum(turning / np.maximum(turns, 1e-300), moving / np.maximum(moves, 1e-300)))
+        return np.asarray(share[:, None] * step)
+
+    def advance(self, state: State, found: Evaluation, step: Array) -> State:
+        """The state after a step (case, unknown), its axial forces predicted from the step."""
+        s = self.structure
+        whole = self.whole_step(state, step)
+        u, psi = state.u + whole[..., :3], turn(state.psi, whole[..., 3:])
+        rides = s.rides
+        for k in reversed(range(len(rides.node))):
+            node, carrier = rides.node[k], rides.carrier[k]
+            if rides.welded[k]:
+                psi[:, node] = psi[:, carrier]
+            u[:, node] = u[:, carrier] + (psi[:, carrier] @ s.ride_arm[k])
+        both = np.concatenate([whole[:, s.elements.i], whole[:, s.elements.j]], axis=-1)
+        axial = beam.predicted_axial(s.elements.rods, found.bent, both)
+        return State(u, psi, found.hanging.tension, axial)
+
+    def heading(self, state: State) -> Array:
+        """(case, spar, 3) unit vectors from foot to head."""
+        s = self.structure
+        _, reached = self.reach(s.head, state)
+        line = s.position[s.head.node] - s.position[s.foot] + reached - state.u[:, s.foot]
+        rigid = np.array([spar.rigid for spar in s.scenario.spar])
+        whole = np.where(rigid[:, None], reached - state.u[:, s.foot], line)
+        return np.asarray(whole / np.sqrt(dot(whole, whole))[..., None])
+
+
+def pattern_of(structure: Structure) -> band.Pattern:
+    """The block pattern of a structure, contributions in the order `Problem._tangent` gives them."""
+    s = structure
+    a, b = s.cables.a.node, s.cables.b.node
+    m, n = s.joints.carrier_node, s.joints.spar_node
+    rows = [s.elements.i, s.elements.j, s.elements.j, a, b, np.maximum(a, b), m, n, np.maximum(m, n)]
+    columns = [s.elements.i, s.elements.j, s.elements.i, a, b, np.minimum(a, b), m, n, np.minimum(m, n)]
+    return band.lay_out(np.concatenate(rows), np.concatenate(columns), s.held, s.rides)
+
+
+def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, Array]:
+    cases, n = holding.shape[:2]
+    out = np.zeros((3, cases, n, 6, 6))
+    out[0, ..., 3:, 3:] = holding[:, :, 0, 0]
+    out[1, ..., 3:, 3:] = holding[:, :, 1, 1]
+    carrier_first = joints.carrier_node >= joints.spar_node
+    out[2, ..., 3:, 3:] = np.where(carrier_first[:, None, None], holding[:, :, 0, 1], holding[:, :, 1, 0])
+    return out[0], out[1], out[2]
+
+
+def _rounds(nodes: Index) -> list[tuple[int, Index]]:
+    """Rows in rounds within which no node stands twice, so that fancy indexing may add."""
+    seen: dict[int, int] = {}
+    rounds: dict[int, list[int]] = {}
+    for row, node in enumerate(nodes.tolist()):
+        seen[node] = seen.get(node, -1) + 1
+        rounds.setdefault(seen[node], []).append(row)
+    return [(k, np.array(rows, dtype=np.int64)) for k, rows in rounds.items()]

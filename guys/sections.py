@@ -1,0 +1,88 @@
+"""What a section of a spar is made of: mass, stiffness and width per length, bare and iced.
+
+Round tube of diameter D and wall w: A = pi (D - w) w, I = pi/64 (D^4 - (D - 2w)^4), J = 2 I; no shear flexibility is taken
+(a tube's is below 1e-3 of its bending at ten diameters).  Ice of thickness t and density rho_i all round adds
+pi (D + t) t rho_i to the mass and 2 t to the width.  Properties given outright are used as they are; their iced mass and width are
+the section's with the ice on.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from guys.scenario import Ice, Section
+from guys.scenario.model import Material
+
+
+@dataclass(frozen=True)
+class Properties:
+    """mass [kg/m], EA [N], EI_x, EI_y, GJ [N m2], GA [N] (inf: none), width [m], iced_mass [kg/m], iced_width [m], expansion [1/K], drag [-]."""
+
+    mass: float
+    EA: float
+    EI_x: float
+    EI_y: float
+    GJ: float
+    GA: float
+    width: float
+    iced_mass: float
+    iced_width: float
+    expansion: float
+    drag: float
+
+
+def ice_on_round(diameter: float, ice: Ice | None) -> float:
+    """Mass of ice per length [kg/m] all round a bar of the diameter [m]; 0 without ice."""
+    return 0.0 if ice is None else math.pi * (diameter + ice.thickness) * ice.thickness * ice.density
+
+
+def properties(section: Section, materials: dict[str, Material], ice: Ice | None) -> Properties:
+    """Properties of one section; NaN stands for a stiffness not given (rigid spars need none)."""
+    material = materials[section.material] if section.material is not None else None
+    expansion = (material.expansion if material is not None else None) or 0.0
+    drag = section.drag if section.drag is not None else 0.0
+    given = _outright(section)
+    if section.tube is not None and material is not None:
+        made = _tube(section.tube.diameter, section.tube.wall, material, ice)
+        given = {key: value if value is not None else made[key] for key, value in given.items()}
+    number = {key: math.nan if value is None else value for key, value in given.items()}
+    if given["GA"] is None:
+        number["GA"] = math.inf
+    for bare, iced in (("mass", "iced_mass"), ("width", "iced_width")):
+        if given[iced] is None:
+            number[iced] = number[bare] if given[bare] is not None else 0.0
+        if given[bare] is None:
+            number[bare] = 0.0
+    return Properties(**number, expansion=expansion, drag=drag)
+
+
+def _outright(section: Section) -> dict[str, float | None]:
+    return {
+        "mass": section.mass,
+        "EA": section.EA,
+        "EI_x": section.EI_x if section.EI_x is not None else section.EI,
+        "EI_y": section.EI_y if section.EI_y is not None else section.EI,
+        "GJ": section.GJ,
+        "GA": section.GA,
+        "width": section.width,
+        "iced_mass": section.iced_mass,
+        "iced_width": section.iced_width,
+    }
+
+
+def _tube(diameter: float, wall: float, material: Material, ice: Ice | None) -> dict[str, float | None]:
+    area = math.pi * (diameter - wall) * wall
+    second = math.pi / 64 * (diameter**4 - (diameter - 2 * wall) ** 4)
+    thickness = 0.0 if ice is None else ice.thickness
+    return {
+        "mass": material.density * area,
+        "EA": material.modulus * area,
+        "EI_x": material.modulus * second,
+        "EI_y": material.modulus * second,
+        "GJ": material.shear_modulus * 2 * second,
+        "GA": None,
+        "width": diameter,
+        "iced_mass": material.density * area + ice_on_round(diameter, ice),
+        "iced_width": diameter + 2 * thickness,
+    }
