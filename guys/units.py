@@ -79,8 +79,9 @@ def _table() -> dict[str, Unit]:
     ratios("weight per volume", _FORCE, cubes)
     ratios("speed", {name: _LENGTH[name] for name in ("m", "km", "ft")}, {name: _TIME[name] for name in ("s", "h")})
     add("speed", mph=5280 * 12 * INCH / 3600, kn=NAUTICAL_MILE / 3600)
-    products("moment", _FORCE, levers)
-    ratios("moment per angle", {f"{a} {b}": x * y for a, x in _FORCE.items() for b, y in levers.items()}, {"rad": Fraction(1), "deg": DEGREE})
+    moments = {f"{a} {b}": x * y for a, x in _FORCE.items() for b, y in levers.items()}
+    add("moment", **moments)
+    ratios("moment per angle", moments, {"rad": Fraction(1), "deg": DEGREE})
     products("bending stiffness", _FORCE, squares)
     found["K"] = Unit(Fraction(1), "temperature")
     found["degC"] = Unit(Fraction(1), "temperature", ZERO_CELSIUS)
@@ -119,7 +120,8 @@ _PLAIN = r"(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{1,3})?"
 _FRACTION = r"\d+/\d+"
 _COUNT = rf"(?:\d+[ ]+)?{_FRACTION}|{_PLAIN}"
 QUANTITY = re.compile(
-    rf"\s*(?P<sign>[+-]?)\s*(?:(?P<feet>{_COUNT})\s*ft\s+(?P<inches>{_COUNT})\s*in|(?P<count>{_COUNT})\s*(?P<unit>1/[A-Za-z]+|[A-Za-z][A-Za-z0-9/ ]*?))\s*",
+    rf"\s*(?P<sign>[+-]?)\s*(?:(?P<feet>{_COUNT})\s*ft\s+(?P<inches>{_COUNT})\s*in"
+    rf"|(?P<count>{_COUNT})\s*(?P<unit>1/[A-Za-z]+|[A-Za-z][A-Za-z0-9/ ]*?))\s*",
     re.ASCII,
 )
 LONGEST = 80
@@ -140,7 +142,7 @@ def parse(text: str, dimension: str) -> float:
         written, found = " ".join(match["unit"].split()), _count(match["count"], text)
     unit = UNITS.get(written)
     if unit is None:
-        raise UnitError(f'"{text}": unknown unit {written!r}{_suggest_unit(written, dimension)}')
+        raise UnitError(f'"{text}": unknown unit "{written}"{_suggest_unit(written, dimension)}')
     if unit.dimension != dimension:
         raise UnitError(_wrong_dimension(text, unit.dimension, dimension, written))
     try:
@@ -157,7 +159,13 @@ def convert(value: float, unit: str) -> float:
 
 def show(value: float, unit: str, digits: int = 4) -> str:
     """An SI value written in the unit named, such as ``18 m``."""
-    return f"{convert(value, unit):.{digits}g} {unit}"
+    return f"{_rounded(convert(value, unit), digits)} {unit}"
+
+
+def _rounded(value: float, digits: int) -> str:
+    """So many figures, written out rather than with an exponent where that stays readable."""
+    text = f"{value:.{digits}g}"
+    return f"{float(text):.0f}" if "e" in text and 1.0 <= abs(value) < 1e9 else text
 
 
 def both(value: float, dimension: str, units: tuple[str, str] | None = None) -> str:
@@ -211,15 +219,15 @@ def _not_understood(text: str, dimension: str) -> str:
 
 def _suggest_unit(written: str, dimension: str) -> str:
     of_dimension = known_units(dimension)
-    near = get_close_matches(written, of_dimension, 1, 0.6) or [name for name in of_dimension if name.lower() == written.lower()]
+    same = [name for name in of_dimension if name.lower() == written.lower()]
+    near = same or get_close_matches(written, of_dimension, 1, 0.6)
     if near:
-        return f"; did you mean {near[0]!r}?"
+        return f'; did you mean "{near[0]}"?'
     return f"; {a(dimension)} is written in {' or '.join(DIMENSIONS[dimension])}"
 
 
 def _wrong_dimension(text: str, got: str, wanted: str, written: str) -> str:
-    hint = f", {example(wanted, '1').replace('1 ', '... ')}"
-    force_of = {"lb": "lbf", "kg": "kgf", "lb/ft": "lbf/ft"}.get(written)
-    if wanted.startswith("force") and force_of:
-        hint = f"; {written} is a mass, {force_of} a force" if wanted == "force" else f"; write {force_of} for a force"
-    return f'"{text}" is {a(got)} where {a(wanted)} belongs{hint}'
+    force = {"lb": "lbf", "kg": "kgf", "t": "kN"}.get(written) if wanted == "force" else None
+    mass = {"lbf": "lb", "kgf": "kg"}.get(written) if wanted == "mass" else None
+    units = [force or mass] if force or mass else list(DIMENSIONS[wanted])
+    return f'"{text}" is {a(got)} where {a(wanted)} belongs; that is written in {" or ".join(map(str, units))}'

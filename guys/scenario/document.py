@@ -1,6 +1,7 @@
 """The scenario file as it is written: one model per table, before references are looked up and shorthands spelled out.
 
-What a table means once read is in `model`; where file and meaning agree (spars, sections, fittings, ice, ...) the very same class serves both.
+What a table means once read is in `model`; where file and meaning agree (spars, sections, fittings, ice) the very same class
+serves both.
 """
 
 from __future__ import annotations

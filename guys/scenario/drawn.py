@@ -11,6 +11,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 
+from guys.scenario.document import AnchorEntry
 from guys.scenario.model import Anchor, AnchorPoint, HeelFoot, Scenario, Spar, SparPoint
 
 Point = tuple[float, float, float]
@@ -40,7 +41,24 @@ def axis_point(spars: Mapping[str, Spar], name: str, at: float) -> Point:
     return along(foot(spars, name), axis(spars[name]), at)
 
 
-def cable_ends(spars: Mapping[str, Spar], anchors: Mapping[str, Anchor], start: SparPoint, end: SparPoint | AnchorPoint) -> tuple[Point, Point]:
+def off_axis(spars: Mapping[str, Spar], name: str, point: Point) -> float:
+    """Distance of a point from the line of a spar's axis."""
+    start, direction = foot(spars, name), axis(spars[name])
+    distance = sum((point[i] - start[i]) * direction[i] for i in range(3))
+    return math.dist(point, along(start, direction, distance))
+
+
+def anchor_place(entry: AnchorEntry, foot: Point) -> Point:
+    """An anchor's place; bearing and radius count from `foot`, that of the first spar, and so does a level left out."""
+    level = foot[2] if entry.level is None else entry.level
+    if entry.bearing is not None and entry.radius is not None:
+        return foot[0] + entry.radius * math.sin(entry.bearing), foot[1] + entry.radius * math.cos(entry.bearing), level
+    return entry.east or 0.0, entry.north or 0.0, level
+
+
+def cable_ends(
+    spars: Mapping[str, Spar], anchors: Mapping[str, Anchor], start: SparPoint, end: SparPoint | AnchorPoint
+) -> tuple[Point, Point]:
     """Both ends of a cable with their lugs: first the `from` end, then the `to` end."""
     top = axis_point(spars, start.spar, start.at)
     if isinstance(end, AnchorPoint):

@@ -1,8 +1,9 @@
 """The scenario as the rest of the program sees it: complete, resolved and in SI.
 
-Attribute names are the keys of the scenario file.  Lengths [m], forces [N], masses [kg], temperatures [K], angles [rad]; x east, y north, z up;
-bearings clockwise from grid north, wind bearings say where the wind comes from.  Everything is frozen; `model_copy(update=...)` gives
-a changed copy.  What the file leaves out and the contract gives a default for is filled in; None means "not given".
+Attribute names are the keys of the scenario file.  Lengths [m], forces [N], masses [kg], temperatures [K], angles [rad]; x east,
+y north, z up; bearings clockwise from grid north, wind bearings say where the wind comes from.  Everything is frozen;
+`model_copy(update=...)` gives a changed copy.  What the file leaves out and the format gives a default for is filled in; None means
+"not given".
 """
 
 from __future__ import annotations
@@ -275,7 +276,10 @@ class Profile(Model):
 
 
 class Wind(Model):
-    """speed [m/s] averaged over `averaging` [s] at `height` [m]; air_density [kg/m3]; directions: bearings it comes from [rad], in [0, 2 pi)."""
+    """The reference wind.
+
+    speed [m/s] averaged over `averaging` [s] at `height` [m]; air_density [kg/m3]; directions: bearings it comes from [rad], in [0, 2 pi)
+    """
 
     speed: float
     averaging: float
@@ -323,7 +327,10 @@ class Analysis(Model):
 
 
 class Scenario(Model):
-    """A whole scenario.  Cables: those of guy levels in file order, then the single ones.  Materials: the built-in ones and the file's own."""
+    """A whole scenario.
+
+    cable : those of guy levels in file order, then the single ones; material : the built-in ones and the file's own
+    """
 
     format: int = 1
     title: str

@@ -15,6 +15,7 @@ from pydantic.json_schema import JsonSchemaValue
 from pydantic_core import CoreSchema, PydanticCustomError, core_schema
 
 from guys import units
+from guys.scenario.keys import clipped
 
 FROM_FILE: Final = {"from_file": True}
 Sign = Literal["any", "positive", "not negative"]
@@ -44,7 +45,7 @@ class Quantity:
             raise fault(f"{shown(value)} is not {units.a(self.dimension)}; write a string such as {units.example(self.dimension, '12')}")
         if (info.context or {}).get("from_file"):
             if not _finite(value):
-                raise fault(f"{shown(value)} is not a finite number; write {units.a(self.dimension)} such as {units.example(self.dimension, '12')}")
+                raise fault(f"{shown(value)} is not a finite number; write one such as {units.example(self.dimension, '12')}")
             raise fault(f"{shown(value)} has no unit; write {units.example(self.dimension, shown(value))}")
         if not _finite(value):
             raise fault(f"{shown(value)} is not a finite number")
@@ -79,13 +80,15 @@ def _finite(value: float) -> bool:
 
 def shown(value: object) -> str:
     """A value of the file as a message shows it, shortened."""
-    text = f'"{value}"' if isinstance(value, str) else str(value).lower() if isinstance(value, bool) else repr(value) if _short(value) else "this"
-    return text if len(text) <= units.LONGEST else text[: units.LONGEST - 3] + "..."
-
-
-def _short(value: object) -> bool:
-    """Whether a value can be shown: not a table or list, and not an integer too long to be written out."""
-    return isinstance(value, float) or (isinstance(value, int) and abs(value) < 10**40)
+    if isinstance(value, bool):
+        return str(value).lower()
+    if isinstance(value, str):
+        return f'"{clipped(value)}"'
+    if isinstance(value, int) and abs(value) >= 10**40:
+        return "this number"
+    if isinstance(value, dict | list):
+        return "a table" if isinstance(value, dict) else "a list"
+    return clipped(str(value))
 
 
 Length = Annotated[float, Quantity("length")]
@@ -111,6 +114,8 @@ Expansion = Annotated[float, Quantity("expansion", "not negative")]
 Ratio = Annotated[float, Field(strict=True, gt=0.0, allow_inf_nan=False)]
 Factor = Annotated[float, Field(strict=True, ge=0.0, allow_inf_nan=False)]
 Flag = Annotated[bool, Field(strict=True)]
-Name = Annotated[str, StringConstraints(strict=True, min_length=1, max_length=80, pattern=r"^[^\s\x00-\x1f\x7f](?:[^\x00-\x1f\x7f]*[^\s\x00-\x1f\x7f])?$")]
-Line = Annotated[str, StringConstraints(strict=True, min_length=1, max_length=200, pattern=r"^[^\x00-\x1f\x7f]*[^\s\x00-\x1f\x7f][^\x00-\x1f\x7f]*$")]
+_CHARACTER = r"[^\x00-\x1f\x7f]"
+_INK = r"[^\s\x00-\x1f\x7f]"
+Name = Annotated[str, StringConstraints(strict=True, min_length=1, max_length=80, pattern=rf"^{_INK}(?:{_CHARACTER}*{_INK})?$")]
+Line = Annotated[str, StringConstraints(strict=True, min_length=1, max_length=200, pattern=rf"^{_CHARACTER}*{_INK}{_CHARACTER}*$")]
 Text = Annotated[str, StringConstraints(strict=True, max_length=20_000)]

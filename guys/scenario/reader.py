@@ -1,63 +1,166 @@
-"""Reads a scenario file: text → tables → faults, or the `Scenario`."""
+"""Reads a scenario file: bytes → text → tables → every fault at once, or the `Scenario`."""
 
 from __future__ import annotations
 
 import hashlib
+import re
 import tomllib
+from collections.abc import Iterable, Iterator
 from os import PathLike, fspath
 from typing import Any
 
-from pydantic import ValidationError
-
 from guys.errors import Fault, ScenarioError
-from guys.scenario import drawn, quantity, resolve
-from guys.scenario.document import ScenarioFile
-from guys.scenario.model import Scenario
+from guys.scenario import drawn, frame, names, plausible, resolve, rigging, unavailable, weather
+from guys.scenario.draft import Draft, draft
+from guys.scenario.keys import Finding, placer, written
+from guys.scenario.model import Scenario, Spar
+from guys.scenario.quantity import shown
+
+LARGEST = 5_000_000
+"""Bytes a scenario file may have."""
+
+FORMAT = 1
+_PLACE = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
 
 
 def read_scenario(path: str | PathLike[str]) -> Scenario:
-    """The scenario of a file.  Raises ScenarioError with every fault found."""
-    with open(path, "rb") as file:
-        content = file.read()
-    return _scenario(content.decode("utf-8"), content, fspath(path))
+    """The scenario of a file.
+
+    path : the TOML file, at most 5 MB, UTF-8
+
+    Raises ScenarioError, which holds every fault found with its line and key.
+    """
+    name = fspath(path)
+    try:
+        with open(path, "rb") as file:
+            content = file.read(LARGEST + 1)
+    except (OSError, ValueError) as error:
+        raise _whole(name, _cannot_open(error)) from None
+    if len(content) > LARGEST:
+        raise _whole(name, f"larger than {LARGEST / 1e6:g} MB; that is not a scenario")
+    try:
+        text = content.decode("utf-8-sig")
+    except UnicodeDecodeError as error:
+        line = content.count(b"\n", 0, error.start) + 1
+        raise _whole(name, "not UTF-8 text; save the file as UTF-8", line) from None
+    return _scenario(text, content, name)
 
 
 def parse_scenario(text: str, path: str | None = None) -> Scenario:
-    """The scenario of a text; `path` names it in messages.  Raises ScenarioError with every fault found."""
-    return _scenario(text, text.encode("utf-8"), path)
+    """The scenario of a text; `path` names it in messages.
+
+    Raises ScenarioError, which holds every fault found with its line and key.
+    """
+    try:
+        content = text.encode("utf-8")
+    except UnicodeEncodeError:
+        raise _whole(path, "not text that UTF-8 can hold") from None
+    if len(content) > LARGEST:
+        raise _whole(path, f"larger than {LARGEST / 1e6:g} MB; that is not a scenario")
+    return _scenario(text.removeprefix("\ufeff"), content, path)
+
+
+def _cannot_open(error: Exception) -> str:
+    if isinstance(error, FileNotFoundError):
+        return "no such file"
+    if isinstance(error, IsADirectoryError):
+        return "a directory; give the scenario file in it"
+    return f"cannot be read: {error.strerror if isinstance(error, OSError) and error.strerror else error}"
+
+
+def _whole(path: str | None, message: str, line: int | None = None, column: int | None = None) -> ScenarioError:
+    return ScenarioError([Fault(path, line, column, "", message)])
 
 
 def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
-    document = tomllib.loads(text)
+    document = _document(text, path)
+    _check_format(document, text, path)
+    document, refused = unavailable.sweep(document)
+    tables, unfit = draft(document)
+    broken = refused + unfit
+    findings = broken + [finding for finding in _rules(tables) if not any(finding.follows_from(each.key) for each in broken)]
+    if findings:
+        raise ScenarioError(_faults(findings, text, path))
+    scenario = _resolved(tables, hashlib.sha256(content).hexdigest(), path)
+    return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario))})
+
+
+def _document(text: str, path: str | None) -> dict[str, Any]:
     try:
-        tables = ScenarioFile.model_validate(document, context=quantity.FROM_FILE)
-    except ValidationError as error:
-        raise ScenarioError(
-            Fault(path, None, None, ".".join(str(part) for part in item["loc"]), item["msg"]) for item in error.errors()
-        ) from None
-    return _resolved(tables, document, hashlib.sha256(content).hexdigest(), path)
+        return tomllib.loads(text)
+    except RecursionError:
+        raise _whole(path, "not readable as TOML: nested too deeply") from None
+    except ValueError as error:
+        place = _PLACE.search(str(error))
+        last = text.count("\n") + 1
+        line, column = (int(place[1]), int(place[2])) if place and place[1] else (last, None)
+        raise _whole(path, f"not readable as TOML: {_toml_reason(_PLACE.sub('', str(error)))}", line, column) from None
 
 
-def _resolved(tables: ScenarioFile, document: dict[str, Any], digest: str, path: str | None) -> Scenario:
-    spars = {entry.name: entry for entry in map(resolve.spar, tables.spar)}
-    foot = drawn.foot(spars, tables.spar[0].name)
-    levels = zip(tables.guy_level, document.get("guy_level", []), strict=True)
-    guys = [guy for entry, raw in levels for guy in resolve.guys_of(entry, raw["at"])]
+def _toml_reason(reason: str) -> str:
+    if reason.startswith("Cannot overwrite a value"):
+        return "this key is given twice"
+    if reason.startswith("Cannot declare"):
+        return "this table is given twice; write [[...]] with two brackets where there may be several"
+    if reason.startswith("Invalid value"):
+        return "invalid value; text and quantities stand in quotes"
+    return reason[:1].lower() + reason[1:]
+
+
+def _check_format(document: dict[str, Any], text: str, path: str | None) -> None:
+    """A newer format is refused before anything else is judged."""
+    found = document.get("format", FORMAT)
+    if isinstance(found, bool) or not isinstance(found, int) or found < 1:
+        message = f"{shown(found)} is not a version of the format; write format = {FORMAT}"
+    elif found > FORMAT:
+        message = f"{shown(found)} is newer than this version reads; it reads format {FORMAT}"
+    else:
+        return
+    raise ScenarioError(_faults([Finding(("format",), message)], text, path))
+
+
+def _rules(tables: Draft) -> Iterator[Finding]:
+    yield from names.findings(tables)
+    yield from frame.findings(tables)
+    yield from rigging.findings(tables)
+    yield from weather.findings(tables)
+
+
+def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
+    place = placer(text)
+    faults = [Fault(path, *place(finding.key), written(finding.key), finding.message) for finding in dict.fromkeys(findings)]
+    return sorted(faults, key=lambda fault: (fault.line or 0, fault.column or 0))
+
+
+def _present(entries: Iterable[Any]) -> list[Any]:
+    """The entries, none of which is missing once a file has no faults."""
+    return [entry for entry in entries if entry is not None]
+
+
+def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
+    spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
+    foot = drawn.foot(spars, next(iter(spars)))
+    heights = [level["at"] for level in tables.document.get("guy_level", [])]
+    guys = [guy for entry, at in zip(_present(tables.guy_level), heights, strict=True) for guy in resolve.guys_of(entry, at)]
+    setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
+    assert setting is not None
+    assert allowables is not None
+    assert analysis is not None
     return Scenario(
         format=tables.format,
         title=tables.title,
         note=tables.note,
         spar=tuple(spars.values()),
-        anchor=tuple(resolve.anchor(entry, foot) for entry in tables.anchor),
-        cable=(*guys, *map(resolve.cable, tables.cable)),
-        rope={name: resolve.rope(entry) for name, entry in tables.rope.items()},
-        material={**resolve.built_in_materials(), **tables.material},
-        setting=tables.setting,
+        anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
+        cable=(*guys, *map(resolve.cable, _present(tables.cable))),
+        rope={name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None},
+        material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
+        setting=setting,
         wind=None if tables.wind is None else resolve.wind(tables.wind),
         ice=tables.ice,
-        case=resolve.cases(tables.case, tables.setting),
-        allowables=resolve.allowables(tables.allowables),
-        analysis=tables.analysis,
+        case=resolve.cases(_present(tables.case), setting),
+        allowables=resolve.allowables(allowables),
+        analysis=analysis,
         sha256=digest,
         path=path,
     )

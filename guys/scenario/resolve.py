@@ -51,13 +51,8 @@ def spar(entry: Spar) -> Spar:
 
 
 def anchor(entry: AnchorEntry, foot: drawn.Point) -> Anchor:
-    """The anchor's place, `foot` being that of the first spar."""
-    if entry.bearing is not None and entry.radius is not None:
-        east = foot[0] + entry.radius * math.sin(entry.bearing)
-        north = foot[1] + entry.radius * math.cos(entry.bearing)
-    else:
-        east, north = entry.east or 0.0, entry.north or 0.0
-    level = foot[2] if entry.level is None else entry.level
+    """The anchor at its place, `foot` being that of the first spar."""
+    east, north, level = drawn.anchor_place(entry, foot)
     return Anchor(name=entry.name, east=east, north=north, level=level, give=entry.give)
 
 

@@ -1,0 +1,134 @@
+"""Rules on names: unique within their kind, and every reference leads somewhere.
+
+They work on the tables as read, so that a fault elsewhere in a table does not hide a wrong name in it.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator, Mapping
+from typing import Any
+
+from guys.scenario.draft import Draft
+from guys.scenario.keys import Finding, Key, clipped, items, nearest
+from guys.scenario.resolve import built_in_materials
+
+SETTING = "setting"
+
+
+def findings(draft: Draft) -> Iterator[Finding]:
+    """Every name given twice and every reference that leads nowhere."""
+    document = draft.document
+    spars, anchors = _names(document, "spar"), _names(document, "anchor")
+    cables = dict(_cable_names(document))
+    yield from _twice("spar", spars)
+    yield from _twice("anchor", anchors)
+    yield from _twice("case", _names(document, "case"))
+    yield from _twice("fitting", _fitting_names(document))
+    yield from _twice("cable", cables, "; give the guy level a name")
+    yield from _reserved(document)
+    yield from _feet(document, set(spars.values()))
+    yield from _ends(document, spars, anchors)
+    yield from _ropes(document)
+    yield from _materials(document)
+    yield from _taken_away(document, cables)
+
+
+def _text(table: Mapping[str, Any], key: str) -> str | None:
+    value = table.get(key)
+    return value if isinstance(value, str) else None
+
+
+def _names(document: Mapping[str, Any], kind: str) -> dict[Key, str]:
+    return {(kind, index, "name"): name for index, item in items(document, kind) if (name := _text(item, "name")) is not None}
+
+
+def _fitting_names(document: Mapping[str, Any]) -> dict[Key, str]:
+    return {("spar", index, *key): name for index, spar in items(document, "spar") for key, name in _names(spar, "fitting").items()}
+
+
+def _cable_names(document: Mapping[str, Any]) -> Iterator[tuple[Key, str]]:
+    for index, level in items(document, "guy_level"):
+        name, at, anchors = _text(level, "name"), _text(level, "at"), level.get("to")
+        prefix = name or (" ".join(at.split()) if at else None)
+        seen: set[str] = set()
+        for place, anchor in enumerate(anchors if isinstance(anchors, list) else ()):
+            if prefix and isinstance(anchor, str) and anchor not in seen:
+                seen.add(anchor)
+                yield ("guy_level", index, "to", place), f"{prefix} {anchor}"
+    yield from _names(document, "cable").items()
+
+
+def _twice(kind: str, names: Mapping[Key, str], remedy: str = "") -> Iterator[Finding]:
+    first: set[str] = set()
+    for key, name in names.items():
+        if name in first:
+            hint = remedy if key[0] == "guy_level" else ""
+            yield Finding(key, f'another {kind} is named "{clipped(name)}"; names are unique within their kind{hint}')
+        first.add(name)
+
+
+def _reserved(document: Mapping[str, Any]) -> Iterator[Finding]:
+    for key, name in _names(document, "case").items():
+        if name == SETTING:
+            yield Finding(key, f'"{SETTING}" is the name of the still-air case; choose another')
+
+
+def _unknown(key: Key, kind: str, name: object, known: Iterable[str], remedy: str = "") -> Iterator[Finding]:
+    choices = tuple(dict.fromkeys(known))
+    if isinstance(name, str) and name not in choices:
+        hint = nearest(name, choices) if choices else f"; the file has no {kind}"
+        yield Finding(key, f'no {kind} is named "{clipped(name)}"{hint if "did you mean" in hint or not remedy else remedy}')
+
+
+def _feet(document: Mapping[str, Any], spars: set[str]) -> Iterator[Finding]:
+    for index, spar in items(document, "spar"):
+        foot = spar.get("foot")
+        if isinstance(foot, dict):
+            yield from _unknown(("spar", index, "foot", "spar"), "spar", foot.get("spar"), sorted(spars))
+
+
+def _ends(document: Mapping[str, Any], spars: Mapping[Key, str], anchors: Mapping[Key, str]) -> Iterator[Finding]:
+    for index, level in items(document, "guy_level"):
+        yield from _unknown(("guy_level", index, "spar"), "spar", level.get("spar"), spars.values())
+        to = level.get("to")
+        seen: set[str] = set()
+        for place, name in enumerate(to if isinstance(to, list) else ()):
+            key = ("guy_level", index, "to", place)
+            yield from _unknown(key, "anchor", name, anchors.values())
+            if isinstance(name, str) and name in seen:
+                yield Finding(key, f'anchor "{clipped(name)}" is named twice')
+            seen.add(name if isinstance(name, str) else "")
+    for index, cable in items(document, "cable"):
+        for end in ("from", "to"):
+            table = cable.get(end)
+            if isinstance(table, dict):
+                yield from _unknown(("cable", index, end, "spar"), "spar", table.get("spar"), spars.values())
+                if end == "to":
+                    yield from _unknown(("cable", index, end, "anchor"), "anchor", table.get("anchor"), anchors.values())
+
+
+def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
+    ropes = document.get("rope")
+    known = list(ropes) if isinstance(ropes, dict) else []
+    for kind in ("guy_level", "cable"):
+        for index, item in items(document, kind):
+            remedy = "; catalogue ropes are not available in this version; give [rope.NAME]"
+            yield from _unknown((kind, index, "rope"), "rope", item.get("rope"), known, remedy)
+
+
+def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:
+    own = document.get("material")
+    known = [*built_in_materials(), *(own if isinstance(own, dict) else ())]
+    for index, spar in items(document, "spar"):
+        for place, section in items(spar, "section"):
+            yield from _unknown(("spar", index, "section", place, "material"), "material", section.get("material"), known)
+
+
+def _taken_away(document: Mapping[str, Any], cables: Mapping[Key, str]) -> Iterator[Finding]:
+    for index, case in items(document, "case"):
+        without = case.get("without")
+        for place, name in enumerate(without if isinstance(without, list) else ()):
+            key = ("case", index, "without", place)
+            yield from _unknown(key, "cable", name, cables.values())
+            if isinstance(name, str) and isinstance(without, list) and name in without[:place]:
+                yield Finding(key, f'cable "{clipped(name)}" is named twice')

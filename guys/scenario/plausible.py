@@ -1,0 +1,223 @@
+"""Values that look like a slip of the pen or of the unit: not wrong, so not refused, but never passed over in silence.
+
+Each bound is common practice, drawn wide: outside it the value is either a slip or so unusual that the user will not mind being asked.
+Every warning echoes the value in both unit systems, which is where a slip shows.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from guys import units
+from guys.constants import ZERO_CELSIUS
+from guys.scenario import drawn, resolve
+from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Scenario, Section, Spar
+
+
+@dataclass(frozen=True)
+class Bounds:
+    """least, most : SI; unusual outside.  units : the two the value is echoed in, the dimension's own where None."""
+
+    dimension: str
+    least: float
+    most: float
+    units: tuple[str, str] | None = None
+
+    def warn(self, what: str, value: float | None) -> Iterator[str]:
+        """A warning where the value lies outside."""
+        if value is not None and not self.least <= value <= self.most:
+            side = "less" if value < self.least else "more"
+            limit = self.least if value < self.least else self.most
+            echo, than = units.both(value, self.dimension, self.units), units.both(limit, self.dimension, self.units)
+            yield f"{what}: {echo} is {side} than {than}; is the unit right?"
+
+
+_ZERO = float(ZERO_CELSIUS)
+SPAR_LENGTH = Bounds("length", 0.5, 400.0)
+SPAR_MASS = Bounds("mass per length", 0.2, 3000.0)
+TUBE_DIAMETER = Bounds("length", 0.01, 3.0, ("mm", "in"))
+TUBE_WALL = Bounds("length", 0.5e-3, 0.1, ("mm", "in"))
+WIDTH = Bounds("length", 0.01, 5.0, ("mm", "in"))
+ROPE_DIAMETER = Bounds("length", 0.001, 0.15, ("mm", "in"))
+ROPE_DENSITY = Bounds("density", 300.0, 9000.0)
+ROPE_MODULUS = Bounds("pressure", 0.2e9, 220e9, ("GPa", "ksi"))
+ROPE_STRESS = Bounds("pressure", 30e6, 4e9, ("GPa", "ksi"))
+MATERIAL_DENSITY = Bounds("density", 200.0, 9000.0)
+MATERIAL_MODULUS = Bounds("pressure", 1e9, 450e9, ("GPa", "ksi"))
+MATERIAL_YIELD = Bounds("pressure", 5e6, 3e9, ("MPa", "ksi"))
+EXPANSION = Bounds("expansion", 0.0, 1e-4)
+WIND_SPEED = Bounds("speed", 3.0, 90.0)
+WIND_HEIGHT = Bounds("length", 1.0, 600.0)
+AVERAGING = Bounds("time", 0.5, 3600.0)
+AIR = Bounds("density", 0.6, 1.7)
+ICE_THICKNESS = Bounds("length", 0.5e-3, 0.15, ("mm", "in"))
+ICE_DENSITY = Bounds("density", 100.0, 920.0)
+TEMPERATURE = Bounds("temperature", _ZERO - 60.0, _ZERO + 60.0)
+FITTING_AREA = Bounds("area", 0.0, 150.0)
+FITTING_MASS = Bounds("mass", 0.0, 20_000.0)
+OFFSET = Bounds("length", 0.0, 10.0)
+ARM = Bounds("length", 0.0, 5.0)
+GREATEST_DRAG = 3.0
+GREATEST_FACTOR = 3.0
+STEEP, SHALLOW = math.radians(75.0), math.radians(10.0)
+LENGTH_TO_CHORD = (0.97, 1.10)
+
+
+def warnings(scenario: Scenario) -> Iterator[str]:
+    """Everything unusual in a scenario, in the order of its tables."""
+    for spar in scenario.spar:
+        yield from _spar(spar, scenario.material)
+    yield from _anchors(scenario)
+    yield from _cables(scenario)
+    yield from _ropes(scenario)
+    for name, material in scenario.material.items():
+        if name not in resolve.built_in_materials() or material != resolve.built_in_materials()[name]:
+            yield from _material(f"material {name}", material)
+    yield from _weather(scenario)
+    yield from _cold_sections(scenario)
+    for name in ("cable", "anchor", "sliding"):
+        if getattr(scenario.allowables, name) < 1.0:
+            yield f"allowables.{name}: {getattr(scenario.allowables, name):g} is less than 1, which lets it fail and calls it within"
+
+
+def section_mass(section: Section, materials: dict[str, Material]) -> float | None:
+    """Mass per length of a section [kg/m], from its tube where it has one."""
+    if section.tube is None:
+        return section.mass
+    material = materials.get(section.material or "")
+    inner = section.tube.diameter - 2.0 * section.tube.wall
+    return None if material is None else math.pi / 4 * (section.tube.diameter**2 - inner**2) * material.density
+
+
+def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
+    what = f'spar "{spar.name}"'
+    yield from SPAR_LENGTH.warn(f"{what}, length", spar.length)
+    masses = [section_mass(section, materials) for section in spar.section]
+    weight = math.fsum((mass or 0.0) * section.length for mass, section in zip(masses, spar.section, strict=True))
+    idealised = spar.rigid and weight == 0.0
+    if not idealised:
+        total = f", {units.both(weight, 'mass')} over {units.both(spar.length, 'length')}"
+        yield from SPAR_MASS.warn(f"{what}{total}, mass per length", weight / spar.length)
+    if not isinstance(spar.foot, HeelFoot) and math.cos(spar.lean) < math.cos(STEEP):
+        yield f"{what}, lean: {units.show(spar.lean, 'deg')} from the vertical is nearly level, or head down"
+    for place, section in enumerate(spar.section):
+        here = f"{what}, section {place + 1}"
+        if section.tube is not None:
+            yield from TUBE_DIAMETER.warn(f"{here}, diameter", section.tube.diameter)
+            yield from TUBE_WALL.warn(f"{here}, wall", section.tube.wall)
+        yield from WIDTH.warn(f"{here}, width", section.width)
+        yield from _drag(here, section.drag)
+    for fitting in spar.fitting:
+        here = f'fitting "{fitting.name}"'
+        yield from FITTING_AREA.warn(f"{here}, area", fitting.area)
+        yield from FITTING_MASS.warn(f"{here}, mass", fitting.mass)
+        yield from OFFSET.warn(f"{here}, offset", math.hypot(fitting.offset.east, fitting.offset.north, fitting.offset.up))
+        yield from _drag(here, fitting.drag)
+
+
+def _drag(what: str, drag: float | None) -> Iterator[str]:
+    if drag is not None and drag > GREATEST_DRAG:
+        yield f"{what}, drag: {drag:g} is more than {GREATEST_DRAG:g}"
+
+
+def _anchors(scenario: Scenario) -> Iterator[str]:
+    used = {cable.to.anchor for cable in scenario.cable if isinstance(cable.to, AnchorPoint)}
+    places: dict[tuple[float, float, float], str] = {}
+    for anchor in scenario.anchor:
+        if anchor.name not in used:
+            yield f'anchor "{anchor.name}": no cable runs to it'
+        place = (round(anchor.east, 3), round(anchor.north, 3), round(anchor.level, 3))
+        if place in places:
+            yield f'anchor "{anchor.name}": stands where "{places[place]}" stands'
+        places.setdefault(place, anchor.name)
+
+
+def _cables(scenario: Scenario) -> Iterator[str]:
+    seen: dict[tuple[object, ...], str] = {}
+    for cable, (top, bottom) in zip(scenario.cable, drawn.scenario_cable_ends(scenario), strict=True):
+        what = f'cable "{cable.name}"'
+        chord = math.dist(top, bottom)
+        same = (cable.from_, cable.to)
+        if same in seen:
+            yield f'{what}: runs between the same two points as "{seen[same]}"'
+        seen.setdefault(same, cable.name)
+        yield from ARM.warn(f"{what}, arm", cable.from_.arm)
+        yield from _pull(what, cable, scenario)
+        if cable.length is not None and not LENGTH_TO_CHORD[0] <= cable.length / chord <= LENGTH_TO_CHORD[1]:
+            yield f"{what}, length: {units.both(cable.length, 'length')} for a chord of {units.both(chord, 'length')}"
+        if isinstance(cable.to, AnchorPoint):
+            angle = math.asin((top[2] - bottom[2]) / chord)
+            if not SHALLOW <= angle <= STEEP:
+                yield f"{what}: {units.show(angle, 'deg', 3)} from the ground is {'steep' if angle > STEEP else 'flat'} for a guy or stay"
+
+
+def _pull(what: str, cable: Cable, scenario: Scenario) -> Iterator[str]:
+    strength = scenario.rope[cable.rope].strength
+    if cable.tension is not None and strength is not None and cable.tension > 0.4 * strength:
+        share = f"{100 * cable.tension / strength:.0f} % of the strength of rope \"{cable.rope}\""
+        yield f"{what}, tension: {units.both(cable.tension, 'force')} is {share}"
+
+
+def _ropes(scenario: Scenario) -> Iterator[str]:
+    used = {cable.rope for cable in scenario.cable}
+    for name, rope in scenario.rope.items():
+        what = f'rope "{name}"'
+        area = math.pi / 4 * rope.diameter**2
+        if name not in used:
+            yield f"{what}: no cable is made of it"
+        yield from ROPE_DIAMETER.warn(f"{what}, diameter", rope.diameter)
+        if rope.mass > 0.0:
+            yield from ROPE_DENSITY.warn(f"{what}, mass over the full circle", rope.mass / area)
+        yield from ROPE_MODULUS.warn(f"{what}, stiffness over the full circle", rope.stiffness / area)
+        yield from ROPE_STRESS.warn(f"{what}, strength over the full circle", None if rope.strength is None else rope.strength / area)
+        yield from EXPANSION.warn(f"{what}, expansion", rope.expansion)
+        yield from _drag(what, rope.drag)
+
+
+def _material(what: str, material: Material) -> Iterator[str]:
+    yield from MATERIAL_DENSITY.warn(f"{what}, density", material.density)
+    yield from MATERIAL_MODULUS.warn(f"{what}, modulus", material.modulus)
+    yield from MATERIAL_YIELD.warn(f"{what}, yield", material.yield_)
+    yield from EXPANSION.warn(f"{what}, expansion", material.expansion)
+    if not 0.02 * material.modulus <= material.shear_modulus <= 0.5 * material.modulus:
+        yield f"{what}, shear_modulus: {units.both(material.shear_modulus, 'pressure')} is out of proportion to the modulus"
+
+
+def _weather(scenario: Scenario) -> Iterator[str]:
+    if scenario.wind is not None:
+        yield from WIND_SPEED.warn("wind, speed", scenario.wind.speed)
+        yield from AVERAGING.warn("wind, averaging", scenario.wind.averaging)
+        yield from WIND_HEIGHT.warn("wind, height", scenario.wind.height)
+        yield from AIR.warn("wind, air_density", scenario.wind.air_density)
+        if scenario.wind.profile.exponent > 0.5:
+            yield f"wind, power: {scenario.wind.profile.exponent:g} is more than 0.5"
+    if scenario.ice is not None:
+        yield from ICE_THICKNESS.warn("ice, thickness", scenario.ice.thickness)
+        yield from ICE_DENSITY.warn("ice, density", scenario.ice.density)
+    yield from TEMPERATURE.warn("setting, temperature", scenario.setting.temperature)
+    for case in scenario.case:
+        what = f'case "{case.name}"'
+        if case.temperature != scenario.setting.temperature:
+            yield from TEMPERATURE.warn(f"{what}, temperature", case.temperature)
+        for name in ("dead", "wind", "ice"):
+            if getattr(case, name) > GREATEST_FACTOR:
+                yield f"{what}, {name}: a factor of {getattr(case, name):g} is more than {GREATEST_FACTOR:g}"
+        if case.dead == 0.0:
+            yield f"{what}, dead: 0 takes all weights away"
+
+
+def _cold_sections(scenario: Scenario) -> Iterator[str]:
+    """Sections whose change of length with temperature is not known although a case asks for it."""
+    if all(case.temperature == scenario.setting.temperature for case in scenario.case):
+        return
+    for spar in scenario.spar:
+        places = [
+            str(place + 1)
+            for place, section in enumerate(spar.section)
+            if section.material is None or scenario.material[section.material].expansion is None
+        ]
+        if places:
+            text = "no expansion is known; its change of length with temperature is left out"
+            yield f'spar "{spar.name}", section {", ".join(places)}: {text}'

@@ -1,0 +1,123 @@
+"""Rules on what wind, ice and temperature need: what a load case asks for must be there, since bare or calm would be unsafe."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+
+from guys.scenario import resolve
+from guys.scenario.document import CaseEntry
+from guys.scenario.draft import Draft
+from guys.scenario.keys import Finding, Key, clipped
+from guys.scenario.model import Fitting, Section
+
+NO_DEFAULT = "default drag from the shape is not available in this version"
+TROPOSPHERE = (-1000.0, 11_000.0)
+"""Altitudes [m] for which the standard atmosphere is worked out."""
+
+
+def findings(draft: Draft) -> Iterator[Finding]:
+    """Every lack of wind, ice and temperature."""
+    windy = _first(draft, "wind")
+    icy = _first(draft, "ice")
+    if windy and "wind" not in draft.document:
+        yield Finding(("wind",), f'missing; case "{clipped(windy.name)}" has wind = {windy.wind:g}; give [wind], or wind = 0 in every case')
+    if icy and "ice" not in draft.document:
+        yield Finding(("ice",), f'missing; case "{clipped(icy.name)}" has ice = {icy.ice:g}; give [ice]')
+    yield from _air(draft)
+    yield from _directions(draft)
+    for index, spar in enumerate(draft.spar):
+        for place, section in enumerate(spar.section if spar else ()):
+            yield from _section(section, ("spar", index, "section", place), windy, icy)
+        for place, fitting in enumerate(spar.fitting if spar else ()):
+            yield from _fitting(fitting, ("spar", index, "fitting", place), windy, icy)
+    yield from _ropes(draft, windy)
+
+
+def used_ropes(draft: Draft) -> set[str]:
+    """The ropes some cable is made of."""
+    return {entry.rope for entry in (*draft.guy_level, *draft.cable) if entry is not None}
+
+
+def warmed(draft: Draft) -> CaseEntry | None:
+    """The first case whose temperature is not that of the setting."""
+    if draft.setting is None:
+        return None
+    at = draft.setting.temperature
+    return next((case for case in draft.cases() if case.temperature is not None and case.temperature != at), None)
+
+
+def _first(draft: Draft, factor: str) -> CaseEntry | None:
+    return next((case for case in draft.cases() if getattr(case, factor) > 0.0), None)
+
+
+def _air(draft: Draft) -> Iterator[Finding]:
+    wind = draft.wind
+    if wind is None:
+        return
+    if wind.air_density is not None:
+        for name in ("altitude", "temperature"):
+            if getattr(wind, name) is not None:
+                yield Finding(("wind", name), f"air_density is given; leave {name} out, or give altitude and temperature alone")
+    elif wind.temperature is not None and wind.altitude is None:
+        yield Finding(("wind", "altitude"), "missing; temperature is given for the air density and needs it", (("wind", "air_density"),))
+    if wind.altitude is not None and not TROPOSPHERE[0] <= wind.altitude <= TROPOSPHERE[1]:
+        yield Finding(("wind", "altitude"), "out of range: the standard atmosphere is known here from -1 km to 11 km")
+    if wind.temperature is not None and wind.temperature < 100.0:
+        yield Finding(("wind", "temperature"), "too cold for air")
+
+
+def _directions(draft: Draft) -> Iterator[Finding]:
+    listed = draft.wind.directions if draft.wind else None
+    seen: list[float] = []
+    for place, bearing in enumerate(resolve.directions(listed) if isinstance(listed, list) else ()):
+        if any(abs(math.remainder(bearing - other, math.tau)) < 1e-9 for other in seen):
+            yield Finding(("wind", "directions", place), "this direction is in the list already")
+        seen.append(bearing)
+
+
+def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
+    outright = section.tube is None
+    tube = ((*key, "tube"),)
+    if windy and section.drag is None:
+        yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}")
+    if windy and outright and section.width is None:
+        yield Finding((*key, "width"), f'missing; {_has(windy, "wind")}; give width, such as width = "100 mm"', tube)
+    for name in ("iced_mass", "iced_width"):
+        if icy and outright and getattr(section, name) is None:
+            yield Finding((*key, name), f"missing; {_has(icy, 'ice')}, and a section given outright needs it", tube)
+
+
+def _fitting(fitting: Fitting, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
+    if windy and fitting.area is not None and fitting.drag is None:
+        yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}")
+    only_load = fitting.area is None and fitting.mass == 0.0
+    if icy and not only_load:
+        wanted = ("iced_mass",) if fitting.area is None else ("iced_mass", "iced_area")
+        causes = ((*key, "area"), (*key, "mass"))
+        yield from (
+            Finding((*key, name), f"missing; {_has(icy, 'ice')}", causes) for name in wanted if getattr(fitting, name) is None
+        )
+
+
+def _has(case: CaseEntry, what: str) -> str:
+    return f'case "{clipped(case.name)}" has {what}'
+
+
+def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
+    used = used_ropes(draft)
+    catenary = draft.analysis is not None and draft.analysis.cable == "catenary"
+    warm = warmed(draft)
+    for name, rope in draft.rope.items():
+        key: Key = ("rope", name)
+        if rope is None:
+            continue
+        given = [each for each in ("stiffness", "modulus", "metal_area") if getattr(rope, each) is not None]
+        if given not in (["stiffness"], ["modulus", "metal_area"]):
+            got = f"has {' and '.join(given)}" if given else "has no stiffness"
+            yield Finding(key, f"{got}; give stiffness, or modulus and metal_area")
+        if name in used and windy and catenary and rope.drag is None:
+            yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}", (("analysis",),))
+        if name in used and warm and rope.expansion is None:
+            text = f"missing; case \"{clipped(warm.name)}\" is not at the setting's temperature; give expansion, such as \"12e-6 1/K\""
+            yield Finding((*key, "expansion"), text, (("setting",), ("case",)))
