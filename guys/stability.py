@@ -1,0 +1,238 @@
+"""What kind of equilibrium a state is, and what becomes of a case that has none.
+
+Converged is not stable.  With the tangent K and the scale M of `Problem.mass`, three banded factorisations tell
+
+    K - zM positive definite           stable       (every eigenvalue of K x = lam M x above z)
+    only K + zM positive definite      neutral      (a motion that costs nothing, |lam| <= z)
+    neither                            unstable     (some lam < -z; their number is that of the unstable modes)
+
+with z = `ZERO`.  An unstable state is pushed along its lowest mode, both ways, and solved again: where it comes to rest in a stable
+state nearby, the case branches and stands there.
+
+No equilibrium is not "solver failed": gravity has no floor in the equations, and a mast that falls converges hanging upside down.
+So a case is given up when a foot-head line has turned over `OVERTURNED` from the drawing, and any state more than `FAR` from the
+setting, or not found at all, must be reached along a path: from the setting toward the case, all departures together (loads,
+ice, temperature; the end forces of a cable taken away fade out), in steps that halve where the next state is not a stable one
+close to the last.  A path that cannot be followed ends at the share of the load where the structure falls.
+
+Source: Thompson & Hunt, A General Theory of Elastic Stability (1973), for the meaning of the tangent's definiteness and of branching.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.linalg import eig_banded
+
+from guys import band, solver
+from guys.equilibrium import Index, Problem, State
+from guys.loads import LoadCases
+from guys.rotation import Array, dot
+from guys.structure import Structure
+
+ZERO = 1e-7
+"""Least eigenvalue relative to weight/height that still counts as zero: rounding of the stiffest element gives a tenth of it."""
+OVERTURNED = math.radians(60)
+FAR = math.radians(10)
+NEXT = math.radians(12)
+"""Greatest turn of a foot-head line between two neighbouring states of a path."""
+PUSHES = (0.003, 0.02, 0.08)
+"""Amplitudes of a push along the lowest mode, of the height, tried in turn."""
+FIRST_STEP = 0.25
+LEAST_STEP = 1 / 512
+"""Steps of a path, of the whole load; below the least the path has ended."""
+STABLE, NEUTRAL, UNSTABLE, NONE, FAILED = range(5)
+"""Codes of a case; FAILED: the solver did not converge although the path is stable up to the full load."""
+
+
+@dataclass(frozen=True)
+class Mode:
+    """Lowest modes of one state: eigenvalues (mode,) relative to M, ascending, and shapes (mode, node, 6), greatest move one."""
+
+    value: Array
+    shape: Array
+
+
+@dataclass(frozen=True)
+class Judged:
+    """state; code (case,); error, rounds (case,); lost_at (case,) share of the load at which a path ended (NaN: not followed)
+    before : the last state on that path; branch : stable mirror states found {case: State of one case}; branched (case,)."""
+
+    state: State
+    code: Index
+    error: Array
+    rounds: Index
+    lost_at: Array
+    branched: NDArray[np.bool_]
+    mirror: dict[int, State]
+
+
+def classify(problem: Problem, state: State) -> Index:
+    """STABLE, NEUTRAL or UNSTABLE for every case, by the tangent of the present position."""
+    k_band = tangent(problem, state)
+    code = np.full(problem.cases, STABLE)
+    rest = np.arange(problem.cases)
+    for sign, worse in ((-1.0, NEUTRAL), (1.0, UNSTABLE)):
+        shifted = k_band[rest]
+        shifted[..., 0] += sign * ZERO * problem.mass
+        rest = rest[~band.factor(shifted)[1]]
+        code[rest] = worse
+        if len(rest) == 0:
+            break
+    return code
+
+
+def tangent(problem: Problem, state: State) -> Array:
+    """The tangent band with the axial forces of the present position."""
+    found = problem.evaluate(replace(state, axial=np.full_like(state.axial, np.nan)))
+    assert found.band is not None
+    return found.band
+
+
+def modes(problem: Problem, state: State, count: int = 4) -> Mode:
+    """The lowest modes of a problem of one case."""
+    k_band = tangent(problem, state)[0]
+    n, width = k_band.shape
+    root = np.sqrt(problem.mass)
+    scaled = np.zeros((width, n))
+    for d in range(min(width, n)):
+        scaled[d, : n - d] = k_band[: n - d, d] / (root[: n - d] * root[d:])
+    value, vector = eig_banded(scaled, lower=True, select="i", select_range=(0, min(count, n) - 1))
+    shapes = np.array([problem.whole_step(state, (v / root)[None])[0] for v in vector.T])
+    size = np.max(np.abs(np.concatenate([shapes[..., :3], shapes[..., 3:] * problem.structure.height], axis=-1)), axis=(1, 2))
+    return Mode(np.asarray(value), shapes / size[:, None, None])
+
+
+def turned_over(problem: Problem, state: State) -> NDArray[np.bool_]:
+    """Cases in which some foot-head line has turned past OVERTURNED from the drawing."""
+    drawn = problem.structure.axes[:, 2]
+    return np.asarray((dot(problem.heading(state), drawn) < math.cos(OVERTURNED)).any(axis=1))
+
+
+def turn_between(problem: Problem, a: State, b: State) -> Array:
+    """(case,) greatest angle [rad] between the foot-head lines of two states."""
+    p, q = problem.heading(a), problem.heading(b)
+    angle = 2 * np.arcsin(np.minimum(1.0, 0.5 * np.linalg.norm(p - q, axis=-1)))
+    return np.asarray(angle.max(axis=1))
+
+
+def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, start: State | None = None) -> Judged:
+    """Solve every case and say what kind of equilibrium it has.
+
+    setting : the setting state (one case), `loads_at_setting` its loads; start : where to begin (default: the setting state)
+    """
+    first = problem.repeat(setting)
+    judged = settle(problem, first if start is None else start)
+    away = turn_between(problem, judged.state, first)
+    doubtful = np.flatnonzero((judged.code >= UNSTABLE) | (away > FAR))
+    if len(doubtful):
+        _follow(problem, setting, loads_at_setting, judged, doubtful)
+    return judged
+
+
+def settle(problem: Problem, start: State) -> Judged:
+    """Solve from `start`, classify, and push what is unstable; cases not found are NONE."""
+    out = solver.solve(problem, start, turned_over)
+    code = np.full(problem.cases, NONE)
+    found = np.flatnonzero(out.converged & ~out.stopped)
+    if len(found):
+        code[found] = classify(problem.take(found), out.state.take(found))
+    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), np.zeros(problem.cases, bool), {})
+    for case in np.flatnonzero(code == UNSTABLE):
+        _push(problem, judged, int(case))
+    return judged
+
+
+def _push(problem: Problem, judged: Judged, case: int) -> None:
+    """Push an unstable case along its lowest mode both ways; write the stable state it comes to, if near, and its mirror."""
+    one, here = problem.take(np.array([case])), judged.state.take(np.array([case]))
+    shape = modes(one, here, 1).shape[0]
+    pair = problem.take(np.array([case, case]))
+    both = pair.repeat(here)
+    for amplitude in PUSHES:
+        sway = np.array([amplitude, -amplitude])[:, None, None] * problem.structure.height * shape
+        step = sway[:, problem.pattern.free[:, 0], problem.pattern.free[:, 1]]
+        out = solver.solve(pair, pair.advance(both, pair.evaluate(both, tangent=False), step), turned_over)
+        good = out.converged & ~out.stopped
+        good[good] = classify(pair.take(np.flatnonzero(good)), out.state.take(np.flatnonzero(good))) <= NEUTRAL
+        good &= turn_between(pair, out.state, both) < 2 * FAR
+        if good.any():
+            chosen = int(np.flatnonzero(good)[0])
+            judged.state.put(np.array([case]), out.state.take(np.array([chosen])))
+            judged.code[case] = STABLE
+            judged.error[case], judged.branched[case] = out.error[chosen], True
+            judged.rounds[case] += out.rounds[chosen]
+            if good.all():
+                judged.mirror[case] = out.state.take(np.array([1]))
+            return
+
+
+@dataclass
+class _Path:
+    """Where each followed case stands: share reached, step to try, the state there."""
+
+    reached: Array
+    step: Array
+    state: State
+    branched: NDArray[np.bool_]
+    mirror: dict[int, State]
+    error: Array
+
+
+def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, rows: Index) -> None:
+    """Follow the path of the cases `rows` and write what is found at its end."""
+    whole = problem.take(rows)
+    n = len(rows)
+    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), {}, np.full(n, np.nan))
+    while len(open_ := np.flatnonzero((path.reached < 1) & (path.step >= LEAST_STEP))):
+        _one_step(whole, start, path, open_)
+    arrived = path.reached >= 1
+    for k, case in enumerate(rows):
+        if arrived[k]:
+            judged.state.put(np.array([case]), path.state.take(np.array([k])))
+            judged.code[case] = classify(whole.take(np.array([k])), path.state.take(np.array([k])))[0]
+            judged.error[case] = path.error[k]
+            judged.branched[case] = path.branched[k]
+            judged.mirror.pop(int(case), None)
+            if k in path.mirror:
+                judged.mirror[int(case)] = path.mirror[k]
+        else:
+            judged.lost_at[case] = path.reached[k]
+            judged.state.put(np.array([case]), path.state.take(np.array([k])))
+            judged.code[case] = NONE
+            judged.mirror.pop(int(case), None)
+
+
+def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> None:
+    """Try the next share of every open path from its last state."""
+    share = np.minimum(1.0, path.reached[open_] + path.step[open_])
+    part = whole.take(open_)
+    there = replace(part, loads=part.loads.between(start, share))
+    there.__dict__["pattern"] = whole.pattern
+    before = path.state.take(open_)
+    found = settle(there, before)
+    near = turn_between(there, found.state, before) < NEXT
+    good = (found.code <= NEUTRAL) & near
+    path.state.put(open_[good], found.state.take(np.flatnonzero(good)))
+    path.reached[open_[good]] = share[good]
+    path.error[open_[good]] = found.error[good]
+    path.branched[open_] |= good & found.branched
+    for k in np.flatnonzero(good):
+        path.mirror.pop(int(open_[k]), None)
+        if int(k) in found.mirror:
+            path.mirror[int(open_[k])] = found.mirror[int(k)]
+    path.step[open_] = np.where(good, 1.5 * path.step[open_], 0.5 * path.step[open_])
+
+
+def moving_part(structure: Structure, shape: Array, heading: Array) -> tuple[int, float]:
+    """Which spar a mode (node, 6) turns most, and the bearing [rad] its head goes toward; heading (spar, 3)."""
+    head = structure.head.node
+    moves = shape[head, :3] - shape[structure.foot, :3]
+    rigid = np.array([s.rigid for s in structure.scenario.spar])
+    turns = np.cross(shape[structure.foot, 3:], heading) * structure.length[:, None]
+    moves = np.where(rigid[:, None], turns, moves)
+    k = int(np.argmax(np.linalg.norm(moves, axis=1) / structure.length))
+    return k, float(np.arctan2(moves[k, 0], moves[k, 1])) % (2 * math.pi)
