@@ -59,7 +59,8 @@ def _lattice_mast(
         for name, bearing in (("N", 0), ("SE", 120), ("SW", 240))
     ]
     guys = [
-        f'[[guy_level]]\nspar = "mast"\nat = "{at} m"\nrope = "strand"\nto = ["{ring} N", "{ring} SE", "{ring} SW"]\ntension = "{tension}"\n'
+        f'[[guy_level]]\nspar = "mast"\nat = "{at} m"\nrope = "strand"\ntension = "{tension}"\n'
+        f'to = ["{ring} N", "{ring} SE", "{ring} SW"]\n'
         for at, ring in levels
     ]
     return "\n".join([

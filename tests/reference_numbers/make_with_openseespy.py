@@ -119,8 +119,8 @@ CONVENTIONS = {
 
 
 CHAIN_NOTE = (
-    "openseespy ties rotations by their increments, so with a heel tied to another spar the answer depends on the path of the iteration"
-    " by about 1e-5 of the tension; without a heel the two idealisations differ by their own extrapolation alone"
+    "openseespy holds and ties rotations by their increments, so what `no spin` of a base means depends in second order on the path of"
+    " the iteration; it matters only where the base takes a moment about the vertical (the boom: 1e-5 of the greatest tension)"
 )
 
 
