@@ -1,0 +1,323 @@
+"""The elevation: looking square to one bearing, cables drawn as they hang in still air, spars with their sections, levels and fittings.
+
+True to scale across and up; what comes toward the viewer is foreshortened, so the guy angles written at the anchors are worked out in
+space, from the ground at the anchor to the cable's chord.  The ground line runs through the levels of anchors and feet.  Sections are
+brackets along their spar, lettered; fittings are numbered flags; both are keyed to one list.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from guys.drawing import blocks, style
+from guys.drawing.blocks import Line
+from guys.drawing.labels import Array, Field, Wish, all_over, around, column, place
+from guys.drawing.lettering import fitted
+from guys.drawing.page import Page, Rect
+from guys.drawing.reading import (
+    View,
+    anchor_cables,
+    at_station,
+    base_point,
+    dropping,
+    greatest,
+    guy_angle,
+    hung_cable,
+    hung_spar,
+    spar_named,
+)
+from guys.drawing.rounding import Tongue, angle, bearing, force, level
+from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
+from guys.results import FootWorst, Solution
+from guys.scenario import model
+
+SIDE_ROOM, TOP_ROOM = 17.0, 15.0
+BRACKET_OFF = 2.4
+FLAG = 2.1
+TIER = 5.0
+MANY_CABLES = 9
+"""With more, sections of an upright spar are bracketed in the margin, level with it."""
+
+
+@dataclass(frozen=True)
+class ElevationFrame:
+    """Where the view lies on the page: `middle` (2,) right, up [m] at `centre` (2,) [mm]."""
+
+    zone: Rect
+    view: View
+    middle: Array
+    centre: Array
+    per_metre: float
+
+    def on_page(self, points: Array) -> Array:
+        """(..., 3) site to (..., 2) page [mm]."""
+        return np.asarray(self.centre + (self.view.project(np.asarray(points)) - self.middle) * self.per_metre)
+
+
+def bounds(solution: Solution, view: View) -> Array:
+    """(2, 2) least and greatest right, up of all that the elevation shows."""
+    parts = [solution.anchors.position, *(hung_spar(s) for s in solution.spars)]
+    parts += [hung_cable(solution, i) for i in range(len(solution.cables.name))]
+    points = view.project(np.concatenate(parts))
+    return np.stack([points.min(axis=0), points.max(axis=0)])
+
+
+def fitting_ratio(page: Page, solution: Solution, zone: Rect, view: View) -> float:
+    """Smallest round ratio at which the elevation fits its zone with room for words."""
+    low, high = bounds(solution, view)
+    room = zone.inset(SIDE_ROOM, below_room(solution, zone, view), SIDE_ROOM, TOP_ROOM)
+    span = np.maximum(high - low, 0.5)
+    return ratio_to_fit((float(span[0]), float(span[1])), (room.width, room.height), page.shrink)
+
+
+def below_room(solution: Solution, zone: Rect, view: View) -> float:
+    """Height [mm] kept under the lowest ground for the words of anchors and bases."""
+    across = view.project(solution.anchors.position - base_point(solution))[:, 0]
+    wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
+    rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in (across < 0.0, across >= 0.0) if side.any()]
+    return 24.0 + TIER * max(rows, default=0)
+
+
+def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, view: View, tongue: Tongue) -> None:
+    """Everything of the elevation."""
+    low, high = bounds(solution, view)
+    per_metre = page.scaled(ratio)
+    under = below_room(solution, zone, view)
+    base_line = zone.bottom + under
+    up = max(0.0, (zone.height - TOP_ROOM - under - (high[1] - low[1]) * per_metre) * 0.35)
+    centre = np.array([(zone.left + zone.right) / 2.0, base_line + up])
+    on = ElevationFrame(zone, view, np.array([(low[0] + high[0]) / 2.0, low[1]]), centre, per_metre)
+    field = Field(zone.inset(0.0, 0.0, 0.0, TOP_ROOM - 4.0))
+    _heading(page, solution, on, ratio, tongue)
+    _ground(page, solution, on, field)
+    _cables(page, solution, on, field)
+    _spars(page, solution, on, field)
+    _scale_bar(page, on, field, tongue)
+    _anchors(page, solution, on, field)
+    _bases(page, solution, on, field, tongue)
+    letters = _sections(page, solution, on, field)
+    symbols = _fittings(page, solution, on, field)
+    _levels(page, solution, on, field, tongue)
+    _letters(page, on, field, letters)
+    _flags(page, on, field, symbols)
+
+
+def _heading(page: Page, solution: Solution, on: ElevationFrame, ratio: float, tongue: Tongue) -> None:
+    x, y = on.zone.left, on.zone.top - 4.6
+    wide = page.text(x, y, f"Elevation, looking toward {bearing(on.view.toward)}", style.HEADING, bold=True)
+    page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
+    first = solution.spars[0].name
+    words = f"cables as they hang in still air · levels above the foot of {first} · guy angles from the ground"
+    page.text(x, y - 4.6, fitted(words, on.zone.width, style.SMALL), style.SMALL)
+
+
+def _ground(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
+    feet = [s.drawn[0] for s in solution.spars if s.name not in solution.heels.spar]
+    points = on.on_page(np.array([*solution.anchors.position, *feet]))
+    points = points[np.argsort(points[:, 0], kind="stable")]
+    left, right, bottom = on.zone.left, on.zone.right, on.zone.bottom
+    line = np.vstack([[left, points[0, 1]], points, [right, points[-1, 1]]])
+    page.shape(np.vstack([line, [right, bottom], [left, bottom]]), fill=style.GROUND, order=0.5)
+    page.line(line, style.INK, style.THIN, order=1.5, name="ground")
+    field.add_line(line)
+
+
+def _cables(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
+    drops = dropping(solution)
+    for i in range(len(solution.cables.name)):
+        points = on.on_page(hung_cable(solution, i))
+        page.line(points, style.INK, style.CABLE * 0.85, style.DASHED if drops[i] else style.SOLID, name=f"cable {i}")
+        field.add_line(np.vstack([points[:-1:4], points[-1]]))
+
+
+def _spars(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
+    for spar in solution.spars:
+        points = on.on_page(hung_spar(spar))
+        page.line(points, style.INK, style.SPAR, order=3.5, butt=True)
+        field.add_line(points[[0, len(points) // 2, -1]])
+    for place_ in on.on_page(solution.anchors.position):
+        page.circle(place_, 0.9, style.INK, order=4.0)
+
+
+def _scale_bar(page: Page, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+    x, y = on.zone.left + 2.0, on.zone.bottom + 5.0
+    for system in tongue.systems:
+        end = length_bar(page, x, y, on.per_metre, 30.0, system)
+        field.add_box([x - 1.0, y - 4.4, end, y + 2.0])
+        x = end + 5.0
+
+
+def below(point: Array, size: tuple[float, float], room: Rect, least: float, sides: Sequence[float]) -> Wish:
+    """Boxes in tiers under a point of the ground, the shallowest cheapest; a plumb leader rises to it.
+
+    sides : how the box lies to the leader: -1 ends at it, 0 has it in the middle, 1 begins at it; earlier ones are cheaper
+    """
+    wide, high = size
+    drop = np.arange(least, max(point[1] - room.bottom - high, least) + 1e-6, TIER / 3.0)
+    boxes, cost = [], []
+    for rank, side in enumerate(sides):
+        left = np.full(len(drop), point[0] + {-1.0: 0.9 - wide, 0.0: -wide / 2.0, 1.0: -0.9}[side])
+        boxes.append(np.column_stack([left, point[1] - drop - high, left + wide, point[1] - drop]))
+        cost.append(drop + 0.7 * TIER * rank)
+    return Wish(point, np.concatenate(boxes), np.concatenate(cost), clear=0.9, leader_from=2.2)
+
+
+def _set_below(page: Page, field: Field, wish: Wish, lines: Sequence[Line]) -> None:
+    spot = place(field, wish)
+    blocks.draw(page, spot.box, lines, "centre")
+    if spot.leader is not None:
+        page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
+    if spot.clashes:
+        page.crowded.append(lines[0].text)
+
+
+def _anchors(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
+    """Names under the ground from the outermost inward, each beside or above the leaders still to come."""
+    at, foot = on.on_page(solution.anchors.position), on.on_page(base_point(solution))[0]
+    for i in np.argsort(-np.abs(at[:, 0] - foot), kind="stable"):
+        line = anchor_line(solution, solution.anchors.name[i])
+        side = 1.0 if at[i, 0] >= foot else -1.0
+        inner = (at[:, 0] - at[i, 0]) * side
+        crowded = bool(((inner < 0.0) & (inner > -line.width / 2.0 - 2.0)).any()) or abs(at[i, 0] - foot) < line.width / 2.0 + 2.0
+        sides = [side] if crowded else [0.0, side]
+        _set_below(page, field, below(at[i], blocks.size([line]), field.room, 2.0, sides), [line])
+
+
+def anchor_line(solution: Solution, anchor: str) -> Line:
+    """Name and the angles of its guys from the ground, low to steep, equal ones once; of many the range."""
+    angles = sorted(guy_angle(solution, i) for i in anchor_cables(solution, anchor))
+    texts = list(dict.fromkeys(angle(a) for a in angles))
+    row = " ".join(texts) if len(texts) < 4 else f"{texts[0]} to {texts[-1]}"
+    return Line(f"{fitted(anchor, 24.0, style.SMALL, bold=True)}  {row}".strip(), style.SMALL, bold=True)
+
+
+def _bases(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+    for worst in solution.worst_feet:
+        if worst.carried_by is not None:
+            continue
+        foot = on.on_page(spar_named(solution, worst.spar).drawn[0])
+        page.arrow(foot - [0.0, 8.0], foot - [0.0, 0.6], style.LOAD, 1.8, 2.6)
+        field.add_line([foot - [0.0, 8.0], foot])
+        lines = base_lines(worst, tongue)
+        _set_below(page, field, below(foot, blocks.size(lines), field.room, 9.0, [0.0, -1.0, 1.0]), lines)
+
+
+def base_lines(worst: FootWorst, tongue: Tongue) -> list[Line]:
+    """The greatest push on the ground and the greatest sideways force."""
+    down, side = tongue.say(force, greatest(worst.down).value), tongue.say(force, greatest(worst.sideways).value)
+    return [Line(f"{worst.spar} base", style.BODY, bold=True, colour=style.LOAD), Line(f"down {down}, sideways {side}", colour=style.LOAD)]
+
+
+def _levels(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+    ground = base_point(solution)[2]
+    done: set[tuple[str, int]] = set()
+    for cable in solution.scenario.cable:
+        for end in (cable.from_, cable.to):
+            if not isinstance(end, model.SparPoint) or (key := (end.spar, round(end.at * 100.0))) in done:
+                continue
+            done.add(key)
+            where = at_station(spar_named(solution, end.spar), end.at)
+            lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
+            _tag(page, on, field, on.on_page(where), lines, (-1.0, 0.35))
+
+
+def _tag(page: Page, on: ElevationFrame, field: Field, at: Array, lines: Sequence[Line], outward: tuple[float, float]) -> None:
+    near = replace(around(at, blocks.size(lines), 0.6, outward, farthest=4.5), leader_from=1.4)
+    beside = column(near, on.zone.left + 1.0 + near.boxes[0, 2] - near.boxes[0, 0], field.room)
+    blocks.draw_placed(page, place(field, near, beside, all_over(near, field.room)), at, lines)
+
+
+def lettered_sections(solution: Solution) -> list[tuple[str, model.Spar, int, model.Section]]:
+    """(letter, spar, index, section); alike sections of one spar share a letter."""
+    letters: dict[tuple[str, str], str] = {}
+    rows = []
+    for spar in solution.scenario.spar:
+        for i, section in enumerate(spar.section):
+            letter = letters.setdefault((spar.name, repr(section)), _letter(len(letters)))
+            rows.append((letter, spar, i, section))
+    return rows
+
+
+def _letter(index: int) -> str:
+    return chr(65 + index) if index < 26 else _letter(index // 26 - 1) + _letter(index % 26)
+
+
+def _sections(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> list[tuple[str, Array, Array]]:
+    """Brackets drawn; returns letter, its point and the way out from the spar."""
+    start: dict[str, float] = {}
+    letters = []
+    upright_in_margin = len(solution.cables.name) > MANY_CABLES
+    for letter, spar, _, section in lettered_sections(solution):
+        low = start.get(spar.name, 0.0)
+        start[spar.name] = low + section.length
+        line = spar_named(solution, spar.name)
+        ends = on.on_page(np.array([at_station(line, low), at_station(line, low + section.length)]))
+        if upright_in_margin and abs(ends[1, 0] - ends[0, 0]) < 2.0:
+            ends[:, 0] = on.zone.right - 8.0
+        letters += _bracket(page, field, ends, letter)
+    return letters
+
+
+def _bracket(page: Page, field: Field, ends: Array, letter: str) -> list[tuple[str, Array, Array]]:
+    run = ends[1] - ends[0]
+    size = float(np.hypot(*run))
+    if size < 3.0:
+        return []
+    along = run / size
+    across = np.array([along[1], -along[0]])
+    a, b = ends[0] + 0.4 * along, ends[1] - 0.4 * along
+    off = BRACKET_OFF * across
+    points = np.array([a + 0.45 * off, a + off, b + off, b + 0.45 * off])
+    page.line(points, style.GREY, style.HAIR, order=1.8, name="bracket")
+    field.add_line(points)
+    return [(letter, (a + b) / 2.0 + off, across)]
+
+
+def _letters(page: Page, on: ElevationFrame, field: Field, letters: list[tuple[str, Array, Array]]) -> None:
+    for letter, at, across in letters:
+        lines = [Line(letter, style.SMALL, bold=True, colour=style.GREY)]
+        near = replace(around(at, blocks.size(lines), 0.1, across, farthest=8.0), leader_from=3.0)
+        blocks.draw_placed(page, place(field, near, column(near, on.zone.right - 10.0, field.room)), at, lines)
+
+
+def numbered_fittings(solution: Solution) -> list[tuple[str, model.Spar, model.Fitting]]:
+    """(number, spar, fitting) from the foot up, spar by spar."""
+    pairs = [(spar, fitting) for spar in solution.scenario.spar for fitting in sorted(spar.fitting, key=lambda f: f.at)]
+    return [(str(i + 1), spar, fitting) for i, (spar, fitting) in enumerate(pairs)]
+
+
+def _fittings(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> list[tuple[str, Array]]:
+    """Symbols drawn; returns number and place on the page."""
+    symbols = []
+    for number, spar, fitting in numbered_fittings(solution):
+        axis = at_station(spar_named(solution, spar.name), fitting.at)
+        shift = np.array([fitting.offset.east, fitting.offset.north, fitting.offset.up])
+        centre, at = on.on_page(axis), on.on_page(axis + shift)
+        page.line([centre, at], style.INK, style.THIN, order=3.6)
+        _symbol(page, at, fitting.shape == "flat")
+        field.add_disc(at, 1.1)
+        symbols.append((number, at))
+    return symbols
+
+
+def _flags(page: Page, on: ElevationFrame, field: Field, symbols: list[tuple[str, Array]]) -> None:
+    for number, at in symbols:
+        near = replace(around(at, (2 * FLAG, 2 * FLAG), 1.0, (1.0, 0.25), farthest=8.0), leader_from=0.5)
+        spot = place(field, near, column(near, on.zone.right - 17.0, field.room), all_over(near, field.room))
+        middle = (spot.box[:2] + spot.box[2:]) / 2.0
+        if spot.leader is not None:
+            page.line(spot.leader, style.INK, style.HAIR, order=3.0, name="leader")
+        page.circle(middle, FLAG, style.WHITE, style.INK, 0.8, order=5.0)
+        page.text(middle[0], middle[1] - 1.05, number, style.SMALL - 0.5, align="centre")
+        if spot.clashes:
+            page.crowded.append(f"flag {number}")
+
+
+def _symbol(page: Page, at: Array, flat: bool) -> None:
+    if flat:
+        page.shape(at + np.array([[-0.8, -1.4], [0.8, -1.4], [0.8, 1.4], [-0.8, 1.4]]), style.INK, order=4.0)
+    else:
+        page.circle(at, 0.9, style.WHITE, style.INK, 1.0, order=4.0)

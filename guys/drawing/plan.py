@@ -1,0 +1,332 @@
+"""The plan: true to scale, grid north up, and at each anchor a bar along the guy for the horizontal pull and a ring for the uplift.
+
+Bar length and ring radius are drawn to one printed scale of newtons per millimetre, the greatest over all cases and winds of each, so
+that anchors can be compared by eye; the digits stand beside them, rounded up.  A guy is solid where it stays taut in every case and
+wind, dashed where it drops in one.  Guys above one another run as one line, dashed if any of them drops; guys of different anchors
+that coincide are drawn side by side.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from math import isfinite
+
+import numpy as np
+
+from guys.drawing import blocks, style
+from guys.drawing.blocks import Line
+from guys.drawing.labels import Array, Field, Wish, all_over, around, place
+from guys.drawing.page import Page, Rect, arc
+from guys.drawing.reading import (
+    base_point,
+    dropping,
+    fall_circles,
+    from_base,
+    greatest,
+    hung_cable,
+    hung_spar,
+    pull_direction,
+    wind_words,
+)
+from guys.drawing.rounding import Tongue, bearing, force, length, level
+from guys.drawing.scales import length_bar, load_bar, ratio_text, ratio_to_fit
+from guys.results import AnchorWorst, Solution
+
+LABEL_ROOM = (46.0, 19.0)
+"""Room [mm] kept at the sides and at top and bottom for the words of the outermost anchors."""
+HEAD, STRIP = 12.0, 9.5
+LONGEST_BAR, LARGEST_RING = 24.0, 9.0
+DOT = 0.9
+
+
+@dataclass(frozen=True)
+class PlanFrame:
+    """Where the site lies on the page: `middle` (2,) east, north [m] at `centre` (2,) [mm], `per_metre` [mm/m]."""
+
+    zone: Rect
+    room: Rect
+    middle: Array
+    centre: Array
+    per_metre: float
+
+    def on_page(self, points: Array) -> Array:
+        """(..., 2 or 3) site to (..., 2) page [mm]."""
+        return np.asarray(self.centre + (np.asarray(points)[..., :2] - self.middle) * self.per_metre)
+
+
+def bounds(solution: Solution) -> Array:
+    """(2, 2) least and greatest east, north of all that the plan shows."""
+    spars = [hung_spar(s)[:, :2] for s in solution.spars]
+    points = np.concatenate([solution.anchors.position[:, :2], *spars])
+    return np.stack([points.min(axis=0), points.max(axis=0)])
+
+
+def fitting_ratio(page: Page, solution: Solution, zone: Rect) -> float:
+    """Smallest round ratio at which the plan fits its zone with room for words."""
+    low, high = bounds(solution)
+    room = zone.inset(LABEL_ROOM[0], STRIP + LABEL_ROOM[1], LABEL_ROOM[0], HEAD + LABEL_ROOM[1])
+    span = np.maximum(high - low, 0.5)
+    return ratio_to_fit((float(span[0]), float(span[1])), (room.width, room.height), page.shrink)
+
+
+def frame(page: Page, solution: Solution, zone: Rect, ratio: float) -> PlanFrame:
+    """The site centred in its zone."""
+    room = zone.inset(0.0, STRIP, 0.0, HEAD)
+    centre = np.array([(room.left + room.right) / 2.0, (room.bottom + room.top) / 2.0])
+    return PlanFrame(zone, room, bounds(solution).mean(axis=0), centre, page.scaled(ratio))
+
+
+def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: Tongue) -> None:
+    """Everything of the plan."""
+    on = frame(page, solution, zone, ratio)
+    field = Field(on.room)
+    per_newton = load_scale(solution, on)
+    largest = max((max(greatest(w.horizontal).value, greatest(w.uplift).value) for w in solution.worst_anchors), default=0.0)
+    _heading(page, solution, on, ratio)
+    _north(page, on, field)
+    _foot_strip(page, on, per_newton, largest * per_newton, tongue)
+    _cables(page, solution, on, field)
+    _spars(page, solution, on, field)
+    for worst in solution.worst_anchors:
+        _loads(page, solution, worst, on, field, per_newton)
+    _label_anchors(page, solution, on, field, per_newton, tongue)
+    _label_spars(page, solution, on, field)
+    _governing_wind(page, solution, on, field, tongue)
+    _fall_circles(page, solution, on, field, tongue)
+
+
+def load_scale(solution: Solution, on: PlanFrame) -> float:
+    """Millimetres of bar and ring per newton: the largest at which no bar passes its guy and no ring its neighbour; 0 without loads."""
+    at = on.on_page(solution.anchors.position)
+    foot = on.on_page(base_point(solution))
+    limits = [np.inf]
+    for worst in solution.worst_anchors:
+        i = solution.anchors.name.index(worst.name)
+        away = np.linalg.norm(np.vstack([np.delete(at, i, axis=0), foot]) - at[i], axis=1)
+        out, up = greatest(worst.horizontal).value, greatest(worst.uplift).value
+        near = float(away[away > 0.1].min(initial=40.0))
+        if isfinite(out) and out > 0.0:
+            limits.append(min(LONGEST_BAR, 0.62 * float(away[-1]) if away[-1] > 0.1 else LONGEST_BAR) / out)
+        if isfinite(up) and up > 0.0:
+            limits.append(min(LARGEST_RING, 0.42 * near) / up)
+    smallest = min(limits)
+    return smallest if isfinite(smallest) else 0.0
+
+
+def _heading(page: Page, solution: Solution, on: PlanFrame, ratio: float) -> None:
+    x, y = on.zone.left, on.zone.top - 4.6
+    wide = page.text(x, y, "Plan", style.HEADING, bold=True)
+    page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
+    words = "bar along the guy: greatest horizontal pull · ring: greatest uplift · one scale"
+    page.text(on.zone.right, y + 0.2, words, style.SMALL, colour=style.LOAD, align="right")
+    kinds = "guy solid: taut in every case and wind · dashed: drops in some, see the box"
+    page.text(on.zone.right, y - 4.0, kinds, style.SMALL, align="right")
+
+
+def _north(page: Page, on: PlanFrame, field: Field) -> None:
+    x, top = on.zone.left + 7.0, on.zone.top - 11.0
+    page.text(x, top - 2.6, "grid north", style.SMALL, align="centre")
+    page.arrow([x, top - 17.0], [x, top - 4.4], style.INK, 1.2, 3.0)
+    field.add_box([x - 9.0, top - 18.0, x + 9.0, top])
+
+
+def _foot_strip(page: Page, on: PlanFrame, per_newton: float, largest: float, tongue: Tongue) -> None:
+    x, y = on.zone.left + 1.0, on.zone.bottom + 4.4
+    for system in tongue.systems:
+        x = length_bar(page, x, y, on.per_metre, 46.0, system) + 9.0
+    if per_newton > 0.0:
+        load_bar(page, x, y, per_newton, min(1.1 * largest, 26.0), tongue)
+
+
+def _cables(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+    for points, drops in _lanes(_plan_lines(solution, on)):
+        page.line(points, style.INK, style.CABLE, style.DASHED if drops else style.SOLID, name="guy dashed" if drops else "guy solid")
+        field.add_line(points)
+
+
+def _plan_lines(solution: Solution, on: PlanFrame) -> list[tuple[Array, bool]]:
+    """Cables on the page, those of one anchor and direction as the longest of them; dashed if any drops."""
+    drops = dropping(solution)
+    lines: dict[tuple[object, ...], tuple[Array, bool]] = {}
+    for i, to in enumerate(solution.cables.to_anchor):
+        ends = on.on_page(hung_cable(solution, i)[[0, -1]])
+        run = ends[1] - ends[0]
+        turn = round(float(np.degrees(np.arctan2(run[1], run[0]))) / 0.75)
+        key = (to, turn) if to is not None else (i,)
+        old = lines.get(key)
+        keep = old[0] if old is not None and np.hypot(*(old[0][1] - old[0][0])) >= np.hypot(*run) else ends
+        lines[key] = (keep, bool(drops[i]) or (old is not None and old[1]))
+    return list(lines.values())
+
+
+def _lanes(lines: list[tuple[Array, bool]], gap: float = 1.1) -> list[tuple[Array, bool]]:
+    """Lines that would lie on one another moved aside, turn by turn to either side."""
+    moved: list[tuple[Array, bool]] = []
+    for i, (ends, drops) in enumerate(lines):
+        run = ends[1] - ends[0]
+        size = float(np.hypot(*run))
+        if size < 1e-6:
+            continue
+        across = np.array([-run[1], run[0]]) / size
+        before = sum(_on_one_line(ends, other, gap) for other, _ in lines[:i])
+        step = ((before + 1) // 2) * (1.0 if before % 2 else -1.0)
+        moved.append((ends + step * gap * across, drops))
+    return moved
+
+
+def _on_one_line(one: Array, two: Array, gap: float) -> bool:
+    run, other = one[1] - one[0], two[1] - two[0]
+    a, b = float(np.hypot(*run)), float(np.hypot(*other))
+    if min(a, b) < 1e-6:
+        return False
+    turned = abs(run[0] * other[1] - run[1] * other[0]) / (a * b)
+    same_way = float(run @ other) > 0.0
+    offset = abs((two[0] - one[0])[0] * run[1] - (two[0] - one[0])[1] * run[0]) / a
+    return bool(same_way and turned < 0.03 and offset < gap)
+
+
+def _spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+    for spar in solution.spars:
+        points = on.on_page(hung_spar(spar))
+        foot, head = points[0], points[-1]
+        if np.hypot(*(head - foot)) > 1.5:
+            page.line([foot, head], style.INK, style.SPAR, order=3.5)
+            page.circle(head, 0.9, style.WHITE, style.INK, 0.9, order=3.6)
+            field.add_line([foot, head])
+        if spar.name not in solution.heels.spar:
+            square = np.array([[-1, -1], [1, -1], [1, 1], [-1, 1]]) * 1.5
+            page.shape(foot + square, style.WHITE, style.INK, 1.3, order=4.0)
+            field.add_box([*(foot - 1.6), *(foot + 1.6)])
+
+
+def _loads(page: Page, solution: Solution, worst: AnchorWorst, on: PlanFrame, field: Field, per_newton: float) -> None:
+    at = on.on_page(solution.anchors.position[solution.anchors.name.index(worst.name)])
+    out, up = greatest(worst.horizontal).value, greatest(worst.uplift).value
+    if isfinite(out) and out > 0.0 and per_newton > 0.0:
+        end = at + out * per_newton * pull_direction(solution, worst)
+        page.line([at, end], style.LOAD, style.BAR, order=3.0, butt=True, name=f"bar {worst.name}")
+        field.add_line([at, end])
+    if isfinite(up) and up > 0.0 and per_newton > 0.0:
+        page.circle(at, up * per_newton, edge=style.LOAD, weight=style.RING, order=3.0, name=f"ring {worst.name}")
+    page.circle(at, DOT, style.INK, order=4.5)
+    field.add_disc(at, ring_radius(worst, per_newton))
+
+
+def ring_radius(worst: AnchorWorst, per_newton: float) -> float:
+    """Radius [mm] kept free around an anchor: its ring, or its dot where it is never lifted."""
+    up = greatest(worst.uplift).value
+    return max(up * per_newton + 0.3 if isfinite(up) else 0.0, DOT + 0.3)
+
+
+def _label_anchors(page: Page, solution: Solution, on: PlanFrame, field: Field, per_newton: float, tongue: Tongue) -> None:
+    at = on.on_page(solution.anchors.position)
+    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
+    rings = np.array([ring_radius(_worst_of(solution, name), per_newton) for name in solution.anchors.name])
+    for i in np.argsort(gaps.min(axis=1, initial=1e6), kind="stable"):
+        worst = _worst_of(solution, solution.anchors.name[i])
+        lines = anchor_words(solution, worst, tongue)
+        outward = at[i] - on.on_page(base_point(solution))
+        rivals = np.delete(np.column_stack([at, rings]), i, axis=0)
+        wish = replace(around(at[i], blocks.size(lines), rings[i], outward), rivals=rivals)
+        blocks.draw_placed(page, place(field, wish, all_over(wish, on.room)), at[i], lines)
+
+
+def _worst_of(solution: Solution, anchor: str) -> AnchorWorst:
+    return next(w for w in solution.worst_anchors if w.name == anchor)
+
+
+def anchor_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list[Line]:
+    """Name, greatest horizontal and uplift, bearing and radius and level, and the wind that governs the resultant."""
+    turn, radius, _ = from_base(solution, point := solution.anchors.position[solution.anchors.name.index(worst.name)])
+    out, up, pull = greatest(worst.horizontal).value, greatest(worst.uplift).value, greatest(worst.resultant)
+    above = point[2] - base_point(solution)[2]
+    rise = uplift_words(up, tongue)
+    loads = [f"out {tongue.say(force, out)}", f"up {rise}"]
+    lines = [Line(part, bold=False, colour=style.INK) for part in (loads if len(tongue.systems) > 1 else ["   ".join(loads)])]
+    for system in tongue.systems:
+        lines.append(Line(f"{bearing(turn)}   {length(radius, system)}   level {level(above, system)}"))
+    names = _broken(worst.name)
+    wind = pull.wind_from if isfinite(pull.wind_from) else None
+    return [*names, *lines, Line(wind_words(solution, pull.case, pull.wind_from), colour=style.WIND, wind_from=wind)]
+
+
+def uplift_words(up: float, tongue: Tongue) -> str:
+    """An uplift, or "none" where the anchor is never lifted."""
+    return "none" if isfinite(up) and up <= 0.0 else tongue.say(force, up)
+
+
+def _broken(name: str, longest: int = 26) -> list[Line]:
+    """A name over as many lines as it needs."""
+    rows = [""]
+    for word in name.split():
+        rows = [*rows[:-1], f"{rows[-1]} {word}".strip()] if len(rows[-1]) + len(word) < longest else [*rows, word]
+    return [Line(row, style.NAME if len(name) < longest else style.BODY, bold=True) for row in rows if row]
+
+
+def _label_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+    for spar in solution.spars:
+        points = on.on_page(hung_spar(spar))
+        leans = float(np.hypot(*(points[-1] - points[0]))) > 12.0
+        at = points[len(points) * 2 // 3] if leans else points[0]
+        lines = [Line(spar.name, colour=style.INK)]
+        wish = around(at, blocks.size(lines), 1.0 if leans else 1.8, (0.6, -0.8))
+        blocks.draw_placed(page, place(field, wish, all_over(wish, on.room)), at, lines)
+
+
+def _governing_wind(page: Page, solution: Solution, on: PlanFrame, field: Field, tongue: Tongue) -> None:
+    pulls = [(greatest(w.resultant), w.name) for w in solution.worst_anchors]
+    winds = [(g, name) for g, name in pulls if isfinite(g.value) and isfinite(g.wind_from)]
+    if not winds or max(p[0].value for p in pulls) > max(w[0].value for w in winds):
+        return
+    top, name = max(winds, key=lambda w: w[0].value)
+    lines = [
+        Line(wind_words(solution, top.case, top.wind_from), colour=style.WIND, bold=True),
+        Line(f"governs {name}: pull {tongue.say(force, top.value)}", colour=style.WIND),
+    ]
+    wide, high = blocks.size(lines)
+    arrow = 15.0
+    unit = np.array([np.sin(top.wind_from), np.cos(top.wind_from)])
+    reach = np.linalg.norm(on.on_page(solution.anchors.position) - on.centre, axis=1).max(initial=10.0)
+    spot = place(field, _anywhere(on.room, (wide + arrow, max(high, 13.0)), on.centre + unit * (reach + 14.0)))
+    middle = np.array([spot.box[0] + 6.5, (spot.box[1] + spot.box[3]) / 2.0])
+    page.arrow(middle + 6.0 * unit, middle - 6.0 * unit, style.WIND, 2.0, 3.4)
+    top_edge = middle[1] + high / 2.0
+    blocks.draw(page, np.array([spot.box[0] + arrow, top_edge - high, spot.box[2], top_edge]), lines)
+    if spot.clashes:
+        page.crowded.append("governing wind")
+
+
+def _anywhere(room: Rect, size: tuple[float, float], wanted: Array) -> Wish:
+    """Boxes all over the room, cheapest near the wanted middle; no leader."""
+    boxes = np.array([[wanted[0], wanted[1], wanted[0] + size[0], wanted[1] + size[1]]])
+    wish = all_over(Wish(wanted, boxes, np.zeros(1), leader_from=1e6), room, step=2.5)
+    return replace(wish, cost=np.linalg.norm((wish.boxes[:, :2] + wish.boxes[:, 2:]) / 2.0 - wanted, axis=1))
+
+
+def _fall_circles(page: Page, solution: Solution, on: PlanFrame, field: Field, tongue: Tongue) -> None:
+    """Dotted, broken where words or the edge of the plan would be crossed; named where some of it shows."""
+    for name, foot, reach in fall_circles(solution):
+        centre = on.on_page(foot)
+        line = arc(centre, reach * on.per_metre, 721)
+        hidden = _hidden(line, field)
+        shown = np.where(hidden[:, None], np.nan, line)
+        words = [Line(f"fall circle of {name} {tongue.say(length, reach)}", colour=style.GREY)]
+        if (~hidden).sum() > 60:
+            wide, high = blocks.size(words)
+            spots = line[~hidden][::6]
+            half = np.array([wide, high]) / 2.0
+            cost = np.linalg.norm(spots - [on.centre[0], on.room.bottom], axis=1) * 0.05
+            spot = place(field, Wish(centre, np.hstack([spots - half, spots + half]), cost, leader_from=1e6))
+            if not spot.clashes:
+                blocks.draw(page, spot.box, words)
+            shown = np.where(_hidden(line, field)[:, None], np.nan, line)
+        page.line(shown, style.GREY, 0.9, style.DOTTED, order=1.0, name="fall circle")
+
+
+def _hidden(line: Array, field: Field, gap: float = 0.8) -> np.ndarray:
+    """(point,) under words or outside the plan."""
+    room = field.room
+    out = (line[:, 0] < room.left) | (line[:, 0] > room.right) | (line[:, 1] < room.bottom) | (line[:, 1] > room.top)
+    boxes = np.concatenate(field.boxes) + np.array([-gap, -gap, gap, gap])
+    inside = (line[:, None, :] > boxes[None, :, :2]).all(axis=-1) & (line[:, None, :] < boxes[None, :, 2:]).all(axis=-1)
+    return np.asarray(out | inside.any(axis=1))

@@ -1,0 +1,176 @@
+"""Numbers as a crew reads them, in SI, US units or both.
+
+Loads are rounded up to two figures (full digits stay in the result file), distances to 0.01 m or 1 in, bearings to half a degree.
+kg and lb are mass, kN and lbf are force.
+
+The factors are those of `guys.constants`; a mile is 5280 ft, exactly 1609.344 m.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from math import ceil, degrees, floor, isfinite, log10
+from typing import Literal
+
+from guys import constants
+
+System = Literal["SI", "US"]
+Units = Literal["SI", "US", "both"]
+
+INCH = float(constants.INCH)
+POUND = float(constants.POUND)
+POUND_FORCE = POUND * constants.STANDARD_GRAVITY
+ZERO_CELSIUS = float(constants.ZERO_CELSIUS)
+MILE_PER_HOUR = 1609.344 / 3600.0
+ABSENT = "–"
+# Binary fractions of values that were exact in the input (5.2 kN) must not be rounded up a whole step.
+_ROUNDING_NOISE = 1e-9
+
+
+def round_up(value: float, figures: int = 2) -> float:
+    """`value` rounded toward plus infinity to so many significant figures."""
+    if value == 0.0 or not isfinite(value):
+        return value
+    place = floor(log10(abs(value))) - figures + 1
+    steps = ceil(value * 10.0**-place - _ROUNDING_NOISE * 10**figures)
+    return round(steps * 10.0**place, -place)
+
+
+def up_text(value: float, figures: int = 2) -> str:
+    """`round_up` written with exactly the digits it has."""
+    raised = round_up(value, figures)
+    if not isfinite(raised):
+        return ABSENT
+    if raised == 0.0:
+        return "0"
+    place = floor(log10(abs(raised)) + 1e-12) - figures + 1
+    return f"{raised:.{max(0, -place)}f}"
+
+
+def force(newtons: float, system: System) -> str:
+    """A force rounded up to two figures, in N, kN, MN or lbf, kip."""
+    if not isfinite(newtons):
+        return ABSENT
+    if abs(newtons) < 1e-6:
+        return "0"
+    if system == "US":
+        pounds = newtons / POUND_FORCE
+        return f"{up_text(pounds)} lbf" if abs(round_up(pounds)) < 1e4 else f"{up_text(pounds / 1e3)} kip"
+    size = abs(round_up(newtons))
+    if size < 100.0:
+        return f"{up_text(newtons)} N"
+    return f"{up_text(newtons / 1e3)} kN" if size < 1e6 else f"{up_text(newtons / 1e6)} MN"
+
+
+def moment(newton_metres: float, system: System) -> str:
+    """A moment rounded up to two figures."""
+    if not isfinite(newton_metres):
+        return ABSENT
+    if abs(newton_metres) < 1e-6:
+        return "0"
+    if system == "US":
+        return f"{up_text(newton_metres / (POUND_FORCE * 12 * INCH))} lbf ft"
+    return f"{up_text(newton_metres)} N m" if abs(newton_metres) < 100.0 else f"{up_text(newton_metres / 1e3)} kN m"
+
+
+def length(metres: float, system: System) -> str:
+    """A distance to 0.01 m or to 1 in."""
+    if not isfinite(metres):
+        return ABSENT
+    if system == "SI":
+        return f"{_unsigned_zero(metres, 2)} m"
+    inches = round(abs(metres) / INCH)
+    sign = "−" if metres < 0 and inches else ""
+    return f"{sign}{inches // 12} ft {inches % 12} in" if inches >= 12 else f"{sign}{inches} in"
+
+
+def level(metres: float, system: System) -> str:
+    """A level with its sign."""
+    text = length(metres, system)
+    return text if text.startswith(("−", ABSENT)) else f"+{text}"
+
+
+def thickness(metres: float, system: System) -> str:
+    """A diameter, wall or ice thickness."""
+    return f"{metres * 1e3:.4g} mm" if system == "SI" else f"{metres / INCH:.3g} in"
+
+
+def area(square_metres: float, system: System) -> str:
+    """An area."""
+    return f"{square_metres:.3g} m²" if system == "SI" else f"{square_metres / (12 * INCH) ** 2:.3g} ft²"
+
+
+def mass(kilograms: float, system: System) -> str:
+    """A mass."""
+    return f"{kilograms:.4g} kg" if system == "SI" else f"{kilograms / POUND:.3g} lb"
+
+
+def line_mass(kilograms_per_metre: float, system: System) -> str:
+    """A mass per length."""
+    if system == "SI":
+        return f"{kilograms_per_metre:.3g} kg/m"
+    return f"{kilograms_per_metre / POUND * 12 * INCH:.3g} lb/ft"
+
+
+def speed(metres_per_second: float, system: System) -> str:
+    """A wind speed."""
+    return f"{metres_per_second:.3g} m/s" if system == "SI" else f"{metres_per_second / MILE_PER_HOUR:.3g} mph"
+
+
+def temperature(kelvin: float, system: System) -> str:
+    """A temperature."""
+    celsius = kelvin - ZERO_CELSIUS
+    return f"{_unsigned_zero(celsius, 0)} °C" if system == "SI" else f"{_unsigned_zero(celsius * 1.8 + 32.0, 0)} °F"
+
+
+def bearing(radians: float) -> str:
+    """A bearing to half a degree, in [0, 360)."""
+    if not isfinite(radians):
+        return ABSENT
+    halves = round(2.0 * degrees(radians)) % 720
+    return f"{halves // 2}°" if halves % 2 == 0 else f"{halves / 2:.1f}°"
+
+
+def angle(radians: float) -> str:
+    """An angle to a whole degree."""
+    return f"{_unsigned_zero(degrees(radians), 0)}°" if isfinite(radians) else ABSENT
+
+
+def small_angle(radians: float) -> str:
+    """An angle to a hundredth of a degree."""
+    return f"{degrees(radians):.2f}°" if isfinite(radians) else ABSENT
+
+
+def factor(value: float) -> str:
+    """A factor, rounded down so that it never reads better than it is."""
+    return f"{floor(value * 100.0 + 1e-9) / 100.0:.2f}" if isfinite(value) else ABSENT
+
+
+def _unsigned_zero(value: float, decimals: int) -> str:
+    text = f"{value:.{decimals}f}"
+    return text.lstrip("-") if float(text) == 0.0 else text.replace("-", "−")
+
+
+Say = Callable[[float, System], str]
+
+
+@dataclass(frozen=True)
+class Tongue:
+    """The unit systems one sheet speaks."""
+
+    systems: tuple[System, ...]
+
+    def say(self, how: Say, value: float) -> str:
+        """The value in every system, joined by a stroke."""
+        texts = dict.fromkeys(how(value, system) for system in self.systems)
+        return " / ".join(texts)
+
+    def each(self, how: Say, value: float) -> tuple[str, ...]:
+        """The value in every system apart."""
+        return tuple(how(value, system) for system in self.systems)
+
+
+def tongue(units: Units) -> Tongue:
+    """The systems behind a choice of units."""
+    return Tongue(("SI", "US") if units == "both" else (units,))
