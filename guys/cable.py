@@ -202,34 +202,65 @@ def pull_straight(chord: Array, length: Array, EA: Array) -> Hanging:
     return Hanging(tension, tension, tension, k)
 
 
-def curve(tension: Array, load: Array, length: Array, EA: Array, start_at: Array, points: int) -> Array:
-    """Positions along cables as they hang, (n, points, 3), from end A at `start_at` (n, 3) to end B.
+@dataclass(frozen=True)
+class Shape:
+    """Cables as they hang, in closed form: `unit` (n, 3) along the load, `load` (n,) [N/m], `across` p = |T_per| (n,) [N] with its vector,
+    `along` T_par at mid-length (n,) [N]; `straight` (n,) where the load is nothing against the tension."""
 
-    Uses u with w sigma = p sinh u, p = |T_per|, in which the curve is r' = T(1/EA + 1/|T|) (p/w) cosh u: smooth however slack.
-    `tension` at mid-length, `load` total; a zero load gives the straight line.
+    tension: Array
+    total: Array
+    length: Array
+    EA: Array
+    unit: Array
+    load: Array
+    across: Array
+    level: Array
+    straight: NDArray[np.bool_]
+
+
+def shape(tension: Array, total: Array, length: Array, EA: Array) -> Shape:
+    """Shape of cables (n, ...) from the tension at mid-length and the whole load, both [N]; lengths [m] and stiffness [N]."""
+    size, pull = np.sqrt(dot(total, total)), np.sqrt(dot(tension, tension))
+    straight = size <= 1e-12 * pull
+    unit = np.where(straight[:, None], np.array([0.0, 0, -1]), total / np.maximum(size, 1e-300)[:, None])
+    level = tension - dot(tension, unit)[:, None] * unit
+    across = np.maximum(np.sqrt(dot(level, level)), 1e-12 * np.maximum(size, 1e-300))
+    return Shape(tension, total, length, EA, unit, np.where(straight, 1.0, size / length), across, level, straight)
+
+
+def _angle(s: Shape, fraction: Array) -> tuple[Array, Array]:
+    """u = asinh(T_par / p) and |T| at unstressed fractions -1/2 ... 1/2: (n, point)."""
+    along = dot(s.tension, s.unit)[:, None] - (s.load * s.length)[:, None] * fraction
+    return np.arcsinh(along / s.across[:, None]), np.hypot(along, s.across[:, None])
+
+
+def curve(s: Shape, points: int) -> Array:
+    """Positions relative to end A along the cables, (n, points, 3), evenly spaced in unstressed length, end A first.
+
+    In u the catenary is r' = T (1/EA + 1/|T|), |T| = p cosh u: its integrals are |T|/w along the load and p u/w across it.
     """
-    fraction = np.linspace(-0.5, 0.5, points)
-    n = len(length)
-    out = np.empty((n, points, 3))
-    for k in range(n):
-        out[k] = start_at[k] + _arc(tension[k], load[k], float(length[k]), float(EA[k]), fraction)
-    return out
+    f = np.linspace(-0.5, 0.5, points)[None, :]
+    per = s.length / s.EA
+    elastic = per[:, None, None] * ((f + 0.5)[..., None] * s.tension[:, None] - 0.5 * (f**2 - 0.25)[..., None] * s.total[:, None])
+    u, size = _angle(s, f)
+    fall = ((size[:, :1] - size) / s.load[:, None])[..., None] * s.unit[:, None]
+    away = ((u[:, :1] - u) / s.load[:, None])[..., None] * s.level[:, None]
+    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), 1e-300)
+    direct = ((f + 0.5) * s.length[:, None])[..., None] * (s.tension / pull[:, None])[:, None]
+    return np.asarray(elastic + np.where(s.straight[:, None, None], direct, fall + away))
 
 
-def _arc(tension: Array, load: Array, length: float, EA: float, fraction: Array) -> Array:
-    """Positions relative to end A at unstressed fractions (-1/2 ... 1/2) of one cable."""
-    at = tension - load * fraction[:, None]
-    total = float(np.sqrt(load @ load))
-    elastic = length / EA * ((fraction + 0.5)[:, None] * tension - 0.5 * (fraction**2 - 0.25)[:, None] * load)
-    if total <= 1e-12 * float(np.sqrt(tension @ tension)):
-        e = tension / np.sqrt(tension @ tension)
-        return np.asarray(elastic + (fraction + 0.5)[:, None] * length * e)
-    unit = load / total
-    along = at @ unit
-    per = tension - (tension @ unit) * unit
-    p = max(float(np.sqrt(per @ per)), 1e-12 * total)
-    size = np.hypot(along, p)
-    u = np.arcsinh(along / p)
-    w = total / length
-    rise = (size[0] - size) / w
-    return np.asarray(elastic + rise[:, None] * unit + ((u[0] - u) / w)[:, None] * per)
+def centroid(s: Shape) -> Array:
+    """Mean position relative to end A over the unstressed length (n, 3): where the whole load acts."""
+    ends = np.array([[-0.5, 0.5]])
+    u, size = _angle(s, ends)
+    p, w, length = s.across, s.load, s.length
+    # integrals over s of |T| and of u, by ds = -(p/w) cosh u du
+    of_size = -(p * p / (2 * w)) * ((u[:, 1] + np.sinh(u[:, 1]) * np.cosh(u[:, 1])) - (u[:, 0] + np.sinh(u[:, 0]) * np.cosh(u[:, 0])))
+    of_u = -(p / w) * ((u[:, 1] * np.sinh(u[:, 1]) - np.cosh(u[:, 1])) - (u[:, 0] * np.sinh(u[:, 0]) - np.cosh(u[:, 0])))
+    fall = ((size[:, 0] - of_size / length) / w)[:, None] * s.unit
+    away = ((u[:, 0] - of_u / length) / w)[:, None] * s.level
+    elastic = (length / s.EA)[:, None] * (0.5 * s.tension + s.total / 12)
+    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), 1e-300)
+    direct = 0.5 * length[:, None] * s.tension / pull[:, None]
+    return np.asarray(elastic + np.where(s.straight[:, None], direct, fall + away))

@@ -190,8 +190,7 @@ class Problem:
     def _reference(self, hanging: cable.Hanging) -> Array:
         greatest = np.maximum(np.linalg.norm(hanging.at_a, axis=-1), np.linalg.norm(hanging.at_b, axis=-1)) * self.loads.present
         tension = np.max(greatest, axis=1, initial=0.0)
-        wind = np.linalg.norm(self.cable_total, axis=-1).sum(axis=1) * (self.loads.wind_force > 0)
-        return np.asarray(np.maximum.reduce([self.loads.weight, self.loads.wind_force, np.minimum(wind, self.loads.wind_force), tension, np.ones(self.cases)]))
+        return np.asarray(np.maximum.reduce([self.loads.weight, self.loads.wind_force, tension, np.ones(self.cases)]))
 
     def _bend(self, state: State) -> beam.Bent:
         e, s = self.structure.elements, self.structure

@@ -156,7 +156,8 @@ class _Builder:
         self.axes = np.array([axis_of(spar) for spar in scenario.spar])
         self.feet = self._feet()
         self.sections = [[properties(s, scenario.material, scenario.ice) for s in spar.section] for spar in scenario.spar]
-        self.stations = [self._stations(k, elements) for k in range(len(scenario.spar))]
+        self.cuts = [self._stations(k, elements) for k in range(len(scenario.spar))]
+        self.stations = [mesh.Stations(np.zeros(1)) if spar.rigid else cut for spar, cut in zip(scenario.spar, self.cuts, strict=True)]
         self.first = np.concatenate([[0], np.cumsum([len(s.station) for s in self.stations])]).astype(np.int64)
         self.anchor = {a.name: int(self.first[-1]) + k for k, a in enumerate(scenario.anchor)}
         self.ground = int(self.first[-1]) + len(scenario.anchor)
@@ -175,8 +176,6 @@ class _Builder:
 
     def _stations(self, k: int, elements: int) -> mesh.Stations:
         spar = self.scenario.spar[k]
-        if spar.rigid:
-            return mesh.Stations(np.zeros(1))
         boundaries = np.cumsum([s.length for s in spar.section])[:-1]
         ends = [end for c in self.scenario.cable for end in (c.from_, c.to) if isinstance(end, SparPoint) and end.spar == spar.name]
         heels = [s.foot.at for s in self.scenario.spar if isinstance(s.foot, HeelFoot) and s.foot.spar == spar.name]
@@ -281,7 +280,7 @@ class _Builder:
     def _pieces(self) -> Pieces:
         rows: list[tuple[int, float, float, int, int, bool, Properties]] = []
         for k, spar in enumerate(self.scenario.spar):
-            cuts = self._bounds(k) if spar.rigid else self.stations[k].station
+            cuts = self.cuts[k].station
             for n in range(len(cuts) - 1):
                 low, high = (0, 0) if spar.rigid else (n, n + 1)
                 start, end = float(cuts[n]), float(cuts[n + 1])

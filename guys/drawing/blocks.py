@@ -19,19 +19,20 @@ _TOP = 0.78
 
 @dataclass(frozen=True)
 class Line:
-    """One line of a block; `wind_from` puts a small arrow before it that flies with that wind."""
+    """One line of a block; `rest` follows in regular weight; `wind_from` puts a small arrow before it that flies with that wind."""
 
     text: str
     size: float = style.BODY
     bold: bool = False
     colour: str = style.INK
     wind_from: float | None = None
+    rest: str = ""
 
     @property
     def width(self) -> float:
         """Width [mm], arrow included."""
         room = 0.0 if self.wind_from is None else _ARROW_ROOM
-        return width(plain(self.text, self.bold), self.size, self.bold) + room
+        return width(plain(self.text, self.bold), self.size, self.bold) + width(plain(self.rest), self.size) + room
 
     @property
     def pitch(self) -> float:
@@ -56,7 +57,9 @@ def draw(page: Page, box: Array, lines: Sequence[Line], align: Align = "left") -
         if line.wind_from is not None:
             small_wind(page, start + 1.7, y + 0.32 * line.size * style.POINT_MM, line.wind_from)
             start += _ARROW_ROOM
-        page.text(start, y, line.text, line.size, line.bold, line.colour)
+        wide = page.text(start, y, line.text, line.size, line.bold, line.colour)
+        if line.rest:
+            page.text(start + wide, y, line.rest, line.size, False, line.colour)
 
 
 def small_wind(page: Page, x: float, y: float, wind_from: float, reach: float = 1.6) -> None:

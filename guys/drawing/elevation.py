@@ -191,7 +191,7 @@ def anchor_line(solution: Solution, anchor: str) -> Line:
     angles = sorted(guy_angle(solution, i) for i in anchor_cables(solution, anchor))
     texts = list(dict.fromkeys(angle(a) for a in angles))
     row = " ".join(texts) if len(texts) < 4 else f"{texts[0]} to {texts[-1]}"
-    return Line(f"{fitted(anchor, 24.0, style.SMALL, bold=True)}  {row}".strip(), style.SMALL, bold=True)
+    return Line(fitted(anchor, 24.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
 
 
 def _bases(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:

@@ -96,15 +96,28 @@ def anchor_cables(solution: Solution, anchor: str) -> list[int]:
     return [i for i, to in enumerate(solution.cables.to_anchor) if to == anchor]
 
 
+def governing_pull(solution: Solution, anchor: str, extreme: Extreme) -> Array:
+    """(3,) [N] the pull on an anchor in the listed case an extreme belongs to; NaN where that is not among the cases."""
+    column = solution.anchors.name.index(anchor)
+    for row, (case, wind) in enumerate(zip(solution.case, solution.wind_from, strict=True)):
+        same_wind = wind == extreme.wind_from or (not isfinite(wind) and not isfinite(extreme.wind_from))
+        if case == extreme.case and same_wind:
+            return solution.anchors.pull[row, column]
+    return np.full(3, nan)
+
+
+def pull_angle(solution: Solution, worst: AnchorWorst) -> float:
+    """Angle from the ground [rad] of an anchor's greatest pull."""
+    east, north, up = governing_pull(solution, worst.name, worst.resultant)
+    return float(np.arctan2(up, np.hypot(east, north)))
+
+
 def pull_direction(solution: Solution, worst: AnchorWorst) -> NDArray[np.float64]:
     """(2,) unit vector east, north of the anchor's horizontal pull in its governing case; along its guys where that is not known."""
-    anchor = solution.anchors.name.index(worst.name)
-    for row, (case, wind) in enumerate(zip(solution.case, solution.wind_from, strict=True)):
-        same_wind = wind == worst.horizontal.wind_from or (not isfinite(wind) and not isfinite(worst.horizontal.wind_from))
-        pull = solution.anchors.pull[row, anchor, :2]
-        size = float(np.hypot(*pull))
-        if case == worst.horizontal.case and same_wind and isfinite(size) and size > 0.0:
-            return np.asarray(pull / size)
+    pull = governing_pull(solution, worst.name, worst.horizontal)[:2]
+    size = float(np.hypot(*pull))
+    if isfinite(size) and size > 0.0:
+        return np.asarray(pull / size)
     return _along_guys(solution, worst.name)
 
 

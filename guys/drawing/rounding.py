@@ -63,6 +63,20 @@ def force(newtons: float, system: System) -> str:
     return f"{up_text(newtons / 1e3)} kN" if size < 1e6 else f"{up_text(newtons / 1e6)} MN"
 
 
+def plain_force(newtons: float, system: System) -> str:
+    """A force as near as three figures tell it: a tension to set, a capacity."""
+    if not isfinite(newtons):
+        return ABSENT
+    if system == "US":
+        return f"{newtons / POUND_FORCE:.0f} lbf" if abs(newtons) >= 100 * POUND_FORCE else f"{newtons / POUND_FORCE:.3g} lbf"
+    return f"{_three(newtons / 1e3)} kN" if abs(newtons) >= 100.0 else f"{newtons:.3g} N"
+
+
+def _three(value: float) -> str:
+    """Three figures without an exponent."""
+    return f"{value:.{max(0, 2 - floor(log10(abs(value)) + 1e-12))}f}" if value else "0"
+
+
 def moment(newton_metres: float, system: System) -> str:
     """A moment rounded up to two figures."""
     if not isfinite(newton_metres):

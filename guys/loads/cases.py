@@ -7,15 +7,15 @@ setting case is dead load alone.  Wind and heights are taken on the setting posi
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, fields
 
 import numpy as np
 from numpy.typing import NDArray
 
 from guys.loads import dead, wind
-from guys.loads.spread import Weights, weights
-from guys.rotation import Array, turned
+from guys.loads.spread import Weights, to_nodes, weights
+from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
 from guys.structure import Points, Structure
 
@@ -44,12 +44,18 @@ class Placed:
 
 @dataclass(frozen=True)
 class LoadCases:
-    """force (case, node, 3) [N]; dyad (case, node, 3, 3) [N m]; cable_load (case, cable, 3) [N/m] per unstressed length at the setting
-    temperature; warming (case,) [K] above the setting; present (case, cable), 1 or 0, or a share while a cable fades from a path;
-    wind_force (case,) [N] the greatest of the summed wind, for the reference force; lines: what each case is."""
+    """Loads with a leading case axis.
+
+    force (case, node, 3) [N], dyad (case, node, 3, 3) [N m]: on the nodes; on_pieces (case, piece, 4, 3), on_fittings (case, fitting, 3): the
+    same before they reached the nodes; cable_load (case, cable, 3) [N/m] per unstressed length at the setting temperature;
+    warming (case,) [K] above the setting; present (case, cable), 1 or 0, or a share while a cable fades along a path;
+    weight, wind_force (case,) [N] sizes of the total dead and ice load, and of the total wind; lines: what each case is.
+    """
 
     force: Array
     dyad: Array
+    on_pieces: Array
+    on_fittings: Array
     cable_load: Array
     warming: Array
     present: Array
@@ -57,24 +63,22 @@ class LoadCases:
     wind_force: Array
     lines: tuple[CaseLine, ...]
 
+    def _each(self, change: Callable[[str], Array], lines: tuple[CaseLine, ...]) -> LoadCases:
+        return LoadCases(**{f.name: change(f.name) for f in fields(self) if f.name != "lines"}, lines=lines)
+
     def take(self, rows: NDArray[np.int64]) -> LoadCases:
         """The cases `rows`, in that order."""
-        return LoadCases(
-            self.force[rows], self.dyad[rows], self.cable_load[rows], self.warming[rows], self.present[rows],
-            self.weight[rows], self.wind_force[rows], tuple(self.lines[r] for r in rows),
-        )  # fmt: skip
+        return self._each(lambda name: getattr(self, name)[rows], tuple(self.lines[r] for r in rows))
 
     def between(self, start: LoadCases, share: Array) -> LoadCases:
         """From the one case of `start` toward each case here: all departures together, at the shares (case,) of the way."""
 
-        def mix(a: Array, b: Array) -> Array:
+        def mix(name: str) -> Array:
+            a, b = getattr(start, name), getattr(self, name)
             s = share.reshape(-1, *([1] * (b.ndim - 1)))
             return np.asarray((1 - s) * a + s * b)
 
-        return LoadCases(
-            mix(start.force, self.force), mix(start.dyad, self.dyad), mix(start.cable_load, self.cable_load), mix(start.warming, self.warming),
-            mix(start.present, self.present), mix(start.weight, self.weight), mix(start.wind_force, self.wind_force), self.lines,
-        )  # fmt: skip
+        return self._each(mix, self.lines)
 
 
 def setting_line(scenario: Scenario) -> CaseLine:
@@ -97,49 +101,56 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     """Loads of every line on the structure as placed."""
     scenario = structure.scenario
     w = weights(structure.pieces)
-    factor = np.array([[c.dead, c.wind, c.ice] for c in lines])
-    f_dead, q_dead = dead.dead(structure, w)
-    f_ice, q_ice = dead.ice(structure, w)
-    f_wind, q_wind, c_wind = _wind(structure, lines, placed, w)
-    d, v, i = (factor[:, k] for k in range(3))
-    force = d[:, None, None] * f_dead + i[:, None, None] * f_ice + v[:, None, None] * f_wind
-    dyad = d[:, None, None, None] * q_dead + i[:, None, None, None] * q_ice + v[:, None, None, None] * q_wind
-    w_cable, w_ice = dead.cable_weight(structure)
+    d, v, i = np.array([[c.dead, c.wind, c.ice] for c in lines]).T
+    still = dead.dead(structure, w).times(d).plus(dead.ice(structure, w).times(i))
+    blown, on_cables = _wind(structure, lines, placed, w)
+    both = still.plus(blown.times(v))
+    cable_dead, cable_ice = dead.cable_weight(structure)
+    down = (d[:, None] * cable_dead + i[:, None] * cable_ice)[..., None] * dead.DOWN
     hangs = scenario.analysis.cable == "catenary"
-    down = (d[:, None] * w_cable + i[:, None] * w_ice)[..., None] * dead.DOWN
-    cable = (down + v[:, None, None] * c_wind / placed.length[:, None]) * hangs
     names = [c.name for c in scenario.cable]
     present = np.array([[name not in c.without for name in names] for c in lines], dtype=float).reshape(len(lines), -1)
-    on_cables = np.linalg.norm(cable, axis=-1) * placed.length * present
+    force, dyad = to_nodes(structure.pieces, both.on_pieces, structure.nodes)
+    _add_points(structure, both.on_fittings, force, dyad)
+    cable_weight = hangs * (np.abs(down[..., 2]) * placed.length * present).sum(axis=1)
+    cable_wind = hangs * (on_cables * present[..., None]).sum(axis=1)
     return LoadCases(
         force=force,
         dyad=dyad,
-        cable_load=cable,
+        on_pieces=both.on_pieces,
+        on_fittings=both.on_fittings,
+        cable_load=(down + v[:, None, None] * on_cables / placed.length[:, None]) * hangs,
         warming=np.array([c.temperature - scenario.setting.temperature for c in lines]),
         present=present,
-        weight=np.linalg.norm((d[:, None, None] * f_dead + i[:, None, None] * f_ice).sum(axis=1), axis=-1) + on_cables.sum(axis=1),
-        wind_force=v * np.linalg.norm(f_wind.sum(axis=1), axis=-1),
+        weight=np.linalg.norm(still.total(), axis=-1) + cable_weight,
+        wind_force=v * np.linalg.norm(blown.total() + cable_wind, axis=-1),
         lines=tuple(lines),
     )
 
 
-def _wind(structure: Structure, lines: Sequence[CaseLine], placed: Placed, w: Weights) -> tuple[Array, Array, Array]:
-    cases, nodes, cables = len(lines), structure.nodes, len(structure.cables.EA)
-    force, dyad, cable = np.zeros((cases, nodes, 3)), np.zeros((cases, nodes, 3, 3)), np.zeros((cases, cables, 3))
+def _add_points(structure: Structure, on_fittings: Array, force: Array, dyad: Array) -> None:
+    point = structure.fittings.point
+    for k, node in enumerate(point.node):
+        force[:, node] += on_fittings[:, k]
+        dyad[:, node] += outer(point.arm[k], on_fittings[:, k])
+
+
+def _wind(structure: Structure, lines: Sequence[CaseLine], placed: Placed, w: Weights) -> tuple[dead.Loads, Array]:
+    """Loads on spars and fittings, and whole wind forces on cables (case, cable, 3), for a factor of one; zero where there is none."""
+    cases, pieces, fittings, cables = len(lines), len(structure.pieces.spar), len(structure.fittings.of), len(structure.cables.EA)
+    on_pieces, on_fittings, on_cables = np.zeros((cases, pieces, 4, 3)), np.zeros((cases, fittings, 3)), np.zeros((cases, cables, 3))
     blown = np.array([k for k, c in enumerate(lines) if c.wind != 0], dtype=np.int64)
     blows = structure.scenario.wind
-    if len(blown) == 0 or blows is None:
-        return force, dyad, cable
-    bearing = np.array([lines[k].wind_from for k in blown])
-    iced = np.array([lines[k].ice > 0 for k in blown])
-    foot = structure.position[structure.foot] + placed.u[structure.foot]
-    start, end = (_on_axis(structure, placed, k) for k in (0, 1))
-    f, q = wind.on_spars(structure, blows, w, start, end, foot, bearing, iced)
-    fp, qp = wind.on_fittings(structure, blows, where(structure, placed, structure.fittings.point), foot, bearing, iced)
-    force[blown], dyad[blown] = f + fp, q + qp
-    a, b = where(structure, placed, structure.cables.a), where(structure, placed, structure.cables.b)
-    cable[blown] = wind.on_cables(structure, blows, a, b, foot, bearing, iced)
-    return force, dyad, cable
+    if len(blown) and blows is not None:
+        bearing = np.array([lines[k].wind_from for k in blown])
+        iced = np.array([lines[k].ice > 0 for k in blown])
+        foot = structure.position[structure.foot] + placed.u[structure.foot]
+        start, end = (_on_axis(structure, placed, k) for k in (0, 1))
+        on_pieces[blown] = wind.on_spars(structure, blows, w, start, end, foot, bearing, iced)
+        on_fittings[blown] = wind.on_fittings(structure, blows, where(structure, placed, structure.fittings.point), foot, bearing, iced)
+        a, b = where(structure, placed, structure.cables.a), where(structure, placed, structure.cables.b)
+        on_cables[blown] = wind.on_cables(structure, blows, a, b, foot, bearing, iced)
+    return dead.Loads(on_pieces, on_fittings), on_cables
 
 
 def where(structure: Structure, placed: Placed, points: Points) -> Array:

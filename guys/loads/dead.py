@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 
 from guys.constants import STANDARD_GRAVITY
 from guys.loads.spread import Weights, spread
-from guys.rotation import Array, outer
+from guys.rotation import Array
 from guys.scenario.model import Fitting
 from guys.sections import ice_on_round
 from guys.structure import Structure
@@ -19,35 +21,38 @@ def fittings_of(structure: Structure) -> list[Fitting]:
     return [structure.scenario.spar[k].fitting[n] for k, n in structure.fittings.of]
 
 
-def on_points(structure: Structure, force: Array) -> tuple[Array, Array]:
-    """Node forces and dyads of forces (case, fitting, 3) [N] at the fittings."""
-    point = structure.fittings.point
-    cases, nodes = len(force), structure.nodes
-    f, q = np.zeros((cases, nodes, 3)), np.zeros((cases, nodes, 3, 3))
-    for k, node in enumerate(point.node):
-        f[:, node] += force[:, k]
-        q[:, node] += outer(point.arm[k], force[:, k])
-    return f, q
+@dataclass(frozen=True)
+class Loads:
+    """Loads on spars before they reach the nodes: on_pieces (case, piece, 4, 3), see `spread`; on_fittings (case, fitting, 3) [N]."""
+
+    on_pieces: Array
+    on_fittings: Array
+
+    def times(self, factor: Array) -> Loads:
+        """Scaled case by case, factor (case,)."""
+        return Loads(factor[:, None, None, None] * self.on_pieces, factor[:, None, None] * self.on_fittings)
+
+    def plus(self, other: Loads) -> Loads:
+        return Loads(self.on_pieces + other.on_pieces, self.on_fittings + other.on_fittings)
+
+    def total(self) -> Array:
+        """Sum of the forces (case, 3) [N]."""
+        return np.asarray(self.on_pieces[:, :, (0, 2)].sum(axis=(1, 2)) + self.on_fittings.sum(axis=1))
 
 
-def _weight(structure: Structure, w: Weights, mass_per_length: Array, point_forces: Array) -> tuple[Array, Array]:
-    pieces = structure.pieces
+def _weight(structure: Structure, w: Weights, mass_per_length: Array, point_forces: Array) -> Loads:
     down = np.broadcast_to(DOWN, (1, len(mass_per_length), 3))
-    f, q = spread(pieces, w, STANDARD_GRAVITY * mass_per_length[:, None] * np.ones_like(w.station), down, structure.nodes)
-    fp, qp = on_points(structure, point_forces[None])
-    return (f + fp)[0], (q + qp)[0]
+    return Loads(spread(w, STANDARD_GRAVITY * mass_per_length[:, None] * np.ones_like(w.station), down), point_forces[None])
 
 
-def dead(structure: Structure, w: Weights) -> tuple[Array, Array]:
-    """Node forces (node, 3) and dyads (node, 3, 3) of spars and fittings, fixed loads included."""
-    forces = [
-        np.array([f.load.east, f.load.north, f.load.up]) + STANDARD_GRAVITY * f.mass * DOWN for f in fittings_of(structure)
-    ]
+def dead(structure: Structure, w: Weights) -> Loads:
+    """Weights of spars and fittings and the fixed loads, one case."""
+    forces = [np.array([f.load.east, f.load.north, f.load.up]) + STANDARD_GRAVITY * f.mass * DOWN for f in fittings_of(structure)]
     return _weight(structure, w, structure.pieces.mass, np.array(forces).reshape(-1, 3))
 
 
-def ice(structure: Structure, w: Weights) -> tuple[Array, Array]:
-    """The same for the weight of ice."""
+def ice(structure: Structure, w: Weights) -> Loads:
+    """The weight of ice on spars and fittings, one case."""
     gained = [(f.iced_mass if f.iced_mass is not None else f.mass) - f.mass for f in fittings_of(structure)]
     forces = STANDARD_GRAVITY * np.array(gained).reshape(-1, 1) * DOWN
     return _weight(structure, w, structure.pieces.iced_mass - structure.pieces.mass, forces)

@@ -48,16 +48,27 @@ def weights(pieces: Pieces) -> Weights:
     )
 
 
-def spread(pieces: Pieces, w: Weights, intensity: Array, direction: Array, nodes: int) -> tuple[Array, Array]:
-    """Forces (case, node, 3) and dyads (case, node, 3, 3) of the load intensity(piece, gauss) [N/m] times direction (case, piece, 3)."""
-    cases = len(direction)
+def spread(w: Weights, intensity: Array, direction: Array) -> Array:
+    """What a load of intensity (piece, gauss) [N/m] times direction (case, piece, 3) brings to the ends of every piece.
+
+    Returns (case, piece, 4, 3): force at the low node [N], lever load there [N m], and both at the high node; a lever load m gives
+    the dyad t (x) m.
+    """
+    share = np.stack([np.sum(by * intensity, axis=1) for by in (w.force_low, w.arm_low, w.force_high, w.arm_high)], axis=-1)
+    return np.asarray(share[..., None] * direction[:, :, None, :])
+
+
+def to_nodes(pieces: Pieces, ends: Array, nodes: int) -> tuple[Array, Array]:
+    """Forces (case, node, 3) and dyads (case, node, 3, 3) of the loads (case, piece, 4, 3) on pieces."""
+    cases = len(ends)
     force = np.zeros((cases, nodes, 3))
-    dyad = np.zeros((cases, nodes, 3, 3))
-    for node, by_force, by_arm in ((pieces.low, w.force_low, w.arm_low), (pieces.high, w.force_high, w.arm_high)):
-        share = np.zeros((nodes, len(node)))
-        share[node, np.arange(len(node))] = np.sum(by_force * intensity, axis=1)
-        force += np.einsum("np,cpi->cni", share, direction)
-        lever = np.zeros((nodes, len(node)))
-        lever[node, np.arange(len(node))] = np.sum(by_arm * intensity, axis=1)
-        dyad += np.einsum("np,pi,cpj->cnij", lever, pieces.axis, direction)
-    return force, dyad
+    lever = np.zeros((cases, nodes, 3))
+    axis = np.zeros((nodes, 3))
+    each = np.arange(len(pieces.low))
+    for node, first in ((pieces.low, 0), (pieces.high, 2)):
+        to = np.zeros((nodes, len(node)))
+        to[node, each] = 1.0
+        force += to @ ends[:, :, first]
+        lever += to @ ends[:, :, first + 1]
+        axis[node] = pieces.axis
+    return force, axis[:, :, None] * lever[..., None, :]

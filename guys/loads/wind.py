@@ -13,7 +13,7 @@ import math
 import numpy as np
 from numpy.typing import NDArray
 
-from guys.loads.dead import fittings_of, on_points
+from guys.loads.dead import fittings_of
 from guys.loads.pressure import across, blowing_to, mean_pressure, pressure
 from guys.loads.spread import Weights, spread
 from guys.rotation import Array, dot
@@ -23,8 +23,8 @@ from guys.structure import Structure
 Flags = NDArray[np.bool_]
 
 
-def on_spars(structure: Structure, wind: Wind, w: Weights, start: Array, end: Array, foot: Array, wind_from: Array, iced: Flags) -> tuple[Array, Array]:
-    """Node forces (case, node, 3) and dyads (case, node, 3, 3).
+def on_spars(structure: Structure, wind: Wind, w: Weights, start: Array, end: Array, foot: Array, wind_from: Array, iced: Flags) -> Array:
+    """Loads (case, piece, 4, 3) on the pieces, see `guys.loads.spread`.
 
     start, end : (piece, 3) [m] ends of every stretch in the setting position;  foot : (spar, 3);  wind_from, iced : (case,)
     """
@@ -36,11 +36,11 @@ def on_spars(structure: Structure, wind: Wind, w: Weights, start: Array, end: Ar
     q = pressure(wind, z) * pieces.drag[:, None]
     pattern = across(blowing_to(wind_from)[:, None, :], axis)
     width = np.where(iced[:, None], pieces.iced_width, pieces.width)
-    return spread(pieces, w, q, pattern * width[..., None], structure.nodes)
+    return spread(w, q, pattern * width[..., None])
 
 
-def on_fittings(structure: Structure, wind: Wind, at: Array, foot: Array, wind_from: Array, iced: Flags) -> tuple[Array, Array]:
-    """The same for fittings; at : (fitting, 3) [m] in the setting position."""
+def on_fittings(structure: Structure, wind: Wind, at: Array, foot: Array, wind_from: Array, iced: Flags) -> Array:
+    """Forces (case, fitting, 3) [N]; at : (fitting, 3) [m] in the setting position."""
     fittings = fittings_of(structure)
     to = blowing_to(wind_from)
     force = np.zeros((len(wind_from), len(fittings), 3))
@@ -49,7 +49,7 @@ def on_fittings(structure: Structure, wind: Wind, at: Array, foot: Array, wind_f
         if f.area is not None:
             area = np.where(iced, f.iced_area if f.iced_area is not None else f.area, f.area)
             force[:, k] = (q[k] * (f.drag or 0.0) * area)[:, None] * _pattern(f, to)
-    return on_points(structure, force)
+    return force
 
 
 def _pattern(fitting: Fitting, to: Array) -> Array:

@@ -92,8 +92,7 @@ def _document(text: str, path: str | None) -> dict[str, Any]:
         raise _whole(path, "not readable as TOML: nested too deeply") from None
     except ValueError as error:
         place = _PLACE.search(str(error))
-        last = text.count("\n") + 1
-        line, column = (int(place[1]), int(place[2])) if place and place[1] else (last, None)
+        line, column = (int(place[1]), int(place[2])) if place and place[1] else (text.rstrip().count("\n") + 1 if place else None, None)
         raise _whole(path, f"not readable as TOML: {_toml_reason(_PLACE.sub('', str(error)))}", line, column) from None
 
 
@@ -102,6 +101,8 @@ def _toml_reason(reason: str) -> str:
         return "this key is given twice"
     if reason.startswith("Cannot declare"):
         return "this table is given twice; write [[...]] with two brackets where there may be several"
+    if "integer string conversion" in reason:
+        return "a whole number has too many digits"
     if reason.startswith("Invalid value"):
         return "invalid value; text and quantities stand in quotes"
     return reason[:1].lower() + reason[1:]
