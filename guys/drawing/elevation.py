@@ -15,7 +15,7 @@ import numpy as np
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
 from guys.drawing.labels import Array, Field, Wish, all_over, around, column, place
-from guys.drawing.lettering import fitted
+from guys.drawing.lettering import fitted, shortened
 from guys.drawing.page import Page, Rect
 from guys.drawing.reading import (
     View,
@@ -78,7 +78,7 @@ def below_room(solution: Solution, zone: Rect, view: View) -> float:
     across = view.project(solution.anchors.position - base_point(solution))[:, 0]
     wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
     rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in (across < 0.0, across >= 0.0) if side.any()]
-    return 24.0 + TIER * max(rows, default=0)
+    return 17.0 + TIER * max(rows, default=0)
 
 
 def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, view: View, tongue: Tongue) -> None:
@@ -191,7 +191,7 @@ def anchor_line(solution: Solution, anchor: str) -> Line:
     angles = sorted(guy_angle(solution, i) for i in anchor_cables(solution, anchor))
     texts = list(dict.fromkeys(angle(a) for a in angles))
     row = " ".join(texts) if len(texts) < 4 else f"{texts[0]} to {texts[-1]}"
-    return Line(fitted(anchor, 24.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
+    return Line(shortened(anchor, 27.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
 
 
 def _bases(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
@@ -212,22 +212,28 @@ def base_lines(worst: FootWorst, tongue: Tongue) -> list[Line]:
 
 
 def _levels(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+    """Levels beside the spar where all of them find room there, else all in a column at the left."""
+    tags = _level_tags(solution, on, tongue)
+    near = [replace(around(at, blocks.size(lines), 0.6, (-1.0, 0.35), farthest=4.5), leader_from=1.4) for at, lines in tags]
+    trial = field.copied()
+    beside = not any(place(trial, wish).clashes for wish in near)
+    for wish, (at, lines) in zip(near, tags, strict=True):
+        edge = on.zone.left + 1.0 + wish.boxes[0, 2] - wish.boxes[0, 0]
+        wishes = [wish] if beside else [column(wish, edge, field.room), all_over(wish, field.room)]
+        blocks.draw_placed(page, place(field, *wishes), at, lines)
+
+
+def _level_tags(solution: Solution, on: ElevationFrame, tongue: Tongue) -> list[tuple[Array, list[Line]]]:
+    """Where cables are made fast to spars, each place once, with its level."""
     ground = base_point(solution)[2]
-    done: set[tuple[str, int]] = set()
+    tags: dict[tuple[str, int], tuple[Array, list[Line]]] = {}
     for cable in solution.scenario.cable:
         for end in (cable.from_, cable.to):
-            if not isinstance(end, model.SparPoint) or (key := (end.spar, round(end.at * 100.0))) in done:
-                continue
-            done.add(key)
-            where = at_station(spar_named(solution, end.spar), end.at)
-            lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
-            _tag(page, on, field, on.on_page(where), lines, (-1.0, 0.35))
-
-
-def _tag(page: Page, on: ElevationFrame, field: Field, at: Array, lines: Sequence[Line], outward: tuple[float, float]) -> None:
-    near = replace(around(at, blocks.size(lines), 0.6, outward, farthest=4.5), leader_from=1.4)
-    beside = column(near, on.zone.left + 1.0 + near.boxes[0, 2] - near.boxes[0, 0], field.room)
-    blocks.draw_placed(page, place(field, near, beside, all_over(near, field.room)), at, lines)
+            if isinstance(end, model.SparPoint):
+                where = at_station(spar_named(solution, end.spar), end.at)
+                lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
+                tags.setdefault((end.spar, round(end.at * 100.0)), (on.on_page(where), lines))
+    return list(tags.values())
 
 
 def lettered_sections(solution: Solution) -> list[tuple[str, model.Spar, int, model.Section]]:

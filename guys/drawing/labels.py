@@ -41,6 +41,10 @@ class Field:
     discs: list[Array] = field(default_factory=list)
     leaders: list[Array] = field(default_factory=list)
 
+    def copied(self) -> Field:
+        """The same field, to try places on."""
+        return Field(self.room, list(self.segments), list(self.boxes), list(self.discs), list(self.leaders))
+
     def add_line(self, points: ArrayLike) -> None:
         """A polyline (point, 2); pieces with NaN are left out."""
         p = np.asarray(points, dtype=float)
@@ -91,7 +95,7 @@ def crossing(segments: Array, boxes: Array) -> NDArray[np.bool_]:
     run = np.where(np.abs(run) < _PARALLEL, _PARALLEL, run)
     one, two = (boxes[None, :, :2] - start) / run, (boxes[None, :, 2:] - start) / run
     enter, leave = np.minimum(one, two).max(axis=-1), np.maximum(one, two).min(axis=-1)
-    return np.asarray((np.maximum(enter, 0.0) <= np.minimum(leave, 1.0)))
+    return np.asarray(np.maximum(enter, 0.0) <= np.minimum(leave, 1.0))
 
 
 def overlapping(boxes: Array, others: Array) -> NDArray[np.bool_]:

@@ -83,6 +83,17 @@ def fitted(text: str, room: float, size: float, bold: bool = False) -> str:
     return text + ELLIPSIS
 
 
+def shortened(text: str, room: float, size: float, bold: bool = False) -> str:
+    """A name cut in its middle where `room` [mm] is short: its beginning and its end tell it apart."""
+    if width(text, size, bold) <= room:
+        return text
+    for kept in range(len(text) - 1, 1, -1):
+        short = text[: (kept + 1) // 2].rstrip() + ELLIPSIS + text[-(kept // 2) :].lstrip()
+        if width(short, size, bold) <= room:
+            return short
+    return ELLIPSIS
+
+
 def _chunks(word: str, room: float, size: float, bold: bool) -> list[str]:
     """A word longer than the line, cut to pieces that fit."""
     pieces, piece = [], ""

@@ -15,7 +15,8 @@ import numpy as np
 
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Wish, all_over, around, place
+from guys.drawing.labels import Array, Field, Wish, all_over, around, clashes, place
+from guys.drawing.lettering import shortened
 from guys.drawing.page import Page, Rect, arc
 from guys.drawing.reading import (
     base_point,
@@ -37,6 +38,7 @@ LABEL_ROOM = (46.0, 19.0)
 HEAD, STRIP = 12.0, 9.5
 LONGEST_BAR, LARGEST_RING = 24.0, 9.0
 DOT = 0.9
+WIND_ARROW = 15.0
 
 
 @dataclass(frozen=True)
@@ -274,26 +276,25 @@ def _label_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) ->
 
 
 def _governing_wind(page: Page, solution: Solution, on: PlanFrame, field: Field, tongue: Tongue) -> None:
+    """The wind of the greatest pull of all, as a large arrow upwind of the site where there is room (it is in the words anyway)."""
     pulls = [(greatest(w.resultant), w.name) for w in solution.worst_anchors]
     winds = [(g, name) for g, name in pulls if isfinite(g.value) and isfinite(g.wind_from)]
     if not winds or max(p[0].value for p in pulls) > max(w[0].value for w in winds):
         return
     top, name = max(winds, key=lambda w: w[0].value)
-    lines = [
-        Line(wind_words(solution, top.case, top.wind_from), colour=style.WIND, bold=True),
-        Line(f"governs {name}: pull {tongue.say(force, top.value)}", colour=style.WIND),
-    ]
+    short = shortened(name, 34.0, style.BODY)
+    words = Line(wind_words(solution, top.case, top.wind_from), colour=style.WIND, bold=True)
+    lines = [words, Line(f"governs {short}: pull {tongue.say(force, top.value)}", colour=style.WIND)]
     wide, high = blocks.size(lines)
-    arrow = 15.0
     unit = np.array([np.sin(top.wind_from), np.cos(top.wind_from)])
     reach = np.linalg.norm(on.on_page(solution.anchors.position) - on.centre, axis=1).max(initial=10.0)
-    spot = place(field, _anywhere(on.room, (wide + arrow, max(high, 13.0)), on.centre + unit * (reach + 14.0)))
-    middle = np.array([spot.box[0] + 6.5, (spot.box[1] + spot.box[3]) / 2.0])
+    wish = _anywhere(on.room, (wide + WIND_ARROW, max(high, 13.0)), on.centre + unit * (reach + 14.0))
+    if clashes(field, wish.boxes).min() > 0:
+        return
+    box = place(field, wish).box
+    middle = np.array([box[0] + 6.5, (box[1] + box[3]) / 2.0])
     page.arrow(middle + 6.0 * unit, middle - 6.0 * unit, style.WIND, 2.0, 3.4)
-    top_edge = middle[1] + high / 2.0
-    blocks.draw(page, np.array([spot.box[0] + arrow, top_edge - high, spot.box[2], top_edge]), lines)
-    if spot.clashes:
-        page.crowded.append("governing wind")
+    blocks.draw(page, np.array([box[0] + WIND_ARROW, middle[1] - high / 2.0, box[2], middle[1] + high / 2.0]), lines)
 
 
 def _anywhere(room: Rect, size: tuple[float, float], wanted: Array) -> Wish:

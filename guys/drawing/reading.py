@@ -150,13 +150,24 @@ def guy_angle(solution: Solution, cable: int) -> float:
 
 def slack_sectors(solution: Solution, cable: int) -> tuple[str, ...]:
     """In words, each sector of winds and each still-air case in which a cable drops."""
-    words = [_sector_words(solution, line, cable) for line in range(len(solution.sweep.case))] if solution.sweep else []
-    if solution.sweep is None:
-        words = [_listed_winds(solution, cable)]
+    words = _swept_winds(solution, cable) if solution.sweep is not None else [_listed_winds(solution, cable)]
     for row, (case, wind) in enumerate(zip(solution.case, solution.wind_from, strict=True)):
         if not isfinite(wind) and solution.cables.slack[row, cable] and solution.cables.present[row, cable]:
             words.append("still air, as set" if case == "setting" else f"still air, {case}")
     return tuple(w for w in words if w)
+
+
+def _swept_winds(solution: Solution, cable: int) -> list[str]:
+    """Sectors of each case with wind; named only where they differ between cases."""
+    sweep = solution.sweep
+    if sweep is None:
+        return []
+    by_sector: dict[str, list[str]] = {}
+    for line, case in enumerate(sweep.case):
+        by_sector.setdefault(_sector_words(sweep.slack[line, :, cable], sweep.bearing), []).append(case)
+    if len(by_sector) == 1:
+        return list(by_sector)
+    return [f"{words} ({', '.join(cases)})" for words, cases in by_sector.items() if words]
 
 
 def _listed_winds(solution: Solution, cable: int) -> str:
@@ -165,18 +176,13 @@ def _listed_winds(solution: Solution, cable: int) -> str:
     return f"wind from {', '.join(turns)}" if turns else ""
 
 
-def _sector_words(solution: Solution, line: int, cable: int) -> str:
-    sweep = solution.sweep
-    if sweep is None:
-        return ""
-    runs = sectors(sweep.slack[line, :, cable], sweep.bearing)
+def _sector_words(slack: Flags, bearings: Array) -> str:
+    runs = sectors(slack, bearings)
     if not runs:
         return ""
-    if runs == [(0.0, 0.0)]:
-        spans = "every bearing"
-    else:
-        spans = " and ".join(bearing(a) if a == b else f"{bearing(a)} to {bearing(b)}" for a, b in runs)
-    return f"wind from {spans}" + (f" ({sweep.case[line]})" if len(sweep.case) > 1 else "")
+    if bool(slack.all()):
+        return "wind from every bearing"
+    return "wind from " + " and ".join(bearing(a) if a == b else f"{bearing(a)} to {bearing(b)}" for a, b in runs)
 
 
 def sectors(flags: Flags, bearings: Array) -> list[tuple[float, float]]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import ceil, floor, isfinite, log10
+from math import floor, isfinite, log10
 
 from guys.drawing import style
 from guys.drawing.page import Page
@@ -71,8 +71,3 @@ def load_bar(page: Page, x: float, y: float, per_newton: float, longest: float, 
     page.line([(x, y + 0.7), (x + long, y + 0.7)], style.LOAD, style.BAR, butt=True)
     words = f"bar or ring radius {total:g} {name}"
     return x + max(long, page.text(x, y - 3.6, words, style.SMALL, colour=style.LOAD))
-
-
-def decimals_needed(step: float) -> int:
-    """Decimals that show a round step."""
-    return max(0, ceil(-log10(step) - _FIT_NOISE)) if step > 0.0 else 0

@@ -1,0 +1,309 @@
+"""The box: wind, cases, state, what was checked and what was not, what dropped, every warning, the self-check, units and version.
+
+Rows of a label and its words, broken to the width of the box and never cut: a box too long for its room makes the page taller.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from math import degrees, isfinite, tan
+
+import numpy as np
+
+from guys.drawing import style
+from guys.drawing.lettering import wrapped
+from guys.drawing.page import Page, Rect
+from guys.drawing.reading import SETTING, slack_sectors, wind_words
+from guys.drawing.rounding import (
+    ABSENT,
+    Tongue,
+    bearing,
+    factor,
+    force,
+    length,
+    line_mass,
+    moment,
+    plain_force,
+    small_angle,
+    speed,
+    temperature,
+    thickness,
+)
+from guys.results import Finding, Solution
+
+SIZE = 8.6
+PITCH = SIZE * style.POINT_MM * 1.28
+LABEL_WIDE = 23.0
+FRAME = 2.4
+BLANK = "_" * 14
+FROM = "wind from "
+FELL = ("none", "unstable")
+
+
+@dataclass(frozen=True)
+class Entry:
+    """One row of the box; an alarming one is set bold."""
+
+    label: str
+    text: str
+    alarming: bool = False
+
+
+def entries(solution: Solution, tongue: Tongue) -> list[Entry]:
+    """All rows, alarming things first."""
+    return [
+        *_warnings(solution),
+        *_state(solution),
+        *_past(solution, tongue),
+        *_checked(solution, tongue),
+        *_not_judged(solution),
+        *_dropped(solution),
+        *_weather(solution, tongue),
+        *_cables(solution, tongue),
+        *_lean(solution),
+        *(Entry("Note", note) for note in solution.notes),
+        *([Entry("Not checked", "; ".join(solution.not_checked))] if solution.not_checked else []),
+        _self_check(solution),
+        _units(tongue),
+        _program(solution),
+        Entry("Date", f"{BLANK} pegged out by {BLANK} checked by {BLANK}"),
+    ]
+
+
+def averaging_words(seconds: float) -> str:
+    """ "3 s gust", "10 min mean"."""
+    amount = f"{seconds:g} s" if seconds < 60.0 else f"{seconds / 60.0:g} min" if seconds < 3600.0 else f"{seconds / 3600.0:g} h"
+    return f"{amount} {'gust' if seconds < 60.0 else 'mean'}"
+
+
+def _warnings(solution: Solution) -> list[Entry]:
+    texts = dict.fromkeys([*solution.warnings, *solution.scenario.warnings])
+    return [Entry("Warning", text, alarming=True) for text in texts]
+
+
+def _rows_in_state(solution: Solution, state: str) -> list[int]:
+    return [i for i, s in enumerate(solution.state) if s == state]
+
+
+def state_summary(solution: Solution) -> str:
+    """How many cases found an equilibrium of which kind, in words."""
+    total = len(solution.state)
+    if all(s == "stable" for s in solution.state):
+        return f"stable in all {total} cases and winds"
+    words = {"none": "NO EQUILIBRIUM (falls)", "unstable": "UNSTABLE", "neutral": "NEUTRAL (free to move)", "stable": "stable"}
+    found = {s: len(_rows_in_state(solution, s)) for s in words}
+    return ", ".join(f"{words[s]} in {n} of {total}" for s, n in found.items() if n)
+
+
+def _state(solution: Solution) -> list[Entry]:
+    rows = [Entry("State", f"{state_summary(solution)}, still air among them")]
+    for state, word in (("none", "Falls"), ("unstable", "Unstable"), ("neutral", "Neutral")):
+        by_reason: dict[tuple[str, str], list[int]] = {}
+        for i in _rows_in_state(solution, state):
+            by_reason.setdefault((solution.case[i], solution.reason[i] or solution.note[i] or ""), []).append(i)
+        for (case, reason), which in by_reason.items():
+            winds = [bearing(float(solution.wind_from[i])) for i in which if isfinite(solution.wind_from[i])]
+            where = f"{case}, wind from {', '.join(winds)}" if winds else f"{case}, still air"
+            rows.append(Entry(word, f"{where}: {reason}" if reason else where, alarming=True))
+    return rows
+
+
+def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
+    """A demand or capacity in the words of its unit."""
+    if not isfinite(value):
+        return ABSENT
+    if unit == "N":
+        return tongue.say(force if demand else plain_force, value)
+    if unit == "N m":
+        return tongue.say(moment, value)
+    if unit == "m":
+        return tongue.say(length, value)
+    if unit == "rad":
+        return small_angle(value)
+    return f"{value:.3g} {unit}".strip() if unit not in ("1", "-") else f"{value:.3g}"
+
+
+def finding_words(solution: Solution, finding: Finding, tongue: Tongue) -> str:
+    """Thing, demand / capacity, factor against the one required, verdict, and with what."""
+    both = f"{amount(finding.demand, finding.unit, tongue, True)} / {amount(finding.capacity, finding.unit, tongue, False)}"
+    asked = f"{finding.required:g} needed" + (", default" if finding.default else "")
+    where = f"; {wind_words(solution, finding.case, finding.wind_from)}" if finding.case else ""
+    return f"{finding.thing} {finding.quantity} {both}, factor {factor(finding.factor)} ({asked}): {finding.verdict}{where}"
+
+
+def worst_of_each(findings: Iterable[Finding]) -> list[Finding]:
+    """The finding with the least factor over the one asked for, of each quantity judged."""
+    worst: dict[str, Finding] = {}
+    for f in findings:
+        if f.verdict == "not judged":
+            continue
+        if f.quantity not in worst or not _reserve(f) >= _reserve(worst[f.quantity]):
+            worst[f.quantity] = f
+    return list(worst.values())
+
+
+def _reserve(finding: Finding) -> float:
+    return finding.factor / finding.required if finding.required else finding.factor
+
+
+def _past(solution: Solution, tongue: Tongue) -> list[Entry]:
+    """The worst past of each quantity in full, the others by name and factor."""
+    rows = []
+    for worst in worst_of_each(solution.past):
+        rows.append(Entry("Past", finding_words(solution, worst, tongue), alarming=True))
+        others = sorted((f for f in solution.past if f.quantity == worst.quantity and f is not worst), key=lambda f: f.factor)
+        if others:
+            named = ", ".join(f"{f.thing} {factor(f.factor)}" for f in others)
+            rows.append(Entry("Past", f"{worst.quantity} also past, factor: {named}", alarming=True))
+    return rows
+
+
+def _checked(solution: Solution, tongue: Tongue) -> list[Entry]:
+    within = [f for f in worst_of_each(solution.findings) if f.verdict == "within"]
+    return [Entry("Hardest", finding_words(solution, f, tongue)) for f in within]
+
+
+def _not_judged(solution: Solution) -> list[Entry]:
+    groups: dict[tuple[str, str], list[str]] = {}
+    for f in solution.findings:
+        if f.verdict == "not judged":
+            groups.setdefault((f.quantity, f.why), []).append(f.thing)
+    texts = [f"{quantity} of {', '.join(things)}" + (f" ({why})" if why else "") for (quantity, why), things in groups.items()]
+    return [Entry("Not judged", "; ".join(texts))] if texts else []
+
+
+def _dropped(solution: Solution) -> list[Entry]:
+    """Cables that drop, those of the same winds together."""
+    groups: dict[str, list[str]] = {}
+    for i, name in enumerate(solution.cables.name):
+        for words in slack_sectors(solution, i):
+            groups.setdefault(words, []).append(name)
+    if not groups:
+        return [Entry("Dropped", "no cable, in any case or wind")]
+    windy = {w.removeprefix(FROM): names for w, names in groups.items() if w.startswith(FROM)}
+    still = {w: names for w, names in groups.items() if not w.startswith(FROM)}
+    parts = [f"{', '.join(names)} in {words}" for words, names in still.items()]
+    if windy:
+        parts.append("in wind from: " + "; ".join(f"{', '.join(names)} {words}" for words, names in windy.items()))
+    return [Entry("Dropped", "; ".join(parts))]
+
+
+def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
+    rows, wind, ice = [], solution.scenario.wind, solution.scenario.ice
+    if wind is not None:
+        how = "uniform with height" if wind.profile.kind == "uniform" else f"power law {wind.profile.exponent:g} with height"
+        swept = "; full circle swept, peaks refined" if solution.sweep is not None else ""
+        rows.append(
+            Entry(
+                "Wind",
+                f"{tongue.say(speed, wind.speed)}, {averaging_words(wind.averaging)} at {tongue.say(_height, wind.height)}, {how}, "
+                f"air {wind.air_density:.4g} kg/m³; {len(wind.directions)} bearings listed{swept}",
+            )
+        )
+    parts = []
+    for case in solution.scenario.case:
+        lost = f", without {', '.join(case.without)}" if case.without else ""
+        parts.append(f"{case.name}: dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}, {tongue.say(temperature, case.temperature)}{lost}")
+    if ice is not None:
+        parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {ice.density:g} kg/m³")
+    return [*rows, Entry("Cases", "; ".join(parts))]
+
+
+def _height(metres: float, system: str) -> str:
+    return f"{metres:g} m" if system == "SI" else f"{metres / 0.3048:.3g} ft"
+
+
+def _cables(solution: Solution, tongue: Tongue) -> list[Entry]:
+    asked = solution.scenario
+    parts = []
+    for name in dict.fromkeys(c.rope for c in asked.cable):
+        rope = asked.rope.get(name)
+        if rope is not None:
+            least = f", least breaking load {tongue.say(plain_force, rope.strength)}" if rope.strength else ""
+            parts.append(f"{name} {tongue.say(thickness, rope.diameter)}, {tongue.say(line_mass, rope.mass)}{least}")
+    model = "hanging as catenaries" if asked.analysis.cable == "catenary" else "straight and weightless"
+    rows = [Entry("Cables", f"{'; '.join(parts)}; {model}")] if parts else []
+    words = setting_words(solution, tongue)
+    warm = tongue.say(temperature, asked.setting.temperature)
+    return [*rows, Entry("Set to", f"{words}; at the lower end, still air, {warm}")] if words else rows
+
+
+def setting_words(solution: Solution, tongue: Tongue) -> str:
+    """Tensions in still air, by guy level; the range where they differ."""
+    groups: dict[str, list[float]] = {}
+    for cable, tension in zip(solution.scenario.cable, solution.cables.tension_anchor[SETTING], strict=True):
+        groups.setdefault(cable.level or cable.name, []).append(float(tension))
+    parts = []
+    for name, values in groups.items():
+        if all(isfinite(v) for v in values):
+            ends = list(dict.fromkeys(tongue.say(plain_force, v) for v in (min(values), max(values))))
+            parts.append(f"{name} {' to '.join(ends)}")
+    return ", ".join(parts)
+
+
+def _lean(solution: Solution) -> list[Entry]:
+    still = float(np.max(solution.head_lean[SETTING], initial=0.0))
+    if not isfinite(still):
+        return []
+    slope = f" (1/{1.0 / tan(still):.0f})" if still > np.deg2rad(0.005) else ""
+    rows = [Entry("Lean", f"{degrees(still):.2f}°{slope} off the drawn line in still air")]
+    windy = solution.head_lean[np.isfinite(solution.wind_from)]
+    if windy.size and bool(np.isfinite(windy).any()):
+        rows = [Entry("Lean", f"{rows[0].text}, {small_angle(float(np.nanmax(windy)))} at most in wind")]
+    return rows
+
+
+def _self_check(solution: Solution) -> Entry:
+    check = solution.check
+    where = wind_words(solution, check.resolved_case, check.resolved_wind_from)
+    again = {
+        "agrees": f"{where} solved again by least squares: agrees to {check.difference:.0e}",
+        "inconclusive": f"{where} solved again by least squares: inconclusive",
+        "other stable state": f"{where} solved again by least squares: ENDS IN ANOTHER STABLE STATE",
+        "not run": "governing case not solved again",
+    }[check.resolve]
+    balance = f"{check.balance:.0e}" if isfinite(check.balance) else ABSENT
+    text = f"sum of loads and reactions {balance} of the reference force; {again}"
+    return Entry("Self-check", text, alarming=check.resolve == "other stable state")
+
+
+def _units(tongue: Tongue) -> Entry:
+    names = " and ".join("SI" if s == "SI" else "US" for s in tongue.systems)
+    force_names = " and ".join("kN" if s == "SI" else "lbf" for s in tongue.systems)
+    masses = " and ".join("kg" if s == "SI" else "lb" for s in tongue.systems)
+    return Entry("Units", f"{names}: {force_names} force, {masses} mass. Loads rounded up to two figures; full digits in result.json.")
+
+
+def _program(solution: Solution) -> Entry:
+    return Entry("Program", f"guys {solution.version}, scenario {solution.scenario.sha256[:12]}")
+
+
+@dataclass(frozen=True)
+class Laid:
+    """Rows broken into lines for a width."""
+
+    rows: tuple[tuple[Entry, tuple[str, ...]], ...]
+    height: float
+
+
+def laid(rows: Iterable[Entry], room: float) -> Laid:
+    """Break rows to the width of the box; height of all, frame included."""
+    inner = room - LABEL_WIDE - 2.0 * FRAME
+    broken = tuple((row, tuple(wrapped(row.text, inner, SIZE, row.alarming))) for row in rows)
+    return Laid(broken, sum(len(lines) for _, lines in broken) * PITCH + 2.0 * FRAME + 1.0)
+
+
+def draw_box(page: Page, words: Laid, zone: Rect) -> None:
+    """The frame and its rows, from the top."""
+    corners = [(zone.left, zone.bottom), (zone.right, zone.bottom), (zone.right, zone.top), (zone.left, zone.top)]
+    page.shape(corners, edge=style.INK, weight=style.THIN)
+    y = zone.top - FRAME - 0.78 * SIZE * style.POINT_MM
+    last = ""
+    for row, lines in words.rows:
+        if row.label != last:
+            page.text(zone.left + FRAME, y, row.label, SIZE, bold=True, colour=style.INK if row.alarming else style.GREY)
+        last = row.label if not row.alarming else ""
+        for line in lines:
+            page.text(zone.left + FRAME + LABEL_WIDE, y, line, SIZE, bold=row.alarming)
+            y -= PITCH

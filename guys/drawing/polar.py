@@ -1,0 +1,112 @@
+"""Greatest anchor pull against the bearing the wind comes from, north up.
+
+The heavy line is the greatest pull of any anchor at each bearing, over all cases with wind; thin lines are the anchors.  On the rim the
+anchor that governs each sector is named, so that no line style has to be told apart.  A bearing with no equilibrium leaves a gap.
+"""
+
+from __future__ import annotations
+
+from math import ceil
+
+import numpy as np
+
+from guys.drawing import blocks, style
+from guys.drawing.blocks import Line
+from guys.drawing.labels import Array, Field, Wish, place
+from guys.drawing.lettering import shortened
+from guys.drawing.page import Page, Rect, arc
+from guys.drawing.reading import sectors
+from guys.drawing.rounding import POUND_FORCE, Tongue
+from guys.drawing.scales import round_below
+from guys.results import Solution
+
+RIM = 8.5
+HEAD = 13.5
+
+
+def has_polar(solution: Solution) -> bool:
+    """Is there a sweep with anything in it."""
+    sweep = solution.sweep
+    return sweep is not None and sweep.resultant.size > 0 and bool(np.nanmax(np.nan_to_num(sweep.resultant)) > 0.0)
+
+
+def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> None:
+    """The figure in its zone."""
+    if solution.sweep is None:
+        return
+    unit, name = (1e3, "kN") if tongue.systems[0] == "SI" else (POUND_FORCE, "lbf")
+    pull = np.fmax.reduce(solution.sweep.resultant, axis=0) / unit
+    top = float(np.nanmax(pull))
+    if tongue.systems[0] == "SI" and top < 0.1:
+        pull, top, name = pull * 1e3, top * 1e3, "N"
+    step = round_below(top / 1.5)
+    rim = step * ceil(top / step - 1e-9)
+    for i, line in enumerate(("Greatest anchor pull", "against the wind's bearing", f"rim {rim:g} {name}, rings {step:g} {name} apart")):
+        page.text(zone.left, zone.top - 3.4 - 4.2 * i, line, style.BODY if i == 0 else style.SMALL, bold=i == 0)
+    radius = min(zone.width - 2 * RIM, zone.height - HEAD - 2 * RIM) / 2.0
+    centre = np.array([(zone.left + zone.right) / 2.0, zone.top - HEAD - RIM - radius])
+    field = Field(zone)
+    _web(page, field, centre, radius, round(rim / step))
+    _curves(page, solution.sweep.bearing, pull * radius / rim, centre)
+    _rim(page, field, solution, pull, centre, radius)
+
+
+def _spoke(turn: float | Array) -> Array:
+    return np.stack([np.sin(turn), np.cos(turn)], axis=-1)
+
+
+def _web(page: Page, field: Field, centre: Array, radius: float, rings: int) -> None:
+    for turn in np.arange(0.0, 2.0 * np.pi, np.pi / 6.0):
+        page.line([centre, centre + radius * _spoke(turn)], style.PALE, 0.35, order=1.0)
+    for i in range(1, rings):
+        page.line(arc(centre, radius * i / rings, 91), style.PALE, 0.35, order=1.0)
+    page.line(arc(centre, radius, 121), style.GREY, style.HAIR, order=1.2)
+    field.add_line(arc(centre, radius + 1.4, 61))
+    for turn in range(0, 360, 90):
+        line = Line(f"{turn}°", style.SMALL, colour=style.GREY)
+        half = np.array(blocks.size([line])) / 2.0
+        unit = _spoke(np.deg2rad(turn))
+        at = centre + unit * (radius + 2.6 + float(np.abs(unit) @ half))
+        box = np.concatenate([at - half, at + half])
+        blocks.draw(page, box, [line])
+        field.add_box(box)
+
+
+def _curves(page: Page, bearings: Array, pull: Array, centre: Array) -> None:
+    spokes = np.vstack([_spoke(bearings), _spoke(bearings[:1])])
+    closed = np.vstack([pull, pull[:1]])
+    for anchor in range(pull.shape[1]):
+        page.line(centre + closed[:, anchor, None] * spokes, style.GREY, style.HAIR, order=2.0)
+    page.line(centre + np.fmax.reduce(closed, axis=1)[:, None] * spokes, style.LOAD, 1.8, order=2.5, name="envelope")
+
+
+def _rim(page: Page, field: Field, solution: Solution, pull: Array, centre: Array, radius: float) -> None:
+    """Names of the governing anchors, a tick where the governing anchor changes."""
+    bearings = solution.sweep.bearing if solution.sweep else np.empty(0)
+    governs = np.argmax(np.nan_to_num(pull, nan=-1.0), axis=1)
+    known = np.isfinite(pull).any(axis=1)
+    step = 2.0 * np.pi / max(len(bearings), 1)
+    for anchor in np.unique(governs[known]):
+        for first, last in sectors((governs == anchor) & known, bearings):
+            span = (last - first) % (2.0 * np.pi) if first != last else 0.0
+            whole = bool((governs[known] == anchor).all()) and bool(known.all())
+            start, middle = first - step / 2.0, 0.0 if whole else first + span / 2.0
+            if not whole:
+                page.line(centre + np.array([radius, radius + 2.0])[:, None] * _spoke(start), style.INK, style.THIN)
+            if whole or span > np.deg2rad(4.0):
+                _name_on_rim(page, field, solution.anchors.name[anchor], centre, radius, middle)
+
+
+def _name_on_rim(page: Page, field: Field, name: str, centre: Array, radius: float, turn: float) -> None:
+    lines = [Line(shortened(name, 15.0, style.SMALL, bold=True), style.SMALL, bold=True)]
+    half = np.array(blocks.size(lines)) / 2.0
+    turns = turn + np.deg2rad([0.0, 5.0, -5.0, 10.0, -10.0, 16.0, -16.0, 22.0, -22.0])
+    spokes = np.tile(_spoke(turns), (3, 1))
+    reach = np.repeat([2.6, 4.0, 6.0], len(turns))
+    push = np.abs(spokes) @ half
+    middle = centre + spokes * (radius + reach + push)[:, None]
+    spot = place(field, Wish(centre, np.hstack([middle - half, middle + half]), np.arange(len(middle), dtype=float), leader_from=1e6))
+    if spot.clashes:
+        field.boxes.pop()
+        return
+    blocks.draw(page, spot.box, lines)

@@ -1,0 +1,212 @@
+"""The table: what every base and every anchor must bear, bases first.
+
+Loads are the greatest of each over all cases and winds, rounded up to two figures; the wind named is the one of the greatest pull.
+"demand / capacity" is the hardest-worked guy of the anchor with its strength.  A column that does not fit goes, the least needed first;
+long names take more lines.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from math import isfinite
+
+from guys.drawing import style
+from guys.drawing.lettering import fitted, plain, width, wrapped
+from guys.drawing.page import Align, Page, Rect
+from guys.drawing.plan import uplift_words
+from guys.drawing.reading import (
+    Governing,
+    anchor_cables,
+    base_point,
+    check_distances,
+    from_base,
+    greatest,
+    pull_angle,
+    wind_words,
+)
+from guys.drawing.rounding import Tongue, angle, bearing, factor, force, length, level, moment, plain_force
+from guys.results import AnchorWorst, CableWorst, FootWorst, Solution
+
+ROW, HEAD_ROW = 4.2, 5.0
+PAD = 1.5
+LONGEST_NAME = 32.0
+SMALLEST = 0.9
+
+
+@dataclass(frozen=True)
+class Column:
+    """A head, how cells are ranged, and how readily the column is given up (0: never)."""
+
+    head: str
+    align: Align = "left"
+    spare: int = 0
+
+
+Cell = tuple[str, ...]
+Row = Sequence[Cell]
+
+
+@dataclass(frozen=True)
+class Grid:
+    """Columns and rows of cells; a cell of several lines makes its row taller; cells that begin with `PAST` are set bold."""
+
+    columns: tuple[Column, ...]
+    rows: tuple[Row, ...]
+
+    @property
+    def height(self) -> float:
+        """Height [mm] of head and rows."""
+        return HEAD_ROW + sum(_row_height(row) for row in self.rows) + 1.0
+
+
+def _row_height(row: Row) -> float:
+    return ROW * max(len(cell) for cell in row) + 1.1
+
+
+def _widths(grid: Grid, size: float) -> list[float]:
+    wide = []
+    for i, column in enumerate(grid.columns):
+        texts = [line for row in grid.rows for line in row[i]]
+        body = max((width(plain(t), size, _bold(i, t)) for t in texts), default=0.0)
+        wide.append(max(width(column.head, size, True), body))
+    return wide
+
+
+def _bold(column: int, text: str) -> bool:
+    return column == 0 or text.endswith(" past")
+
+
+def fitted_grid(grid: Grid, room: float) -> tuple[Grid, float]:
+    """The grid and a text size at which it fits the room, columns given up where a smaller size is not enough."""
+    for spare in range(max((c.spare for c in grid.columns), default=0), -1, -1):
+        for size in (style.BODY, style.BODY * 0.95, style.BODY * SMALLEST):
+            if sum(_widths(grid, size)) + PAD * (len(grid.columns) - 1) <= room:
+                return grid, size
+        keep = [i for i, c in enumerate(grid.columns) if not spare or c.spare != spare]
+        grid = Grid(tuple(grid.columns[i] for i in keep), tuple([row[i] for i in keep] for row in grid.rows))
+    return grid, style.BODY * SMALLEST
+
+
+def draw_grid(page: Page, grid: Grid, left: float, top: float, room: float) -> float:
+    """Set a grid across `room`; returns the y below it."""
+    grid, size = fitted_grid(grid, room)
+    wide = _widths(grid, size)
+    gap = min((room - sum(wide)) / max(len(wide) - 1, 1), 12.0)
+    starts = [left + sum(wide[:i]) + gap * i for i in range(len(wide))]
+    y = top - 3.6
+    for column, x, w in zip(grid.columns, starts, wide, strict=True):
+        page.text(x + (w if column.align == "right" else 0.0), y, column.head, size, True, style.GREY, column.align)
+    y = top - HEAD_ROW
+    page.line([(left, y), (left + room, y)], style.INK, style.THIN)
+    for row in grid.rows:
+        _draw_row(page, grid, row, (starts, wide), y, size)
+        y -= _row_height(row)
+        page.line([(left, y), (left + room, y)], style.PALE, style.HAIR)
+    return y - 1.0
+
+
+def _draw_row(page: Page, grid: Grid, row: Row, across: tuple[list[float], list[float]], top: float, size: float) -> None:
+    for i, (column, x, w, cell) in enumerate(zip(grid.columns, *across, row, strict=True)):
+        for k, line in enumerate(cell):
+            bold = _bold(i, line)
+            text = fitted(plain(line, bold), w + 0.1, size, bold)
+            ink = style.INK if k == 0 or i == 0 else style.GREY
+            page.text(x + (w if column.align == "right" else 0.0), top - 3.4 - ROW * k, text, size, bold, ink, column.align)
+
+
+def base_grid(solution: Solution, tongue: Tongue) -> Grid:
+    """One row for each foot: what it does to the ground, or to the spar that carries it."""
+    heads = ("base", "down", "wind from", "sideways", "wind from", "turning", "lift")
+    columns = tuple(Column(h, spare=2 if i in (2, 4) else 0) for i, h in enumerate(heads))
+    return Grid(columns, tuple(_base_row(solution, worst, tongue) for worst in solution.worst_feet))
+
+
+def _base_row(solution: Solution, worst: FootWorst, tongue: Tongue) -> Row:
+    down, side, turning, lift = (greatest(e) for e in (worst.down, worst.sideways, worst.turning, worst.lift))
+    lifts = tongue.each(force, lift.value) if lift.value > 0.0 else ("none",)
+    return [
+        (worst.spar if worst.carried_by is None else f"{worst.spar} on {worst.carried_by}",),
+        tongue.each(force, down.value),
+        (when(solution, down),),
+        tongue.each(force, side.value),
+        (when(solution, side),),
+        tuple(dict.fromkeys(tongue.each(moment, turning.value))),
+        lifts,
+    ]
+
+
+def when(solution: Solution, governing: Governing) -> str:
+    """The wind that governs, under a head that says "wind from"."""
+    return wind_words(solution, governing.case, governing.wind_from).removeprefix("wind from ")
+
+
+def anchor_grid(solution: Solution, tongue: Tongue) -> Grid:
+    """One row for each anchor."""
+    columns = (
+        Column("anchor"), Column("bearing", "right"), Column("radius", "right"), Column("level", "right"), Column("slope dist.", "right", 2),
+        Column("pull", "right"), Column("angle", "right"), Column("out", "right"), Column("up", "right"), Column("wind from"),
+        Column("hardest guy", spare=1), Column("demand / capacity", "right"), Column("factor"),
+    )  # fmt: skip
+    return Grid(columns, tuple(_anchor_row(solution, worst, tongue) for worst in solution.worst_anchors))
+
+
+def _anchor_row(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> Row:
+    point = solution.anchors.position[solution.anchors.name.index(worst.name)]
+    turn, radius, slope = from_base(solution, point)
+    pull, up = greatest(worst.resultant), greatest(worst.uplift).value
+    return [
+        tuple(wrapped(worst.name, LONGEST_NAME, style.BODY, bold=True)), (bearing(turn),), tongue.each(length, radius), tongue.each(level, point[2] - base_point(solution)[2]),
+        tongue.each(length, slope), tongue.each(force, pull.value), (angle(pull_angle(solution, worst)),),
+        tongue.each(force, greatest(worst.horizontal).value),
+        tongue.each(force, up) if up > 0.0 else (uplift_words(up, tongue),),
+        (when(solution, pull),), *_hardest(solution, worst.name, tongue),
+    ]  # fmt: skip
+
+
+def hardest_cable(solution: Solution, anchor: str) -> CableWorst | None:
+    """The guy of an anchor with the least factor; without strengths the one with the greatest tension."""
+    cables = [solution.worst_cables[i] for i in anchor_cables(solution, anchor)]
+    judged = [c for c in cables if isfinite(c.factor)]
+    if judged:
+        return min(judged, key=lambda c: c.factor)
+    return max(cables, key=lambda c: c.tension.value, default=None)
+
+
+def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cell, Cell]:
+    cable = hardest_cable(solution, anchor)
+    if cable is None:
+        return ("–",), ("–",), ("–",)
+    demand = greatest(cable.tension).value
+    if not isfinite(cable.factor):
+        return (cable.name,), tongue.each(force, demand), ("not judged",)
+    past = any(f.verdict == "past" and cable.name in f.thing for f in solution.findings) or cable.factor < solution.scenario.allowables.cable
+    stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, demand), tongue.each(plain_force, cable.strength), strict=True))
+    return (cable.name,), stacked, (f"{factor(cable.factor)} {'past' if past else 'within'}",)
+
+
+def _over(demand: str, capacity: str) -> str:
+    """ "6.3 / 23.0 kN": the unit once where it is the same."""
+    number, _, unit = demand.partition(" ")
+    return f"{number} / {capacity}" if capacity.endswith(f" {unit}") else f"{demand} / {capacity}"
+
+
+def check_lines(solution: Solution, tongue: Tongue, room: float) -> list[str]:
+    """Check distances between neighbouring anchors, as lines."""
+    pairs = [f"{names} {tongue.say(length, away)}" for names, away in check_distances(solution)]
+    return wrapped("Check distances, level: " + " · ".join(pairs), room, style.SMALL) if pairs else []
+
+
+def table_height(solution: Solution, tongue: Tongue, room: float) -> float:
+    """Height [mm] of both grids and the check distances."""
+    lines = len(check_lines(solution, tongue, room))
+    return base_grid(solution, tongue).height + anchor_grid(solution, tongue).height + 3.0 + 4.2 * lines
+
+
+def draw_table(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> None:
+    """Both grids from the top of the zone down."""
+    y = draw_grid(page, base_grid(solution, tongue), zone.left, zone.top, zone.width)
+    y = draw_grid(page, anchor_grid(solution, tongue), zone.left, y - 1.0, zone.width) - 3.0
+    for line in check_lines(solution, tongue, zone.width):
+        page.text(zone.left, y, line, style.SMALL)
+        y -= 4.2

@@ -1,0 +1,80 @@
+"""Files replaced whole or not at all.
+
+A result is written under a temporary name in the same directory, flushed to the disk, and renamed over the old file (POSIX rename is
+atomic within a file system).  Whatever goes wrong before that, an interruption included, leaves the old file as it was and no
+temporary one behind.
+"""
+
+from __future__ import annotations
+
+import errno
+import os
+from collections.abc import Iterator
+from contextlib import contextmanager, suppress
+from pathlib import Path
+from tempfile import NamedTemporaryFile
+
+from guys.errors import OutputError
+
+_REASONS = {
+    errno.ENOSPC: "the disk is full; what was there before is untouched",
+    errno.EDQUOT: "the disk quota is used up; what was there before is untouched",
+    errno.EROFS: "the file system is read-only",
+    errno.EACCES: "no permission to write there",
+    errno.EPERM: "no permission to write there",
+    errno.ENOENT: "the directory does not exist",
+    errno.ENOTDIR: "part of its path is not a directory",
+    errno.EISDIR: "a directory has that name",
+}
+
+
+@contextmanager
+def replaced(path: str | os.PathLike[str]) -> Iterator[Path]:
+    """Yield a temporary path to write to; on success it becomes `path`, on any failure it is removed.
+
+    Raises `OutputError` for what the operating system refuses, with the reason in words.
+    """
+    target = Path(path)
+    temporary: Path | None = None
+    try:
+        temporary = _beside(target)
+        yield temporary
+        _flush(temporary)
+        os.replace(temporary, target)
+        _flush_directory(target.parent)
+    except BaseException as failure:
+        if temporary is not None:
+            with suppress(OSError):
+                temporary.unlink(missing_ok=True)
+        if isinstance(failure, OSError):
+            raise OutputError(str(target), reason(failure)) from failure
+        raise
+
+
+def reason(failure: OSError) -> str:
+    """Why the operating system refused, in words."""
+    return _REASONS.get(failure.errno or 0, failure.strerror or str(failure))
+
+
+def _beside(target: Path) -> Path:
+    with NamedTemporaryFile(dir=target.parent, prefix=f".{target.name}.", suffix=".tmp", delete=False) as made:
+        made_path = Path(made.name)
+    mask = os.umask(0)
+    os.umask(mask)
+    made_path.chmod(0o666 & ~mask)
+    return made_path
+
+
+def _flush(path: Path) -> None:
+    with path.open("rb+") as stream:
+        os.fsync(stream.fileno())
+
+
+def _flush_directory(directory: Path) -> None:
+    """Make the rename last through a power cut, where the system lets a directory be opened."""
+    with suppress(OSError):
+        handle = os.open(directory, os.O_RDONLY)
+        try:
+            os.fsync(handle)
+        finally:
+            os.close(handle)
