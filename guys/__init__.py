@@ -5,12 +5,12 @@ from __future__ import annotations
 from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
+from guys.version import __version__
+
 if TYPE_CHECKING:
     from guys.results import Solution
     from guys.scenario import parse_scenario, read_scenario
     from guys.studies.standing import solve
-
-__version__ = "0.1.0"
 
 _HOMES = {
     "read_scenario": "guys.scenario",

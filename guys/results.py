@@ -13,7 +13,7 @@ ground" and "on the anchor" are what the structure does to the ground.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
@@ -216,6 +216,7 @@ class Solution:
     case : (case,) names; wind_from : (case,) [rad], NaN without wind; state, note, reason : (case,)
     out_of_balance : (case,) relative to `reference_force` : (case,) [N]; iterations : (case,)
     head_lean : (case, spar) [rad] between the drawn axis and the line foot-head
+    unsettled : (case,) whether a case counts as not standing (a free spin of a ball-based spar does not); failed : the solver failed somewhere
     """
 
     scenario: Scenario
@@ -243,7 +244,9 @@ class Solution:
     warnings: tuple[str, ...] = ()
     notes: tuple[str, ...] = ()
     not_checked: tuple[str, ...] = ()
-    cautions: tuple[str, ...] = field(default=())
+    cautions: tuple[str, ...] = ()
+    unsettled: tuple[bool, ...] = ()
+    failed: bool = False
 
     @property
     def past(self) -> tuple[Finding, ...]:

@@ -58,8 +58,12 @@ class Mode:
 
 @dataclass(frozen=True)
 class Judged:
-    """state; code (case,); error, rounds (case,); lost_at (case,) share of the load at which a path ended (NaN: not followed)
-    before : the last state on that path; branch : stable mirror states found {case: State of one case}; branched (case,)."""
+    """What became of every case.
+
+    state : the equilibrium found, or the last stable one on the path of a case that has none;  code, error, rounds : (case,)
+    lost_at : (case,) share of the load at which its path ended, NaN where none was lost;  branched : (case,) stands off its straight branch
+    stuck : (case,) the solver ran out of rounds without a spar turning over;  mirror : {case: the other stable state of a branch}
+    """
 
     state: State
     code: Index
@@ -67,6 +71,7 @@ class Judged:
     rounds: Index
     lost_at: Array
     branched: NDArray[np.bool_]
+    stuck: NDArray[np.bool_]
     mirror: dict[int, State]
 
 
@@ -140,7 +145,8 @@ def settle(problem: Problem, start: State) -> Judged:
     found = np.flatnonzero(out.converged & ~out.stopped)
     if len(found):
         code[found] = classify(problem.take(found), out.state.take(found))
-    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), np.zeros(problem.cases, bool), {})
+    no = np.zeros(problem.cases, bool)
+    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), no, ~out.converged & ~out.stopped, {})
     for case in np.flatnonzero(code == UNSTABLE):
         _push(problem, judged, int(case))
     return judged
@@ -178,6 +184,7 @@ class _Path:
     step: Array
     state: State
     branched: NDArray[np.bool_]
+    stuck: NDArray[np.bool_]
     mirror: dict[int, State]
     error: Array
 
@@ -186,24 +193,31 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
     """Follow the path of the cases `rows` and write what is found at its end."""
     whole = problem.take(rows)
     n = len(rows)
-    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), {}, np.full(n, np.nan))
+    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, np.full(n, np.nan))
     while len(open_ := np.flatnonzero((path.reached < 1) & (path.step >= LEAST_STEP))):
         _one_step(whole, start, path, open_)
-    arrived = path.reached >= 1
+    near = turn_between(whole, judged.state.take(rows), whole.repeat(setting)) < FAR
     for k, case in enumerate(rows):
-        if arrived[k]:
-            judged.state.put(np.array([case]), path.state.take(np.array([k])))
-            judged.code[case] = classify(whole.take(np.array([k])), path.state.take(np.array([k])))[0]
-            judged.error[case] = path.error[k]
-            judged.branched[case] = path.branched[k]
-            judged.mirror.pop(int(case), None)
-            if k in path.mirror:
-                judged.mirror[int(case)] = path.mirror[k]
-        else:
-            judged.lost_at[case] = path.reached[k]
-            judged.state.put(np.array([case]), path.state.take(np.array([k])))
-            judged.code[case] = NONE
-            judged.mirror.pop(int(case), None)
+        _arrive(whole, judged, path, k, int(case), bool(near[k]))
+
+
+def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near: bool) -> None:
+    """Write what the path of one case came to.  An unstable equilibrium close to the setting stays as found: `unstable`, not `none`."""
+    judged.mirror.pop(case, None)
+    arrived = path.reached[k] >= 1
+    if not arrived:
+        judged.lost_at[case] = path.reached[k]
+        judged.stuck[case] = path.stuck[k]
+        if judged.code[case] == UNSTABLE and near:
+            return
+        judged.code[case] = FAILED if path.stuck[k] else NONE
+    one = np.array([k])
+    judged.state.put(np.array([case]), path.state.take(one))
+    if arrived:
+        judged.code[case] = classify(whole.take(one), path.state.take(one))[0]
+        judged.error[case], judged.branched[case], judged.stuck[case] = path.error[k], path.branched[k], False
+        if k in path.mirror:
+            judged.mirror[case] = path.mirror[k]
 
 
 def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> None:
@@ -220,6 +234,7 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     path.reached[open_[good]] = share[good]
     path.error[open_[good]] = found.error[good]
     path.branched[open_] |= good & found.branched
+    path.stuck[open_] = found.stuck & ~good
     for k in np.flatnonzero(good):
         path.mirror.pop(int(open_[k]), None)
         if int(k) in found.mirror:

@@ -1,0 +1,152 @@
+"""What must not pass in silence, in words: the warnings of every output.
+
+Fixed with every result are the cautions of the trade (common practice) and the list of what this version does not check.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+
+import numpy as np
+
+from guys import stability
+from guys.loads import CaseLine
+from guys.recovery import Forces
+from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
+from guys.rotation import Array
+from guys.structure import Structure
+
+STILL_LEAN = 1 / 500
+"""Still-air lean of a head above which the setting is called out of plumb."""
+BALANCE = 1e-9
+"""Greatest imbalance of the whole structure, relative to the reference force."""
+SHOWN = 1e-6
+"""Share of the reference force below which a pull on a base is rounding."""
+
+CAUTIONS = (
+    "An estimate, to be confirmed by a competent, licensed person under the local code.",
+    "Keep out of the fall circle. Never ease two guys at once. All guys fast before anyone leaves.",
+    "No climbing while a level is slack. Look up for lines; ask about services before driving anything.",
+    "Nothing added to the mast. Check holdfasts after rain, thaw and wind, and each morning.",
+)
+NOT_CHECKED = (
+    "what holds the anchors (no holdfasts in this version)",
+    "lugs, terminations and turnbuckles",
+    "section stresses and the ground under the base",
+    "raising, fatigue, vibration, loss of a cable unless listed as a case",
+)
+
+
+def warnings(
+    structure: Structure,
+    lines: Sequence[CaseLine],
+    forces: Forces,
+    code: Array,
+    reason: Sequence[str | None],
+    note: Sequence[str | None],
+    feet: Sequence[FootWorst],
+    cables: Sequence[CableWorst],
+    check: SelfCheck,
+    gaps: Sequence[tuple[str, float, str | None]],
+) -> tuple[str, ...]:
+    """Everything alarming about a run, the gravest first."""
+    out = [
+        *_not_standing(lines, code, reason),
+        *_between_directions(lines, gaps),
+        *_checks(check),
+        *_lifted(structure, lines, forces, feet),
+        *_broken(cables),
+        *_leaning(structure, lines, forces),
+        *_branching(lines, note),
+        *structure.scenario.warnings,
+    ]
+    return tuple(dict.fromkeys(out))
+
+
+def place(line_name: str, wind_from: float) -> str:
+    """A case and its wind in words."""
+    return line_name if math.isnan(wind_from) else f"{line_name}, wind from {round(math.degrees(wind_from)) % 360}°"
+
+
+def _not_standing(lines: Sequence[CaseLine], code: Array, reason: Sequence[str | None]) -> list[str]:
+    bad = [k for k in range(len(lines)) if code[k] > stability.NEUTRAL]
+    if len(bad) > 1 and code[0] > stability.NEUTRAL:
+        bad = bad[:1]
+    out = [f"{place(lines[k].name, lines[k].wind_from)}: {reason[k]}" for k in bad[:6]]
+    if len(bad) > 6:
+        out.append(f"... and {len(bad) - 6} more cases without a stable equilibrium")
+    return out
+
+
+def _between_directions(lines: Sequence[CaseLine], gaps: Sequence[tuple[str, float, str | None]]) -> list[str]:
+    listed = {(line.name, line.wind_from) for line in lines}
+    fresh = [g for g in gaps if (g[0], g[1]) not in listed]
+    if not fresh:
+        return []
+    bearings = ", ".join(f"{round(math.degrees(b)) % 360}°" for _, b, _ in fresh[:8]) + (" ..." if len(fresh) > 8 else "")
+    return [f"between the listed directions there is no stable equilibrium: {fresh[0][0]}, wind from {bearings}: {fresh[0][2]}"]
+
+
+def _checks(check: SelfCheck) -> list[str]:
+    out = []
+    if not math.isnan(check.balance) and check.balance > BALANCE:
+        out.append(f"loads and reactions of the whole structure differ by {check.balance:.1e} of the reference force: a fault of the program")
+    if check.resolve == "other stable state":
+        out.append(
+            f"{place(check.resolved_case, check.resolved_wind_from)}: solved again by another method the structure came to another stable "
+            f"state, tensions differing by {check.difference:.2g} of the reference force"
+        )
+    return out
+
+
+def _lifted(structure: Structure, lines: Sequence[CaseLine], forces: Forces, feet: Sequence[FootWorst]) -> list[str]:
+    out = []
+    for k, foot in enumerate(feet):
+        if foot.carried_by is None:
+            if foot.lift.peak > SHOWN * max(structure.weight, 1.0):
+                out.append(f"base of {foot.spar} is pulled upward by {_newtons(foot.lift.peak)} in {_where(foot.lift)}: it must be held down")
+        else:
+            pull = forces.foot_force[:, k] @ structure.axes[k, 2]
+            if np.nanmax(pull, initial=0.0) > SHOWN * max(structure.weight, 1.0):
+                c = int(np.nanargmax(pull))
+                where = place(lines[c].name, lines[c].wind_from)
+                out.append(f"heel of {foot.spar} is pulled off {foot.carried_by} by {_newtons(float(pull[c]))} in {where}: it must be held")
+    return out
+
+
+def _where(extreme: Extreme) -> str:
+    return place(extreme.peak_case, extreme.peak_wind_from)
+
+
+def _newtons(force: float) -> str:
+    return f"{force / 1000:.3g} kN" if force >= 1000 else f"{force:.3g} N"
+
+
+def _broken(cables: Sequence[CableWorst]) -> list[str]:
+    return [
+        f'cable "{c.name}": tension {_newtons(c.tension.peak)} is above its strength {_newtons(c.strength)} in {_where(c.tension)}'
+        for c in cables
+        if not math.isnan(c.factor) and c.factor < 1
+    ]
+
+
+def _leaning(structure: Structure, lines: Sequence[CaseLine], forces: Forces) -> list[str]:
+    out = []
+    for k, spar in enumerate(structure.scenario.spar):
+        lean = float(forces.head_lean[0, k])
+        if not math.isnan(lean) and lean > STILL_LEAN:
+            head = lean * structure.length[k]
+            out.append(
+                f"{spar.name} leans 1/{1 / lean:.0f} from its drawn line in still air (head {head:.2f} m, {head / 0.3048:.2f} ft off): "
+                "the initial tensions or lengths pull it over; setting.plumb = true finds tensions that do not"
+            )
+    return out
+
+
+def _branching(lines: Sequence[CaseLine], note: Sequence[str | None]) -> list[str]:
+    branched = [k for k, n in enumerate(note) if n is not None and n.startswith("the straight equilibrium")]
+    if not branched:
+        return []
+    some = "; ".join(place(lines[k].name, lines[k].wind_from) for k in branched[:4]) + (" ..." if len(branched) > 4 else "")
+    return [f"the structure branches in {some}: {note[branched[0]]}"]

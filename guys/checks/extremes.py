@@ -1,0 +1,79 @@
+"""Greatest values over cases, each with its own case: of the listed cases, and refined over the full circle of winds."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from guys.loads import CaseLine
+from guys.recovery import Forces
+from guys.results import Extreme
+from guys.rotation import Array
+
+GROUPS = ("tension", "resultant", "horizontal", "uplift", "down", "lift", "sideways", "turning", "slide", "lean")
+
+
+@dataclass(frozen=True)
+class Measures:
+    """(case, item) arrays: tension of the greater end by cable [N]; resultant, horizontal, uplift by anchor [N]; down, lift, sideways [N],
+    turning [N m], slide (sideways over down, inf where lifted) by foot; lean by spar [rad].  NaN where a case has no equilibrium."""
+
+    tension: Array
+    resultant: Array
+    horizontal: Array
+    uplift: Array
+    down: Array
+    lift: Array
+    sideways: Array
+    turning: Array
+    slide: Array
+    lean: Array
+
+    def joined(self) -> Array:
+        """(case, everything) side by side."""
+        return np.concatenate([getattr(self, g) for g in GROUPS], axis=1)
+
+
+def measures(forces: Forces) -> Measures:
+    """The measures of every case."""
+    pull, foot = forces.pull, forces.foot_force
+    sideways = np.hypot(foot[..., 0], foot[..., 1])
+    down = -foot[..., 2]
+    return Measures(
+        tension=np.maximum(forces.tension_anchor, forces.tension_top),
+        resultant=np.linalg.norm(pull, axis=-1),
+        horizontal=np.hypot(pull[..., 0], pull[..., 1]),
+        uplift=pull[..., 2],
+        down=down,
+        lift=np.where(np.isnan(down), np.nan, np.maximum(foot[..., 2], 0.0)),
+        sideways=sideways,
+        turning=np.linalg.norm(forces.foot_moment, axis=-1),
+        slide=np.where(np.isnan(down), np.nan, np.where(down > 0, sideways / np.where(down > 0, down, 1.0), np.inf)),
+        lean=forces.head_lean,
+    )
+
+
+def extreme(listed: Array, lines: Sequence[CaseLine], swept: Array, swept_lines: Sequence[CaseLine]) -> Extreme:
+    """Greatest of `listed` (case,), and of all with `swept`; NaN where no case has an equilibrium."""
+    value, line = _greatest(listed, lines)
+    peak, peak_line = _greatest(swept, swept_lines) if len(swept) else (math.nan, None)
+    if math.isnan(peak) or value >= peak:
+        peak, peak_line = value, line
+    return Extreme(
+        value,
+        line.name if line else "",
+        line.wind_from if line else math.nan,
+        peak,
+        peak_line.name if peak_line else "",
+        peak_line.wind_from if peak_line else math.nan,
+    )
+
+
+def _greatest(values: Array, lines: Sequence[CaseLine]) -> tuple[float, CaseLine | None]:
+    if len(values) == 0 or np.isnan(values).all():
+        return math.nan, None
+    k = int(np.nanargmax(values))
+    return float(values[k]), lines[k]

@@ -1,0 +1,1 @@
+"""Studies: the same line run many times.  They compute no mechanics of their own."""

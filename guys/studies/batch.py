@@ -1,0 +1,208 @@
+"""Case lines to solved, judged and recovered batches."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys import recovery, stability
+from guys.equilibrium import Problem, State
+from guys.loads import CaseLine, Placed, assemble
+from guys.results import SparLine
+from guys.rotation import Array
+from guys.setting import Setting
+from guys.structure import Structure
+
+CHUNK = 144
+"""Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
+CURVE_POINTS = 41
+Progress = Callable[[int, int], None]
+"""Called with cases done and cases in all."""
+
+
+@dataclass(frozen=True)
+class Batch:
+    """Solved case lines.
+
+    code : (case,) of `guys.stability`;  error, reference, rounds, lost_at, balance : (case,);  reason, note : (case,) words
+    forces : of every case, NaN where there is no equilibrium;  mirror : forces of the other state of branched cases, mirror_lines theirs
+    spars, curves : with detail only;  stuck : lines the solver failed on
+    """
+
+    lines: tuple[CaseLine, ...]
+    code: NDArray[np.int64]
+    error: Array
+    reference: Array
+    rounds: NDArray[np.int64]
+    lost_at: Array
+    balance: Array
+    reason: tuple[str | None, ...]
+    note: tuple[str | None, ...]
+    forces: recovery.Forces
+    mirror: recovery.Forces | None
+    mirror_lines: tuple[CaseLine, ...]
+    spars: tuple[SparLine, ...]
+    curves: Array
+
+    @property
+    def stands(self) -> NDArray[np.bool_]:
+        """Cases with an equilibrium, be it stable or not."""
+        return np.asarray(self.code <= stability.UNSTABLE)
+
+
+def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
+    """Solve every line on a setting that stands."""
+    state = setting.state
+    placed = Placed(state.u[0], state.psi[0], setting.length)
+    parts = []
+    for first in range(0, len(lines), CHUNK):
+        some = lines[first : first + CHUNK]
+        problem = Problem(structure, assemble(structure, some, placed), setting.length)
+        problem.__dict__["pattern"] = setting.problem.pattern
+        judged = stability.judge(problem, state, setting.loads)
+        parts.append(recover(problem, judged, detail))
+        if progress is not None:
+            progress(min(first + CHUNK, len(lines)), len(lines))
+    return join(parts)
+
+
+def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
+    """What is asked for, from judged states."""
+    found = problem.evaluate(judged.state, tangent=False)
+    forces = recovery.forces(problem, judged.state, found)
+    gone = np.flatnonzero(judged.code >= stability.NONE)
+    mirrored = sorted(judged.mirror)
+    mirror = None
+    if mirrored:
+        part = problem.take(np.array(mirrored))
+        other = State(*(np.concatenate([getattr(judged.mirror[k], f) for k in mirrored]) for f in ("u", "psi", "tension", "axial")))
+        mirror = recovery.forces(part, other, part.evaluate(other, tangent=False))
+    balance = recovery.whole_balance(problem, judged.state, found, forces)
+    balance[gone] = np.nan
+    spars = recovery.lines(problem, judged.state, found) if detail else ()
+    curves = recovery.curves(problem, judged.state, found, CURVE_POINTS) if detail else np.zeros((problem.cases, 0, 0, 3))
+    return Batch(
+        lines=problem.loads.lines,
+        code=judged.code,
+        error=judged.error,
+        reference=found.reference,
+        rounds=judged.rounds,
+        lost_at=judged.lost_at,
+        balance=balance,
+        reason=tuple(_reason(problem, judged, forces, k) for k in range(problem.cases)),
+        note=tuple(_note(problem, judged, k) for k in range(problem.cases)),
+        forces=forces.blank(gone),
+        mirror=mirror,
+        mirror_lines=tuple(problem.loads.lines[k] for k in mirrored),
+        spars=tuple(_blank(s, gone) for s in spars),
+        curves=curves,
+    )
+
+
+def _blank(spar: SparLine, gone: NDArray[np.int64]) -> SparLine:
+    for value in (spar.displacement, spar.axial, spar.bending, spar.torsion, spar.shear):
+        value[gone] = np.nan
+    return spar
+
+
+def join(parts: Sequence[Batch]) -> Batch:
+    """Batches one after another."""
+    mirrors = [p.mirror for p in parts if p.mirror is not None]
+
+    def spar(k: int) -> SparLine:
+        first = parts[0].spars[k]
+        each = {n: np.concatenate([getattr(p.spars[k], n) for p in parts]) for n in ("displacement", "axial", "bending", "torsion", "shear")}
+        return SparLine(first.name, first.station, first.drawn, first.axes, **each)
+
+    def together(name: str) -> Array:
+        return np.concatenate([getattr(p, name) for p in parts])
+
+    return Batch(
+        lines=tuple(x for p in parts for x in p.lines),
+        code=np.concatenate([p.code for p in parts]),
+        error=together("error"),
+        reference=together("reference"),
+        rounds=np.concatenate([p.rounds for p in parts]),
+        lost_at=together("lost_at"),
+        balance=together("balance"),
+        reason=tuple(x for p in parts for x in p.reason),
+        note=tuple(x for p in parts for x in p.note),
+        forces=recovery.join([p.forces for p in parts]),
+        mirror=recovery.join(mirrors) if mirrors else None,
+        mirror_lines=tuple(x for p in parts for x in p.mirror_lines),
+        spars=tuple(spar(k) for k in range(len(parts[0].spars))),
+        curves=together("curves"),
+    )
+
+
+def bearing_words(bearing: float) -> str:
+    """A bearing as the trade writes it."""
+    return f"{round(math.degrees(bearing)) % 360}°"
+
+
+def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces, k: int) -> str | None:
+    """What happens to a case that does not stand, in words."""
+    code = int(judged.code[k])
+    if code <= stability.NEUTRAL:
+        return None
+    if code == stability.FAILED or (code == stability.NONE and judged.stuck[k]):
+        return "the solver failed on this case; this is a fault of the program, not a statement about the structure"
+    one = problem.take(np.array([k]))
+    state = judged.state.take(np.array([k]))
+    mode = stability.modes(one, state, 1)
+    shape = _along_the_way(one, state, mode.shape[0])
+    spar, bearing = stability.moving_part(problem.structure, shape, problem.heading(judged.state)[k])
+    name = problem.structure.scenario.spar[spar].name
+    how = "is in an equilibrium that does not hold: it goes" if code == stability.UNSTABLE else "falls"
+    share = judged.lost_at[k]
+    at = "" if math.isnan(share) else f" at {max(share, 0.005):.2f} of the load"
+    dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(forces.slack[k])]
+    slack = f"; slack by then: {', '.join(dropped)}" if dropped else "; no cable is slack by then"
+    return f"{name} {how} toward {bearing_words(bearing)}{at}{slack}"
+
+
+def _along_the_way(one: Problem, state: State, shape: Array) -> Array:
+    """A mode with the sign of the moves made so far."""
+    return shape if np.sum(shape[:, :2] * state.u[0, :, :2]) >= 0 else -shape
+
+
+def _note(problem: Problem, judged: stability.Judged, k: int) -> str | None:
+    code = int(judged.code[k])
+    if code == stability.NEUTRAL:
+        return _free_motion(problem.take(np.array([k])), judged.state.take(np.array([k])))[1]
+    if judged.branched[k] and code <= stability.NEUTRAL:
+        both = "; its mirror image is stable too and counts in the worst loads" if k in judged.mirror else ""
+        return f"the straight equilibrium is unstable; pushed along its lowest mode the structure comes to rest in this stable one nearby{both}"
+    return None
+
+
+def _free_motion(one: Problem, state: State) -> tuple[bool, str]:
+    """Whether all that is free is the spin of ball-based spars, and the free motion in words."""
+    modes = stability.modes(one, state)
+    s = one.structure
+    spun, other = set(), set()
+    for value, shape in zip(modes.value, modes.shape, strict=True):
+        if abs(value) > stability.ZERO:
+            continue
+        for k, spar in enumerate(s.scenario.spar):
+            mine = np.flatnonzero(s.spar == k)
+            turn = shape[mine, 3:]
+            axis = one.heading(state)[0, k]
+            spin = np.abs(turn @ axis).max()
+            rest = max(np.abs(turn - np.outer(turn @ axis, axis)).max(), np.abs(shape[mine, :3]).max() / s.height)
+            if rest > 1e-3 * np.abs(shape[..., 3:]).max():
+                other.add(spar.name)
+            elif spin > 1e-3 * np.abs(shape[..., 3:]).max():
+                spun.add(spar.name) if spar.base == "ball" else other.add(spar.name)
+    if other:
+        return False, f"a motion costs nothing: {', '.join(sorted(other))} may turn or sway freely"
+    return True, f"{', '.join(sorted(spun))} may spin freely about its own axis"
+
+
+def only_spins(note: str | None) -> bool:
+    """Whether a neutral case's note tells of nothing but the free spin of ball-based spars."""
+    return note is not None and note.endswith("may spin freely about its own axis")

@@ -1,0 +1,244 @@
+"""The main job: a scenario in, a `Solution` out.
+
+    structure -> setting -> listed cases -> full circle of winds -> worst values -> findings, self-checks, warnings
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from guys import recovery, stability
+from guys.checks import alarms, allowables, extremes, resolve
+from guys.equilibrium import Problem
+from guys.loads import CaseLine, Placed, assemble, lines_of
+from guys.results import (
+    AnchorPulls,
+    AnchorWorst,
+    CableForces,
+    CableWorst,
+    Extreme,
+    FootForces,
+    FootWorst,
+    SelfCheck,
+    Solution,
+    State,
+    Sweep,
+)
+from guys.scenario import Scenario
+from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
+from guys.setting import Setting, find
+from guys.structure import Structure, build
+from guys.studies import directions
+from guys.studies.batch import Batch, Progress, join, only_spins, recover, solve_lines
+from guys.version import __version__
+
+STATES: tuple[State, ...] = ("stable", "neutral", "unstable", "none", "none")
+"""Words for the codes of `guys.stability`."""
+
+
+def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = None) -> Solution:
+    """Solve every case and wind direction of a scenario.
+
+    finer : multiplies the number of elements in every span (a mesh check);  progress : called with cases done and in all
+
+    Returns a `Solution`; a structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets
+    the initial tensions asked for.
+    """
+    structure = build(scenario, finer)
+    setting = find(structure)
+    listed = _listed(structure, setting, progress)
+    swept = _swept(structure, setting, listed, progress)
+    return _solution(structure, setting, listed, swept)
+
+
+def _listed(structure: Structure, setting: Setting, progress: Progress | None) -> Batch:
+    """The setting case, then every listed case."""
+    first = recover(setting.problem, setting.judged, detail=True)
+    lines = lines_of(structure.scenario)
+    if setting.stands:
+        return join([first, solve_lines(structure, setting, lines, True, progress)])
+    return join([first, _none(structure, setting, lines)])
+
+
+def _none(structure: Structure, setting: Setting, lines: Sequence[CaseLine]) -> Batch:
+    """Every case `none`, because the structure does not stand in still air."""
+    many = setting.problem.take(np.zeros(len(lines), dtype=np.int64))
+    many = replace(many, loads=replace(many.loads, lines=tuple(lines)))
+    judged = setting.judged
+    code = np.full(len(lines), stability.NONE)
+    rows = np.zeros(len(lines), dtype=np.int64)
+    blank = stability.Judged(
+        judged.state.take(rows), code, judged.error[rows], judged.rounds[rows], judged.lost_at[rows], np.zeros(len(lines), bool), judged.stuck[rows], {}
+    )
+    batch = recover(many, blank, detail=True)
+    first = recover(setting.problem, setting.judged, detail=False).reason[0]
+    return replace(batch, reason=(f"the structure does not stand in still air: {first}",) * len(lines))
+
+
+def _swept(structure: Structure, setting: Setting, listed: Batch, progress: Progress | None) -> Batch | None:
+    """The full circle of winds for every case that holds wind."""
+    templates = {line.name: line for line in listed.lines if not math.isnan(line.wind_from)}
+    if not setting.stands or not templates:
+        return None
+    return directions.sweep(tuple(templates.values()), listed, lambda lines: solve_lines(structure, setting, lines, False, progress))
+
+
+@dataclass(frozen=True)
+class _Worst:
+    """Measures of the listed cases and of all, mirror states of branches included in both."""
+
+    listed: extremes.Measures
+    listed_lines: tuple[CaseLine, ...]
+    swept: extremes.Measures
+    swept_lines: tuple[CaseLine, ...]
+
+    def of(self, group: str, item: int, windy: bool = False) -> Extreme:
+        """Greatest value of one item; `windy`: only in cases with wind."""
+        a, b = getattr(self.listed, group)[:, item], getattr(self.swept, group)[:, item]
+        if windy:
+            a = np.where([math.isnan(line.wind_from) for line in self.listed_lines], np.nan, a)
+        return extremes.extreme(a, self.listed_lines, b, self.swept_lines)
+
+
+def _worst(listed: Batch, swept: Batch | None) -> _Worst:
+    def with_mirrors(batch: Batch) -> tuple[extremes.Measures, tuple[CaseLine, ...]]:
+        every = batch.forces if batch.mirror is None else recovery.join([batch.forces, batch.mirror])
+        return extremes.measures(every), batch.lines + batch.mirror_lines
+
+    return _Worst(*with_mirrors(listed), *with_mirrors(swept if swept is not None else listed))
+
+
+def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
+    scenario = structure.scenario
+    worst = _worst(listed, swept)
+    cables = tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable)))
+    anchors = tuple(
+        AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k)) for k, a in enumerate(scenario.anchor)
+    )
+    feet = tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar)))
+    slides = {s.name: worst.of("slide", k) for k, s in enumerate(scenario.spar)}
+    leans = {s.name: worst.of("lean", k, windy=True) for k, s in enumerate(scenario.spar)}
+    found = allowables.findings(scenario, cables, anchors, slides, leans)
+    check = _self_check(structure, setting, listed, cables)
+    states = tuple(STATES[c] for c in listed.code)
+    return Solution(
+        scenario=scenario,
+        version=__version__,
+        case=tuple(line.name for line in listed.lines),
+        wind_from=np.array([line.wind_from for line in listed.lines]),
+        state=states,
+        note=listed.note,
+        reason=listed.reason,
+        out_of_balance=listed.error,
+        reference_force=listed.reference,
+        iterations=listed.rounds,
+        head_lean=listed.forces.head_lean,
+        cables=_cable_forces(structure, listed),
+        anchors=AnchorPulls(tuple(a.name for a in scenario.anchor), structure.position[structure.anchor], listed.forces.pull),
+        bases=_foot_forces(scenario, listed, ground=True),
+        heels=_foot_forces(scenario, listed, ground=False),
+        spars=listed.spars,
+        worst_cables=cables,
+        worst_anchors=anchors,
+        worst_feet=feet,
+        findings=found,
+        sweep=_sweep(scenario, swept) if swept is not None else None,
+        check=check,
+        warnings=alarms.warnings(structure, listed.lines, listed.forces, listed.code, listed.reason, listed.note, feet, cables, check, _gaps(swept)),
+        notes=tuple(sorted({n for n in listed.note if n})),
+        not_checked=alarms.NOT_CHECKED,
+        cautions=alarms.CAUTIONS,
+        unsettled=tuple(not only_spins(n) if s == "neutral" else s != "stable" for s, n in zip(states, listed.note, strict=True)),
+        failed=bool((listed.code == stability.FAILED).any()),
+    )
+
+
+def _gaps(swept: Batch | None) -> list[tuple[str, float, str | None]]:
+    """Swept directions without a stable equilibrium: case, bearing, reason."""
+    if swept is None:
+        return []
+    bad = np.flatnonzero(swept.code > stability.NEUTRAL)
+    return [(swept.lines[k].name, swept.lines[k].wind_from, swept.reason[k]) for k in bad]
+
+
+def _cable_worst(structure: Structure, worst: _Worst, swept: Batch | None, k: int) -> CableWorst:
+    tension = worst.of("tension", k)
+    strength = float(structure.cables.strength[k])
+    factor = strength / tension.peak if tension.peak > 0 else (math.inf if not math.isnan(strength) else math.nan)
+    slack: tuple[tuple[str, float], ...] = ()
+    if swept is not None:
+        slack = tuple((swept.lines[c].name, swept.lines[c].wind_from) for c in np.flatnonzero(swept.forces.slack[:, k]))
+    return CableWorst(structure.scenario.cable[k].name, tension, strength, factor, slack)
+
+
+def _foot_worst(scenario: Scenario, worst: _Worst, k: int) -> FootWorst:
+    spar = scenario.spar[k]
+    carried_by = spar.foot.spar if isinstance(spar.foot, HeelFoot) else None
+    return FootWorst(spar.name, carried_by, worst.of("down", k), worst.of("lift", k), worst.of("sideways", k), worst.of("turning", k))
+
+
+def _cable_forces(structure: Structure, listed: Batch) -> CableForces:
+    scenario, f = structure.scenario, listed.forces
+    return CableForces(
+        name=tuple(c.name for c in scenario.cable),
+        from_spar=tuple(c.from_.spar for c in scenario.cable),
+        to_anchor=tuple(c.to.anchor if isinstance(c.to, AnchorPoint) else None for c in scenario.cable),
+        tension_anchor=f.tension_anchor,
+        tension_top=f.tension_top,
+        force_on_anchor=f.on_anchor,
+        force_on_spar=f.on_spar,
+        unstressed_length=f.length,
+        slack=f.slack,
+        present=f.present,
+        curve=listed.curves,
+        strength=structure.cables.strength,
+    )
+
+
+def _foot_forces(scenario: Scenario, listed: Batch, ground: bool) -> FootForces:
+    rows = [k for k, s in enumerate(scenario.spar) if isinstance(s.foot, GroundFoot) == ground]
+    carried = tuple(s.foot.spar if isinstance(s.foot, HeelFoot) else None for s in scenario.spar)
+    names = tuple(scenario.spar[k].name for k in rows)
+    return FootForces(names, tuple(carried[k] for k in rows), listed.forces.foot_force[:, rows], listed.forces.foot_moment[:, rows])
+
+
+def _sweep(scenario: Scenario, swept: Batch) -> Sweep:
+    """The swept lines as (case line, bearing) tables; every case has the same bearings."""
+    names = tuple(dict.fromkeys(line.name for line in swept.lines))
+    rows = [sorted((k for k, line in enumerate(swept.lines) if line.name == n), key=lambda k: swept.lines[k].wind_from) for n in names]
+    order = np.array(rows)
+    m = extremes.measures(swept.forces)
+    bearing = np.array([[swept.lines[k].wind_from for k in row] for row in rows])
+    return Sweep(names, bearing, m.tension[order], m.resultant[order], m.horizontal[order], m.uplift[order], swept.forces.slack[order])
+
+
+def _self_check(structure: Structure, setting: Setting, listed: Batch, cables: tuple[CableWorst, ...]) -> SelfCheck:
+    balance = float(np.nanmax(listed.balance)) if not np.isnan(listed.balance).all() else math.nan
+    k = _governing(listed, cables)
+    if k is None:
+        return SelfCheck(balance, "not run", math.nan, "", math.nan)
+    line = listed.lines[k]
+    state = setting.state
+    if k == 0:
+        problem, judged = setting.problem, setting.judged
+    else:
+        placed = Placed(state.u[0], state.psi[0], setting.length)
+        problem = Problem(structure, assemble(structure, [line], placed), setting.length)
+        judged = stability.judge(problem, state, setting.loads)
+    again = resolve.resolve(problem, judged.state)
+    return SelfCheck(balance, again.verdict, again.difference, line.name, line.wind_from)
+
+
+def _governing(listed: Batch, cables: tuple[CableWorst, ...]) -> int | None:
+    """The stable case with the greatest use of a cable (greatest tension where no strength is given); without cables, the last one."""
+    tension = extremes.measures(listed.forces).tension
+    strength = np.array([c.strength for c in cables])
+    use = tension / np.where(np.isnan(strength), 1.0, strength) if len(cables) else np.zeros((len(listed.lines), 1))
+    score = np.where(listed.code[:, None] == stability.STABLE, use, np.nan)
+    if np.isnan(score).all():
+        return None
+    return int(np.nanargmax(np.nanmax(np.where(np.isnan(score), -1.0, score), axis=1)))
