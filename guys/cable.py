@@ -34,8 +34,12 @@ from guys.rotation import dot, outer
 Array = NDArray[np.float64]
 
 LARGEST_ROUNDS = 60
-CLOSED = 2e-14
-"""Newton ends when the correction of T is below this share of the end tensions: rounding in the chord times EA is of that size."""
+CLOSED = 1e-9
+"""Newton ends with a correction of T below this share of the end tensions: the next would be of the order of its square ..."""
+ROUNDING = 4e-15
+"""... or with a chord met to this share of length plus chord: rounding, which EA turns into more than CLOSED in a stiff cable."""
+NEWTON_REACH = 0.8
+"""Greatest correction, of |T|: with more, Newton swings about the answer in cables far longer than their chord (measured: c < 0.4 L0)."""
 TRUST = 0.3
 """A start is kept only if Newton's first correction is below this share of |T| (measured: beyond it convergence is slower than afresh)."""
 NEARLY_CHORD = 1e-3
@@ -87,21 +91,22 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
     if warm is not None:
         tension = np.where(_serves(chord, length, EA, load, warm)[:, None], warm, tension)
     open_ = np.arange(len(length))
+    small = ROUNDING * (length + np.sqrt(dot(chord, chord)))
     for _ in range(LARGEST_ROUNDS):
         gap, flexibility, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
         change = -_solve3(flexibility, gap)
         size = np.sqrt(dot(change, change))
-        tension[open_] += _damped(change, size, ends)[:, None] * change
-        open_ = open_[size > CLOSED * ends]
+        tension[open_] += _damped(change, size, tension[open_])[:, None] * change
+        open_ = open_[(size > CLOSED * ends) & (np.sqrt(dot(gap, gap)) > small[open_])]
         if len(open_) == 0:
             break
     _, flexibility, _ = _miss(chord, length, EA, load, tension)
     return Hanging(tension, tension + load / 2, tension - load / 2, _invert3(flexibility))
 
 
-def _damped(change: Array, size: Array, ends: Array) -> Array:
-    """Share of the step: no step above half the sum of end tensions, which keeps Newton on the convex side of hanging cables."""
-    return np.minimum(1.0, 0.5 * ends / np.maximum(size, 1e-300))
+def _damped(change: Array, size: Array, tension: Array) -> Array:
+    """Share of the step that keeps it below `NEWTON_REACH` of the tension."""
+    return np.minimum(1.0, NEWTON_REACH * np.sqrt(dot(tension, tension)) / np.maximum(size, 1e-300))
 
 
 def _off_line(chord: Array, load: Array) -> Array:
