@@ -87,21 +87,30 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
     Valid for any length > 0 and any chord not exactly in line with the load while slack.
     """
     chord = _off_line(chord, load)
-    tension = start(chord, length, EA, load)
-    if warm is not None:
-        tension = np.where(_serves(chord, length, EA, load, warm)[:, None], warm, tension)
-    open_ = np.arange(len(length))
+    tension = _begin(chord, length, EA, load, warm)
+    flexibility = np.empty((len(length), 3, 3))
     small = ROUNDING * (length + np.sqrt(dot(chord, chord)))
+    open_ = np.arange(len(length))
     for _ in range(LARGEST_ROUNDS):
-        gap, flexibility, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
-        change = -_solve3(flexibility, gap)
+        gap, f, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
+        flexibility[open_] = f
+        change = -_solve3(f, gap)
         size = np.sqrt(dot(change, change))
         tension[open_] += _damped(change, size, tension[open_])[:, None] * change
         open_ = open_[(size > CLOSED * ends) & (np.sqrt(dot(gap, gap)) > small[open_])]
         if len(open_) == 0:
             break
-    _, flexibility, _ = _miss(chord, length, EA, load, tension)
     return Hanging(tension, tension + load / 2, tension - load / 2, _invert3(flexibility))
+
+
+def _begin(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None) -> Array:
+    """Tensions to start from: the warm ones where they serve."""
+    if warm is None:
+        return start(chord, length, EA, load)
+    fresh = np.flatnonzero(~_serves(chord, length, EA, load, warm))
+    tension = warm.copy()
+    tension[fresh] = start(chord[fresh], length[fresh], EA[fresh], load[fresh])
+    return tension
 
 
 def _damped(change: Array, size: Array, tension: Array) -> Array:
@@ -125,13 +134,16 @@ def _off_line(chord: Array, load: Array) -> Array:
 
 
 def _serves(chord: Array, length: Array, EA: Array, load: Array, warm: Array) -> NDArray[np.bool_]:
-    has = dot(warm, warm) > 0
-    tried = np.where(has[:, None], warm, load + chord * (np.sqrt(dot(load, load)) / length)[:, None])
-    gap, flexibility, _ = _miss(chord, length, EA, load, tried)
+    out = dot(warm, warm) > 0
+    known = np.flatnonzero(out)
+    if len(known) == 0:
+        return np.asarray(out)
+    gap, flexibility, _ = _miss(chord[known], length[known], EA[known], load[known], warm[known])
     change = _solve3(flexibility, gap)
-    reach = length + np.sqrt(dot(chord, chord))
+    reach = length[known] + np.sqrt(dot(chord[known], chord[known]))
     near = dot(gap, gap) < (NEARLY_CHORD * reach) ** 2
-    return np.asarray(has & near & (dot(change, change) < TRUST**2 * dot(tried, tried)))
+    out[known] = near & (dot(change, change) < TRUST**2 * dot(warm[known], warm[known]))
+    return np.asarray(out)
 
 
 def _miss(chord: Array, length: Array, EA: Array, load: Array, tension: Array) -> tuple[Array, Array, Array]:
