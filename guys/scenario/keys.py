@@ -7,27 +7,37 @@ fault to report: the text is then read a second time by a parser that keeps the 
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterator, Mapping
+from bisect import bisect_left
+from collections.abc import Callable, Iterable, Iterator, Mapping
 from dataclasses import dataclass
 from difflib import get_close_matches
+from functools import cache
+from itertools import islice
 from typing import Any
 
 Key = tuple[str | int, ...]
 _BARE = re.compile(r"[A-Za-z0-9_-]+")
 _LONGEST_NAME = 60
+_MOST_COMPARED = 500
 
 
 @dataclass(frozen=True)
 class Finding:
-    """Something wrong at a key.  It is left unsaid where the value at one of `after`, or below the key itself, is already found wrong."""
+    """Something wrong at a key.
+
+    It is left unsaid where the value at one of `after`, or below it or the key itself, is already found wrong: it may be no more than a
+    consequence.
+    """
 
     key: Key
     message: str
     after: tuple[Key, ...] = ()
 
-    def follows_from(self, broken: Key) -> bool:
-        """Whether it may be no more than a consequence of another finding at `broken`."""
-        return any(broken[: len(cause)] == cause for cause in (self.key, *self.after))
+
+def independent(findings: Iterable[Finding], broken: Iterable[Finding]) -> list[Finding]:
+    """The findings that do not follow from those in `broken`."""
+    wrong = {finding.key[:length] for finding in broken for length in range(1, len(finding.key) + 1)}
+    return [finding for finding in findings if wrong.isdisjoint((finding.key, *finding.after))]
 
 
 def written(key: Key) -> str:
@@ -47,8 +57,9 @@ def clipped(text: str) -> str:
     return line if len(line) <= _LONGEST_NAME else line[: _LONGEST_NAME - 3] + "..."
 
 
-def nearest(name: str, known: list[str] | tuple[str, ...]) -> str:
+def nearest(name: str, known: Iterable[str]) -> str:
     """What to say after an unknown name: the nearest known one, or all of them where they are few."""
+    known = list(islice(known, _MOST_COMPARED))
     folded = {choice.lower(): choice for choice in reversed(known)}
     near = get_close_matches(clipped(name).lower(), list(folded), 1, 0.6)
     if near:
@@ -70,16 +81,19 @@ def placer(text: str) -> Callable[[Key], tuple[int, int]]:
     """A function giving line and column, from 1, of a key: of itself, or of the nearest table above it that is there."""
     source = text.replace("\r\n", "\n")
     root = _spanned(source)
+    breaks = [match.start() for match in re.finditer("\n", source)]
+    children = cache(_children)
 
     def place(key: Key) -> tuple[int, int]:
         offset, node = 0, root
         for part in key:
-            step = _child(node, part)
+            step = None if node is None else children(node).get(part)
             if step is None:
                 break
-            span, node = step
-            offset = _first(source, span, node)
-        return source.count("\n", 0, offset) + 1, offset - (source.rfind("\n", 0, offset) + 1) + 1
+            own, node = step
+            offset = _header(source, node, offset) if own is None else own
+        line = bisect_left(breaks, offset)
+        return line + 1, offset - (breaks[line - 1] if line else -1)
 
     return place
 
@@ -88,32 +102,32 @@ def _spanned(source: str) -> Any:
     import spanned_toml
 
     try:
-        return spanned_toml.loads(source)
+        return _Node(spanned_toml.loads(source))
     except (ValueError, RecursionError):
         return None
 
 
-def _child(node: Any, part: str | int) -> tuple[int | None, Any] | None:
-    inner = None if node is None else node.inner()
-    if isinstance(part, int):
-        return (None, inner[part]) if isinstance(inner, list) and part < len(inner) else None
+@dataclass(frozen=True, eq=False)
+class _Node:
+    """A value with its place; compared by identity, so that what is worked out for it can be kept."""
+
+    spanned: Any
+
+
+def _children(node: _Node) -> dict[str | int, tuple[int | None, _Node]]:
+    """Each key or index of a table or list, with where its key begins and its value."""
+    inner = node.spanned.inner()
+    if isinstance(inner, list):
+        return {index: (None, _Node(item)) for index, item in enumerate(inner)}
     if isinstance(inner, dict):
-        for name, value in inner.items():
-            if name.inner() == part:
-                return name.span().start, value
-    return None
+        return {name.inner(): (name.span().start, _Node(value)) for name, value in inner.items()}
+    return {}
 
 
-def _first(source: str, span: int | None, node: Any) -> int:
-    """Where an item begins: its key; for an item of a list its own place, or the header above the first key in it."""
-    if span is not None:
-        return span
-    if node.span().stop > 0:
-        return int(node.span().start)
-    starts = _starts(node)
-    return max(source.rfind("\n[", 0, starts) + 1, 0) if starts is not None else 0
-
-
-def _starts(node: Any) -> int | None:
-    inner = node.inner()
-    return min((name.span().start for name in inner), default=None) if isinstance(inner, dict) else None
+def _header(source: str, node: _Node, above: int) -> int:
+    """Where an item of a list begins: at its own place, or at the header above its first key."""
+    if node.spanned.span().stop > 0:
+        return int(node.spanned.span().start)
+    inner = node.spanned.inner()
+    first = min((name.span().start for name in inner), default=None) if isinstance(inner, dict) else None
+    return above if first is None else source.rfind("\n[", 0, first) + 1

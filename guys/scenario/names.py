@@ -5,7 +5,7 @@ They work on the tables as read, so that a fault elsewhere in a table does not h
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Mapping
+from collections.abc import Collection, Iterator, Mapping
 from typing import Any
 
 from guys.scenario.draft import Draft
@@ -18,15 +18,17 @@ SETTING = "setting"
 def findings(draft: Draft) -> Iterator[Finding]:
     """Every name given twice and every reference that leads nowhere."""
     document = draft.document
-    spars, anchors = _names(document, "spar"), _names(document, "anchor")
-    cables = dict(_cable_names(document))
-    yield from _twice("spar", spars)
-    yield from _twice("anchor", anchors)
+    cable_names = dict(_cable_names(document))
+    spars = dict.fromkeys(_names(document, "spar").values())
+    anchors = dict.fromkeys(_names(document, "anchor").values())
+    cables = dict.fromkeys(cable_names.values())
+    yield from _twice("spar", _names(document, "spar"))
+    yield from _twice("anchor", _names(document, "anchor"))
     yield from _twice("case", _names(document, "case"))
     yield from _twice("fitting", _fitting_names(document))
-    yield from _twice("cable", cables, "; give the guy level a name")
+    yield from _twice("cable", cable_names, "; give the guy level a name")
     yield from _reserved(document)
-    yield from _feet(document, set(spars.values()))
+    yield from _feet(document, spars)
     yield from _ends(document, spars, anchors)
     yield from _ropes(document)
     yield from _materials(document)
@@ -73,28 +75,27 @@ def _reserved(document: Mapping[str, Any]) -> Iterator[Finding]:
             yield Finding(key, f'"{SETTING}" is the name of the still-air case; choose another')
 
 
-def _unknown(key: Key, kind: str, name: object, known: Iterable[str], remedy: str = "") -> Iterator[Finding]:
-    choices = tuple(dict.fromkeys(known))
-    if isinstance(name, str) and name not in choices:
-        hint = nearest(name, choices) if choices else f"; the file has no {kind}"
+def _unknown(key: Key, kind: str, name: object, known: Collection[str], remedy: str = "") -> Iterator[Finding]:
+    if isinstance(name, str) and name not in known:
+        hint = nearest(name, known) if known else f"; the file has no {kind}"
         yield Finding(key, f'no {kind} is named "{clipped(name)}"{hint if "did you mean" in hint or not remedy else remedy}')
 
 
-def _feet(document: Mapping[str, Any], spars: set[str]) -> Iterator[Finding]:
+def _feet(document: Mapping[str, Any], spars: Collection[str]) -> Iterator[Finding]:
     for index, spar in items(document, "spar"):
         foot = spar.get("foot")
         if isinstance(foot, dict):
-            yield from _unknown(("spar", index, "foot", "spar"), "spar", foot.get("spar"), sorted(spars))
+            yield from _unknown(("spar", index, "foot", "spar"), "spar", foot.get("spar"), spars)
 
 
-def _ends(document: Mapping[str, Any], spars: Mapping[Key, str], anchors: Mapping[Key, str]) -> Iterator[Finding]:
+def _ends(document: Mapping[str, Any], spars: Collection[str], anchors: Collection[str]) -> Iterator[Finding]:
     for index, level in items(document, "guy_level"):
-        yield from _unknown(("guy_level", index, "spar"), "spar", level.get("spar"), spars.values())
+        yield from _unknown(("guy_level", index, "spar"), "spar", level.get("spar"), spars)
         to = level.get("to")
         seen: set[str] = set()
         for place, name in enumerate(to if isinstance(to, list) else ()):
             key = ("guy_level", index, "to", place)
-            yield from _unknown(key, "anchor", name, anchors.values())
+            yield from _unknown(key, "anchor", name, anchors)
             if isinstance(name, str) and name in seen:
                 yield Finding(key, f'anchor "{clipped(name)}" is named twice')
             seen.add(name if isinstance(name, str) else "")
@@ -102,14 +103,14 @@ def _ends(document: Mapping[str, Any], spars: Mapping[Key, str], anchors: Mappin
         for end in ("from", "to"):
             table = cable.get(end)
             if isinstance(table, dict):
-                yield from _unknown(("cable", index, end, "spar"), "spar", table.get("spar"), spars.values())
+                yield from _unknown(("cable", index, end, "spar"), "spar", table.get("spar"), spars)
                 if end == "to":
-                    yield from _unknown(("cable", index, end, "anchor"), "anchor", table.get("anchor"), anchors.values())
+                    yield from _unknown(("cable", index, end, "anchor"), "anchor", table.get("anchor"), anchors)
 
 
 def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
     ropes = document.get("rope")
-    known = list(ropes) if isinstance(ropes, dict) else []
+    known = ropes if isinstance(ropes, dict) else {}
     for kind in ("guy_level", "cable"):
         for index, item in items(document, kind):
             remedy = "; catalogue ropes are not available in this version; give [rope.NAME]"
@@ -118,17 +119,18 @@ def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
 
 def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:
     own = document.get("material")
-    known = [*built_in_materials(), *(own if isinstance(own, dict) else ())]
+    known = {**built_in_materials(), **(own if isinstance(own, dict) else {})}
     for index, spar in items(document, "spar"):
         for place, section in items(spar, "section"):
             yield from _unknown(("spar", index, "section", place, "material"), "material", section.get("material"), known)
 
 
-def _taken_away(document: Mapping[str, Any], cables: Mapping[Key, str]) -> Iterator[Finding]:
+def _taken_away(document: Mapping[str, Any], cables: Collection[str]) -> Iterator[Finding]:
     for index, case in items(document, "case"):
-        without = case.get("without")
+        without, seen = case.get("without"), set[str]()
         for place, name in enumerate(without if isinstance(without, list) else ()):
             key = ("case", index, "without", place)
-            yield from _unknown(key, "cable", name, cables.values())
-            if isinstance(name, str) and isinstance(without, list) and name in without[:place]:
+            yield from _unknown(key, "cable", name, cables)
+            if isinstance(name, str) and name in seen:
                 yield Finding(key, f'cable "{clipped(name)}" is named twice')
+            seen.add(name if isinstance(name, str) else "")

@@ -12,7 +12,7 @@ from typing import Any
 from guys.errors import Fault, ScenarioError
 from guys.scenario import drawn, frame, names, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
-from guys.scenario.keys import Finding, placer, written
+from guys.scenario.keys import Finding, independent, placer, written
 from guys.scenario.model import Scenario, Spar
 from guys.scenario.quantity import shown
 
@@ -20,6 +20,8 @@ LARGEST = 5_000_000
 """Bytes a scenario file may have."""
 
 FORMAT = 1
+_TOO_DEEP = "not readable as TOML: nested too deeply"
+_DEEP = re.compile(r"(?:^|[\[{,])[ \t]*(?:[\w\"'-]+[ \t]*\.[ \t]*){32}", re.MULTILINE)
 _PLACE = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
 
 
@@ -78,7 +80,7 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     document, refused = unavailable.sweep(document)
     tables, unfit = draft(document)
     broken = refused + unfit
-    findings = broken + [finding for finding in _rules(tables) if not any(finding.follows_from(each.key) for each in broken)]
+    findings = broken + independent(_rules(tables), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))
     scenario = _resolved(tables, hashlib.sha256(content).hexdigest(), path)
@@ -86,10 +88,13 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
 
 
 def _document(text: str, path: str | None) -> dict[str, Any]:
+    deep = _DEEP.search(text)
+    if deep is not None:
+        raise _whole(path, _TOO_DEEP, text.count("\n", 0, deep.end()) + 1)
     try:
         return tomllib.loads(text)
     except RecursionError:
-        raise _whole(path, "not readable as TOML: nested too deeply") from None
+        raise _whole(path, _TOO_DEEP) from None
     except ValueError as error:
         place = _PLACE.search(str(error))
         line, column = (int(place[1]), int(place[2])) if place and place[1] else (text.rstrip().count("\n") + 1 if place else None, None)

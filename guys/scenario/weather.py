@@ -12,6 +12,8 @@ from guys.scenario.keys import Finding, Key, clipped
 from guys.scenario.model import Fitting, Section
 
 NO_DEFAULT = "default drag from the shape is not available in this version"
+SAME_BEARING = 1e-9
+"""Bearings nearer than this [rad] are one direction."""
 TROPOSPHERE = (-1000.0, 11_000.0)
 """Altitudes [m] for which the standard atmosphere is worked out."""
 
@@ -69,11 +71,11 @@ def _air(draft: Draft) -> Iterator[Finding]:
 
 def _directions(draft: Draft) -> Iterator[Finding]:
     listed = draft.wind.directions if draft.wind else None
-    seen: list[float] = []
-    for place, bearing in enumerate(resolve.directions(listed) if isinstance(listed, list) else ()):
-        if any(abs(math.remainder(bearing - other, math.tau)) < 1e-9 for other in seen):
-            yield Finding(("wind", "directions", place), "this direction is in the list already")
-        seen.append(bearing)
+    bearings = resolve.directions(listed) if isinstance(listed, list) else ()
+    order = sorted(range(len(bearings)), key=bearings.__getitem__)
+    for before, place in zip(order[-1:] + order[:-1], order, strict=True):
+        if before != place and abs(math.remainder(bearings[place] - bearings[before], math.tau)) < SAME_BEARING:
+            yield Finding(("wind", "directions", max(before, place)), "this direction is in the list already")
 
 
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
