@@ -1,6 +1,6 @@
 """The governing case solved again by another minimiser, as a check on the solver.
 
-`scipy.optimize.least_squares` (trust region reflective) minimises the same residual, whitened by the frozen factor at the answer,
+`scipy.optimize.least_squares` (MINPACK's Levenberg-Marquardt) minimises the same residual, whitened by the frozen factor at the answer,
 r = L^-1 g with K = L L^T, in the unknowns y with d = L^-T y.  Started cold and unwhitened it stalls on right answers; started at the
 answer it proves nothing; so it starts with every node a thousandth of the height away.  Three ends are told apart: it agrees; it stalls
 (inconclusive); it comes to another equilibrium, which is alarming where that one is stable too.
@@ -62,7 +62,7 @@ def resolve(problem: Problem, answer: State) -> Resolved:
         half = solve_triangular(lower, band.dense(k_band[0]), lower=True)
         return np.asarray(solve_triangular(lower, half.T, lower=True).T)
 
-    out = least_squares(residual, start, jac=jacobian, method="trf", x_scale=1.0, ftol=1e-15, xtol=1e-15, gtol=1e-15, max_nfev=EVALUATIONS)
+    out = least_squares(residual, start, jac=jacobian, method="lm", x_scale=1.0, ftol=1e-15, xtol=1e-12, gtol=1e-15, max_nfev=EVALUATIONS)
     return _compare(problem, answer, state_at(out.x))
 
 
