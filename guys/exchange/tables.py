@@ -1,0 +1,63 @@
+"""`anchors.csv` and `cables.csv`: one row a thing and case, full digits, SI, a unit in every column head."""
+
+from __future__ import annotations
+
+import csv
+import io
+import math
+from collections.abc import Iterable, Sequence
+
+from guys.exchange.result import bearing
+from guys.results import Extreme, Solution
+
+Cell = str | float | bool | None
+
+
+def _csv(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> str:
+    out = io.StringIO()
+    writer = csv.writer(out, lineterminator="\n")
+    writer.writerow(head)
+    for row in rows:
+        writer.writerow(["" if cell is None or (isinstance(cell, float) and math.isnan(cell)) else cell for cell in row])
+    return out.getvalue()
+
+
+def _peak(extreme: Extreme) -> list[Cell]:
+    return [extreme.peak, extreme.peak_case, bearing(extreme.peak_wind_from)]
+
+
+def anchors(solution: Solution) -> str:
+    """Every anchor in every case, after its greatest loads (`case` = greatest) over the full circle of winds."""
+    head = ["anchor", "case", "wind_from_deg", "east_N", "north_N", "up_N", "horizontal_N", "resultant_N"]
+    pulls = solution.anchors
+    rows: list[list[Cell]] = []
+    for a, worst in enumerate(solution.worst_anchors):
+        for name, extreme in (("resultant", worst.resultant), ("horizontal", worst.horizontal), ("uplift", worst.uplift)):
+            value, case, wind = _peak(extreme)
+            up, level, whole = (value if name == n else None for n in ("uplift", "horizontal", "resultant"))
+            rows.append([worst.name, f"greatest {name}: {case}", wind, None, None, up, level, whole])
+        for k, case_name in enumerate(solution.case):
+            east, north, up_n = (float(x) for x in pulls.pull[k, a])
+            wind = bearing(float(solution.wind_from[k]))
+            rows.append([worst.name, case_name, wind, east, north, up_n, float(pulls.horizontal[k, a]), float(pulls.resultant[k, a])])
+    return _csv(head, rows)
+
+
+def cables(solution: Solution) -> str:
+    """Every cable in every case, after its greatest tension over the full circle of winds."""
+    head = ["cable", "case", "wind_from_deg", "tension_anchor_N", "tension_top_N", "greatest_N", "strength_N", "factor", "slack", "unstressed_length_m"]
+    f = solution.cables
+    rows: list[list[Cell]] = []
+    for c, worst in enumerate(solution.worst_cables):
+        value, case, wind = _peak(worst.tension)
+        rows.append([worst.name, f"greatest tension: {case}", wind, None, None, value, worst.strength, worst.factor, None, None])
+        for k, case_name in enumerate(solution.case):
+            if not f.present[k, c]:
+                continue
+            anchor, top = float(f.tension_anchor[k, c]), float(f.tension_top[k, c])
+            greatest = max(anchor, top)
+            factor = worst.strength / greatest if greatest > 0 else math.nan
+            slack = "" if math.isnan(greatest) else ("yes" if f.slack[k, c] else "no")
+            wind = bearing(float(solution.wind_from[k]))
+            rows.append([worst.name, case_name, wind, anchor, top, greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c])])
+    return _csv(head, rows)

@@ -1,0 +1,121 @@
+"""What a run prints: short tables of the worst loads, and the progress of long work.
+
+Tables are drawn by rich on a terminal and are plain aligned text otherwise, so that they can be piped.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Iterator, Sequence
+from contextlib import contextmanager
+from pathlib import Path
+from typing import TextIO
+
+from guys.drawing import rounding
+from guys.drawing.rounding import System, Units
+from guys.results import Extreme, Finding, Solution
+
+Row = Sequence[str]
+
+
+@contextmanager
+def progress(stream: TextIO) -> Iterator[Callable[[int, int], None] | None]:
+    """A bar while cases are solved, on a terminal only."""
+    if not stream.isatty():
+        yield None
+        return
+    from rich.console import Console
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn
+
+    columns = (TextColumn("solving"), BarColumn(), MofNCompleteColumn(), TextColumn("cases"))
+    with Progress(*columns, console=Console(file=stream), transient=True) as bar:
+        task = bar.add_task("solving", total=None)
+        yield lambda done, total: bar.update(task, completed=done, total=total)
+
+
+def report(solution: Solution, units: Units, stream: TextIO) -> None:
+    """The worst load of every anchor and cable, what dropped, the base, what is past its allowable, and every warning."""
+    systems: tuple[System, ...] = ("SI", "US") if units == "both" else (units,)
+    scenario = solution.scenario
+    stream.write(f"{scenario.title}\n{_states(solution)}\n")
+
+    def load(value: float) -> str:
+        return " / ".join(rounding.plain_force(value, s) for s in systems) if math.isfinite(value) else "–"
+
+    def turning(value: float) -> str:
+        return " / ".join(rounding.moment(value, s) for s in systems) if math.isfinite(value) else "–"
+
+    anchors = [[a.name, load(a.resultant.peak), load(a.horizontal.peak), load(a.uplift.peak), *_place(a.resultant)] for a in solution.worst_anchors]
+    table("Greatest load of each anchor", ["anchor", "pull", "horizontal", "uplift", "case", "wind from"], anchors, stream)
+    cables = [
+        [c.name, load(c.tension.peak), load(c.strength), rounding.factor(c.factor) if math.isfinite(c.factor) else "not judged", *_place(c.tension),
+         "drops" if c.slack_winds or solution.cables.slack[:, k].any() else "taut"]
+        for k, c in enumerate(solution.worst_cables)
+    ]  # fmt: skip
+    table("Greatest tension of each cable", ["cable", "tension", "strength", "factor", "case", "wind from", "slack"], cables, stream)
+    feet = [
+        [f.spar, "ground" if f.carried_by is None else f.carried_by, load(f.down.peak), load(f.lift.peak), load(f.sideways.peak), turning(f.turning.peak)]
+        for f in solution.worst_feet
+    ]
+    table("Feet", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
+    _findings(solution.findings, stream)
+    for title, lines in (("Warnings", solution.warnings), ("Notes", solution.notes), ("Not checked", solution.not_checked), ("Cautions", solution.cautions)):
+        if lines:
+            stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
+
+
+def _states(solution: Solution) -> str:
+    count = {state: solution.state.count(state) for state in ("stable", "neutral", "unstable", "none")}
+    words = ", ".join(f"{n} {state}" for state, n in count.items() if n)
+    return f"{len(solution.state)} cases: {words}; loads and reactions balance to {solution.check.balance:.0e}; solved again: {solution.check.resolve}"
+
+
+def _place(extreme: Extreme) -> tuple[str, str]:
+    wind = "–" if math.isnan(extreme.peak_wind_from) else rounding.bearing(extreme.peak_wind_from)
+    return extreme.peak_case, wind
+
+
+def _findings(findings: Sequence[Finding], stream: TextIO) -> None:
+    """What is past, then the nearest of what is within, of each quantity."""
+    shown: list[Finding] = [f for f in findings if f.verdict == "past"]
+    seen = {f.quantity for f in shown}
+    for f in findings:
+        if f.verdict == "within" and f.quantity not in seen:
+            shown.append(f)
+            seen.add(f.quantity)
+    rows = [
+        [f.thing, f.quantity, f"{rounding.factor(f.factor)} {f.verdict}", f"{f.required:g}{' (default)' if f.default else ''}", f.case,
+         "–" if math.isnan(f.wind_from) else rounding.bearing(f.wind_from)]
+        for f in shown
+    ]  # fmt: skip
+    table("Against the allowables (all that is past, and the nearest within)", ["thing", "quantity", "factor", "required", "case", "wind from"], rows, stream)
+    unjudged = [f.thing for f in findings if f.verdict == "not judged"]
+    if unjudged:
+        stream.write(f"Not judged: {', '.join(unjudged)}\n")
+
+
+def table(title: str, head: Row, rows: Sequence[Row], stream: TextIO) -> None:
+    """One table, if it has rows."""
+    if not rows:
+        return
+    if stream.isatty():
+        from rich import box
+        from rich.console import Console
+        from rich.table import Table
+
+        drawn = Table(title=title, box=box.SIMPLE_HEAD, title_justify="left", title_style="bold")
+        for name in head:
+            drawn.add_column(name)
+        for row in rows:
+            drawn.add_row(*row)
+        Console(file=stream).print(drawn)
+        return
+    widths = [max(len(row[k]) for row in (head, *rows)) for k in range(len(head))]
+    stream.write(f"\n{title}\n")
+    for row in (head, *rows):
+        stream.write("  " + "  ".join(cell.ljust(width) for cell, width in zip(row, widths, strict=True)).rstrip() + "\n")
+
+
+def files(written: Sequence[Path], stream: TextIO) -> None:
+    """Where the files are."""
+    stream.write(f"\nWritten to {written[0].parent}: {', '.join(path.name for path in written)}\n")
