@@ -1,0 +1,206 @@
+"""Timing of our own solver: what one case costs in a batch, where the time goes, and how it grows.
+
+The search for equilibrium (`solver.solve`) of all cases of a problem is timed from the still-air state, best of several runs; loads, the
+setting and the verdict are timed apart.  Bare factorisations are the very bands that the search factored, recorded and factored again by
+LAPACK alone.  The parts of a search are timed by wrapping the functions named in `PARTS`, which do not contain each other.
+"""
+
+from __future__ import annotations
+
+import importlib
+import time
+from collections.abc import Callable, Iterator
+from contextlib import ExitStack, contextmanager
+from dataclasses import dataclass
+from typing import Any
+from unittest.mock import patch
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys import setting, solver, stability
+from guys.equilibrium import Problem
+from guys.loads import Placed, assemble, lines_of
+from guys.scenario import Scenario, parse_scenario
+from guys.structure import build
+
+Vector = NDArray[np.float64]
+
+PARTS = {
+    "cables: catenaries to their chords": ("guys.equilibrium:Problem.pull",),
+    "cables: blocks of the tangent": ("guys.equilibrium:Problem._cable_blocks",),
+    "beams: deformations and their derivatives": ("guys.equilibrium:Problem._bend", "guys.beam:gradient"),
+    "beams: blocks of the tangent": ("guys.beam:hessian",),
+    "blocks summed and laid into the band": ("guys.band:add_up", "guys.band:to_band", "guys.band:fold", "guys.band:fold_gradient"),
+    "banded factorisation": ("guys.band:factor",),
+    "banded solution": ("guys.band:solve",),
+    "nodes moved and turned": ("guys.equilibrium:Problem.advance",),
+}
+
+
+@dataclass(frozen=True)
+class Prepared:
+    """A structure with its setting found, and the problem of all its cases."""
+
+    found: setting.Setting
+    problem: Problem
+    setting_seconds: float
+    loads_seconds: float
+
+
+@dataclass(frozen=True)
+class Figures:
+    """What is reported of one mast; milliseconds are per case."""
+
+    nodes: int
+    cables: int
+    cases: int
+    search_ms: float
+    verdict_ms: float
+    loads_ms: float
+    setting_ms: float
+    rounds: float
+    out_of_balance: float
+    mesh_of_greatest: float
+    mesh_each: float
+    factorisation_ms: float
+    parts: dict[str, float]
+
+    @property
+    def ratio(self) -> float:
+        """Search over the sum of its bare factorisations."""
+        return self.search_ms / self.factorisation_ms
+
+
+def prepare(scenario: Scenario, finer: int = 1, directions: int | None = None) -> Prepared:
+    """Build, set, and load with the file's wind directions, or with evenly spaced ones."""
+    began = time.perf_counter()
+    structure = build(scenario, finer)
+    found = setting.find(structure)
+    between = time.perf_counter()
+    bearings = None if directions is None else [2 * np.pi * k / directions for k in range(directions)]
+    placed = Placed(found.state.u[0], found.state.psi[0], found.length)
+    loads = assemble(structure, lines_of(scenario, bearings), placed)
+    ended = time.perf_counter()
+    return Prepared(found, Problem(structure, loads, found.length), between - began, ended - between)
+
+
+def search(mast: Prepared) -> solver.Outcome:
+    """What is timed: every case from the still-air state to equilibrium."""
+    return solver.solve(mast.problem, mast.problem.repeat(mast.found.state), stability.turned_over)
+
+
+def least_time(work: Callable[[], object], repeats: int) -> float:
+    """Least of several wall times [s], after one run that is not counted."""
+    work()
+    spent = []
+    for _ in range(repeats):
+        began = time.perf_counter()
+        work()
+        spent.append(time.perf_counter() - began)
+    return min(spent)
+
+
+def figures(text: str, repeats: int, directions: int | None = None) -> Figures:
+    """Everything about one mast."""
+    scenario = parse_scenario(text)
+    mast, fine = prepare(scenario, 1, directions), prepare(scenario, 2, directions)
+    out = search(mast)
+    tension, reference = tensions(mast, out), tensions(fine, search(fine))
+    cases = mast.problem.cases
+    per_case = 1e3 / cases
+    return Figures(
+        nodes=mast.problem.structure.nodes,
+        cables=len(scenario.cable),
+        cases=cases,
+        search_ms=per_case * least_time(lambda: search(mast), repeats),
+        verdict_ms=per_case * least_time(lambda: stability.classify(mast.problem, out.state), repeats),
+        loads_ms=per_case * mast.loads_seconds,
+        setting_ms=1e3 * mast.setting_seconds,
+        rounds=float(out.rounds.mean()),
+        out_of_balance=float(out.error.max()),
+        mesh_of_greatest=float(np.abs(tension - reference).max() / reference.max()),
+        mesh_each=float(np.abs(tension / reference - 1).max()),
+        factorisation_ms=per_case * bare_factorisations(mast, repeats),
+        parts=parts(mast, repeats),
+    )
+
+
+def tensions(mast: Prepared, out: solver.Outcome) -> Vector:
+    """(case, cable, end) [N]."""
+    hanging = mast.problem.evaluate(out.state, tangent=False).hanging
+    return np.stack([np.linalg.norm(hanging.at_a, axis=-1), np.linalg.norm(hanging.at_b, axis=-1)], axis=-1)
+
+
+def bare_factorisations(mast: Prepared, repeats: int) -> float:
+    """Seconds to factor once more every band that one search factors."""
+    from guys import band
+
+    bands: list[Vector] = []
+    bare = band.factor
+
+    def recording(k_band: Vector) -> Any:
+        bands.append(k_band.copy())
+        return bare(k_band)
+
+    with patch.object(band, "factor", recording):
+        search(mast)
+    return sum(least_time(lambda k=k: bare(k), repeats) for k in bands)  # type: ignore[misc]
+
+
+def parts(mast: Prepared, repeats: int) -> dict[str, float]:
+    """Share of the wall time of a search spent in each of `PARTS`, and in the rest."""
+    spent = dict.fromkeys(PARTS, 0.0)
+    with ExitStack() as wrapped:
+        for part, names in PARTS.items():
+            for name in names:
+                wrapped.enter_context(_timed(name, part, spent))
+        began = time.perf_counter()
+        for _ in range(repeats):
+            search(mast)
+        whole = time.perf_counter() - began
+    shares = {part: seconds / whole for part, seconds in spent.items()}
+    return shares | {"the rest": 1.0 - sum(shares.values())}
+
+
+@contextmanager
+def _timed(name: str, part: str, spent: dict[str, float]) -> Iterator[None]:
+    """Wrap the function `module:name` so that its wall time is added to `spent[part]`."""
+    module, _, path = name.partition(":")
+    *owners, last = path.split(".")
+    owner: Any = importlib.import_module(module)
+    for step in owners:
+        owner = getattr(owner, step)
+    bare = getattr(owner, last)
+
+    def timed(*arguments: Any, **named: Any) -> Any:
+        began = time.perf_counter()
+        try:
+            return bare(*arguments, **named)
+        finally:
+            spent[part] += time.perf_counter() - began
+
+    with patch.object(owner, last, timed):
+        yield
+
+
+def growth_with_cases(text: str, counts: tuple[int, ...], repeats: int) -> list[tuple[int, float]]:
+    """(cases, milliseconds of the whole batch)."""
+    scenario = parse_scenario(text)
+    out = []
+    for count in counts:
+        mast = prepare(scenario, 1, count)
+        out.append((count, 1e3 * least_time(lambda mast=mast: search(mast), repeats)))  # type: ignore[misc]
+    return out
+
+
+def growth_with_nodes(text: str, finer: tuple[int, ...], repeats: int) -> list[tuple[int, float, float]]:
+    """(nodes, milliseconds per case, rounds) for meshes `finer` times as fine."""
+    scenario = parse_scenario(text)
+    out = []
+    for factor in finer:
+        mast = prepare(scenario, factor)
+        rounds = float(search(mast).rounds.mean())
+        seconds = least_time(lambda mast=mast: search(mast), repeats)  # type: ignore[misc]
+        out.append((mast.problem.structure.nodes, 1e3 * seconds / mast.problem.cases, rounds))
+    return out
