@@ -178,7 +178,7 @@ def solution(made: Guyed) -> Solution:
     )
     anchors = AnchorPulls(name, np.array([place[a] for a in name]), pull)
     sweep = Sweep(
-        tuple(made.cases), fine, swept, np.linalg.norm(swept_pull, axis=-1), np.hypot(swept_pull[..., 0], swept_pull[..., 1]),
+        tuple(made.cases), np.tile(fine, (len(made.cases), 1)), swept, np.linalg.norm(swept_pull, axis=-1), np.hypot(swept_pull[..., 0], swept_pull[..., 1]),
         swept_pull[..., 2], swept < 20.0,
     )  # fmt: skip
 
@@ -212,10 +212,10 @@ def solution(made: Guyed) -> Solution:
     feet = [foot_worst("mast", None, 1.0)] + ([foot_worst("boom", "mast", 0.1)] if made.boom else [])
     heels = FootForces(("boom",), ("mast",), foot * 0.1, foot * 0) if made.boom else FootForces((), (), np.empty((n, 0, 3)), np.empty((n, 0, 3)))
     findings = tuple(_finding(w) for w in worst_cables) + tuple(
-        Finding(a, "holding", w.resultant.peak, nan, "N", 1.5, nan, "not judged", w.resultant.case, w.resultant.wind_from,
-                "no holdfast given", True)
+        Finding(f"anchor {a}", "pull", w.resultant.peak, nan, "N", 1.5, nan, "not judged", w.resultant.case, w.resultant.wind_from,
+                "no holdfast given: what holds it is not checked", True)
         for a, w in zip(name, worst_anchors, strict=True)
-    ) + (Finding("mast", "lean", radians(0.31), radians(1.0), "rad", 1.0, 1.0 / 0.31, "within", made.cases[0], 0.0, "", True),)  # fmt: skip
+    ) + (Finding("spar mast", "lean", radians(0.31), radians(1.0), "rad", 1.0, 1.0 / 0.31, "within", made.cases[0], 0.0, "", True),)  # fmt: skip
     return Solution(
         scenario=asked, version="0.1.0", case=case, wind_from=wind, state=("stable",) * n, note=(None,) * n, reason=(None,) * n,
         out_of_balance=np.full(n, 3e-12), reference_force=np.full(n, 6e3), iterations=np.full(n, 5),
@@ -230,7 +230,7 @@ def solution(made: Guyed) -> Solution:
 def _finding(worst: CableWorst) -> Finding:
     verdict = "within" if worst.factor >= 2.0 else "past"
     peak = worst.tension
-    return Finding(worst.name, "strength", peak.peak, worst.strength, "N", 2.0, worst.factor, verdict, peak.peak_case, peak.peak_wind_from, "",
+    return Finding(f"cable {worst.name}", "tension", peak.peak, worst.strength, "N", 2.0, worst.factor, verdict, peak.peak_case, peak.peak_wind_from, "",
                    True)  # fmt: skip
 
 

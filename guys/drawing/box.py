@@ -36,9 +36,7 @@ SIZE = 8.6
 PITCH = SIZE * style.POINT_MM * 1.28
 LABEL_WIDE = 23.0
 FRAME = 2.4
-BLANK = "_" * 14
 FROM = "wind from "
-FELL = ("none", "unstable")
 
 
 @dataclass(frozen=True)
@@ -64,10 +62,7 @@ def entries(solution: Solution, tongue: Tongue) -> list[Entry]:
         *_lean(solution),
         *(Entry("Note", note) for note in solution.notes),
         *([Entry("Not checked", "; ".join(solution.not_checked))] if solution.not_checked else []),
-        _self_check(solution),
-        _units(tongue),
-        _program(solution),
-        Entry("Date", f"{BLANK} pegged out by {BLANK} checked by {BLANK}"),
+        *_other_state(solution),
     ]
 
 
@@ -82,25 +77,37 @@ def _warnings(solution: Solution) -> list[Entry]:
     return [Entry("Warning", text, alarming=True) for text in texts]
 
 
-def _rows_in_state(solution: Solution, state: str) -> list[int]:
-    return [i for i, s in enumerate(solution.state) if s == state]
+KINDS = {
+    "failed": "SOLVER FAILED (report it)",
+    "none": "NO EQUILIBRIUM (falls)",
+    "unstable": "UNSTABLE",
+    "neutral": "NEUTRAL (free to move)",
+    "spins": "free to spin about its own axis",
+    "stable": "stable",
+}
+"""How a case ended, gravest first."""
+
+
+def kinds(solution: Solution) -> list[str]:
+    """(case,) how each case ended; a neutral one that counts as standing only spins."""
+    settled = [not u for u in solution.unsettled] or [False] * len(solution.state)
+    return ["spins" if s == "neutral" and ok else s for s, ok in zip(solution.state, settled, strict=True)]
 
 
 def state_summary(solution: Solution) -> str:
     """How many cases found an equilibrium of which kind, in words."""
-    total = len(solution.state)
-    if all(s == "stable" for s in solution.state):
-        return f"stable in all {total} cases and winds"
-    words = {"none": "NO EQUILIBRIUM (falls)", "unstable": "UNSTABLE", "neutral": "NEUTRAL (free to move)", "stable": "stable"}
-    found = {s: len(_rows_in_state(solution, s)) for s in words}
-    return ", ".join(f"{words[s]} in {n} of {total}" for s, n in found.items() if n)
+    ended = kinds(solution)
+    if all(kind == "stable" for kind in ended):
+        return f"stable in all {len(ended)} cases and winds"
+    words = [f"{word} in {ended.count(kind)} of {len(ended)}" for kind, word in KINDS.items() if kind in ended]
+    return ", ".join([KINDS["failed"], *words] if solution.failed else words)
 
 
 def _state(solution: Solution) -> list[Entry]:
     rows = [Entry("State", f"{state_summary(solution)}, still air among them")]
     for state, word in (("none", "Falls"), ("unstable", "Unstable"), ("neutral", "Neutral")):
         by_reason: dict[tuple[str, str], list[int]] = {}
-        for i in _rows_in_state(solution, state):
+        for i in (i for i, kind in enumerate(kinds(solution)) if kind == state):
             by_reason.setdefault((solution.case[i], solution.reason[i] or solution.note[i] or ""), []).append(i)
         for (case, reason), which in by_reason.items():
             winds = [bearing(float(solution.wind_from[i])) for i in which if isfinite(solution.wind_from[i])]
@@ -204,7 +211,8 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
     parts = []
     for case in solution.scenario.case:
         lost = f", without {', '.join(case.without)}" if case.without else ""
-        parts.append(f"{case.name}: dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}, {tongue.say(temperature, case.temperature)}{lost}")
+        factors = f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}"
+        parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}")
     if ice is not None:
         parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {ice.density:g} kg/m³")
     return [*rows, Entry("Cases", "; ".join(parts))]
@@ -254,29 +262,38 @@ def _lean(solution: Solution) -> list[Entry]:
     return rows
 
 
-def _self_check(solution: Solution) -> Entry:
+def _other_state(solution: Solution) -> list[Entry]:
+    if solution.check.resolve != "other stable state":
+        return []
+    return [Entry("Self-check", "the governing case solved again ENDS IN ANOTHER STABLE STATE", alarming=True)]
+
+
+def small_print(solution: Solution, tongue: Tongue) -> str:
+    """Self-check, units, program and a line to sign, for the foot of the sheet."""
+    balance = f"{solution.check.balance:.0e}" if isfinite(solution.check.balance) else ABSENT
+    return " · ".join((
+        f"Self-check: sum of loads and reactions {balance} of the reference force, {_again(solution)}",
+        _units(tongue),
+        f"guys {solution.version}, scenario {solution.scenario.sha256[:12]}",
+    ))  # fmt: skip
+
+
+def _again(solution: Solution) -> str:
     check = solution.check
     where = wind_words(solution, check.resolved_case, check.resolved_wind_from)
-    again = {
-        "agrees": f"{where} solved again by least squares: agrees to {check.difference:.0e}",
+    return {
+        "agrees": f"{where} solved again by least squares agrees to {check.difference:.0e}",
         "inconclusive": f"{where} solved again by least squares: inconclusive",
-        "other stable state": f"{where} solved again by least squares: ENDS IN ANOTHER STABLE STATE",
+        "other stable state": f"{where} solved again by least squares: ends in another stable state",
         "not run": "governing case not solved again",
     }[check.resolve]
-    balance = f"{check.balance:.0e}" if isfinite(check.balance) else ABSENT
-    text = f"sum of loads and reactions {balance} of the reference force; {again}"
-    return Entry("Self-check", text, alarming=check.resolve == "other stable state")
 
 
-def _units(tongue: Tongue) -> Entry:
-    names = " and ".join("SI" if s == "SI" else "US" for s in tongue.systems)
+def _units(tongue: Tongue) -> str:
+    names = " and ".join(tongue.systems)
     force_names = " and ".join("kN" if s == "SI" else "lbf" for s in tongue.systems)
     masses = " and ".join("kg" if s == "SI" else "lb" for s in tongue.systems)
-    return Entry("Units", f"{names}: {force_names} force, {masses} mass. Loads rounded up to two figures; full digits in result.json.")
-
-
-def _program(solution: Solution) -> Entry:
-    return Entry("Program", f"guys {solution.version}, scenario {solution.scenario.sha256[:12]}")
+    return f"{names} units: {force_names} force, {masses} mass; loads rounded up to two figures, full digits in result.json"
 
 
 @dataclass(frozen=True)

@@ -77,7 +77,8 @@ def below_room(solution: Solution, zone: Rect, view: View) -> float:
     """Height [mm] kept under the lowest ground for the words of anchors and bases."""
     across = view.project(solution.anchors.position - base_point(solution))[:, 0]
     wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
-    rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in (across < 0.0, across >= 0.0) if side.any()]
+    sides = [side for side in (across < 0.0, across >= 0.0) if side.any()]
+    rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in sides]
     return 17.0 + TIER * max(rows, default=0)
 
 

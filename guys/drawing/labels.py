@@ -55,6 +55,12 @@ class Field:
         """A box of words."""
         self.boxes.append(np.asarray(box, dtype=float).reshape(1, 4))
 
+    def add_place(self, spot: Place) -> None:
+        """Words placed, with their leader."""
+        self.add_box(spot.box)
+        if spot.leader is not None:
+            self.leaders.append(spot.leader.reshape(1, 4))
+
     def add_disc(self, centre: ArrayLike, radius: float) -> None:
         """A ring or a dot."""
         self.discs.append(np.append(np.asarray(centre, dtype=float), radius).reshape(1, 3))
@@ -83,6 +89,7 @@ class Place:
     box: Array
     leader: Array | None
     clashes: int
+    cost: float = 0.0
 
 
 def _joined(parts: list[Array], columns: int) -> Array:
@@ -101,7 +108,7 @@ def crossing(segments: Array, boxes: Array) -> NDArray[np.bool_]:
 def overlapping(boxes: Array, others: Array) -> NDArray[np.bool_]:
     """(box, other): do they share any area."""
     apart = (boxes[:, None, :2] >= others[None, :, 2:]) | (others[None, :, :2] >= boxes[:, None, 2:])
-    return ~apart.any(axis=-1)
+    return np.asarray(~apart.any(axis=-1))
 
 
 def touching(boxes: Array, discs: Array) -> NDArray[np.bool_]:
@@ -164,9 +171,7 @@ def place(field_: Field, *wishes: Wish) -> Place:
         spot = _cheapest(field_, narrowed, int(count.min()))
         if not spot.clashes:
             break
-    if spot.leader is not None:
-        field_.leaders.append(spot.leader.reshape(1, 4))
-    field_.add_box(spot.box)
+    field_.add_place(spot)
     return spot
 
 
@@ -178,7 +183,8 @@ def _cheapest(field_: Field, wish: Wish, touched: int) -> Place:
     total = wish.cost + _leader_cost(field_, wish, lines, run, needed) + _AMBIGUOUS_COST * unclear
     best = int(np.argmin(total))
     leader = _leader(lines[best], wish.clear) if needed[best] else None
-    return Place(wish.boxes[best], leader, touched + int(total[best] >= _CLASH_COST))
+    clash = touched + int(total[best] >= _CLASH_COST)
+    return Place(wish.boxes[best], leader, clash, float(total[best]) + _CLASH_COST * touched)
 
 
 def _leader(line: Array, clear: float) -> Array:
@@ -210,7 +216,7 @@ def all_over(wish: Wish, room: Rect, step: float = 5.0) -> Wish:
     low = np.stack(np.meshgrid(x, y), axis=-1).reshape(-1, 2)
     if not len(low):
         return wish
-    return replace(wish, boxes=np.hstack([low, low + [wide, high]]), cost=np.zeros(len(low)))
+    return replace(wish, boxes=np.hstack([low, low + np.array([wide, high])]), cost=np.zeros(len(low)))
 
 
 def column(wish: Wish, x: float, room: Rect) -> Wish:
@@ -218,4 +224,4 @@ def column(wish: Wish, x: float, room: Rect) -> Wish:
     wide, high = wish.boxes[0, 2:] - wish.boxes[0, :2]
     shift = np.arange(-0.5, 0.5, 1.0 / 120.0) * room.height
     low = np.column_stack([np.full(len(shift), x if x > wish.point[0] else x - wide), wish.point[1] - high / 2.0 + shift])
-    return replace(wish, boxes=np.hstack([low, low + [wide, high]]), cost=0.8 * np.abs(shift))
+    return replace(wish, boxes=np.hstack([low, low + np.array([wide, high])]), cost=0.8 * np.abs(shift))

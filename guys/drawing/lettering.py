@@ -123,7 +123,7 @@ def outline(text: str, bold: bool) -> Path:
     for character in text:
         shape, code = _glyph(character, bold)
         if len(shape):
-            vertices.append(shape + [x, 0.0])
+            vertices.append(shape + np.array([x, 0.0]))
             codes.append(code)
         x += _advance(character, bold)
     return Path(np.concatenate(vertices[1:] or vertices), np.concatenate(codes[1:] or codes))
@@ -165,7 +165,7 @@ class TextLine(Artist):
         gc.set_snap(False)
         if isinstance(renderer, RendererAgg):
             path, rgb = outline(self.text, self.bold), gc.get_rgb()
-            renderer.draw_path(gc, path, self._placed(renderer.points_to_pixels(1.0)), rgb)
+            renderer.draw_path(gc, path, self._placed(renderer.dpi / 72.0), rgb)  # type: ignore[no-untyped-call]
         else:
             self._set(renderer, gc)
         gc.restore()

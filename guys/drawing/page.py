@@ -6,7 +6,6 @@ millimetres; true scale is kept by asking `scaled` for the design millimetres of
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -23,7 +22,7 @@ from guys.drawing.lettering import TextLine, plain, width
 
 Paper = Literal["A3", "A4", "letter", "tabloid"]
 Align = Literal["left", "right", "centre"]
-Dash = str | tuple[float, tuple[float, ...]]
+Dash = Literal["solid"] | tuple[float, tuple[float, ...]]
 
 # Paper in mm and the factor from the A3 composition: chosen so that 9 pt never falls under 6 pt.
 PAPERS: dict[str, tuple[float, float, float]] = {
@@ -85,7 +84,7 @@ class Page:
         points: ArrayLike,
         colour: str = style.INK,
         weight: float = style.THIN,
-        dash: Dash = style.SOLID,
+        dash: Dash = "solid",
         order: float = 2.0,
         name: str = "",
         butt: bool = False,
@@ -171,7 +170,7 @@ def new_page(paper: str, taller: float = 0.0) -> Page:
     return Page(paper, width_mm, height_mm, shrink, figure, transform)
 
 
-def arc(centre: Sequence[float], radius: float, count: int = 181) -> NDArray[np.float64]:
+def arc(centre: ArrayLike, radius: float, count: int = 181) -> NDArray[np.float64]:
     """Points (count, 2) around a circle, closed."""
     turn = np.linspace(0.0, 2.0 * np.pi, count)
     return np.asarray(centre, dtype=float) + radius * np.column_stack([np.sin(turn), np.cos(turn)])

@@ -8,6 +8,7 @@ that coincide are drawn side by side.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from math import isfinite
 
@@ -15,7 +16,7 @@ import numpy as np
 
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Wish, all_over, around, clashes, place
+from guys.drawing.labels import Array, Field, Place, Wish, all_over, around, clashes, place
 from guys.drawing.lettering import shortened
 from guys.drawing.page import Page, Rect, arc
 from guys.drawing.reading import (
@@ -83,7 +84,7 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     on = frame(page, solution, zone, ratio)
     field = Field(on.room)
     per_newton = load_scale(solution, on)
-    largest = max((max(greatest(w.horizontal).value, greatest(w.uplift).value) for w in solution.worst_anchors), default=0.0)
+    largest = _largest(solution)
     _heading(page, solution, on, ratio)
     _north(page, on, field)
     _foot_strip(page, on, per_newton, largest * per_newton, tongue)
@@ -95,6 +96,11 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     _label_spars(page, solution, on, field)
     _governing_wind(page, solution, on, field, tongue)
     _fall_circles(page, solution, on, field, tongue)
+
+
+def _largest(solution: Solution) -> float:
+    loads = [greatest(e).value for w in solution.worst_anchors for e in (w.horizontal, w.uplift)]
+    return max((v for v in loads if isfinite(v)), default=0.0)
 
 
 def load_scale(solution: Solution, on: PlanFrame) -> float:
@@ -221,16 +227,26 @@ def ring_radius(worst: AnchorWorst, per_newton: float) -> float:
 
 
 def _label_anchors(page: Page, solution: Solution, on: PlanFrame, field: Field, per_newton: float, tongue: Tongue) -> None:
+    """Words at every anchor, in the order (crowded, outer or inner ones first) that costs least in all."""
     at = on.on_page(solution.anchors.position)
-    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
     rings = np.array([ring_radius(_worst_of(solution, name), per_newton) for name in solution.anchors.name])
-    for i in np.argsort(gaps.min(axis=1, initial=1e6), kind="stable"):
-        worst = _worst_of(solution, solution.anchors.name[i])
-        lines = anchor_words(solution, worst, tongue)
-        outward = at[i] - on.on_page(base_point(solution))
-        rivals = np.delete(np.column_stack([at, rings]), i, axis=0)
-        wish = replace(around(at[i], blocks.size(lines), rings[i], outward), rivals=rivals)
-        blocks.draw_placed(page, place(field, wish, all_over(wish, on.room)), at[i], lines)
+    words = [anchor_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
+    wishes = []
+    for i, point in enumerate(at):
+        wish = around(point, blocks.size(words[i]), rings[i], point - on.on_page(base_point(solution)))
+        wishes.append(replace(wish, rivals=np.delete(np.column_stack([at, rings]), i, axis=0)))
+    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
+    away = np.linalg.norm(at - on.on_page(base_point(solution)), axis=1)
+    orders = [np.argsort(key, kind="stable") for key in (gaps.min(axis=1, initial=1e6), -away, away, at[:, 0], at[:, 1])]
+    spots = min((_placed(field.copied(), wishes, order, on.room) for order in orders), key=lambda s: sum(p.cost for p in s))
+    for spot, point, lines in zip(spots, at, words, strict=True):
+        field.add_place(spot)
+        blocks.draw_placed(page, spot, point, lines)
+
+
+def _placed(field: Field, wishes: list[Wish], order: Iterable[np.int64], room: Rect) -> list[Place]:
+    spots = {int(i): place(field, wishes[i], all_over(wishes[i], room)) for i in order}
+    return [spots[i] for i in range(len(wishes))]
 
 
 def _worst_of(solution: Solution, anchor: str) -> AnchorWorst:
@@ -245,8 +261,8 @@ def anchor_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list
     rise = uplift_words(up, tongue)
     loads = [f"out {tongue.say(force, out)}", f"up {rise}"]
     lines = [Line(part, bold=False, colour=style.INK) for part in (loads if len(tongue.systems) > 1 else ["   ".join(loads)])]
-    for system in tongue.systems:
-        lines.append(Line(f"{bearing(turn)}   {length(radius, system)}   level {level(above, system)}"))
+    for i, system in enumerate(tongue.systems):
+        lines.append(Line(f"{bearing(turn) + '   ' if i == 0 else ''}{length(radius, system)}   level {level(above, system)}"))
     names = _broken(worst.name)
     wind = pull.wind_from if isfinite(pull.wind_from) else None
     return [*names, *lines, Line(wind_words(solution, pull.case, pull.wind_from), colour=style.WIND, wind_from=wind)]
@@ -279,7 +295,7 @@ def _governing_wind(page: Page, solution: Solution, on: PlanFrame, field: Field,
     """The wind of the greatest pull of all, as a large arrow upwind of the site where there is room (it is in the words anyway)."""
     pulls = [(greatest(w.resultant), w.name) for w in solution.worst_anchors]
     winds = [(g, name) for g, name in pulls if isfinite(g.value) and isfinite(g.wind_from)]
-    if not winds or max(p[0].value for p in pulls) > max(w[0].value for w in winds):
+    if not winds or max(p[0].value for p in pulls if isfinite(p[0].value)) > max(w[0].value for w in winds):
         return
     top, name = max(winds, key=lambda w: w[0].value)
     short = shortened(name, 34.0, style.BODY)

@@ -15,10 +15,10 @@ from guys.drawing.blocks import Line
 from guys.drawing.labels import Array, Field, Wish, place
 from guys.drawing.lettering import shortened
 from guys.drawing.page import Page, Rect, arc
-from guys.drawing.reading import sectors
+from guys.drawing.reading import bearings_of, sectors
 from guys.drawing.rounding import POUND_FORCE, Tongue
 from guys.drawing.scales import round_below
-from guys.results import Solution
+from guys.results import Solution, Sweep
 
 RIM = 8.5
 HEAD = 13.5
@@ -35,7 +35,8 @@ def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> No
     if solution.sweep is None:
         return
     unit, name = (1e3, "kN") if tongue.systems[0] == "SI" else (POUND_FORCE, "lbf")
-    pull = np.fmax.reduce(solution.sweep.resultant, axis=0) / unit
+    bearings = np.unique(np.asarray(solution.sweep.bearing))
+    pull = _greatest(solution.sweep, bearings) / unit
     top = float(np.nanmax(pull))
     if tongue.systems[0] == "SI" and top < 0.1:
         pull, top, name = pull * 1e3, top * 1e3, "N"
@@ -47,8 +48,19 @@ def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> No
     centre = np.array([(zone.left + zone.right) / 2.0, zone.top - HEAD - RIM - radius])
     field = Field(zone)
     _web(page, field, centre, radius, round(rim / step))
-    _curves(page, solution.sweep.bearing, pull * radius / rim, centre)
-    _rim(page, field, solution, pull, centre, radius)
+    _curves(page, bearings, pull * radius / rim, centre)
+    _rim(page, field, (solution.anchors.name, bearings, pull), centre, radius)
+
+
+def _greatest(sweep: Sweep, bearings: Array) -> Array:
+    """(bearing, anchor) the greatest pull over the cases with wind, between bearings of a case in proportion; NaN where none stands."""
+    lines = []
+    for line in range(len(sweep.case)):
+        own = bearings_of(sweep, line)
+        around = np.concatenate([own[-1:] - 2.0 * np.pi, own, own[:1] + 2.0 * np.pi])
+        pull = np.concatenate([sweep.resultant[line, -1:], sweep.resultant[line], sweep.resultant[line, :1]])
+        lines.append(np.column_stack([np.interp(bearings, around, pull[:, i]) for i in range(pull.shape[1])]))
+    return np.asarray(np.fmax.reduce(lines, axis=0))
 
 
 def _spoke(turn: float | Array) -> Array:
@@ -80,21 +92,22 @@ def _curves(page: Page, bearings: Array, pull: Array, centre: Array) -> None:
     page.line(centre + np.fmax.reduce(closed, axis=1)[:, None] * spokes, style.LOAD, 1.8, order=2.5, name="envelope")
 
 
-def _rim(page: Page, field: Field, solution: Solution, pull: Array, centre: Array, radius: float) -> None:
+def _rim(page: Page, field: Field, swept: tuple[tuple[str, ...], Array, Array], centre: Array, radius: float) -> None:
     """Names of the governing anchors, a tick where the governing anchor changes."""
-    bearings = solution.sweep.bearing if solution.sweep else np.empty(0)
+    names, bearings, pull = swept
     governs = np.argmax(np.nan_to_num(pull, nan=-1.0), axis=1)
     known = np.isfinite(pull).any(axis=1)
-    step = 2.0 * np.pi / max(len(bearings), 1)
+    before = np.roll(bearings, 1)
+    edge = bearings - ((bearings - before) % (2.0 * np.pi)) / 2.0
     for anchor in np.unique(governs[known]):
         for first, last in sectors((governs == anchor) & known, bearings):
             span = (last - first) % (2.0 * np.pi) if first != last else 0.0
             whole = bool((governs[known] == anchor).all()) and bool(known.all())
-            start, middle = first - step / 2.0, 0.0 if whole else first + span / 2.0
+            start, middle = edge[np.argmin(np.abs(bearings - first))], 0.0 if whole else first + span / 2.0
             if not whole:
                 page.line(centre + np.array([radius, radius + 2.0])[:, None] * _spoke(start), style.INK, style.THIN)
             if whole or span > np.deg2rad(4.0):
-                _name_on_rim(page, field, solution.anchors.name[anchor], centre, radius, middle)
+                _name_on_rim(page, field, names[anchor], centre, radius, middle)
 
 
 def _name_on_rim(page: Page, field: Field, name: str, centre: Array, radius: float, turn: float) -> None:

@@ -7,13 +7,14 @@ Nothing here computes mechanics; a number is picked, compared or put into words.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 from math import isfinite, nan
 
 import numpy as np
 from numpy.typing import NDArray
 
 from guys.drawing.rounding import bearing
-from guys.results import AnchorWorst, Array, Extreme, Flags, Solution, SparLine
+from guys.results import AnchorWorst, Array, Extreme, Flags, Solution, SparLine, Sweep
 
 SETTING = 0
 _PARTED = 0.1
@@ -52,7 +53,7 @@ def wind_words(solution: Solution, case: str, wind_from: float) -> str:
 def hung_spar(spar: SparLine) -> Array:
     """(station, 3) where the spar stands in still air."""
     moved = spar.drawn + spar.displacement[SETTING]
-    return moved if bool(np.isfinite(moved).all()) else spar.drawn
+    return np.asarray(moved if bool(np.isfinite(moved).all()) else spar.drawn)
 
 
 def at_station(spar: SparLine, at: float) -> Array:
@@ -70,7 +71,7 @@ def hung_cable(solution: Solution, cable: int) -> Array:
     """(point, 3) the cable as it hangs in still air, from its `to` end to its `from` end; straight where nothing hangs."""
     curve = solution.cables.curve[SETTING, cable]
     if bool(np.isfinite(curve).all()):
-        return curve
+        return np.asarray(curve)
     wanted = solution.scenario.cable[cable]
     top = at_station(spar_named(solution, wanted.from_.spar), wanted.from_.at)
     to = solution.cables.to_anchor[cable]
@@ -84,11 +85,11 @@ def hung_cable(solution: Solution, cable: int) -> Array:
 def dropping(solution: Solution) -> Flags:
     """(cable,) does it drop in any case or wind of the sweep that keeps it."""
     cables = solution.cables
-    ever = (cables.slack & cables.present).any(axis=0)
+    ever = np.asarray((cables.slack & cables.present).any(axis=0))
     if solution.sweep is not None and solution.sweep.slack.size:
-        ever = ever | solution.sweep.slack.any(axis=(0, 1))
+        ever = np.asarray(ever | solution.sweep.slack.any(axis=(0, 1)))
     listed = np.array([bool(w.slack_winds) for w in solution.worst_cables], dtype=bool)
-    return ever | listed if len(listed) == len(ever) else ever
+    return np.asarray(ever | listed) if len(listed) == len(ever) else ever
 
 
 def anchor_cables(solution: Solution, anchor: str) -> list[int]:
@@ -102,7 +103,7 @@ def governing_pull(solution: Solution, anchor: str, extreme: Extreme) -> Array:
     for row, (case, wind) in enumerate(zip(solution.case, solution.wind_from, strict=True)):
         same_wind = wind == extreme.wind_from or (not isfinite(wind) and not isfinite(extreme.wind_from))
         if case == extreme.case and same_wind:
-            return solution.anchors.pull[row, column]
+            return np.asarray(solution.anchors.pull[row, column])
     return np.full(3, nan)
 
 
@@ -130,7 +131,7 @@ def _along_guys(solution: Solution, anchor: str) -> NDArray[np.float64]:
 
 def base_point(solution: Solution) -> Array:
     """(3,) the foot of the first spar, from which bearings and radii run."""
-    return solution.spars[0].drawn[0]
+    return np.asarray(solution.spars[0].drawn[0])
 
 
 def from_base(solution: Solution, point: Array) -> tuple[float, float, float]:
@@ -164,7 +165,7 @@ def _swept_winds(solution: Solution, cable: int) -> list[str]:
         return []
     by_sector: dict[str, list[str]] = {}
     for line, case in enumerate(sweep.case):
-        by_sector.setdefault(_sector_words(sweep.slack[line, :, cable], sweep.bearing), []).append(case)
+        by_sector.setdefault(_sector_words(sweep.slack[line, :, cable], bearings_of(sweep, line)), []).append(case)
     if len(by_sector) == 1:
         return list(by_sector)
     return [f"{words} ({', '.join(cases)})" for words, cases in by_sector.items() if words]
@@ -174,6 +175,11 @@ def _listed_winds(solution: Solution, cable: int) -> str:
     slack = solution.cables.slack[:, cable] & solution.cables.present[:, cable] & np.isfinite(solution.wind_from)
     turns = sorted({bearing(float(w)) for w in solution.wind_from[slack]}, key=lambda t: float(t[:-1]))
     return f"wind from {', '.join(turns)}" if turns else ""
+
+
+def bearings_of(sweep: Sweep, line: int) -> Array:
+    """(direction,) bearings a case with wind was swept at."""
+    return np.asarray(np.atleast_2d(sweep.bearing)[line % len(np.atleast_2d(sweep.bearing))])
 
 
 def _sector_words(slack: Flags, bearings: Array) -> str:
@@ -236,7 +242,7 @@ def check_distances(solution: Solution) -> list[tuple[str, float]]:
     """Level distances between anchors next to each other around the base, as names joined by a dash."""
     turns = [(from_base(solution, p)[0], i) for i, p in enumerate(solution.anchors.position)]
     order = [i for _, i in sorted(turns)]
-    pairs = list(zip(order, order[1:], strict=False)) + ([(order[-1], order[0])] if len(order) > 2 else [])
+    pairs = list(pairwise(order)) + ([(order[-1], order[0])] if len(order) > 2 else [])
     name, at = solution.anchors.name, solution.anchors.position[:, :2]
     return [(f"{name[i]}–{name[j]}", float(np.hypot(*(at[i] - at[j])))) for i, j in pairs]
 

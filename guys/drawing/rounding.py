@@ -10,7 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from math import ceil, degrees, floor, isfinite, log10
+from math import ceil, degrees, floor, inf, isfinite, log10
 from typing import Literal
 
 from guys import constants
@@ -34,7 +34,7 @@ def round_up(value: float, figures: int = 2) -> float:
         return value
     place = floor(log10(abs(value))) - figures + 1
     steps = ceil(value * 10.0**-place - _ROUNDING_NOISE * 10**figures)
-    return round(steps * 10.0**place, -place)
+    return float(round(steps * 10.0**place, -place))
 
 
 def up_text(value: float, figures: int = 2) -> str:
@@ -68,13 +68,16 @@ def plain_force(newtons: float, system: System) -> str:
     if not isfinite(newtons):
         return ABSENT
     if system == "US":
-        return f"{newtons / POUND_FORCE:.0f} lbf" if abs(newtons) >= 100 * POUND_FORCE else f"{newtons / POUND_FORCE:.3g} lbf"
+        return f"{_three(newtons / POUND_FORCE)} lbf"
     return f"{_three(newtons / 1e3)} kN" if abs(newtons) >= 100.0 else f"{newtons:.3g} N"
 
 
 def _three(value: float) -> str:
     """Three figures without an exponent."""
-    return f"{value:.{max(0, 2 - floor(log10(abs(value)) + 1e-12))}f}" if value else "0"
+    if not value:
+        return "0"
+    place = floor(log10(abs(value)) + 1e-12) - 2
+    return f"{round(value, -place):.{max(0, -place)}f}"
 
 
 def moment(newton_metres: float, system: System) -> str:
@@ -158,6 +161,8 @@ def small_angle(radians: float) -> str:
 
 def factor(value: float) -> str:
     """A factor, rounded down so that it never reads better than it is."""
+    if value == inf:
+        return "over 1000"
     return f"{floor(value * 100.0 + 1e-9) / 100.0:.2f}" if isfinite(value) else ABSENT
 
 
@@ -176,9 +181,9 @@ class Tongue:
     systems: tuple[System, ...]
 
     def say(self, how: Say, value: float) -> str:
-        """The value in every system, joined by a stroke."""
-        texts = dict.fromkeys(how(value, system) for system in self.systems)
-        return " / ".join(texts)
+        """The value in the first system, in brackets in the second."""
+        first, *rest = dict.fromkeys(how(value, system) for system in self.systems)
+        return f"{first} ({', '.join(rest)})" if rest else first
 
     def each(self, how: Say, value: float) -> tuple[str, ...]:
         """The value in every system apart."""

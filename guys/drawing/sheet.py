@@ -29,6 +29,7 @@ STRIP = 8.0
 KEY_MARK, KEY_GAP = 5.0, 4.0
 POLAR_WIDE, POLAR_HIGH = 62.0, 66.0
 LEAST_PLAN, LEAST_ELEVATION = 124.0, 100.0
+SIGNED = "date _____________  pegged out by _____________  checked by _____________"
 ESTIMATE = "for this mast and this dressing only"
 
 
@@ -60,9 +61,7 @@ def draw_page(solution: Solution, paper: str, look_toward: float | None, units: 
     layout = lay_out(solution, paper, speech, rows)
     page = new_page(paper, layout.taller)
     view = View(look_bearing(solution) if look_toward is None else look_toward)
-    ratios = together(
-        plan.fitting_ratio(page, solution, layout.plan), elevation.fitting_ratio(page, solution, layout.elevation, view)
-    )
+    ratios = together(plan.fitting_ratio(page, solution, layout.plan), elevation.fitting_ratio(page, solution, layout.elevation, view))
     _head(page, solution, layout.head, speech)
     _strip(page, solution, layout.strip)
     plan.draw_plan(page, solution, layout.plan, ratios[0], speech)
@@ -72,7 +71,7 @@ def draw_page(solution: Solution, paper: str, look_toward: float | None, units: 
     if layout.polar is not None:
         polar.draw_polar(page, solution, layout.polar, speech)
     box.draw_box(page, box.laid(rows, layout.box.width), layout.box)
-    _foot(page, solution, layout.foot)
+    _foot(page, foot_lines(solution, speech, layout.foot.width), layout.foot)
     return page
 
 
@@ -82,7 +81,7 @@ def lay_out(solution: Solution, paper: str, speech: Tongue, rows: list[box.Entry
     right, top = wide / shrink - MARGIN, high / shrink - MARGIN
     middle = MARGIN + (right - MARGIN) * LEFT_SHARE
     left_wide, right_wide = middle - MARGIN, right - middle - GUTTER
-    foot_high = PITCH * len(foot_lines(solution, right - MARGIN)) + 3.0
+    foot_high = PITCH * len(foot_lines(solution, speech, right - MARGIN)) + 3.0
     head_high = 11.5 + PITCH * len(subtitle_lines(solution, right - MARGIN))
     body = top - head_high - STRIP - 3.0 - MARGIN - foot_high
     table_high = table.table_height(solution, speech, left_wide)
@@ -94,7 +93,7 @@ def lay_out(solution: Solution, paper: str, speech: Tongue, rows: list[box.Entry
         with_polar, box_wide = False, right_wide
         box_high = box.laid(rows, box_wide).height
     low_high = max(box_high, POLAR_HIGH) if with_polar else box_high
-    taller = max(0.0, LEAST_PLAN - (body - table_high), LEAST_ELEVATION - (body - low_high - key_high))
+    taller = max(0.0, LEAST_PLAN - (body - table_high - 2.0), LEAST_ELEVATION - (body - low_high - key_high))
     top += taller
     head = Rect(MARGIN, top - head_high, right, top)
     strip = Rect(MARGIN, head.bottom - STRIP, right, head.bottom)
@@ -103,7 +102,7 @@ def lay_out(solution: Solution, paper: str, speech: Tongue, rows: list[box.Entry
     low_top = floor + low_high
     return Layout(
         head, strip,
-        plan=Rect(MARGIN, floor + table_high, middle, under), table=Rect(MARGIN, floor, middle, floor + table_high),
+        plan=Rect(MARGIN, floor + table_high + 2.0, middle, under), table=Rect(MARGIN, floor, middle, floor + table_high),
         elevation=Rect(start, low_top + key_high, right, under), key=Rect(start, low_top, right, low_top + key_high),
         polar=Rect(start, floor, start + POLAR_WIDE - 4.0, low_top) if with_polar else None,
         box=Rect(right - box_wide, low_top - box_high, right, low_top), foot=Rect(MARGIN, MARGIN, right, floor), taller=taller,
@@ -113,7 +112,7 @@ def lay_out(solution: Solution, paper: str, speech: Tongue, rows: list[box.Entry
 def subtitle_lines(solution: Solution, room: float) -> list[str]:
     """The user's note and what the sheet holds for."""
     note = " ".join((solution.scenario.note or "").split())
-    return wrapped(f"{note} · {ESTIMATE}" if note else ESTIMATE, room, style.BODY)
+    return wrapped(f"{note} · {ESTIMATE}" if note else ESTIMATE, room - width(SIGNED, style.BODY) - 8.0, style.BODY)
 
 
 def _head(page: Page, solution: Solution, zone: Rect, speech: Tongue) -> None:
@@ -128,6 +127,7 @@ def _head(page: Page, solution: Solution, zone: Rect, speech: Tongue) -> None:
         for i, line in enumerate(_at_most(wrapped(solution.scenario.title, room, small, bold=True), 2, room, small)):
             page.text(zone.left, zone.top - 3.2 - 4.9 * i, line, small, bold=True)
     y = zone.top - 12.4
+    page.text(zone.right, y, SIGNED, style.BODY, colour=style.GREY, align="right")
     for line in subtitle_lines(solution, zone.width):
         page.text(zone.left, y, line, style.BODY)
         y -= PITCH
@@ -141,16 +141,23 @@ def _at_most(lines: list[str], count: int, room: float, size: float) -> list[str
 
 def strip_words(solution: Solution) -> list[tuple[str, bool]]:
     """State, verdict and warnings in words, each with whether it alarms."""
-    fell = any(s in box.FELL for s in solution.state)
+    alarming = solution.failed or not {"none", "unstable", "neutral"}.isdisjoint(box.kinds(solution))
     state = box.state_summary(solution) + ("; loads are of the cases that stand" if "none" in solution.state else "")
-    judged = [f for f in solution.findings if f.verdict != "not judged"]
-    past, open_ = len(solution.past), len(solution.findings) - len(judged)
-    verdict = f"{past} of {len(judged)} checks PAST the allowable" if past else f"all {len(judged)} checks within" if judged else "nothing judged"
-    if open_:
-        verdict += f", {open_} not judged"
+    past, verdict = len(solution.past), _verdict(solution)
     count = len(dict.fromkeys([*solution.warnings, *solution.scenario.warnings]))
     warned = f"{count} WARNING{'S' if count > 1 else ''}, in the box" if count else "no warnings"
-    return [(state[0].upper() + state[1:], fell or "neutral" in solution.state), (verdict[0].upper() + verdict[1:], past > 0), (warned, count > 0)]
+    return [(_raised(state), alarming), (_raised(verdict), past > 0), (warned, count > 0)]
+
+
+def _verdict(solution: Solution) -> str:
+    judged = sum(f.verdict != "not judged" for f in solution.findings)
+    past, open_ = len(solution.past), len(solution.findings) - judged
+    words = f"{past} of {judged} checks PAST the allowable" if past else f"all {judged} checks within" if judged else "nothing judged"
+    return f"{words}, {open_} not judged" if open_ else words
+
+
+def _raised(words: str) -> str:
+    return words[0].upper() + words[1:]
 
 
 def _strip(page: Page, solution: Solution, zone: Rect) -> None:
@@ -229,14 +236,16 @@ def _key(page: Page, key: Key, zone: Rect) -> None:
         page.text(zone.left + x + KEY_MARK, y, line, style.SMALL)
 
 
-def foot_lines(solution: Solution, room: float) -> list[str]:
-    """The cautions."""
-    return wrapped(" · ".join(caution.rstrip(".") for caution in solution.cautions), room, style.SMALL) if solution.cautions else []
+def foot_lines(solution: Solution, speech: Tongue, room: float) -> list[tuple[str, str]]:
+    """The cautions, then the small print; each line with its colour."""
+    cautions = " · ".join(caution.rstrip(".") for caution in solution.cautions)
+    lines = [(line, style.INK) for line in wrapped(cautions, room, style.SMALL)]
+    return lines + [(line, style.GREY) for line in wrapped(box.small_print(solution, speech), room, box.SIZE)]
 
 
-def _foot(page: Page, solution: Solution, zone: Rect) -> None:
+def _foot(page: Page, lines: list[tuple[str, str]], zone: Rect) -> None:
     page.line([(zone.left, zone.top - 1.2), (zone.right, zone.top - 1.2)], style.INK, style.THIN)
     y = zone.top - 5.2
-    for line in foot_lines(solution, zone.width):
-        page.text(zone.left, y, line, style.SMALL)
+    for line, colour in lines:
+        page.text(zone.left, y, line, style.SMALL if colour == style.INK else box.SIZE, colour=colour)
         y -= PITCH

@@ -9,6 +9,8 @@ Sizes are in points and millimetres on an A3 page; a smaller paper shrinks the w
 
 from __future__ import annotations
 
+from typing import Final
+
 INK = "#1b1d20"
 LOAD = "#a4471b"
 WIND = "#0f6b6b"
@@ -34,10 +36,10 @@ RING = 1.5
 
 DASHED = (0.0, (4.2, 2.4))
 DOTTED = (0.0, (0.8, 2.6))
-SOLID = "solid"
+SOLID: Final = "solid"
 
 # Outlines of glyphs in the SVG, so that it looks alike where the typeface is missing; fixed names inside the files.
-DRAWING_RULES: dict[str, object] = {
+DRAWING_RULES: dict[str, str | int | bool] = {
     "svg.hashsalt": "guys",
     "svg.fonttype": "path",
     "pdf.fonttype": 3,

@@ -29,7 +29,7 @@ from guys.drawing.rounding import Tongue, angle, bearing, factor, force, length,
 from guys.results import AnchorWorst, CableWorst, FootWorst, Solution
 
 ROW, HEAD_ROW = 4.2, 5.0
-PAD = 1.5
+PAD = 2.2
 LONGEST_NAME = 32.0
 SMALLEST = 0.9
 
@@ -55,9 +55,14 @@ class Grid:
     rows: tuple[Row, ...]
 
     @property
+    def head_height(self) -> float:
+        """Height [mm] of the heads."""
+        return HEAD_ROW + 3.8 * max(c.head.count("\n") for c in self.columns)
+
+    @property
     def height(self) -> float:
         """Height [mm] of head and rows."""
-        return HEAD_ROW + sum(_row_height(row) for row in self.rows) + 1.0
+        return self.head_height + sum(_row_height(row) for row in self.rows) + 1.0
 
 
 def _row_height(row: Row) -> float:
@@ -69,7 +74,7 @@ def _widths(grid: Grid, size: float) -> list[float]:
     for i, column in enumerate(grid.columns):
         texts = [line for row in grid.rows for line in row[i]]
         body = max((width(plain(t), size, _bold(i, t)) for t in texts), default=0.0)
-        wide.append(max(width(column.head, size, True), body))
+        wide.append(max(body, *(width(line, size, True) for line in column.head.split("\n"))))
     return wide
 
 
@@ -94,10 +99,10 @@ def draw_grid(page: Page, grid: Grid, left: float, top: float, room: float) -> f
     wide = _widths(grid, size)
     gap = min((room - sum(wide)) / max(len(wide) - 1, 1), 12.0)
     starts = [left + sum(wide[:i]) + gap * i for i in range(len(wide))]
-    y = top - 3.6
+    y = top - grid.head_height
     for column, x, w in zip(grid.columns, starts, wide, strict=True):
-        page.text(x + (w if column.align == "right" else 0.0), y, column.head, size, True, style.GREY, column.align)
-    y = top - HEAD_ROW
+        for i, line in enumerate(reversed(column.head.split("\n"))):
+            page.text(x + (w if column.align == "right" else 0.0), y + 1.4 + 3.8 * i, line, size, True, style.GREY, column.align)
     page.line([(left, y), (left + room, y)], style.INK, style.THIN)
     for row in grid.rows:
         _draw_row(page, grid, row, (starts, wide), y, size)
@@ -124,7 +129,7 @@ def base_grid(solution: Solution, tongue: Tongue) -> Grid:
 
 def _base_row(solution: Solution, worst: FootWorst, tongue: Tongue) -> Row:
     down, side, turning, lift = (greatest(e) for e in (worst.down, worst.sideways, worst.turning, worst.lift))
-    lifts = tongue.each(force, lift.value) if lift.value > 0.0 else ("none",)
+    lifts = ("none",) if lift.value <= 0.0 else tongue.each(force, lift.value)
     return [
         (worst.spar if worst.carried_by is None else f"{worst.spar} on {worst.carried_by}",),
         tongue.each(force, down.value),
@@ -144,9 +149,10 @@ def when(solution: Solution, governing: Governing) -> str:
 def anchor_grid(solution: Solution, tongue: Tongue) -> Grid:
     """One row for each anchor."""
     columns = (
-        Column("anchor"), Column("bearing", "right"), Column("radius", "right"), Column("level", "right"), Column("slope dist.", "right", 2),
-        Column("pull", "right"), Column("angle", "right"), Column("out", "right"), Column("up", "right"), Column("wind from"),
-        Column("hardest guy", spare=1), Column("demand / capacity", "right"), Column("factor"),
+        Column("anchor"), Column("bearing", "right"), Column("radius", "right"), Column("level", "right"),
+        Column("slope\ndistance", "right", 2), Column("pull", "right"), Column("angle", "right"), Column("out", "right"),
+        Column("up", "right"), Column("wind\nfrom"), Column("hardest\nguy", spare=1), Column("demand /\ncapacity", "right"),
+        Column("factor"),
     )  # fmt: skip
     return Grid(columns, tuple(_anchor_row(solution, worst, tongue) for worst in solution.worst_anchors))
 
@@ -156,7 +162,8 @@ def _anchor_row(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> Row:
     turn, radius, slope = from_base(solution, point)
     pull, up = greatest(worst.resultant), greatest(worst.uplift).value
     return [
-        tuple(wrapped(worst.name, LONGEST_NAME, style.BODY, bold=True)), (bearing(turn),), tongue.each(length, radius), tongue.each(level, point[2] - base_point(solution)[2]),
+        tuple(wrapped(worst.name, LONGEST_NAME, style.BODY, bold=True)), (bearing(turn),),
+        tongue.each(length, radius), tongue.each(level, point[2] - base_point(solution)[2]),
         tongue.each(length, slope), tongue.each(force, pull.value), (angle(pull_angle(solution, worst)),),
         tongue.each(force, greatest(worst.horizontal).value),
         tongue.each(force, up) if up > 0.0 else (uplift_words(up, tongue),),
@@ -180,7 +187,7 @@ def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cel
     demand = greatest(cable.tension).value
     if not isfinite(cable.factor):
         return (cable.name,), tongue.each(force, demand), ("not judged",)
-    past = any(f.verdict == "past" and cable.name in f.thing for f in solution.findings) or cable.factor < solution.scenario.allowables.cable
+    past = cable.factor < solution.scenario.allowables.cable
     stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, demand), tongue.each(plain_force, cable.strength), strict=True))
     return (cable.name,), stacked, (f"{factor(cable.factor)} {'past' if past else 'within'}",)
 
