@@ -35,6 +35,14 @@ class Rides:
 
 
 @dataclass(frozen=True)
+class Frames:
+    """Nodes whose rotation is written about axes of their own: node (frame,), axes (frame, 3, 3) rows."""
+
+    node: tuple[int, ...]
+    axes: Array
+
+
+@dataclass(frozen=True)
 class Pattern:
     """Where blocks go.
 
@@ -48,6 +56,7 @@ class Pattern:
     order: Index
     starts: Index
     rides: Rides
+    frames: Frames
     free: Index
     source: Index
 
@@ -56,8 +65,9 @@ class Pattern:
         return len(self.free)
 
 
-def lay_out(rows: Index, columns: Index, held: NDArray[np.bool_], rides: Rides) -> Pattern:
-    """Pattern for contributions to the node pairs (rows[k], columns[k]), rows >= columns; held : (node, 6) directions without unknown."""
+def lay_out(rows: Index, columns: Index, held: NDArray[np.bool_], rides: Rides, frames: Frames) -> Pattern:
+    """Pattern for contributions to the node pairs (rows[k], columns[k]), rows >= columns; held : (node, 6) directions without unknown,
+    rotations about the node's frame."""
     nodes = len(held)
     filled = _with_folds({(int(r), int(c)) for r, c in zip(rows, columns, strict=True)}, nodes, rides)
     pair = np.array(sorted(filled), dtype=np.int64)
@@ -70,7 +80,7 @@ def lay_out(rows: Index, columns: Index, held: NDArray[np.bool_], rides: Rides) 
     for node, welded in zip(rides.node, rides.welded, strict=True):
         fixed[node, : 6 if welded else 3] = True
     free = _number(pair, ~fixed)
-    return Pattern(nodes, pair, of, order, starts, rides, free, _sources(pair, of, free))
+    return Pattern(nodes, pair, of, order, starts, rides, frames, free, _sources(pair, of, free))
 
 
 def _with_folds(pairs: set[tuple[int, int]], nodes: int, rides: Rides) -> set[tuple[int, int]]:
@@ -132,6 +142,29 @@ def fold_gradient(pattern: Pattern, gradient: Array, arms: Array) -> Array:
     return out
 
 
+def unknowns_of(pattern: Pattern, gradient: Array, arms: Array) -> Array:
+    """A gradient (case, node, 6) folded and reduced to the unknowns (case, unknown)."""
+    return pick(pattern, fold_gradient(pattern, gradient, arms))
+
+
+def pick(pattern: Pattern, whole: Array) -> Array:
+    """What stands in (case, node, 6) at the unknowns (case, unknown), rotations about the nodes' frames."""
+    if pattern.frames.node:
+        whole = whole.copy()
+        for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
+            whole[:, node, 3:] = whole[:, node, 3:] @ axes.T
+    return np.asarray(whole[:, pattern.free[:, 0], pattern.free[:, 1]])
+
+
+def nodes_of(pattern: Pattern, step: Array) -> Array:
+    """The reverse for steps: (case, unknown) to (case, node, 6), zero where nothing is unknown."""
+    out = np.zeros((len(step), pattern.nodes, 6))
+    out[:, pattern.free[:, 0], pattern.free[:, 1]] = step
+    for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
+        out[:, node, 3:] = out[:, node, 3:] @ axes
+    return out
+
+
 def fold(pattern: Pattern, blocks: Array, gradient: Array, arms: Array) -> Array:
     """Blocks (case, pair, 6, 6) after the folds; gradient unfolded (case, node, 6)."""
     if not pattern.rides.node:
@@ -185,6 +218,12 @@ def _fold_one(pattern: Pattern, blocks: Array, s: int, m: int, keep: Array, onto
 def to_band(pattern: Pattern, blocks: Array) -> Array:
     """Lower band (case, unknown, width): entry [c, j, d] is K[j + d, j]."""
     cases = len(blocks)
+    for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
+        for (row, column), at in pattern.of.items():
+            if row == node:
+                blocks[:, at, 3:, :] = axes @ blocks[:, at, 3:, :]
+            if column == node:
+                blocks[:, at, :, 3:] = blocks[:, at, :, 3:] @ axes.T
     flat = np.zeros((cases, blocks.shape[1] * 36 + 1))
     flat[:, :-1] = blocks.reshape(cases, -1)
     return np.take(flat, pattern.source, axis=1)

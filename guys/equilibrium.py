@@ -180,8 +180,7 @@ class Problem:
             gradient[:, m, 3:] += held[:, k, 0]
             gradient[:, n, 3:] += held[:, k, 1]
         arms = self.arms(state)
-        folded = band.fold_gradient(self.pattern, gradient, arms)
-        residual = folded[:, self.pattern.free[:, 0], self.pattern.free[:, 1]]
+        residual = band.unknowns_of(self.pattern, gradient, arms)
         reference = self._reference(hanging)
         error = np.max(np.abs(residual) / self.lever, axis=1, initial=0.0) / reference
         k_band = self._tangent(state, bent, hanging, (arm_a, arm_b), dyad, spring, holding, gradient, arms) if tangent else None
@@ -239,8 +238,7 @@ class Problem:
 
     def whole_step(self, state: State, step: Array) -> Array:
         """(case, node, 6) of a step (case, unknown), riding nodes moved with their carriers."""
-        out = np.zeros((self.cases, self.structure.nodes, 6))
-        out[:, self.pattern.free[:, 0], self.pattern.free[:, 1]] = step
+        out = band.nodes_of(self.pattern, step)
         arms = self.arms(state)
         rides = self.structure.rides
         for k in reversed(range(len(rides.node))):
@@ -263,6 +261,7 @@ class Problem:
         s = self.structure
         whole = self.whole_step(state, step)
         u, psi = state.u + whole[..., :3], turn(state.psi, whole[..., 3:])
+        self._unspin(psi)
         rides = s.rides
         for k in reversed(range(len(rides.node))):
             node, carrier = rides.node[k], rides.carrier[k]
@@ -272,6 +271,17 @@ class Problem:
         both = np.concatenate([whole[:, s.elements.i], whole[:, s.elements.j]], axis=-1)
         axial = beam.predicted_axial(s.elements.rods, found.bent, both)
         return State(u, psi, found.hanging.tension, axial)
+
+    def _unspin(self, psi: Array) -> None:
+        """Turn feet that do not spin back about their drawn axis, so that their rotation vector is square to it.
+
+        Tilting first about one axis and then about another leaves a spin of second order, which would depend on the path of the solver.
+        """
+        for k in self.structure.unspun:
+            node, (x, y, t) = self.structure.foot[k], self.structure.axes[k]
+            turned_x, turned_y = turned(psi[:, node], x), turned(psi[:, node], y)
+            spin = np.arctan2(turned_x @ y - turned_y @ x, turned_x @ x + turned_y @ y)
+            psi[:, node] = turn(psi[:, node], -spin[:, None] * t)
 
     def heading(self, state: State) -> Array:
         """(case, spar, 3) unit vectors from foot to head."""
@@ -290,7 +300,7 @@ def pattern_of(structure: Structure) -> band.Pattern:
     m, n = s.joints.carrier_node, s.joints.spar_node
     rows = [s.elements.i, s.elements.j, s.elements.j, a, b, np.maximum(a, b), m, n, np.maximum(m, n)]
     columns = [s.elements.i, s.elements.j, s.elements.i, a, b, np.minimum(a, b), m, n, np.minimum(m, n)]
-    return band.lay_out(np.concatenate(rows), np.concatenate(columns), s.held, s.rides)
+    return band.lay_out(np.concatenate(rows), np.concatenate(columns), s.held, s.rides, s.frames)
 
 
 def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, Array]:

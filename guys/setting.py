@@ -208,8 +208,7 @@ def _by_length(problem: Problem, state: State, found: Evaluation, asked: _Asked)
         gradient[rows, points.node[k], :3] += force
         gradient[rows, points.node[k], 3:] += cross(arm[0, k], force)
     arms = np.repeat(problem.arms(state), len(k), axis=0)
-    folded = band.fold_gradient(problem.pattern, gradient, arms)
-    return folded[:, problem.pattern.free[:, 0], problem.pattern.free[:, 1]].T, tension
+    return band.unknowns_of(problem.pattern, gradient, arms).T, tension
 
 
 def _measures(problem: Problem, state: State, found: Evaluation, asked: _Asked) -> Array:

@@ -160,7 +160,7 @@ def _push(problem: Problem, judged: Judged, case: int) -> None:
     both = pair.repeat(here)
     for amplitude in PUSHES:
         sway = np.array([amplitude, -amplitude])[:, None, None] * problem.structure.height * shape
-        step = sway[:, problem.pattern.free[:, 0], problem.pattern.free[:, 1]]
+        step = band.pick(problem.pattern, sway)
         out = solver.solve(pair, pair.advance(both, pair.evaluate(both, tangent=False), step), turned_over)
         good = out.converged & ~out.stopped
         good[good] = classify(pair.take(np.flatnonzero(good)), out.state.take(np.flatnonzero(good))) <= NEUTRAL

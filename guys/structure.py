@@ -5,7 +5,9 @@ stands for the ground.  Everything made fast to a spar is a point: a node and a 
 spar are x: level, toward its `toward` bearing plus 90 degrees; y: square to it and to the spar; t: along the spar from the foot
 (x, y, t right-handed; for an upright spar with toward = 0 they are east, north, up).
 
-Joints that hold a rotation are stiffer than the spar by `HOLD`, as if a stub of that share of its length were between.
+A foot on the ground is held exactly: a pinned one turns freely about both axes square to its drawn axis and not about that (the moment on
+the ground is along it), a hinged one about its hinge alone.  Joints between spars hold by stiffness, `HOLD` times the spar's own, as
+if a stub of that share of its length were between.
 """
 
 from __future__ import annotations
@@ -17,7 +19,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import mesh
-from guys.band import Rides
+from guys.band import Frames, Rides
 from guys.beam import Rods
 from guys.constants import STANDARD_GRAVITY
 from guys.joint import Joints
@@ -31,6 +33,15 @@ HOLD = 1e5
 """Stiffness of a joint that only holds, over EI/L of its spar: it turns by 1e-5 of what the spar's own bending gives."""
 HOLD_RIGID = 1e6
 """The same for rigid spars, over (weight of the whole, or a thousandth of the stiffest cable's EA) times the spar's length."""
+
+HELD = {
+    "pinned": (True, True, True, False, False, True),
+    "sprung": (True, True, True, False, False, True),
+    "hinged": (True, True, True, False, True, True),
+    "ball": (True, True, True, False, False, False),
+    "fixed": (True, True, True, True, True, True),
+}
+"""Directions held at a foot on the ground, rotations about its frame: the spar's axes x, y, t, or hinge axis, across, up."""
 
 
 @dataclass(frozen=True)
@@ -104,7 +115,7 @@ class Fittings:
 @dataclass(frozen=True)
 class Structure:
     """The whole structure.  See the module's text; `position` (node, 3) [m] drawn; `spar` (node,) index or -1; `station` (node,) [m];
-    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6); `give` (anchor,) [N/m], inf: none."""
+    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6) in `frames`; `unspun` spars whose feet do not spin; `give` (anchor,) [N/m], inf: none."""
 
     scenario: Scenario
     position: Array
@@ -117,6 +128,8 @@ class Structure:
     held: NDArray[np.bool_]
     rides: Rides
     ride_arm: Array
+    frames: Frames
+    unspun: tuple[int, ...]
     elements: Elements
     pieces: Pieces
     cables: Cables
@@ -217,6 +230,7 @@ class _Builder:
         weight = self._weight(pieces, cables)
         position, spar, station = self._nodes()
         held, rides, arms, joints = self._supports(weight, cables)
+        frames, unspun = self._frames()
         top = max([float(np.abs(self.axes[k, 2]).max() * s.length) for k, s in enumerate(scenario.spar)])
         return Structure(
             scenario=scenario,
@@ -230,6 +244,8 @@ class _Builder:
             held=held,
             rides=rides,
             ride_arm=arms,
+            frames=frames,
+            unspun=unspun,
             elements=self._elements(),
             pieces=pieces,
             cables=cables,
@@ -349,8 +365,7 @@ class _Builder:
                 carrier, arm, _ = self.point(self.number[spar.foot.spar], spar.foot.at)
                 rides.append((foot, carrier, spar.base == "fixed", arm))
             else:
-                held[foot, :3] = True
-                held[foot, 3:] = spar.base == "fixed"
+                held[foot] = HELD[spar.base]
             joints += [(kind, foot, carrier, stiffness, axis) for kind, stiffness, axis in self._holds(k, weight, cables)]
         order = Rides(tuple(r[0] for r in rides), tuple(r[1] for r in rides), tuple(r[2] for r in rides))
         return held, order, np.array([r[3] for r in rides]).reshape(-1, 3), _joints(joints)
@@ -363,14 +378,27 @@ class _Builder:
             hold = HOLD_RIGID * spar.length * max(weight, 1e-3 * float(cables.EA.max(initial=0.0)), 1.0)
         else:
             hold = HOLD * max(max(p.EI_x, p.EI_y) for p in self.sections[k]) / spar.length
-        spin = ("spin", hold, np.array([t, x, y]))
+        tilt = [("tilt", spar.base_stiffness or 0.0, np.array([t, x, y]))] if spar.base == "sprung" else []
+        if isinstance(spar.foot, GroundFoot):
+            return tilt
         if spar.base == "hinged":
-            bearing = spar.hinge_axis if spar.hinge_axis is not None else spar.toward + math.pi / 2
-            a = np.array([math.sin(bearing), math.cos(bearing), 0.0])
-            return [("hinge", hold, np.array([a, np.zeros(3), np.zeros(3)]))]
-        if spar.base == "sprung":
-            return [("tilt", spar.base_stiffness or 0.0, np.array([t, x, y])), spin]
-        return [spin] if spar.base == "pinned" else []
+            return [("hinge", hold, np.array([self._hinge(k)[0], np.zeros(3), np.zeros(3)]))]
+        return [*tilt, ("spin", hold, np.array([t, x, y]))] if spar.base in ("pinned", "sprung") else []
+
+    def _hinge(self, k: int) -> Array:
+        """Rows: the hinge axis of spar k, and two axes square to it."""
+        spar = self.scenario.spar[k]
+        bearing = spar.hinge_axis if spar.hinge_axis is not None else spar.toward + math.pi / 2
+        a = np.array([math.sin(bearing), math.cos(bearing), 0.0])
+        return np.array([a, np.cross([0.0, 0.0, 1.0], a), [0.0, 0.0, 1.0]])
+
+    def _frames(self) -> tuple[Frames, tuple[int, ...]]:
+        """Axes in which the rotations of ground feet are held, and the spars whose feet may tilt but not spin."""
+        ground = [k for k, spar in enumerate(self.scenario.spar) if isinstance(spar.foot, GroundFoot)]
+        framed = [k for k in ground if self.scenario.spar[k].base in ("pinned", "sprung", "hinged")]
+        axes = [self._hinge(k) if self.scenario.spar[k].base == "hinged" else self.axes[k] for k in framed]
+        unspun = tuple(k for k in framed if self.scenario.spar[k].base != "hinged")
+        return Frames(tuple(int(self.first[k]) for k in framed), np.array(axes).reshape(-1, 3, 3)), unspun
 
     def _outermost_first(self) -> list[int]:
         depth = [0] * len(self.scenario.spar)
