@@ -36,62 +36,75 @@ class Unit:
     zero: Fraction = Fraction(0)
 
 
-_LENGTH = {"mm": Fraction(1, 1000), "cm": Fraction(1, 100), "m": Fraction(1), "km": Fraction(1000),
-           "in": INCH, "ft": 12 * INCH, "yd": 36 * INCH}  # fmt: skip
-_MASS = {"kg": Fraction(1), "g": Fraction(1, 1000), "t": Fraction(1000), "lb": POUND}
 _LBF = POUND * GRAVITY
-_FORCE = {"N": Fraction(1), "kN": Fraction(1000), "MN": Fraction(10**6), "lbf": _LBF, "kip": 1000 * _LBF, "kgf": GRAVITY}
-_TIME = {"s": Fraction(1), "min": Fraction(60), "h": Fraction(3600)}
+_FOOT = 12 * INCH
 _FAHRENHEIT = Fraction(5, 9)
+_Factors = dict[str, Fraction]
+
+_METRES: _Factors = {"mm": Fraction(1, 1000), "cm": Fraction(1, 100), "m": Fraction(1)}
+_FEET: _Factors = {"in": INCH, "ft": _FOOT}
+_LENGTH: _Factors = {**_METRES, "km": Fraction(1000), **_FEET, "yd": 3 * _FOOT}
+_KILOGRAMS: _Factors = {"g": Fraction(1, 1000), "kg": Fraction(1), "t": Fraction(1000)}
+_POUNDS: _Factors = {"lb": POUND}
+_NEWTONS: _Factors = {"N": Fraction(1), "kN": Fraction(1000), "MN": Fraction(10**6), "kgf": GRAVITY}
+_POUNDS_FORCE: _Factors = {"lbf": _LBF, "kip": 1000 * _LBF}
 
 
-def _table() -> dict[str, Unit]:
-    found: dict[str, Unit] = {}
-
-    def add(dimension: str, **factors: Fraction) -> None:
-        found.update({name: Unit(factor, dimension) for name, factor in factors.items()})
-
-    def ratios(dimension: str, tops: dict[str, Fraction], bottoms: dict[str, Fraction]) -> None:
-        add(dimension, **{f"{a}/{b}": x / y for a, x in tops.items() for b, y in bottoms.items()})
-
-    def products(dimension: str, left: dict[str, Fraction], right: dict[str, Fraction]) -> None:
-        add(dimension, **{f"{a} {b}": x * y for a, x in left.items() for b, y in right.items()})
-
-    area = {f"{name}2": factor**2 for name, factor in _LENGTH.items()}
-    volume = {f"{name}3": factor**3 for name, factor in _LENGTH.items()}
-    levers = {name: _LENGTH[name] for name in ("m", "mm", "ft", "in")}
-    squares = {f"{name}2": factor**2 for name, factor in levers.items()}
-    add("length", **_LENGTH)
-    add("area", **area)
-    add("volume", **volume)
-    add("mass", **_MASS)
-    add("force", **_FORCE)
-    add("time", **_TIME)
-    add("angle", deg=DEGREE, degrees=DEGREE, rad=Fraction(1))
-    ratios("mass per length", _MASS, levers)
-    ratios("force per length", _FORCE, levers)
-    add("pressure", Pa=Fraction(1), kPa=Fraction(1000), MPa=Fraction(10**6), GPa=Fraction(10**9))
-    add("pressure", psi=_LBF / INCH**2, ksi=1000 * _LBF / INCH**2, psf=_LBF / (12 * INCH) ** 2)
-    ratios("pressure", _FORCE, squares)
-    cubes = {f"{name}3": factor**3 for name, factor in levers.items()}
-    ratios("density", _MASS, cubes)
-    add("density", pcf=POUND / (12 * INCH) ** 3)
-    ratios("weight per volume", _FORCE, cubes)
-    ratios("speed", {name: _LENGTH[name] for name in ("m", "km", "ft")}, {name: _TIME[name] for name in ("s", "h")})
-    add("speed", mph=5280 * 12 * INCH / 3600, kn=NAUTICAL_MILE / 3600)
-    moments = {f"{a} {b}": x * y for a, x in _FORCE.items() for b, y in levers.items()}
-    add("moment", **moments)
-    ratios("moment per angle", moments, {"rad": Fraction(1), "deg": DEGREE})
-    products("bending stiffness", _FORCE, squares)
-    found["K"] = Unit(Fraction(1), "temperature")
-    found["degC"] = Unit(Fraction(1), "temperature", ZERO_CELSIUS)
-    found["degF"] = Unit(_FAHRENHEIT, "temperature", Fraction(45_967, 100))
-    found["1/K"] = found["1/degC"] = Unit(Fraction(1), "expansion")
-    found["1/degF"] = Unit(1 / _FAHRENHEIT, "expansion")
-    return found
+def _power(units: _Factors, exponent: int) -> _Factors:
+    return {f"{name}{exponent}": factor**exponent for name, factor in units.items()}
 
 
-UNITS: dict[str, Unit] = _table()
+def _ratios(*pairs: tuple[_Factors, _Factors]) -> _Factors:
+    return {f"{a}/{b}": x / y for tops, bottoms in pairs for a, x in tops.items() for b, y in bottoms.items()}
+
+
+def _products(*pairs: tuple[_Factors, _Factors]) -> _Factors:
+    return {f"{a} {b}": x * y for left, right in pairs for a, x in left.items() for b, y in right.items()}
+
+
+def _by_length(metric: _Factors, customary: _Factors, exponent: int = 1) -> tuple[tuple[_Factors, _Factors], ...]:
+    """Each system's units beside the lengths, areas or volumes of that system: kN with m, lbf with ft, never kN with ft."""
+    metres, feet = (_METRES, _FEET) if exponent == 1 else (_power(_METRES, exponent), _power(_FEET, exponent))
+    return (metric, metres), (customary, feet)
+
+
+_MOMENTS = _products(*_by_length(_NEWTONS, _POUNDS_FORCE))
+_FACTORS: dict[str, _Factors] = {
+    "length": _LENGTH,
+    "area": _power(_LENGTH, 2),
+    "volume": _power(_LENGTH, 3),
+    "mass": {**_KILOGRAMS, **_POUNDS},
+    "force": {**_NEWTONS, **_POUNDS_FORCE},
+    "time": {"s": Fraction(1), "min": Fraction(60), "h": Fraction(3600)},
+    "angle": {"deg": DEGREE, "degrees": DEGREE, "rad": Fraction(1)},
+    "mass per length": _ratios(*_by_length(_KILOGRAMS, _POUNDS)),
+    "force per length": _ratios(*_by_length(_NEWTONS, _POUNDS_FORCE)),
+    "pressure": {
+        "Pa": Fraction(1), "kPa": Fraction(1000), "MPa": Fraction(10**6), "GPa": Fraction(10**9),
+        "psi": _LBF / INCH**2, "ksi": 1000 * _LBF / INCH**2, "psf": _LBF / _FOOT**2,
+        **_ratios(*_by_length(_NEWTONS, _POUNDS_FORCE, 2)),
+    },
+    "density": {**_ratios(*_by_length(_KILOGRAMS, _POUNDS, 3)), "pcf": POUND / _FOOT**3},
+    "weight per volume": _ratios(*_by_length(_NEWTONS, _POUNDS_FORCE, 3)),
+    "speed": {
+        "m/s": Fraction(1), "km/h": Fraction(1000, 3600), "ft/s": _FOOT,
+        "mph": 5280 * _FOOT / 3600, "kn": NAUTICAL_MILE / 3600,
+    },
+    "moment": _MOMENTS,
+    "moment per angle": _ratios((_MOMENTS, {"rad": Fraction(1), "deg": DEGREE})),
+    "bending stiffness": _products(*_by_length(_NEWTONS, _POUNDS_FORCE, 2)),
+    "expansion": {"1/K": Fraction(1), "1/degC": Fraction(1), "1/degF": 1 / _FAHRENHEIT},
+}
+_SCALES = {
+    "K": Unit(Fraction(1), "temperature"),
+    "degC": Unit(Fraction(1), "temperature", ZERO_CELSIUS),
+    "degF": Unit(_FAHRENHEIT, "temperature", Fraction(45_967, 100)),
+}
+
+UNITS: dict[str, Unit] = {
+    **{name: Unit(factor, dimension) for dimension, factors in _FACTORS.items() for name, factor in factors.items()},
+    **_SCALES,
+}
 """Unit as written → factor to SI and dimension."""
 
 DIMENSIONS: dict[str, tuple[str, str]] = {

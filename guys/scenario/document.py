@@ -9,9 +9,9 @@ from __future__ import annotations
 import math
 from typing import Annotated, Any, Literal
 
-from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag
+from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag, WithJsonSchema
 
-from guys import constants
+from guys import constants, units
 from guys.scenario import quantity as q
 from guys.scenario.model import Analysis, End, Ice, Material, Model, Setting, Spar, SparPoint
 
@@ -36,7 +36,12 @@ def _whole_step(step: float) -> float:
 
 
 MOST_DIRECTIONS = 3600
-Step = Annotated[q.PositiveAngle, BeforeValidator(_sweep), AfterValidator(_whole_step)]
+Step = Annotated[
+    q.PositiveAngle,
+    BeforeValidator(_sweep),
+    AfterValidator(_whole_step),
+    WithJsonSchema({"type": "string", "pattern": rf"^ *every +{units.json_pattern('angle')[1:]}", "examples": ["every 30 deg"]}),
+]
 Directions = Annotated[
     Annotated[Annotated[list[q.Angle], Field(min_length=1, max_length=MOST_DIRECTIONS)], Tag("<list>")] | Annotated[Step, Tag("<step>")],
     Discriminator(lambda value: "<list>" if isinstance(value, (list, tuple)) else "<step>"),

@@ -1,0 +1,5 @@
+"""``python -m guys``."""
+
+from guys.cli import main
+
+main()

@@ -1,0 +1,144 @@
+"""The command line.  Nothing but click is imported before a command runs, so that help is at hand at once.
+
+Exit status: 0 solved and within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past its allowable;
+4 some case is unstable, none or neutral.
+"""
+
+from __future__ import annotations
+
+import os
+import sys
+from collections.abc import Sequence
+
+import click
+
+from guys.errors import GuysError, ScenarioError
+from guys.version import __version__
+
+UNAVAILABLE = ("plumb", "size", "setout", "compare", "search", "limit", "lost", "raise", "field", "record", "list")
+"""Commands this version knows by name and does not do."""
+
+INTERNAL_FAULT, WRONG_INPUT = 1, 2
+TRACEBACK = "GUYS_TRACEBACK"
+"""Environment variable: set to anything, an internal fault shows where it happened."""
+
+
+class Commands(click.Group):
+    """Commands in the order of use; those not available are refused by name and not listed."""
+
+    def list_commands(self, ctx: click.Context) -> list[str]:
+        """Names in the order of definition."""
+        return list(self.commands)
+
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+        """The command, or one that refuses where the name is known and not available."""
+        return super().get_command(ctx, cmd_name) or (_refusing(cmd_name) if cmd_name in UNAVAILABLE else None)
+
+
+def _refusing(name: str) -> click.Command:
+    def refuse(words: tuple[str, ...]) -> None:
+        from guys.errors import UnavailableError
+
+        raise UnavailableError(f"'{name}'")
+
+    words = click.Argument(["words"], nargs=-1, type=click.UNPROCESSED)
+    settings = {"ignore_unknown_options": True, "help_option_names": []}
+    return click.Command(name, callback=refuse, params=[words], context_settings=settings, hidden=True)
+
+
+@click.group(cls=Commands, context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(__version__, prog_name="guys", message="%(prog)s %(version)s")
+def commands() -> None:
+    """Guyed masts, stayed booms and leaning pylons: cable tensions, base reaction, anchor loads, and the sheet a crew works from."""
+
+
+@commands.command()
+@click.argument("kind", type=click.Choice(["mast", "boom", "pylon"]))
+def new(kind: str) -> None:
+    """Print a commented starter: guys new mast > my.toml"""
+    from guys.scenario import starters
+
+    click.echo(starters.text(kind), nl=False)
+
+
+@commands.command()
+@click.argument("file")
+def validate(file: str) -> None:
+    """Report every fault of a scenario, or echo its main dimensions.
+
+    Faults go to the standard error with file, line and key; dimensions are echoed in both unit systems, unusual values warned about.
+    """
+    from guys.scenario import echo, read_scenario
+
+    scenario = read_scenario(file)
+    for line in echo.lines(scenario):
+        click.echo(line)
+    for warning in scenario.warnings:
+        click.echo(f"warning: {warning}", err=True)
+
+
+@commands.command()
+@click.argument("file")
+@click.option("--out", required=True, metavar="DIR", help="Directory for result.json, anchors.csv, cables.csv and the sheet.")
+@click.option("--json", "as_json", is_flag=True, help="Print the result as JSON in place of the table.")
+@click.option("--units", type=click.Choice(["SI", "US", "both"]), default="SI", show_default=True, help="Units of the sheet and the table.")
+@click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
+@click.option("--look", metavar="BEARING", help='Bearing the elevation looks toward, such as "45 deg"; left out: the one that shows most.')
+def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None) -> int:
+    """Solve a scenario; write the results and the sheet.
+
+    Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past its allowable; 4 some case is
+    unstable, neutral or without an equilibrium. With 3 and 4 every file is still written.
+    """
+    from guys import doors
+    from guys.units import parse
+
+    toward = None if look is None else parse(look, "angle")
+    return doors.solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
+
+
+@commands.command()
+def schema() -> None:
+    """Print the JSON Schema of a scenario, for editors."""
+    import json
+
+    from guys.scenario.schema import scenario_schema
+
+    click.echo(json.dumps(scenario_schema(), indent=2))
+
+
+def run(arguments: Sequence[str] | None = None) -> int:
+    """Run a command and return its exit status; every fault is told in words, none as a traceback."""
+    try:
+        status = commands.main(arguments, prog_name="guys", standalone_mode=False)
+    except click.ClickException as error:
+        error.show()
+        return error.exit_code
+    except click.Abort:
+        click.echo("interrupted; nothing half-written is left", err=True)
+        return INTERNAL_FAULT
+    except GuysError as error:
+        _tell(error)
+        return error.exit_status
+    except Exception as error:
+        if TRACEBACK in os.environ:
+            raise
+        click.echo(f"guys: internal fault: {type(error).__name__}: {error}", err=True)
+        click.echo(f"This is a fault of the program, not of the structure. Set {TRACEBACK}=1 to see where it happened.", err=True)
+        return INTERNAL_FAULT
+    return status if isinstance(status, int) else 0
+
+
+def _tell(error: GuysError) -> None:
+    if not isinstance(error, ScenarioError):
+        click.echo(f"guys: {error}", err=True)
+        return
+    for fault in error.faults:
+        click.echo(str(fault), err=True)
+    count = len(error.faults)
+    click.echo(f"{count} fault{'s' if count > 1 else ''}; nothing was written", err=True)
+
+
+def main() -> None:
+    """The `guys` command."""
+    sys.exit(run())

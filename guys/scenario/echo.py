@@ -1,0 +1,65 @@
+"""The main dimensions of a scenario in both unit systems, for the eye that catches a slip of the unit."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+
+from guys import units
+from guys.scenario import drawn
+from guys.scenario.model import Cable, Case, HeelFoot, Scenario, Spar, Wind
+from guys.scenario.plausible import section_mass
+
+
+def lines(scenario: Scenario) -> Iterator[str]:
+    """One line for each spar, anchor and cable, for the wind, the ice and each case."""
+    yield scenario.title
+    for spar in scenario.spar:
+        yield f'spar "{spar.name}": {_spar(scenario, spar)}'
+    foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
+    for anchor in scenario.anchor:
+        east, north = anchor.east - foot[0], anchor.north - foot[1]
+        bearing = math.degrees(math.atan2(east, north)) % 360.0
+        radius, level = units.both(math.hypot(east, north), "length"), units.both(anchor.level, "length")
+        yield f'anchor "{anchor.name}": bearing {bearing:.4g} deg, radius {radius}, level {level}'
+    for cable, ends in zip(scenario.cable, drawn.scenario_cable_ends(scenario), strict=True):
+        yield f'cable "{cable.name}": {_cable(cable, *ends)}'
+    if scenario.wind is not None:
+        yield f"wind: {_wind(scenario.wind)}"
+    if scenario.ice is not None:
+        yield f"ice: {units.both(scenario.ice.thickness, 'length', ('mm', 'in'))}, {units.both(scenario.ice.density, 'density')}"
+    for case in scenario.case:
+        yield f'case "{case.name}": {_case(case)}'
+
+
+def _spar(scenario: Scenario, spar: Spar) -> str:
+    masses = [section_mass(section, scenario.material) or 0.0 for section in spar.section]
+    mass = math.fsum(each * section.length for each, section in zip(masses, spar.section, strict=True))
+    mass += math.fsum(fitting.mass for fitting in spar.fitting)
+    stands = f'on spar "{spar.foot.spar}" at {units.both(spar.foot.at, "length")}' if isinstance(spar.foot, HeelFoot) else "on the ground"
+    lean = f", lean {math.degrees(spar.lean):.4g} deg toward {math.degrees(spar.toward):.4g} deg" if spar.lean else ""
+    carried = " with its fittings" if spar.fitting else ""
+    return f"{units.both(spar.length, 'length')} long, {spar.base} {stands}{lean}, {units.both(mass, 'mass')}{carried}"
+
+
+def _cable(cable: Cable, top: drawn.Point, bottom: drawn.Point) -> str:
+    chord = math.dist(top, bottom)
+    angle = math.degrees(math.asin((top[2] - bottom[2]) / chord))
+    if cable.tension is not None:
+        given = f"initial tension {units.both(cable.tension, 'force')}"
+    elif cable.length is not None:
+        given = f"unstressed length {units.both(cable.length, 'length')}"
+    else:
+        given = "tight"
+    return f"chord {units.both(chord, 'length')}, {angle:.3g} deg from the ground, {given}"
+
+
+def _wind(wind: Wind) -> str:
+    profile = "uniform" if wind.profile.kind == "uniform" else f"power {wind.profile.exponent:g}"
+    reference = f"{units.both(wind.speed, 'speed')}, {wind.averaging:g} s at {units.both(wind.height, 'length')}"
+    return f"{reference}, {profile}, air {units.both(wind.air_density, 'density')}, {len(wind.directions)} directions"
+
+
+def _case(case: Case) -> str:
+    away = f", without {', '.join(case.without)}" if case.without else ""
+    return f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}, {units.both(case.temperature, 'temperature')}{away}"
