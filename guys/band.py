@@ -125,9 +125,9 @@ def add_up(pattern: Pattern, contributions: Array) -> Array:
     """Contributions (case, contribution, 6, 6), in the order given to `lay_out`, summed by pair: (case, pair, 6, 6)."""
     cases = len(contributions)
     whole = np.zeros((cases, len(pattern.order), 36))
-    whole[:, : contributions.shape[1]] = contributions.reshape(cases, -1, 36)
+    whole[:, : contributions.shape[1]] = contributions.reshape(cases, contributions.shape[1], 36)
     summed = np.add.reduceat(whole[:, pattern.order], pattern.starts, axis=1)
-    return np.asarray(summed).reshape(cases, -1, 6, 6)
+    return np.asarray(summed).reshape(cases, len(pattern.pair), 6, 6)
 
 
 def fold_gradient(pattern: Pattern, gradient: Array, arms: Array) -> Array:
@@ -225,7 +225,7 @@ def to_band(pattern: Pattern, blocks: Array) -> Array:
             if column == node:
                 blocks[:, at, :, 3:] = blocks[:, at, :, 3:] @ axes.T
     flat = np.zeros((cases, blocks.shape[1] * 36 + 1))
-    flat[:, :-1] = blocks.reshape(cases, -1)
+    flat[:, :-1] = blocks.reshape(cases, blocks.shape[1] * 36)
     return np.take(flat, pattern.source, axis=1)
 
 

@@ -31,7 +31,6 @@ from guys import band, solver
 from guys.equilibrium import Index, Problem, State
 from guys.loads import LoadCases
 from guys.rotation import Array, dot
-from guys.structure import Structure
 
 ZERO = 1e-7
 """Least eigenvalue relative to weight/height that still counts as zero: rounding of the stiffest element gives a tenth of it."""
@@ -42,8 +41,14 @@ NEXT = math.radians(12)
 PUSHES = (0.003, 0.02, 0.08)
 """Amplitudes of a push along the lowest mode, of the height, tried in turn."""
 FIRST_STEP = 0.25
-LEAST_STEP = 1 / 512
+LEAST_STEP = 1 / 256
 """Steps of a path, of the whole load; below the least the path has ended."""
+PATH_ROUNDS = 40
+"""Rounds of the solver for a step of a path, which starts close to its answer."""
+FINER = 1 / 16
+"""A path on which the solver fails while the structure is still stiff is followed this much finer before that is called a fault."""
+SOFT = 0.3
+"""Share of its still-air value to which the least eigenvalue has fallen where a structure falls; above it a failed step is the solver's."""
 STABLE, NEUTRAL, UNSTABLE, NONE, FAILED = range(5)
 """Codes of a case; FAILED: the solver did not converge although the path is stable up to the full load."""
 
@@ -63,6 +68,7 @@ class Judged:
     state : the equilibrium found, or the last stable one on the path of a case that has none;  code, error, rounds : (case,)
     lost_at : (case,) share of the load at which its path ended, NaN where none was lost;  branched : (case,) stands off its straight branch
     stuck : (case,) the solver ran out of rounds without a spar turning over;  mirror : {case: the other stable state of a branch}
+    beyond : {case: the first state past the end of its path, on the way down}
     """
 
     state: State
@@ -73,6 +79,7 @@ class Judged:
     branched: NDArray[np.bool_]
     stuck: NDArray[np.bool_]
     mirror: dict[int, State]
+    beyond: dict[int, State]
 
 
 def classify(problem: Problem, state: State) -> Index:
@@ -124,29 +131,29 @@ def turn_between(problem: Problem, a: State, b: State) -> Array:
     return np.asarray(angle.max(axis=1))
 
 
-def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, start: State | None = None) -> Judged:
-    """Solve every case and say what kind of equilibrium it has.
+def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_step: float = LEAST_STEP) -> Judged:
+    """Solve every case from the setting and say what kind of equilibrium it has.
 
-    setting : the setting state (one case), `loads_at_setting` its loads; start : where to begin (default: the setting state)
+    setting : the setting state (one case), `loads_at_setting` its loads;  least_step : how finely the end of a path is found, of the load
     """
     first = problem.repeat(setting)
-    judged = settle(problem, first if start is None else start)
+    judged = settle(problem, first)
     away = turn_between(problem, judged.state, first)
     doubtful = np.flatnonzero((judged.code >= UNSTABLE) | (away > FAR))
     if len(doubtful):
-        _follow(problem, setting, loads_at_setting, judged, doubtful)
+        _follow(problem, setting, loads_at_setting, judged, doubtful, least_step)
     return judged
 
 
-def settle(problem: Problem, start: State) -> Judged:
+def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judged:
     """Solve from `start`, classify, and push what is unstable; cases not found are NONE."""
-    out = solver.solve(problem, start, turned_over)
+    out = solver.solve(problem, start, turned_over, rounds)
     code = np.full(problem.cases, NONE)
     found = np.flatnonzero(out.converged & ~out.stopped)
     if len(found):
         code[found] = classify(problem.take(found), out.state.take(found))
     no = np.zeros(problem.cases, bool)
-    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), no, ~out.converged & ~out.stopped, {})
+    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), no, ~out.converged & ~out.stopped, {}, {})
     for case in np.flatnonzero(code == UNSTABLE):
         _push(problem, judged, int(case))
     return judged
@@ -161,7 +168,7 @@ def _push(problem: Problem, judged: Judged, case: int) -> None:
     for amplitude in PUSHES:
         sway = np.array([amplitude, -amplitude])[:, None, None] * problem.structure.height * shape
         step = band.pick(problem.pattern, sway)
-        out = solver.solve(pair, pair.advance(both, pair.evaluate(both, tangent=False), step), turned_over)
+        out = solver.solve(pair, pair.advance(both, pair.evaluate(both, tangent=False), step), turned_over, PATH_ROUNDS)
         good = out.converged & ~out.stopped
         good[good] = classify(pair.take(np.flatnonzero(good)), out.state.take(np.flatnonzero(good))) <= NEUTRAL
         good &= turn_between(pair, out.state, both) < 2 * FAR
@@ -186,19 +193,40 @@ class _Path:
     branched: NDArray[np.bool_]
     stuck: NDArray[np.bool_]
     mirror: dict[int, State]
+    beyond: dict[int, State]
     error: Array
 
 
-def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, rows: Index) -> None:
+def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, rows: Index, least_step: float) -> None:
     """Follow the path of the cases `rows` and write what is found at its end."""
     whole = problem.take(rows)
     n = len(rows)
-    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, np.full(n, np.nan))
-    while len(open_ := np.flatnonzero((path.reached < 1) & (path.step >= LEAST_STEP))):
-        _one_step(whole, start, path, open_)
+    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, {}, np.full(n, np.nan))
+    _walk(whole, start, path, np.arange(n), least_step)
+    stuck = _still_stiff(whole, setting, path)
+    if len(stuck):
+        _walk(whole, start, path, stuck, least_step * FINER)
+        path.stuck[:] = False
+        path.stuck[_still_stiff(whole, setting, path)] = True
     near = turn_between(whole, judged.state.take(rows), whole.repeat(setting)) < FAR
     for k, case in enumerate(rows):
         _arrive(whole, judged, path, k, int(case), bool(near[k]))
+
+
+def _walk(whole: Problem, start: LoadCases, path: _Path, rows: Index, least_step: float) -> None:
+    """Step the paths `rows` on until they arrive or their steps fall below the least."""
+    while len(open_ := rows[(path.reached[rows] < 1) & (path.step[rows] >= least_step)]):
+        _one_step(whole, start, path, open_)
+
+
+def _still_stiff(whole: Problem, setting: State, path: _Path) -> Index:
+    """Paths on which the solver ran out of rounds although the structure has not softened: it has not lost its stability yet."""
+    ended = np.flatnonzero(path.stuck & (path.reached < 1))
+    if len(ended) == 0:
+        return ended
+    limit = SOFT * float(modes(whole.take(ended[:1]), setting, 1).value[0])
+    least = [float(modes(whole.take(ended[k : k + 1]), path.state.take(ended[k : k + 1]), 1).value[0]) for k in range(len(ended))]
+    return ended[np.array(least) > limit]
 
 
 def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near: bool) -> None:
@@ -206,6 +234,8 @@ def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near
     judged.mirror.pop(case, None)
     arrived = path.reached[k] >= 1
     if not arrived:
+        if k in path.beyond:
+            judged.beyond[case] = path.beyond[k]
         judged.lost_at[case] = path.reached[k]
         judged.stuck[case] = path.stuck[k]
         if judged.code[case] == UNSTABLE and near:
@@ -227,7 +257,7 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     there = replace(part, loads=part.loads.between(start, share))
     there.__dict__["pattern"] = whole.pattern
     before = path.state.take(open_)
-    found = settle(there, before)
+    found = settle(there, before, PATH_ROUNDS)
     near = turn_between(there, found.state, before) < NEXT
     good = (found.code <= NEUTRAL) & near
     path.state.put(open_[good], found.state.take(np.flatnonzero(good)))
@@ -235,6 +265,8 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     path.error[open_[good]] = found.error[good]
     path.branched[open_] |= good & found.branched
     path.stuck[open_] = found.stuck & ~good
+    for k in np.flatnonzero(~good & ~found.stuck):
+        path.beyond[int(open_[k])] = found.state.take(np.array([k]))
     for k in np.flatnonzero(good):
         path.mirror.pop(int(open_[k]), None)
         if int(k) in found.mirror:
@@ -242,12 +274,8 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     path.step[open_] = np.where(good, 1.5 * path.step[open_], 0.5 * path.step[open_])
 
 
-def moving_part(structure: Structure, shape: Array, heading: Array) -> tuple[int, float]:
-    """Which spar a mode (node, 6) turns most, and the bearing [rad] its head goes toward; heading (spar, 3)."""
-    head = structure.head.node
-    moves = shape[head, :3] - shape[structure.foot, :3]
-    rigid = np.array([s.rigid for s in structure.scenario.spar])
-    turns = np.cross(shape[structure.foot, 3:], heading) * structure.length[:, None]
-    moves = np.where(rigid[:, None], turns, moves)
-    k = int(np.argmax(np.linalg.norm(moves, axis=1) / structure.length))
-    return k, float(np.arctan2(moves[k, 0], moves[k, 1])) % (2 * math.pi)
+def falling_part(problem: Problem, before: State, after: State) -> tuple[int, float]:
+    """Which spar turns most between two states of one case, and the bearing [rad] its head goes toward."""
+    change = (problem.heading(after) - problem.heading(before))[0]
+    k = int(np.argmax(np.linalg.norm(change, axis=-1)))
+    return k, float(np.arctan2(change[k, 0], change[k, 1])) % (2 * math.pi)

@@ -9,17 +9,19 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import recovery, stability
+from guys import band, recovery, stability
 from guys.equilibrium import Problem, State
 from guys.loads import CaseLine, Placed, assemble
 from guys.results import SparLine
-from guys.rotation import Array
+from guys.rotation import Array, turned
 from guys.setting import Setting
 from guys.structure import Structure
 
 CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
 CURVE_POINTS = 41
+PURE = 1e-2
+"""Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
 """Called with cases done and cases in all."""
 
@@ -54,8 +56,12 @@ class Batch:
         return np.asarray(self.code <= stability.UNSTABLE)
 
 
+SWEPT_STEP = 1 / 32
+"""Steps of the load to which the end of a path is found where only standing or falling is asked."""
+
+
 def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
-    """Solve every line on a setting that stands."""
+    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely."""
     state = setting.state
     placed = Placed(state.u[0], state.psi[0], setting.length)
     parts = []
@@ -63,7 +69,7 @@ def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine
         some = lines[first : first + CHUNK]
         problem = Problem(structure, assemble(structure, some, placed), setting.length)
         problem.__dict__["pattern"] = setting.problem.pattern
-        judged = stability.judge(problem, state, setting.loads)
+        judged = stability.judge(problem, state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail))
         if progress is not None:
             progress(min(first + CHUNK, len(lines)), len(lines))
@@ -153,21 +159,34 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
         return "the solver failed on this case; this is a fault of the program, not a statement about the structure"
     one = problem.take(np.array([k]))
     state = judged.state.take(np.array([k]))
-    mode = stability.modes(one, state, 1)
-    shape = _along_the_way(one, state, mode.shape[0])
-    spar, bearing = stability.moving_part(problem.structure, shape, problem.heading(judged.state)[k])
+    after = judged.beyond.get(k) if code == stability.NONE else None
+    if after is None:
+        after = _along_lowest_mode(one, state)
+    spar, bearing = stability.falling_part(one, state, after)
     name = problem.structure.scenario.spar[spar].name
     how = "is in an equilibrium that does not hold: it goes" if code == stability.UNSTABLE else "falls"
-    share = judged.lost_at[k]
-    at = "" if math.isnan(share) else f" at {max(share, 0.005):.2f} of the load"
     dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(forces.slack[k])]
     slack = f"; slack by then: {', '.join(dropped)}" if dropped else "; no cable is slack by then"
-    return f"{name} {how} toward {bearing_words(bearing)}{at}{slack}"
+    return f"{name} {how} toward {bearing_words(bearing)}{_share_words(problem, judged, k)}{slack}"
 
 
-def _along_the_way(one: Problem, state: State, shape: Array) -> Array:
-    """A mode with the sign of the moves made so far."""
-    return shape if np.sum(shape[:, :2] * state.u[0, :, :2]) >= 0 else -shape
+def _share_words(problem: Problem, judged: stability.Judged, k: int) -> str:
+    """At what share of the load, or of the way to a case that takes cables away or changes more than one load."""
+    share = judged.lost_at[k]
+    if math.isnan(share):
+        return ""
+    line = problem.loads.lines[k]
+    whole = "the way from still air to this case" if line.without or line.dead != 1 or line.ice > 0 or problem.loads.warming[k] != 0 else "the load"
+    return f" at {max(math.floor(100 * share) / 100, 0.01):.2f} of {whole}"
+
+
+def _along_lowest_mode(one: Problem, state: State) -> State:
+    """A state a little along the lowest mode, in the sense of the moves made so far."""
+    shape = stability.modes(one, state, 1).shape
+    if np.sum(shape[0, :, :2] * state.u[0, :, :2]) < 0:
+        shape = -shape
+    step = band.pick(one.pattern, 0.01 * one.structure.height * shape)
+    return one.advance(state, one.evaluate(state, tangent=False), step)
 
 
 def _note(problem: Problem, judged: stability.Judged, k: int) -> str | None:
@@ -188,16 +207,16 @@ def _free_motion(one: Problem, state: State) -> tuple[bool, str]:
     for value, shape in zip(modes.value, modes.shape, strict=True):
         if abs(value) > stability.ZERO:
             continue
+        greatest = np.abs(shape[:, 3:]).max()
         for k, spar in enumerate(s.scenario.spar):
             mine = np.flatnonzero(s.spar == k)
-            turn = shape[mine, 3:]
-            axis = one.heading(state)[0, k]
-            spin = np.abs(turn @ axis).max()
-            rest = max(np.abs(turn - np.outer(turn @ axis, axis)).max(), np.abs(shape[mine, :3]).max() / s.height)
-            if rest > 1e-3 * np.abs(shape[..., 3:]).max():
+            axis = turned(state.psi[0, mine], s.axes[k, 2])
+            spin = np.sum(shape[mine, 3:] * axis, axis=-1)
+            rest = max(np.abs(shape[mine, 3:] - spin[:, None] * axis).max(), np.abs(shape[mine, :3]).max() / s.height)
+            if rest > PURE * greatest or (np.abs(spin).max() > PURE * greatest and spar.base != "ball"):
                 other.add(spar.name)
-            elif spin > 1e-3 * np.abs(shape[..., 3:]).max():
-                spun.add(spar.name) if spar.base == "ball" else other.add(spar.name)
+            elif np.abs(spin).max() > PURE * greatest:
+                spun.add(spar.name)
     if other:
         return False, f"a motion costs nothing: {', '.join(sorted(other))} may turn or sway freely"
     return True, f"{', '.join(sorted(spun))} may spin freely about its own axis"

@@ -72,7 +72,7 @@ def _none(structure: Structure, setting: Setting, lines: Sequence[CaseLine]) -> 
     code = np.full(len(lines), stability.NONE)
     rows = np.zeros(len(lines), dtype=np.int64)
     blank = stability.Judged(
-        judged.state.take(rows), code, judged.error[rows], judged.rounds[rows], judged.lost_at[rows], np.zeros(len(lines), bool), judged.stuck[rows], {}
+        judged.state.take(rows), code, judged.error[rows], judged.rounds[rows], judged.lost_at[rows], np.zeros(len(lines), bool), judged.stuck[rows], {}, {}
     )
     batch = recover(many, blank, detail=True)
     first = recover(setting.problem, setting.judged, detail=False).reason[0]
