@@ -1,8 +1,8 @@
 """Physical constants, each with its source.
 
 The exact values are definitions: standard gravity (3rd CGPM, 1901), the international yard and pound (agreement of 1959), the
-nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and `tests/test_constants.py`
-checks the densities they give against the table of `docs/validation.md`.
+nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and `tests/test_scenario_reader.py`
+checks the densities they give against two independent libraries.
 """
 
 from __future__ import annotations
@@ -49,6 +49,9 @@ SEA_LEVEL_TEMPERATURE: Final = 288.15
 LAPSE_RATE: Final = 0.0065
 """Fall of temperature with height in the troposphere [K/m], ISO 2533."""
 
+EARTH_RADIUS: Final = 6_356_766.0
+"""Nominal radius for geopotential heights [m], ISO 2533."""
+
 ICE_DENSITY: Final = 900.0
 """Glaze [kg/m3], the usual figure for clear ice (common practice, ISO 12494 glaze from memory)."""
 
@@ -56,12 +59,13 @@ ICE_DENSITY: Final = 900.0
 def air_density(altitude: float, temperature: float | None = None) -> float:
     """Density of dry air at an altitude, ISO 2533.
 
-    altitude : geopotential height [m], valid from -1000 to 11000 (troposphere); it is within 0.2 % of the geometric height there
+    altitude : height above the sea [m], valid from -1000 to 11000 (troposphere)
     temperature : [K] of the air; None: the standard temperature of that altitude
 
-    Returns rho = p / (R T) [kg/m3] with p = p0 (1 - L h / T0) ** (g / (R L)).
+    Returns rho = p / (R T) [kg/m3] with p = p0 (1 - L h / T0) ** (g / (R L)), h = r z / (r + z) the geopotential height of z.
     """
-    fall = 1.0 - LAPSE_RATE * altitude / SEA_LEVEL_TEMPERATURE
+    height = EARTH_RADIUS * altitude / (EARTH_RADIUS + altitude)
+    fall = 1.0 - LAPSE_RATE * height / SEA_LEVEL_TEMPERATURE
     pressure = SEA_LEVEL_PRESSURE * fall ** (STANDARD_GRAVITY / (AIR_GAS_CONSTANT * LAPSE_RATE))
     warmth = SEA_LEVEL_TEMPERATURE * fall if temperature is None else temperature
     return float(pressure / (AIR_GAS_CONSTANT * warmth))

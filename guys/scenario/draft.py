@@ -54,8 +54,12 @@ class Draft:
     analysis: Analysis | None
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
-        """Readable spars by name, with their index."""
-        return {spar.name: (index, spar) for index, spar in enumerate(self.spar) if spar is not None}
+        """Readable spars by name, with their index; of two with one name the first."""
+        found: dict[str, tuple[int, Spar]] = {}
+        for index, spar in enumerate(self.spar):
+            if spar is not None:
+                found.setdefault(spar.name, (index, spar))
+        return found
 
     def cases(self) -> list[CaseEntry]:
         """Readable cases, or the default one where the file has none."""
@@ -110,7 +114,7 @@ def _read(value: Any, key: Key, findings: list[Finding]) -> Any:
     try:
         return adapter.validate_python(value, context=FROM_FILE)
     except ValidationError as error:
-        errors = error.errors(include_url=False)
+        errors = [each for each in error.errors(include_url=False) if not _echoes(each)]
     findings += [Finding(key + wording.key_of(each["loc"]), wording.message(each, annotation)) for each in errors]
     for path in _removable(errors):
         value = without(value, path)
@@ -118,6 +122,11 @@ def _read(value: Any, key: Key, findings: list[Finding]) -> Any:
         return adapter.validate_python(value, context=FROM_FILE)
     except ValidationError:
         return None
+
+
+def _echoes(error: ErrorDetails) -> bool:
+    """A list called too short only because its items are at fault, which is told already."""
+    return error["type"] == "too_short" and bool(error["input"])
 
 
 def _removable(errors: list[ErrorDetails]) -> Iterator[Key]:

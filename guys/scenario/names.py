@@ -13,15 +13,17 @@ from guys.scenario.keys import Finding, Key, clipped, items, nearest
 from guys.scenario.resolve import built_in_materials
 
 SETTING = "setting"
+Known = Collection[str] | None
+"""Names there are; None where some could not be read, so that nothing can be called unknown."""
 
 
 def findings(draft: Draft) -> Iterator[Finding]:
     """Every name given twice and every reference that leads nowhere."""
     document = draft.document
     cable_names = dict(_cable_names(document))
-    spars = dict.fromkeys(_names(document, "spar").values())
-    anchors = dict.fromkeys(_names(document, "anchor").values())
-    cables = dict.fromkeys(cable_names.values())
+    spars, anchors = _known(document, "spar"), _known(document, "anchor")
+    levels = all(_text(level, "name") or _text(level, "at") for _, level in items(document, "guy_level"))
+    cables = dict.fromkeys(cable_names.values()) if levels and _known(document, "cable") is not None else None
     yield from _twice("spar", _names(document, "spar"))
     yield from _twice("anchor", _names(document, "anchor"))
     yield from _twice("case", _names(document, "case"))
@@ -42,6 +44,12 @@ def _text(table: Mapping[str, Any], key: str) -> str | None:
 
 def _names(document: Mapping[str, Any], kind: str) -> dict[Key, str]:
     return {(kind, index, "name"): name for index, item in items(document, kind) if (name := _text(item, "name")) is not None}
+
+
+def _known(document: Mapping[str, Any], kind: str) -> Known:
+    """The names of a kind."""
+    tables, names = document.get(kind, []), _names(document, kind)
+    return dict.fromkeys(names.values()) if isinstance(tables, list) and len(names) == len(tables) else None
 
 
 def _fitting_names(document: Mapping[str, Any]) -> dict[Key, str]:
@@ -75,20 +83,20 @@ def _reserved(document: Mapping[str, Any]) -> Iterator[Finding]:
             yield Finding(key, f'"{SETTING}" is the name of the still-air case; choose another')
 
 
-def _unknown(key: Key, kind: str, name: object, known: Collection[str], remedy: str = "") -> Iterator[Finding]:
-    if isinstance(name, str) and name not in known:
+def _unknown(key: Key, kind: str, name: object, known: Known, remedy: str = "") -> Iterator[Finding]:
+    if isinstance(name, str) and known is not None and name not in known:
         hint = nearest(name, known) if known else f"; the file has no {kind}"
         yield Finding(key, f'no {kind} is named "{clipped(name)}"{hint if "did you mean" in hint or not remedy else remedy}')
 
 
-def _feet(document: Mapping[str, Any], spars: Collection[str]) -> Iterator[Finding]:
+def _feet(document: Mapping[str, Any], spars: Known) -> Iterator[Finding]:
     for index, spar in items(document, "spar"):
         foot = spar.get("foot")
         if isinstance(foot, dict):
             yield from _unknown(("spar", index, "foot", "spar"), "spar", foot.get("spar"), spars)
 
 
-def _ends(document: Mapping[str, Any], spars: Collection[str], anchors: Collection[str]) -> Iterator[Finding]:
+def _ends(document: Mapping[str, Any], spars: Known, anchors: Known) -> Iterator[Finding]:
     for index, level in items(document, "guy_level"):
         yield from _unknown(("guy_level", index, "spar"), "spar", level.get("spar"), spars)
         to = level.get("to")
@@ -110,7 +118,7 @@ def _ends(document: Mapping[str, Any], spars: Collection[str], anchors: Collecti
 
 def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
     ropes = document.get("rope")
-    known = ropes if isinstance(ropes, dict) else {}
+    known = ropes if isinstance(ropes, dict) else None if ropes else {}
     for kind in ("guy_level", "cable"):
         for index, item in items(document, kind):
             remedy = "; catalogue ropes are not available in this version; give [rope.NAME]"
@@ -119,13 +127,13 @@ def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
 
 def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:
     own = document.get("material")
-    known = {**built_in_materials(), **(own if isinstance(own, dict) else {})}
+    known = {**built_in_materials(), **(own or {})} if isinstance(own, dict) or own is None else None
     for index, spar in items(document, "spar"):
         for place, section in items(spar, "section"):
             yield from _unknown(("spar", index, "section", place, "material"), "material", section.get("material"), known)
 
 
-def _taken_away(document: Mapping[str, Any], cables: Collection[str]) -> Iterator[Finding]:
+def _taken_away(document: Mapping[str, Any], cables: Known) -> Iterator[Finding]:
     for index, case in items(document, "case"):
         without, seen = case.get("without"), set[str]()
         for place, name in enumerate(without if isinstance(without, list) else ()):

@@ -80,14 +80,14 @@ def _directions(draft: Draft) -> Iterator[Finding]:
 
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
     outright = section.tube is None
-    tube = ((*key, "tube"),)
+    shape = ((*key, "tube"), (*key, "lattice"))
     if windy and section.drag is None:
         yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}")
     if windy and outright and section.width is None:
-        yield Finding((*key, "width"), f'missing; {_has(windy, "wind")}; give width, such as width = "100 mm"', tube)
+        yield Finding((*key, "width"), f'missing; {_has(windy, "wind")}; give width, such as width = "100 mm"', shape)
     for name in ("iced_mass", "iced_width"):
         if icy and outright and getattr(section, name) is None:
-            yield Finding((*key, name), f"missing; {_has(icy, 'ice')}, and a section given outright needs it", tube)
+            yield Finding((*key, name), f"missing; {_has(icy, 'ice')}, and a section given outright needs it", shape)
 
 
 def _fitting(fitting: Fitting, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:

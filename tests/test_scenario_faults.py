@@ -1,0 +1,410 @@
+"""Every fault of a file: its key, its line, what is said, and that one fault hides no other."""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+from typing import Any
+
+import pytest
+from toml_text import BOOM, MAST, changed, dumps, dumps_tables
+
+from guys import parse_scenario, read_scenario
+from guys.errors import Fault, ScenarioError
+
+Change = tuple[tuple[str | int, ...], Any]
+SPAR, SECTION, FITTING, LEVEL, ROPE = ("spar", 0), ("spar", 0, "section", 0), ("spar", 0, "fitting", 0), ("guy_level", 0), ("rope", "wire")
+OUTRIGHT = {"length": "12 m", "mass": "9 kg/m", "EA": "180 MN", "EI": "160 kN m2", "GJ": "120 kN m2", "width": "89 mm", "drag": 1.2}
+ICED_CASE: tuple[Change, ...] = ((("case",), [{"name": "frost", "ice": 1.0}]), (("ice",), {"thickness": "10 mm"}))
+FITTING_ICED: tuple[Change, ...] = (((*FITTING, "iced_mass"), "20 kg"), ((*FITTING, "iced_area"), "0.5 m2"))
+
+
+def faults_of(text: str) -> tuple[Fault, ...]:
+    with pytest.raises(ScenarioError) as caught:
+        parse_scenario(text, "test.toml")
+    return caught.value.faults
+
+
+def told(document: dict[str, Any], *changes: Change) -> list[tuple[str, str]]:
+    return [(fault.key, fault.message) for fault in faults_of(dumps_tables(changed(document, *changes)))]
+
+
+ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
+    # quantities
+    ("bare number", MAST, (((*LEVEL, "at"), 17),), "guy_level[0].at", '17 has no unit; write "17 m" or "17 ft"'),
+    ("bare text", MAST, (((*LEVEL, "at"), "17"),), "guy_level[0].at", '"17" has no unit; write "17 m" or "17 ft"'),
+    ("bare angle", MAST, (((*SPAR, "lean"), 0),), "spar[0].lean", '0 has no unit; write "0 deg" or "0 rad"'),
+    ("comma", MAST, (((*LEVEL, "at"), "9,5 m"),), "guy_level[0].at", '"9,5 m" has a decimal comma; write "9.5 m"'),
+    (
+        "dimension",
+        MAST,
+        (((*LEVEL, "tension"), "3 kg"),),
+        "guy_level[0].tension",
+        '"3 kg" is a mass where a force belongs; that is written in kgf',
+    ),
+    ("dimension named", MAST, (((*LEVEL, "at"), "3 kN"),), "guy_level[0].at", '"3 kN" is a force where a length belongs'),
+    ("not a number", MAST, (((*LEVEL, "tension"), float("nan")),), "guy_level[0].tension", "nan is not a finite number"),
+    ("infinite", MAST, (((*SECTION, "drag"), float("inf")),), "spar[0].section[0].drag", "inf will not do; a finite number belongs here"),
+    ("text for ratio", MAST, (((*SECTION, "drag"), "1.2"),), "spar[0].section[0].drag", '"1.2" will not do; a bare number belongs here'),
+    ("truth for ratio", MAST, (((*SECTION, "drag"), True),), "spar[0].section[0].drag", "true will not do; a bare number belongs here"),
+    ("truth for quantity", MAST, (((*SECTION, "length"), True),), "spar[0].section[0].length", "true is not a length"),
+    ("list for quantity", MAST, (((*SECTION, "length"), ["1 m"]),), "spar[0].section[0].length", "a list is not a length"),
+    ("zero length", MAST, (((*SECTION, "length"), "0 m"),), "spar[0].section[0].length", '"0 m" is not more than zero'),
+    ("negative", MAST, (((*LEVEL, "at"), "-1 m"),), "guy_level[0].at", '"-1 m" is negative'),
+    ("absolute zero", MAST, ((("setting", "temperature"), "-300 degC"),), "setting.temperature", "is below absolute zero"),
+    ("negative factor", MAST, ((("case",), [{"name": "a", "wind": -1}]),), "case[0].wind", "-1 will not do; it must be at least 0"),
+    # keys and shapes
+    ("unknown key", MAST, (((*LEVEL, "tenson"), "1 kN"),), "guy_level[0].tenson", 'unknown key; did you mean "tension"?'),
+    ("unknown table", MAST, ((("winds",), {"speed": "1 m/s"}),), "winds", 'unknown key; did you mean "wind"?'),
+    ("nothing near", MAST, ((("wind", "zzz"), 1),), "wind.zzz", "unknown key; known: speed, averaging, height"),
+    ("key missing", MAST, ((("wind", "speed"), ...),), "wind.speed", 'missing; give speed = "..." as a speed, in m/s or mph'),
+    ("name missing", MAST, (((*SPAR, "name"), ...),), "spar[0].name", "missing"),
+    ("literal", MAST, (((*SPAR, "base"), "hinge"),), "spar[0].base", 'did you mean "hinged"?'),
+    ("table for list", MAST, ((("anchor",), {"name": "N"}),), "anchor", "one table stands here; write [[anchor]]"),
+    ("empty name", MAST, (((*FITTING, "name"), ""),), "spar[0].fitting[0].name", "text in quotes belongs here"),
+    ("name with newline", MAST, (((*FITTING, "name"), "a\nb"),), "spar[0].fitting[0].name", "on one line"),
+    ("title missing", MAST, ((("title",), ...),), "title", 'missing; the file needs title = "..."'),
+    ("rope not a table", MAST, (((*ROPE,), "6 mm"),), "rope.wire", '"6 mm" will not do; a table belongs here'),
+    # names and references
+    ("spar twice", BOOM, ((("spar", 1, "name"), "mast"), (("cable",), [])), "spar[1].name", 'another spar is named "mast"'),
+    (
+        "anchor twice",
+        MAST,
+        ((("anchor", 3), {"name": "N", "bearing": "9 deg", "radius": "9 m"}),),
+        "anchor[3].name",
+        'another anchor is named "N"',
+    ),
+    ("case twice", MAST, ((("case",), [{"name": "a"}, {"name": "a"}]),), "case[1].name", 'another case is named "a"'),
+    (
+        "fitting twice",
+        MAST,
+        (((*SPAR, "fitting", 1), {"name": "panel", "at": "1 m", "mass": "1 kg"}),),
+        "spar[0].fitting[1].name",
+        "another fitting",
+    ),
+    ("cable twice", BOOM, ((("cable", 0, "name"), "9 m N"),), "cable[0].name", 'another cable is named "9 m N"'),
+    ("setting taken", MAST, ((("case",), [{"name": "setting"}]),), "case[0].name", "is the name of the still-air case"),
+    ("unknown spar", MAST, (((*LEVEL, "spar"), "mats"),), "guy_level[0].spar", 'no spar is named "mats"; did you mean "mast"?'),
+    ("unknown anchor", MAST, (((*LEVEL, "to", 1), "Q"),), "guy_level[0].to[1]", 'no anchor is named "Q"; known: N, SE, SW'),
+    ("anchor named twice", MAST, (((*LEVEL, "to", 1), "N"),), "guy_level[0].to[1]", 'anchor "N" is named twice'),
+    ("unknown rope", MAST, (((*LEVEL, "rope"), "wires"),), "guy_level[0].rope", 'no rope is named "wires"; did you mean "wire"?'),
+    (
+        "catalogue rope",
+        MAST,
+        (((*LEVEL, "rope"), "steel-7x7-6mm"),),
+        "guy_level[0].rope",
+        "catalogue ropes are not available in this version; give [rope.NAME]",
+    ),
+    ("unknown material", MAST, (((*SECTION, "material"), "stel"),), "spar[0].section[0].material", 'did you mean "steel"?'),
+    ("unknown carrier", BOOM, ((("spar", 1, "foot", "spar"), "maat"),), "spar[1].foot.spar", 'did you mean "mast"?'),
+    (
+        "unknown cable",
+        MAST,
+        ((("case",), [{"name": "a", "without": ["9 m M"]}]),),
+        "case[0].without[0]",
+        'no cable is named "9 m M"; did you mean "9 m N"?',
+    ),
+    ("unknown end", BOOM, ((("cable", 0, "to"), {"anchor": "X"}),), "cable[0].to.anchor", 'no anchor is named "X"'),
+    # spars
+    ("tube without material", MAST, (((*SECTION, "material"), ...),), "spar[0].section[0].material", "missing; a tube needs one"),
+    ("tube and outright", MAST, (((*SECTION, "EI"), "1 kN m2"),), "spar[0].section[0].EI", "follows from the tube"),
+    ("thick wall", MAST, (((*SECTION, "tube", "wall"), "50 mm"),), "spar[0].section[0].tube.wall", "more than half the diameter"),
+    (
+        "nothing given",
+        MAST,
+        (((*SECTION,), {"length": "12 m", "width": "9 cm", "drag": 1}),),
+        "spar[0].section[0]",
+        "lacks mass, EA, GJ, EI (or EI_x and EI_y)",
+    ),
+    ("no stiffness", MAST, (((*SECTION,), {**OUTRIGHT, "EA": "1 MN"}), ((*SECTION, "GJ"), ...)), "spar[0].section[0]", "lacks GJ"),
+    ("both bendings", MAST, (((*SECTION,), {**OUTRIGHT, "EI_x": "1 kN m2"}),), "spar[0].section[0].EI", "EI stands beside EI_x or EI_y"),
+    ("half a bending", MAST, (((*SECTION,), {**OUTRIGHT, "EI_x": "1 kN m2"}), ((*SECTION, "EI"), ...)), "spar[0].section[0]", "lacks EI_y"),
+    ("no width in wind", MAST, (((*SECTION,), OUTRIGHT), ((*SECTION, "width"), ...)), "spar[0].section[0].width", 'case "design" has wind'),
+    (
+        "fitting beyond",
+        MAST,
+        (((*FITTING, "at"), "12.1 m"),),
+        "spar[0].fitting[0].at",
+        '12.1 m (39.7 ft) is beyond spar "mast", which is 12 m',
+    ),
+    ("guys beyond", MAST, (((*LEVEL, "at"), "13 m"),), "guy_level[0].at", 'beyond spar "mast"'),
+    ("heel beyond", BOOM, ((("spar", 1, "foot", "at"), "13 m"),), "spar[1].foot.at", 'beyond spar "mast"'),
+    ("flat without face", MAST, (((*FITTING, "shape"), "flat"),), "spar[0].fitting[0].face", "needs the bearing of its normal"),
+    ("face without flat", MAST, (((*FITTING, "face"), "9 deg"),), "spar[0].fitting[0].face", 'write shape = "flat"'),
+    ("drag without area", MAST, (((*FITTING, "area"), ...),), "spar[0].fitting[0].area", "missing; drag is given for it"),
+    ("sprung without", MAST, (((*SPAR, "base"), "sprung"),), "spar[0].base_stiffness", 'missing; base = "sprung" needs it'),
+    ("stiff but pinned", MAST, (((*SPAR, "base_stiffness"), "5 kN m/rad"),), "spar[0].base_stiffness", 'base = "pinned" has no stiffness'),
+    ("axis but pinned", MAST, (((*SPAR, "hinge_axis"), "5 deg"),), "spar[0].hinge_axis", 'base = "pinned" has no axis'),
+    ("friction of a heel", BOOM, ((("spar", 1, "friction"), 0.4),), "spar[1].friction", "a heel does not slide"),
+    ("carries itself", BOOM, ((("spar", 1, "foot", "spar"), "boom"),), "spar[1].foot.spar", "a spar cannot carry itself"),
+    (
+        "loop",
+        BOOM,
+        (((*SPAR, "foot"), {"spar": "boom", "at": "1 m"}),),
+        "spar[0].foot.spar",
+        'spars carry each other in a loop: "mast" on "boom" on "mast"',
+    ),
+    ("nothing holds it", MAST, ((("guy_level",), []), (("rope",), {})), "spar[0].base", "nothing holds the structure up"),
+    (
+        "nothing holds it, hinged",
+        MAST,
+        ((("guy_level",), []), ((*SPAR, "base"), "hinged")),
+        "spar[0].base",
+        "nothing holds the structure up",
+    ),
+    # cables and anchors
+    ("no tension", MAST, (((*LEVEL, "tension"), ...),), "guy_level[0]", "has none of them; give one of tension, length, tight = true"),
+    ("two tensions", MAST, (((*LEVEL, "length"), "12 m"),), "guy_level[0]", "has tension and length; give one of"),
+    ("tight is false", BOOM, ((("cable", 0, "tight"), False),), "cable[0].tight", "false says nothing"),
+    ("half a place", MAST, ((("anchor", 0, "radius"), ...),), "anchor[0]", "has bearing; give bearing and radius, or east and north"),
+    ("no place", MAST, ((("anchor", 0), {"name": "N"}),), "anchor[0]", "has no place"),
+    ("two places", MAST, ((("anchor", 0, "east"), "1 m"),), "anchor[0]", "has bearing and radius and east"),
+    (
+        "anchor at the foot",
+        MAST,
+        ((("anchor", 0), {"name": "N", "east": "0 m", "north": "0 m"}),),
+        "guy_level[0].to[0]",
+        'lies on the axis of spar "mast"',
+    ),
+    ("one spar twice", BOOM, ((("cable", 0, "to"), {"spar": "mast", "at": "2 m"}),), "cable[0]", 'both ends are on spar "mast"'),
+    (
+        "no length",
+        BOOM,
+        (
+            (
+                ("cable", 0),
+                {"name": "c", "from": {"spar": "mast", "at": "1 m"}, "to": {"spar": "boom", "at": "0 m"}, "rope": "wire", "tight": True},
+            ),
+        ),
+        "cable[0]",
+        "the cable has no length",
+    ),
+    ("along the boom", BOOM, ((("cable", 0, "from", "at"), "1 m"),), "cable[0]", 'starts on the axis of spar "boom"'),
+    ("arm too long", MAST, (((*LEVEL, "arm"), "8 m"), ((*LEVEL, "to"), ["N"])), "guy_level[0].to[0]", "reach past the other end"),
+    (
+        "plumb without targets",
+        MAST,
+        ((("setting",), {"plumb": True}), ((*LEVEL, "tension"), ...), ((*LEVEL, "tight"), True)),
+        "setting.plumb",
+        "needs cables given by tension",
+    ),
+    (
+        "from an anchor",
+        BOOM,
+        ((("cable", 0, "from"), {"spar": "mast", "at": "10 m", "anchor": "N"}),),
+        "cable[0].from.anchor",
+        "unknown key",
+    ),
+    # wind, ice, temperature
+    ("wind missing", MAST, ((("wind",), ...),), "wind", 'missing; case "design" has wind = 1; give [wind], or wind = 0 in every case'),
+    (
+        "ice missing",
+        MAST,
+        ((("case",), [{"name": "frost", "ice": 0.5}]), *FITTING_ICED),
+        "ice",
+        'missing; case "frost" has ice = 0.5; give [ice]',
+    ),
+    (
+        "section drag",
+        MAST,
+        (((*SECTION, "drag"), ...),),
+        "spar[0].section[0].drag",
+        "give drag; default drag from the shape is not available in this version",
+    ),
+    ("fitting drag", MAST, (((*FITTING, "drag"), ...),), "spar[0].fitting[0].drag", "give drag; default drag"),
+    ("rope drag", MAST, (((*ROPE, "drag"), ...),), "rope.wire.drag", "give drag; default drag"),
+    ("iced mass", MAST, (*ICED_CASE, FITTING_ICED[1]), "spar[0].fitting[0].iced_mass", 'missing; case "frost" has ice'),
+    ("iced area", MAST, (*ICED_CASE, FITTING_ICED[0]), "spar[0].fitting[0].iced_area", 'missing; case "frost" has ice'),
+    (
+        "iced width",
+        MAST,
+        (*ICED_CASE, *FITTING_ICED, ((*SECTION,), {**OUTRIGHT, "iced_mass": "12 kg/m"})),
+        "spar[0].section[0].iced_width",
+        "a section given outright needs it",
+    ),
+    (
+        "lighter with ice",
+        MAST,
+        (*ICED_CASE, ((*FITTING, "iced_mass"), "2 kg"), FITTING_ICED[1]),
+        "spar[0].fitting[0].iced_mass",
+        "iced_mass is the whole mass with the ice on it",
+    ),
+    (
+        "expansion",
+        MAST,
+        ((("case",), [{"name": "cold", "temperature": "0 degC"}]),),
+        "rope.wire.expansion",
+        "is not at the setting's temperature",
+    ),
+    ("stiffness", MAST, (((*ROPE, "stiffness"), ...),), "rope.wire", "has no stiffness; give stiffness, or modulus and metal_area"),
+    ("two stiffnesses", MAST, (((*ROPE, "modulus"), "100 GPa"),), "rope.wire", "has stiffness and modulus"),
+    ("uneven sweep", MAST, ((("wind", "directions"), "every 7 deg"),), "wind.directions", "not a whole number of steps of 7 deg"),
+    ("too many", MAST, ((("wind", "directions"), "every 0.01 deg"),), "wind.directions", "36000 directions are too many"),
+    ("no sweep", MAST, ((("wind", "directions"), "all round"),), "wind.directions", 'write "every 30 deg" or a list'),
+    ("no direction", MAST, ((("wind", "directions"), []),), "wind.directions", "the list is empty"),
+    ("direction twice", MAST, ((("wind", "directions"), ["0 deg", "90 deg", "360 deg"]),), "wind.directions[2]", "in the list already"),
+    (
+        "two densities",
+        MAST,
+        ((("wind", "air_density"), "1.2 kg/m3"), (("wind", "altitude"), "9 m")),
+        "wind.altitude",
+        "air_density is given",
+    ),
+    ("no altitude", MAST, ((("wind", "temperature"), "9 degC"),), "wind.altitude", "missing; temperature is given for the air density"),
+    ("in space", MAST, ((("wind", "altitude"), "90 km"),), "wind.altitude", "out of range"),
+    # not available
+    ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site", "not available in this version"),
+    ("holdfast", MAST, ((("holdfast",), {"a": {"kind": "block"}}),), "holdfast", "not available in this version"),
+    ("part", MAST, ((("part",), {"a": {"strength": "1 kN"}}),), "part", "not available in this version"),
+    ("limit", MAST, ((("limit",), {"actions": [0.6]}),), "limit", "not available in this version"),
+    ("raise", MAST, ((("raise",), {"spar": "mast"}),), "raise", "not available in this version"),
+    ("layout", MAST, ((("layout",), [{"name": "a"}]),), "layout", "not available in this version"),
+    ("anchor holdfast", MAST, ((("anchor", 0, "holdfast"), "a"),), "anchor[0].holdfast", "not available in this version"),
+    ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate", "not available in this version"),
+    ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends", "not available in this version"),
+    ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends", "not available in this version"),
+    (
+        "lattice",
+        MAST,
+        (((*SECTION,), {"length": "12 m", "lattice": {"face": "300 mm"}, "material": "steel", "drag": 1}),),
+        "spar[0].section[0].lattice",
+        "not available in this version",
+    ),
+    ("profile", MAST, ((("wind", "profile"), {"asce7": "C"}),), "wind.profile.asce7", "not available in this version"),
+    ("european profile", MAST, ((("wind", "profile"), {"en1991": "II"}),), "wind.profile.en1991", "not available in this version"),
+    # format
+    ("newer format", MAST, ((("format",), 2),), "format", "2 is newer than this version reads; it reads format 1"),
+    ("format zero", MAST, ((("format",), 0),), "format", "0 is not a version of the format"),
+    ("format text", MAST, ((("format",), "1"),), "format", '"1" is not a version of the format'),
+]
+
+
+@pytest.mark.parametrize(("document", "changes", "key", "says"), [row[1:] for row in ONE_FAULT], ids=[row[0] for row in ONE_FAULT])
+def test_one_mistake_gives_one_fault(document: dict[str, Any], changes: tuple[Change, ...], key: str, says: str) -> None:
+    found = told(document, *changes)
+    assert [each for each, _ in found] == [key], found
+    assert says in found[0][1]
+
+
+def test_geographic_anchors_are_refused_by_name() -> None:
+    found = told(MAST, (("anchor", 0), {"name": "N", "lat": 51.0, "lon": 3.0}))
+    assert [key for key, _ in found] == ["anchor[0].lat", "anchor[0].lon"]
+    assert all("not available in this version" in message for _, message in found)
+
+
+def test_everything_is_reported_at_once_in_the_order_of_the_file() -> None:
+    text = dumps_tables(
+        changed(
+            BOOM,
+            (("titel",), "x"),
+            (("spar", 0, "lean"), 3),
+            (("spar", 0, "section", 0, "material"), "stel"),
+            (("spar", 1, "fitting"), [{"name": "lamp", "at": "7 m", "mass": "1 kg"}]),
+            (("anchor", 1, "radius"), "8,5 m"),
+            (("guy_level", 0, "to", 2), "NW"),
+            (("cable", 0, "rope"), "wirre"),
+            (("cable", 0, "tight"), True),
+            (("rope", "wire", "drag"), ...),
+            (("wind", "speed"), "25 kg"),
+            (("site",), {"crs": "EPSG:1"}),
+        )
+    )
+    faults = faults_of(text)
+    assert sorted(fault.key for fault in faults) == sorted(
+        [
+            "titel", "spar[0].lean", "spar[0].section[0].material", "spar[1].fitting[0].at", "anchor[1].radius", "guy_level[0].to[2]",
+            "cable[0].rope", "cable[0]", "rope.wire.drag", "wind.speed", "site",
+        ]
+    )  # fmt: skip
+    places = [(fault.line or 0, fault.column or 0) for fault in faults]
+    assert places == sorted(places)
+
+
+def test_each_fault_names_file_line_and_column_of_its_key() -> None:
+    text = 'title = "x"\n\n[[spar]]\nname = "m"\nfoot = { east = "0 m", nort = "0 m" }\n  [[spar.section]]\n  length = 3\n'
+    found = {fault.key: (fault.path, fault.line, fault.column) for fault in faults_of(text)}
+    assert found["spar[0].foot.nort"] == ("test.toml", 5, 24)
+    assert found["spar[0].foot.north"] == ("test.toml", 5, 1)
+    assert found["spar[0].section[0].length"] == ("test.toml", 7, 3)
+    assert found["wind"] == ("test.toml", 1, 1)
+
+
+def test_a_missing_key_is_placed_at_the_header_of_its_table() -> None:
+    text = dumps_tables(changed(BOOM, (("spar", 1, "name"), ...), (("spar", 1, "section", 0, "drag"), ...)))
+    lines = text.splitlines()
+    second = [number for number, line in enumerate(lines, 1) if line == "[[spar]]"][1]
+    by_key = {fault.key: fault.line for fault in faults_of(text)}
+    assert by_key["spar[1].name"] == second
+
+
+def test_lines_are_right_where_they_end_in_carriage_returns() -> None:
+    text = dumps_tables(changed(MAST, (("wind", "speed"), 25)))
+    plain, returned = faults_of(text), faults_of(text.replace("\n", "\r\n"))
+    assert [(fault.line, fault.column) for fault in plain] == [(fault.line, fault.column) for fault in returned]
+
+
+def test_names_that_are_not_bare_words_are_quoted_in_key_paths() -> None:
+    document = changed(MAST, (("rope", "my wire"), {"diameter": 6, "mass": "1 kg/m", "stiffness": "1 MN"}))
+    assert [key for key, _ in told(document)] == ['rope."my wire".diameter']
+
+
+@pytest.mark.parametrize(
+    ("content", "line", "says"),
+    [
+        (b"a = 1\na = 2\n", 2, "this key is given twice"),
+        (b"[wind]\n[wind]\n", 2, "this table is given twice"),
+        (b'title = "x"\nat = 17 m\n', 2, "not readable as TOML"),
+        (b"at = m\n", 1, "text and quantities stand in quotes"),
+        (b'title = "\xff"\n', 1, "not UTF-8 text"),
+        (b"\n\na = " + b"[" * 5000, None, "nested too deeply"),
+        (b"a." * 5000 + b"a = 1", 1, "nested too deeply"),
+        (b"a = " + b"9" * 5000, None, "too many digits"),
+        (b'a = "', 1, "not readable as TOML"),
+        (b"#" * 5_000_001, None, "larger than 5 MB"),
+    ],
+)
+def test_what_is_no_toml_is_told_in_one_line(tmp_path: Path, content: bytes, line: int | None, says: str) -> None:
+    file = tmp_path / "scenario.toml"
+    file.write_bytes(content)
+    with pytest.raises(ScenarioError) as caught:
+        read_scenario(file)
+    (fault,) = caught.value.faults
+    assert (fault.path, fault.line) == (str(file), line)
+    assert says in fault.message
+    assert "\n" not in str(fault)
+
+
+def test_a_file_of_five_megabytes_is_read(tmp_path: Path) -> None:
+    file = tmp_path / "scenario.toml"
+    text = dumps_tables(MAST)
+    file.write_text(text + "#" * (5_000_000 - len(text)))
+    assert read_scenario(file).title == "Test mast"
+
+
+def test_missing_files_and_directories_are_told_apart(tmp_path: Path) -> None:
+    for path, says in ((tmp_path / "no.toml", "no such file"), (tmp_path, "a directory"), (Path("a\0b"), "cannot be read")):
+        with pytest.raises(ScenarioError, match=says):
+            read_scenario(path)
+
+
+def test_an_empty_file_says_what_it_needs() -> None:
+    assert {fault.key for fault in faults_of("")} == {"title", "spar", "wind"}
+
+
+def test_a_very_faulty_file_does_not_take_long() -> None:
+    """Time grows with the size of the file, not with its square: a thousand faults and four thousand, within six times as long."""
+    from time import process_time
+
+    def seconds(count: int) -> float:
+        text = dumps(changed(MAST, (("anchor",), [{"name": f"a{n}", "bearing": n, "radius": "1 m"} for n in range(count)])))
+        start = process_time()
+        assert len(faults_of(text)) >= count
+        return process_time() - start
+
+    small = min(seconds(1000) for _ in range(3))
+    assert seconds(4000) < 6.0 * small + 0.2
+
+
+def test_faults_are_data_too() -> None:
+    (fault,) = faults_of(dumps_tables(changed(MAST, (("wind", "speed"), 25))))
+    assert re.fullmatch(r'test\.toml:\d+:1: wind\.speed: 25 has no unit; write "25 m/s" or "25 mph"', str(fault))
