@@ -18,7 +18,7 @@ from unittest.mock import patch
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import setting, solver, stability
+from guys import mesh, setting, solver, stability
 from guys.equilibrium import Problem
 from guys.loads import Placed, assemble, lines_of
 from guys.scenario import Scenario, parse_scenario
@@ -182,6 +182,17 @@ def _timed(name: str, part: str, spent: dict[str, float]) -> Iterator[None]:
 
     with patch.object(owner, last, timed):
         yield
+
+
+def coarse(text: str, elements: int, repeats: int) -> tuple[float, float]:
+    """Milliseconds per case, and greatest tension error over the greatest tension, with so many elements in a span."""
+    scenario = parse_scenario(text)
+    fine = prepare(scenario, 4)
+    reference = tensions(fine, search(fine))
+    with patch.object(mesh, "ELEMENTS", elements):
+        mast = prepare(scenario)
+    error = np.abs(tensions(mast, search(mast)) - reference).max() / reference.max()
+    return 1e3 * least_time(lambda: search(mast), repeats) / mast.problem.cases, float(error)
 
 
 def growth_with_cases(text: str, counts: tuple[int, ...], repeats: int) -> list[tuple[int, float]]:

@@ -1,7 +1,8 @@
 """The slender mast in the outside library openseespy, timed: how long one case of 72 wind directions takes there.
 
-Several ways of modelling are timed and all are shown; the fastest of those whose guy tensions are within 0.1 % (of the greatest tension)
-of the library's own extrapolated answer is the one to compare with.  Only the search for equilibrium is timed, not the putting on of
+Several ways of modelling are timed and all are shown, with the error of their guy tensions against the library's own extrapolated
+answer.  To compare at the same accuracy: the quickest way within 0.1 % beside our coarsest mesh within 0.1 %, and the mesh that comes
+nearest to our default one beside that.  Only the search for equilibrium is timed, not the putting on of
 loads, and the library is given its quickest equation solver.  Every case starts from the still-air state, as ours does; started from
 the neighbouring direction instead it needs one Newton step less, which is shown too.
 """
@@ -35,7 +36,7 @@ class Way:
 
 
 WAYS = (
-    Way(1, 0, True), Way(1, 0, False), Way(2, 0, True), Way(1, 8, True), Way(1, 16, True), Way(2, 16, True),
+    Way(1, 0, True), Way(1, 0, False), Way(2, 0, True), Way(1, 8, True), Way(1, 16, True), Way(2, 16, True), Way(16, 0, True),
 )  # fmt: skip
 
 
@@ -58,9 +59,10 @@ def timed_ways(repeats: int = 3) -> tuple[str, list[Way]] | None:
     return str(ops.version()), ways
 
 
-def fastest(ways: list[Way]) -> Way:
-    """The way to compare with."""
-    return min((w for w in ways if w.error < ACCURACY and w.from_still_air), key=lambda w: w.milliseconds)
+def fastest(ways: list[Way], accuracy: float) -> Way:
+    """The quickest way from still air with at most such an error, or else the most exact one."""
+    exact = [w for w in ways if w.error <= accuracy and w.from_still_air]
+    return min(exact, key=lambda w: w.milliseconds) if exact else min(ways, key=lambda w: w.error)
 
 
 def _ends(model: Any) -> list[float]:
