@@ -97,8 +97,8 @@ def scenario(made: Guyed) -> Scenario:
     )
     cables = [
         model.Cable.model_validate({
-            "name": f"{at:g} m {a.name}", "from": {"spar": "mast", "at": at}, "to": {"anchor": a.name}, "rope": "strand-6",
-            "tension": made.initial, "level": f"{at:g} m",
+            "name": f"{at:.3g} m {a.name}", "from": {"spar": "mast", "at": at}, "to": {"anchor": a.name}, "rope": "strand-6",
+            "tension": made.initial, "level": f"{at:.3g} m",
         })
         for at in made.levels
         for a in anchors
@@ -160,8 +160,8 @@ def solution(made: Guyed) -> Solution:
     ends = [_ends(c, spars, place) for c in asked.cable]
     share = made.push / max(len(made.levels), 1)
     fine = np.deg2rad(np.arange(0.0, 360.0, 5.0))
-    tension = np.array([[_tension(e, share, made.initial, w) for e in ends] for w in wind])
-    swept = np.array([[_tension(e, share, made.initial, w) for e in ends] for w in fine])[None].repeat(len(made.cases), axis=0)
+    tension = np.array([[_tension(e, share, made.initial, w) for e in ends] for w in wind]).reshape(n, len(ends))
+    swept = np.array([[_tension(e, share, made.initial, w) for e in ends] for w in fine]).reshape(1, len(fine), len(ends)).repeat(len(made.cases), axis=0)
     unit = np.array([(top - low) / np.linalg.norm(top - low) for low, top in ends]).reshape(-1, 3)
     to = tuple(getattr(c.to, "anchor", None) for c in asked.cable)
     force = tension[..., None] * unit
@@ -171,12 +171,13 @@ def solution(made: Guyed) -> Solution:
         np.ones_like(tension), tension < 20.0, np.ones(tension.shape, dtype=bool), curve, np.full(len(ends), 23e3),
     )  # fmt: skip
     name = tuple(place)
-    pull = np.stack([sum((force[:, i] for i, t in enumerate(to) if t == a), start=np.zeros((n, 3))) for a in name], axis=1)
-    swept_pull = np.stack(
+    none = np.zeros((n, 0, 3))
+    pull = np.stack([sum((force[:, i] for i, t in enumerate(to) if t == a), start=np.zeros((n, 3))) for a in name], axis=1) if name else none
+    swept_pull = np.zeros((*swept.shape[:2], 0, 3)) if not name else np.stack(
         [sum((swept[..., i, None] * unit[i] for i, t in enumerate(to) if t == a), start=np.zeros((*swept.shape[:2], 3))) for a in name],
         axis=2,
     )
-    anchors = AnchorPulls(name, np.array([place[a] for a in name]), pull)
+    anchors = AnchorPulls(name, np.array([place[a] for a in name]).reshape(-1, 3), pull)
     sweep = Sweep(
         tuple(made.cases), np.tile(fine, (len(made.cases), 1)), swept, np.linalg.norm(swept_pull, axis=-1), np.hypot(swept_pull[..., 0], swept_pull[..., 1]),
         swept_pull[..., 2], swept < 20.0,

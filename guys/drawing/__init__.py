@@ -27,7 +27,7 @@ def sheet(solution: Solution, *, paper: Paper = "A3", look_toward: float | None 
 
     look_toward : bearing the elevation looks toward [rad]; None: the one that shows most
     """
-    from guys.drawing.sheet import draw_sheet
+    from guys.drawing.compose import draw_sheet
 
     return draw_sheet(solution, paper, look_toward, units)
 

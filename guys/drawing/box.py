@@ -167,6 +167,8 @@ def _past(solution: Solution, tongue: Tongue) -> list[Entry]:
 
 
 def _checked(solution: Solution, tongue: Tongue) -> list[Entry]:
+    if set(solution.state) == {"none"}:
+        return []
     within = [f for f in worst_of_each(solution.findings) if f.verdict == "within"]
     return [Entry("Hardest", finding_words(solution, f, tongue)) for f in within]
 

@@ -28,6 +28,7 @@ from guys.drawing.reading import (
     hung_cable,
     hung_spar,
     spar_named,
+    stands,
 )
 from guys.drawing.rounding import Tongue, angle, bearing, force, level
 from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
@@ -59,7 +60,7 @@ class ElevationFrame:
 
 def bounds(solution: Solution, view: View) -> Array:
     """(2, 2) least and greatest right, up of all that the elevation shows."""
-    parts = [solution.anchors.position, *(hung_spar(s) for s in solution.spars)]
+    parts = [solution.anchors.position, *(hung_spar(solution, s) for s in solution.spars)]
     parts += [hung_cable(solution, i) for i in range(len(solution.cables.name))]
     points = view.project(np.concatenate(parts))
     return np.stack([points.min(axis=0), points.max(axis=0)])
@@ -68,9 +69,16 @@ def bounds(solution: Solution, view: View) -> Array:
 def fitting_ratio(page: Page, solution: Solution, zone: Rect, view: View) -> float:
     """Smallest round ratio at which the elevation fits its zone with room for words."""
     low, high = bounds(solution, view)
-    room = zone.inset(SIDE_ROOM, below_room(solution, zone, view), SIDE_ROOM, TOP_ROOM)
+    side = side_room(solution)
+    room = zone.inset(side, below_room(solution, zone, view), side, TOP_ROOM)
     span = np.maximum(high - low, 0.5)
     return ratio_to_fit((float(span[0]), float(span[1])), (room.width, room.height), page.shrink)
+
+
+def side_room(solution: Solution) -> float:
+    """Width [mm] kept beside the outermost anchors for their words."""
+    widest = max((anchor_line(solution, name).width for name in solution.anchors.name), default=0.0)
+    return max(SIDE_ROOM, widest)
 
 
 def below_room(solution: Solution, zone: Rect, view: View) -> float:
@@ -79,7 +87,7 @@ def below_room(solution: Solution, zone: Rect, view: View) -> float:
     wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
     sides = [side for side in (across < 0.0, across >= 0.0) if side.any()]
     rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in sides]
-    return 17.0 + TIER * max(rows, default=0)
+    return 19.0 + TIER * max(rows, default=0)
 
 
 def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, view: View, tongue: Tongue) -> None:
@@ -97,9 +105,9 @@ def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, vie
     _cables(page, solution, on, field)
     _spars(page, solution, on, field)
     _scale_bar(page, on, field, tongue)
+    letters = _sections(page, solution, on, field)
     _anchors(page, solution, on, field)
     _bases(page, solution, on, field, tongue)
-    letters = _sections(page, solution, on, field)
     symbols = _fittings(page, solution, on, field)
     _levels(page, solution, on, field, tongue)
     _letters(page, on, field, letters)
@@ -111,7 +119,8 @@ def _heading(page: Page, solution: Solution, on: ElevationFrame, ratio: float, t
     wide = page.text(x, y, f"Elevation, looking toward {bearing(on.view.toward)}", style.HEADING, bold=True)
     page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
     first = solution.spars[0].name
-    words = f"cables as they hang in still air · levels above the foot of {first} · guy angles from the ground"
+    how = "cables as they hang in still air" if stands(solution) else "AS DRAWN, cables straight: it does not stand in still air"
+    words = f"{how} · levels above the foot of {first} · guy angles from the ground"
     page.text(x, y - 4.6, fitted(words, on.zone.width, style.SMALL), style.SMALL)
 
 
@@ -136,7 +145,7 @@ def _cables(page: Page, solution: Solution, on: ElevationFrame, field: Field) ->
 
 def _spars(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
     for spar in solution.spars:
-        points = on.on_page(hung_spar(spar))
+        points = on.on_page(hung_spar(solution, spar))
         page.line(points, style.INK, style.SPAR, order=3.5, butt=True)
         field.add_line(points[[0, len(points) // 2, -1]])
     for place_ in on.on_page(solution.anchors.position):
@@ -167,7 +176,7 @@ def below(point: Array, size: tuple[float, float], room: Rect, least: float, sid
 
 
 def _set_below(page: Page, field: Field, wish: Wish, lines: Sequence[Line]) -> None:
-    spot = place(field, wish)
+    spot = place(field, wish, all_over(wish, field.room, step=2.5))
     blocks.draw(page, spot.box, lines, "centre")
     if spot.leader is not None:
         page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
@@ -192,7 +201,7 @@ def anchor_line(solution: Solution, anchor: str) -> Line:
     angles = sorted(guy_angle(solution, i) for i in anchor_cables(solution, anchor))
     texts = list(dict.fromkeys(angle(a) for a in angles))
     row = " ".join(texts) if len(texts) < 4 else f"{texts[0]} to {texts[-1]}"
-    return Line(shortened(anchor, 27.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
+    return Line(shortened(anchor, 20.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
 
 
 def _bases(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
@@ -231,7 +240,7 @@ def _level_tags(solution: Solution, on: ElevationFrame, tongue: Tongue) -> list[
     for cable in solution.scenario.cable:
         for end in (cable.from_, cable.to):
             if isinstance(end, model.SparPoint):
-                where = at_station(spar_named(solution, end.spar), end.at)
+                where = at_station(solution, end.spar, end.at)
                 lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
                 tags.setdefault((end.spar, round(end.at * 100.0)), (on.on_page(where), lines))
     return list(tags.values())
@@ -260,8 +269,7 @@ def _sections(page: Page, solution: Solution, on: ElevationFrame, field: Field) 
     for letter, spar, _, section in lettered_sections(solution):
         low = start.get(spar.name, 0.0)
         start[spar.name] = low + section.length
-        line = spar_named(solution, spar.name)
-        ends = on.on_page(np.array([at_station(line, low), at_station(line, low + section.length)]))
+        ends = on.on_page(np.array([at_station(solution, spar.name, at) for at in (low, low + section.length)]))
         if upright_in_margin and abs(ends[1, 0] - ends[0, 0]) < 2.0:
             ends[:, 0] = on.zone.right - 8.0
         letters += _bracket(page, field, ends, letter)
@@ -300,7 +308,7 @@ def _fittings(page: Page, solution: Solution, on: ElevationFrame, field: Field) 
     """Symbols drawn; returns number and place on the page."""
     symbols = []
     for number, spar, fitting in numbered_fittings(solution):
-        axis = at_station(spar_named(solution, spar.name), fitting.at)
+        axis = at_station(solution, spar.name, fitting.at)
         shift = np.array([fitting.offset.east, fitting.offset.north, fitting.offset.up])
         centre, at = on.on_page(axis), on.on_page(axis + shift)
         page.line([centre, at], style.INK, style.THIN, order=3.6)

@@ -147,11 +147,12 @@ class TextLine(Artist):
         return Affine2D().scale(self.size * self.shrink * pixels_per_point).translate(x, y)
 
     def get_window_extent(self, renderer: RendererBase | None = None) -> Bbox:
-        """What the glyphs cover, in pixels of the figure."""
-        figure = self.get_figure()
-        if figure is None:
+        """What the glyphs cover, control points of their curves included, in pixels of the figure."""
+        figure, path = self.get_figure(), outline(self.text, self.bold)
+        if figure is None or path.codes is None:
             return Bbox.null()
-        return outline(self.text, self.bold).get_extents(self._placed(figure.dpi / 72.0))
+        points = self._placed(figure.dpi / 72.0).transform(path.vertices[path.codes != Path.CLOSEPOLY])
+        return Bbox([points.min(axis=0), points.max(axis=0)])
 
     def get_tightbbox(self, renderer: RendererBase | None = None) -> Bbox:
         """The same: nothing is clipped."""

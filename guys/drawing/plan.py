@@ -34,8 +34,8 @@ from guys.drawing.rounding import Tongue, bearing, force, length, level
 from guys.drawing.scales import length_bar, load_bar, ratio_text, ratio_to_fit
 from guys.results import AnchorWorst, Solution
 
-LABEL_ROOM = (46.0, 19.0)
-"""Room [mm] kept at the sides and at top and bottom for the words of the outermost anchors."""
+MOST_ROOM = (52.0, 28.0)
+"""Most room [mm] kept at the sides and at top and bottom for words."""
 HEAD, STRIP = 12.0, 9.5
 LONGEST_BAR, LARGEST_RING = 24.0, 9.0
 DOT = 0.9
@@ -59,17 +59,25 @@ class PlanFrame:
 
 def bounds(solution: Solution) -> Array:
     """(2, 2) least and greatest east, north of all that the plan shows."""
-    spars = [hung_spar(s)[:, :2] for s in solution.spars]
+    spars = [hung_spar(solution, s)[:, :2] for s in solution.spars]
     points = np.concatenate([solution.anchors.position[:, :2], *spars])
     return np.stack([points.min(axis=0), points.max(axis=0)])
 
 
-def fitting_ratio(page: Page, solution: Solution, zone: Rect) -> float:
+def fitting_ratio(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> float:
     """Smallest round ratio at which the plan fits its zone with room for words."""
     low, high = bounds(solution)
-    room = zone.inset(LABEL_ROOM[0], STRIP + LABEL_ROOM[1], LABEL_ROOM[0], HEAD + LABEL_ROOM[1])
+    wide, tall = label_room(solution, tongue)
+    room = zone.inset(wide, STRIP + tall, wide, HEAD + tall)
     span = np.maximum(high - low, 0.5)
     return ratio_to_fit((float(span[0]), float(span[1])), (room.width, room.height), page.shrink)
+
+
+def label_room(solution: Solution, tongue: Tongue) -> tuple[float, float]:
+    """Room [mm] kept at the sides and at top and bottom for the words of the outermost anchors."""
+    sizes = [blocks.size(anchor_words(solution, worst, tongue)) for worst in solution.worst_anchors]
+    wide, tall = (np.array(sizes).max(axis=0) if sizes else np.zeros(2)) + 3.0
+    return float(min(wide, MOST_ROOM[0])), float(min(tall, MOST_ROOM[1]))
 
 
 def frame(page: Page, solution: Solution, zone: Rect, ratio: float) -> PlanFrame:
@@ -195,7 +203,7 @@ def _on_one_line(one: Array, two: Array, gap: float) -> bool:
 
 def _spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
     for spar in solution.spars:
-        points = on.on_page(hung_spar(spar))
+        points = on.on_page(hung_spar(solution, spar))
         foot, head = points[0], points[-1]
         if np.hypot(*(head - foot)) > 1.5:
             page.line([foot, head], style.INK, style.SPAR, order=3.5)
@@ -227,21 +235,32 @@ def ring_radius(worst: AnchorWorst, per_newton: float) -> float:
 
 
 def _label_anchors(page: Page, solution: Solution, on: PlanFrame, field: Field, per_newton: float, tongue: Tongue) -> None:
-    """Words at every anchor, in the order (crowded, outer or inner ones first) that costs least in all."""
+    """Words at every anchor: in full, or, where not all find room, less of them (the table has the rest)."""
     at = on.on_page(solution.anchors.position)
     rings = np.array([ring_radius(_worst_of(solution, name), per_newton) for name in solution.anchors.name])
-    words = [anchor_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
-    wishes = []
-    for i, point in enumerate(at):
-        wish = around(point, blocks.size(words[i]), rings[i], point - on.on_page(base_point(solution)))
-        wishes.append(replace(wish, rivals=np.delete(np.column_stack([at, rings]), i, axis=0)))
-    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
-    away = np.linalg.norm(at - on.on_page(base_point(solution)), axis=1)
-    orders = [np.argsort(key, kind="stable") for key in (gaps.min(axis=1, initial=1e6), -away, away, at[:, 0], at[:, 1])]
-    spots = min((_placed(field.copied(), wishes, order, on.room) for order in orders), key=lambda s: sum(p.cost for p in s))
+    full = [anchor_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
+    short = [_short_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
+    names = [_broken(name) for name in solution.anchors.name]
+    for words in (full, short, names):
+        spots = _best_places(field, at, rings, words, (on.room, on.on_page(base_point(solution))))
+        if not any(spot.clashes for spot in spots):
+            break
     for spot, point, lines in zip(spots, at, words, strict=True):
         field.add_place(spot)
         blocks.draw_placed(page, spot, point, lines)
+
+
+def _best_places(field: Field, at: Array, rings: Array, words: list[list[Line]], around_what: tuple[Rect, Array]) -> list[Place]:
+    """Places in the order (crowded, outer, inner, western or southern ones first) that costs least in all."""
+    room, foot = around_what
+    wishes = []
+    for i, point in enumerate(at):
+        wish = around(point, blocks.size(words[i]), rings[i], point - foot)
+        wishes.append(replace(wish, rivals=np.delete(np.column_stack([at, rings]), i, axis=0)))
+    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
+    away = np.linalg.norm(at - foot, axis=1)
+    orders = [np.argsort(key, kind="stable") for key in (gaps.min(axis=1, initial=1e6), -away, away, at[:, 0], at[:, 1])]
+    return min((_placed(field.copied(), wishes, order, room) for order in orders), key=lambda spots: sum(p.cost for p in spots))
 
 
 def _placed(field: Field, wishes: list[Wish], order: Iterable[np.int64], room: Rect) -> list[Place]:
@@ -259,13 +278,28 @@ def anchor_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list
     out, up, pull = greatest(worst.horizontal).value, greatest(worst.uplift).value, greatest(worst.resultant)
     above = point[2] - base_point(solution)[2]
     rise = uplift_words(up, tongue)
+    if not isfinite(pull.value):
+        return [*_broken(worst.name), *_site_lines(turn, radius, above, tongue), Line("no equilibrium, no loads", bold=True)]
     loads = [f"out {tongue.say(force, out)}", f"up {rise}"]
     lines = [Line(part, bold=False, colour=style.INK) for part in (loads if len(tongue.systems) > 1 else ["   ".join(loads)])]
-    for i, system in enumerate(tongue.systems):
-        lines.append(Line(f"{bearing(turn) + '   ' if i == 0 else ''}{length(radius, system)}   level {level(above, system)}"))
-    names = _broken(worst.name)
+    lines += _site_lines(turn, radius, above, tongue)
     wind = pull.wind_from if isfinite(pull.wind_from) else None
-    return [*names, *lines, Line(wind_words(solution, pull.case, pull.wind_from), colour=style.WIND, wind_from=wind)]
+    return [*_broken(worst.name), *lines, Line(wind_words(solution, pull.case, pull.wind_from), colour=style.WIND, wind_from=wind)]
+
+
+def _short_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list[Line]:
+    """Name and loads in the first of the units, no more."""
+    out, up = greatest(worst.horizontal).value, greatest(worst.uplift).value
+    first = Tongue(tongue.systems[:1])
+    return [*_broken(worst.name), Line(f"out {first.say(force, out)}   up {uplift_words(up, first)}")]
+
+
+def _site_lines(turn: float, radius: float, above: float, tongue: Tongue) -> list[Line]:
+    """Bearing, radius and level from the base."""
+    first = f"{bearing(turn)}   "
+    return [
+        Line(f"{first if i == 0 else ''}{length(radius, system)}   level {level(above, system)}") for i, system in enumerate(tongue.systems)
+    ]
 
 
 def uplift_words(up: float, tongue: Tongue) -> str:
@@ -283,7 +317,7 @@ def _broken(name: str, longest: int = 26) -> list[Line]:
 
 def _label_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
     for spar in solution.spars:
-        points = on.on_page(hung_spar(spar))
+        points = on.on_page(hung_spar(solution, spar))
         leans = float(np.hypot(*(points[-1] - points[0]))) > 12.0
         at = points[len(points) * 2 // 3] if leans else points[0]
         lines = [Line(spar.name, colour=style.INK)]

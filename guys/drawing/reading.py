@@ -13,7 +13,7 @@ from math import isfinite, nan
 import numpy as np
 from numpy.typing import NDArray
 
-from guys.drawing.rounding import bearing
+from guys.drawing.rounding import ABSENT, bearing
 from guys.results import AnchorWorst, Array, Extreme, Flags, Solution, SparLine, Sweep
 
 SETTING = 0
@@ -44,21 +44,29 @@ def wind_cases(solution: Solution) -> tuple[str, ...]:
 
 def wind_words(solution: Solution, case: str, wind_from: float) -> str:
     """ "wind from 15°", with the case's name where several hold wind; a case without wind by its name."""
+    if not case:
+        return ABSENT
     if not isfinite(wind_from):
         return "still air, as set" if case == "setting" else f"still air, {case}"
     words = f"wind from {bearing(wind_from)}"
     return words if len(wind_cases(solution)) < 2 else f"{words}, {case}"
 
 
-def hung_spar(spar: SparLine) -> Array:
-    """(station, 3) where the spar stands in still air."""
+def stands(solution: Solution) -> bool:
+    """Is there a still-air equilibrium to draw."""
+    return solution.state[SETTING] != "none"
+
+
+def hung_spar(solution: Solution, spar: SparLine) -> Array:
+    """(station, 3) where the spar stands in still air; as drawn where it does not stand."""
     moved = spar.drawn + spar.displacement[SETTING]
-    return np.asarray(moved if bool(np.isfinite(moved).all()) else spar.drawn)
+    return np.asarray(moved if stands(solution) and bool(np.isfinite(moved).all()) else spar.drawn)
 
 
-def at_station(spar: SparLine, at: float) -> Array:
+def at_station(solution: Solution, name: str, at: float) -> Array:
     """(3,) the still-air place of a point of a spar's axis."""
-    points = hung_spar(spar)
+    spar = spar_named(solution, name)
+    points = hung_spar(solution, spar)
     return np.array([np.interp(at, spar.station, points[:, i]) for i in range(3)])
 
 
@@ -70,16 +78,17 @@ def spar_named(solution: Solution, name: str) -> SparLine:
 def hung_cable(solution: Solution, cable: int) -> Array:
     """(point, 3) the cable as it hangs in still air, from its `to` end to its `from` end; straight where nothing hangs."""
     curve = solution.cables.curve[SETTING, cable]
-    if bool(np.isfinite(curve).all()):
+    if stands(solution) and bool(np.isfinite(curve).all()):
         return np.asarray(curve)
     wanted = solution.scenario.cable[cable]
-    top = at_station(spar_named(solution, wanted.from_.spar), wanted.from_.at)
+    top = at_station(solution, wanted.from_.spar, wanted.from_.at)
     to = solution.cables.to_anchor[cable]
-    if to is None:
-        low = at_station(spar_named(solution, wanted.to.spar), wanted.to.at)  # type: ignore[union-attr]
-    else:
-        low = solution.anchors.position[solution.anchors.name.index(to)]
+    low = _anchor_place(solution, to) if to is not None else at_station(solution, wanted.to.spar, wanted.to.at)  # type: ignore[union-attr]
     return np.stack([low, top])
+
+
+def _anchor_place(solution: Solution, name: str) -> Array:
+    return np.asarray(solution.anchors.position[solution.anchors.name.index(name)])
 
 
 def dropping(solution: Solution) -> Flags:
@@ -204,6 +213,11 @@ def sectors(flags: Flags, bearings: Array) -> list[tuple[float, float]]:
     return [(float(bearings[a]), float(bearings[b])) for a, b in zip(starts, ends, strict=True)]
 
 
+def _run(solution: Solution, spar: SparLine) -> Array:
+    points = hung_spar(solution, spar)
+    return np.asarray(points[-1, :2] - points[0, :2])
+
+
 def look_bearing(solution: Solution) -> float:
     """Bearing [rad] the elevation looks toward to show most: anchors and spars spread out, none hidden behind another.
 
@@ -212,7 +226,7 @@ def look_bearing(solution: Solution) -> float:
     """
     foot = base_point(solution)[:2]
     ends = [p[:2] - foot for p in solution.anchors.position]
-    runs = [hung_spar(spar)[-1, :2] - hung_spar(spar)[0, :2] for spar in solution.spars]
+    runs = [_run(solution, spar) for spar in solution.spars]
     size = max([float(np.hypot(*p)) for p in [*ends, *runs]] + [1e-9])
     points = np.array([np.zeros(2), *ends])
     turns = np.deg2rad(np.arange(-90.0, 90.0, 5.0))

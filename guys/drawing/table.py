@@ -185,7 +185,7 @@ def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cel
     if cable is None:
         return ("–",), ("–",), ("–",)
     demand = greatest(cable.tension).value
-    if not isfinite(cable.factor):
+    if not (isfinite(cable.factor) and isfinite(demand)):
         return (cable.name,), tongue.each(force, demand), ("not judged",)
     past = cable.factor < solution.scenario.allowables.cable
     stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, demand), tongue.each(plain_force, cable.strength), strict=True))

@@ -61,7 +61,9 @@ def draw_page(solution: Solution, paper: str, look_toward: float | None, units: 
     layout = lay_out(solution, paper, speech, rows)
     page = new_page(paper, layout.taller)
     view = View(look_bearing(solution) if look_toward is None else look_toward)
-    ratios = together(plan.fitting_ratio(page, solution, layout.plan), elevation.fitting_ratio(page, solution, layout.elevation, view))
+    ratios = together(
+        plan.fitting_ratio(page, solution, layout.plan, speech), elevation.fitting_ratio(page, solution, layout.elevation, view)
+    )
     _head(page, solution, layout.head, speech)
     _strip(page, solution, layout.strip)
     plan.draw_plan(page, solution, layout.plan, ratios[0], speech)
@@ -142,14 +144,22 @@ def _at_most(lines: list[str], count: int, room: float, size: float) -> list[str
 def strip_words(solution: Solution) -> list[tuple[str, bool]]:
     """State, verdict and warnings in words, each with whether it alarms."""
     alarming = solution.failed or not {"none", "unstable", "neutral"}.isdisjoint(box.kinds(solution))
-    state = box.state_summary(solution) + ("; loads are of the cases that stand" if "none" in solution.state else "")
+    state = box.state_summary(solution) + _of_which(solution)
     past, verdict = len(solution.past), _verdict(solution)
     count = len(dict.fromkeys([*solution.warnings, *solution.scenario.warnings]))
     warned = f"{count} WARNING{'S' if count > 1 else ''}, in the box" if count else "no warnings"
     return [(_raised(state), alarming), (_raised(verdict), past > 0), (warned, count > 0)]
 
 
+def _of_which(solution: Solution) -> str:
+    if "none" not in solution.state:
+        return ""
+    return "; loads are of the cases that stand" if set(solution.state) != {"none"} else "; there are no loads to show"
+
+
 def _verdict(solution: Solution) -> str:
+    if set(solution.state) == {"none"}:
+        return "nothing judged: nothing stands"
     judged = sum(f.verdict != "not judged" for f in solution.findings)
     past, open_ = len(solution.past), len(solution.findings) - judged
     words = f"{past} of {judged} checks PAST the allowable" if past else f"all {judged} checks within" if judged else "nothing judged"
