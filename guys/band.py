@@ -12,6 +12,7 @@ Sources: Cuthill & McKee (1969), reversed after George (1971), from scipy; LAPAC
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -23,6 +24,7 @@ from scipy.sparse.csgraph import reverse_cuthill_mckee
 from guys.rotation import Array, dyad_curvature, outer, skew
 
 Index = NDArray[np.int64]
+Selection = slice | Index
 
 
 @dataclass(frozen=True)
@@ -46,15 +48,15 @@ class Frames:
 class Pattern:
     """Where blocks go.
 
-    pair : (pair, 2) row and column node, row >= column; of : {(row, column): index}; order, starts : sorting of contributions
+    pair : (pair, 2) row and column node, row >= column; of : {(row, column): index}, those of (n, n) first and in order
+    plan : for every part of the contributions, selections of it and of the pairs they add to, no pair twice in one
     free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry
     """
 
     nodes: int
     pair: Index
     of: dict[tuple[int, int], int]
-    order: Index
-    starts: Index
+    plan: tuple[tuple[tuple[Selection, Selection], ...], ...]
     rides: Rides
     frames: Frames
     free: Index
@@ -65,22 +67,39 @@ class Pattern:
         return len(self.free)
 
 
-def lay_out(rows: Index, columns: Index, held: NDArray[np.bool_], rides: Rides, frames: Frames) -> Pattern:
-    """Pattern for contributions to the node pairs (rows[k], columns[k]), rows >= columns; held : (node, 6) directions without unknown,
-    rotations about the node's frame."""
+def lay_out(rows: Sequence[Index], columns: Sequence[Index], held: NDArray[np.bool_], rides: Rides, frames: Frames) -> Pattern:
+    """Pattern for parts of contributions, part p to the node pairs (rows[p][k], columns[p][k]), rows >= columns.
+
+    held : (node, 6) directions without unknown, rotations about the node's frame
+    """
     nodes = len(held)
-    filled = _with_folds({(int(r), int(c)) for r, c in zip(rows, columns, strict=True)}, nodes, rides)
-    pair = np.array(sorted(filled), dtype=np.int64)
+    ends = [np.stack([r, c], axis=1) for r, c in zip(rows, columns, strict=True)]
+    filled = _with_folds({(int(r), int(c)) for part in ends for r, c in part}, nodes, rides)
+    pair = np.array([(n, n) for n in range(nodes)] + sorted((r, c) for r, c in filled if r != c), dtype=np.int64)
     of = {(int(r), int(c)): k for k, (r, c) in enumerate(pair)}
-    extra = list(of.values())
-    target = np.concatenate([[of[int(r), int(c)] for r, c in zip(rows, columns, strict=True)], extra]).astype(np.int64)
-    order = np.argsort(target, kind="stable")
-    starts = np.searchsorted(target[order], np.arange(len(pair)))
+    plan = tuple(_rounds(np.array([of[int(r), int(c)] for r, c in part], dtype=np.int64)) for part in ends)
     fixed = held.copy()
     for node, welded in zip(rides.node, rides.welded, strict=True):
         fixed[node, : 6 if welded else 3] = True
     free = _number(pair, ~fixed)
-    return Pattern(nodes, pair, of, order, starts, rides, frames, free, _sources(pair, of, free))
+    return Pattern(nodes, pair, of, plan, rides, frames, free, _sources(pair, of, free))
+
+
+def _rounds(targets: Index) -> tuple[tuple[Selection, Selection], ...]:
+    """Selections of the contributions and of their targets, in rounds within which no target stands twice."""
+    seen: dict[int, int] = {}
+    rounds: dict[int, list[int]] = {}
+    for row, target in enumerate(targets.tolist()):
+        seen[target] = seen.get(target, -1) + 1
+        rounds.setdefault(seen[target], []).append(row)
+    return tuple((_selection(np.array(r)), _selection(targets[r])) for r in rounds.values())
+
+
+def _selection(index: Index) -> Selection:
+    """A slice where the index runs on without a gap: numpy then copies nothing."""
+    if (np.diff(index) == 1).all():
+        return slice(int(index[0]), int(index[-1]) + 1)
+    return index
 
 
 def _with_folds(pairs: set[tuple[int, int]], nodes: int, rides: Rides) -> set[tuple[int, int]]:
@@ -121,13 +140,13 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
     return source
 
 
-def add_up(pattern: Pattern, contributions: Array) -> Array:
-    """Contributions (case, contribution, 6, 6), in the order given to `lay_out`, summed by pair: (case, pair, 6, 6)."""
-    cases = len(contributions)
-    whole = np.zeros((cases, len(pattern.order), 36))
-    whole[:, : contributions.shape[1]] = contributions.reshape(cases, contributions.shape[1], 36)
-    summed = np.add.reduceat(whole[:, pattern.order], pattern.starts, axis=1)
-    return np.asarray(summed).reshape(cases, len(pattern.pair), 6, 6)
+def add_up(pattern: Pattern, parts: Sequence[Array]) -> Array:
+    """Contributions (case, contribution, 6, 6), parts as given to `lay_out`, summed by pair: (case, pair + 1, 6, 6), the last one zero."""
+    blocks = np.zeros((len(parts[0]), len(pattern.pair) + 1, 6, 6))
+    for part, rounds in zip(parts, pattern.plan, strict=True):
+        for source, target in rounds:
+            blocks[:, target] += part[:, source]
+    return blocks
 
 
 def fold_gradient(pattern: Pattern, gradient: Array, arms: Array) -> Array:
@@ -217,16 +236,13 @@ def _fold_one(pattern: Pattern, blocks: Array, s: int, m: int, keep: Array, onto
 
 def to_band(pattern: Pattern, blocks: Array) -> Array:
     """Lower band (case, unknown, width): entry [c, j, d] is K[j + d, j]."""
-    cases = len(blocks)
     for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
         for (row, column), at in pattern.of.items():
             if row == node:
                 blocks[:, at, 3:, :] = axes @ blocks[:, at, 3:, :]
             if column == node:
                 blocks[:, at, :, 3:] = blocks[:, at, :, 3:] @ axes.T
-    flat = np.zeros((cases, blocks.shape[1] * 36 + 1))
-    flat[:, :-1] = blocks.reshape(cases, blocks.shape[1] * 36)
-    return np.take(flat, pattern.source, axis=1)
+    return np.take(blocks.reshape(len(blocks), blocks.shape[1] * 36), pattern.source, axis=1)
 
 
 def factor(band: Array) -> tuple[Array, NDArray[np.bool_]]:

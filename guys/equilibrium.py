@@ -160,14 +160,11 @@ class Problem:
         hanging = self.pull(chord, state.tension)
         gradient = np.zeros((self.cases, s.nodes, 6))
         ends = beam.gradient(bent)
-        for end, node in ((ends[..., :6], s.elements.i), (ends[..., 6:], s.elements.j)):
-            for _, rows in _rounds(node):
-                gradient[:, node[rows]] += end[:, rows]
+        _add_at(gradient, s.elements.i, ends[..., :6])
+        _add_at(gradient, s.elements.j, ends[..., 6:])
         present = self.loads.present[..., None]
         for points, arm, force in ((s.cables.a, arm_a, -hanging.at_a * present), (s.cables.b, arm_b, hanging.at_b * present)):
-            both = np.concatenate([force, cross(arm, force)], axis=-1)
-            for _, rows in _rounds(points.node):
-                gradient[:, points.node[rows]] += both[:, rows]
+            _add_at(gradient, points.node, np.concatenate([force, cross(arm, force)], axis=-1))
         dyad = self.loads.dyad + state.psi @ self.loads.dyad
         gradient[..., :3] -= self.loads.force
         gradient[..., 3:] -= dyad_moment(dyad)
@@ -208,11 +205,10 @@ class Problem:
         axial = np.where(np.isnan(state.axial), bent.axial, state.axial)
         h = beam.hessian(s.elements.rods, bent, axial)
         parts = [h[..., :6, :6], h[..., 6:, 6:], h[..., 6:, :6], *self._cable_blocks(hanging, *arm), *_joint_blocks(holding, s.joints)]
-        blocks = band.add_up(self.pattern, np.concatenate(parts, axis=1))
-        diagonal = np.array([self.pattern.of[n, n] for n in range(s.nodes)])
-        blocks[:, diagonal, 3:, 3:] -= dyad_curvature(dyad)
+        blocks = band.add_up(self.pattern, parts)
+        blocks[:, : s.nodes, 3:, 3:] -= dyad_curvature(dyad)
         if spring.any():
-            blocks[:, diagonal[s.anchor], :3, :3] += spring[:, None, None] * np.eye(3)
+            blocks[:, s.anchor, :3, :3] += spring[:, None, None] * np.eye(3)
         return band.to_band(self.pattern, band.fold(self.pattern, blocks, gradient, arms))
 
     def _cable_blocks(self, hanging: cable.Hanging, arm_a: Array, arm_b: Array) -> tuple[Array, Array, Array]:
@@ -300,7 +296,7 @@ def pattern_of(structure: Structure) -> band.Pattern:
     m, n = s.joints.carrier_node, s.joints.spar_node
     rows = [s.elements.i, s.elements.j, s.elements.j, a, b, np.maximum(a, b), m, n, np.maximum(m, n)]
     columns = [s.elements.i, s.elements.j, s.elements.i, a, b, np.minimum(a, b), m, n, np.minimum(m, n)]
-    return band.lay_out(np.concatenate(rows), np.concatenate(columns), s.held, s.rides, s.frames)
+    return band.lay_out(rows, columns, s.held, s.rides, s.frames)
 
 
 def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, Array]:
@@ -313,11 +309,8 @@ def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, A
     return out[0], out[1], out[2]
 
 
-def _rounds(nodes: Index) -> list[tuple[int, Index]]:
-    """Rows in rounds within which no node stands twice, so that fancy indexing may add."""
-    seen: dict[int, int] = {}
-    rounds: dict[int, list[int]] = {}
-    for row, node in enumerate(nodes.tolist()):
-        seen[node] = seen.get(node, -1) + 1
-        rounds.setdefault(seen[node], []).append(row)
-    return [(k, np.array(rows, dtype=np.int64)) for k, rows in rounds.items()]
+def _add_at(gradient: Array, node: Index, rows: Array) -> None:
+    """Add rows (case, row, 6) to the nodes they belong to; a node may stand several times."""
+    to = np.zeros((gradient.shape[1], len(node)))
+    to[node, np.arange(len(node))] = 1.0
+    gradient += to @ rows

@@ -20,7 +20,7 @@ as an independent (mixed) unknown.
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -74,30 +74,27 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
     cases = problem.cases
     state = start.take(np.arange(cases))
     seen = _Progress(np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64))
-    open_ = np.arange(cases)
+    open_, part, here = np.arange(cases), problem, state
     for _ in range(rounds):
-        part = problem.take(open_)
-        here = state.take(open_)
         found = part.evaluate(here)
         done = _judge(seen, open_, found.error)
-        here = State(here.u, here.psi, found.hanging.tension, here.axial)
-        state.put(open_, here)
         if stop is not None:
             over = stop(part, here) & ~done
             seen.stopped[open_[over]] = True
             done |= over
+        if done.any():
+            state.put(open_[done], replace(here, tension=found.hanging.tension).take(np.flatnonzero(done)))
         if done.all():
-            open_ = open_[:0]
             break
         assert found.band is not None
         step, seen.damping[open_] = damped_step(found.band, found.residual, part.mass, seen.damping[open_])
-        step = part.limited(here, step, TURN_CAP, MOVE_CAP * part.structure.height)
-        step[done] = 0.0
-        moved = part.advance(here, found, step)
-        keep = ~done
-        state.put(open_[keep], moved.take(np.flatnonzero(keep)))
-        seen.rounds[open_[keep]] += 1
-        open_ = open_[keep]
+        here = part.advance(here, found, part.limited(here, step, TURN_CAP, MOVE_CAP * part.structure.height))
+        seen.rounds[open_[~done]] += 1
+        if done.any():
+            keep = np.flatnonzero(~done)
+            open_, part, here = open_[keep], part.take(keep), here.take(keep)
+    else:
+        state.put(open_, here)
     return Outcome(state, seen.error, seen.rounds, seen.error < ENOUGH, seen.stopped)
 
 
