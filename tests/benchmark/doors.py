@@ -2,17 +2,25 @@
 
 from __future__ import annotations
 
-import os
+import json
 import re
 import subprocess
 import sys
 import tempfile
-import time
 from dataclasses import dataclass
 from pathlib import Path
 
 SCENARIOS = Path(__file__).parents[2] / "scenarios"
 START = "from guys.cli import main; main()"
+LAUNCH = """
+import json, os, subprocess, sys, time
+began = time.perf_counter()
+child = subprocess.Popen([sys.executable, "-c", *sys.argv[1:]], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+_, code, used = os.wait4(child.pid, 0)
+seconds, child.returncode = time.perf_counter() - began, os.waitstatus_to_exitcode(code)
+print(json.dumps({"seconds": seconds, "megabytes": used.ru_maxrss / 1024, "status": child.returncode}))
+"""
+"""Starts the program from a small process: a child's peak memory counts what its parent held when it was started."""
 TWO_CASES = '\n[[case]]\nname = "full wind"\nwind = 1.0\n\n[[case]]\nname = "half wind"\nwind = 0.5\n'
 
 
@@ -27,15 +35,13 @@ class Run:
 
 def run(arguments: list[str], repeats: int) -> Run:
     """Start the program several times in a fresh interpreter."""
-    seconds, memory, status = [], [], 0
-    for _ in range(repeats):
-        began = time.perf_counter()
-        child = subprocess.Popen([sys.executable, "-c", START, *arguments], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
-        _, code, used = os.wait4(child.pid, 0)
-        seconds.append(time.perf_counter() - began)
-        memory.append(used.ru_maxrss / 1024.0)
-        status = child.returncode = os.waitstatus_to_exitcode(code)
-    return Run(min(seconds), max(memory), status)
+    runs = [_one(arguments) for _ in range(repeats)]
+    return Run(min(r.seconds for r in runs), max(r.megabytes for r in runs), runs[-1].status)
+
+
+def _one(arguments: list[str]) -> Run:
+    told = subprocess.run([sys.executable, "-c", LAUNCH, START, *arguments], capture_output=True, text=True, check=True)
+    return Run(**json.loads(told.stdout))
 
 
 def help_run(repeats: int) -> Run:
