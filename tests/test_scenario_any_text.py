@@ -13,6 +13,9 @@ from guys import parse_scenario
 from guys.errors import ScenarioError
 from guys.scenario import Scenario
 
+LONGEST_LINE = 700
+"""Characters; a fault is one line that a terminal can bear, whatever stands in the file."""
+
 QUANTITIES = [
     "1 m",
     "0 m",
@@ -56,13 +59,14 @@ def read(text: str) -> Scenario | None:
     try:
         return parse_scenario(text)
     except ScenarioError as error:
-        assert error.faults
-        for fault in error.faults:
-            assert fault.message
-            assert "\n" not in str(fault)
-            assert len(str(fault)) < 700
-            assert fault.line is None or 1 <= fault.line <= text.count("\n") + 1
-        return None
+        faults = error.faults
+    assert faults
+    for fault in faults:
+        assert fault.message
+        assert "\n" not in str(fault)
+        assert len(str(fault)) < LONGEST_LINE
+        assert fault.line is None or 1 <= fault.line <= text.count("\n") + 1
+    return None
 
 
 @settings(max_examples=300)

@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from guys.scenario import resolve
 from guys.scenario.document import CaseEntry
 from guys.scenario.draft import Draft
-from guys.scenario.keys import Finding, Key, clipped
+from guys.scenario.keys import Finding, Key, clipped, items
 from guys.scenario.model import Fitting, Section
 
 NO_DEFAULT = "default drag from the shape is not available in this version"
@@ -37,8 +37,9 @@ def findings(draft: Draft) -> Iterator[Finding]:
 
 
 def used_ropes(draft: Draft) -> set[str]:
-    """The ropes some cable is made of."""
-    return {entry.rope for entry in (*draft.guy_level, *draft.cable) if entry is not None}
+    """The ropes some cable is made of, be the rest of its table readable or not."""
+    named = [item.get("rope") for kind in ("guy_level", "cable") for _, item in items(draft.document, kind)]
+    return {name for name in named if isinstance(name, str)}
 
 
 def warmed(draft: Draft) -> CaseEntry | None:
