@@ -186,6 +186,15 @@ def mast(*directions: float, base: str = "pinned", tension: float = 1500.0, side
     return document([spar(base=base, fitting=[head])], ring, guys, **tables)
 
 
+def stayed(one: Document, *bearings: float, at: float | None = None, radius: float = 8.0, arm: float = 0.0, **tables: Any) -> Document:
+    """One spar on guys from its head (or from `at`) to anchors A, B, ... at the bearings; tension=, length= or tight= of all guys."""
+    length = sum(s["length"] for s in one["section"])
+    given = {key: tables.pop(key) for key in ("tension", "length", "tight") if key in tables} or {"tension": 500.0}
+    ring = anchors(radius, *bearings)
+    guys = [cable(f"guy {a['name']}", length if at is None else at, a["name"], spar=one["name"], arm=arm, **given) for a in ring]
+    return document([one], ring, guys, **({} if "wind" in tables else {"still": True}) | tables)
+
+
 def boom(base: str = "hinged", rigid: Sequence[bool] = (False, False), **tables: Any) -> Document:
     """A boom heeled on a guyed mast, held up by a topping stay and sideways by two stays, with a load at its head.
 
