@@ -50,7 +50,8 @@ class Pattern:
 
     pair : (pair, 2) row and column node, row >= column; of : {(row, column): index}, those of (n, n) first and in order
     plan : for every part of the contributions, selections of it and of the pairs they add to, no pair twice in one
-    free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry
+    free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry in
+    the blocks (6, 6, pair + 1), the last pair being zero
     """
 
     nodes: int
@@ -124,28 +125,29 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
     by_node: dict[int, list[int]] = {}
     for n, k in number:
         by_node.setdefault(n, []).append(k)
+    pairs = len(pair) + 1
     entries: list[tuple[int, int, int]] = []
     for (r, c), p in of.items():
         for a in by_node.get(r, []):
             for b in by_node.get(c, []):
-                i, j, at = number[r, a], number[c, b], p * 36 + a * 6 + b
+                i, j, at = number[r, a], number[c, b], (a * 6 + b) * pairs + p
                 if i >= j:
                     entries.append((j, i - j, at))
                 elif r != c:
                     entries.append((i, j - i, at))
     width = 1 + max((offset for _, offset, _ in entries), default=0)
-    source = np.full((len(free), width), len(pair) * 36, dtype=np.int64)
+    source = np.full((len(free), width), pairs - 1, dtype=np.int64)
     for column, offset, at in entries:
         source[column, offset] = at
     return source
 
 
 def add_up(pattern: Pattern, parts: Sequence[Array]) -> Array:
-    """Contributions (case, contribution, 6, 6), parts as given to `lay_out`, summed by pair: (case, pair + 1, 6, 6), the last one zero."""
-    blocks = np.zeros((len(parts[0]), len(pattern.pair) + 1, 6, 6))
+    """Contributions (6, 6, contribution, case), parts as given to `lay_out`, summed by pair: (6, 6, pair + 1, case), the last pair zero."""
+    blocks = np.zeros((6, 6, len(pattern.pair) + 1, parts[0].shape[3]))
     for part, rounds in zip(parts, pattern.plan, strict=True):
         for source, target in rounds:
-            blocks[:, target] += part[:, source]
+            blocks[:, :, target] += part[:, :, source]
     return blocks
 
 
@@ -185,14 +187,14 @@ def nodes_of(pattern: Pattern, step: Array) -> Array:
 
 
 def fold(pattern: Pattern, blocks: Array, gradient: Array, arms: Array) -> Array:
-    """Blocks (case, pair, 6, 6) after the folds; gradient unfolded (case, node, 6)."""
+    """Blocks (6, 6, pair + 1, case) after the folds; gradient unfolded (case, node, 6)."""
     if not pattern.rides.node:
         return blocks
     pending = gradient.copy()
     for k, (s, m) in enumerate(zip(pattern.rides.node, pattern.rides.carrier, strict=True)):
         keep, onto = _ride(arms[:, k], pattern.rides.welded[k])
         _fold_one(pattern, blocks, s, m, keep, onto)
-        blocks[:, pattern.of[m, m], 3:, 3:] += dyad_curvature(outer(arms[:, k], pending[:, s, :3]))
+        blocks[3:, 3:, pattern.of[m, m]] += dyad_curvature(outer(arms[:, k], pending[:, s, :3])).transpose(1, 2, 0)
         pending[:, m] += (pending[:, s, None] @ onto)[:, 0]
     return blocks
 
@@ -216,11 +218,12 @@ def _fold_one(pattern: Pattern, blocks: Array, s: int, m: int, keep: Array, onto
         at = pattern.of.get((max(a, b), min(a, b)))
         if at is None:
             return np.zeros_like(onto)
-        return blocks[:, at].copy() if a >= b else transposed(blocks[:, at]).copy()
+        found = blocks[:, :, at].transpose(2, 0, 1)
+        return found.copy() if a >= b else transposed(found).copy()
 
     def put(a: int, b: int, value: Array) -> None:
         at = pattern.of[max(a, b), min(a, b)]
-        blocks[:, at] = value if a >= b else transposed(value)
+        blocks[:, :, at] = (value if a >= b else transposed(value)).transpose(1, 2, 0)
 
     ss, sm = get(s, s), get(s, m)
     carried = transposed(onto) @ sm
@@ -239,10 +242,12 @@ def to_band(pattern: Pattern, blocks: Array) -> Array:
     for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
         for (row, column), at in pattern.of.items():
             if row == node:
-                blocks[:, at, 3:, :] = axes @ blocks[:, at, 3:, :]
+                blocks[3:, :, at] = np.tensordot(axes, blocks[3:, :, at], axes=1)
             if column == node:
-                blocks[:, at, :, 3:] = blocks[:, at, :, 3:] @ axes.T
-    return np.take(blocks.reshape(len(blocks), blocks.shape[1] * 36), pattern.source, axis=1)
+                blocks[:, 3:, at] = np.tensordot(blocks[:, 3:, at], axes, axes=(1, 1)).swapaxes(1, 2)
+    cases, n, width = blocks.shape[3], *pattern.source.shape
+    flat = blocks.reshape(-1, cases)[pattern.source.reshape(-1)]
+    return np.ascontiguousarray(flat.T).reshape(cases, n, width)
 
 
 def factor(band: Array) -> tuple[Array, NDArray[np.bool_]]:

@@ -22,7 +22,17 @@ cancels: the residual keeps 1e-11 of the acting forces.
 The Hessian may be built with an axial force predicted from the last step instead of the present one: a trial step that turns a
 member also stretches it in second order, and that spurious tension would spoil the geometric stiffness.
 
-Symbols: l chord length, P = I - e e^T, v_i = W_b1 y_i + W_a1 z_i.  Twists past 180 degrees between neighbouring nodes are outside the
+With c_b1 = y_i x e, j_b1 = (y_i - b1 e)/l and so on for the other slopes, s = (s_d, s_i, s_j) the gradient of u_e, w that of tau by theta_i,
+v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and cross terms of W_pp in b (a), the blocks are
+
+    dd    EA/h s_d s_d^T + j_b1 P1^T + j_b2 P2^T + (the same in a) + N/l (I - e e^T) - (e v^T + v e^T + (e.v)(I - 3 e e^T))/l^2
+    id    EA/h s_i s_d^T + c_b1 P1^T + c_a1 Q1^T + ([v_i]x - (v_i x e) e^T)/l,           P1 = k_b j_b1 + q_b j_b2,  P2 = q_b j_b1 + k_b j_b2
+    ii    EA/h s_i s_i^T + k_b c_b1 c_b1^T + k_a c_a1 c_a1^T + GJ/h w w^T + (v_i e^T + e v_i^T)/2 - (e.v_i) I + T ((A + A^T)/4 - tau I)
+    ji    EA/h s_j s_i^T + q_b c_b2 c_b1^T + q_a c_a2 c_a1^T - GJ/h w w^T + T (tau I - A/2),        A = z_i y_j^T - y_i z_j^T,  T = W_tau
+
+Inside, arrays run components first and case last, (3, element, case), so that every operation is one long loop.
+
+Symbols: l chord length.  Twists past 180 degrees between neighbouring nodes are outside the
 element's range.  Sources: Crisfield, Non-linear Finite Element Analysis of Solids and Structures, vol. 2 (1997), ch. 17, for
 corotational beams; the bowing term is that of the cubic shape functions (Hermite), MacNeal's local deformation form; the shear
 factors are the usual Timoshenko ones.
@@ -33,12 +43,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
-from guys.rotation import cross, dot, outer, skew
-
-Array = NDArray[np.float64]
-D, TI, TJ = slice(0, 3), slice(3, 6), slice(6, 9)
+from guys.columns import Array, add_diagonal, add_skew, block, cross, dot, first, flipped, outer
 
 
 @dataclass(frozen=True)
@@ -60,8 +66,11 @@ class Rods:
 
 @dataclass(frozen=True)
 class Bent:
-    """Deformed elements: what gradient and Hessian share.  Arrays (case, element, ...); `slope` is p without the stretch,
-    `force` is W_p, `jacobian` (…, 6, 9), `stretch_row` (…, 9) the gradient of u_e."""
+    """Deformed elements: what gradient and Hessian share, (component, element, case).
+
+    l; e, y_i ... z_j, twist (w), each with 3 components; slope: b1, b2, a1, a2, tau; force: W_p; bow: du_e/d(b1, b2, a1, a2)
+    across: j_b1, j_b2, j_a1, j_a2 and turning: c_b1, c_b2, c_a1, c_a2, each (4, 3, ...); stretch: s_d, s_i, s_j (3, 3, ...)
+    """
 
     l: Array
     e: Array
@@ -70,11 +79,22 @@ class Bent:
     y_j: Array
     z_j: Array
     slope: Array
-    axial: Array
     force: Array
-    jacobian: Array
-    stretch_row: Array
     bow: Array
+    across: Array
+    turning: Array
+    twist: Array
+    stretch: Array
+
+    @property
+    def axial(self) -> Array:
+        """Axial force (case, element) [N]."""
+        return self.force[0].T
+
+
+def _fixed(v: Array) -> Array:
+    """(element, 3) to (3, element, 1)."""
+    return v.T[:, :, None]
 
 
 def bend(rods: Rods, d: Array, dy_i: Array, dz_i: Array, dy_j: Array, dz_j: Array, thermal: Array) -> Bent:
@@ -84,136 +104,112 @@ def bend(rods: Rods, d: Array, dy_i: Array, dz_i: Array, dy_j: Array, dz_j: Arra
     dy_i ... dz_j : (case, element, 3) change of the end triads' y and z, (R - I) y0 and so on
     thermal : (case, element) free thermal strain
     """
-    h, t0 = rods.h, rods.t
+    d, dy_i, dz_i, dy_j, dz_j = (first(v) for v in (d, dy_i, dz_i, dy_j, dz_j))
+    t0, y0, z0 = _fixed(rods.t), _fixed(rods.y), _fixed(rods.z)
+    h = rods.h[:, None]
     growth = 2 * h * dot(t0, d) + dot(d, d)
     l = np.sqrt(h * h + growth)
     stretched = growth / (l + h)
-    de = (d - t0 * stretched[..., None]) / l[..., None]
+    de = (d - t0 * stretched) / l
     e = t0 + de
-    y_i, z_i, y_j, z_j = rods.y + dy_i, rods.z + dz_i, rods.y + dy_j, rods.z + dz_j
-    b1, b2 = dot(de, rods.y) + dot(e, dy_i), dot(de, rods.y) + dot(e, dy_j)
-    a1, a2 = dot(de, rods.z) + dot(e, dz_i), dot(de, rods.z) + dot(e, dz_j)
-    tau = 0.5 * (dot(rods.z, dy_j) + dot(dz_i, y_j) - dot(rods.y, dz_j) - dot(dy_i, z_j))
-    bow = (h / 30)[..., None] * np.stack([4 * b1 - b2, 4 * b2 - b1, 4 * a1 - a2, 4 * a2 - a1], axis=-1)
-    bowing = 0.5 * (bow[..., 0] * b1 + bow[..., 1] * b2 + bow[..., 2] * a1 + bow[..., 3] * a2)
-    axial = rods.EA / h * (stretched - thermal * h + bowing)
+    y_i, z_i, y_j, z_j = y0 + dy_i, z0 + dz_i, y0 + dy_j, z0 + dz_j
+    along_y, along_z = dot(de, y0), dot(de, z0)
+    b1, b2, a1, a2 = along_y + dot(e, dy_i), along_y + dot(e, dy_j), along_z + dot(e, dz_i), along_z + dot(e, dz_j)
+    tau = 0.5 * (dot(z0, dy_j) + dot(dz_i, y_j) - dot(y0, dz_j) - dot(dy_i, z_j))
+    slope = np.stack([b1, b2, a1, a2, tau])
+    bow = np.stack([4 * b1 - b2, 4 * b2 - b1, 4 * a1 - a2, 4 * a2 - a1]) * (h / 30)
+    bowing = 0.5 * (bow[0] * b1 + bow[1] * b2 + bow[2] * a1 + bow[3] * a2)
+    axial = rods.EA[:, None] / h * (stretched - thermal.T * h + bowing)
+    axes = np.stack([y_i, y_j, z_i, z_j])
+    across = (axes - slope[:4, None] * e) / l
+    turning = np.stack([cross(v, e) for v in axes])
+    twist = 0.5 * (cross(z_i, y_j) - cross(y_i, z_j))
+    stretch = np.stack([
+        e + bow[0] * across[0] + bow[1] * across[1] + bow[2] * across[2] + bow[3] * across[3],
+        bow[0] * turning[0] + bow[2] * turning[2],
+        bow[1] * turning[1] + bow[3] * turning[3],
+    ])  # fmt: skip
+    return Bent(l, e, y_i, z_i, y_j, z_j, slope, _forces(rods, slope, axial, bow), bow, across, turning, twist, stretch)
+
+
+def _forces(rods: Rods, slope: Array, axial: Array, bow: Array) -> Array:
+    """W_p (6, element, case)."""
     k_b, q_b, k_a, q_a = _bending_stiffness(rods)
-    force = np.empty((*l.shape, 6))
-    force[..., 0] = axial
-    force[..., 1] = k_b * b1 + q_b * b2
-    force[..., 2] = q_b * b1 + k_b * b2
-    force[..., 3] = k_a * a1 + q_a * a2
-    force[..., 4] = q_a * a1 + k_a * a2
-    force[..., 1:5] += axial[..., None] * bow
-    force[..., 5] = rods.GJ / h * tau
-    slope = np.stack([b1, b2, a1, a2, tau], axis=-1)
-    jacobian = _jacobian(l, e, slope, y_i, z_i, y_j, z_j)
-    stretch_row = jacobian[..., 0, :] + (bow[..., None, :] @ jacobian[..., 1:5, :])[..., 0, :]
-    return Bent(l, e, y_i, z_i, y_j, z_j, slope, axial, force, jacobian, stretch_row, bow)
+    b1, b2, a1, a2, tau = slope
+    bending = np.stack([k_b * b1 + q_b * b2, q_b * b1 + k_b * b2, k_a * a1 + q_a * a2, q_a * a1 + k_a * a2])
+    torque = (rods.GJ / rods.h)[:, None] * tau
+    return np.concatenate([axial[None], bending + axial * bow, torque[None]])
 
 
 def _bending_stiffness(rods: Rods) -> tuple[Array, Array, Array, Array]:
-    """Direct and cross terms of both bending energies [N m]."""
+    """Direct and cross terms of both bending energies (element, 1) [N m]."""
     b = rods.EI_z / (rods.h * (1 + rods.phi_z))
     a = rods.EI_y / (rods.h * (1 + rods.phi_y))
-    return b * (4 + rods.phi_z), b * (2 - rods.phi_z), a * (4 + rods.phi_y), a * (2 - rods.phi_y)
-
-
-def _jacobian(l: Array, e: Array, slope: Array, y_i: Array, z_i: Array, y_j: Array, z_j: Array) -> Array:
-    """dp/d(d, theta_i, theta_j): (case, element, 6, 9)."""
-    j = np.zeros((*l.shape, 6, 9))
-    j[..., 0, D] = e
-    for row, (axis, end) in enumerate(((y_i, TI), (y_j, TJ), (z_i, TI), (z_j, TJ))):
-        j[..., row + 1, D] = (axis - slope[..., row, None] * e) / l[..., None]
-        j[..., row + 1, end] = cross(axis, e)
-    twist = 0.5 * (cross(z_i, y_j) - cross(y_i, z_j))
-    j[..., 5, TI] = twist
-    j[..., 5, TJ] = -twist
-    return j
+    return tuple(x[:, None] for x in (b * (4 + rods.phi_z), b * (2 - rods.phi_z), a * (4 + rods.phi_y), a * (2 - rods.phi_y)))  # type: ignore[return-value]
 
 
 def gradient(bent: Bent) -> Array:
     """(case, element, 12): derivative of the energy by (u_i, theta_i, u_j, theta_j)."""
-    g = (bent.force[..., None, :] @ bent.jacobian)[..., 0, :]
-    return np.concatenate([-g[..., D], g[..., TI], g[..., D], g[..., TJ]], axis=-1)
+    n, b1, b2, a1, a2, torque = bent.force
+    by_d = n * bent.e + b1 * bent.across[0] + b2 * bent.across[1] + a1 * bent.across[2] + a2 * bent.across[3]
+    by_i = b1 * bent.turning[0] + a1 * bent.turning[2] + torque * bent.twist
+    by_j = b2 * bent.turning[1] + a2 * bent.turning[3] - torque * bent.twist
+    return np.ascontiguousarray(np.concatenate([-by_d, by_i, by_d, by_j]).transpose(2, 1, 0))
 
 
-def hessian(rods: Rods, bent: Bent, axial: Array) -> Array:
-    """(case, element, 12, 12): second derivative of the energy, its geometric part with the axial force given [N]."""
-    h, l, e = rods.h, bent.l, bent.e
-    force = bent.force.copy()
-    force[..., 0] = axial
-    force[..., 1:5] += (axial - bent.axial)[..., None] * bent.bow
-    k = np.swapaxes(bent.jacobian, -1, -2) @ (_material(rods, axial, l.shape) @ bent.jacobian)
-    k += (rods.EA / h)[..., None, None] * outer(bent.stretch_row, bent.stretch_row)
-    v_i = force[..., 1, None] * bent.y_i + force[..., 3, None] * bent.z_i
-    v_j = force[..., 2, None] * bent.y_j + force[..., 4, None] * bent.z_j
-    across = np.eye(3) - outer(e, e)
-    _add_chord(k, axial, v_i + v_j, e, l, across)
-    _add_ends(k, v_i, v_j, e, l, across)
-    _add_twist(k, force[..., 5], bent)
-    return _spread(k)
+def blocks(rods: Rods, bent: Bent, axial: Array) -> tuple[Array, Array, Array]:
+    """Second derivative of the energy in blocks (6, 6, element, case): at node i, at node j, and rows of j with columns of i.
 
-
-def _material(rods: Rods, axial: Array, shape: tuple[int, ...]) -> Array:
-    """W_pp without the rank-one stretch term: (case, element, 6, 6)."""
-    w = np.zeros((*shape, 6, 6))
+    axial : (case, element) [N] axial force to build the geometric part with
+    """
+    e, l, tau = bent.e, bent.l, bent.slope[4]
+    n = np.ascontiguousarray(axial.T)
+    b1, b2, a1, a2 = bent.force[1:5] + (n - bent.force[0]) * bent.bow
+    torque, per = bent.force[5], (rods.EA / rods.h)[:, None]
+    jb1, jb2, ja1, ja2 = bent.across
+    cb1, cb2, ca1, ca2 = bent.turning
+    s_d, s_i, s_j = bent.stretch
     k_b, q_b, k_a, q_a = _bending_stiffness(rods)
-    bow = axial * rods.h / 30
-    for first, k, q in ((1, k_b, q_b), (3, k_a, q_a)):
-        w[..., first, first] = w[..., first + 1, first + 1] = k + 4 * bow
-        w[..., first, first + 1] = w[..., first + 1, first] = q - bow
-    w[..., 5, 5] = rods.GJ / rods.h
-    return w
+    lift = n * (rods.h / 30)[:, None]
+    k_b, q_b, k_a, q_a = k_b + 4 * lift, q_b - lift, k_a + 4 * lift, q_a - lift
+    p1, p2, q1, q2 = k_b * jb1 + q_b * jb2, q_b * jb1 + k_b * jb2, k_a * ja1 + q_a * ja2, q_a * ja1 + k_a * ja2
+    v_i, v_j = b1 * bent.y_i + a1 * bent.z_i, b2 * bent.y_j + a2 * bent.z_j
+    ev_i, ev_j = dot(e, v_i), dot(e, v_j)
+    along = (ev_i + ev_j) / (l * l)
+    with_e = (0.5 * (3 * along - n / l)) * e - (v_i + v_j) / (l * l)
+    both = outer(e, with_e)
+    dd = outer(per * s_d, s_d) + outer(jb1, p1) + outer(jb2, p2) + outer(ja1, q1) + outer(ja2, q2) + both + flipped(both)
+    add_diagonal(dd, n / l - along)
+    id_ = outer(per * s_i, s_d) + outer(cb1, p1) + outer(ca1, q1) - outer(b1 * cb1 + a1 * ca1, e / l)
+    jd = outer(per * s_j, s_d) + outer(cb2, p2) + outer(ca2, q2) - outer(b2 * cb2 + a2 * ca2, e / l)
+    add_skew(id_, v_i / l)
+    add_skew(jd, v_j / l)
+    a = outer(torque * bent.z_i, bent.y_j) - outer(torque * bent.y_i, bent.z_j)
+    stiff = outer((rods.GJ / rods.h)[:, None] * bent.twist, bent.twist)
+    same = stiff + 0.25 * (a + flipped(a))
+    ii, jj = (_turning_block(same, per, *end) for end in (
+        (s_i, k_b * cb1, cb1, k_a * ca1, ca1, v_i, e, ev_i + torque * tau), (s_j, k_b * cb2, cb2, k_a * ca2, ca2, v_j, e, ev_j + torque * tau)
+    ))  # fmt: skip
+    ji = outer(per * s_j, s_i) + outer(q_b * cb2, cb1) + outer(q_a * ca2, ca1) - stiff - 0.5 * a
+    add_diagonal(ji, torque * tau)
+    return block(dd, -id_, -flipped(id_), ii), block(dd, jd, flipped(jd), jj), block(-dd, -jd, flipped(id_), ji)
 
 
-def _add_chord(k: Array, axial: Array, v: Array, e: Array, l: Array, across: Array) -> None:
-    ev = outer(e, v)
-    along = dot(e, v)[..., None, None]
-    l2 = l[..., None, None]
-    k[..., D, D] += axial[..., None, None] / l2 * across
-    k[..., D, D] -= (ev + np.swapaxes(ev, -1, -2) + along * (3 * across - 2 * np.eye(3))) / (l2 * l2)
-
-
-def _add_ends(k: Array, v_i: Array, v_j: Array, e: Array, l: Array, across: Array) -> None:
-    for v, end in ((v_i, TI), (v_j, TJ)):
-        ve = outer(v, e)
-        k[..., end, end] += 0.5 * (ve + np.swapaxes(ve, -1, -2)) - dot(v, e)[..., None, None] * np.eye(3)
-        cross_term = skew(v) @ across / l[..., None, None]
-        k[..., end, D] += cross_term
-        k[..., D, end] += np.swapaxes(cross_term, -1, -2)
-
-
-def _add_twist(k: Array, torque: Array, bent: Bent) -> None:
-    torque = torque[..., None, None]
-    tau = bent.slope[..., 4, None, None] * np.eye(3)
-    a = outer(bent.z_i, bent.y_j) - outer(bent.y_i, bent.z_j)
-    same = torque * (0.25 * (a + np.swapaxes(a, -1, -2)) - tau)
-    other = torque * (tau - 0.5 * np.swapaxes(a, -1, -2))
-    k[..., TI, TI] += same
-    k[..., TJ, TJ] += same
-    k[..., TI, TJ] += other
-    k[..., TJ, TI] += np.swapaxes(other, -1, -2)
-
-
-def _spread(k: Array) -> Array:
-    """From (d, theta_i, theta_j) to (u_i, theta_i, u_j, theta_j)."""
-    out = np.empty((*k.shape[:-2], 12, 12))
-    ui, ri, uj, rj = slice(0, 3), slice(3, 6), slice(6, 9), slice(9, 12)
-    out[..., ui, ui] = out[..., uj, uj] = k[..., D, D]
-    out[..., ui, uj] = out[..., uj, ui] = -k[..., D, D]
-    for end, rows in ((ri, TI), (rj, TJ)):
-        out[..., end, ui] = -k[..., rows, D]
-        out[..., end, uj] = k[..., rows, D]
-        out[..., ui, end] = -k[..., D, rows]
-        out[..., uj, end] = k[..., D, rows]
-    out[..., ri, ri], out[..., rj, rj] = k[..., TI, TI], k[..., TJ, TJ]
-    out[..., ri, rj], out[..., rj, ri] = k[..., TI, TJ], k[..., TJ, TI]
+def _turning_block(same: Array, per: Array, s: Array, kcb: Array, cb: Array, kca: Array, ca: Array, v: Array, e: Array, less: Array) -> Array:
+    half = outer(0.5 * v, e)
+    out: Array = same + outer(per * s, s) + outer(kcb, cb) + outer(kca, ca) + half + flipped(half)
+    add_diagonal(out, -less)
     return out
 
 
+def hessian(rods: Rods, bent: Bent, axial: Array) -> Array:
+    """(case, element, 12, 12): the same blocks as one matrix by (u_i, theta_i, u_j, theta_j)."""
+    ii, jj, ji = (np.moveaxis(b, (3, 2), (0, 1)) for b in blocks(rods, bent, axial))
+    return np.concatenate([np.concatenate([ii, np.swapaxes(ji, -1, -2)], axis=-1), np.concatenate([ji, jj], axis=-1)], axis=-2)
+
+
 def predicted_axial(rods: Rods, bent: Bent, step: Array) -> Array:
-    """Axial force [N] after a step (case, element, 12), to first order."""
-    nine = np.concatenate([step[..., 6:9] - step[..., 0:3], step[..., 3:6], step[..., 9:12]], axis=-1)
-    change: Array = np.einsum("...k,...k->...", bent.stretch_row, nine)
-    return bent.axial + rods.EA / rods.h * change
+    """Axial force (case, element) [N] after a step (case, element, 12), to first order."""
+    s = first(step)
+    change = dot(bent.stretch[0], s[6:9] - s[0:3]) + dot(bent.stretch[1], s[3:6]) + dot(bent.stretch[2], s[9:12])
+    return np.asarray((bent.force[0] + (rods.EA / rods.h)[:, None] * change).T)

@@ -20,9 +20,9 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import band, beam, cable, joint
+from guys import band, beam, cable, columns, joint
 from guys.loads import LoadCases
-from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, outer, skew, turn, turned
+from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, turn, turned
 from guys.structure import Points, Structure
 
 Index = NDArray[np.int64]
@@ -203,34 +203,28 @@ class Problem:
     ) -> Array:  # fmt: skip
         s = self.structure
         axial = np.where(np.isnan(state.axial), bent.axial, state.axial)
-        h = beam.hessian(s.elements.rods, bent, axial)
-        parts = [h[..., :6, :6], h[..., 6:, 6:], h[..., 6:, :6], *self._cable_blocks(hanging, *arm), *_joint_blocks(holding, s.joints)]
+        parts = [*beam.blocks(s.elements.rods, bent, axial), *self._cable_blocks(hanging, *arm), *_joint_blocks(holding, s.joints)]
         blocks = band.add_up(self.pattern, parts)
-        blocks[:, : s.nodes, 3:, 3:] -= dyad_curvature(dyad)
+        blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(dyad))
         if spring.any():
-            blocks[:, s.anchor, :3, :3] += spring[:, None, None] * np.eye(3)
+            for k in range(3):
+                blocks[k, k, s.anchor] += spring[:, None]
         return band.to_band(self.pattern, band.fold(self.pattern, blocks, gradient, arms))
 
     def _cable_blocks(self, hanging: cable.Hanging, arm_a: Array, arm_b: Array) -> tuple[Array, Array, Array]:
-        """(case, cable, 6, 6) at A, at B, and between them with the higher node's rows."""
-        s = self.structure
-        present = self.loads.present[..., None]
-        k = hanging.stiffness * present[..., None]
-        sides = []
-        for arm, force in ((arm_a, -hanging.at_a * present), (arm_b, hanging.at_b * present)):
-            passed = np.zeros((*k.shape[:2], 6, 3))
-            passed[..., :3, :] = np.eye(3)
-            passed[..., 3:, :] = skew(arm)
-            block = passed @ k @ np.swapaxes(passed, -1, -2)
-            block[..., 3:, 3:] += dyad_curvature(outer(arm, force))
-            sides.append((passed, block))
-        (to_a, at_a), (to_b, at_b) = sides
-        between = -to_a @ k @ np.swapaxes(to_b, -1, -2)
-        flip = s.cables.a.node < s.cables.b.node
-        between[:, flip] = np.swapaxes(between[:, flip], -1, -2)
-        same = s.cables.a.node == s.cables.b.node
-        between[:, same] += np.swapaxes(between[:, same], -1, -2)
-        return at_a, at_b, between
+        """(6, 6, cable, case) at B; and, where A is not held, at A and between them with the higher node's rows."""
+        s, present = self.structure, self.loads.present
+        k = columns.first(hanging.stiffness) * present.T
+        loose = s.loose
+        at_b = _passed_on(k, columns.first(arm_b), columns.first(hanging.at_b) * present.T)
+        k, arm_a, arm_b = k[:, :, loose], columns.first(arm_a[:, loose]), columns.first(arm_b[:, loose])
+        at_a = _passed_on(k, arm_a, -columns.first(hanging.at_a[:, loose]) * present[:, loose].T)
+        turned_b = columns.flipped(columns.cross(arm_b, k))
+        between = -columns.block(k, columns.cross(arm_a, k), turned_b, columns.cross(arm_a, turned_b))
+        a, b = s.cables.a.node[loose], s.cables.b.node[loose]
+        between[:, :, a < b] = columns.flipped(between[:, :, a < b])
+        between[:, :, a == b] += columns.flipped(between[:, :, a == b])
+        return at_b, at_a, between
 
     def whole_step(self, state: State, step: Array) -> Array:
         """(case, node, 6) of a step (case, unknown), riding nodes moved with their carriers."""
@@ -292,20 +286,29 @@ class Problem:
 def pattern_of(structure: Structure) -> band.Pattern:
     """The block pattern of a structure, contributions in the order `Problem._tangent` gives them."""
     s = structure
-    a, b = s.cables.a.node, s.cables.b.node
+    a, b = s.cables.a.node[s.loose], s.cables.b.node[s.loose]
     m, n = s.joints.carrier_node, s.joints.spar_node
-    rows = [s.elements.i, s.elements.j, s.elements.j, a, b, np.maximum(a, b), m, n, np.maximum(m, n)]
-    columns = [s.elements.i, s.elements.j, s.elements.i, a, b, np.minimum(a, b), m, n, np.minimum(m, n)]
-    return band.lay_out(rows, columns, s.held, s.rides, s.frames)
+    rows = [s.elements.i, s.elements.j, s.elements.j, s.cables.b.node, a, np.maximum(a, b), m, n, np.maximum(m, n)]
+    others = [s.elements.i, s.elements.j, s.elements.i, s.cables.b.node, a, np.minimum(a, b), m, n, np.minimum(m, n)]
+    return band.lay_out(rows, others, s.held, s.rides, s.frames)
+
+
+def _passed_on(k: Array, arm: Array, force: Array) -> Array:
+    """What a point's stiffness (3, 3, ...) and force gradient (3, ...) are at its node, through a turned arm (3, ...): (6, 6, ...)."""
+    tu = columns.cross(arm, k)
+    half = columns.outer(0.5 * arm, force)
+    tt = columns.cross(arm, columns.flipped(tu)) + half + columns.flipped(half)
+    columns.add_diagonal(tt, -columns.dot(arm, force))
+    return columns.block(k, tu, columns.flipped(tu), tt)
 
 
 def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, Array]:
-    cases, n = holding.shape[:2]
-    out = np.zeros((3, cases, n, 6, 6))
-    out[0, ..., 3:, 3:] = holding[:, :, 0, 0]
-    out[1, ..., 3:, 3:] = holding[:, :, 1, 1]
+    """Hessians (case, joint, 2, 2, 3, 3) of joints as blocks (6, 6, joint, case): at the carrier, at the spar, between them."""
+    h = holding.transpose(2, 3, 4, 5, 1, 0)
     carrier_first = joints.carrier_node >= joints.spar_node
-    out[2, ..., 3:, 3:] = np.where(carrier_first[:, None, None], holding[:, :, 0, 1], holding[:, :, 1, 0])
+    between = np.where(carrier_first[:, None], h[0, 1], h[1, 0])
+    out = np.zeros((3, 6, 6, *h.shape[4:]))
+    out[:, 3:, 3:] = h[0, 0], h[1, 1], between
     return out[0], out[1], out[2]
 
 

@@ -21,7 +21,7 @@ Array = NDArray[np.float64]
 
 MERGE = 1e-3
 """Stations nearer than this share of the spar's length share a node."""
-ELEMENTS = 6
+ELEMENTS = 4
 """Elements in a span."""
 
 

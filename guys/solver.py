@@ -29,7 +29,7 @@ from guys import band
 from guys.equilibrium import Index, Problem, State
 from guys.rotation import Array
 
-TARGET = 1e-11
+TARGET = 5e-11
 """Out-of-balance at which a case is done."""
 ENOUGH = 1e-9
 """Out-of-balance a case must reach to count as converged."""

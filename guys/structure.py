@@ -14,6 +14,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -144,6 +145,11 @@ class Structure:
     @property
     def nodes(self) -> int:
         return len(self.position)
+
+    @cached_property
+    def loose(self) -> Index:
+        """Cables whose `to` end is not held in every direction: those between spars, and to anchors that give."""
+        return np.flatnonzero(~self.held[self.cables.a.node].all(axis=1))
 
 
 def axis_of(spar: Spar) -> Array:
