@@ -87,30 +87,38 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
     Valid for any length > 0 and any chord not exactly in line with the load while slack.
     """
     chord = _off_line(chord, load)
-    tension = _begin(chord, length, EA, load, warm)
-    flexibility = np.empty((len(length), 3, 3))
+    tension, gap, flexibility, ends = _begin(chord, length, EA, load, warm)
     small = ROUNDING * (length + np.sqrt(dot(chord, chord)))
-    open_ = np.arange(len(length))
+    open_, f = np.arange(len(length)), flexibility
     for _ in range(LARGEST_ROUNDS):
-        gap, f, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
-        flexibility[open_] = f
         change = -_solve3(f, gap)
         size = np.sqrt(dot(change, change))
         tension[open_] += _damped(change, size, tension[open_])[:, None] * change
         open_ = open_[(size > CLOSED * ends) & (np.sqrt(dot(gap, gap)) > small[open_])]
         if len(open_) == 0:
             break
+        gap, f, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
+        flexibility[open_] = f
     return Hanging(tension, tension + load / 2, tension - load / 2, _invert3(flexibility))
 
 
-def _begin(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None) -> Array:
-    """Tensions to start from: the warm ones where they serve."""
-    if warm is None:
-        return start(chord, length, EA, load)
-    fresh = np.flatnonzero(~_serves(chord, length, EA, load, warm))
-    tension = warm.copy()
-    tension[fresh] = start(chord[fresh], length[fresh], EA[fresh], load[fresh])
-    return tension
+def _begin(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None) -> tuple[Array, Array, Array, Array]:
+    """Tensions to start from, the warm ones where they serve, and what `_miss` says of them."""
+    if warm is None or not warm.any():
+        tension = start(chord, length, EA, load)
+        return tension, *_miss(chord, length, EA, load, tension)
+    known = (dot(warm, warm) > 0)[:, None]
+    tension = np.where(known, warm, load + chord * (np.sqrt(dot(load, load)) / length)[:, None])
+    gap, flexibility, ends = _miss(chord, length, EA, load, tension)
+    change = _solve3(flexibility, gap)
+    reach = length + np.sqrt(dot(chord, chord))
+    serves = known[:, 0] & (dot(gap, gap) < (NEARLY_CHORD * reach) ** 2) & (dot(change, change) < TRUST**2 * dot(tension, tension))
+    fresh = np.flatnonzero(~serves)
+    if len(fresh):
+        some = chord[fresh], length[fresh], EA[fresh], load[fresh]
+        tension[fresh] = start(*some)
+        gap[fresh], flexibility[fresh], ends[fresh] = _miss(*some, tension[fresh])
+    return tension, gap, flexibility, ends
 
 
 def _damped(change: Array, size: Array, tension: Array) -> Array:
@@ -131,19 +139,6 @@ def _off_line(chord: Array, load: Array) -> Array:
     square = unit - (dot(unit, load) / w2)[:, None] * load
     square = square / np.sqrt(dot(square, square))[:, None]
     return np.where(short[:, None], chord + floor[:, None] * square, chord)
-
-
-def _serves(chord: Array, length: Array, EA: Array, load: Array, warm: Array) -> NDArray[np.bool_]:
-    out = dot(warm, warm) > 0
-    known = np.flatnonzero(out)
-    if len(known) == 0:
-        return np.asarray(out)
-    gap, flexibility, _ = _miss(chord[known], length[known], EA[known], load[known], warm[known])
-    change = _solve3(flexibility, gap)
-    reach = length[known] + np.sqrt(dot(chord[known], chord[known]))
-    near = dot(gap, gap) < (NEARLY_CHORD * reach) ** 2
-    out[known] = near & (dot(change, change) < TRUST**2 * dot(warm[known], warm[known]))
-    return np.asarray(out)
 
 
 def _miss(chord: Array, length: Array, EA: Array, load: Array, tension: Array) -> tuple[Array, Array, Array]:

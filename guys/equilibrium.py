@@ -48,16 +48,23 @@ class State:
 
 @dataclass(frozen=True)
 class Evaluation:
-    """Everything found at one state.  gradient (case, node, 6) before folding: net force of what acts on each node itself, joints and
-    folds left out of `structural` (case, node, 6); residual (case, unknown); error (case,) out-of-balance; reference (case,) [N]."""
+    """What acts at one state.
+
+    structural (case, node, 6) : net force and moment on each node of all but springs, joints and what rides on it; gradient : with springs
+    and joints; residual (case, unknown); error (case,) out-of-balance; reference (case,) [N]; the rest is kept for the tangent
+    """
 
     bent: beam.Bent
     hanging: cable.Hanging
+    arm_a: Array
+    arm_b: Array
+    dyad: Array
+    holding: Array
     structural: Array
+    gradient: Array
     residual: Array
     error: Array
     reference: Array
-    band: Array | None
 
 
 @dataclass(frozen=True)
@@ -152,8 +159,8 @@ class Problem:
         """(case, cable, 3) [N] whole load of every cable."""
         return np.asarray(self.loads.cable_load * np.broadcast_to(self.length, self.loads.present.shape)[..., None])
 
-    def evaluate(self, state: State, tangent: bool = True) -> Evaluation:
-        """Residual and, if asked, the tangent as a lower band."""
+    def evaluate(self, state: State) -> Evaluation:
+        """Net forces and moments of every case."""
         s = self.structure
         bent = self._bend(state)
         arm_a, arm_b, chord = self.chords(state)
@@ -168,20 +175,21 @@ class Problem:
         dyad = self.loads.dyad + state.psi @ self.loads.dyad
         gradient[..., :3] -= self.loads.force
         gradient[..., 3:] -= dyad_moment(dyad)
-        give = np.isfinite(s.give)
-        spring = np.where(give, s.give, 0.0)
         structural = gradient.copy()
-        gradient[:, s.anchor, :3] += spring[:, None] * state.u[:, s.anchor]
+        gradient[:, s.anchor, :3] += self._springs[:, None] * state.u[:, s.anchor]
         held, holding = joint.resist(s.joints, state.psi)
         for k, (m, n) in enumerate(zip(s.joints.carrier_node, s.joints.spar_node, strict=True)):
             gradient[:, m, 3:] += held[:, k, 0]
             gradient[:, n, 3:] += held[:, k, 1]
-        arms = self.arms(state)
-        residual = band.unknowns_of(self.pattern, gradient, arms)
+        residual = band.unknowns_of(self.pattern, gradient, self.arms(state))
         reference = self._reference(hanging)
         error = np.max(np.abs(residual) / self.lever, axis=1, initial=0.0) / reference
-        k_band = self._tangent(state, bent, hanging, (arm_a, arm_b), dyad, spring, holding, gradient, arms) if tangent else None
-        return Evaluation(bent, hanging, structural, residual, error, reference, k_band)
+        return Evaluation(bent, hanging, arm_a, arm_b, dyad, holding, structural, gradient, residual, error, reference)
+
+    @cached_property
+    def _springs(self) -> Array:
+        """(anchor,) [N/m], 0 where an anchor does not give (its node is held)."""
+        return np.where(np.isfinite(self.structure.give), self.structure.give, 0.0)
 
     def _reference(self, hanging: cable.Hanging) -> Array:
         greatest = np.maximum(np.linalg.norm(hanging.at_a, axis=-1), np.linalg.norm(hanging.at_b, axis=-1)) * self.loads.present
@@ -197,23 +205,22 @@ class Problem:
         at_i, at_j = moved[:, e.i], moved[:, e.j]
         return beam.bend(e.rods, d, at_i[..., 0], at_i[..., 1], at_j[..., 0], at_j[..., 1], thermal)
 
-    def _tangent(
-        self, state: State, bent: beam.Bent, hanging: cable.Hanging, arm: tuple[Array, Array], dyad: Array, spring: Array, holding: Array,
-        gradient: Array, arms: Array,
-    ) -> Array:  # fmt: skip
+    def tangent(self, state: State, found: Evaluation) -> Array:
+        """The tangent at an evaluated state as a lower band (case, unknown, width), with the axial forces `state.axial` asks for."""
         s = self.structure
-        axial = np.where(np.isnan(state.axial), bent.axial, state.axial)
-        parts = [*beam.blocks(s.elements.rods, bent, axial), *self._cable_blocks(hanging, *arm), *_joint_blocks(holding, s.joints)]
-        blocks = band.add_up(self.pattern, parts)
-        blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(dyad))
-        if spring.any():
+        axial = np.where(np.isnan(state.axial), found.bent.axial, state.axial)
+        beams = beam.blocks(s.elements.rods, found.bent, axial)
+        blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)])
+        blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(found.dyad))
+        if self._springs.any():
             for k in range(3):
-                blocks[k, k, s.anchor] += spring[:, None]
-        return band.to_band(self.pattern, band.fold(self.pattern, blocks, gradient, arms))
+                blocks[k, k, s.anchor] += self._springs[:, None]
+        return band.to_band(self.pattern, band.fold(self.pattern, blocks, found.gradient, self.arms(state)))
 
-    def _cable_blocks(self, hanging: cable.Hanging, arm_a: Array, arm_b: Array) -> tuple[Array, Array, Array]:
+    def _cable_blocks(self, found: Evaluation) -> tuple[Array, Array, Array]:
         """(6, 6, cable, case) at B; and, where A is not held, at A and between them with the higher node's rows."""
         s, present = self.structure, self.loads.present
+        hanging, arm_a, arm_b = found.hanging, found.arm_a, found.arm_b
         k = columns.first(hanging.stiffness) * present.T
         loose = s.loose
         at_b = _passed_on(k, columns.first(arm_b), columns.first(hanging.at_b) * present.T)

@@ -177,8 +177,7 @@ class _Rates:
 def _rates(problem: Problem, state: State, asked: _Asked) -> _Rates:
     """Newton's blocks with the nodes eliminated; the tangent may be indefinite on the way, so it is solved densely."""
     found = problem.evaluate(state)
-    assert found.band is not None
-    k_full = band.dense(found.band[0])
+    k_full = band.dense(problem.tangent(state, found)[0])
     k_full[np.diag_indices_from(k_full)] += stability.ZERO * problem.mass
     pushed, direct = _by_length(problem, state, found, asked)
     both = -np.linalg.solve(k_full, np.column_stack([pushed, found.residual[0]]))

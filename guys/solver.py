@@ -86,8 +86,7 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
             state.put(open_[done], replace(here, tension=found.hanging.tension).take(np.flatnonzero(done)))
         if done.all():
             break
-        assert found.band is not None
-        step, seen.damping[open_] = damped_step(found.band, found.residual, part.mass, seen.damping[open_])
+        step, seen.damping[open_] = damped_step(part.tangent(here, found), found.residual, part.mass, seen.damping[open_])
         here = part.advance(here, found, part.limited(here, step, TURN_CAP, MOVE_CAP * part.structure.height))
         seen.rounds[open_[~done]] += 1
         if done.any():

@@ -99,9 +99,8 @@ def classify(problem: Problem, state: State) -> Index:
 
 def tangent(problem: Problem, state: State) -> Array:
     """The tangent band with the axial forces of the present position."""
-    found = problem.evaluate(replace(state, axial=np.full_like(state.axial, np.nan)))
-    assert found.band is not None
-    return found.band
+    present = replace(state, axial=np.full_like(state.axial, np.nan))
+    return problem.tangent(present, problem.evaluate(present))
 
 
 def modes(problem: Problem, state: State, count: int = 4) -> Mode:
@@ -168,7 +167,7 @@ def _push(problem: Problem, judged: Judged, case: int) -> None:
     for amplitude in PUSHES:
         sway = np.array([amplitude, -amplitude])[:, None, None] * problem.structure.height * shape
         step = band.pick(problem.pattern, sway)
-        out = solver.solve(pair, pair.advance(both, pair.evaluate(both, tangent=False), step), turned_over, PATH_ROUNDS)
+        out = solver.solve(pair, pair.advance(both, pair.evaluate(both), step), turned_over, PATH_ROUNDS)
         good = out.converged & ~out.stopped
         good[good] = classify(pair.take(np.flatnonzero(good)), out.state.take(np.flatnonzero(good))) <= NEUTRAL
         good &= turn_between(pair, out.state, both) < 2 * FAR

@@ -54,12 +54,11 @@ def resolve(problem: Problem, answer: State) -> Resolved:
         return State(moved.u, moved.psi, answer.tension, np.full_like(answer.axial, np.nan))
 
     def residual(y: Array) -> Array:
-        return np.asarray(solve_triangular(lower, problem.evaluate(state_at(y), tangent=False).residual[0], lower=True))
+        return np.asarray(solve_triangular(lower, problem.evaluate(state_at(y)).residual[0], lower=True))
 
     def jacobian(y: Array) -> Array:
-        k_band = problem.evaluate(state_at(y)).band
-        assert k_band is not None
-        half = solve_triangular(lower, band.dense(k_band[0]), lower=True)
+        here = state_at(y)
+        half = solve_triangular(lower, band.dense(problem.tangent(here, problem.evaluate(here))[0]), lower=True)
         return np.asarray(solve_triangular(lower, half.T, lower=True).T)
 
     out = least_squares(residual, start, jac=jacobian, method="lm", x_scale=1.0, ftol=1e-15, xtol=1e-12, gtol=1e-15, max_nfev=EVALUATIONS)
@@ -78,7 +77,7 @@ def _beside(problem: Problem, lower: Array) -> Array:
 
 
 def _compare(problem: Problem, answer: State, again: State) -> Resolved:
-    first, second = problem.evaluate(answer, tangent=False), problem.evaluate(again, tangent=False)
+    first, second = problem.evaluate(answer), problem.evaluate(again)
     gap = np.linalg.norm(first.hanging.tension - second.hanging.tension, axis=-1) * problem.loads.present
     moved = np.abs(answer.u - again.u).max() / problem.structure.height
     difference = float(gap.max(initial=0.0) / first.reference[0])

@@ -78,7 +78,7 @@ def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine
 
 def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
     """What is asked for, from judged states."""
-    found = problem.evaluate(judged.state, tangent=False)
+    found = problem.evaluate(judged.state)
     forces = recovery.forces(problem, judged.state, found)
     gone = np.flatnonzero(judged.code >= stability.NONE)
     mirrored = sorted(judged.mirror)
@@ -86,7 +86,7 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
     if mirrored:
         part = problem.take(np.array(mirrored))
         other = State(*(np.concatenate([getattr(judged.mirror[k], f) for k in mirrored]) for f in ("u", "psi", "tension", "axial")))
-        mirror = recovery.forces(part, other, part.evaluate(other, tangent=False))
+        mirror = recovery.forces(part, other, part.evaluate(other))
     balance = recovery.whole_balance(problem, judged.state, found, forces)
     balance[gone] = np.nan
     spars = recovery.lines(problem, judged.state, found) if detail else ()
@@ -186,7 +186,7 @@ def _along_lowest_mode(one: Problem, state: State) -> State:
     if np.sum(shape[0, :, :2] * state.u[0, :, :2]) < 0:
         shape = -shape
     step = band.pick(one.pattern, 0.01 * one.structure.height * shape)
-    return one.advance(state, one.evaluate(state, tangent=False), step)
+    return one.advance(state, one.evaluate(state), step)
 
 
 def _note(problem: Problem, judged: stability.Judged, k: int) -> str | None:

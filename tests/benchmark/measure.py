@@ -30,7 +30,7 @@ PARTS = {
     "cables: catenaries to their chords": ("guys.equilibrium:Problem.pull",),
     "cables: blocks of the tangent": ("guys.equilibrium:Problem._cable_blocks",),
     "beams: deformations and their derivatives": ("guys.equilibrium:Problem._bend", "guys.beam:gradient"),
-    "beams: blocks of the tangent": ("guys.beam:hessian",),
+    "beams: blocks of the tangent": ("guys.beam:blocks",),
     "blocks summed and laid into the band": ("guys.band:add_up", "guys.band:to_band", "guys.band:fold", "guys.band:fold_gradient"),
     "banded factorisation": ("guys.band:factor",),
     "banded solution": ("guys.band:solve",),
@@ -128,7 +128,7 @@ def figures(text: str, repeats: int, directions: int | None = None) -> Figures:
 
 def tensions(mast: Prepared, out: solver.Outcome) -> Vector:
     """(case, cable, end) [N]."""
-    hanging = mast.problem.evaluate(out.state, tangent=False).hanging
+    hanging = mast.problem.evaluate(out.state).hanging
     return np.stack([np.linalg.norm(hanging.at_a, axis=-1), np.linalg.norm(hanging.at_b, axis=-1)], axis=-1)
 
 
