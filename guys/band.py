@@ -246,7 +246,7 @@ def to_band(pattern: Pattern, blocks: Array) -> Array:
             if column == node:
                 blocks[:, 3:, at] = np.tensordot(blocks[:, 3:, at], axes, axes=(1, 1)).swapaxes(1, 2)
     cases, n, width = blocks.shape[3], *pattern.source.shape
-    flat = blocks.reshape(-1, cases)[pattern.source.reshape(-1)]
+    flat = blocks.reshape(36 * blocks.shape[2], cases)[pattern.source.reshape(-1)]
     return np.ascontiguousarray(flat.T).reshape(cases, n, width)
 
 
