@@ -1,0 +1,1 @@
+"""Results written to files for other programs to read."""
