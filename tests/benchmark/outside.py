@@ -36,7 +36,7 @@ class Way:
 
 
 WAYS = (
-    Way(1, 0, True), Way(1, 0, False), Way(2, 0, True), Way(1, 8, True), Way(1, 16, True), Way(2, 16, True), Way(16, 0, True),
+    Way(1, 0, True), Way(1, 0, False), Way(2, 0, True), Way(1, 8, True), Way(1, 16, True), Way(2, 16, True), Way(8, 0, True),
 )  # fmt: skip
 
 
