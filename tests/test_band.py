@@ -75,6 +75,12 @@ def frame() -> Frames:
     return Frames((0,), (exp_minus_identity(np.array([0.3, -0.2, 0.5])) + np.eye(3))[None])
 
 
+def folded(pattern: Pattern, contributions: np.ndarray, gradient: np.ndarray, arms: np.ndarray) -> np.ndarray:
+    """The band (case, unknown, width) of contributions (case, contribution, 6, 6)."""
+    parts = [contributions[:, p].transpose(2, 3, 1, 0) for p in PARTS]
+    return band.to_band(pattern, band.fold(pattern, band.add_up(pattern, parts), gradient, arms))
+
+
 @pytest.mark.parametrize("name", RIDES)
 def test_folded_band_is_the_constrained_full_matrix(name: str, rng: np.random.Generator) -> None:
     rides, cases = RIDES[name], 3
@@ -82,7 +88,7 @@ def test_folded_band_is_the_constrained_full_matrix(name: str, rng: np.random.Ge
     contributions = blocks(rng, cases)
     arms = rng.normal(size=(cases, len(rides.node), 3))
     gradient = np.zeros((cases, NODES, 6))
-    got = band.to_band(pattern, band.fold(pattern, band.add_up(pattern, [contributions[:, p] for p in PARTS]), gradient, arms))
+    got = folded(pattern, contributions, gradient, arms)
     for c, whole in enumerate(full(contributions)):
         t = constraint(pattern, arms[c])
         expected = t.T @ whole @ t
@@ -103,8 +109,7 @@ def test_force_on_a_riding_node_curves_the_energy_of_its_carrier(rng: np.random.
     rides = RIDES["a heel on a heeled spar"]
     pattern = laid_out(rides)
     gradient, arms = rng.normal(size=(1, NODES, 6)), rng.normal(size=(1, 2, 3))
-    none = band.add_up(pattern, [np.zeros((1, len(ROWS[p]), 6, 6)) for p in PARTS])
-    got = band.dense(band.to_band(pattern, band.fold(pattern, none, gradient, arms))[0])
+    got = band.dense(folded(pattern, np.zeros((1, len(ROWS), 6, 6)), gradient, arms)[0])
     on_heel = gradient[0, 3, :3]
     expected = {4: dyad_curvature(outer(arms[0, 0], gradient[0, 5, :3])), 2: dyad_curvature(outer(arms[0, 1], on_heel))}
     for node, curvature in expected.items():
