@@ -14,7 +14,7 @@ The tension at the anchor against the unstressed length turns back for very slac
 weight): the tauter branch is taken, and a target below the least cannot be met.
 
 `plumb`: tensions are targets.  Those nearest (least squares of relative differences, none below `LEAST_SHARE` of its target) are found
-among all that leave every spar where cables hold it as drawn, i.e. without a displacement square to its axis.
+that leave every spar where cables hold it as drawn, i.e. without a displacement square to its axis.
 """
 
 from __future__ import annotations
@@ -48,8 +48,10 @@ LEAST_SHARE = 0.1
 """Least tension of a plumb setting, of its target."""
 ZOOMS = 5
 """Times the bracket of a first length is searched again, twenty times finer."""
-SAME_DIRECTION = 1e-7
-"""Singular values below this share of the greatest are self-stress: they leave the spars where they are."""
+AS_DRAWN = 1e-5
+"""Displacement, of the height, that weighs as much as a tension off its target by all of it."""
+PLUMB_TURN = 0.01
+"""[rad] greatest turn in one round of a plumb setting, which stays close to the drawing."""
 
 
 @dataclass(frozen=True)
@@ -341,13 +343,13 @@ def _plumb(problem: Problem, state: State, asked: _Asked) -> tuple[Problem, Stat
     for _ in range(ROUNDS):
         rates = _rates(problem, state, asked)
         away, slope, settled = _away(problem, state, rates)
-        change = _nearest(rates, asked, (away + settled) / height, slope / height)
+        change = _nearest(rates, (away + settled) / height, slope / height)
         if np.max(np.abs(change)) < PLACED and rates.error < solver.ENOUGH:
             break
-        change = np.clip(change, -0.05, 0.05)
         step = (rates.settle + rates.step @ change)[None]
-        state = problem.advance(state, rates.found, problem.limited(state, step, solver.TURN_CAP, solver.MOVE_CAP * height))
-        problem = _with_change(problem, change, asked)
+        share = _share(problem.limited(state, step, PLUMB_TURN, PLUMB_TURN * height), step)
+        state = problem.advance(state, rates.found, share * step)
+        problem = _with_change(problem, share * change, asked)
     return problem, state
 
 
@@ -367,32 +369,28 @@ def _away(problem: Problem, state: State, rates: _Rates) -> tuple[Array, Array, 
     return np.concatenate(value), by_step[:, :-1], by_step[:, -1]
 
 
-def _nearest(rates: _Rates, asked: _Asked, away: Array, slope: Array) -> Array:
-    """Change of ln L0 that undoes the displacements and, among such, brings the tensions nearest their targets."""
-    left, size, right = np.linalg.svd(slope)
-    kept = int(np.sum(size > SAME_DIRECTION * max(size[0], 1e-300)))
-    undo = -right[:kept].T @ ((left[:, :kept].T @ away) / size[:kept])
-    free = right[kept:].T
+def _nearest(rates: _Rates, away: Array, slope: Array) -> Array:
+    """Change of ln L0 that brings the tensions nearest their targets with the displacements undone.
+
+    One least squares of relative differences from the targets and of displacements (of the height) over `AS_DRAWN`: displacements that
+    tensions can undo come out at a thousandth of that and less, those they could undo only by multiples of themselves stay.
+    """
     by_length = rates.measure[:, None] * rates.rate
-    after = rates.measure * (1 + rates.drift) + by_length @ undo
-    along = by_length @ free
-    if free.shape[1] == 0:
-        return np.asarray(undo)
-    amount = _bounded(along, 1 - after, LEAST_SHARE - after)
-    return np.asarray(undo + free @ amount)
+    now = rates.measure * (1 + rates.drift)
+    return _bounded(np.concatenate([by_length, slope / AS_DRAWN]), np.concatenate([1 - now, -away / AS_DRAWN]), by_length, LEAST_SHARE - now)
 
 
-def _bounded(along: Array, wanted: Array, least: Array) -> Array:
-    """Least squares |A x - wanted| with A x >= least."""
-    amount = np.linalg.lstsq(along, wanted, rcond=1e-12)[0]
-    if (along @ amount >= least - 1e-12).all():
-        return np.asarray(amount)
+def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:
+    """Least squares |a x - wanted| with g x >= least."""
+    x = np.linalg.lstsq(a, wanted, rcond=1e-14)[0]
+    if (g @ x >= least - 1e-9).all():
+        return np.asarray(x)
     from scipy.optimize import minimize
 
-    scale = np.linalg.norm(along, axis=0)
-    a = along / scale
+    scale = np.linalg.norm(a, axis=0)
+    a, g, size = a / scale, g / scale, 1 / max(float(wanted @ wanted), 1e-300)
     out = minimize(
-        lambda x: 0.5 * np.sum((a @ x - wanted) ** 2), amount * scale, jac=lambda x: a.T @ (a @ x - wanted), method="SLSQP",
-        constraints={"type": "ineq", "fun": lambda x: a @ x - least, "jac": lambda x: a}, options={"ftol": 1e-16, "maxiter": 200},
+        lambda x: 0.5 * size * np.sum((a @ x - wanted) ** 2), x * scale, jac=lambda x: size * (a.T @ (a @ x - wanted)), method="SLSQP",
+        constraints={"type": "ineq", "fun": lambda x: g @ x - least, "jac": lambda x: g}, options={"ftol": 1e-15, "maxiter": 300},
     )  # fmt: skip
     return np.asarray(out.x / scale)
