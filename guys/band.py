@@ -50,7 +50,8 @@ class Pattern:
 
     pair : (pair, 2) row and column node, row >= column; of : {(row, column): index}, those of (n, n) first and in order
     plan : for every part of the contributions, selections of it and of the pairs they add to, no pair twice in one
-    free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry in
+    free : (unknown, 2) node and direction (0..5) of every unknown, in band order; source : (unknown, width) flat index of each band entry
+    in
     the blocks (6, 6, pair + 1), the last pair being zero
     """
 
@@ -65,6 +66,7 @@ class Pattern:
 
     @property
     def unknowns(self) -> int:
+        """Number of unknowns of a case."""
         return len(self.free)
 
 
@@ -113,8 +115,8 @@ def _with_folds(pairs: set[tuple[int, int]], nodes: int, rides: Rides) -> set[tu
 
 def _number(pair: Index, unknown: NDArray[np.bool_]) -> Index:
     nodes = len(unknown)
-    moving = unknown.any(axis=1)
-    pair = pair[moving[pair].all(axis=1)]
+    moving = np.asarray(unknown.any(axis=1))
+    pair = pair[np.all(moving[pair], axis=1)]
     graph = coo_array((np.ones(len(pair)), (pair[:, 0], pair[:, 1])), shape=(nodes, nodes)).tocsr()
     order = reverse_cuthill_mckee((graph + graph.T).tocsr(), symmetric_mode=True)
     return np.array([(n, k) for n in order for k in range(6) if unknown[n, k]], dtype=np.int64).reshape(-1, 2)

@@ -22,7 +22,8 @@ cancels: the residual keeps 1e-11 of the acting forces.
 The Hessian may be built with an axial force predicted from the last step instead of the present one: a trial step that turns a
 member also stretches it in second order, and that spurious tension would spoil the geometric stiffness.
 
-With c_b1 = y_i x e, j_b1 = (y_i - b1 e)/l and so on for the other slopes, s = (s_d, s_i, s_j) the gradient of u_e, w that of tau by theta_i,
+With c_b1 = y_i x e, j_b1 = (y_i - b1 e)/l and so on for the other slopes, s = (s_d, s_i, s_j) the gradient of u_e, w that of tau by
+theta_i,
 v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and cross terms of W_pp in b (a), the blocks are
 
     dd    EA/h s_d s_d^T + j_b1 P1^T + j_b2 P2^T + (the same in a) + N/l (I - e e^T) - (e v^T + v e^T + (e.v)(I - 3 e e^T))/l^2
@@ -89,7 +90,7 @@ class Bent:
     @property
     def axial(self) -> Array:
         """Axial force (case, element) [N]."""
-        return self.force[0].T
+        return np.asarray(self.force[0].T)
 
 
 def _fixed(v: Array) -> Array:
@@ -188,14 +189,17 @@ def blocks(rods: Rods, bent: Bent, axial: Array) -> tuple[Array, Array, Array]:
     stiff = outer((rods.GJ / rods.h)[:, None] * bent.twist, bent.twist)
     same = stiff + 0.25 * (a + flipped(a))
     ii, jj = (_turning_block(same, per, *end) for end in (
-        (s_i, k_b * cb1, cb1, k_a * ca1, ca1, v_i, e, ev_i + torque * tau), (s_j, k_b * cb2, cb2, k_a * ca2, ca2, v_j, e, ev_j + torque * tau)
+        (s_i, k_b * cb1, cb1, k_a * ca1, ca1, v_i, e, ev_i + torque * tau), (s_j, k_b * cb2, cb2, k_a * ca2, ca2, v_j, e, ev_j + torque *
+        tau)
     ))  # fmt: skip
     ji = outer(per * s_j, s_i) + outer(q_b * cb2, cb1) + outer(q_a * ca2, ca1) - stiff - 0.5 * a
     add_diagonal(ji, torque * tau)
     return block(dd, -id_, -flipped(id_), ii), block(dd, jd, flipped(jd), jj), block(-dd, -jd, flipped(id_), ji)
 
 
-def _turning_block(same: Array, per: Array, s: Array, kcb: Array, cb: Array, kca: Array, ca: Array, v: Array, e: Array, less: Array) -> Array:
+def _turning_block(
+    same: Array, per: Array, s: Array, kcb: Array, cb: Array, kca: Array, ca: Array, v: Array, e: Array, less: Array
+) -> Array:
     half = outer(0.5 * v, e)
     out: Array = same + outer(per * s, s) + outer(kcb, cb) + outer(kca, ca) + half + flipped(half)
     add_diagonal(out, -less)

@@ -45,14 +45,18 @@ TRUST = 0.3
 NEARLY_CHORD = 1e-3
 """... and the chord it gives is this close, relative to length plus chord."""
 LEVEL_FLOOR = 1e-12
-"""The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a loop."""
+"""The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a
+loop.
+"""
 TAUT_ABOVE = 1e-9
 """Relative stretch above which a straight cable counts as taut (the contract's rule)."""
 
 
 @dataclass(frozen=True)
 class Hanging:
-    """State of cables (..., ) : `tension` T (..., 3) [N] at mid-length, end tension vectors `at_a`, `at_b`, `stiffness` F^-1 (..., 3, 3) [N/m]."""
+    """State of cables (..., ) : `tension` T (..., 3) [N] at mid-length, end tension vectors `at_a`, `at_b`, `stiffness` F^-1 (..., 3, 3)
+    [N/m].
+    """
 
     tension: Array
     at_a: Array
@@ -76,7 +80,7 @@ def start(chord: Array, length: Array, EA: Array, load: Array) -> Array:
         x = x - f / np.maximum(3 * x * x - 2 * taut * x, 1e-300)
     loose = np.clip(1 - c / length, 0, 1)
     x = np.maximum(x, 1e-3 * np.sqrt(dot(load, load)) * (1 - loose))
-    return x[:, None] * e
+    return np.asarray(x[:, None] * e)
 
 
 def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None = None) -> Hanging:

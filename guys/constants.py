@@ -1,7 +1,8 @@
 """Physical constants, each with its source.
 
 The exact values are definitions: standard gravity (3rd CGPM, 1901), the international yard and pound (agreement of 1959), the
-nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and `tests/test_scenario_reader.py`
+nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and
+`tests/test_scenario_reader.py`
 checks the densities they give against two independent libraries.
 """
 

@@ -24,7 +24,9 @@ from guys.scenario import read_scenario
 from guys.studies.standing import solve
 
 
-def solve_command(file: str, out: str, as_json: bool, units: drawing.Units = "SI", paper: drawing.Paper = "A3", look: float | None = None) -> int:
+def solve_command(
+    file: str, out: str, as_json: bool, units: drawing.Units = "SI", paper: drawing.Paper = "A3", look: float | None = None
+) -> int:
     """`guys solve`: every case of a scenario, written to the directory `out`.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.

@@ -30,7 +30,8 @@ Index = NDArray[np.int64]
 
 @dataclass(frozen=True)
 class State:
-    """u (case, node, 3) [m]; psi (case, node, 3, 3); tension (case, cable, 3) [N] at mid-length (zero: not known); axial (case, element) [N]
+    """u (case, node, 3) [m]; psi (case, node, 3, 3); tension (case, cable, 3) [N] at mid-length (zero: not known); axial (case, element)
+    [N]
     the axial force to build the geometric stiffness with (NaN: that of the present position)."""
 
     u: Array
@@ -39,6 +40,7 @@ class State:
     axial: Array
 
     def take(self, rows: Index) -> State:
+        """The cases `rows`."""
         return State(self.u[rows], self.psi[rows], self.tension[rows], self.axial[rows])
 
     def put(self, rows: Index, other: State) -> None:
@@ -77,10 +79,12 @@ class Problem:
 
     @property
     def cases(self) -> int:
+        """Number of cases."""
         return len(self.loads.lines)
 
     @cached_property
     def pattern(self) -> band.Pattern:
+        """Where the tangent's blocks go."""
         return pattern_of(self.structure)
 
     @cached_property
@@ -114,7 +118,10 @@ class Problem:
         """The unloaded geometry, for every case."""
         s, c = self.structure, self.cases
         return State(
-            np.zeros((c, s.nodes, 3)), np.zeros((c, s.nodes, 3, 3)), np.zeros((c, len(s.cables.EA), 3)), np.full((c, len(s.elements.i)), np.nan)
+            np.zeros((c, s.nodes, 3)),
+            np.zeros((c, s.nodes, 3, 3)),
+            np.zeros((c, len(s.cables.EA), 3)),
+            np.full((c, len(s.elements.i)), np.nan),
         )
 
     def repeat(self, state: State) -> State:
@@ -152,7 +159,9 @@ class Problem:
         else:
             out = cable.hang(flat, length, stiffness, self.cable_total.reshape(-1, 3), warm.reshape(-1, 3))
         shape = (c, k, 3)
-        return cable.Hanging(out.tension.reshape(shape), out.at_a.reshape(shape), out.at_b.reshape(shape), out.stiffness.reshape(c, k, 3, 3))
+        return cable.Hanging(
+            out.tension.reshape(shape), out.at_a.reshape(shape), out.at_b.reshape(shape), out.stiffness.reshape(c, k, 3, 3)
+        )
 
     @cached_property
     def cable_total(self) -> Array:

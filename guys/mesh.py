@@ -13,6 +13,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -52,7 +53,7 @@ def divide(length: float, boundaries: Iterable[float], held: Iterable[float], at
     fixed.sort()
     levels = _thinned([0.0, length, *held], least)
     out = [0.0]
-    for low, high in zip(fixed, fixed[1:], strict=False):
+    for low, high in pairwise(fixed):
         span = _span(levels, 0.5 * (low + high))
         parts = max(1, math.ceil((high - low) / span * elements - 1e-6))
         out += [low + (high - low) * k / parts for k in range(1, parts + 1)]

@@ -127,7 +127,9 @@ def lines(problem: Problem, state: State, found: Evaluation) -> tuple[SparLine, 
         parts = _rigid_sections(problem, state, found, k) if spar.rigid else tuple(x[:, s.elements.spar == k] for x in elastic)
         station, drawn, displacement = _places(problem, state, k)
         force, moment = (p.reshape(p.shape[0], -1, 3) for p in parts)
-        out.append(SparLine(spar.name, station, drawn, s.axes[k], displacement, force[..., 2], moment[..., :2], moment[..., 2], force[..., :2]))
+        out.append(
+            SparLine(spar.name, station, drawn, s.axes[k], displacement, force[..., 2], moment[..., :2], moment[..., 2], force[..., :2])
+        )
     return tuple(out)
 
 
@@ -184,7 +186,11 @@ def _rigid_sections(problem: Problem, state: State, found: Evaluation, k: int) -
     for row in reversed(range(len(mine))):
         low, high = s.pieces.station[mine[row]]
         for h in hung:
-            if high - 1e-9 * s.length[k] <= h.station and h.station < above + 1e-9 * s.length[k] and (row == len(mine) - 1 or h.station < above):
+            if (
+                high - 1e-9 * s.length[k] <= h.station
+                and h.station < above + 1e-9 * s.length[k]
+                and (row == len(mine) - 1 or h.station < above)
+            ):
                 moment = moment + h.moment + cross((h.station - high) * t, h.force)
                 force = force + h.force
         above = high - 1e-9 * s.length[k]

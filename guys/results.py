@@ -216,7 +216,8 @@ class Solution:
     case : (case,) names; wind_from : (case,) [rad], NaN without wind; state, note, reason : (case,)
     out_of_balance : (case,) relative to `reference_force` : (case,) [N]; iterations : (case,)
     head_lean : (case, spar) [rad] between the drawn axis and the line foot-head
-    unsettled : (case,) whether a case counts as not standing (a free spin of a ball-based spar does not); failed : the solver failed somewhere
+    unsettled : (case,) whether a case counts as not standing (a free spin of a ball-based spar does not); failed : the solver failed
+    somewhere
     """
 
     scenario: Scenario

@@ -17,7 +17,9 @@ from guys.scenario.model import Material
 
 @dataclass(frozen=True)
 class Properties:
-    """mass [kg/m], EA [N], EI_x, EI_y, GJ [N m2], GA [N] (inf: none), width [m], iced_mass [kg/m], iced_width [m], expansion [1/K], drag [-]."""
+    """mass [kg/m], EA [N], EI_x, EI_y, GJ [N m2], GA [N] (inf: none), width [m], iced_mass [kg/m], iced_width [m], expansion [1/K], drag
+    [-].
+    """
 
     mass: float
     EA: float

@@ -64,14 +64,17 @@ class Setting:
 
     @property
     def state(self) -> State:
+        """The setting position."""
         return self.judged.state
 
     @property
     def loads(self) -> LoadCases:
+        """Dead load alone."""
         return self.problem.loads
 
     @property
     def stands(self) -> bool:
+        """Whether the structure stands in still air."""
         return int(self.judged.code[0]) <= stability.NEUTRAL
 
 
@@ -104,7 +107,9 @@ def _asked(scenario: Scenario) -> _Asked:
     index = [k for k, c in enumerate(scenario.cable) if c.length is None]
     cables = [scenario.cable[k] for k in index]
     return _Asked(
-        np.array(index, dtype=np.int64), np.array([c.tight for c in cables], bool), np.array([1.0 if c.tension is None else c.tension for c in cables])
+        np.array(index, dtype=np.int64),
+        np.array([c.tight for c in cables], bool),
+        np.array([1.0 if c.tension is None else c.tension for c in cables]),
     )
 
 
@@ -129,7 +134,7 @@ def _first_lengths(structure: Structure, loads: LoadCases, asked: _Asked) -> Arr
         between = low + grid[:, None] * (high - low) if high is not taut else taut * (1 + grid[:, None])
         measure = _measure_alone(chord, EA, load, between, asked)
         below = measure < 1
-        _refuse_unmet(structure.scenario, asked, measure, below.any(axis=0))
+        _refuse_unmet(structure.scenario, asked, measure, np.asarray(below.any(axis=0)))
         first = np.argmax(below, axis=0)
         each = np.arange(len(c))
         low, high = between[np.maximum(first - 1, 0), each], between[first, each]
@@ -156,7 +161,10 @@ def _refuse_unmet(scenario: Scenario, asked: _Asked, measure: Array, met: NDArra
     for k in np.flatnonzero(~met):
         c = scenario.cable[asked.index[k]]
         least = float(measure[:, k].min() * asked.target[k])
-        text = f'"{c.name}": {asked.target[k]:.3g} N cannot be met: the cable\'s own weight gives at least {least:.3g} N at its anchor end; give more'
+        text = (
+            f'"{c.name}": {asked.target[k]:.3g} N cannot be met: the cable\'s own weight gives at least {least:.3g} N '
+            "at its anchor end; give more"
+        )
         faults.append(Fault(scenario.path, None, None, "tension", text))
     if faults:
         raise ScenarioError(faults)
@@ -164,8 +172,10 @@ def _refuse_unmet(scenario: Scenario, asked: _Asked, measure: Array, met: NDArra
 
 @dataclass(frozen=True)
 class _Rates:
-    """At one state: measures (asked,) and out-of-balance `error`; by ln L0, with the nodes answering: log-derivatives of the measures `rate`
-    (asked, asked) and steps of the unknowns `step` (unknown, asked); from what is still unbalanced: the same, `drift` (asked,), `settle` (unknown,)."""
+    """At one state: measures (asked,) and out-of-balance `error`; by ln L0, with the nodes answering: log-derivatives of the measures
+    `rate`
+    (asked, asked) and steps of the unknowns `step` (unknown, asked); from what is still unbalanced: the same, `drift` (asked,), `settle`
+    (unknown,)."""
 
     measure: Array
     error: float
@@ -237,7 +247,7 @@ def _chord_steps(problem: Problem, state: State, step: Array, k: NDArray[np.int6
 
 
 def _measure_rates(problem: Problem, state: State, found: Evaluation, asked: _Asked, step: Array, direct: Array | None) -> Array:
-    """Log-derivatives of the measures (asked, column) for node steps (unknown, column); `direct`: with the columns' own lengths changing."""
+    """Log-derivatives of the measures (asked, column) for node steps (unknown, column); `direct`: the columns' own lengths change too."""
     k = asked.index
     moved = _chord_steps(problem, state, step, k)
     by_chord = found.hanging.stiffness[0, k] @ moved
@@ -302,7 +312,7 @@ def _newton(problem: Problem, state: State, asked: _Asked, goal: Array) -> tuple
         miss = np.log(np.maximum(rates.measure, 1e-12)) - goal
         if np.max(np.abs(miss), initial=0.0) < MET and rates.error < solver.ENOUGH:
             return problem, state
-        change = np.linalg.lstsq(rates.rate, -np.clip(miss, -STEP, STEP) - rates.drift, rcond=1e-14)[0]
+        change: Array = np.linalg.lstsq(rates.rate, -np.clip(miss, -STEP, STEP) - rates.drift, rcond=1e-14)[0].astype(float)
         step = (rates.settle + rates.step @ change)[None]
         share = _share(problem.limited(state, step, solver.TURN_CAP, solver.MOVE_CAP * problem.structure.height), step)
         if not np.isfinite(share) or np.max(np.abs(share * change)) > WILD:
@@ -354,7 +364,7 @@ def _plumb(problem: Problem, state: State, asked: _Asked) -> tuple[Problem, Stat
 
 
 def _away(problem: Problem, state: State, rates: _Rates) -> tuple[Array, Array, Array]:
-    """Displacements to undo (row,), their derivatives (row, asked) and what settling adds (row,); a rigid spar's turn counts at its head."""
+    """Displacements to undo (row,), their derivatives (row, asked), what settling adds (row,); a rigid spar's turn counts at its head."""
     s = problem.structure
     steps = np.column_stack([rates.step, rates.settle]).T
     many = problem.take(np.zeros(len(steps), dtype=np.int64))
@@ -377,7 +387,9 @@ def _nearest(rates: _Rates, away: Array, slope: Array) -> Array:
     """
     by_length = rates.measure[:, None] * rates.rate
     now = rates.measure * (1 + rates.drift)
-    return _bounded(np.concatenate([by_length, slope / AS_DRAWN]), np.concatenate([1 - now, -away / AS_DRAWN]), by_length, LEAST_SHARE - now)
+    return _bounded(
+        np.concatenate([by_length, slope / AS_DRAWN]), np.concatenate([1 - now, -away / AS_DRAWN]), by_length, LEAST_SHARE - now
+    )
 
 
 def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:
@@ -385,12 +397,18 @@ def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:
     x = np.linalg.lstsq(a, wanted, rcond=1e-14)[0]
     if (g @ x >= least - 1e-9).all():
         return np.asarray(x)
-    from scipy.optimize import minimize
+    from scipy.optimize import LinearConstraint, minimize
 
     scale = np.linalg.norm(a, axis=0)
     a, g, size = a / scale, g / scale, 1 / max(float(wanted @ wanted), 1e-300)
+
+    def miss(y: Array) -> float:
+        return float(0.5 * size * np.sum((a @ y - wanted) ** 2))
+
+    def slope(y: Array) -> Array:
+        return np.asarray(size * (a.T @ (a @ y - wanted)))
+
     out = minimize(
-        lambda x: 0.5 * size * np.sum((a @ x - wanted) ** 2), x * scale, jac=lambda x: size * (a.T @ (a @ x - wanted)), method="SLSQP",
-        constraints={"type": "ineq", "fun": lambda x: g @ x - least, "jac": lambda x: g}, options={"ftol": 1e-15, "maxiter": 300},
-    )  # fmt: skip
+        miss, x * scale, jac=slope, method="SLSQP", constraints=LinearConstraint(g, least, np.inf), options={"ftol": 1e-15, "maxiter": 300}
+    )
     return np.asarray(out.x / scale)

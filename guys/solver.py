@@ -73,7 +73,9 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
     """Bring every case to equilibrium from `start`; `stop` tells which cases to give up (a spar that has turned over)."""
     cases = problem.cases
     state = start.take(np.arange(cases))
-    seen = _Progress(np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64))
+    seen = _Progress(
+        np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64)
+    )
     open_, part, here = np.arange(cases), problem, state
     for _ in range(rounds):
         found = part.evaluate(here)

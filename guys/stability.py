@@ -200,7 +200,9 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
     """Follow the path of the cases `rows` and write what is found at its end."""
     whole = problem.take(rows)
     n = len(rows)
-    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, {}, np.full(n, np.nan))
+    path = _Path(
+        np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, {}, np.full(n, np.nan)
+    )
     _walk(whole, start, path, np.arange(n), least_step)
     stuck = _still_stiff(whole, setting, path)
     if len(stuck):

@@ -47,7 +47,9 @@ HELD = {
 
 @dataclass(frozen=True)
 class Points:
-    """Points made fast to nodes.  node (point,); arm (point, 3) [m] in drawn axes; growth (point, 3) [m/K] change of the arm with temperature."""
+    """Points made fast to nodes.  node (point,); arm (point, 3) [m] in drawn axes; growth (point, 3) [m/K] change of the arm with
+    temperature.
+    """
 
     node: Index
     arm: Array
@@ -58,7 +60,8 @@ class Points:
 class Pieces:
     """Stretches of spar that carry distributed loads, from `start` to `end` point (piece,); each of one section.
 
-    spar (piece,) index; station (piece, 2) [m]; low, high : the node that takes each end's share (the same for a rigid spar); rigid (piece,)
+    spar (piece,) index; station (piece, 2) [m]; low, high : the node that takes each end's share (the same for a rigid spar); rigid
+    (piece,)
     mass, iced_mass [kg/m]; width, iced_width [m]; drag [-]; axis (piece, 3) drawn axis
     """
 
@@ -116,7 +119,8 @@ class Fittings:
 @dataclass(frozen=True)
 class Structure:
     """The whole structure.  See the module's text; `position` (node, 3) [m] drawn; `spar` (node,) index or -1; `station` (node,) [m];
-    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6) in `frames`; `unspun` spars whose feet do not spin; `give` (anchor,) [N/m], inf: none."""
+    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6) in `frames`; `unspun` spars whose
+    feet do not spin; `give` (anchor,) [N/m], inf: none."""
 
     scenario: Scenario
     position: Array
@@ -144,6 +148,7 @@ class Structure:
 
     @property
     def nodes(self) -> int:
+        """Number of nodes."""
         return len(self.position)
 
     @cached_property
@@ -295,7 +300,9 @@ class _Builder:
 
         h = ends[:, 1] - ends[:, 0]
         ei_x, ei_y, ga = each("EI_x"), each("EI_y"), each("GA")
-        rods = Rods(h, axes[:, 2], axes[:, 0], axes[:, 1], each("EA"), ei_x, ei_y, each("GJ"), 12 * ei_x / (ga * h * h), 12 * ei_y / (ga * h * h))
+        rods = Rods(
+            h, axes[:, 2], axes[:, 0], axes[:, 1], each("EA"), ei_x, ei_y, each("GJ"), 12 * ei_x / (ga * h * h), 12 * ei_y / (ga * h * h)
+        )
         i, j = (np.array([r[n] for r in rows], dtype=np.int64) for n in (0, 1))
         return Elements(rods, i, j, spar_of, ends, each("expansion"))
 
@@ -418,7 +425,9 @@ class _Builder:
 
 def _points(rows: list[tuple[int, Array, Array]]) -> Points:
     return Points(
-        np.array([r[0] for r in rows], dtype=np.int64), np.array([r[1] for r in rows]).reshape(-1, 3), np.array([r[2] for r in rows]).reshape(-1, 3)
+        np.array([r[0] for r in rows], dtype=np.int64),
+        np.array([r[1] for r in rows]).reshape(-1, 3),
+        np.array([r[2] for r in rows]).reshape(-1, 3),
     )
 
 

@@ -45,21 +45,41 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     def turning(value: float) -> str:
         return " / ".join(rounding.moment(value, s) for s in systems) if math.isfinite(value) else "–"
 
-    anchors = [[a.name, load(a.resultant.peak), load(a.horizontal.peak), load(a.uplift.peak), *_place(a.resultant)] for a in solution.worst_anchors]
+    anchors = [
+        [a.name, load(a.resultant.peak), load(a.horizontal.peak), load(a.uplift.peak), *_place(a.resultant)] for a in solution.worst_anchors
+    ]
     table("Greatest load of each anchor", ["anchor", "pull", "horizontal", "uplift", "case", "wind from"], anchors, stream)
     cables = [
-        [c.name, load(c.tension.peak), load(c.strength), rounding.factor(c.factor) if math.isfinite(c.factor) else "not judged", *_place(c.tension),
-         "drops" if c.slack_winds or solution.cables.slack[:, k].any() else "taut"]
+        [
+            c.name,
+            load(c.tension.peak),
+            load(c.strength),
+            rounding.factor(c.factor) if math.isfinite(c.factor) else "not judged",
+            *_place(c.tension),
+            "drops" if c.slack_winds or solution.cables.slack[:, k].any() else "taut",
+        ]
         for k, c in enumerate(solution.worst_cables)
-    ]  # fmt: skip
+    ]
     table("Greatest tension of each cable", ["cable", "tension", "strength", "factor", "case", "wind from", "slack"], cables, stream)
     feet = [
-        [f.spar, "ground" if f.carried_by is None else f.carried_by, load(f.down.peak), load(f.lift.peak), load(f.sideways.peak), turning(f.turning.peak)]
+        [
+            f.spar,
+            "ground" if f.carried_by is None else f.carried_by,
+            load(f.down.peak),
+            load(f.lift.peak),
+            load(f.sideways.peak),
+            turning(f.turning.peak),
+        ]
         for f in solution.worst_feet
     ]
     table("Feet", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
     _findings(solution.findings, stream)
-    for title, lines in (("Warnings", solution.warnings), ("Notes", solution.notes), ("Not checked", solution.not_checked), ("Cautions", solution.cautions)):
+    for title, lines in (
+        ("Warnings", solution.warnings),
+        ("Notes", solution.notes),
+        ("Not checked", solution.not_checked),
+        ("Cautions", solution.cautions),
+    ):
         if lines:
             stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
 
@@ -67,7 +87,8 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
 def _states(solution: Solution) -> str:
     count = {state: solution.state.count(state) for state in ("stable", "neutral", "unstable", "none")}
     words = ", ".join(f"{n} {state}" for state, n in count.items() if n)
-    return f"{len(solution.state)} cases: {words}; loads and reactions balance to {solution.check.balance:.0e}; solved again: {solution.check.resolve}"
+    check = solution.check
+    return f"{len(solution.state)} cases: {words}; loads and reactions balance to {check.balance:.0e}; solved again: {check.resolve}"
 
 
 def _place(extreme: Extreme) -> tuple[str, str]:
@@ -88,7 +109,12 @@ def _findings(findings: Sequence[Finding], stream: TextIO) -> None:
          "–" if math.isnan(f.wind_from) else rounding.bearing(f.wind_from)]
         for f in shown
     ]  # fmt: skip
-    table("Against the allowables (all that is past, and the nearest within)", ["thing", "quantity", "factor", "required", "case", "wind from"], rows, stream)
+    table(
+        "Against the allowables (all that is past, and the nearest within)",
+        ["thing", "quantity", "factor", "required", "case", "wind from"],
+        rows,
+        stream,
+    )
     unjudged = [f.thing for f in findings if f.verdict == "not judged"]
     if unjudged:
         stream.write(f"Not judged: {', '.join(unjudged)}\n")

@@ -9,12 +9,12 @@ import math
 from collections.abc import Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
 from guys import stability
 from guys.loads import CaseLine
 from guys.recovery import Forces
 from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
-from guys.rotation import Array
 from guys.structure import Structure
 
 STILL_LEAN = 1 / 500
@@ -42,7 +42,7 @@ def warnings(
     structure: Structure,
     lines: Sequence[CaseLine],
     forces: Forces,
-    code: Array,
+    code: NDArray[np.int64],
     reason: Sequence[str | None],
     note: Sequence[str | None],
     feet: Sequence[FootWorst],
@@ -69,7 +69,7 @@ def place(line_name: str, wind_from: float) -> str:
     return line_name if math.isnan(wind_from) else f"{line_name}, wind from {round(math.degrees(wind_from)) % 360}°"
 
 
-def _not_standing(lines: Sequence[CaseLine], code: Array, reason: Sequence[str | None]) -> list[str]:
+def _not_standing(lines: Sequence[CaseLine], code: NDArray[np.int64], reason: Sequence[str | None]) -> list[str]:
     bad = [k for k in range(len(lines)) if code[k] > stability.NEUTRAL]
     if len(bad) > 1 and code[0] > stability.NEUTRAL:
         bad = bad[:1]
@@ -91,7 +91,9 @@ def _between_directions(lines: Sequence[CaseLine], gaps: Sequence[tuple[str, flo
 def _checks(check: SelfCheck) -> list[str]:
     out = []
     if not math.isnan(check.balance) and check.balance > BALANCE:
-        out.append(f"loads and reactions of the whole structure differ by {check.balance:.1e} of the reference force: a fault of the program")
+        out.append(
+            f"loads and reactions of the whole structure differ by {check.balance:.1e} of the reference force: a fault of the program"
+        )
     if check.resolve == "other stable state":
         out.append(
             f"{place(check.resolved_case, check.resolved_wind_from)}: solved again by another method the structure came to another stable "
@@ -105,7 +107,9 @@ def _lifted(structure: Structure, lines: Sequence[CaseLine], forces: Forces, fee
     for k, foot in enumerate(feet):
         if foot.carried_by is None:
             if foot.lift.peak > SHOWN * max(structure.weight, 1.0):
-                out.append(f"base of {foot.spar} is pulled upward by {_newtons(foot.lift.peak)} in {_where(foot.lift)}: it must be held down")
+                out.append(
+                    f"base of {foot.spar} is pulled upward by {_newtons(foot.lift.peak)} in {_where(foot.lift)}: it must be held down"
+                )
         else:
             pull = forces.foot_force[:, k] @ structure.axes[k, 2]
             if np.nanmax(pull, initial=0.0) > SHOWN * max(structure.weight, 1.0):

@@ -19,7 +19,11 @@ from guys.scenario.model import GroundFoot
 
 
 def findings(
-    scenario: Scenario, cables: tuple[CableWorst, ...], anchors: tuple[AnchorWorst, ...], slides: dict[str, Extreme], leans: dict[str, Extreme]
+    scenario: Scenario,
+    cables: tuple[CableWorst, ...],
+    anchors: tuple[AnchorWorst, ...],
+    slides: dict[str, Extreme],
+    leans: dict[str, Extreme],
 ) -> tuple[Finding, ...]:
     """All findings, the nearest to its allowable first, what is not judged last.
 
@@ -56,7 +60,8 @@ def _slide(scenario: Scenario, name: str, friction: float | None, slide: Extreme
         factor = math.inf if slide.peak == 0 else friction / slide.peak
     why = "no friction given for its base" if friction is None else "friction coefficient over sideways/down"
     return Finding(
-        f"base of {name}", "sideways/down", slide.peak, math.nan if friction is None else friction, "", required, factor, _judge(factor, required),
+        f"base of {name}", "sideways/down", slide.peak, math.nan if friction is None else friction, "", required, factor, _judge(factor,
+        required),
         slide.peak_case, slide.peak_wind_from, why, "sliding" in scenario.allowables.defaulted,
     )  # fmt: skip
 

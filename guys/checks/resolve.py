@@ -43,7 +43,7 @@ def resolve(problem: Problem, answer: State) -> Resolved:
     from scipy.optimize import least_squares
 
     at_answer = problem.evaluate(answer)
-    lower = np.linalg.cholesky(band.dense(stability.tangent(problem, answer)[0]) + 1e-12 * np.diag(problem.mass))
+    lower: Array = np.linalg.cholesky(band.dense(stability.tangent(problem, answer)[0]) + 1e-12 * np.diag(problem.mass)).astype(float)
     start = _beside(problem, lower)
 
     def step(y: Array) -> Array:

@@ -45,7 +45,18 @@ def anchors(solution: Solution) -> str:
 
 def cables(solution: Solution) -> str:
     """Every cable in every case, after its greatest tension over the full circle of winds."""
-    head = ["cable", "case", "wind_from_deg", "tension_anchor_N", "tension_top_N", "greatest_N", "strength_N", "factor", "slack", "unstressed_length_m"]
+    head = [
+        "cable",
+        "case",
+        "wind_from_deg",
+        "tension_anchor_N",
+        "tension_top_N",
+        "greatest_N",
+        "strength_N",
+        "factor",
+        "slack",
+        "unstressed_length_m",
+    ]
     f = solution.cables
     rows: list[list[Cell]] = []
     for c, worst in enumerate(solution.worst_cables):
@@ -59,5 +70,7 @@ def cables(solution: Solution) -> str:
             factor = worst.strength / greatest if greatest > 0 else math.nan
             slack = "" if math.isnan(greatest) else ("yes" if f.slack[k, c] else "no")
             wind = bearing(float(solution.wind_from[k]))
-            rows.append([worst.name, case_name, wind, anchor, top, greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c])])
+            rows.append(
+                [worst.name, case_name, wind, anchor, top, greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c])]
+            )
     return _csv(head, rows)

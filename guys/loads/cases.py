@@ -46,7 +46,8 @@ class Placed:
 class LoadCases:
     """Loads with a leading case axis.
 
-    force (case, node, 3) [N], dyad (case, node, 3, 3) [N m]: on the nodes; on_pieces (case, piece, 4, 3), on_fittings (case, fitting, 3): the
+    force (case, node, 3) [N], dyad (case, node, 3, 3) [N m]: on the nodes; on_pieces (case, piece, 4, 3), on_fittings (case, fitting, 3):
+    the
     same before they reached the nodes; cable_load (case, cable, 3) [N/m] per unstressed length at the setting temperature;
     warming (case,) [K] above the setting; present (case, cable), 1 or 0, or a share while a cable fades along a path;
     weight, wind_force (case,) [N] sizes of the total dead and ice load, and of the total wind; lines: what each case is.

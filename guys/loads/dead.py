@@ -33,6 +33,7 @@ class Loads:
         return Loads(factor[:, None, None, None] * self.on_pieces, factor[:, None, None] * self.on_fittings)
 
     def plus(self, other: Loads) -> Loads:
+        """Both together."""
         return Loads(self.on_pieces + other.on_pieces, self.on_fittings + other.on_fittings)
 
     def total(self) -> Array:

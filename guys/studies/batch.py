@@ -20,6 +20,8 @@ from guys.structure import Structure
 CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
 CURVE_POINTS = 41
+BRANCHED = "the straight equilibrium"
+"""How the note of a case that branches begins."""
 PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
@@ -121,7 +123,9 @@ def join(parts: Sequence[Batch]) -> Batch:
 
     def spar(k: int) -> SparLine:
         first = parts[0].spars[k]
-        each = {n: np.concatenate([getattr(p.spars[k], n) for p in parts]) for n in ("displacement", "axial", "bending", "torsion", "shear")}
+        each = {
+            n: np.concatenate([getattr(p.spars[k], n) for p in parts]) for n in ("displacement", "axial", "bending", "torsion", "shear")
+        }
         return SparLine(first.name, first.station, first.drawn, first.axes, **each)
 
     def together(name: str) -> Array:
@@ -176,7 +180,11 @@ def _share_words(problem: Problem, judged: stability.Judged, k: int) -> str:
     if math.isnan(share):
         return ""
     line = problem.loads.lines[k]
-    whole = "the way from still air to this case" if line.without or line.dead != 1 or line.ice > 0 or problem.loads.warming[k] != 0 else "the load"
+    whole = (
+        "the way from still air to this case"
+        if line.without or line.dead != 1 or line.ice > 0 or problem.loads.warming[k] != 0
+        else "the load"
+    )
     return f" at {max(math.floor(100 * share) / 100, 0.01):.2f} of {whole}"
 
 
@@ -195,7 +203,7 @@ def _note(problem: Problem, judged: stability.Judged, k: int) -> str | None:
         return _free_motion(problem.take(np.array([k])), judged.state.take(np.array([k])))[1]
     if judged.branched[k] and code <= stability.NEUTRAL:
         both = "; its mirror image is stable too and counts in the worst loads" if k in judged.mirror else ""
-        return f"the straight equilibrium is unstable; pushed along its lowest mode the structure comes to rest in this stable one nearby{both}"
+        return f"{BRANCHED} is unstable; pushed along its lowest mode the structure comes to rest in this stable one nearby{both}"
     return None
 
 

@@ -1,6 +1,6 @@
 """The main job: a scenario in, a `Solution` out.
 
-    structure -> setting -> listed cases -> full circle of winds -> worst values -> findings, self-checks, warnings
+structure -> setting -> listed cases -> full circle of winds -> worst values -> findings, self-checks, warnings
 """
 
 from __future__ import annotations
@@ -72,7 +72,15 @@ def _none(structure: Structure, setting: Setting, lines: Sequence[CaseLine]) -> 
     code = np.full(len(lines), stability.NONE)
     rows = np.zeros(len(lines), dtype=np.int64)
     blank = stability.Judged(
-        judged.state.take(rows), code, judged.error[rows], judged.rounds[rows], judged.lost_at[rows], np.zeros(len(lines), bool), judged.stuck[rows], {}, {}
+        judged.state.take(rows),
+        code,
+        judged.error[rows],
+        judged.rounds[rows],
+        judged.lost_at[rows],
+        np.zeros(len(lines), bool),
+        judged.stuck[rows],
+        {},
+        {},
     )
     batch = recover(many, blank, detail=True)
     first = recover(setting.problem, setting.judged, detail=False).reason[0]
@@ -117,7 +125,8 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
     worst = _worst(listed, swept)
     cables = tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable)))
     anchors = tuple(
-        AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k)) for k, a in enumerate(scenario.anchor)
+        AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k))
+        for k, a in enumerate(scenario.anchor)
     )
     feet = tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar)))
     slides = {s.name: worst.of("slide", k) for k, s in enumerate(scenario.spar)}
@@ -148,7 +157,9 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
-        warnings=alarms.warnings(structure, listed.lines, listed.forces, listed.code, listed.reason, listed.note, feet, cables, check, _gaps(swept)),
+        warnings=alarms.warnings(
+            structure, listed.lines, listed.forces, listed.code, listed.reason, listed.note, feet, cables, check, _gaps(swept)
+        ),
         notes=tuple(sorted({n for n in listed.note if n})),
         not_checked=alarms.NOT_CHECKED,
         cautions=alarms.CAUTIONS,
