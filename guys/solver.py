@@ -81,7 +81,7 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
         found = part.evaluate(here)
         done = _judge(seen, open_, found.error)
         if stop is not None:
-            over = stop(part, here) & ~done
+            over = stop(part, here)
             seen.stopped[open_[over]] = True
             done |= over
         if done.any():
