@@ -157,3 +157,24 @@ def test_a_spar_without_anchors() -> None:
     lone = samples.Guyed("Flag pole", 8.0, (), (), fittings=1)
     page = draw_page(samples.solution(lone), "A3", None, "SI")
     assert_clear(page)
+
+
+def test_a_run_without_wind() -> None:
+    solution = samples.solution(samples.FOUR)
+    still = np.array([0, 0])
+    cables = replace(
+        solution.cables,
+        **{f: getattr(solution.cables, f)[still] for f in ("tension_anchor", "tension_top", "slack", "present", "curve")},
+    )  # fmt: skip
+    calm = [replace(w, resultant=replace(w.resultant, case="cold", wind_from=np.nan, peak_case="cold", peak_wind_from=np.nan))
+            for w in solution.worst_anchors]  # fmt: skip
+    solution = replace(
+        solution, scenario=solution.scenario.model_copy(update={"wind": None}), case=("setting", "cold"), wind_from=np.full(2, np.nan),
+        state=("stable", "stable"), note=(None, None), reason=(None, None), sweep=None, cables=cables, worst_anchors=tuple(calm),
+        anchors=replace(solution.anchors, pull=solution.anchors.pull[still]), head_lean=solution.head_lean[still],
+    )  # fmt: skip
+    page = draw_page(solution, "A3", None, "SI")
+    assert_clear(page)
+    words = all_words(page)
+    assert "still air, cold" in words
+    assert "3 s gust" not in words

@@ -17,6 +17,7 @@ from guys.drawing.page import Page, Rect
 from guys.drawing.reading import SETTING, slack_sectors, wind_words
 from guys.drawing.rounding import (
     ABSENT,
+    INCH,
     Tongue,
     bearing,
     factor,
@@ -97,7 +98,7 @@ def kinds(solution: Solution) -> list[str]:
 def state_summary(solution: Solution) -> str:
     """How many cases found an equilibrium of which kind, in words."""
     ended = kinds(solution)
-    if all(kind == "stable" for kind in ended):
+    if not solution.failed and all(kind == "stable" for kind in ended):
         return f"stable in all {len(ended)} cases and winds"
     words = [f"{word} in {ended.count(kind)} of {len(ended)}" for kind, word in KINDS.items() if kind in ended]
     return ", ".join([KINDS["failed"], *words] if solution.failed else words)
@@ -221,7 +222,7 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
 
 
 def _height(metres: float, system: str) -> str:
-    return f"{metres:g} m" if system == "SI" else f"{metres / 0.3048:.3g} ft"
+    return f"{metres:.4g} m" if system == "SI" else f"{metres / (12 * INCH):.3g} ft"
 
 
 def _cables(solution: Solution, tongue: Tongue) -> list[Entry]:
@@ -257,11 +258,7 @@ def _lean(solution: Solution) -> list[Entry]:
     if not isfinite(still):
         return []
     slope = f" (1/{1.0 / tan(still):.0f})" if still > np.deg2rad(0.005) else ""
-    rows = [Entry("Lean", f"{degrees(still):.2f}°{slope} off the drawn line in still air")]
-    windy = solution.head_lean[np.isfinite(solution.wind_from)]
-    if windy.size and bool(np.isfinite(windy).any()):
-        rows = [Entry("Lean", f"{rows[0].text}, {small_angle(float(np.nanmax(windy)))} at most in wind")]
-    return rows
+    return [Entry("Lean", f"{degrees(still):.2f}°{slope} off the drawn line in still air")]
 
 
 def _other_state(solution: Solution) -> list[Entry]:

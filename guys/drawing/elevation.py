@@ -14,7 +14,7 @@ import numpy as np
 
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Wish, all_over, around, column, place
+from guys.drawing.labels import Array, Field, Place, Wish, all_over, around, column, place
 from guys.drawing.lettering import fitted, shortened
 from guys.drawing.page import Page, Rect
 from guys.drawing.reading import (
@@ -106,8 +106,7 @@ def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, vie
     _spars(page, solution, on, field)
     _scale_bar(page, on, field, tongue)
     letters = _sections(page, solution, on, field)
-    _anchors(page, solution, on, field)
-    _bases(page, solution, on, field, tongue)
+    _under_ground(page, solution, on, field, tongue)
     symbols = _fittings(page, solution, on, field)
     _levels(page, solution, on, field, tongue)
     _letters(page, on, field, letters)
@@ -175,25 +174,46 @@ def below(point: Array, size: tuple[float, float], room: Rect, least: float, sid
     return Wish(point, np.concatenate(boxes), np.concatenate(cost), clear=0.9, leader_from=2.2)
 
 
-def _set_below(page: Page, field: Field, wish: Wish, lines: Sequence[Line]) -> None:
-    spot = place(field, wish, all_over(wish, field.room, step=2.5))
-    blocks.draw(page, spot.box, lines, "centre")
-    if spot.leader is not None:
-        page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
-    if spot.clashes:
-        page.crowded.append(lines[0].text)
+def _under_ground(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+    """Words of anchors and bases under the ground line, placed in the order that costs least in all."""
+    names = _anchor_wishes(solution, on, field)
+    bases = _base_wishes(page, solution, on, field, tongue)
+    orders = [[*names, *bases], [*bases, *names], [*reversed(names), *bases]]
+    trials = [_trial(field.copied(), order) for order in orders]
+    best = min(range(len(orders)), key=lambda i: sum(spot.cost for spot in trials[i]))
+    for (wish, lines), spot in zip(orders[best], trials[best], strict=True):
+        field.add_place(spot)
+        blocks.draw(page, spot.box, lines, "centre")
+        if spot.leader is not None:
+            page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
+        if spot.clashes:
+            page.crowded.append(f"{lines[0].text} at {wish.point}")
 
 
-def _anchors(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
-    """Names under the ground from the outermost inward, each beside or above the leaders still to come."""
+Wished = tuple[Wish, Sequence[Line]]
+
+
+def _trial(field: Field, order: Sequence[Wished]) -> list[Place]:
+    """Places one after another; where a point has none below it, anywhere under its level."""
+    spots = []
+    for wish, _ in order:
+        deep = replace(field.room, top=min(field.room.top, float(wish.point[1])))
+        spots.append(place(field, wish, all_over(wish, deep, step=2.5)))
+    return spots
+
+
+def _anchor_wishes(solution: Solution, on: ElevationFrame, field: Field) -> list[Wished]:
+    """From the outermost inward, each ending at or beginning at its leader so that it stays clear of those still to come."""
     at, foot = on.on_page(solution.anchors.position), on.on_page(base_point(solution))[0]
+    wishes: list[Wished] = []
     for i in np.argsort(-np.abs(at[:, 0] - foot), kind="stable"):
         line = anchor_line(solution, solution.anchors.name[i])
         side = 1.0 if at[i, 0] >= foot else -1.0
         inner = (at[:, 0] - at[i, 0]) * side
         crowded = bool(((inner < 0.0) & (inner > -line.width / 2.0 - 2.0)).any()) or abs(at[i, 0] - foot) < line.width / 2.0 + 2.0
         sides = [side] if crowded else [0.0, side]
-        _set_below(page, field, below(at[i], blocks.size([line]), field.room, 2.0, sides), [line])
+        wishes.append((below(at[i], blocks.size([line]), field.room, 2.0, sides), [line]))
+    return wishes
 
 
 def anchor_line(solution: Solution, anchor: str) -> Line:
@@ -204,15 +224,17 @@ def anchor_line(solution: Solution, anchor: str) -> Line:
     return Line(shortened(anchor, 20.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
 
 
-def _bases(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
+def _base_wishes(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> list[Wished]:
+    """Arrows of the bases drawn; what is to be written under them."""
+    wishes: list[Wished] = []
     for worst in solution.worst_feet:
-        if worst.carried_by is not None:
-            continue
-        foot = on.on_page(spar_named(solution, worst.spar).drawn[0])
-        page.arrow(foot - [0.0, 8.0], foot - [0.0, 0.6], style.LOAD, 1.8, 2.6)
-        field.add_line([foot - [0.0, 8.0], foot])
-        lines = base_lines(worst, tongue)
-        _set_below(page, field, below(foot, blocks.size(lines), field.room, 9.0, [0.0, -1.0, 1.0]), lines)
+        if worst.carried_by is None:
+            foot = on.on_page(spar_named(solution, worst.spar).drawn[0])
+            page.arrow(foot - [0.0, 8.0], foot - [0.0, 0.6], style.LOAD, 1.8, 2.6)
+            field.add_line([foot - [0.0, 8.0], foot])
+            lines = base_lines(worst, tongue)
+            wishes.append((below(foot, blocks.size(lines), field.room, 9.0, [0.0, -1.0, 1.0]), lines))
+    return wishes
 
 
 def base_lines(worst: FootWorst, tongue: Tongue) -> list[Line]:

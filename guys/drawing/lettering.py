@@ -151,7 +151,7 @@ class TextLine(Artist):
         figure, path = self.get_figure(), outline(self.text, self.bold)
         if figure is None or path.codes is None:
             return Bbox.null()
-        points = self._placed(figure.dpi / 72.0).transform(path.vertices[path.codes != Path.CLOSEPOLY])
+        points = self._placed(figure.dpi / 72.0).transform(np.asarray(path.vertices)[path.codes != Path.CLOSEPOLY])
         return Bbox([points.min(axis=0), points.max(axis=0)])
 
     def get_tightbbox(self, renderer: RendererBase | None = None) -> Bbox:

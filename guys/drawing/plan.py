@@ -37,7 +37,7 @@ from guys.results import AnchorWorst, Solution
 MOST_ROOM = (52.0, 28.0)
 """Most room [mm] kept at the sides and at top and bottom for words."""
 HEAD, STRIP = 12.0, 9.5
-LONGEST_BAR, LARGEST_RING = 24.0, 9.0
+LONGEST_BAR, LARGEST_RING, LEAST_RING = 24.0, 9.0, 4.0
 DOT = 0.9
 WIND_ARROW = 15.0
 
@@ -112,7 +112,9 @@ def _largest(solution: Solution) -> float:
 
 
 def load_scale(solution: Solution, on: PlanFrame) -> float:
-    """Millimetres of bar and ring per newton: the largest at which no bar passes its guy and no ring its neighbour; 0 without loads."""
+    """Millimetres of bar and ring per newton: the largest at which no bar passes its guy and no ring meets its neighbour (but rings
+    of anchors almost in one place do, rather than shrink to dots); 0 without loads.
+    """
     at = on.on_page(solution.anchors.position)
     foot = on.on_page(base_point(solution))
     limits = [np.inf]
@@ -124,7 +126,7 @@ def load_scale(solution: Solution, on: PlanFrame) -> float:
         if isfinite(out) and out > 0.0:
             limits.append(min(LONGEST_BAR, 0.62 * float(away[-1]) if away[-1] > 0.1 else LONGEST_BAR) / out)
         if isfinite(up) and up > 0.0:
-            limits.append(min(LARGEST_RING, 0.42 * near) / up)
+            limits.append(min(LARGEST_RING, max(0.42 * near, LEAST_RING)) / up)
     smallest = min(limits)
     return smallest if isfinite(smallest) else 0.0
 
@@ -133,7 +135,7 @@ def _heading(page: Page, solution: Solution, on: PlanFrame, ratio: float) -> Non
     x, y = on.zone.left, on.zone.top - 4.6
     wide = page.text(x, y, "Plan", style.HEADING, bold=True)
     page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
-    words = "bar along the guy: greatest horizontal pull · ring: greatest uplift · one scale"
+    words = "bar the way it pulls: greatest horizontal · ring: greatest uplift · one scale"
     page.text(on.zone.right, y + 0.2, words, style.SMALL, colour=style.LOAD, align="right")
     kinds = "guy solid: taut in every case and wind · dashed: drops in some, see the box"
     page.text(on.zone.right, y - 4.0, kinds, style.SMALL, align="right")

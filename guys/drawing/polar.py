@@ -93,21 +93,21 @@ def _curves(page: Page, bearings: Array, pull: Array, centre: Array) -> None:
 
 
 def _rim(page: Page, field: Field, swept: tuple[tuple[str, ...], Array, Array], centre: Array, radius: float) -> None:
-    """Names of the governing anchors, a tick where the governing anchor changes."""
+    """A tick where the governing anchor changes, and its name between."""
     names, bearings, pull = swept
     governs = np.argmax(np.nan_to_num(pull, nan=-1.0), axis=1)
     known = np.isfinite(pull).any(axis=1)
-    before = np.roll(bearings, 1)
-    edge = bearings - ((bearings - before) % (2.0 * np.pi)) / 2.0
-    for anchor in np.unique(governs[known]):
-        for first, last in sectors((governs == anchor) & known, bearings):
-            span = (last - first) % (2.0 * np.pi) if first != last else 0.0
-            whole = bool((governs[known] == anchor).all()) and bool(known.all())
-            start, middle = edge[np.argmin(np.abs(bearings - first))], 0.0 if whole else first + span / 2.0
-            if not whole:
-                page.line(centre + np.array([radius, radius + 2.0])[:, None] * _spoke(start), style.INK, style.THIN)
-            if whole or span > np.deg2rad(4.0):
-                _name_on_rim(page, field, names[anchor], centre, radius, middle)
+    edge = bearings - ((bearings - np.roll(bearings, 1)) % (2.0 * np.pi)) / 2.0
+    runs = [(int(a), *run) for a in np.unique(governs[known]) for run in sectors((governs == a) & known, bearings)]
+    if len(runs) > 1:
+        for _, first, _ in runs:
+            tick = centre + np.array([radius, radius + 2.0])[:, None] * _spoke(edge[np.argmin(np.abs(bearings - first))])
+            page.line(tick, style.INK, style.THIN)
+            field.add_line(tick)
+    for anchor, first, last in runs:
+        span = (last - first) % (2.0 * np.pi)
+        if len(runs) == 1 or span > np.deg2rad(4.0):
+            _name_on_rim(page, field, names[anchor], centre, radius, first + span / 2.0)
 
 
 def _name_on_rim(page: Page, field: Field, name: str, centre: Array, radius: float, turn: float) -> None:
