@@ -7,11 +7,11 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import stability
 from guys.loads import CaseLine
 from guys.recovery import Forces
 from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
@@ -23,6 +23,8 @@ BALANCE = 1e-9
 """Greatest imbalance of the whole structure, relative to the reference force."""
 SHOWN = 1e-6
 """Share of the reference force below which a pull on a base is rounding."""
+SAID = 6
+"""Cases named one by one before the rest is counted."""
 
 CAUTIONS = (
     "An estimate, to be confirmed by a competent, licensed person under the local code.",
@@ -38,27 +40,35 @@ NOT_CHECKED = (
 )
 
 
+@dataclass(frozen=True)
+class Verdicts:
+    """What became of the listed cases: falls (case,) with its reason, branched (case,) with its note."""
+
+    falls: NDArray[np.bool_]
+    reason: Sequence[str | None]
+    branched: NDArray[np.bool_]
+    note: Sequence[str | None]
+
+
 def warnings(
     structure: Structure,
     lines: Sequence[CaseLine],
     forces: Forces,
-    code: NDArray[np.int64],
-    reason: Sequence[str | None],
-    note: Sequence[str | None],
+    verdicts: Verdicts,
     feet: Sequence[FootWorst],
     cables: Sequence[CableWorst],
     check: SelfCheck,
     gaps: Sequence[tuple[str, float, str | None]],
 ) -> tuple[str, ...]:
-    """Everything alarming about a run, the gravest first."""
+    """Everything alarming about a run, the gravest first; `gaps`: swept directions without a stable equilibrium, with the reason."""
     out = [
-        *_not_standing(lines, code, reason),
+        *_not_standing(lines, verdicts),
         *_between_directions(lines, gaps),
         *_checks(check),
         *_lifted(structure, lines, forces, feet),
         *_broken(cables),
         *_leaning(structure, lines, forces),
-        *_branching(lines, note),
+        *_branching(lines, verdicts),
         *structure.scenario.warnings,
     ]
     return tuple(dict.fromkeys(out))
@@ -69,13 +79,13 @@ def place(line_name: str, wind_from: float) -> str:
     return line_name if math.isnan(wind_from) else f"{line_name}, wind from {round(math.degrees(wind_from)) % 360}°"
 
 
-def _not_standing(lines: Sequence[CaseLine], code: NDArray[np.int64], reason: Sequence[str | None]) -> list[str]:
-    bad = [k for k in range(len(lines)) if code[k] > stability.NEUTRAL]
-    if len(bad) > 1 and code[0] > stability.NEUTRAL:
+def _not_standing(lines: Sequence[CaseLine], verdicts: Verdicts) -> list[str]:
+    bad = np.flatnonzero(verdicts.falls)
+    if verdicts.falls[0]:
         bad = bad[:1]
-    out = [f"{place(lines[k].name, lines[k].wind_from)}: {reason[k]}" for k in bad[:6]]
-    if len(bad) > 6:
-        out.append(f"... and {len(bad) - 6} more cases without a stable equilibrium")
+    out = [f"{place(lines[k].name, lines[k].wind_from)}: {verdicts.reason[k]}" for k in bad[:SAID]]
+    if len(bad) > SAID:
+        out.append(f"... and {len(bad) - SAID} more cases without a stable equilibrium")
     return out
 
 
@@ -84,7 +94,7 @@ def _between_directions(lines: Sequence[CaseLine], gaps: Sequence[tuple[str, flo
     fresh = [g for g in gaps if (g[0], g[1]) not in listed]
     if not fresh:
         return []
-    bearings = ", ".join(f"{round(math.degrees(b)) % 360}°" for _, b, _ in fresh[:8]) + (" ..." if len(fresh) > 8 else "")
+    bearings = ", ".join(f"{round(math.degrees(b)) % 360}°" for _, b, _ in fresh[:SAID]) + (" ..." if len(fresh) > SAID else "")
     return [f"between the listed directions there is no stable equilibrium: {fresh[0][0]}, wind from {bearings}: {fresh[0][2]}"]
 
 
@@ -148,9 +158,9 @@ def _leaning(structure: Structure, lines: Sequence[CaseLine], forces: Forces) ->
     return out
 
 
-def _branching(lines: Sequence[CaseLine], note: Sequence[str | None]) -> list[str]:
-    branched = [k for k, n in enumerate(note) if n is not None and n.startswith("the straight equilibrium")]
-    if not branched:
+def _branching(lines: Sequence[CaseLine], verdicts: Verdicts) -> list[str]:
+    branched = np.flatnonzero(verdicts.branched)
+    if len(branched) == 0:
         return []
-    some = "; ".join(place(lines[k].name, lines[k].wind_from) for k in branched[:4]) + (" ..." if len(branched) > 4 else "")
-    return [f"the structure branches in {some}: {note[branched[0]]}"]
+    some = "; ".join(place(lines[k].name, lines[k].wind_from) for k in branched[:SAID]) + (" ..." if len(branched) > SAID else "")
+    return [f"the structure branches in {some}: {verdicts.note[branched[0]]}"]

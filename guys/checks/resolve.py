@@ -43,7 +43,9 @@ def resolve(problem: Problem, answer: State) -> Resolved:
     from scipy.optimize import least_squares
 
     at_answer = problem.evaluate(answer)
-    lower: Array = np.linalg.cholesky(band.dense(stability.tangent(problem, answer)[0]) + 1e-12 * np.diag(problem.mass)).astype(float)
+    lower: Array = np.linalg.cholesky(
+        band.dense(stability.tangent(problem, answer)[0]) + 2 * stability.ZERO * np.diag(problem.mass)
+    ).astype(float)
     start = _beside(problem, lower)
 
     def step(y: Array) -> Array:

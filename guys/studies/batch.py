@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, fields, replace
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,8 +21,6 @@ from guys.structure import Structure
 CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
 CURVE_POINTS = 41
-BRANCHED = "the straight equilibrium"
-"""How the note of a case that branches begins."""
 PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
@@ -33,6 +32,7 @@ class Batch:
     """Solved case lines.
 
     code : (case,) of `guys.stability`;  error, reference, rounds, lost_at, balance : (case,);  reason, note : (case,) words
+    branched : (case,) stands off its straight branch;  spins : (case,) neutral, but only by the free spin of ball-based spars
     forces : of every case, NaN where there is no equilibrium;  mirror : forces of the other state of branched cases, mirror_lines theirs
     spars, curves : with detail only;  stuck : lines the solver failed on
     """
@@ -46,6 +46,8 @@ class Batch:
     balance: Array
     reason: tuple[str | None, ...]
     note: tuple[str | None, ...]
+    branched: NDArray[np.bool_]
+    spins: NDArray[np.bool_]
     forces: recovery.Forces
     mirror: recovery.Forces | None
     mirror_lines: tuple[CaseLine, ...]
@@ -56,6 +58,15 @@ class Batch:
     def stands(self) -> NDArray[np.bool_]:
         """Cases with an equilibrium, be it stable or not."""
         return np.asarray(self.code <= stability.UNSTABLE)
+
+    def take(self, rows: NDArray[np.int64]) -> Batch:
+        """The cases `rows` without detail; mirror states stay, all of them."""
+        kept: dict[str, Any] = {
+            n: getattr(self, n)[rows] for n in ("code", "error", "reference", "rounds", "lost_at", "balance", "branched", "spins")
+        }
+        kept |= {n: tuple(getattr(self, n)[k] for k in rows) for n in ("lines", "reason", "note")}
+        forces = recovery.Forces(**{f.name: getattr(self.forces, f.name)[rows] for f in fields(recovery.Forces)})
+        return replace(self, **kept, forces=forces, spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
 
 
 SWEPT_STEP = 1 / 32
@@ -91,6 +102,7 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
         mirror = recovery.forces(part, other, part.evaluate(other))
     balance = recovery.whole_balance(problem, judged.state, found, forces)
     balance[gone] = np.nan
+    notes = [_note(problem, judged, k) for k in range(problem.cases)]
     spars = recovery.lines(problem, judged.state, found) if detail else ()
     curves = recovery.curves(problem, judged.state, found, CURVE_POINTS) if detail else np.zeros((problem.cases, 0, 0, 3))
     return Batch(
@@ -102,7 +114,9 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
         lost_at=judged.lost_at,
         balance=balance,
         reason=tuple(_reason(problem, judged, forces, k) for k in range(problem.cases)),
-        note=tuple(_note(problem, judged, k) for k in range(problem.cases)),
+        note=tuple(note for note, _ in notes),
+        branched=judged.branched & (judged.code <= stability.NEUTRAL),
+        spins=np.array([spins for _, spins in notes]),
         forces=forces.blank(gone),
         mirror=mirror,
         mirror_lines=tuple(problem.loads.lines[k] for k in mirrored),
@@ -141,6 +155,8 @@ def join(parts: Sequence[Batch]) -> Batch:
         balance=together("balance"),
         reason=tuple(x for p in parts for x in p.reason),
         note=tuple(x for p in parts for x in p.note),
+        branched=np.concatenate([p.branched for p in parts]),
+        spins=np.concatenate([p.spins for p in parts]),
         forces=recovery.join([p.forces for p in parts]),
         mirror=recovery.join(mirrors) if mirrors else None,
         mirror_lines=tuple(x for p in parts for x in p.mirror_lines),
@@ -197,18 +213,20 @@ def _along_lowest_mode(one: Problem, state: State) -> State:
     return one.advance(state, one.evaluate(state), step)
 
 
-def _note(problem: Problem, judged: stability.Judged, k: int) -> str | None:
+def _note(problem: Problem, judged: stability.Judged, k: int) -> tuple[str | None, bool]:
+    """What is to be said of a case that stands, and whether it is neutral by the free spin of ball-based spars alone."""
     code = int(judged.code[k])
     if code == stability.NEUTRAL:
-        return _free_motion(problem.take(np.array([k])), judged.state.take(np.array([k])))[1]
+        return _free_motion(problem.take(np.array([k])), judged.state.take(np.array([k])))
     if judged.branched[k] and code <= stability.NEUTRAL:
         both = "; its mirror image is stable too and counts in the worst loads" if k in judged.mirror else ""
-        return f"{BRANCHED} is unstable; pushed along its lowest mode the structure comes to rest in this stable one nearby{both}"
-    return None
+        rest = f"pushed along its lowest mode the structure comes to rest in this stable one nearby{both}"
+        return f"the straight equilibrium is unstable; {rest}", False
+    return None, False
 
 
-def _free_motion(one: Problem, state: State) -> tuple[bool, str]:
-    """Whether all that is free is the spin of ball-based spars, and the free motion in words."""
+def _free_motion(one: Problem, state: State) -> tuple[str, bool]:
+    """The free motion of a neutral case in words, and whether it is nothing but the spin of ball-based spars."""
     modes = stability.modes(one, state)
     s = one.structure
     spun, other = set(), set()
@@ -226,10 +244,5 @@ def _free_motion(one: Problem, state: State) -> tuple[bool, str]:
             elif np.abs(spin).max() > PURE * greatest:
                 spun.add(spar.name)
     if other:
-        return False, f"a motion costs nothing: {', '.join(sorted(other))} may turn or sway freely"
-    return True, f"{', '.join(sorted(spun))} may spin freely about its own axis"
-
-
-def only_spins(note: str | None) -> bool:
-    """Whether a neutral case's note tells of nothing but the free spin of ball-based spars."""
-    return note is not None and note.endswith("may spin freely about its own axis")
+        return f"a motion costs nothing: {', '.join(sorted(other))} may turn or sway freely", False
+    return f"{', '.join(sorted(spun))} may spin freely about its own axis", True

@@ -57,18 +57,7 @@ def _near(bearing: float, others: Sequence[float]) -> bool:
 
 def _with_wind(batch: Batch) -> Batch:
     keep = np.array([k for k, line in enumerate(batch.lines) if not math.isnan(line.wind_from)])
-    return take(batch, keep)
-
-
-def take(batch: Batch, rows: np.ndarray) -> Batch:
-    """The cases `rows` of a batch, without detail; mirrors of those lines stay."""
-    lines = tuple(batch.lines[k] for k in rows)
-    forces = type(batch.forces)(**{name: getattr(batch.forces, name)[rows] for name in batch.forces.__dataclass_fields__})
-    return Batch(
-        lines, batch.code[rows], batch.error[rows], batch.reference[rows], batch.rounds[rows], batch.lost_at[rows], batch.balance[rows],
-        tuple(batch.reason[k] for k in rows), tuple(batch.note[k] for k in rows), forces, batch.mirror, batch.mirror_lines, (),
-        np.zeros((len(rows), 0, 0, 3)),
-    )  # fmt: skip
+    return batch.take(keep)
 
 
 def _best_bearings(batch: Batch, templates: Sequence[CaseLine]) -> list[float]:

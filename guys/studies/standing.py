@@ -33,7 +33,7 @@ from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
 from guys.setting import Setting, find
 from guys.structure import Structure, build
 from guys.studies import directions
-from guys.studies.batch import Batch, Progress, join, only_spins, recover, solve_lines
+from guys.studies.batch import Batch, Progress, join, recover, solve_lines
 from guys.version import __version__
 
 STATES: tuple[State, ...] = ("stable", "neutral", "unstable", "none", "none")
@@ -133,13 +133,12 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
     leans = {s.name: worst.of("lean", k, windy=True) for k, s in enumerate(scenario.spar)}
     found = allowables.findings(scenario, cables, anchors, slides, leans)
     check = _self_check(structure, setting, listed, cables)
-    states = tuple(STATES[c] for c in listed.code)
     return Solution(
         scenario=scenario,
         version=__version__,
         case=tuple(line.name for line in listed.lines),
         wind_from=np.array([line.wind_from for line in listed.lines]),
-        state=states,
+        state=tuple(STATES[c] for c in listed.code),
         note=listed.note,
         reason=listed.reason,
         out_of_balance=listed.error,
@@ -157,15 +156,17 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
-        warnings=alarms.warnings(
-            structure, listed.lines, listed.forces, listed.code, listed.reason, listed.note, feet, cables, check, _gaps(swept)
-        ),
+        warnings=alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
         notes=tuple(sorted({n for n in listed.note if n})),
         not_checked=alarms.NOT_CHECKED,
         cautions=alarms.CAUTIONS,
-        unsettled=tuple(not only_spins(n) if s == "neutral" else s != "stable" for s, n in zip(states, listed.note, strict=True)),
+        unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
     )
+
+
+def _verdicts(listed: Batch) -> alarms.Verdicts:
+    return alarms.Verdicts(listed.code > stability.NEUTRAL, listed.reason, listed.branched, listed.note)
 
 
 def _gaps(swept: Batch | None) -> list[tuple[str, float, str | None]]:
@@ -245,11 +246,11 @@ def _self_check(structure: Structure, setting: Setting, listed: Batch, cables: t
 
 
 def _governing(listed: Batch, cables: tuple[CableWorst, ...]) -> int | None:
-    """The stable case with the greatest use of a cable (greatest tension where no strength is given); without cables, the last one."""
+    """The standing case with the greatest use of a cable (greatest tension where no strength is given); without cables, the last one."""
     tension = extremes.measures(listed.forces).tension
     strength = np.array([c.strength for c in cables])
     use = tension / np.where(np.isnan(strength), 1.0, strength) if len(cables) else np.zeros((len(listed.lines), 1))
-    score = np.where(listed.code[:, None] == stability.STABLE, use, np.nan)
+    score = np.where((listed.code == stability.STABLE)[:, None] | listed.spins[:, None], use, np.nan)
     if np.isnan(score).all():
         return None
     return int(np.nanargmax(np.nanmax(np.where(np.isnan(score), -1.0, score), axis=1)))
