@@ -137,6 +137,10 @@ def weightless(length: float, **keys: Any) -> Document:
     return {"length": length, "mass": 0.0, "width": 0.1, "drag": 0.0, **keys}
 
 
+def vector(east: float, north: float, up: float) -> Document:
+    return {"east": east, "north": north, "up": up}
+
+
 def fitting(name: str = "load", at: float = 18.0, **keys: Any) -> Document:
     return {"name": name, "at": at, **keys}
 
@@ -198,9 +202,9 @@ def stayed(one: Document, *bearings: float, at: float | None = None, radius: flo
 def boom(base: str = "hinged", rigid: Sequence[bool] = (False, False), **tables: Any) -> Document:
     """A boom heeled on a guyed mast, held up by a topping stay and sideways by two stays, with a load at its head.
 
-    The tensions nearly balance by moments about heel and foot, so that nothing is pulled far over.
+    The tensions nearly balance by moments about heel and foot (found with plumb = true on rigid spars), so that nothing is pulled far over.
     """
-    carried = fitting("load", at=8.0, load={"east": 0.0, "north": 150.0, "up": -1500.0})
+    carried = fitting("load", at=8.0, load=vector(0.0, 150.0, -1500.0))
     spars = [
         spar("mast", section=[tube(12.0, 0.14, 0.005)], rigid=rigid[0]),
         spar(
@@ -215,10 +219,10 @@ def boom(base: str = "hinged", rigid: Sequence[bool] = (False, False), **tables:
         ),
     ]
     ring = [*anchors(9.0, 210.0, 330.0, 90.0, names=["S", "N", "E"]), *anchors(8.0, 25.0, 155.0, names=["NE", "SE"])]
-    guys = [cable(f"guy {a}", 11.5, a, tension=t) for a, t in (("S", 2400.0), ("N", 2400.0), ("E", 550.0))]
+    guys = [cable(f"guy {a}", 11.5, a, tension=t) for a, t in (("S", 2433.0), ("N", 2433.0), ("E", 546.0))]
     stays = [
-        cable("topping stay", 12.0, ("boom", 8.0), tension=1750.0),
-        *(cable(f"side {a}", 8.0, a, spar="boom", tension=400.0) for a in ("NE", "SE")),
+        cable("topping stay", 12.0, ("boom", 8.0), tension=1760.0),
+        *(cable(f"side {a}", 8.0, a, spar="boom", tension=t) for a, t in (("NE", 296.0), ("SE", 502.0))),
     ]
     tables = tables if "wind" in tables else {"still": True, **tables}
     return document(spars, ring, guys + stays, **tables)
@@ -226,7 +230,7 @@ def boom(base: str = "hinged", rigid: Sequence[bool] = (False, False), **tables:
 
 def pylon(load: float = 0.0, length: float = 10.0, lean: float = 15.0, **tables: Any) -> Document:
     """A rigid, weightless pylon on a hinge, leaning east, held by two backstays to the west, with a weight and a pull west at its head."""
-    head = fitting("head", at=length, mass=200.0, load={"east": -load, "north": 0.0, "up": 0.0})
+    head = fitting("head", at=length, mass=200.0, load=vector(-load, 0.0, 0.0))
     leaning = spar("pylon", rigid=True, base="hinged", lean=lean, toward=90.0, section=[weightless(length)], fitting=[head])
     stays = [cable(f"backstay {a}", length, a, spar="pylon", tension=600.0) for a in "AB"]
     return document([leaning], anchors(7.0, 240.0, 300.0), stays, **{"still": True, "straight": True, **tables})

@@ -76,7 +76,7 @@ def test_consistent_loads_of_one_element() -> None:
 
 
 def test_fittings_weigh_at_their_offset_and_fixed_loads_join_the_dead_load() -> None:
-    hung = made.fitting(at=10.0, mass=50.0, offset={"east": 0.3, "north": -0.2, "up": 0.1}, load={"east": 70.0, "north": 0.0, "up": -400.0})
+    hung = made.fitting(at=10.0, mass=50.0, offset=made.vector(0.3, -0.2, 0.1), load=made.vector(70.0, 0.0, -400.0))
     spar = made.spar(base="fixed", section=[made.weightless(18.0)], rigid=True, fitting=[hung])
     s, found = loads(made.document([spar], still=True), replace(LINE, dead=2.0))
     f = 2.0 * np.array([70.0, 0.0, -400.0 - 50.0 * G])
