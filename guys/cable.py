@@ -44,6 +44,8 @@ TRUST = 0.3
 """A start is kept only if Newton's first correction is below this share of |T| (measured: beyond it convergence is slower than afresh)."""
 NEARLY_CHORD = 1e-3
 """... and the chord it gives is this close, relative to length plus chord."""
+WEIGHTLESS = 1e-13
+"""A cable with less load than this share of EA is solved with that much: its shape is then straight to rounding, and a slack one hangs."""
 LEVEL_FLOOR = 1e-12
 """The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a
 loop.
@@ -87,9 +89,11 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
     """Solve r(T) = chord for many cables at once.
 
     chord : (n, 3) [m] from end A to end B;  length : (n,) [m] unstressed;  EA : (n,) [N]
-    load : (n, 3) [N] total load w L0 on the cable (not zero);  warm : (n, 3) [N] tensions to start from where they serve
+    load : (n, 3) [N] total load w L0 on the cable;  warm : (n, 3) [N] tensions to start from where they serve
     Valid for any length > 0 and any chord not exactly in line with the load while slack.
     """
+    weightless = np.sqrt(dot(load, load)) < WEIGHTLESS * EA
+    pulled, load = load, np.where(weightless[:, None], (WEIGHTLESS * EA)[:, None] * np.array([0.0, 0.0, -1.0]), load)
     chord = _off_line(chord, load)
     tension, gap, flexibility, ends = _begin(chord, length, EA, load, warm)
     small = ROUNDING * (length + np.sqrt(dot(chord, chord)))
@@ -103,7 +107,7 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
             break
         gap, f, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
         flexibility[open_] = f
-    return Hanging(tension, tension + load / 2, tension - load / 2, _invert3(flexibility))
+    return Hanging(tension, tension + pulled / 2, tension - pulled / 2, _invert3(flexibility))
 
 
 def _begin(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None) -> tuple[Array, Array, Array, Array]:

@@ -76,11 +76,10 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
 
 
 def _slack(problem: Problem, state: State, found: Evaluation) -> NDArray[np.bool_]:
-    if problem.structure.scenario.analysis.cable == "straight":
-        _, _, chord = problem.chords(state)
-        return np.asarray(problem.natural > np.linalg.norm(chord, axis=-1) * (1 + SLACK_STRAIGHT))
+    _, _, chord = problem.chords(state)
+    longer = problem.natural > np.linalg.norm(chord, axis=-1) * (1 + SLACK_STRAIGHT)
     own = np.linalg.norm(problem.cable_total, axis=-1)
-    return np.asarray(np.linalg.norm(found.hanging.tension, axis=-1) < (1 - SLACK_HANGING) * own)
+    return np.asarray(np.where(own > 0, np.linalg.norm(found.hanging.tension, axis=-1) < (1 - SLACK_HANGING) * own, longer))
 
 
 def _feet(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:

@@ -55,7 +55,7 @@ STABLE, NEUTRAL, UNSTABLE, NONE, FAILED = range(5)
 
 @dataclass(frozen=True)
 class Mode:
-    """Lowest modes of one state: eigenvalues (mode,) relative to M, ascending, and shapes (mode, node, 6), greatest move one."""
+    """Lowest modes of one state: eigenvalues (mode,) relative to M, ascending, and shapes (mode, node, 6), the greatest move plus one."""
 
     value: Array
     shape: Array
@@ -113,8 +113,9 @@ def modes(problem: Problem, state: State, count: int = 4) -> Mode:
         scaled[d, : n - d] = k_band[: n - d, d] / (root[: n - d] * root[d:])
     value, vector = eig_banded(scaled, lower=True, select="i", select_range=(0, min(count, n) - 1))
     shapes = np.array([problem.whole_step(state, (v / root)[None])[0] for v in vector.T])
-    size = np.max(np.abs(np.concatenate([shapes[..., :3], shapes[..., 3:] * problem.structure.height], axis=-1)), axis=(1, 2))
-    return Mode(np.asarray(value), shapes / size[:, None, None])
+    moves = np.concatenate([shapes[..., :3], shapes[..., 3:] * problem.structure.height], axis=-1).reshape(len(shapes), -1)
+    greatest = np.take_along_axis(moves, np.argmax(np.abs(moves), axis=1)[:, None], axis=1)
+    return Mode(np.asarray(value), shapes / greatest[:, :, None])
 
 
 def turned_over(problem: Problem, state: State) -> NDArray[np.bool_]:

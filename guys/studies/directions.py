@@ -1,8 +1,9 @@
 """The worst wind direction, found rather than sampled.
 
-Every wind case is swept over the full circle, then each cable's and each anchor's greatest value (and every foot's) is narrowed down:
-around its best bearing so far, two bearings a third of the spacing away are added, round by round, until the spacing is below
-`FINE`.  The peak reported is the greatest value solved for, never an interpolation.
+Every wind case is swept over the full circle, then each cable's and each anchor's greatest value (and every foot's and head's) is
+narrowed down.  Through the best bearing so far and its neighbours goes a parabola; its vertex is solved for, and once the vertex is the
+best bearing itself, the bearings `CLOSE` on both sides of it, until the neighbours of the best are as near as that.  The peak reported
+is the greatest value solved for, never an interpolation.
 """
 
 from __future__ import annotations
@@ -19,9 +20,11 @@ from guys.rotation import Array
 from guys.studies.batch import Batch, join
 
 COARSE = math.radians(10)
-FINE = math.radians(0.5)
-SAME = math.radians(0.02)
+CLOSE = math.radians(1)
+"""A peak is narrowed down until its neighbours are this near, or a little more."""
+SAME = math.radians(0.25)
 """Bearings nearer than this are one."""
+ROUNDS = 6
 
 Solve = Callable[[Sequence[CaseLine]], Batch]
 
@@ -29,21 +32,13 @@ Solve = Callable[[Sequence[CaseLine]], Batch]
 def sweep(templates: Sequence[CaseLine], listed: Batch, solve: Solve) -> Batch:
     """All directions solved for, listed ones included, for one template line of every case with wind."""
     known = [line.wind_from for line in listed.lines if not math.isnan(line.wind_from)]
-    spacing = COARSE
-    ring = [b for b in np.arange(0.0, 2 * math.pi, spacing) if not _near(b, known)]
+    ring = [float(b) for b in np.arange(0.0, 2 * math.pi, COARSE) if not _near(b, known)]
     parts = [_with_wind(listed), solve(_lines(templates, ring))] if ring else [_with_wind(listed)]
-    while spacing > FINE:
-        so_far = join(parts)
-        spacing /= 3
-        bearings = [line.wind_from for line in so_far.lines]
-        fresh: list[float] = []
-        for best in _best_bearings(so_far, templates):
-            for side in (-spacing, spacing):
-                b = (best + side) % (2 * math.pi)
-                if not _near(b, bearings) and not _near(b, fresh):
-                    fresh.append(b)
-        if fresh:
-            parts.append(solve(_lines(templates, fresh)))
+    for _ in range(ROUNDS):
+        fresh = _worth_trying(join(parts), templates)
+        if not fresh:
+            break
+        parts.append(solve(_lines(templates, fresh)))
     return join(parts)
 
 
@@ -60,17 +55,43 @@ def _with_wind(batch: Batch) -> Batch:
     return batch.take(keep)
 
 
-def _best_bearings(batch: Batch, templates: Sequence[CaseLine]) -> list[float]:
-    """Bearings of the greatest value of every measure, case by case."""
+def _worth_trying(batch: Batch, templates: Sequence[CaseLine]) -> list[float]:
+    """Bearings where some measure of some case may be greater than at all those solved for."""
     values: Array = measures(batch.forces).joined()
     names = np.array([line.name for line in batch.lines])
     bearing = np.array([line.wind_from for line in batch.lines])
+    known = np.unique(bearing).tolist()
     out: list[float] = []
     for t in templates:
         rows = np.flatnonzero(names == t.name)
-        mine = np.where(np.isfinite(values[rows]), values[rows], -np.inf)
-        useful = np.isfinite(mine).any(axis=0) & (np.ptp(np.where(np.isfinite(mine), mine, 0.0), axis=0) > 0)
-        for k in rows[np.argmax(mine[:, useful], axis=0)]:
-            if not _near(float(bearing[k]), out):
-                out.append(float(bearing[k]))
+        rows = rows[np.argsort(bearing[rows])]
+        for column in values[rows].T:
+            for b in _around_peak(bearing[rows], column):
+                if not _near(b, known) and not _near(b, out):
+                    out.append(b)
     return out
+
+
+def _around_peak(bearing: Array, value: Array) -> list[float]:
+    """Bearings to try for one measure; `bearing` ascending round the circle."""
+    value = np.where(np.isfinite(value), value, -np.inf)
+    k = int(np.argmax(value))
+    if len(value) < 3 or np.ptp(value) == 0 or not np.isfinite(value[k]):
+        return []
+    here = float(bearing[k])
+    left, right = (float((bearing[(k + side) % len(value)] - here + math.pi) % (2 * math.pi) - math.pi) for side in (-1, 1))
+    if max(-left, right) < 1.5 * CLOSE:
+        return []
+    vertex = _vertex(left, right, float(value[k - 1] - value[k]), float(value[(k + 1) % len(value)] - value[k]))
+    if abs(vertex) > 0.5 * CLOSE:
+        return [(here + vertex) % (2 * math.pi)]
+    return [(here + max(left / 2, -CLOSE)) % (2 * math.pi), (here + min(right / 2, CLOSE)) % (2 * math.pi)]
+
+
+def _vertex(left: float, right: float, fall_left: float, fall_right: float) -> float:
+    """Where a parabola through (left, fall_left), (0, 0), (right, fall_right) is greatest; the middle where it has no greatest value."""
+    curve = (fall_right / right - fall_left / left) / (right - left)
+    if not math.isfinite(curve) or curve >= 0:
+        return 0.0
+    slope = fall_left / left - curve * left
+    return min(max(-slope / (2 * curve), left / 2), right / 2)
