@@ -39,6 +39,8 @@ SIDE_ROOM, TOP_ROOM = 17.0, 15.0
 BRACKET_OFF = 2.4
 FLAG = 2.1
 TIER = 5.0
+BESIDE = 0.8
+"""Words begin so far [mm] beside their leader, so that the leader of another anchor as far out passes."""
 MANY_CABLES = 9
 """With more, sections of an upright spar are bracketed in the margin, level with it."""
 
@@ -168,7 +170,7 @@ def below(point: Array, size: tuple[float, float], room: Rect, least: float, sid
     drop = np.arange(least, max(point[1] - room.bottom - high, least) + 1e-6, TIER / 3.0)
     boxes, cost = [], []
     for rank, side in enumerate(sides):
-        left = np.full(len(drop), point[0] + {-1.0: 0.9 - wide, 0.0: -wide / 2.0, 1.0: -0.9}[side])
+        left = np.full(len(drop), point[0] + {-1.0: -BESIDE - wide, 0.0: -wide / 2.0, 1.0: BESIDE}[side])
         boxes.append(np.column_stack([left, point[1] - drop - high, left + wide, point[1] - drop]))
         cost.append(drop + 0.7 * TIER * rank)
     return Wish(point, np.concatenate(boxes), np.concatenate(cost), clear=0.9, leader_from=2.2)
