@@ -76,7 +76,7 @@ def _around_peak(bearing: Array, value: Array) -> list[float]:
     """Bearings to try for one measure; `bearing` ascending round the circle."""
     value = np.where(np.isfinite(value), value, -np.inf)
     k = int(np.argmax(value))
-    if len(value) < 3 or np.ptp(value) == 0 or not np.isfinite(value[k]):
+    if len(value) < 3 or not np.isfinite(value[k]) or np.ptp(value) == 0:
         return []
     here = float(bearing[k])
     left, right = (float((bearing[(k + side) % len(value)] - here + math.pi) % (2 * math.pi) - math.pi) for side in (-1, 1))
