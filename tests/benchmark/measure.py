@@ -1,8 +1,9 @@
 """Timing of our own solver: what one case costs in a batch, where the time goes, and how it grows.
 
-The search for equilibrium (`solver.solve`) of all cases of a problem is timed from the still-air state, best of several runs; loads, the
-setting and the verdict are timed apart.  Bare factorisations are the very bands that the search factored, recorded and factored again by
-LAPACK alone.  The parts of a search are timed by wrapping the functions named in `PARTS`, which do not contain each other.
+The search for equilibrium (`solver.solve`) of all cases of a problem is timed from the still-air state, best of several runs, as processor
+time of its one thread, so that other work on the machine counts little; loads, the setting and the verdict are timed apart.  Bare
+factorisations are the very bands that the search factored, recorded and factored again by LAPACK alone.  The parts of a search are timed
+by wrapping the functions named in `PARTS`, which do not contain each other.
 """
 
 from __future__ import annotations
@@ -74,14 +75,14 @@ class Figures:
 
 def prepare(scenario: Scenario, finer: int = 1, directions: int | None = None) -> Prepared:
     """Build, set, and load with the file's wind directions, or with evenly spaced ones."""
-    began = time.perf_counter()
+    began = time.process_time()
     structure = build(scenario, finer)
     found = setting.find(structure)
-    between = time.perf_counter()
+    between = time.process_time()
     bearings = None if directions is None else [2 * np.pi * k / directions for k in range(directions)]
     placed = Placed(found.state.u[0], found.state.psi[0], found.length)
     loads = assemble(structure, lines_of(scenario, bearings), placed)
-    ended = time.perf_counter()
+    ended = time.process_time()
     return Prepared(found, Problem(structure, loads, found.length), between - began, ended - between)
 
 
@@ -91,13 +92,13 @@ def search(mast: Prepared) -> solver.Outcome:
 
 
 def least_time(work: Callable[[], object], repeats: int) -> float:
-    """Least of several wall times [s], after one run that is not counted."""
+    """Least of several processor times [s] of this one thread, after one run that is not counted."""
     work()
     spent = []
     for _ in range(repeats):
-        began = time.perf_counter()
+        began = time.process_time()
         work()
-        spent.append(time.perf_counter() - began)
+        spent.append(time.process_time() - began)
     return min(spent)
 
 
@@ -149,23 +150,23 @@ def bare_factorisations(mast: Prepared, repeats: int) -> float:
 
 
 def parts(mast: Prepared, repeats: int) -> dict[str, float]:
-    """Share of the wall time of a search spent in each of `PARTS`, and in the rest."""
+    """Share of the time of a search spent in each of `PARTS`, and in the rest."""
     spent = dict.fromkeys(PARTS, 0.0)
     with ExitStack() as wrapped:
         for part, names in PARTS.items():
             for name in names:
                 wrapped.enter_context(_timed(name, part, spent))
-        began = time.perf_counter()
+        began = time.process_time()
         for _ in range(repeats):
             search(mast)
-        whole = time.perf_counter() - began
+        whole = time.process_time() - began
     shares = {part: seconds / whole for part, seconds in spent.items()}
     return shares | {"the rest": 1.0 - sum(shares.values())}
 
 
 @contextmanager
 def _timed(name: str, part: str, spent: dict[str, float]) -> Iterator[None]:
-    """Wrap the function `module:name` so that its wall time is added to `spent[part]`."""
+    """Wrap the function `module:name` so that its time is added to `spent[part]`."""
     module, _, path = name.partition(":")
     *owners, last = path.split(".")
     owner: Any = importlib.import_module(module)
@@ -174,11 +175,11 @@ def _timed(name: str, part: str, spent: dict[str, float]) -> Iterator[None]:
     bare = getattr(owner, last)
 
     def timed(*arguments: Any, **named: Any) -> Any:
-        began = time.perf_counter()
+        began = time.process_time()
         try:
             return bare(*arguments, **named)
         finally:
-            spent[part] += time.perf_counter() - began
+            spent[part] += time.process_time() - began
 
     with patch.object(owner, last, timed):
         yield
