@@ -170,30 +170,41 @@ class Problem:
 
     def evaluate(self, state: State) -> Evaluation:
         """Net forces and moments of every case."""
-        s = self.structure
         bent = self._bend(state)
         arm_a, arm_b, chord = self.chords(state)
         hanging = self.pull(chord, state.tension)
-        gradient = np.zeros((self.cases, s.nodes, 6))
-        ends = beam.gradient(bent)
-        _add_at(gradient, s.elements.i, ends[..., :6])
-        _add_at(gradient, s.elements.j, ends[..., 6:])
-        present = self.loads.present[..., None]
-        for points, arm, force in ((s.cables.a, arm_a, -hanging.at_a * present), (s.cables.b, arm_b, hanging.at_b * present)):
-            _add_at(gradient, points.node, np.concatenate([force, cross(arm, force)], axis=-1))
         dyad = self.loads.dyad + state.psi @ self.loads.dyad
-        gradient[..., :3] -= self.loads.force
-        gradient[..., 3:] -= dyad_moment(dyad)
-        structural = gradient.copy()
-        gradient[:, s.anchor, :3] += self._springs[:, None] * state.u[:, s.anchor]
-        held, holding = joint.resist(s.joints, state.psi)
-        for k, (m, n) in enumerate(zip(s.joints.carrier_node, s.joints.spar_node, strict=True)):
-            gradient[:, m, 3:] += held[:, k, 0]
-            gradient[:, n, 3:] += held[:, k, 1]
+        structural = self._structural(bent, hanging, arm_a, arm_b, dyad)
+        gradient, holding = self._supported(state, structural)
         residual = band.unknowns_of(self.pattern, gradient, self.arms(state))
         reference = self._reference(hanging)
         error = np.max(np.abs(residual) / self.lever, axis=1, initial=0.0) / reference
         return Evaluation(bent, hanging, arm_a, arm_b, dyad, holding, structural, gradient, residual, error, reference)
+
+    def _structural(self, bent: beam.Bent, hanging: cable.Hanging, arm_a: Array, arm_b: Array, dyad: Array) -> Array:
+        """Net force and moment on every node (case, node, 6) of beams, cables and loads."""
+        s = self.structure
+        out = np.zeros((self.cases, s.nodes, 6))
+        ends = beam.gradient(bent)
+        _add_at(out, s.elements.i, ends[..., :6])
+        _add_at(out, s.elements.j, ends[..., 6:])
+        present = self.loads.present[..., None]
+        for points, arm, force in ((s.cables.a, arm_a, -hanging.at_a * present), (s.cables.b, arm_b, hanging.at_b * present)):
+            _add_at(out, points.node, np.concatenate([force, cross(arm, force)], axis=-1))
+        out[..., :3] -= self.loads.force
+        out[..., 3:] -= dyad_moment(dyad)
+        return out
+
+    def _supported(self, state: State, structural: Array) -> tuple[Array, Array]:
+        """The same with the springs of giving anchors and the joints, and the joints' Hessians."""
+        s = self.structure
+        out = structural.copy()
+        out[:, s.anchor, :3] += self._springs[:, None] * state.u[:, s.anchor]
+        held, holding = joint.resist(s.joints, state.psi)
+        for k, (carrier, spar) in enumerate(zip(s.joints.carrier_node, s.joints.spar_node, strict=True)):
+            out[:, carrier, 3:] += held[:, k, 0]
+            out[:, spar, 3:] += held[:, k, 1]
+        return out, holding
 
     @cached_property
     def _springs(self) -> Array:
