@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 import sheet_samples as samples
 
-from guys.drawing import box, compose, table
+from guys.drawing import box, compose, strip, table
 from guys.drawing.rounding import tongue
 from guys.results import SelfCheck
 
@@ -95,20 +95,20 @@ def test_small_print_names_program_input_and_self_check() -> None:
 )
 def test_state_in_words(states: tuple[str, ...], unsettled: tuple[bool, ...], said: str, alarming: bool) -> None:
     solution = replace(samples.solution(samples.FOUR), state=states, unsettled=unsettled)  # type: ignore[arg-type]
-    text, alarms = compose.strip_words(solution)[0]
+    text, alarms = strip.strip_words(solution)[0]
     assert text.startswith(said)
     assert alarms is alarming
 
 
 def test_a_failed_solver_is_not_called_a_fall() -> None:
-    text, alarms = compose.strip_words(replace(samples.solution(samples.FOUR), failed=True))[0]
+    text, alarms = strip.strip_words(replace(samples.solution(samples.FOUR), failed=True))[0]
     assert text.startswith("SOLVER FAILED")
     assert alarms
 
 
 def test_verdict_of_the_strip() -> None:
-    assert compose.strip_words(samples.solution(samples.FOUR))[1] == ("All 9 checks within, 4 not judged", False)
-    assert compose.strip_words(samples.solution(samples.EIGHT))[1] == ("8 of 17 checks PAST the allowable, 8 not judged", True)
+    assert strip.strip_words(samples.solution(samples.FOUR))[1] == ("All 9 checks within, 4 not judged", False)
+    assert strip.strip_words(samples.solution(samples.EIGHT))[1] == ("8 of 17 checks PAST the allowable, 8 not judged", True)
 
 
 def test_bases_stand_first_with_what_they_bear() -> None:

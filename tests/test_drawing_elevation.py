@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 import sheet_samples as samples
 
-from guys.drawing import elevation
+from guys.drawing import elevation, key, under_ground
 from guys.drawing.page import Page, Rect, new_page
 from guys.drawing.reading import View, look_bearing
 from guys.drawing.rounding import tongue
@@ -57,7 +57,7 @@ def test_looking_north_east_is_to_the_right() -> None:
 
 def test_guy_angles_are_those_in_space() -> None:
     solution = samples.solution(samples.FOUR)
-    line = elevation.anchor_line(solution, "S")  # 12.5 m out, 2 m below the foot; guys at 9 m and 17 m
+    line = under_ground.anchor_line(solution, "S")  # 12.5 m out, 2 m below the foot; guys at 9 m and 17 m
     low, high = degrees(atan2(11.0, 12.5)), degrees(atan2(19.0, 12.5))
     assert line.rest == f"  {low:.0f}° {high:.0f}°"
 
@@ -78,11 +78,11 @@ def test_a_leaning_spar_is_seen_from_the_side() -> None:
 
 
 def test_alike_sections_share_a_letter() -> None:
-    letters = [row[0] for row in elevation.lettered_sections(samples.solution(samples.BOOM))]
+    letters = [row[0] for row in key.lettered_sections(samples.solution(samples.BOOM))]
     assert letters == ["A", "A", "A", "B"]
 
 
 def test_fittings_are_numbered_from_the_foot_up() -> None:
-    rows = elevation.numbered_fittings(samples.solution(samples.PYLON))
+    rows = key.numbered_fittings(samples.solution(samples.PYLON))
     assert [n for n, _, _ in rows] == ["1", "2", "3"]
     assert [f.at for _, _, f in rows] == sorted(f.at for _, _, f in rows)

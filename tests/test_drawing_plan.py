@@ -10,7 +10,7 @@ import sheet_samples as samples
 from matplotlib.lines import Line2D
 from matplotlib.patches import Circle
 
-from guys.drawing import plan
+from guys.drawing import anchor_words, plan
 from guys.drawing.page import Page, Rect, new_page
 from guys.drawing.rounding import tongue
 from guys.results import Solution
@@ -89,13 +89,13 @@ def test_guys_of_anchors_at_one_bearing_are_drawn_apart() -> None:
 
 def test_words_of_an_anchor() -> None:
     solution = samples.solution(samples.FOUR)
-    words = [line.text for line in plan.anchor_words(solution, solution.worst_anchors[1], SI)]
+    words = [line.text for line in anchor_words.anchor_words(solution, solution.worst_anchors[1], SI)]
     assert words == ["E", "out 7.5 kN   up 11 kN", "97°   9.50 m   level +0.00 m", "wind from 95°"]
 
 
 def test_an_anchor_never_lifted_says_so() -> None:
-    assert plan.uplift_words(-300.0, SI) == "none"
-    assert plan.uplift_words(0.0, SI) == "none"
+    assert anchor_words.uplift_words(-300.0, SI) == "none"
+    assert anchor_words.uplift_words(0.0, SI) == "none"
 
 
 def test_no_ring_reaches_its_neighbour_and_no_bar_passes_its_guy() -> None:

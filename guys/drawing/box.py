@@ -31,6 +31,7 @@ from guys.drawing.rounding import (
     temperature,
     thickness,
 )
+from guys.drawing.strip import kinds, state_summary
 from guys.results import Finding, Solution
 
 SIZE = 8.6
@@ -76,32 +77,6 @@ def averaging_words(seconds: float) -> str:
 def _warnings(solution: Solution) -> list[Entry]:
     texts = dict.fromkeys([*solution.warnings, *solution.scenario.warnings])
     return [Entry("Warning", text, alarming=True) for text in texts]
-
-
-KINDS = {
-    "failed": "SOLVER FAILED (report it)",
-    "none": "NO EQUILIBRIUM (falls)",
-    "unstable": "UNSTABLE",
-    "neutral": "NEUTRAL (free to move)",
-    "spins": "free to spin about its own axis",
-    "stable": "stable",
-}
-"""How a case ended, gravest first."""
-
-
-def kinds(solution: Solution) -> list[str]:
-    """(case,) how each case ended; a neutral one that counts as standing only spins."""
-    settled = [not u for u in solution.unsettled] or [False] * len(solution.state)
-    return ["spins" if s == "neutral" and ok else s for s, ok in zip(solution.state, settled, strict=True)]
-
-
-def state_summary(solution: Solution) -> str:
-    """How many cases found an equilibrium of which kind, in words."""
-    ended = kinds(solution)
-    if not solution.failed and all(kind == "stable" for kind in ended):
-        return f"stable in all {len(ended)} cases and winds"
-    words = [f"{word} in {ended.count(kind)} of {len(ended)}" for kind, word in KINDS.items() if kind in ended]
-    return ", ".join([KINDS["failed"], *words] if solution.failed else words)
 
 
 def _state(solution: Solution) -> list[Entry]:

@@ -7,40 +7,34 @@ brackets along their spar, lettered; fittings are numbered flags; both are keyed
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
 
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Place, Wish, all_over, around, column, place
-from guys.drawing.lettering import fitted, shortened
+from guys.drawing.key import lettered_sections, numbered_fittings
+from guys.drawing.labels import Array, Field, all_over, around, column, place
+from guys.drawing.lettering import fitted
 from guys.drawing.page import Page, Rect
 from guys.drawing.reading import (
     View,
-    anchor_cables,
     at_station,
     base_point,
     dropping,
-    greatest,
-    guy_angle,
     hung_cable,
     hung_spar,
-    spar_named,
     stands,
 )
-from guys.drawing.rounding import Tongue, angle, bearing, force, level
+from guys.drawing.rounding import Tongue, bearing, level
 from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
-from guys.results import FootWorst, Solution
+from guys.drawing.under_ground import anchor_line, below_room, words_under_ground
+from guys.results import Solution
 from guys.scenario import model
 
 SIDE_ROOM, TOP_ROOM = 17.0, 15.0
 BRACKET_OFF = 2.4
 FLAG = 2.1
-TIER = 5.0
-BESIDE = 0.8
-"""Words begin so far [mm] beside their leader, so that the leader of another anchor as far out passes."""
 MANY_CABLES = 9
 """With more, sections of an upright spar are bracketed in the margin, level with it."""
 
@@ -83,15 +77,6 @@ def side_room(solution: Solution) -> float:
     return max(SIDE_ROOM, widest)
 
 
-def below_room(solution: Solution, zone: Rect, view: View) -> float:
-    """Height [mm] kept under the lowest ground for the words of anchors and bases."""
-    across = view.project(solution.anchors.position - base_point(solution))[:, 0]
-    wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
-    sides = [side for side in (across < 0.0, across >= 0.0) if side.any()]
-    rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in sides]
-    return 19.0 + TIER * max(rows, default=0)
-
-
 def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, view: View, tongue: Tongue) -> None:
     """Everything of the elevation."""
     low, high = bounds(solution, view)
@@ -108,7 +93,7 @@ def draw_elevation(page: Page, solution: Solution, zone: Rect, ratio: float, vie
     _spars(page, solution, on, field)
     _scale_bar(page, on, field, tongue)
     letters = _sections(page, solution, on, field)
-    _under_ground(page, solution, on, field, tongue)
+    words_under_ground(page, solution, on.on_page, field, tongue)
     symbols = _fittings(page, solution, on, field)
     _levels(page, solution, on, field, tongue)
     _letters(page, on, field, letters)
@@ -161,90 +146,6 @@ def _scale_bar(page: Page, on: ElevationFrame, field: Field, tongue: Tongue) -> 
         x = end + 5.0
 
 
-def below(point: Array, size: tuple[float, float], room: Rect, least: float, sides: Sequence[float]) -> Wish:
-    """Boxes in tiers under a point of the ground, the shallowest cheapest; a plumb leader rises to it.
-
-    sides : how the box lies to the leader: -1 ends at it, 0 has it in the middle, 1 begins at it; earlier ones are cheaper
-    """
-    wide, high = size
-    drop = np.arange(least, max(point[1] - room.bottom - high, least) + 1e-6, TIER / 3.0)
-    boxes, cost = [], []
-    for rank, side in enumerate(sides):
-        left = np.full(len(drop), point[0] + {-1.0: -BESIDE - wide, 0.0: -wide / 2.0, 1.0: BESIDE}[side])
-        boxes.append(np.column_stack([left, point[1] - drop - high, left + wide, point[1] - drop]))
-        cost.append(drop + 0.7 * TIER * rank)
-    return Wish(point, np.concatenate(boxes), np.concatenate(cost), clear=0.9, leader_from=2.2)
-
-
-def _under_ground(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
-    """Words of anchors and bases under the ground line, placed in the order that costs least in all."""
-    names = _anchor_wishes(solution, on, field)
-    bases = _base_wishes(page, solution, on, field, tongue)
-    orders = [[*names, *bases], [*bases, *names], [*reversed(names), *bases]]
-    trials = [_trial(field.copied(), order) for order in orders]
-    best = min(range(len(orders)), key=lambda i: sum(spot.cost for spot in trials[i]))
-    for (wish, lines), spot in zip(orders[best], trials[best], strict=True):
-        field.add_place(spot)
-        blocks.draw(page, spot.box, lines, "centre")
-        if spot.leader is not None:
-            page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
-        if spot.clashes:
-            page.crowded.append(f"{lines[0].text} at {wish.point}")
-
-
-Wished = tuple[Wish, Sequence[Line]]
-
-
-def _trial(field: Field, order: Sequence[Wished]) -> list[Place]:
-    """Places one after another; where a point has none below it, anywhere under its level."""
-    spots = []
-    for wish, _ in order:
-        deep = replace(field.room, top=min(field.room.top, float(wish.point[1])))
-        spots.append(place(field, wish, all_over(wish, deep, step=2.5)))
-    return spots
-
-
-def _anchor_wishes(solution: Solution, on: ElevationFrame, field: Field) -> list[Wished]:
-    """From the outermost inward, each ending at or beginning at its leader so that it stays clear of those still to come."""
-    at, foot = on.on_page(solution.anchors.position), on.on_page(base_point(solution))[0]
-    wishes: list[Wished] = []
-    for i in np.argsort(-np.abs(at[:, 0] - foot), kind="stable"):
-        line = anchor_line(solution, solution.anchors.name[i])
-        side = 1.0 if at[i, 0] >= foot else -1.0
-        inner = (at[:, 0] - at[i, 0]) * side
-        crowded = bool(((inner < 0.0) & (inner > -line.width / 2.0 - 2.0)).any()) or abs(at[i, 0] - foot) < line.width / 2.0 + 2.0
-        sides = [side] if crowded else [0.0, side]
-        wishes.append((below(at[i], blocks.size([line]), field.room, 2.0, sides), [line]))
-    return wishes
-
-
-def anchor_line(solution: Solution, anchor: str) -> Line:
-    """Name and the angles of its guys from the ground, low to steep, equal ones once; of many the range."""
-    angles = sorted(guy_angle(solution, i) for i in anchor_cables(solution, anchor))
-    texts = list(dict.fromkeys(angle(a) for a in angles))
-    row = " ".join(texts) if len(texts) < 4 else f"{texts[0]} to {texts[-1]}"
-    return Line(shortened(anchor, 20.0, style.SMALL, bold=True), style.SMALL, bold=True, rest=f"  {row}" if row else "")
-
-
-def _base_wishes(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> list[Wished]:
-    """Arrows of the bases drawn; what is to be written under them."""
-    wishes: list[Wished] = []
-    for worst in solution.worst_feet:
-        if worst.carried_by is None:
-            foot = on.on_page(spar_named(solution, worst.spar).drawn[0])
-            page.arrow(foot - [0.0, 8.0], foot - [0.0, 0.6], style.LOAD, 1.8, 2.6)
-            field.add_line([foot - [0.0, 8.0], foot])
-            lines = base_lines(worst, tongue)
-            wishes.append((below(foot, blocks.size(lines), field.room, 9.0, [0.0, -1.0, 1.0]), lines))
-    return wishes
-
-
-def base_lines(worst: FootWorst, tongue: Tongue) -> list[Line]:
-    """The greatest push on the ground and the greatest sideways force."""
-    down, side = tongue.say(force, greatest(worst.down).value), tongue.say(force, greatest(worst.sideways).value)
-    return [Line(f"{worst.spar} base", style.BODY, bold=True, colour=style.LOAD), Line(f"down {down}, sideways {side}", colour=style.LOAD)]
-
-
 def _levels(page: Page, solution: Solution, on: ElevationFrame, field: Field, tongue: Tongue) -> None:
     """Levels beside the spar where all of them find room there, else all in a column at the left."""
     tags = _level_tags(solution, on, tongue)
@@ -268,21 +169,6 @@ def _level_tags(solution: Solution, on: ElevationFrame, tongue: Tongue) -> list[
                 lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
                 tags.setdefault((end.spar, round(end.at * 100.0)), (on.on_page(where), lines))
     return list(tags.values())
-
-
-def lettered_sections(solution: Solution) -> list[tuple[str, model.Spar, int, model.Section]]:
-    """(letter, spar, index, section); alike sections of one spar share a letter."""
-    letters: dict[tuple[str, str], str] = {}
-    rows = []
-    for spar in solution.scenario.spar:
-        for i, section in enumerate(spar.section):
-            letter = letters.setdefault((spar.name, repr(section)), _letter(len(letters)))
-            rows.append((letter, spar, i, section))
-    return rows
-
-
-def _letter(index: int) -> str:
-    return chr(65 + index) if index < 26 else _letter(index // 26 - 1) + _letter(index % 26)
 
 
 def _sections(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> list[tuple[str, Array, Array]]:
@@ -320,12 +206,6 @@ def _letters(page: Page, on: ElevationFrame, field: Field, letters: list[tuple[s
         lines = [Line(letter, style.SMALL, bold=True, colour=style.GREY)]
         near = replace(around(at, blocks.size(lines), 0.1, across, farthest=8.0), leader_from=3.0)
         blocks.draw_placed(page, place(field, near, column(near, on.zone.right - 10.0, field.room)), at, lines)
-
-
-def numbered_fittings(solution: Solution) -> list[tuple[str, model.Spar, model.Fitting]]:
-    """(number, spar, fitting) from the foot up, spar by spar."""
-    pairs = [(spar, fitting) for spar in solution.scenario.spar for fitting in sorted(spar.fitting, key=lambda f: f.at)]
-    return [(str(i + 1), spar, fitting) for i, (spar, fitting) in enumerate(pairs)]
 
 
 def _fittings(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> list[tuple[str, Array]]:

@@ -1,4 +1,4 @@
-"""The plan: true to scale, grid north up, and at each anchor a bar along the guy for the horizontal pull and a ring for the uplift.
+"""The plan: true to scale, grid north up, and at each anchor a bar the way it pulls for the horizontal pull and a ring for the uplift.
 
 Bar length and ring radius are drawn to one printed scale of newtons per millimetre, the greatest over all cases and winds of each, so
 that anchors can be compared by eye; the digits stand beside them, rounded up.  A guy is solid where it stays taut in every case and
@@ -8,34 +8,31 @@ that coincide are drawn side by side.
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from math import isfinite
 
 import numpy as np
 
 from guys.drawing import blocks, style
+from guys.drawing.anchor_words import label_anchors, label_room, worst_of
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Place, Wish, all_over, around, clashes, place
+from guys.drawing.labels import Array, Field, Wish, all_over, around, clashes, place
 from guys.drawing.lettering import shortened
 from guys.drawing.page import Page, Rect, arc
 from guys.drawing.reading import (
     base_point,
     dropping,
     fall_circles,
-    from_base,
     greatest,
     hung_cable,
     hung_spar,
     pull_direction,
     wind_words,
 )
-from guys.drawing.rounding import Tongue, bearing, force, length, level
+from guys.drawing.rounding import Tongue, force, length
 from guys.drawing.scales import length_bar, load_bar, ratio_text, ratio_to_fit
 from guys.results import AnchorWorst, Solution
 
-MOST_ROOM = (52.0, 28.0)
-"""Most room [mm] kept at the sides and at top and bottom for words."""
 HEAD, STRIP = 12.0, 9.5
 LONGEST_BAR, LARGEST_RING, LEAST_RING = 24.0, 9.0, 4.0
 DOT = 0.9
@@ -73,13 +70,6 @@ def fitting_ratio(page: Page, solution: Solution, zone: Rect, tongue: Tongue) ->
     return ratio_to_fit((float(span[0]), float(span[1])), (room.width, room.height), page.shrink)
 
 
-def label_room(solution: Solution, tongue: Tongue) -> tuple[float, float]:
-    """Room [mm] kept at the sides and at top and bottom for the words of the outermost anchors."""
-    sizes = [blocks.size(anchor_words(solution, worst, tongue)) for worst in solution.worst_anchors]
-    wide, tall = (np.array(sizes).max(axis=0) if sizes else np.zeros(2)) + 3.0
-    return float(min(wide, MOST_ROOM[0])), float(min(tall, MOST_ROOM[1]))
-
-
 def frame(page: Page, solution: Solution, zone: Rect, ratio: float) -> PlanFrame:
     """The site centred in its zone."""
     room = zone.inset(0.0, STRIP, 0.0, HEAD)
@@ -100,7 +90,8 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     _spars(page, solution, on, field)
     for worst in solution.worst_anchors:
         _loads(page, solution, worst, on, field, per_newton)
-    _label_anchors(page, solution, on, field, per_newton, tongue)
+    rings = np.array([ring_radius(worst_of(solution, name), per_newton) for name in solution.anchors.name])
+    label_anchors(page, solution, field, on.on_page, rings, tongue)
     _label_spars(page, solution, on, field)
     _governing_wind(page, solution, on, field, tongue)
     _fall_circles(page, solution, on, field, tongue)
@@ -234,87 +225,6 @@ def ring_radius(worst: AnchorWorst, per_newton: float) -> float:
     """Radius [mm] kept free around an anchor: its ring, or its dot where it is never lifted."""
     up = greatest(worst.uplift).value
     return max(up * per_newton + 0.3 if isfinite(up) else 0.0, DOT + 0.3)
-
-
-def _label_anchors(page: Page, solution: Solution, on: PlanFrame, field: Field, per_newton: float, tongue: Tongue) -> None:
-    """Words at every anchor: in full, or, where not all find room, less of them (the table has the rest)."""
-    at = on.on_page(solution.anchors.position)
-    rings = np.array([ring_radius(_worst_of(solution, name), per_newton) for name in solution.anchors.name])
-    full = [anchor_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
-    short = [_short_words(solution, _worst_of(solution, name), tongue) for name in solution.anchors.name]
-    names = [_broken(name) for name in solution.anchors.name]
-    for words in (full, short, names):
-        spots = _best_places(field, at, rings, words, (on.room, on.on_page(base_point(solution))))
-        if not any(spot.clashes for spot in spots):
-            break
-    for spot, point, lines in zip(spots, at, words, strict=True):
-        field.add_place(spot)
-        blocks.draw_placed(page, spot, point, lines)
-
-
-def _best_places(field: Field, at: Array, rings: Array, words: list[list[Line]], around_what: tuple[Rect, Array]) -> list[Place]:
-    """Places in the order (crowded, outer, inner, western or southern ones first) that costs least in all."""
-    room, foot = around_what
-    wishes = []
-    for i, point in enumerate(at):
-        wish = around(point, blocks.size(words[i]), rings[i], point - foot)
-        wishes.append(replace(wish, rivals=np.delete(np.column_stack([at, rings]), i, axis=0)))
-    gaps = np.linalg.norm(at[:, None] - at[None], axis=-1) + 1e6 * np.eye(len(at))
-    away = np.linalg.norm(at - foot, axis=1)
-    orders = [np.argsort(key, kind="stable") for key in (gaps.min(axis=1, initial=1e6), -away, away, at[:, 0], at[:, 1])]
-    return min((_placed(field.copied(), wishes, order, room) for order in orders), key=lambda spots: sum(p.cost for p in spots))
-
-
-def _placed(field: Field, wishes: list[Wish], order: Iterable[np.int64], room: Rect) -> list[Place]:
-    spots = {int(i): place(field, wishes[i], all_over(wishes[i], room)) for i in order}
-    return [spots[i] for i in range(len(wishes))]
-
-
-def _worst_of(solution: Solution, anchor: str) -> AnchorWorst:
-    return next(w for w in solution.worst_anchors if w.name == anchor)
-
-
-def anchor_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list[Line]:
-    """Name, greatest horizontal and uplift, bearing and radius and level, and the wind that governs the resultant."""
-    turn, radius, _ = from_base(solution, point := solution.anchors.position[solution.anchors.name.index(worst.name)])
-    out, up, pull = greatest(worst.horizontal).value, greatest(worst.uplift).value, greatest(worst.resultant)
-    above = point[2] - base_point(solution)[2]
-    rise = uplift_words(up, tongue)
-    if not isfinite(pull.value):
-        return [*_broken(worst.name), *_site_lines(turn, radius, above, tongue), Line("no equilibrium, no loads", bold=True)]
-    loads = [f"out {tongue.say(force, out)}", f"up {rise}"]
-    lines = [Line(part, bold=False, colour=style.INK) for part in (loads if len(tongue.systems) > 1 else ["   ".join(loads)])]
-    lines += _site_lines(turn, radius, above, tongue)
-    wind = pull.wind_from if isfinite(pull.wind_from) else None
-    return [*_broken(worst.name), *lines, Line(wind_words(solution, pull.case, pull.wind_from), colour=style.WIND, wind_from=wind)]
-
-
-def _short_words(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> list[Line]:
-    """Name and loads in the first of the units, no more."""
-    out, up = greatest(worst.horizontal).value, greatest(worst.uplift).value
-    first = Tongue(tongue.systems[:1])
-    return [*_broken(worst.name), Line(f"out {first.say(force, out)}   up {uplift_words(up, first)}")]
-
-
-def _site_lines(turn: float, radius: float, above: float, tongue: Tongue) -> list[Line]:
-    """Bearing, radius and level from the base."""
-    first = f"{bearing(turn)}   "
-    return [
-        Line(f"{first if i == 0 else ''}{length(radius, system)}   level {level(above, system)}") for i, system in enumerate(tongue.systems)
-    ]
-
-
-def uplift_words(up: float, tongue: Tongue) -> str:
-    """An uplift, or "none" where the anchor is never lifted."""
-    return "none" if isfinite(up) and up <= 0.0 else tongue.say(force, up)
-
-
-def _broken(name: str, longest: int = 26) -> list[Line]:
-    """A name over as many lines as it needs."""
-    rows = [""]
-    for word in name.split():
-        rows = [*rows[:-1], f"{rows[-1]} {word}".strip()] if len(rows[-1]) + len(word) < longest else [*rows, word]
-    return [Line(row, style.NAME if len(name) < longest else style.BODY, bold=True) for row in rows if row]
 
 
 def _label_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:

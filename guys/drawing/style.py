@@ -26,6 +26,8 @@ BODY = 9.0
 SMALL = 9.0
 POINT_MM = 25.4 / 72.0
 LINE_PITCH = 1.30
+ROW = 4.2
+"""Height [mm] of a line of small print."""
 
 HAIR = 0.5
 THIN = 0.8

@@ -12,9 +12,9 @@ from dataclasses import dataclass
 from math import isfinite
 
 from guys.drawing import style
+from guys.drawing.anchor_words import uplift_words
 from guys.drawing.lettering import fitted, plain, width, wrapped
 from guys.drawing.page import Align, Page, Rect
-from guys.drawing.plan import uplift_words
 from guys.drawing.reading import (
     Governing,
     anchor_cables,
