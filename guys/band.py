@@ -144,9 +144,28 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
     return source
 
 
-def add_up(pattern: Pattern, parts: Sequence[Array]) -> Array:
+@dataclass(frozen=True)
+class Room:
+    """Memory for the tangents of so many cases, used again at every step: fresh memory costs as much as filling it.
+
+    blocks (6, 6, pair + 1, case); rows (unknown * width, case); band (case, unknown, width)
+    """
+
+    blocks: Array
+    rows: Array
+    band: Array
+
+
+def room(pattern: Pattern, cases: int) -> Room:
+    """Room for the tangents of so many cases."""
+    n, width = pattern.source.shape
+    return Room(np.empty((6, 6, len(pattern.pair) + 1, cases)), np.empty((n * width, cases)), np.empty((cases, n, width)))
+
+
+def add_up(pattern: Pattern, parts: Sequence[Array], into: Room) -> Array:
     """Contributions (6, 6, contribution, case), parts as given to `lay_out`, summed by pair: (6, 6, pair + 1, case), the last pair zero."""
-    blocks = np.zeros((6, 6, len(pattern.pair) + 1, parts[0].shape[3]))
+    blocks = into.blocks
+    blocks.fill(0.0)
     for part, rounds in zip(parts, pattern.plan, strict=True):
         for source, target in rounds:
             blocks[:, :, target] += part[:, :, source]
@@ -239,24 +258,28 @@ def _fold_one(pattern: Pattern, blocks: Array, s: int, m: int, keep: Array, onto
         put(s, b, keep[:, None] * sb)
 
 
-def to_band(pattern: Pattern, blocks: Array) -> Array:
-    """Lower band (case, unknown, width): entry [c, j, d] is K[j + d, j]."""
+def to_band(pattern: Pattern, blocks: Array, into: Room) -> Array:
+    """Lower band (case, unknown, width): entry [c, j, d] is K[j + d, j].  It holds until the room is used again."""
     for node, axes in zip(pattern.frames.node, pattern.frames.axes, strict=True):
         for (row, column), at in pattern.of.items():
             if row == node:
                 blocks[3:, :, at] = np.tensordot(axes, blocks[3:, :, at], axes=1)
             if column == node:
                 blocks[:, 3:, at] = np.tensordot(blocks[:, 3:, at], axes, axes=(1, 1)).swapaxes(1, 2)
-    cases, n, width = blocks.shape[3], *pattern.source.shape
-    flat = blocks.reshape(36 * blocks.shape[2], cases)[pattern.source.reshape(-1)]
-    return np.ascontiguousarray(flat.T).reshape(cases, n, width)
+    cases = blocks.shape[3]
+    np.take(blocks.reshape(-1, cases), pattern.source.reshape(-1), axis=0, out=into.rows, mode="clip")
+    into.band.reshape(cases, -1)[:] = into.rows.T
+    return into.band
 
 
 def factor(band: Array) -> tuple[Array, NDArray[np.bool_]]:
-    """Cholesky factors (case, unknown, width) and which cases are positive definite; the factor of any other is the identity."""
+    """Cholesky factors (case, unknown, width) and which cases are positive definite; the factor of any other is the identity.
+
+    The band is overwritten by the factors.
+    """
     cases, n, width = band.shape
     definite = np.ones(cases, dtype=bool)
-    factors = band.copy()
+    factors = np.ascontiguousarray(band)
     first = 0
     while first < cases and n:
         rest = factors[first:].reshape(-1, width)

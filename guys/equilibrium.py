@@ -207,6 +207,10 @@ class Problem:
         return out, holding
 
     @cached_property
+    def _room(self) -> band.Room:
+        return band.room(self.pattern, self.cases)
+
+    @cached_property
     def _springs(self) -> Array:
         """(anchor,) [N/m], 0 where an anchor does not give (its node is held)."""
         return np.where(np.isfinite(self.structure.give), self.structure.give, 0.0)
@@ -226,16 +230,19 @@ class Problem:
         return beam.bend(e.rods, d, at_i[..., 0], at_i[..., 1], at_j[..., 0], at_j[..., 1], thermal)
 
     def tangent(self, state: State, found: Evaluation) -> Array:
-        """The tangent at an evaluated state as a lower band (case, unknown, width), with the axial forces `state.axial` asks for."""
+        """The tangent at an evaluated state as a lower band (case, unknown, width), with the axial forces `state.axial` asks for.
+
+        It holds until the next tangent of this problem, which is written over it.
+        """
         s = self.structure
         axial = np.where(np.isnan(state.axial), found.bent.axial, state.axial)
         beams = beam.blocks(s.elements.rods, found.bent, axial)
-        blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)])
+        blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)], self._room)
         blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(found.dyad))
         if self._springs.any():
             for k in range(3):
                 blocks[k, k, s.anchor] += self._springs[:, None]
-        return band.to_band(self.pattern, band.fold(self.pattern, blocks, found.gradient, self.arms(state)))
+        return band.to_band(self.pattern, band.fold(self.pattern, blocks, found.gradient, self.arms(state)), self._room)
 
     def _cable_blocks(self, found: Evaluation) -> tuple[Array, Array, Array]:
         """(6, 6, cable, case) at B; and, where A is not held, at A and between them with the higher node's rows."""

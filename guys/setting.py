@@ -2,10 +2,10 @@
 
 Tensions are given at the `to` end, in still air under dead load, at the setting temperature, with all cables in place.  Lengths
 found at the drawn geometry would be 4 to 19 % off, because the spar shortens and bends; so Newton is done on the whole structure at once,
-net forces and the logarithms of what is asked for against node poses and the logarithms of the lengths.  A cable's measure m is
+net forces and measures of what is asked for against node poses and the logarithms of the lengths.  A cable's measure m is
 
-    tension given   |T_A| / target
-    tight           |T| at mid-length / (w L0) for a catenary;  chord / L0 for a straight cable
+    tension given   |T_A| / target for a catenary;  (chord/L0 - 1) EA / target for a straight cable, slack or not
+    tight           |T| at mid-length / (w L0) for a catenary;  1 + (chord/L0 - 1) / TIGHT for a straight cable
 
 and m = 1 is wanted.  The derivatives are exact: a change of L0 changes the net forces by -F^-1 dr/dL0 and half the weight at each end; the
 nodes answer by du = -K^-1 dg with the tangent already factored; and the end forces follow.
@@ -38,6 +38,8 @@ MET = 1e-10
 ROUNDS = 40
 LEAST_LEAD = 1 / 200
 """Least step, of the whole way, when measures are led to their targets."""
+TIGHT = 1e-3
+"""Stretch by which the measure of a straight cable that is to be just tight is scaled."""
 WILD = 0.5
 """Change of ln L0 in one round that tells Newton has lost its way."""
 STEP = 0.7
@@ -172,10 +174,11 @@ def _refuse_unmet(scenario: Scenario, asked: _Asked, measure: Array, met: NDArra
 
 @dataclass(frozen=True)
 class _Rates:
-    """At one state: measures (asked,) and out-of-balance `error`; by ln L0, with the nodes answering: log-derivatives of the measures
-    `rate`
-    (asked, asked) and steps of the unknowns `step` (unknown, asked); from what is still unbalanced: the same, `drift` (asked,), `settle`
-    (unknown,)."""
+    """Newton's blocks at one state, with the nodes eliminated.
+
+    measure (asked,) m; error: out-of-balance; by ln L0, the nodes answering: rate (asked, asked) of m, step (unknown, asked) of the
+    nodes; from what is still unbalanced: drift (asked,) of m, settle (unknown,) of the nodes
+    """
 
     measure: Array
     error: float
@@ -187,7 +190,7 @@ class _Rates:
 
 
 def _rates(problem: Problem, state: State, asked: _Asked) -> _Rates:
-    """Newton's blocks with the nodes eliminated; the tangent may be indefinite on the way, so it is solved densely."""
+    """The blocks; the tangent may be indefinite on the way, so it is solved densely."""
     found = problem.evaluate(state)
     k_full = band.dense(problem.tangent(state, found)[0])
     k_full[np.diag_indices_from(k_full)] += stability.ZERO * problem.mass
@@ -203,7 +206,7 @@ def _by_length(problem: Problem, state: State, found: Evaluation, asked: _Asked)
     """Change of the residual (unknown, asked), and of the mid-length tension (asked, 3), by ln L0 at fixed nodes."""
     s, k = problem.structure, asked.index
     hanging, length, EA = found.hanging, problem.length[k], problem.structure.cables.EA[k]
-    if s.scenario.analysis.cable == "straight":
+    if _is_straight(problem):
         _, _, chord = problem.chords(state)
         taut = (_norm(hanging.tension[0, k]) > 0)[:, None]
         unit = chord[0, k] / _norm(chord[0, k])[:, None]
@@ -222,13 +225,21 @@ def _by_length(problem: Problem, state: State, found: Evaluation, asked: _Asked)
     return band.unknowns_of(problem.pattern, gradient, arms).T, tension
 
 
+def _is_straight(problem: Problem) -> bool:
+    return problem.structure.scenario.analysis.cable == "straight"
+
+
+def _stretch_wanted(problem: Problem, asked: _Asked) -> Array:
+    """(asked,) stretch of straight cables at their targets, and the scale of what is left for those just tight."""
+    return np.where(asked.tight, TIGHT, asked.target / problem.structure.cables.EA[asked.index])
+
+
 def _measures(problem: Problem, state: State, found: Evaluation, asked: _Asked) -> Array:
     hanging, k = found.hanging, asked.index
-    if problem.structure.scenario.analysis.cable == "straight":
-        _, _, chord = problem.chords(state)
-        tight = _norm(chord[0, k]) / problem.length[k]
-    else:
-        tight = _norm(hanging.tension[0, k]) / _norm(problem.cable_total[0, k])
+    if _is_straight(problem):
+        stretch = _norm(problem.chords(state)[2][0, k]) / problem.length[k] - 1
+        return np.asarray(stretch / _stretch_wanted(problem, asked) + asked.tight)
+    tight = _norm(hanging.tension[0, k]) / _norm(problem.cable_total[0, k])
     return np.asarray(np.where(asked.tight, tight, _norm(hanging.at_a[0, k]) / asked.target))
 
 
@@ -247,27 +258,27 @@ def _chord_steps(problem: Problem, state: State, step: Array, k: NDArray[np.int6
 
 
 def _measure_rates(problem: Problem, state: State, found: Evaluation, asked: _Asked, step: Array, direct: Array | None) -> Array:
-    """Log-derivatives of the measures (asked, column) for node steps (unknown, column); `direct`: the columns' own lengths change too."""
-    k = asked.index
+    """Change of the measures (asked, column) with node steps (unknown, column); `direct`: the columns' own lengths change too."""
+    k, each = asked.index, np.arange(len(asked.index))
     moved = _chord_steps(problem, state, step, k)
+    own = np.zeros((len(k), step.shape[1])) if direct is None else np.eye(len(k))
+    if _is_straight(problem):
+        chord = problem.chords(state)[2][0, k]
+        stretch = _norm(chord) / problem.length[k] / _stretch_wanted(problem, asked)
+        return np.asarray(stretch[:, None] * (_log_rate(chord, moved) - own))
     by_chord = found.hanging.stiffness[0, k] @ moved
-    half, own = np.zeros_like(by_chord), np.zeros((len(k), step.shape[1]))
+    half = np.zeros_like(by_chord)
     if direct is not None:
-        each = np.arange(len(k))
         by_chord[each, :, each] += direct
         half[each, :, each] = 0.5 * problem.cable_total[0, k]
-        own = np.eye(len(k))
     by_end = _log_rate(found.hanging.at_a[0, k], by_chord + half)
-    if problem.structure.scenario.analysis.cable == "straight":
-        by_tight = _log_rate(problem.chords(state)[2][0, k], moved) - own
-    else:
-        by_tight = _log_rate(found.hanging.tension[0, k], by_chord) - own
-    return np.where(asked.tight[:, None], by_tight, by_end)
+    by_tight = _log_rate(found.hanging.tension[0, k], by_chord) - own
+    return np.asarray(_measures(problem, state, found, asked)[:, None] * np.where(asked.tight[:, None], by_tight, by_end))
 
 
-def _log_rate(force: Array, rate: Array) -> Array:
-    """d ln |T| from dT: (n, 3), (n, 3, m) -> (n, m)."""
-    return np.asarray(np.einsum("ni,nim->nm", force, rate) / np.maximum(dot(force, force), 1e-300)[:, None])
+def _log_rate(vector: Array, rate: Array) -> Array:
+    """d ln |v| from dv: (n, 3), (n, 3, m) -> (n, m)."""
+    return np.asarray(np.einsum("ni,nim->nm", vector, rate) / np.maximum(dot(vector, vector), 1e-300)[:, None])
 
 
 def _with_change(problem: Problem, change: Array, asked: _Asked) -> Problem:
@@ -306,13 +317,18 @@ def _meet(problem: Problem, state: State, asked: _Asked) -> tuple[Problem, State
 
 
 def _newton(problem: Problem, state: State, asked: _Asked, goal: Array) -> tuple[Problem, State] | None:
-    """Newton on net forces and measures together until ln m = goal, or None: lengths and nodes move at once."""
+    """Newton on net forces and measures together until ln m = goal, or None: lengths and nodes move at once.
+
+    ln m of a catenary and m itself of a straight cable are what lengths change evenly.
+    """
+    straight = _is_straight(problem)
     for _ in range(ROUNDS):
         rates = _rates(problem, state, asked)
-        miss = np.log(np.maximum(rates.measure, 1e-12)) - goal
+        scale = np.ones_like(rates.measure) if straight else 1 / np.maximum(rates.measure, 1e-12)
+        miss = rates.measure - np.exp(goal) if straight else np.clip(-np.log(scale) - goal, -STEP, STEP)
         if np.max(np.abs(miss), initial=0.0) < MET and rates.error < solver.ENOUGH:
             return problem, state
-        change: Array = np.linalg.lstsq(rates.rate, -np.clip(miss, -STEP, STEP) - rates.drift, rcond=1e-14)[0].astype(float)
+        change: Array = np.linalg.lstsq(scale[:, None] * rates.rate, -miss - scale * rates.drift, rcond=1e-14)[0].astype(float)
         step = (rates.settle + rates.step @ change)[None]
         share = _share(problem.limited(state, step, solver.TURN_CAP, solver.MOVE_CAP * problem.structure.height), step)
         if not np.isfinite(share) or np.max(np.abs(share * change)) > WILD:
@@ -385,11 +401,9 @@ def _nearest(rates: _Rates, away: Array, slope: Array) -> Array:
     One least squares of relative differences from the targets and of displacements (of the height) over `AS_DRAWN`: displacements that
     tensions can undo come out at a thousandth of that and less, those they could undo only by multiples of themselves stay.
     """
-    by_length = rates.measure[:, None] * rates.rate
-    now = rates.measure * (1 + rates.drift)
-    return _bounded(
-        np.concatenate([by_length, slope / AS_DRAWN]), np.concatenate([1 - now, -away / AS_DRAWN]), by_length, LEAST_SHARE - now
-    )
+    now = rates.measure + rates.drift
+    rows = np.concatenate([rates.rate, slope / AS_DRAWN])
+    return _bounded(rows, np.concatenate([1 - now, -away / AS_DRAWN]), rates.rate, LEAST_SHARE - now)
 
 
 def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:

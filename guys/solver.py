@@ -110,16 +110,20 @@ def _judge(seen: _Progress, open_: Index, error: Array) -> NDArray[np.bool_]:
 def damped_step(k_band: Array, residual: Array, mass: Array, damping: Array) -> tuple[Array, Array]:
     """Solve (K + mu M) d = -g with the least mu that makes it positive definite; the step and the mu to begin with next."""
     mu = np.maximum(damping, LEAST_DAMPING)
-    factors = np.empty_like(k_band)
-    missing = np.arange(len(k_band))
+    factors, definite = _shifted(k_band, mu, mass)
+    missing = np.flatnonzero(~definite)
     for _ in range(40):
-        shifted = k_band[missing].copy()
-        shifted[..., 0] += mu[missing, None] * mass
-        some, definite = band.factor(shifted)
-        factors[missing] = some
-        missing = missing[~definite]
         if len(missing) == 0:
             break
         mu[missing] = np.where(mu[missing] <= LEAST_DAMPING, FIRST_DAMPING, 10 * mu[missing])
+        factors[missing], definite = _shifted(k_band[missing], mu[missing], mass)
+        missing = missing[~definite]
     next_mu = np.where(mu > LEAST_DAMPING, mu / 5, mu)
     return band.solve(factors, -residual), np.where(next_mu < FIRST_DAMPING / 20, LEAST_DAMPING, next_mu)
+
+
+def _shifted(k_band: Array, mu: Array, mass: Array) -> tuple[Array, NDArray[np.bool_]]:
+    """Factors of K + mu M."""
+    shifted = k_band.copy()
+    shifted[..., 0] += mu[:, None] * mass
+    return band.factor(shifted)

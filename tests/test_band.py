@@ -78,7 +78,8 @@ def frame() -> Frames:
 def folded(pattern: Pattern, contributions: np.ndarray, gradient: np.ndarray, arms: np.ndarray) -> np.ndarray:
     """The band (case, unknown, width) of contributions (case, contribution, 6, 6)."""
     parts = [contributions[:, p].transpose(2, 3, 1, 0) for p in PARTS]
-    return band.to_band(pattern, band.fold(pattern, band.add_up(pattern, parts), gradient, arms))
+    room = band.room(pattern, len(contributions))
+    return band.to_band(pattern, band.fold(pattern, band.add_up(pattern, parts, room), gradient, arms), room)
 
 
 @pytest.mark.parametrize("name", RIDES)
@@ -149,7 +150,7 @@ def banded(rng: np.random.Generator, cases: int, n: int = 15, width: int = 4) ->
 
 def test_factor_solves_like_the_full_matrix(rng: np.random.Generator) -> None:
     k, b = banded(rng, 3), rng.normal(size=(3, 15, 2))
-    factors, definite = band.factor(k)
+    factors, definite = band.factor(k.copy())
     assert definite.all()
     x = band.solve(factors, b)
     for c in range(3):
@@ -162,7 +163,7 @@ def test_factor_finds_the_indefinite_cases_among_the_others(bad: list[int], rng:
     for row, case in enumerate(bad):
         k[case, (7 * row) % 15, 0] = -1.0
     alone = [np.linalg.eigvalsh(band.dense(one)).min() > 0 for one in k]
-    factors, definite = band.factor(k)
+    factors, definite = band.factor(k.copy())
     assert definite.tolist() == alone
     b = rng.normal(size=(5, 15))
     x = band.solve(factors, b)
@@ -173,9 +174,9 @@ def test_factor_finds_the_indefinite_cases_among_the_others(bad: list[int], rng:
 def test_a_case_is_factored_to_the_same_bits_alone_and_in_company(rng: np.random.Generator) -> None:
     k = banded(rng, 6)
     k[1, 3, 0] = -2.0
-    together = band.factor(k)[0]
+    together = band.factor(k.copy())[0]
     for case in (0, 2, 5):
-        assert np.array_equal(band.factor(k[case : case + 1])[0][0], together[case])
+        assert np.array_equal(band.factor(k[case : case + 1].copy())[0][0], together[case])
 
 
 def test_nothing_unknown_is_solved_at_once() -> None:
