@@ -168,19 +168,19 @@ def axis_of(spar: Spar) -> Array:
 
 def build(scenario: Scenario, finer: int = 1) -> Structure:
     """The structure of a scenario; `finer` multiplies the number of elements in every span."""
-    return _Builder(scenario, mesh.ELEMENTS * finer).structure()
+    return _Builder(scenario, finer).structure()
 
 
 class _Builder:
     """Collects nodes and points while the arrays are made; nothing of it outlives `build`."""
 
-    def __init__(self, scenario: Scenario, elements: int) -> None:
+    def __init__(self, scenario: Scenario, finer: int) -> None:
         self.scenario = scenario
         self.number = {spar.name: k for k, spar in enumerate(scenario.spar)}
         self.axes = np.array([axis_of(spar) for spar in scenario.spar])
         self.feet = self._feet()
         self.sections = [[properties(s, scenario.material, scenario.ice) for s in spar.section] for spar in scenario.spar]
-        self.cuts = [self._stations(k, elements) for k in range(len(scenario.spar))]
+        self.cuts = [self._stations(k, finer) for k in range(len(scenario.spar))]
         self.stations = [mesh.Stations(np.zeros(1)) if spar.rigid else cut for spar, cut in zip(scenario.spar, self.cuts, strict=True)]
         self.first = np.concatenate([[0], np.cumsum([len(s.station) for s in self.stations])]).astype(np.int64)
         self.anchor = {a.name: int(self.first[-1]) + k for k, a in enumerate(scenario.anchor)}
@@ -198,12 +198,13 @@ class _Builder:
                     feet[k] = feet[m] + spar.foot.at * self.axes[m, 2]
         return feet
 
-    def _stations(self, k: int, elements: int) -> mesh.Stations:
+    def _stations(self, k: int, finer: int) -> mesh.Stations:
         spar = self.scenario.spar[k]
         boundaries = np.cumsum([s.length for s in spar.section])[:-1]
         ends = [end for c in self.scenario.cable for end in (c.from_, c.to) if isinstance(end, SparPoint) and end.spar == spar.name]
         heels = [s.foot.at for s in self.scenario.spar if isinstance(s.foot, HeelFoot) and s.foot.spar == spar.name]
-        return mesh.divide(spar.length, boundaries.tolist(), [e.at for e in ends] + heels, [f.at for f in spar.fitting], elements)
+        held, attached = [e.at for e in ends] + heels, [f.at for f in spar.fitting]
+        return mesh.divide(spar.length, boundaries.tolist(), held, attached, mesh.ELEMENTS, finer)
 
     def point(self, k: int, at: float, offset: Array | None = None) -> tuple[int, Array, Array]:
         """Node, arm and growth of a point at `at` along spar k, `offset` from its axis."""
