@@ -208,8 +208,9 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
     stuck = _still_stiff(whole, setting, path)
     if len(stuck):
         _walk(whole, start, path, stuck, least_step * FINER)
-        path.stuck[:] = False
-        path.stuck[_still_stiff(whole, setting, path)] = True
+        stuck = _still_stiff(whole, setting, path)
+    path.stuck[:] = False
+    path.stuck[stuck] = True
     near = turn_between(whole, judged.state.take(rows), whole.repeat(setting)) < FAR
     for k, case in enumerate(rows):
         _arrive(whole, judged, path, k, int(case), bool(near[k]))
