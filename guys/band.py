@@ -148,18 +148,24 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
 class Room:
     """Memory for the tangents of so many cases, used again at every step: fresh memory costs as much as filling it.
 
-    blocks (6, 6, pair + 1, case); rows (unknown * width, case); band (case, unknown, width)
+    elements (3, 6, 6, element, case); blocks (6, 6, pair + 1, case); rows (unknown * width, case); band (case, unknown, width)
     """
 
+    elements: Array
     blocks: Array
     rows: Array
     band: Array
 
 
-def room(pattern: Pattern, cases: int) -> Room:
-    """Room for the tangents of so many cases."""
+def room(pattern: Pattern, cases: int, elements: int) -> Room:
+    """Room for the tangents of so many cases and elements."""
     n, width = pattern.source.shape
-    return Room(np.empty((6, 6, len(pattern.pair) + 1, cases)), np.empty((n * width, cases)), np.empty((cases, n, width)))
+    return Room(
+        elements=np.empty((3, 6, 6, elements, cases)),
+        blocks=np.empty((6, 6, len(pattern.pair) + 1, cases)),
+        rows=np.empty((n * width, cases)),
+        band=np.empty((cases, n, width)),
+    )
 
 
 def add_up(pattern: Pattern, parts: Sequence[Array], into: Room) -> Array:
@@ -267,8 +273,8 @@ def to_band(pattern: Pattern, blocks: Array, into: Room) -> Array:
             if column == node:
                 blocks[:, 3:, at] = np.tensordot(blocks[:, 3:, at], axes, axes=(1, 1)).swapaxes(1, 2)
     cases = blocks.shape[3]
-    np.take(blocks.reshape(-1, cases), pattern.source.reshape(-1), axis=0, out=into.rows, mode="clip")
-    into.band.reshape(cases, -1)[:] = into.rows.T
+    np.take(blocks.reshape(36 * blocks.shape[2], cases), pattern.source.reshape(-1), axis=0, out=into.rows, mode="clip")
+    into.band.reshape(cases, into.rows.shape[0])[:] = into.rows.T
     return into.band
 
 

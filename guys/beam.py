@@ -158,10 +158,10 @@ def gradient(bent: Bent) -> Array:
     return np.ascontiguousarray(np.concatenate([-by_d, by_i, by_d, by_j]).transpose(2, 1, 0))
 
 
-def blocks(rods: Rods, bent: Bent, axial: Array) -> tuple[Array, Array, Array]:
-    """Second derivative of the energy in blocks (6, 6, element, case): at node i, at node j, and rows of j with columns of i.
+def blocks(rods: Rods, bent: Bent, axial: Array, into: Array | None = None) -> Array:
+    """Second derivative of the energy in blocks (3, 6, 6, element, case): at node i, at node j, and rows of j with columns of i.
 
-    axial : (case, element) [N] axial force to build the geometric part with
+    axial : (case, element) [N] axial force to build the geometric part with;  into : memory to write to
     """
     e, l, tau = bent.e, bent.l, bent.slope[4]
     n = np.ascontiguousarray(axial.T)
@@ -194,7 +194,11 @@ def blocks(rods: Rods, bent: Bent, axial: Array) -> tuple[Array, Array, Array]:
     ))  # fmt: skip
     ji = outer(per * s_j, s_i) + outer(q_b * cb2, cb1) + outer(q_a * ca2, ca1) - stiff - 0.5 * a
     add_diagonal(ji, torque * tau)
-    return block(dd, -id_, -flipped(id_), ii), block(dd, jd, flipped(jd), jj), block(-dd, -jd, flipped(id_), ji)
+    out = np.empty((3, 6, 6, *l.shape)) if into is None else into
+    block(dd, -id_, -flipped(id_), ii, out[0])
+    block(dd, jd, flipped(jd), jj, out[1])
+    block(-dd, -jd, flipped(id_), ji, out[2])
+    return out
 
 
 def _turning_block(

@@ -49,8 +49,8 @@ def add_skew(m: Array, v: Array) -> None:
         m[b, a] += v[c]
 
 
-def block(uu: Array, tu: Array, ut: Array, tt: Array) -> Array:
-    """(6, 6, ...) from its translation (u) and rotation (t) quarters."""
-    out = np.empty((6, 6, *uu.shape[2:]))
+def block(uu: Array, tu: Array, ut: Array, tt: Array, into: Array | None = None) -> Array:
+    """(6, 6, ...) from its translation (u) and rotation (t) quarters, in fresh memory or `into` some."""
+    out = np.empty((6, 6, *uu.shape[2:])) if into is None else into
     out[:3, :3], out[3:, :3], out[:3, 3:], out[3:, 3:] = uu, tu, ut, tt
     return out

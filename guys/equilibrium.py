@@ -208,7 +208,7 @@ class Problem:
 
     @cached_property
     def _room(self) -> band.Room:
-        return band.room(self.pattern, self.cases)
+        return band.room(self.pattern, self.cases, len(self.structure.elements.i))
 
     @cached_property
     def _springs(self) -> Array:
@@ -236,7 +236,7 @@ class Problem:
         """
         s = self.structure
         axial = np.where(np.isnan(state.axial), found.bent.axial, state.axial)
-        beams = beam.blocks(s.elements.rods, found.bent, axial)
+        beams = beam.blocks(s.elements.rods, found.bent, axial, self._room.elements)
         blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)], self._room)
         blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(found.dyad))
         if self._springs.any():

@@ -78,7 +78,7 @@ def frame() -> Frames:
 def folded(pattern: Pattern, contributions: np.ndarray, gradient: np.ndarray, arms: np.ndarray) -> np.ndarray:
     """The band (case, unknown, width) of contributions (case, contribution, 6, 6)."""
     parts = [contributions[:, p].transpose(2, 3, 1, 0) for p in PARTS]
-    room = band.room(pattern, len(contributions))
+    room = band.room(pattern, len(contributions), 0)
     return band.to_band(pattern, band.fold(pattern, band.add_up(pattern, parts, room), gradient, arms), room)
 
 

@@ -123,7 +123,7 @@ def out_of_balance(chain: Chain, bent: beam.Bent, factor: float) -> Array:
 def tangent(chain: Chain, bent: beam.Bent, axial: Array | None = None) -> Array:
     """(unknown, unknown) the tangent, full, since it need not be definite here."""
     parts = beam.blocks(chain.rods, bent, bent.axial if axial is None else axial)
-    room = band.room(chain.pattern, 1)
+    room = band.room(chain.pattern, 1, len(chain.rods.h))
     return band.dense(band.to_band(chain.pattern, band.add_up(chain.pattern, parts, room), room)[0])
 
 
