@@ -84,8 +84,10 @@ class Judged:
 
 def classify(problem: Problem, state: State) -> Index:
     """STABLE, NEUTRAL or UNSTABLE for every case, by the tangent of the present position."""
-    k_band = tangent(problem, state)
     code = np.full(problem.cases, STABLE)
+    if problem.cases == 0:
+        return code
+    k_band = tangent(problem, state)
     rest = np.arange(problem.cases)
     for sign, worse in ((-1.0, NEUTRAL), (1.0, UNSTABLE)):
         shifted = k_band[rest]
