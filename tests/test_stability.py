@@ -136,6 +136,18 @@ def test_a_spar_that_hangs_where_the_search_left_it_does_not_stand() -> None:
     assert len(s.warnings) == 1
 
 
+def test_a_solver_that_does_not_get_there_is_not_a_structure_that_falls() -> None:
+    """A mast of 18 m as stiff as a tower ten metres across: rounding is above what counts as converged, and that is what is said."""
+    document = made.mast(30.0)
+    document["spar"][0]["section"] = [{**made.bar(18.0, mass=20.0, EI=1e12, drag=1.2), "EA": 1e11}]
+    solved = made.cases(document)
+    assert solved.judged.code.tolist() == [stability.FAILED]
+    assert solved.judged.stuck.tolist() == [True]
+    s = made.solved(document)
+    assert s.failed
+    assert s.reason[1] == "the solver failed on this case; this is a fault of the program, not a statement about the structure"
+
+
 def windy_pylon(area: float) -> made.Document:
     """The pylon leaning 15 degrees east on two backstays, blown at from the east by a uniform wind on a weightless panel at its head."""
     document = made.pylon(wind=made.wind(90.0, speed=20.0))
