@@ -18,7 +18,8 @@ began = time.perf_counter()
 child = subprocess.Popen([sys.executable, "-c", *sys.argv[1:]], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
 _, code, used = os.wait4(child.pid, 0)
 seconds, child.returncode = time.perf_counter() - began, os.waitstatus_to_exitcode(code)
-print(json.dumps({"seconds": seconds, "megabytes": used.ru_maxrss / 1024, "status": child.returncode}))
+busy = used.ru_utime + used.ru_stime
+print(json.dumps({"seconds": seconds, "busy": busy, "megabytes": used.ru_maxrss / 1024, "status": child.returncode}))
 """
 """Starts the program from a small process: a child's peak memory counts what its parent held when it was started."""
 TWO_CASES = '\n[[case]]\nname = "full wind"\nwind = 1.0\n\n[[case]]\nname = "half wind"\nwind = 0.5\n'
@@ -26,9 +27,10 @@ TWO_CASES = '\n[[case]]\nname = "full wind"\nwind = 1.0\n\n[[case]]\nname = "hal
 
 @dataclass(frozen=True)
 class Run:
-    """Least wall time [s] of several runs and greatest peak memory [MB]; exit status of the last."""
+    """Least wall time and least processor time [s] of several runs, greatest peak memory [MB]; exit status of the last."""
 
     seconds: float
+    busy: float
     megabytes: float
     status: int
 
@@ -36,7 +38,7 @@ class Run:
 def run(arguments: list[str], repeats: int) -> Run:
     """Start the program several times in a fresh interpreter."""
     runs = [_one(arguments) for _ in range(repeats)]
-    return Run(min(r.seconds for r in runs), max(r.megabytes for r in runs), runs[-1].status)
+    return Run(min(r.seconds for r in runs), min(r.busy for r in runs), max(r.megabytes for r in runs), runs[-1].status)
 
 
 def _one(arguments: list[str]) -> Run:
