@@ -24,6 +24,8 @@ AGREES = 1e-6
 """Greatest difference of any end tension, relative to the reference force, that still is the same answer."""
 SOLVED = 1e-8
 """Out-of-balance at which the re-solve counts as solved."""
+HELD = 1e-2
+"""Of the scale of the tangent, added to the frozen factor: a free spin then does not run away, and ordinary motions hardly feel it."""
 EVALUATIONS = 120
 
 Verdict = Literal["agrees", "inconclusive", "other stable state"]
@@ -43,9 +45,7 @@ def resolve(problem: Problem, answer: State) -> Resolved:
     from scipy.optimize import least_squares
 
     at_answer = problem.evaluate(answer)
-    lower: Array = np.linalg.cholesky(
-        band.dense(stability.tangent(problem, answer)[0]) + 2 * stability.ZERO * np.diag(problem.mass)
-    ).astype(float)
+    lower: Array = np.linalg.cholesky(band.dense(stability.tangent(problem, answer)[0]) + HELD * np.diag(problem.mass)).astype(float)
     start = _beside(problem, lower)
 
     def step(y: Array) -> Array:

@@ -108,7 +108,10 @@ class _Worst:
         """Greatest value of one item; `windy`: only in cases with wind."""
         a, b = getattr(self.listed, group)[:, item], getattr(self.swept, group)[:, item]
         if windy:
-            a = np.where([math.isnan(line.wind_from) for line in self.listed_lines], np.nan, a)
+            a, b = (
+                np.where([math.isnan(line.wind_from) for line in lines], np.nan, x)
+                for x, lines in ((a, self.listed_lines), (b, self.swept_lines))
+            )
         return extremes.extreme(a, self.listed_lines, b, self.swept_lines)
 
 
