@@ -95,12 +95,12 @@ def _rounds(targets: Index) -> tuple[tuple[Selection, Selection], ...]:
     for row, target in enumerate(targets.tolist()):
         seen[target] = seen.get(target, -1) + 1
         rounds.setdefault(seen[target], []).append(row)
-    return tuple((_selection(np.array(r)), _selection(targets[r])) for r in rounds.values())
+    return tuple((selection(np.array(r)), selection(targets[r])) for r in rounds.values())
 
 
-def _selection(index: Index) -> Selection:
+def selection(index: Index) -> Selection:
     """A slice where the index runs on without a gap: numpy then copies nothing."""
-    if (np.diff(index) == 1).all():
+    if len(index) and (np.diff(index) == 1).all():
         return slice(int(index[0]), int(index[-1]) + 1)
     return index
 
@@ -148,13 +148,14 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
 class Room:
     """Memory for the tangents of so many cases, used again at every step: fresh memory costs as much as filling it.
 
-    elements (3, 6, 6, element, case); blocks (6, 6, pair + 1, case); rows (unknown * width, case); band (case, unknown, width)
+    elements (3, 6, 6, element, case); blocks (6, 6, pair + 1, case); rows (unknown * width, case); band, factors (case, unknown, width)
     """
 
     elements: Array
     blocks: Array
     rows: Array
     band: Array
+    factors: Array
 
 
 def room(pattern: Pattern, cases: int, elements: int) -> Room:
@@ -165,6 +166,7 @@ def room(pattern: Pattern, cases: int, elements: int) -> Room:
         blocks=np.empty((6, 6, len(pattern.pair) + 1, cases)),
         rows=np.empty((n * width, cases)),
         band=np.empty((cases, n, width)),
+        factors=np.empty((cases, n, width)),
     )
 
 

@@ -101,11 +101,10 @@ def _fixed(v: Array) -> Array:
 def bend(rods: Rods, d: Array, dy_i: Array, dz_i: Array, dy_j: Array, dz_j: Array, thermal: Array) -> Bent:
     """Deformations and generalised forces.
 
-    d : (case, element, 3) [m] relative displacement u_j - u_i
-    dy_i ... dz_j : (case, element, 3) change of the end triads' y and z, (R - I) y0 and so on
-    thermal : (case, element) free thermal strain
+    d : (3, element, case) [m] relative displacement u_j - u_i
+    dy_i ... dz_j : (3, element, case) change of the end triads' y and z, (R - I) y0 and so on
+    thermal : (element, case) free thermal strain
     """
-    d, dy_i, dz_i, dy_j, dz_j = (first(v) for v in (d, dy_i, dz_i, dy_j, dz_j))
     t0, y0, z0 = _fixed(rods.t), _fixed(rods.y), _fixed(rods.z)
     h = rods.h[:, None]
     growth = 2 * h * dot(t0, d) + dot(d, d)
@@ -120,7 +119,7 @@ def bend(rods: Rods, d: Array, dy_i: Array, dz_i: Array, dy_j: Array, dz_j: Arra
     slope = np.stack([b1, b2, a1, a2, tau])
     bow = np.stack([4 * b1 - b2, 4 * b2 - b1, 4 * a1 - a2, 4 * a2 - a1]) * (h / 30)
     bowing = 0.5 * (bow[0] * b1 + bow[1] * b2 + bow[2] * a1 + bow[3] * a2)
-    axial = rods.EA[:, None] / h * (stretched - thermal.T * h + bowing)
+    axial = rods.EA[:, None] / h * (stretched - thermal * h + bowing)
     axes = np.stack([y_i, y_j, z_i, z_j])
     across = (axes - slope[:4, None] * e) / l
     turning = np.stack([cross(v, e) for v in axes])

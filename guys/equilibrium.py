@@ -207,7 +207,8 @@ class Problem:
         return out, holding
 
     @cached_property
-    def _room(self) -> band.Room:
+    def room(self) -> band.Room:
+        """Memory for the tangents of these cases; one search at a time may use it."""
         return band.room(self.pattern, self.cases, len(self.structure.elements.i))
 
     @cached_property
@@ -221,13 +222,23 @@ class Problem:
         return np.asarray(np.maximum.reduce([self.loads.weight, self.loads.wind_force, tension, np.ones(self.cases)]))
 
     def _bend(self, state: State) -> beam.Bent:
-        e, s = self.structure.elements, self.structure
-        spar_axes = np.swapaxes(s.axes[np.maximum(s.spar, 0)][:, :2], -1, -2)
-        moved = state.psi @ spar_axes
-        d = state.u[:, e.j] - state.u[:, e.i]
-        thermal = self.loads.warming[:, None] * e.expansion
-        at_i, at_j = moved[:, e.i], moved[:, e.j]
-        return beam.bend(e.rods, d, at_i[..., 0], at_i[..., 1], at_j[..., 0], at_j[..., 1], thermal)
+        s, e = self.structure, self.structure.elements
+        u, psi = columns.first(state.u), columns.first(state.psi)
+        y, z = (np.sum(psi * axis[None, :, :, None], axis=1) for axis in self._triads)
+        i, j = self._ends
+        thermal = e.expansion[:, None] * self.loads.warming
+        return beam.bend(s.elements.rods, u[:, j] - u[:, i], y[:, i], z[:, i], y[:, j], z[:, j], thermal)
+
+    @cached_property
+    def _triads(self) -> tuple[Array, Array]:
+        """(3, node) the drawn axes every node turns with as its elements' y and z."""
+        axes = self.structure.axes[np.maximum(self.structure.spar, 0)]
+        return axes[:, 0].T, axes[:, 1].T
+
+    @cached_property
+    def _ends(self) -> tuple[band.Selection, band.Selection]:
+        """Nodes at both ends of the elements."""
+        return band.selection(self.structure.elements.i), band.selection(self.structure.elements.j)
 
     def tangent(self, state: State, found: Evaluation) -> Array:
         """The tangent at an evaluated state as a lower band (case, unknown, width), with the axial forces `state.axial` asks for.
@@ -236,13 +247,13 @@ class Problem:
         """
         s = self.structure
         axial = np.where(np.isnan(state.axial), found.bent.axial, state.axial)
-        beams = beam.blocks(s.elements.rods, found.bent, axial, self._room.elements)
-        blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)], self._room)
+        beams = beam.blocks(s.elements.rods, found.bent, axial, self.room.elements)
+        blocks = band.add_up(self.pattern, [*beams, *self._cable_blocks(found), *_joint_blocks(found.holding, s.joints)], self.room)
         blocks[3:, 3:, : s.nodes] -= columns.first(dyad_curvature(found.dyad))
         if self._springs.any():
             for k in range(3):
                 blocks[k, k, s.anchor] += self._springs[:, None]
-        return band.to_band(self.pattern, band.fold(self.pattern, blocks, found.gradient, self.arms(state)), self._room)
+        return band.to_band(self.pattern, band.fold(self.pattern, blocks, found.gradient, self.arms(state)), self.room)
 
     def _cable_blocks(self, found: Evaluation) -> tuple[Array, Array, Array]:
         """(6, 6, cable, case) at B; and, where A is not held, at A and between them with the higher node's rows."""
@@ -272,7 +283,7 @@ class Problem:
                 out[:, node, 3:] = out[:, carrier, 3:]
         return out
 
-    def limited(self, state: State, step: Array, turning: float, moving: float) -> Array:
+    def limited(self, state: State, step: Array, turning: float | Array, moving: float | Array) -> Array:
         """The step (case, unknown), shortened where it would turn a node more than `turning` [rad] or move one more than `moving` [m]."""
         whole = self.whole_step(state, step)
         turns = np.max(np.abs(whole[..., 3:]), axis=(1, 2), initial=0.0)

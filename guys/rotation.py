@@ -64,8 +64,14 @@ def exp_minus_identity(theta: Array) -> Array:
     s = np.where(small, 1 - square / 6 * (1 - square / 20 * (1 - square / 42 * (1 - square / 72))), np.sin(safe) / safe)
     half = np.sin(safe / 2) / safe
     c = np.where(small, 0.5 - square / 24 * (1 - square / 30 * (1 - square / 56 * (1 - square / 90))), 2 * half * half)
-    k = skew(theta)
-    return s[..., None, None] * k + c[..., None, None] * (outer(theta, theta) - square[..., None, None] * np.eye(3))
+    x, y, z = theta[..., 0], theta[..., 1], theta[..., 2]
+    sx, sy, sz, cx, cy, cz = s * x, s * y, s * z, c * x, c * y, c * z
+    out = np.empty((*theta.shape, 3))
+    out[..., 0, 0], out[..., 1, 1], out[..., 2, 2] = -(cy * y + cz * z), -(cx * x + cz * z), -(cx * x + cy * y)
+    out[..., 0, 1], out[..., 1, 0] = cx * y - sz, cx * y + sz
+    out[..., 0, 2], out[..., 2, 0] = cx * z + sy, cx * z - sy
+    out[..., 1, 2], out[..., 2, 1] = cy * z - sx, cy * z + sx
+    return out
 
 
 def turn(psi: Array, theta: Array) -> Array:

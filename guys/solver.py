@@ -67,6 +67,8 @@ class _Progress:
     stopped: NDArray[np.bool_]
     damping: Array
     stalled: Index
+    reach: Array
+    last: Array
 
 
 def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int = ROUNDS) -> Outcome:
@@ -74,8 +76,9 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
     cases = problem.cases
     state = start.take(np.arange(cases))
     seen = _Progress(
-        np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64)
-    )
+        np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64),
+        np.ones(cases), np.zeros((cases, problem.pattern.unknowns)),
+    )  # fmt: skip
     open_, part, here = np.arange(cases), problem, state
     for _ in range(rounds):
         found = part.evaluate(here)
@@ -88,8 +91,9 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
             state.put(open_[done], replace(here, tension=found.hanging.tension).take(np.flatnonzero(done)))
         if done.all():
             break
-        step, seen.damping[open_] = damped_step(part.tangent(here, found), found.residual, part.mass, seen.damping[open_])
-        here = part.advance(here, found, part.limited(here, step, TURN_CAP, MOVE_CAP * part.structure.height))
+        tangent = part.tangent(here, found)
+        step, seen.damping[open_] = damped_step(tangent, found.residual, part.mass, seen.damping[open_], part.room.factors)
+        here = part.advance(here, found, _capped(part, here, step, seen, open_))
         seen.rounds[open_[~done]] += 1
         if done.any():
             keep = np.flatnonzero(~done)
@@ -97,6 +101,20 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
     else:
         state.put(open_, here)
     return Outcome(state, seen.error, seen.rounds, seen.error < ENOUGH, seen.stopped)
+
+
+def _capped(part: Problem, here: State, step: Array, seen: _Progress, open_: Index) -> Array:
+    """The step within the caps of each case, which halve where it would undo a capped one.
+
+    A slack cable pushes nothing back, so a step to where it is taut goes to the cap, and the one back may overshoot into slackness: at
+    full caps that would go on for ever.
+    """
+    same = np.einsum("cu,cu,u->c", step, seen.last[open_], part.mass)
+    reach = np.minimum(1.0, seen.reach[open_] * np.where(same < 0, 0.5, np.where(same > 0, 1.25, 1.0)))
+    out = part.limited(here, step, TURN_CAP * reach, MOVE_CAP * part.structure.height * reach)
+    short = np.abs(out).max(axis=1, initial=0.0) < np.abs(step).max(axis=1, initial=0.0)
+    seen.reach[open_], seen.last[open_] = reach, np.where(short[:, None], out, 0.0)
+    return out
 
 
 def _judge(seen: _Progress, open_: Index, error: Array) -> NDArray[np.bool_]:
@@ -107,23 +125,26 @@ def _judge(seen: _Progress, open_: Index, error: Array) -> NDArray[np.bool_]:
     return np.asarray((error < TARGET) | (seen.stalled[open_] >= STALLED))
 
 
-def damped_step(k_band: Array, residual: Array, mass: Array, damping: Array) -> tuple[Array, Array]:
-    """Solve (K + mu M) d = -g with the least mu that makes it positive definite; the step and the mu to begin with next."""
+def damped_step(k_band: Array, residual: Array, mass: Array, damping: Array, room: Array) -> tuple[Array, Array]:
+    """Solve (K + mu M) d = -g with the least mu that makes it positive definite; the step and the mu to begin with next.
+
+    room : memory of the band's shape for the factors
+    """
     mu = np.maximum(damping, LEAST_DAMPING)
-    factors, definite = _shifted(k_band, mu, mass)
+    np.copyto(room, k_band)
+    factors, definite = _factor_shifted(room, mu, mass)
     missing = np.flatnonzero(~definite)
     for _ in range(40):
         if len(missing) == 0:
             break
         mu[missing] = np.where(mu[missing] <= LEAST_DAMPING, FIRST_DAMPING, 10 * mu[missing])
-        factors[missing], definite = _shifted(k_band[missing], mu[missing], mass)
+        factors[missing], definite = _factor_shifted(k_band[missing], mu[missing], mass)
         missing = missing[~definite]
     next_mu = np.where(mu > LEAST_DAMPING, mu / 5, mu)
     return band.solve(factors, -residual), np.where(next_mu < FIRST_DAMPING / 20, LEAST_DAMPING, next_mu)
 
 
-def _shifted(k_band: Array, mu: Array, mass: Array) -> tuple[Array, NDArray[np.bool_]]:
-    """Factors of K + mu M."""
-    shifted = k_band.copy()
-    shifted[..., 0] += mu[:, None] * mass
-    return band.factor(shifted)
+def _factor_shifted(k_band: Array, mu: Array, mass: Array) -> tuple[Array, NDArray[np.bool_]]:
+    """Factors of K + mu M, written over K."""
+    k_band[..., 0] += mu[:, None] * mass
+    return band.factor(k_band)

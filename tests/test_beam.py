@@ -50,9 +50,9 @@ class Pose:
         return Pose(self.ui + d[..., 0:3], turn(self.pi, d[..., 3:6]), self.uj + d[..., 6:9], turn(self.pj, d[..., 9:12]))
 
     def bend(self, rods: Rods, thermal: float = 0.0) -> beam.Bent:
-        strain = np.full((CASES, ELEMENTS), thermal)
+        strain = np.full((ELEMENTS, CASES), thermal)
         turned = (moved(self.pi, rods.y), moved(self.pi, rods.z), moved(self.pj, rods.y), moved(self.pj, rods.z))
-        return beam.bend(rods, self.uj - self.ui, *turned, strain)
+        return beam.bend(rods, *(v.T for v in (self.uj - self.ui, *turned)), strain)
 
     def energy(self, rods: Rods, thermal: float = 0.0) -> np.ndarray:
         """W from its definition alone, the stretch by plain subtraction of lengths."""
@@ -140,7 +140,7 @@ def stiffness_at_rest(phi: float) -> np.ndarray:
     one = np.ones(1)
     x, y, z = np.eye(3)
     rods = Rods(2.0 * one, z[None], x[None], y[None], 7e5 * one, 3e3 * one, 5e3 * one, 2e3 * one, phi * one, phi * one)
-    still = np.zeros((1, 1, 3))
+    still = np.zeros((3, 1, 1))
     bent = beam.bend(rods, still, still, still, still, still, np.zeros((1, 1)))
     return np.asarray(beam.hessian(rods, bent, bent.axial)[0, 0])
 
@@ -163,6 +163,6 @@ def test_stiffness_at_rest_is_the_classical_one(phi: float) -> None:
 
 
 def test_stretch_by_heat_and_by_pull_is_hookes(rods: Rods) -> None:
-    still = np.zeros((1, ELEMENTS, 3))
-    pulled = beam.bend(rods, 0.01 * rods.h[:, None] * rods.t[None], still, still, still, still, np.full((1, ELEMENTS), 0.002))
+    still = np.zeros((3, ELEMENTS, 1))
+    pulled = beam.bend(rods, (0.01 * rods.h[:, None] * rods.t).T[:, :, None], still, still, still, still, np.full((ELEMENTS, 1), 0.002))
     assert pulled.axial[0] == pytest.approx(rods.EA * (0.01 - 0.002), rel=ROUNDING)

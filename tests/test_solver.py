@@ -30,7 +30,7 @@ def test_steps_of_a_positive_definite_tangent_are_newtons(rng: np.random.Generat
     k[..., 0] = 10.0
     k[:, 8:, 1:], k[:, 7:, 2] = 0.0, 0.0
     g = rng.normal(size=(2, 9))
-    step, damping = solver.damped_step(k, g, np.ones(9), np.full(2, solver.LEAST_DAMPING))
+    step, damping = solver.damped_step(k, g, np.ones(9), np.full(2, solver.LEAST_DAMPING), np.empty_like(k))
     for c in range(2):
         assert step[c] == pytest.approx(-np.linalg.solve(band.dense(k[c]), g[c]), rel=10 * solver.LEAST_DAMPING)
     assert damping == pytest.approx(solver.LEAST_DAMPING)
@@ -41,7 +41,7 @@ def test_an_indefinite_tangent_is_damped_until_it_is_definite(rng: np.random.Gen
     k = np.zeros((1, 3, 1))
     k[0, :, 0] = [5.0, -2.0, 1.0]
     mass, g = np.array([1.0, 4.0, 1.0]), rng.normal(size=(1, 3))
-    step, after = solver.damped_step(k, g, mass, np.full(1, solver.LEAST_DAMPING))
+    step, after = solver.damped_step(k, g, mass, np.full(1, solver.LEAST_DAMPING), np.empty_like(k))
     mu = -(g[0, 1] / step[0, 1] + k[0, 1, 0]) / mass[1]
     assert mu == pytest.approx(1.0)
     assert step[0] == pytest.approx(-g[0] / (k[0, :, 0] + mu * mass))

@@ -107,8 +107,8 @@ def drawn(chain: Chain) -> State:
 def bend(chain: Chain, state: State) -> beam.Bent:
     rods, i, j = chain.rods, slice(None, -1), slice(1, None)
     y, z = rods.y[..., None], rods.z[..., None]
-    changes = [(state.psi[end] @ axis)[None, ..., 0] for end in (i, j) for axis in (y, z)]
-    return beam.bend(rods, np.diff(state.u, axis=0)[None], *changes, np.zeros((1, len(rods.h))))
+    changes = [(state.psi[end] @ axis).T.reshape(3, -1, 1) for end in (i, j) for axis in (y, z)]
+    return beam.bend(rods, np.diff(state.u, axis=0).T[:, :, None], *changes, np.zeros((len(rods.h), 1)))
 
 
 def out_of_balance(chain: Chain, bent: beam.Bent, factor: float) -> Array:
