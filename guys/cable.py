@@ -29,6 +29,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from guys import columns
 from guys.rotation import dot, outer
 
 Array = NDArray[np.float64]
@@ -50,6 +51,8 @@ LEVEL_FLOOR = 1e-12
 """The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a
 loop.
 """
+SIX = ((0, 0), (0, 1), (0, 2), (1, 1), (1, 2), (2, 2))
+"""Rows and columns of the six entries of a symmetric matrix."""
 TAUT_ABOVE = 1e-9
 """Relative stretch above which a straight cable counts as taut (the contract's rule)."""
 
@@ -67,22 +70,37 @@ class Hanging:
 
 
 def start(chord: Array, length: Array, EA: Array, load: Array) -> Array:
-    """First tension vector: along the chord, from the cubic T^3 - EA (c/L0 - 1) T^2 - EA |w_per L0|^2 / 24 = 0.
+    """First tension vectors (3, n): along the chord, from the cubic T^3 - EA (c/L0 - 1) T^2 - EA |w_per L0|^2 / 24 = 0.
 
-    chord (n, 3) [m], length (n,) [m], EA (n,) [N], load (n, 3) total load w L0 [N].
+    chord (3, n) [m], length (n,) [m], EA (n,) [N], load (3, n) total load w L0 [N].
     """
-    c = np.sqrt(dot(chord, chord))
-    e = chord / np.maximum(c, 1e-300)[:, None]
-    across2 = np.maximum(dot(load, load) - dot(load, e) ** 2, 1e-12 * dot(load, load))
+    c = np.sqrt(columns.dot(chord, chord))
+    e = chord / np.maximum(c, 1e-300)
+    own2 = columns.dot(load, load)
+    across2 = np.maximum(own2 - columns.dot(load, e) ** 2, 1e-12 * own2)
     taut = EA * (c / length - 1)
     hanging = np.cbrt(EA * across2 / 24)
-    x = np.maximum(np.maximum(taut, 0), hanging) + 1e-9 * EA * (taut <= 0) * (across2 == 0)
+    x = np.maximum(np.maximum(taut, 0), hanging)
     for _ in range(12):
         f = x * x * (x - taut) - EA * across2 / 24
         x = x - f / np.maximum(3 * x * x - 2 * taut * x, 1e-300)
     loose = np.clip(1 - c / length, 0, 1)
-    x = np.maximum(x, 1e-3 * np.sqrt(dot(load, load)) * (1 - loose))
-    return np.asarray(x[:, None] * e)
+    return np.asarray(np.maximum(x, 1e-3 * np.sqrt(own2) * (1 - loose)) * e)
+
+
+@dataclass(frozen=True)
+class _Ties:
+    """Cables between given ends, components first: chord, load (3, n); unit (3, n) along the load, own (n,) = |load|; length, EA (n,)."""
+
+    chord: Array
+    length: Array
+    EA: Array
+    load: Array
+    unit: Array
+    own: Array
+
+    def take(self, rows: NDArray[np.int64]) -> _Ties:
+        return _Ties(self.chord[:, rows], self.length[rows], self.EA[rows], self.load[:, rows], self.unit[:, rows], self.own[rows])
 
 
 def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None = None) -> Hanging:
@@ -92,83 +110,93 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
     load : (n, 3) [N] total load w L0 on the cable;  warm : (n, 3) [N] tensions to start from where they serve
     Valid for any length > 0 and any chord not exactly in line with the load while slack.
     """
-    weightless = np.sqrt(dot(load, load)) < WEIGHTLESS * EA
-    pulled, load = load, np.where(weightless[:, None], (WEIGHTLESS * EA)[:, None] * np.array([0.0, 0.0, -1.0]), load)
-    chord = _off_line(chord, load)
-    tension, gap, flexibility, ends = _begin(chord, length, EA, load, warm)
-    small = ROUNDING * (length + np.sqrt(dot(chord, chord)))
-    open_, f = np.arange(len(length)), flexibility
+    ties = _ties(chord, length, EA, load)
+    tension, gap, flexibility, ends = _begin(ties, None if warm is None else warm.T.copy())
+    small = ROUNDING * (length + np.sqrt(columns.dot(ties.chord, ties.chord)))
+    open_, f, part = np.arange(len(length)), flexibility, ties
     for _ in range(LARGEST_ROUNDS):
-        change = -_solve3(f, gap)
-        size = np.sqrt(dot(change, change))
-        tension[open_] += _damped(change, size, tension[open_])[:, None] * change
-        open_ = open_[(size > CLOSED * ends) & (np.sqrt(dot(gap, gap)) > small[open_])]
-        if len(open_) == 0:
+        change = -_times(_inverse(f), gap)
+        size = np.sqrt(columns.dot(change, change))
+        tension[:, open_] += _damped(size, tension[:, open_]) * change
+        wide = (size > CLOSED * ends) & (np.sqrt(columns.dot(gap, gap)) > small[open_])
+        if not wide.any():
             break
-        gap, f, ends = _miss(chord[open_], length[open_], EA[open_], load[open_], tension[open_])
-        flexibility[open_] = f
-    return Hanging(tension, tension + pulled / 2, tension - pulled / 2, _invert3(flexibility))
+        open_, part = open_[wide], part.take(np.flatnonzero(wide))
+        gap, f, ends = _miss(part, tension[:, open_])
+        flexibility[:, open_] = f
+    middle = tension.T.copy()
+    return Hanging(middle, middle + load / 2, middle - load / 2, _full(_inverse(flexibility)))
 
 
-def _begin(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None) -> tuple[Array, Array, Array, Array]:
+def _ties(chord: Array, length: Array, EA: Array, load: Array) -> _Ties:
+    pulled = load.T.copy()
+    own = np.sqrt(columns.dot(pulled, pulled))
+    light = own < WEIGHTLESS * EA
+    if light.any():
+        pulled = np.where(light, WEIGHTLESS * EA * np.array([[0.0], [0.0], [-1.0]]), pulled)
+        own = np.where(light, WEIGHTLESS * EA, own)
+    unit = pulled / own
+    return _Ties(_off_line(chord.T.copy(), unit), length, EA, pulled, unit, own)
+
+
+def _begin(ties: _Ties, warm: Array | None) -> tuple[Array, Array, Array, Array]:
     """Tensions to start from, the warm ones where they serve, and what `_miss` says of them."""
     if warm is None or not warm.any():
-        tension = start(chord, length, EA, load)
-        return tension, *_miss(chord, length, EA, load, tension)
-    known = (dot(warm, warm) > 0)[:, None]
-    tension = np.where(known, warm, load + chord * (np.sqrt(dot(load, load)) / length)[:, None])
-    gap, flexibility, ends = _miss(chord, length, EA, load, tension)
-    change = _solve3(flexibility, gap)
-    reach = length + np.sqrt(dot(chord, chord))
-    serves = known[:, 0] & (dot(gap, gap) < (NEARLY_CHORD * reach) ** 2) & (dot(change, change) < TRUST**2 * dot(tension, tension))
-    fresh = np.flatnonzero(~serves)
-    if len(fresh):
-        some = chord[fresh], length[fresh], EA[fresh], load[fresh]
-        tension[fresh] = start(*some)
-        gap[fresh], flexibility[fresh], ends[fresh] = _miss(*some, tension[fresh])
+        tension = start(ties.chord, ties.length, ties.EA, ties.load)
+        return tension, *_miss(ties, tension)
+    size2 = columns.dot(warm, warm)
+    known = size2 > 0
+    tension = warm if known.all() else np.where(known, warm, ties.load + ties.chord * (ties.own / ties.length))
+    gap, flexibility, ends = _miss(ties, tension)
+    change = _times(_inverse(flexibility), gap)
+    reach = ties.length + np.sqrt(columns.dot(ties.chord, ties.chord))
+    serves = known & (columns.dot(gap, gap) < (NEARLY_CHORD * reach) ** 2) & (columns.dot(change, change) < TRUST**2 * size2)
+    if not serves.all():
+        fresh = np.flatnonzero(~serves)
+        some = ties.take(fresh)
+        tension[:, fresh] = start(some.chord, some.length, some.EA, some.load)
+        gap[:, fresh], flexibility[:, fresh], ends[fresh] = _miss(some, tension[:, fresh])
     return tension, gap, flexibility, ends
 
 
-def _damped(change: Array, size: Array, tension: Array) -> Array:
+def _damped(size: Array, tension: Array) -> Array:
     """Share of the step that keeps it below `NEWTON_REACH` of the tension."""
-    return np.minimum(1.0, NEWTON_REACH * np.sqrt(dot(tension, tension)) / np.maximum(size, 1e-300))
+    return np.minimum(1.0, NEWTON_REACH * np.sqrt(columns.dot(tension, tension)) / np.maximum(size, 1e-300))
 
 
-def _off_line(chord: Array, load: Array) -> Array:
-    w2 = np.maximum(dot(load, load), 1e-300)
-    along = (dot(chord, load) / w2)[:, None] * load
-    aside = chord - along
-    floor = LEVEL_FLOOR * np.sqrt(dot(chord, chord))
-    short = np.sqrt(dot(aside, aside)) < floor
+def _off_line(chord: Array, unit: Array) -> Array:
+    """Chords (3, n) moved off the line of the load by `LEVEL_FLOOR` where they lie in it."""
+    aside = chord - columns.dot(chord, unit) * unit
+    floor = LEVEL_FLOOR * np.sqrt(columns.dot(chord, chord))
+    short = np.sqrt(columns.dot(aside, aside)) < floor
     if not short.any():
         return chord
-    k = np.argmin(np.abs(load), axis=-1)
-    unit = np.eye(3)[k]
-    square = unit - (dot(unit, load) / w2)[:, None] * load
-    square = square / np.sqrt(dot(square, square))[:, None]
-    return np.where(short[:, None], chord + floor[:, None] * square, chord)
+    axis = np.eye(3)[:, np.argmin(np.abs(unit), axis=0)]
+    square = axis - columns.dot(axis, unit) * unit
+    return np.where(short, chord + floor * square / np.sqrt(columns.dot(square, square)), chord)
 
 
-def _miss(chord: Array, length: Array, EA: Array, load: Array, tension: Array) -> tuple[Array, Array, Array]:
-    """r(T) - chord, F = dr/dT, and |T_A| + |T_B|."""
-    w2 = dot(load, load)
-    unit = load / np.sqrt(w2)[:, None]
-    at_a, at_b = tension + load / 2, tension - load / 2
-    a, b = np.sqrt(dot(at_a, at_a)), np.sqrt(dot(at_b, at_b))
+def _miss(ties: _Ties, tension: Array) -> tuple[Array, Array, Array]:
+    """r(T) - chord (3, n), F = dr/dT as its six entries (6, n) in the order 00 01 02 11 12 22, and |T_A| + |T_B|."""
+    at_a, at_b = tension + ties.load / 2, tension - ties.load / 2
+    a, b = np.sqrt(columns.dot(at_a, at_a)), np.sqrt(columns.dot(at_b, at_b))
     s = a + b
-    z = np.sqrt(w2) / s
-    rest = np.maximum(2 * (a * b + dot(at_a, at_b)) / (s * s), 1e-30)
-    phi = _atanh_ratio(z, rest)
-    par = dot(tension, unit)[:, None] * unit
+    rest = np.maximum(2 * (a * b + columns.dot(at_a, at_b)) / (s * s), 1e-30)
+    phi = _atanh_ratio(ties.own / s, rest)
+    par = columns.dot(tension, ties.unit) * ties.unit
     per = tension - par
-    gap = length[:, None] * (tension / EA[:, None] + (2 / s)[:, None] * (par + phi[:, None] * per)) - chord
-    n = at_a / a[:, None] + at_b / b[:, None]
-    q = par + per / rest[:, None]
-    f = (2 / s)[:, None, None] * ((1 - phi)[:, None, None] * outer(unit, unit))
-    f[:, (0, 1, 2), (0, 1, 2)] += (1 / EA + 2 * phi / s)[:, None]
-    qn = outer(q, n)
-    f -= (1 / (s * s))[:, None, None] * (qn + np.swapaxes(qn, -1, -2))
-    return gap, length[:, None, None] * f, s
+    gap = ties.length * (tension / ties.EA + (2 / s) * (par + phi * per)) - ties.chord
+    n = at_a / a + at_b / b
+    q = (ties.length / (s * s)) * (par + per / rest)
+    along = (2 * ties.length / s * (1 - phi)) * ties.unit
+    even = ties.length * (1 / ties.EA + 2 * phi / s)
+    u = ties.unit
+    f = np.empty((6, len(s)))
+    for row, (i, j) in enumerate(SIX):
+        f[row] = along[i] * u[j] - q[i] * n[j] - q[j] * n[i]
+        if i == j:
+            f[row] += even
+    return gap, f, s
 
 
 def _atanh_ratio(z: Array, rest: Array) -> Array:
@@ -180,23 +208,22 @@ def _atanh_ratio(z: Array, rest: Array) -> Array:
     return np.where(small, series, np.log((1 + safe) ** 2 / np.where(small, 0.75, rest)) / (2 * safe))
 
 
-def _invert3(m: Array) -> Array:
-    """Inverse of symmetric positive definite 3 x 3 matrices (n, 3, 3) by cofactors."""
-    a, b, c = m[:, 0, 0], m[:, 0, 1], m[:, 0, 2]
-    d, e, f = m[:, 1, 1], m[:, 1, 2], m[:, 2, 2]
-    out = np.empty_like(m)
-    out[:, 0, 0] = d * f - e * e
-    out[:, 0, 1] = out[:, 1, 0] = c * e - b * f
-    out[:, 0, 2] = out[:, 2, 0] = b * e - c * d
-    out[:, 1, 1] = a * f - c * c
-    out[:, 1, 2] = out[:, 2, 1] = b * c - a * e
-    out[:, 2, 2] = a * d - b * b
-    det = a * out[:, 0, 0] + b * out[:, 0, 1] + c * out[:, 0, 2]
-    return out / det[:, None, None]
+def _inverse(m: Array) -> Array:
+    """Inverse of symmetric positive definite matrices given and returned by their six entries (6, n), by cofactors."""
+    a, b, c, d, e, f = m
+    out = np.stack([d * f - e * e, c * e - b * f, b * e - c * d, a * f - c * c, b * c - a * e, a * d - b * b])
+    return np.asarray(out / (a * out[0] + b * out[1] + c * out[2]))
 
 
-def _solve3(m: Array, v: Array) -> Array:
-    return np.asarray((_invert3(m) @ v[..., None])[..., 0])
+def _times(m: Array, v: Array) -> Array:
+    """Matrices (6, n) times vectors (3, n)."""
+    x, y, z = v
+    return np.stack([m[0] * x + m[1] * y + m[2] * z, m[1] * x + m[3] * y + m[4] * z, m[2] * x + m[4] * y + m[5] * z])
+
+
+def _full(m: Array) -> Array:
+    """(6, n) as (n, 3, 3)."""
+    return np.ascontiguousarray(m[[0, 1, 2, 1, 3, 4, 2, 4, 5]].T).reshape(-1, 3, 3)
 
 
 def length_rate(at_a: Array, at_b: Array, EA: Array) -> Array:

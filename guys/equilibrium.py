@@ -183,17 +183,15 @@ class Problem:
 
     def _structural(self, bent: beam.Bent, hanging: cable.Hanging, arm_a: Array, arm_b: Array, dyad: Array) -> Array:
         """Net force and moment on every node (case, node, 6) of beams, cables and loads."""
-        s = self.structure
-        out = np.zeros((self.cases, s.nodes, 6))
-        ends = beam.gradient(bent)
-        _add_at(out, s.elements.i, ends[..., :6])
-        _add_at(out, s.elements.j, ends[..., 6:])
         present = self.loads.present[..., None]
-        for points, arm, force in ((s.cables.a, arm_a, -hanging.at_a * present), (s.cables.b, arm_b, hanging.at_b * present)):
-            _add_at(out, points.node, np.concatenate([force, cross(arm, force)], axis=-1))
+        ends = beam.gradient(bent)
+        rows = [ends[..., :6], ends[..., 6:]]
+        for arm, force in ((arm_a, -hanging.at_a * present), (arm_b, hanging.at_b * present)):
+            rows.append(np.concatenate([force, cross(arm, force)], axis=-1))
+        out = self._to_nodes @ np.concatenate(rows, axis=1)
         out[..., :3] -= self.loads.force
         out[..., 3:] -= dyad_moment(dyad)
-        return out
+        return np.asarray(out)
 
     def _supported(self, state: State, structural: Array) -> tuple[Array, Array]:
         """The same with the springs of giving anchors and the joints, and the joints' Hessians."""
@@ -210,6 +208,15 @@ class Problem:
     def room(self) -> band.Room:
         """Memory for the tangents of these cases; one search at a time may use it."""
         return band.room(self.pattern, self.cases, len(self.structure.elements.i))
+
+    @cached_property
+    def _to_nodes(self) -> Array:
+        """(node, row) of ones: which node each end of an element, then of a cable, belongs to."""
+        s = self.structure
+        nodes = np.concatenate([s.elements.i, s.elements.j, s.cables.a.node, s.cables.b.node])
+        out = np.zeros((s.nodes, len(nodes)))
+        out[nodes, np.arange(len(nodes))] = 1.0
+        return out
 
     @cached_property
     def _springs(self) -> Array:
@@ -355,10 +362,3 @@ def _joint_blocks(holding: Array, joints: joint.Joints) -> tuple[Array, Array, A
     out = np.zeros((3, 6, 6, *h.shape[4:]))
     out[:, 3:, 3:] = h[0, 0], h[1, 1], between
     return out[0], out[1], out[2]
-
-
-def _add_at(gradient: Array, node: Index, rows: Array) -> None:
-    """Add rows (case, row, 6) to the nodes they belong to; a node may stand several times."""
-    to = np.zeros((gradient.shape[1], len(node)))
-    to[node, np.arange(len(node))] = 1.0
-    gradient += to @ rows
