@@ -40,6 +40,10 @@ class Resolved:
     error: float
 
 
+class _RanAway(Exception):
+    """The second solve left for infinity: beside the answer nothing pushes back (a guy slack there)."""
+
+
 def resolve(problem: Problem, answer: State) -> Resolved:
     """Solve one case again from beside its answer; problem and answer hold that one case."""
     from scipy.optimize import least_squares
@@ -56,14 +60,23 @@ def resolve(problem: Problem, answer: State) -> Resolved:
         return State(moved.u, moved.psi, answer.tension, np.full_like(answer.axial, np.nan))
 
     def residual(y: Array) -> Array:
-        return np.asarray(solve_triangular(lower, problem.evaluate(state_at(y)).residual[0], lower=True))
+        net = problem.evaluate(state_at(y)).residual[0]
+        if not np.isfinite(net).all():
+            raise _RanAway
+        return np.asarray(solve_triangular(lower, net, lower=True))
 
     def jacobian(y: Array) -> Array:
         here = state_at(y)
         half = solve_triangular(lower, band.dense(problem.tangent(here, problem.evaluate(here))[0]), lower=True)
         return np.asarray(solve_triangular(lower, half.T, lower=True).T)
 
-    out = least_squares(residual, start, jac=jacobian, method="lm", x_scale=1.0, ftol=1e-15, xtol=1e-12, gtol=1e-15, max_nfev=EVALUATIONS)
+    try:
+        with np.errstate(over="ignore", invalid="ignore", divide="ignore"):
+            out = least_squares(
+                residual, start, jac=jacobian, method="lm", x_scale=1.0, ftol=1e-15, xtol=1e-12, gtol=1e-15, max_nfev=EVALUATIONS
+            )
+    except _RanAway:
+        return Resolved("inconclusive", np.nan, np.inf)
     return _compare(problem, answer, state_at(out.x))
 
 
