@@ -56,5 +56,5 @@ def test_strength_is_judged_at_that_value() -> None:
 
 
 def test_second_solve_does_not_run_away() -> None:
-    """A thousandth of the height beside its answer the guy is slack and nothing pushes back: the second solve says so, and the run goes on."""
+    """A thousandth of the height beside its answer the guy is slack and nothing pushes back: the second solve says so, the run goes on."""
     assert _pole().check.resolve in ("agrees", "inconclusive")
