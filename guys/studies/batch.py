@@ -179,10 +179,10 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
         return "the solver failed on this case; this is a fault of the program, not a statement about the structure"
     one = problem.take(np.array([k]))
     state = judged.state.take(np.array([k]))
-    after = judged.beyond.get(k) if code == stability.NONE else None
-    if after is None:
-        after = _along_lowest_mode(one, state)
-    spar, bearing = stability.falling_part(one, state, after)
+    before, after = state, judged.beyond.get(k) if code == stability.NONE else None
+    if after is None and stability.turned_over(one, state)[0]:
+        before, after = one.drawn(), state
+    spar, bearing = stability.falling_part(one, before, after or _along_lowest_mode(one, state))
     name = problem.structure.scenario.spar[spar].name
     how = "is in an equilibrium that does not hold: it goes" if code == stability.UNSTABLE else "falls"
     dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(forces.slack[k])]
