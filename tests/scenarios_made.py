@@ -190,6 +190,12 @@ def mast(*directions: float, base: str = "pinned", tension: float = 1500.0, side
     return document([spar(base=base, fitting=[head])], ring, guys, **tables)
 
 
+def losing() -> Document:
+    """The mast in two winds with all its guys and without two of them, when it falls, and in still air without one."""
+    cases = [{"name": "whole"}, {"name": "lost", "without": ["9 m A", "17 m A"]}, {"name": "spare", "wind": 0.0, "without": ["9 m B"]}]
+    return mast(30.0, 200.0, case=cases)
+
+
 def stayed(one: Document, *bearings: float, at: float | None = None, radius: float = 8.0, arm: float = 0.0, **tables: Any) -> Document:
     """One spar on guys from its head (or from `at`) to anchors A, B, ... at the bearings; tension=, length= or tight= of all guys."""
     length = sum(s["length"] for s in one["section"])

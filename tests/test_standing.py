@@ -1,0 +1,143 @@
+"""The main job: what a `Solution` holds, in which order and shape, and what it says of cases that do not stand."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import fields
+
+import numpy as np
+import pytest
+import scenarios_made as made
+
+from guys import __version__, solve
+from guys.results import Extreme, Solution
+
+BALANCE = 1e-9
+"""Out-of-balance promised for every stable case, of the reference force."""
+
+
+def test_the_setting_comes_first_and_then_the_cases_with_their_winds() -> None:
+    s = made.solved(made.losing())
+    assert s.case == ("setting", "whole", "whole", "lost", "lost", "spare")
+    assert np.isnan(s.wind_from[[0, -1]]).all()
+    assert np.degrees(s.wind_from[1:-1]) == pytest.approx([30.0, 200.0] * 2)
+    assert (s.version, s.scenario.title) == (__version__, "made for a test")
+
+
+@pytest.mark.parametrize("document", [made.losing(), made.boom(), made.mast()], ids=["mast", "boom", "still"])
+def test_arrays_have_the_shapes_the_docstrings_say(document: made.Document) -> None:
+    s = made.solved(document)
+    cases, cables, anchors = len(s.case), len(s.cables.name), len(s.anchors.name)
+    for name in ("tension_anchor", "tension_top", "unstressed_length", "slack", "present"):
+        assert getattr(s.cables, name).shape == (cases, cables)
+    assert s.cables.force_on_anchor.shape == s.cables.force_on_spar.shape == (cases, cables, 3)
+    assert s.cables.curve.shape[:2] == (cases, cables)
+    assert s.anchors.pull.shape == (cases, anchors, 3)
+    assert s.bases.force.shape == s.bases.moment.shape == (cases, len(s.bases.spar), 3)
+    assert s.heels.force.shape == (cases, len(s.heels.spar), 3)
+    assert len(s.bases.spar) + len(s.heels.spar) == len(s.scenario.spar)
+    assert s.head_lean.shape == (cases, len(s.spars))
+    for line in s.spars:
+        stations = len(line.station)
+        assert line.displacement.shape == (cases, stations, 3)
+        assert line.axial.shape == line.torsion.shape == (cases, stations)
+        assert line.bending.shape == line.shear.shape == (cases, stations, 2)
+    each = (s.state, s.note, s.reason, s.unsettled, s.out_of_balance, s.reference_force, s.iterations)
+    assert {len(x) for x in each} == {cases}
+
+
+def test_a_case_without_an_equilibrium_holds_nothing_but_its_reason() -> None:
+    s = made.solved(made.losing())
+    gone = [k for k, state in enumerate(s.state) if state == "none"]
+    assert gone == [3, 4] or gone == [3] or gone == [4]
+    for k in range(len(s.case)):
+        held = [s.cables.tension_anchor[k], s.anchors.pull[k], s.bases.force[k], s.spars[0].displacement[k], s.spars[0].bending[k]]
+        assert all(np.isnan(x).all() == (k in gone) for x in held)
+        assert (s.reason[k] is not None) == (k in gone)
+        assert s.unsettled[k] == (k in gone)
+
+
+def test_every_stable_case_balances() -> None:
+    for document in (made.losing(), made.boom(), made.mast(30.0, base="ball")):
+        s = made.solved(document)
+        standing = [k for k, state in enumerate(s.state) if state in ("stable", "neutral")]
+        assert s.out_of_balance[standing].max() < BALANCE
+        assert s.check.balance < BALANCE
+
+
+def extremes(s: Solution) -> list[tuple[Extreme, np.ndarray]]:
+    """Greatest values with the listed ones they are of."""
+    tension = np.maximum(s.cables.tension_anchor, s.cables.tension_top)
+    out = [(c.tension, tension[:, k]) for k, c in enumerate(s.worst_cables)]
+    for k, a in enumerate(s.worst_anchors):
+        out += [(a.resultant, s.anchors.resultant[:, k]), (a.horizontal, s.anchors.horizontal[:, k]), (a.uplift, s.anchors.uplift[:, k])]
+    for k, f in enumerate(s.worst_feet):
+        feet = s.bases.force[:, k]
+        out += [(f.down, -feet[:, 2]), (f.sideways, np.hypot(feet[:, 0], feet[:, 1]))]
+    return out
+
+
+def test_worst_values_are_the_greatest_of_the_listed_cases_each_with_its_own() -> None:
+    s = made.solved(made.losing())
+    for extreme, listed in extremes(s):
+        k = int(np.nanargmax(listed))
+        assert extreme.value == pytest.approx(listed[k], rel=1e-12)
+        assert extreme.case == s.case[k]
+        assert extreme.wind_from == s.wind_from[k] or (math.isnan(extreme.wind_from) and math.isnan(s.wind_from[k]))
+        assert extreme.peak >= extreme.value
+
+
+def test_governing_case_is_solved_again() -> None:
+    s = made.solved(made.losing())
+    tension = np.nanmax(np.maximum(s.cables.tension_anchor, s.cables.tension_top), axis=1, initial=0.0)
+    k = int(np.argmax(tension))
+    assert s.check.resolve == "agrees"
+    assert s.check.resolved_case == s.case[k]
+    assert s.check.resolved_wind_from == s.wind_from[k]
+    assert made.solved(made.mast()).check.resolve == "agrees"
+
+
+def test_a_free_spin_does_not_hinder_the_second_solve() -> None:
+    assert made.solved(made.mast(30.0, base="ball")).check.resolve == "agrees"
+
+
+def test_progress_is_told_to_the_end() -> None:
+    told: list[tuple[int, int]] = []
+    solve(made.scenario(made.mast(30.0, 60.0)), progress=lambda done, total: told.append((done, total)))
+    assert told[0] == (2, 2)
+    assert told[-1][0] == told[-1][1]
+    assert all(done <= total for done, total in told)
+
+
+def test_finer_meshes_come_from_the_same_scenario() -> None:
+    coarse, fine = made.solved(made.mast(30.0)), made.solved(made.mast(30.0), finer=2)
+    assert len(fine.spars[0].station) == 2 * len(coarse.spars[0].station)
+    assert fine.cables.tension_anchor == pytest.approx(coarse.cables.tension_anchor, rel=1e-3)
+
+
+def test_a_structure_that_does_not_stand_in_still_air_has_no_cases() -> None:
+    """Three guys all to the east side pull the mast over before any wind."""
+    document = made.stayed(made.spar(rigid=True), 60.0, 90.0, 120.0, length=19.6, wind=made.wind(0.0, 90.0))
+    s = made.solved(document)
+    assert set(s.state) == {"none"}
+    assert "mast falls toward 90°" in str(s.reason[0])
+    assert {s.reason[1], s.reason[2]} == {f"the structure does not stand in still air: {s.reason[0]}"}
+    assert s.sweep is None
+    assert s.check.resolve == "not run"
+    assert all(math.isnan(c.tension.peak) for c in s.worst_cables)
+    assert len(s.warnings) == 1
+
+
+def test_a_column_without_cables_and_anchors_is_solved_too() -> None:
+    s = made.solved(made.document([made.spar(base="fixed", section=[made.tube(6.0)])], wind=made.wind(0.0)))
+    assert s.state == ("stable", "stable")
+    assert s.cables.name == s.anchors.name == ()
+    assert s.check.resolve == "agrees"
+    assert s.worst_feet[0].sideways.peak == pytest.approx(390.625 * 1.2 * 0.089 * 6.0, rel=1e-9)
+
+
+def test_results_are_plain_frozen_data() -> None:
+    s = made.solved(made.mast())
+    with pytest.raises(AttributeError):
+        s.case = ()  # type: ignore[misc]
+    assert {f.name for f in fields(s)} >= {"cables", "anchors", "bases", "heels", "spars", "findings", "warnings", "sweep", "check"}
