@@ -34,7 +34,9 @@ from guys.scenario import Scenario
 from guys.structure import Structure
 
 MET = 1e-10
-"""Relative difference from a target that counts as met."""
+"""Relative difference from a target that counts as met ..."""
+ROUNDED = 1e-15
+"""... and what rounding of chord over length adds for a straight cable, over its stretch."""
 ROUNDS = 40
 LEAST_LEAD = 1 / 200
 """Least step, of the whole way, when measures are led to their targets."""
@@ -322,11 +324,12 @@ def _newton(problem: Problem, state: State, asked: _Asked, goal: Array) -> tuple
     ln m of a catenary and m itself of a straight cable are what lengths change evenly.
     """
     straight = _is_straight(problem)
+    close = MET + ROUNDED / _stretch_wanted(problem, asked) if straight else MET
     for _ in range(ROUNDS):
         rates = _rates(problem, state, asked)
         scale = np.ones_like(rates.measure) if straight else 1 / np.maximum(rates.measure, 1e-12)
         miss = rates.measure - np.exp(goal) if straight else np.clip(-np.log(scale) - goal, -STEP, STEP)
-        if np.max(np.abs(miss), initial=0.0) < MET and rates.error < solver.ENOUGH:
+        if np.all(np.abs(miss) < close) and rates.error < solver.ENOUGH:
             return problem, state
         change: Array = np.linalg.lstsq(scale[:, None] * rates.rate, -miss - scale * rates.drift, rcond=1e-14)[0].astype(float)
         step = (rates.settle + rates.step @ change)[None]
