@@ -191,9 +191,9 @@ def mast(*directions: float, base: str = "pinned", tension: float = 1500.0, side
 
 
 def losing() -> Document:
-    """The mast in two winds with all its guys and without two of them, when it falls, and in still air without one."""
-    cases = [{"name": "whole"}, {"name": "lost", "without": ["9 m A", "17 m A"]}, {"name": "spare", "wind": 0.0, "without": ["9 m B"]}]
-    return mast(30.0, 200.0, case=cases)
+    """The mast in two winds with all its guys, and in still air without two of them, when it falls, and without one."""
+    away = (("lost", ["9 m A", "17 m A"]), ("spare", ["9 m B"]))
+    return mast(30.0, 200.0, case=[{"name": "whole"}, *({"name": name, "wind": 0.0, "without": cables} for name, cables in away)])
 
 
 def stayed(one: Document, *bearings: float, at: float | None = None, radius: float = 8.0, arm: float = 0.0, **tables: Any) -> Document:
