@@ -53,8 +53,8 @@ loop.
 """
 SIX = ((0, 0), (0, 1), (0, 2), (1, 1), (1, 2), (2, 2))
 """Rows and columns of the six entries of a symmetric matrix."""
-TAUT_ABOVE = 1e-9
-"""Relative stretch above which a straight cable counts as taut (the contract's rule)."""
+SLACK_BELOW = 1e-9
+"""A straight cable is slack where it is longer than its chord by more than this share; one as long as its chord resists at once."""
 
 
 @dataclass(frozen=True)
@@ -235,14 +235,14 @@ def length_rate(at_a: Array, at_b: Array, EA: Array) -> Array:
 
 
 def pull_straight(chord: Array, length: Array, EA: Array) -> Hanging:
-    """Weightless tension-only cables: zero tension and stiffness where the chord does not exceed the unstressed length.
+    """Weightless tension-only cables: zero tension and stiffness where the unstressed length exceeds the chord.
 
     Arguments as for `hang`.
     """
     c = np.sqrt(dot(chord, chord))
     e = chord / c[:, None]
-    taut = c > length * (1 + TAUT_ABOVE)
-    size = np.where(taut, EA * (c / length - 1), 0.0)
+    taut = length <= c * (1 + SLACK_BELOW)
+    size = EA * np.maximum(c / length - 1, 0.0)
     ee = outer(e, e)
     k = (np.where(taut, EA / length, 0.0))[:, None, None] * ee + (size / c)[:, None, None] * (np.eye(3) - ee)
     tension = size[:, None] * e

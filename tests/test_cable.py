@@ -204,15 +204,16 @@ def test_straight_cable_pulls_in_proportion_to_its_stretch() -> None:
     h = cable.pull_straight(chord, np.array([4.99, 5.0, 5.2]), EA)
     assert h.tension[0] == pytest.approx(1e6 * (5 / 4.99 - 1) * np.array([0.6, 0.0, 0.8]), rel=1e-12)
     assert np.abs(h.tension[1:]).max() == 0.0
-    assert np.abs(h.stiffness[1:]).max() == 0.0
+    assert h.stiffness[1] == pytest.approx(1e6 / 5.0 * np.outer([0.6, 0.0, 0.8], [0.6, 0.0, 0.8]), rel=1e-12, abs=1e-9)
+    assert np.abs(h.stiffness[2]).max() == 0.0
 
 
 def test_straight_cable_is_slack_by_the_contracts_rule() -> None:
-    """Unstressed length above chord (1 + 1e-9) is slack: a stretch of twice that pulls, one of half does not count."""
+    """Unstressed length above chord (1 + 1e-9) is slack and resists nothing; one as long as its chord, within that, resists at once."""
     chord, EA = np.array([[0.0, 0.0, 5.0]] * 2), np.full(2, 1e6)
-    h = cable.pull_straight(chord, 5.0 / (1 + np.array([2e-9, 5e-10])), EA)
-    assert h.tension[0, 2] > 0
-    assert h.tension[1, 2] == 0.0
+    h = cable.pull_straight(chord, 5.0 * (1 + np.array([2e-9, 5e-10])), EA)
+    assert np.abs(h.tension).max() == 0.0
+    assert h.stiffness[:, 2, 2] == pytest.approx([0.0, 1e6 / 5.0], rel=1e-8)
 
 
 def test_straight_stiffness_is_the_difference_of_the_pull() -> None:
