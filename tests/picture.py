@@ -11,8 +11,8 @@ REPOSITORY = Path(__file__).parent.parent
 PICTURE = REPOSITORY / "docs" / "sheet.png"
 DOTS = 110
 """To the inch of an A3 page: the smallest words are then legible, in a third of the bytes of the sheet's own picture."""
-TONES = 48
-"""Of the palette: the sheet has seven colours, the rest smooths the edges of letters."""
+TONES = 200
+"""Of the palette: the sheet has seven colours, the rest smooths the edges of letters; with fewer the colours dull."""
 
 
 def picture() -> bytes:
