@@ -33,10 +33,10 @@ v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and
 
 Inside, arrays run components first and case last, (3, element, case), so that every operation is one long loop.
 
-Symbols: l chord length.  Twists past 180 degrees between neighbouring nodes are outside the
-element's range.  Sources: Crisfield, Non-linear Finite Element Analysis of Solids and Structures, vol. 2 (1997), ch. 17, for
-corotational beams; the bowing term is that of the cubic shape functions (Hermite), MacNeal's local deformation form; the shear
-factors are the usual Timoshenko ones.
+Symbols: l chord length. Twist resists with GJ/h sin(twist), so twists toward 90 degrees between neighbouring nodes are outside the
+element's range. Sources: Crisfield, Non-linear Finite Element Analysis of Solids and Structures, vol. 2 (1997), ch. 17, for corotational
+beams; the bowing term is that of the cubic shape functions (Hermite), MacNeal's local deformation form; the shear factors are the usual
+Timoshenko ones.
 """
 
 from __future__ import annotations

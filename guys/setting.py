@@ -349,7 +349,7 @@ def _share(limited: Array, step: Array) -> float:
 def _not_met(scenario: Scenario, asked: _Asked) -> Fault:
     names = ", ".join(f'"{scenario.cable[k].name}"' for k in asked.index)
     text = (
-        f"no still-air state meets the initial tensions of {names} together: they do not balance; "
+        f"no still-air state was found that meets the initial tensions of {names} together: they do not balance; "
         "give tensions that balance at each level, or setting.plumb = true"
     )
     return Fault(scenario.path, None, None, "tension", text)

@@ -119,7 +119,7 @@ def _capped(part: Problem, here: State, step: Array, seen: _Progress, open_: Ind
 
 def _judge(seen: _Progress, open_: Index, error: Array) -> NDArray[np.bool_]:
     """Which of the open cases are done; notes their error."""
-    better = error < 0.5 * seen.error[open_]
+    better = error < 0.9 * seen.error[open_]
     seen.stalled[open_] = np.where(better | (error >= ENOUGH), 0, seen.stalled[open_] + 1)
     seen.error[open_] = error
     return np.asarray((error < TARGET) | (seen.stalled[open_] >= STALLED))

@@ -67,7 +67,9 @@ class Judged:
 
     state : the equilibrium found, or the last stable one on the path of a case that has none;  code, error, rounds : (case,)
     lost_at : (case,) share of the load at which its path ended, NaN where none was lost;  branched : (case,) stands off its straight branch
-    stuck : (case,) the solver ran out of rounds without a spar turning over;  mirror : {case: the other stable state of a branch}
+    stuck : (case,) the solver ran out of rounds without a spar turning over or, along a path, swinging far
+    drifts : (case,) the path ended because the load drives a motion that nothing resists
+    mirror : {case: the other stable state of a branch}
     beyond : {case: the first state past the end of its path, on the way down}
     """
 
@@ -78,6 +80,7 @@ class Judged:
     lost_at: Array
     branched: NDArray[np.bool_]
     stuck: NDArray[np.bool_]
+    drifts: NDArray[np.bool_]
     mirror: dict[int, State]
     beyond: dict[int, State]
 
@@ -154,8 +157,9 @@ def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judge
     found = np.flatnonzero(out.converged & ~out.stopped)
     if len(found):
         code[found] = classify(problem.take(found), out.state.take(found))
-    no = np.zeros(problem.cases, bool)
-    judged = Judged(out.state, code, out.error, out.rounds, np.full(problem.cases, np.nan), no, ~out.converged & ~out.stopped, {}, {})
+    no, nowhere = np.zeros(problem.cases, bool), np.full(problem.cases, np.nan)
+    stuck = ~out.converged & ~out.stopped
+    judged = Judged(out.state, code, out.error, out.rounds, nowhere, no, stuck, no.copy(), {}, {})
     for case in np.flatnonzero(code == UNSTABLE):
         _push(problem, judged, int(case))
     return judged
@@ -194,6 +198,7 @@ class _Path:
     state: State
     branched: NDArray[np.bool_]
     stuck: NDArray[np.bool_]
+    drifts: NDArray[np.bool_]
     mirror: dict[int, State]
     beyond: dict[int, State]
     error: Array
@@ -203,14 +208,13 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
     """Follow the path of the cases `rows` and write what is found at its end."""
     whole = problem.take(rows)
     n = len(rows)
-    path = _Path(
-        np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), np.zeros(n, bool), np.zeros(n, bool), {}, {}, np.full(n, np.nan)
-    )
+    branched, ended, drifts = np.zeros((3, n), bool)
+    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), branched, ended, drifts, {}, {}, np.full(n, np.nan))
     _walk(whole, start, path, np.arange(n), least_step)
-    stuck = _still_stiff(whole, setting, path)
+    stuck = _still_stiff(whole, setting, start, path)
     if len(stuck):
         _walk(whole, start, path, stuck, least_step * FINER)
-        stuck = _still_stiff(whole, setting, path)
+        stuck = _still_stiff(whole, setting, start, path)
     path.stuck[:] = False
     path.stuck[stuck] = True
     near = turn_between(whole, judged.state.take(rows), whole.repeat(setting)) < FAR
@@ -224,19 +228,34 @@ def _walk(whole: Problem, start: LoadCases, path: _Path, rows: Index, least_step
         _one_step(whole, start, path, open_)
 
 
-def _still_stiff(whole: Problem, setting: State, path: _Path) -> Index:
-    """Paths on which the solver ran out of rounds although the structure has not softened: it has not lost its stability yet."""
+def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) -> Index:
+    """Paths on which the solver ran out of rounds although the structure has not softened: it has not lost its stability yet.
+
+    Left out, and marked as drifting, are those whose last state is neutral: a load that drives a free motion has no equilibrium near.
+    """
     ended = np.flatnonzero(path.stuck & (path.reached < 1))
     if len(ended) == 0:
         return ended
-    limit = SOFT * float(modes(whole.take(ended[:1]), setting, 1).value[0])
-    least = [float(modes(whole.take(ended[k : k + 1]), path.state.take(ended[k : k + 1]), 1).value[0]) for k in range(len(ended))]
-    return ended[np.array(least) > limit]
+    part = whole.take(ended)
+    there = replace(part, loads=part.loads.between(start, path.reached[ended]))
+    there.__dict__["pattern"] = whole.pattern
+    drifts = np.array([classify(there.take(np.array([k])), path.state.take(ended[k : k + 1]))[0] == NEUTRAL for k in range(len(ended))])
+    path.drifts[ended[drifts]] = True
+    least = [_least_cost(there.take(np.array([k])), path.state.take(ended[k : k + 1])) for k in range(len(ended))]
+    still = replace(part.take(np.array([0])), loads=start)
+    return np.asarray(ended[(np.array(least) > SOFT * _least_cost(still, setting)) & ~drifts])
+
+
+def _least_cost(one: Problem, state: State) -> float:
+    """Least eigenvalue of one case that is not a free motion's; infinite where there is none such among the lowest."""
+    value = modes(one, state, 6).value
+    return float(np.min(value[value > ZERO], initial=np.inf))
 
 
 def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near: bool) -> None:
     """Write what the path of one case came to.  An unstable equilibrium close to the setting stays as found: `unstable`, not `none`."""
     judged.mirror.pop(case, None)
+    judged.drifts[case] = path.drifts[k]
     arrived = path.reached[k] >= 1
     if not arrived:
         if k in path.beyond:
@@ -269,8 +288,8 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     path.reached[open_[good]] = share[good]
     path.error[open_[good]] = found.error[good]
     path.branched[open_] |= good & found.branched
-    path.stuck[open_] = found.stuck & ~good
-    for k in np.flatnonzero(~good & ~found.stuck):
+    path.stuck[open_] = found.stuck & near
+    for k in np.flatnonzero(~good & ~(found.stuck & near)):
         path.beyond[int(open_[k])] = found.state.take(np.array([k]))
     for k in np.flatnonzero(good):
         path.mirror.pop(int(open_[k]), None)

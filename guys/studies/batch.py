@@ -177,6 +177,9 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
         return None
     if code == stability.FAILED or (code == stability.NONE and judged.stuck[k]):
         return "the solver failed on this case; this is a fault of the program, not a statement about the structure"
+    if judged.drifts[k]:
+        motion = f"the load drives a motion that nothing resists{_ball_words(problem)}"
+        return f"no equilibrium is near{_share_words(problem, judged, k)}: {motion}"
     one = problem.take(np.array([k]))
     state = judged.state.take(np.array([k]))
     before, after = state, judged.beyond.get(k) if code == stability.NONE else None
@@ -188,6 +191,12 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
     dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(forces.slack[k])]
     slack = f"; slack by then: {', '.join(dropped)}" if dropped else "; no cable is slack by then"
     return f"{name} {how} toward {bearing_words(bearing)}{_share_words(problem, judged, k)}{slack}"
+
+
+def _ball_words(problem: Problem) -> str:
+    """Spars that spin freely, where there are such."""
+    balls = [spar.name for spar in problem.structure.scenario.spar if spar.base == "ball"]
+    return f" ({' and '.join(balls)} may spin about its own axis on its ball base)" if balls else ""
 
 
 def _share_words(problem: Problem, judged: stability.Judged, k: int) -> str:

@@ -79,6 +79,7 @@ def _none(structure: Structure, setting: Setting, lines: Sequence[CaseLine]) -> 
         judged.lost_at[rows],
         np.zeros(len(lines), bool),
         judged.stuck[rows],
+        np.zeros(len(lines), bool),
         {},
         {},
     )
