@@ -224,15 +224,12 @@ def test_curves_run_from_the_to_end_to_the_from_end_as_displaced(straight: bool)
     assert np.linalg.norm(middle - chord) == pytest.approx(0.0 if straight else sag, rel=0.02, abs=1e-9)
 
 
-def slack_after(tension: float, straight: bool) -> Solution:
-    spar = made.spar(base="fixed", rigid=True, section=[made.weightless(10.0)])
-    return made.solved(made.stayed(spar, 0.0, 120.0, 240.0, tension=tension, straight=straight))
-
-
 def test_a_hanging_cable_is_slack_below_its_own_weight_at_mid_length() -> None:
-    """w L0 of a 12.9 m guy of 0.15 kg/m is 18.9 N; at the anchor end some N less than at mid-length."""
-    for tension, slack in ((8.0, True), (30.0, False)):
-        s = slack_after(tension, straight=False)
+    """The tight length is that at which the two are equal; a thousandth longer drops it, a thousandth shorter does not."""
+    spar = made.spar(base="fixed", rigid=True, section=[made.weightless(10.0)])
+    tight = made.setting(made.stayed(spar, 0.0, 120.0, 240.0, tight=True)).length[0]
+    for share, slack in ((0.999, False), (1.0 - 1e-9, False), (1.001, True)):
+        s = made.solved(made.stayed(spar, 0.0, 120.0, 240.0, length=float(tight * share)))
         weight = 0.15 * G * s.cables.unstressed_length[0, 0]
         middle = np.linalg.norm(0.5 * (s.cables.force_on_anchor[0, 0] - s.cables.force_on_spar[0, 0]))
         assert (middle < weight) == slack

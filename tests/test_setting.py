@@ -227,10 +227,22 @@ def test_a_tension_below_the_least_is_refused_with_the_least() -> None:
 # ---------------------------------------------------------------- sensitivities
 
 
+def slack() -> made.Document:
+    """Guys so loose, on a fixed base, that their own weight tells as much as their stretch."""
+    return made.mast(base="fixed", tension=15.0)
+
+
+def heavy() -> made.Document:
+    """Soft guys of 5 kg/m: the weight that comes with a longer cable moves the mast."""
+    document = made.mast(rope={"rope": made.rope(mass=5.0, stiffness=3e4)})
+    document["anchor"][0]["give"] = 3e3
+    return document
+
+
 @pytest.mark.parametrize(
     "document",
-    [uneven(), uneven(straight=True), tight(False), tight(True), lugged(), giving(), made.boom("pinned")],
-    ids=["catenaries", "straight", "tight", "tight straight", "lugs", "giving", "boom"],
+    [uneven(), uneven(straight=True), tight(False), tight(True), lugged(), giving(), made.boom("pinned"), slack(), heavy()],
+    ids=["catenaries", "straight", "tight", "tight straight", "lugs", "giving", "boom", "slack", "heavy"],
 )
 def test_rates_are_the_differences_of_solved_settings(document: made.Document) -> None:
     """dm / d ln L0 with the nodes answering: lengths changed by 1e-6 and the structure solved again.
