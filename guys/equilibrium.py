@@ -82,10 +82,10 @@ class Problem:
         """Number of cases."""
         return len(self.loads.lines)
 
-    @cached_property
+    @property
     def pattern(self) -> band.Pattern:
         """Where the tangent's blocks go."""
-        return pattern_of(self.structure)
+        return self.structure.pattern
 
     @cached_property
     def natural(self) -> Array:
@@ -110,9 +110,7 @@ class Problem:
     def take(self, rows: Index) -> Problem:
         """The cases `rows`."""
         length = self.length if self.length.ndim == 1 else self.length[rows]
-        out = replace(self, loads=self.loads.take(rows), length=length)
-        out.__dict__["pattern"] = self.pattern
-        return out
+        return replace(self, loads=self.loads.take(rows), length=length)
 
     def drawn(self) -> State:
         """The unloaded geometry, for every case."""
@@ -333,16 +331,6 @@ class Problem:
         rigid = np.array([spar.rigid for spar in s.scenario.spar])
         whole = np.where(rigid[:, None], reached - state.u[:, s.foot], line)
         return np.asarray(whole / np.sqrt(dot(whole, whole))[..., None])
-
-
-def pattern_of(structure: Structure) -> band.Pattern:
-    """The block pattern of a structure, contributions in the order `Problem._tangent` gives them."""
-    s = structure
-    a, b = s.cables.a.node[s.loose], s.cables.b.node[s.loose]
-    m, n = s.joints.carrier_node, s.joints.spar_node
-    rows = [s.elements.i, s.elements.j, s.elements.j, s.cables.b.node, a, np.maximum(a, b), m, n, np.maximum(m, n)]
-    others = [s.elements.i, s.elements.j, s.elements.i, s.cables.b.node, a, np.minimum(a, b), m, n, np.minimum(m, n)]
-    return band.lay_out(rows, others, s.held, s.rides, s.frames)
 
 
 def _passed_on(k: Array, arm: Array, force: Array) -> Array:

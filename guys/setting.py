@@ -20,7 +20,7 @@ that leave every spar where cables hold it as drawn, i.e. without a displacement
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -287,9 +287,7 @@ def _with_change(problem: Problem, change: Array, asked: _Asked) -> Problem:
     """The problem with ln L0 changed."""
     length = problem.length.copy()
     length[asked.index] *= np.exp(change)
-    changed = Problem(problem.structure, problem.loads, length)
-    changed.__dict__["pattern"] = problem.pattern
-    return changed
+    return replace(problem, length=length)
 
 
 def _meet(problem: Problem, state: State, asked: _Asked) -> tuple[Problem, State]:

@@ -238,7 +238,6 @@ def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) 
         return ended
     part = whole.take(ended)
     there = replace(part, loads=part.loads.between(start, path.reached[ended]))
-    there.__dict__["pattern"] = whole.pattern
     drifts = np.array([classify(there.take(np.array([k])), path.state.take(ended[k : k + 1]))[0] == NEUTRAL for k in range(len(ended))])
     path.drifts[ended[drifts]] = True
     least = [_least_cost(there.take(np.array([k])), path.state.take(ended[k : k + 1])) for k in range(len(ended))]
@@ -279,7 +278,6 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     share = np.minimum(1.0, path.reached[open_] + path.step[open_])
     part = whole.take(open_)
     there = replace(part, loads=part.loads.between(start, share))
-    there.__dict__["pattern"] = whole.pattern
     before = path.state.take(open_)
     found = settle(there, before, PATH_ROUNDS)
     near = turn_between(there, found.state, before) < NEXT

@@ -20,7 +20,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import mesh
-from guys.band import Frames, Rides
+from guys.band import Frames, Pattern, Rides, lay_out
 from guys.beam import Rods
 from guys.constants import STANDARD_GRAVITY
 from guys.joint import Joints
@@ -155,6 +155,17 @@ class Structure:
     def loose(self) -> Index:
         """Cables whose `to` end is not held in every direction: those between spars, and to anchors that give."""
         return np.flatnonzero(~self.held[self.cables.a.node].all(axis=1))
+
+    @cached_property
+    def pattern(self) -> Pattern:
+        """Where blocks of the tangent go, in parts: elements at their lower nodes, upper nodes, and between; cables at B, loose ones at A,
+        and between; joints at their carriers, at their spars, and between."""
+        e, joints = self.elements, self.joints
+        a, b = self.cables.a.node[self.loose], self.cables.b.node[self.loose]
+        m, n = joints.carrier_node, joints.spar_node
+        rows = [e.i, e.j, e.j, self.cables.b.node, a, np.maximum(a, b), m, n, np.maximum(m, n)]
+        columns = [e.i, e.j, e.i, self.cables.b.node, a, np.minimum(a, b), m, n, np.minimum(m, n)]
+        return lay_out(rows, columns, self.held, self.rides, self.frames)
 
 
 def axis_of(spar: Spar) -> Array:

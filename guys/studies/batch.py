@@ -81,7 +81,6 @@ def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine
     for first in range(0, len(lines), CHUNK):
         some = lines[first : first + CHUNK]
         problem = Problem(structure, assemble(structure, some, placed), setting.length)
-        problem.__dict__["pattern"] = setting.problem.pattern
         judged = stability.judge(problem, state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail))
         if progress is not None:
