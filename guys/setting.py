@@ -20,6 +20,7 @@ that leave every spar where cables hold it as drawn, i.e. without a displacement
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -28,7 +29,7 @@ from numpy.typing import NDArray
 from guys import band, cable, solver, stability
 from guys.equilibrium import Evaluation, Problem, State
 from guys.errors import Fault, ScenarioError
-from guys.loads import LoadCases, as_drawn, assemble, setting_line
+from guys.loads import CaseLine, LoadCases, Placed, as_drawn, assemble, setting_line
 from guys.rotation import Array, cross, dot
 from guys.scenario import Scenario
 from guys.structure import Structure
@@ -80,6 +81,11 @@ class Setting:
     def stands(self) -> bool:
         """Whether the structure stands in still air."""
         return int(self.judged.code[0]) <= stability.NEUTRAL
+
+    def under(self, lines: Sequence[CaseLine]) -> Problem:
+        """The structure so set under the loads of case lines, worked out on its setting position."""
+        placed = Placed(self.state.u[0], self.state.psi[0], self.length)
+        return replace(self.problem, loads=assemble(self.problem.structure, lines, placed))
 
 
 @dataclass(frozen=True)

@@ -18,7 +18,7 @@ import numpy as np
 from guys import parse_scenario, stability, structure
 from guys import setting as initial
 from guys.equilibrium import Evaluation, Problem, State
-from guys.loads import CaseLine, Placed, assemble, lines_of
+from guys.loads import CaseLine, lines_of
 from guys.results import Solution
 from guys.scenario import Scenario
 from guys.studies.standing import solve
@@ -317,8 +317,7 @@ def cases(made: Document, lines: Sequence[CaseLine] | None = None, finer: int = 
     """The listed cases of a document (or the lines given), solved and judged from its setting."""
     found = setting(made, finer)
     some = lines_of(found.problem.structure.scenario) if lines is None else lines
-    placed = Placed(found.state.u[0], found.state.psi[0], found.length)
-    problem = Problem(found.problem.structure, assemble(found.problem.structure, some, placed), found.length)
+    problem = found.under(some)
     judged = stability.judge(problem, found.state, found.loads)
     return Cases(problem, judged, problem.evaluate(judged.state))
 

@@ -115,7 +115,7 @@ def listed(document: made.Document) -> Batch | None:
     except ScenarioError:
         return None
     first = recover(setting.problem, setting.judged, detail=True)
-    return join([first, solve_lines(s, setting, lines_of(s.scenario), True)]) if setting.stands else first
+    return join([first, solve_lines(setting, lines_of(s.scenario), True)]) if setting.stands else first
 
 
 @limits(max_examples=30)

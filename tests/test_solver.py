@@ -10,7 +10,7 @@ import scenarios_made as made
 
 from guys import band, solver, stability
 from guys.equilibrium import Problem, State
-from guys.loads import Placed, assemble, lines_of
+from guys.loads import lines_of
 
 SAME_BITS = 1e-12
 """Relative: linear algebra of one case does not see the others, but numpy may sum in another order."""
@@ -19,9 +19,7 @@ SAME_BITS = 1e-12
 def problem(document: made.Document, directions: list[float] | None = None) -> tuple[Problem, State]:
     """The cases of a document, to be solved from its setting state."""
     setting = made.setting(document)
-    s = setting.problem.structure
-    placed = Placed(setting.state.u[0], setting.state.psi[0], setting.length)
-    many = Problem(s, assemble(s, lines_of(s.scenario, directions), placed), setting.length)
+    many = setting.under(lines_of(setting.problem.structure.scenario, directions))
     return many, many.repeat(setting.state)
 
 

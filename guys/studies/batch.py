@@ -12,15 +12,17 @@ from numpy.typing import NDArray
 
 from guys import band, recovery, stability
 from guys.equilibrium import Problem, State
-from guys.loads import CaseLine, Placed, assemble
+from guys.loads import CaseLine
 from guys.results import SparLine
 from guys.rotation import Array, turned
 from guys.setting import Setting
-from guys.structure import Structure
 
 CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
+SWEPT_STEP = 1 / 32
+"""Steps of the load to which the end of a path is found where only standing or falling is asked."""
 CURVE_POINTS = 41
+"""Points of a drawn cable: chords between them leave the curve of a cable that sags a tenth of its length by 1/16,000 of that."""
 PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
@@ -34,7 +36,7 @@ class Batch:
     code : (case,) of `guys.stability`;  error, reference, rounds, lost_at, balance : (case,);  reason, note : (case,) words
     branched : (case,) stands off its straight branch;  spins : (case,) neutral, but only by the free spin of ball-based spars
     forces : of every case, NaN where there is no equilibrium;  mirror : forces of the other state of branched cases, mirror_lines theirs
-    spars, curves : with detail only;  stuck : lines the solver failed on
+    spars, curves : with detail only
     """
 
     lines: tuple[CaseLine, ...]
@@ -69,19 +71,12 @@ class Batch:
         return replace(self, **kept, forces=forces, spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
 
 
-SWEPT_STEP = 1 / 32
-"""Steps of the load to which the end of a path is found where only standing or falling is asked."""
-
-
-def solve_lines(structure: Structure, setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
+def solve_lines(setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
     """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely."""
-    state = setting.state
-    placed = Placed(state.u[0], state.psi[0], setting.length)
     parts = []
     for first in range(0, len(lines), CHUNK):
-        some = lines[first : first + CHUNK]
-        problem = Problem(structure, assemble(structure, some, placed), setting.length)
-        judged = stability.judge(problem, state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
+        problem = setting.under(lines[first : first + CHUNK])
+        judged = stability.judge(problem, setting.state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail))
         if progress is not None:
             progress(min(first + CHUNK, len(lines)), len(lines))
@@ -141,21 +136,21 @@ def join(parts: Sequence[Batch]) -> Batch:
         }
         return SparLine(first.name, first.station, first.drawn, first.axes, **each)
 
-    def together(name: str) -> Array:
+    def together(name: str) -> NDArray[Any]:
         return np.concatenate([getattr(p, name) for p in parts])
 
     return Batch(
         lines=tuple(x for p in parts for x in p.lines),
-        code=np.concatenate([p.code for p in parts]),
+        code=together("code"),
         error=together("error"),
         reference=together("reference"),
-        rounds=np.concatenate([p.rounds for p in parts]),
+        rounds=together("rounds"),
         lost_at=together("lost_at"),
         balance=together("balance"),
         reason=tuple(x for p in parts for x in p.reason),
         note=tuple(x for p in parts for x in p.note),
-        branched=np.concatenate([p.branched for p in parts]),
-        spins=np.concatenate([p.spins for p in parts]),
+        branched=together("branched"),
+        spins=together("spins"),
         forces=recovery.join([p.forces for p in parts]),
         mirror=recovery.join(mirrors) if mirrors else None,
         mirror_lines=tuple(x for p in parts for x in p.mirror_lines),

@@ -13,8 +13,7 @@ import numpy as np
 
 from guys import recovery, stability
 from guys.checks import alarms, allowables, extremes, resolve
-from guys.equilibrium import Problem
-from guys.loads import CaseLine, Placed, assemble, lines_of
+from guys.loads import CaseLine, lines_of
 from guys.results import (
     AnchorPulls,
     AnchorWorst,
@@ -50,50 +49,38 @@ def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = Non
     """
     structure = build(scenario, finer)
     setting = find(structure)
-    listed = _listed(structure, setting, progress)
-    swept = _swept(structure, setting, listed, progress)
+    listed = _listed(setting, progress)
+    swept = _swept(setting, listed, progress)
     return _solution(structure, setting, listed, swept)
 
 
-def _listed(structure: Structure, setting: Setting, progress: Progress | None) -> Batch:
+def _listed(setting: Setting, progress: Progress | None) -> Batch:
     """The setting case, then every listed case."""
     first = recover(setting.problem, setting.judged, detail=True)
-    lines = lines_of(structure.scenario)
+    lines = lines_of(setting.problem.structure.scenario)
     if setting.stands:
-        return join([first, solve_lines(structure, setting, lines, True, progress)])
-    return join([first, _none(structure, setting, lines)])
+        return join([first, solve_lines(setting, lines, True, progress)])
+    return join([first, _none(setting, lines, first.reason[0])])
 
 
-def _none(structure: Structure, setting: Setting, lines: Sequence[CaseLine]) -> Batch:
-    """Every case `none`, because the structure does not stand in still air."""
-    many = setting.problem.take(np.zeros(len(lines), dtype=np.int64))
+def _none(setting: Setting, lines: Sequence[CaseLine], reason: str | None) -> Batch:
+    """Every case `none`, because the structure does not stand in still air, for the reason given."""
+    rows = np.zeros(len(lines), dtype=np.int64)
+    many = setting.problem.take(rows)
     many = replace(many, loads=replace(many.loads, lines=tuple(lines)))
     judged = setting.judged
-    code = np.full(len(lines), stability.NONE)
-    rows = np.zeros(len(lines), dtype=np.int64)
-    blank = stability.Judged(
-        judged.state.take(rows),
-        code,
-        judged.error[rows],
-        judged.rounds[rows],
-        judged.lost_at[rows],
-        np.zeros(len(lines), bool),
-        judged.stuck[rows],
-        np.zeros(len(lines), bool),
-        {},
-        {},
-    )
-    batch = recover(many, blank, detail=True)
-    first = recover(setting.problem, setting.judged, detail=False).reason[0]
-    return replace(batch, reason=(f"the structure does not stand in still air: {first}",) * len(lines))
+    same = {name: getattr(judged, name)[rows] for name in ("error", "rounds", "lost_at", "branched", "stuck", "drifts")}
+    fallen = replace(judged, state=judged.state.take(rows), code=np.full(len(lines), stability.NONE), mirror={}, beyond={}, **same)
+    batch = recover(many, fallen, detail=True)
+    return replace(batch, reason=(f"the structure does not stand in still air: {reason}",) * len(lines))
 
 
-def _swept(structure: Structure, setting: Setting, listed: Batch, progress: Progress | None) -> Batch | None:
+def _swept(setting: Setting, listed: Batch, progress: Progress | None) -> Batch | None:
     """The full circle of winds for every case that holds wind."""
     templates = {line.name: line for line in listed.lines if not math.isnan(line.wind_from)}
     if not setting.stands or not templates:
         return None
-    return directions.sweep(tuple(templates.values()), listed, lambda lines: solve_lines(structure, setting, lines, False, progress))
+    return directions.sweep(tuple(templates.values()), listed, lambda lines: solve_lines(setting, lines, False, progress))
 
 
 @dataclass(frozen=True)
@@ -136,7 +123,7 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
     slides = {s.name: worst.of("slide", k) for k, s in enumerate(scenario.spar)}
     leans = {s.name: worst.of("lean", k, windy=True) for k, s in enumerate(scenario.spar)}
     found = allowables.findings(scenario, cables, anchors, slides, leans)
-    check = _self_check(structure, setting, listed, cables)
+    check = _self_check(setting, listed, cables)
     return Solution(
         scenario=scenario,
         version=__version__,
@@ -232,19 +219,17 @@ def _sweep(scenario: Scenario, swept: Batch) -> Sweep:
     return Sweep(names, bearing, m.tension[order], m.resultant[order], m.horizontal[order], m.uplift[order], swept.forces.slack[order])
 
 
-def _self_check(structure: Structure, setting: Setting, listed: Batch, cables: tuple[CableWorst, ...]) -> SelfCheck:
+def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...]) -> SelfCheck:
     balance = float(np.nanmax(listed.balance)) if not np.isnan(listed.balance).all() else math.nan
     k = _governing(listed, cables)
     if k is None:
         return SelfCheck(balance, "not run", math.nan, "", math.nan)
     line = listed.lines[k]
-    state = setting.state
     if k == 0:
         problem, judged = setting.problem, setting.judged
     else:
-        placed = Placed(state.u[0], state.psi[0], setting.length)
-        problem = Problem(structure, assemble(structure, [line], placed), setting.length)
-        judged = stability.judge(problem, state, setting.loads)
+        problem = setting.under([line])
+        judged = stability.judge(problem, setting.state, setting.loads)
     again = resolve.resolve(problem, judged.state)
     return SelfCheck(balance, again.verdict, again.difference, line.name, line.wind_from)
 

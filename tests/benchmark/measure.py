@@ -21,7 +21,7 @@ from numpy.typing import NDArray
 
 from guys import mesh, setting, solver, stability
 from guys.equilibrium import Problem
-from guys.loads import Placed, assemble, lines_of
+from guys.loads import lines_of
 from guys.scenario import Scenario, parse_scenario
 from guys.structure import build
 
@@ -80,10 +80,9 @@ def prepare(scenario: Scenario, finer: int = 1, directions: int | None = None) -
     found = setting.find(structure)
     between = time.process_time()
     bearings = None if directions is None else [2 * np.pi * k / directions for k in range(directions)]
-    placed = Placed(found.state.u[0], found.state.psi[0], found.length)
-    loads = assemble(structure, lines_of(scenario, bearings), placed)
+    problem = found.under(lines_of(scenario, bearings))
     ended = time.process_time()
-    return Prepared(found, Problem(structure, loads, found.length), between - began, ended - between)
+    return Prepared(found, problem, between - began, ended - between)
 
 
 def search(mast: Prepared) -> solver.Outcome:
