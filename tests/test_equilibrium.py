@@ -208,12 +208,13 @@ def test_the_two_bending_stiffnesses_act_about_their_own_axes() -> None:
 
 
 def test_shear_flexibility_adds_its_share() -> None:
-    """F L/GA more."""
-    document = cantilever((20.0, 0.0, 0.0))
+    """F L/GA more, either way."""
+    document = cantilever((20.0, -20.0, 0.0))
     document["spar"][0]["section"][0]["GA"] = 4e4
     solved = made.cases(document)
-    u = solved.state.u[0, solved.structure.head.node[0], 0]
-    assert u == pytest.approx(20.0 * 64 / (3 * 2e5) + 20.0 * 4.0 / 4e4, rel=1e-5)
+    u = solved.state.u[0, solved.structure.head.node[0]]
+    expected = 20.0 * 64 / (3 * 2e5) + 20.0 * 4.0 / 4e4
+    assert u[:2] == pytest.approx([expected, -expected], rel=1e-5)
 
 
 def test_axial_load_shortens_and_heat_lengthens() -> None:
@@ -241,6 +242,17 @@ def test_rigid_spars_grow_with_heat_too() -> None:
     document["case"] = [{"name": "hot", "wind": 0.0, "temperature": 45.0}]
     s = made.solved(document)
     assert s.spars[0].displacement[1, -1, 2] == pytest.approx(12e-6 * 30 * 12.0, rel=1e-9)
+
+
+def test_a_rigid_spar_that_grows_tightens_its_guys() -> None:
+    """The guy's upper end rises by 12e-6 x 30 K x 12 m, and the rope itself does not expand."""
+    steady = {"rope": made.rope(expansion=0.0)}
+    spar = made.spar(base="fixed", rigid=True, section=[made.tube(12.0)])
+    document = made.stayed(spar, 90.0, radius=9.0, at=12.0, length=14.99, straight=True, rope=steady)
+    document["case"] = [{"name": "hot", "wind": 0.0, "temperature": 45.0}]
+    s = made.solved(document)
+    chord = math.hypot(9.0, 12.0 * (1 + 12e-6 * 30.0))
+    assert s.cables.tension_anchor[1, 0] == pytest.approx(1.4e6 * (chord / 14.99 - 1), rel=1e-9)
 
 
 @pytest.mark.parametrize("change", [-30.0, 20.0])

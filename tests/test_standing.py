@@ -65,6 +65,16 @@ def test_every_stable_case_balances() -> None:
         assert s.check.balance < BALANCE
 
 
+@pytest.mark.parametrize("document", [made.mast(30.0), made.boom()], ids=["mast", "boom"])
+def test_head_lean_is_the_angle_between_the_drawn_axis_and_the_line_foot_to_head(document: made.Document) -> None:
+    s = made.solved(document)
+    for k, line in enumerate(s.spars):
+        now = line.drawn + line.displacement[1]
+        along = (now[-1] - now[0]) / np.linalg.norm(now[-1] - now[0])
+        assert s.head_lean[1, k] == pytest.approx(math.acos(along @ line.axes[2]), rel=1e-6)
+        assert s.head_lean[1, k] > 1e-4
+
+
 def extremes(s: Solution) -> list[tuple[Extreme, np.ndarray]]:
     """Greatest values with the listed ones they are of."""
     tension = np.maximum(s.cables.tension_anchor, s.cables.tension_top)
