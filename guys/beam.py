@@ -22,9 +22,8 @@ cancels: the residual keeps 1e-11 of the acting forces.
 The Hessian may be built with an axial force predicted from the last step instead of the present one: a trial step that turns a
 member also stretches it in second order, and that spurious tension would spoil the geometric stiffness.
 
-With c_b1 = y_i x e, j_b1 = (y_i - b1 e)/l and so on for the other slopes, s = (s_d, s_i, s_j) the gradient of u_e, w that of tau by
-theta_i,
-v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and cross terms of W_pp in b (a), the blocks are
+With c_b1 = y_i x e, j_b1 = (y_i - b1 e)/l and so on for the other slopes, s = (s_d, s_i, s_j) the gradient of u_e, w that of tau
+by theta_i, v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and cross terms of W_pp in b (a), the blocks are
 
     dd    EA/h s_d s_d^T + j_b1 P1^T + j_b2 P2^T + (the same in a) + N/l (I - e e^T) - (e v^T + v e^T + (e.v)(I - 3 e e^T))/l^2
     id    EA/h s_i s_d^T + c_b1 P1^T + c_a1 Q1^T + ([v_i]x - (v_i x e) e^T)/l,           P1 = k_b j_b1 + q_b j_b2,  P2 = q_b j_b1 + k_b j_b2
@@ -33,10 +32,12 @@ v_i = W_b1 y_i + W_a1 z_i, v = v_i + v_j, and k_b, q_b (k_a, q_a) the direct and
 
 Inside, arrays run components first and case last, (3, element, case), so that every operation is one long loop.
 
-Symbols: l chord length. Twist resists with GJ/h sin(twist), so twists toward 90 degrees between neighbouring nodes are outside the
-element's range. Sources: Crisfield, Non-linear Finite Element Analysis of Solids and Structures, vol. 2 (1997), ch. 17, for corotational
-beams; the bowing term is that of the cubic shape functions (Hermite), MacNeal's local deformation form; the shear factors are the usual
-Timoshenko ones.
+Symbols: l chord length.  Twist resists with GJ/(2h) sin(2 twist): 2 % soft at 10 degrees between neighbouring nodes, falling past 45
+and gone at 90.
+
+Sources: Crisfield, Non-linear Finite Element Analysis of Solids and Structures, vol. 2 (1997), ch. 17, for corotational beams; the
+bowing term is that of the cubic shape functions (Hermite), MacNeal's local deformation form; the shear factors are the usual Timoshenko
+ones.
 """
 
 from __future__ import annotations
@@ -187,10 +188,8 @@ def blocks(rods: Rods, bent: Bent, axial: Array, into: Array | None = None) -> A
     a = outer(torque * bent.z_i, bent.y_j) - outer(torque * bent.y_i, bent.z_j)
     stiff = outer((rods.GJ / rods.h)[:, None] * bent.twist, bent.twist)
     same = stiff + 0.25 * (a + flipped(a))
-    ii, jj = (_turning_block(same, per, *end) for end in (
-        (s_i, k_b * cb1, cb1, k_a * ca1, ca1, v_i, e, ev_i + torque * tau), (s_j, k_b * cb2, cb2, k_a * ca2, ca2, v_j, e, ev_j + torque *
-        tau)
-    ))  # fmt: skip
+    ii = _turning_block(same, per, s_i, k_b * cb1, cb1, k_a * ca1, ca1, v_i, e, ev_i + torque * tau)
+    jj = _turning_block(same, per, s_j, k_b * cb2, cb2, k_a * ca2, ca2, v_j, e, ev_j + torque * tau)
     ji = outer(per * s_j, s_i) + outer(q_b * cb2, cb1) + outer(q_a * ca2, ca1) - stiff - 0.5 * a
     add_diagonal(ji, torque * tau)
     out = np.empty((3, 6, 6, *l.shape)) if into is None else into
@@ -203,16 +202,11 @@ def blocks(rods: Rods, bent: Bent, axial: Array, into: Array | None = None) -> A
 def _turning_block(
     same: Array, per: Array, s: Array, kcb: Array, cb: Array, kca: Array, ca: Array, v: Array, e: Array, less: Array
 ) -> Array:
+    """d2W/dtheta_i^2 or d2W/dtheta_j^2: what both ends share, the rank-one terms of one end, and what its slopes turn with."""
     half = outer(0.5 * v, e)
     out: Array = same + outer(per * s, s) + outer(kcb, cb) + outer(kca, ca) + half + flipped(half)
     add_diagonal(out, -less)
     return out
-
-
-def hessian(rods: Rods, bent: Bent, axial: Array) -> Array:
-    """(case, element, 12, 12): the same blocks as one matrix by (u_i, theta_i, u_j, theta_j)."""
-    ii, jj, ji = (np.moveaxis(b, (3, 2), (0, 1)) for b in blocks(rods, bent, axial))
-    return np.concatenate([np.concatenate([ii, np.swapaxes(ji, -1, -2)], axis=-1), np.concatenate([ji, jj], axis=-1)], axis=-2)
 
 
 def predicted_axial(rods: Rods, bent: Bent, step: Array) -> Array:

@@ -2,8 +2,7 @@
 
 The exact values are definitions: standard gravity (3rd CGPM, 1901), the international yard and pound (agreement of 1959), the
 nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and
-`tests/test_scenario_reader.py`
-checks the densities they give against two independent libraries.
+`tests/published/test_iso_2533.py` checks the densities they give.
 """
 
 from __future__ import annotations
@@ -14,8 +13,6 @@ from typing import Final
 
 STANDARD_GRAVITY: Final = 9.80665
 """[m/s2], exact by definition (3rd CGPM, 1901)."""
-
-G: Final = STANDARD_GRAVITY
 
 INCH: Final = Fraction(254, 10_000)
 """[m], exact (1959)."""

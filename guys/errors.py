@@ -3,10 +3,10 @@
     GuysError
     ├── ScenarioError          what the user wrote is wrong; holds every `Fault` found            exit status 2
     ├── UnavailableError       asked for something this version does not do                       exit status 2
-    ├── OutputError            a result could not be written                                      exit status 1
-    └── SolverFault            the program failed, not the structure: a fault to report           exit status 1
+    └── OutputError            a result could not be written                                      exit status 1
 
-A structure that falls is not an exception: it is a result whose state is "none" or "unstable".
+A structure that falls is not an exception: it is a result whose state is "none" or "unstable".  Nor is a case on which the solver
+failed: `Solution.failed` tells it, and the commands then end with exit status 1.
 """
 
 from __future__ import annotations
@@ -68,7 +68,3 @@ class OutputError(GuysError):
         self.path = path
         self.reason = reason
         super().__init__(f"{path}: cannot be written: {reason}")
-
-
-class SolverFault(GuysError):
-    """The solver did not do its work: out of steps, not finite, or out of balance.  Never used for a structure that falls."""

@@ -18,9 +18,8 @@ from guys.equilibrium import Evaluation, Problem, State
 from guys.results import SparLine
 from guys.rotation import Array, cross, turned
 
-SLACK_STRAIGHT = 1e-9
 SLACK_HANGING = 1e-6
-"""Tolerances of the contract's rule for a slack cable."""
+"""A catenary is slack where the tension at mid-length is below its own load by more than this share of that load."""
 
 
 @dataclass(frozen=True)
@@ -77,7 +76,7 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
 
 def _slack(problem: Problem, state: State, found: Evaluation) -> NDArray[np.bool_]:
     _, _, chord = problem.chords(state)
-    longer = problem.natural > np.linalg.norm(chord, axis=-1) * (1 + SLACK_STRAIGHT)
+    longer = problem.natural > np.linalg.norm(chord, axis=-1) * (1 + cable.SLACK_BELOW)
     own = np.linalg.norm(problem.cable_total, axis=-1)
     return np.asarray(np.where(own > 0, np.linalg.norm(found.hanging.tension, axis=-1) < (1 - SLACK_HANGING) * own, longer))
 

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 import numpy as np
 import pytest
 
@@ -16,6 +18,12 @@ DIFFERENCES = 2e-7
 ROUNDING = 1e-12
 """Relative: a few hundred roundings."""
 CASES, ELEMENTS = 3, 4
+
+
+def hessian(rods: Rods, bent: beam.Bent, axial: np.ndarray) -> np.ndarray:
+    """(case, element, 12, 12): the blocks as one matrix by (u_i, theta_i, u_j, theta_j)."""
+    ii, jj, ji = (np.moveaxis(b, (3, 2), (0, 1)) for b in beam.blocks(rods, bent, axial))
+    return np.concatenate([np.concatenate([ii, np.swapaxes(ji, -1, -2)], axis=-1), np.concatenate([ji, jj], axis=-1)], axis=-2)
 
 
 def triads(rng: np.random.Generator, n: int) -> np.ndarray:
@@ -94,8 +102,8 @@ def test_hessian_is_the_symmetric_part_of_the_difference_of_the_gradient(rods: R
     columns = [difference(lambda p: beam.gradient(p.bend(rods)), pose, k) for k in range(12)]
     numeric = np.stack(columns, axis=-1)
     numeric = 0.5 * (numeric + np.swapaxes(numeric, -1, -2))
-    hessian = beam.hessian(rods, bent, bent.axial)
-    assert np.abs(numeric - hessian).max() < DIFFERENCES * np.abs(hessian).max()
+    exact = hessian(rods, bent, bent.axial)
+    assert np.abs(numeric - exact).max() < DIFFERENCES * np.abs(exact).max()
 
 
 def test_axial_force_is_predicted_to_first_order(rods: Rods, rng: np.random.Generator) -> None:
@@ -113,7 +121,7 @@ def test_a_given_axial_force_changes_the_geometric_part_only_by_what_it_multipli
     """d2W is linear in the axial force for given deformations, and the present one gives the true Hessian."""
     pose = Pose.random(rng, 0.1)
     bent = pose.bend(rods)
-    none, one, two = (beam.hessian(rods, bent, bent.axial + extra) for extra in (0.0, 100.0, 200.0))
+    none, one, two = (hessian(rods, bent, bent.axial + extra) for extra in (0.0, 100.0, 200.0))
     assert np.abs((two - none) - 2 * (one - none)).max() < ROUNDING * np.abs(none).max()
     assert np.abs(one - none).max() > 1.0
 
@@ -142,7 +150,7 @@ def stiffness_at_rest(phi: float) -> np.ndarray:
     rods = Rods(2.0 * one, z[None], x[None], y[None], 7e5 * one, 3e3 * one, 5e3 * one, 2e3 * one, phi * one, phi * one)
     still = np.zeros((3, 1, 1))
     bent = beam.bend(rods, still, still, still, still, still, np.zeros((1, 1)))
-    return np.asarray(beam.hessian(rods, bent, bent.axial)[0, 0])
+    return np.asarray(hessian(rods, bent, bent.axial)[0, 0])
 
 
 @pytest.mark.parametrize("phi", [0.0, 0.6])
@@ -166,3 +174,16 @@ def test_stretch_by_heat_and_by_pull_is_hookes(rods: Rods) -> None:
     still = np.zeros((3, ELEMENTS, 1))
     pulled = beam.bend(rods, (0.01 * rods.h[:, None] * rods.t).T[:, :, None], still, still, still, still, np.full((ELEMENTS, 1), 0.002))
     assert pulled.axial[0] == pytest.approx(rods.EA * (0.01 - 0.002), rel=ROUNDING)
+
+
+@pytest.mark.parametrize("angle", [0.01, math.radians(10), math.radians(45), math.radians(80), math.radians(120)])
+def test_twist_resists_with_the_sine_of_its_double(angle: float) -> None:
+    """The moment about the axis of an element one end of which is turned by `angle`: GJ/(2h) sin 2 angle, as the module says."""
+    h, gj = 2.0, 2e3
+    one, (x, y, z) = np.ones(1), np.eye(3)
+    rods = Rods(h * one, z[None], x[None], y[None], 7e5 * one, 3e3 * one, 5e3 * one, gj * one, 0 * one, 0 * one)
+    still = np.zeros((3, 1, 1))
+    turn_z = exp_minus_identity(np.array([0.0, 0.0, angle]))
+    bent = beam.bend(rods, still, still, still, (turn_z @ x)[:, None, None], (turn_z @ y)[:, None, None], np.zeros((1, 1)))
+    moment = beam.gradient(bent)[0, 0, [5, 11]]
+    assert moment == pytest.approx(gj / (2 * h) * math.sin(2 * angle) * np.array([-1.0, 1.0]), abs=ROUNDING * gj / h)

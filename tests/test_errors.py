@@ -13,7 +13,6 @@ from guys import errors
         (errors.ScenarioError([errors.Fault("a.toml", 3, 1, "wind.speed", "missing")]), 2, "a.toml:3:1: wind.speed: missing"),
         (errors.UnavailableError("'limit'"), 2, "'limit' is not available in this version"),
         (errors.OutputError("out/result.json", "no space left"), 1, "out/result.json: cannot be written: no space left"),
-        (errors.SolverFault("out of steps"), 1, "out of steps"),
     ],
 )
 def test_each_error_says_what_it_is(error: errors.GuysError, status: int, text: str) -> None:
