@@ -30,11 +30,19 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import columns
+from guys.constants import NONZERO
 from guys.rotation import dot, outer
 
 Array = NDArray[np.float64]
 
 LARGEST_ROUNDS = 60
+"""Newton's rounds for a catenary; ordinary ones take 1 to 5."""
+START_ROUNDS = 12
+"""Newton's rounds for the cubic of a start: within rounding after six where taut; in long loops it halves the rest, which will do."""
+START_ACROSS = 1e-12
+"""Least square of the load across the chord that a start takes, of the whole load's: a cable in line with its load starts off zero."""
+START_SLACK = 1e-3
+"""Least tension a start takes, of the load: the cubic, meant for shallow sag, gives a cable along its load next to none."""
 CLOSED = 1e-9
 """Newton ends with a correction of T below this share of the end tensions: the next would be of the order of its square ..."""
 ROUNDING = 4e-15
@@ -48,9 +56,13 @@ NEARLY_CHORD = 1e-3
 WEIGHTLESS = 1e-13
 """A cable with less load than this share of EA is solved with that much: its shape is then straight to rounding, and a slack one hangs."""
 LEVEL_FLOOR = 1e-12
-"""The chord is taken to lean at least this share of its length from the load, so that a slack cable hanging in line with its load keeps a
-loop.
-"""
+"""Least lean of the chord from the load, of its length, and of tension, of the load: a slack cable in line with its load keeps a loop."""
+FOLDED = 1e-30
+"""Least 1 - z^2: that of a cable hanging double in its own line, where rounding would make it zero."""
+SERIES_BELOW = 1e-2
+"""z below which the series of atanh z/z is exact to rounding."""
+STRAIGHT_BELOW = 1e-12
+"""A cable with less load than this share of its tension is drawn straight: the catenary's parameter would be lost in rounding."""
 SIX = ((0, 0), (0, 1), (0, 2), (1, 1), (1, 2), (2, 2))
 """Rows and columns of the six entries of a symmetric matrix."""
 SLACK_BELOW = 1e-9
@@ -75,17 +87,17 @@ def start(chord: Array, length: Array, EA: Array, load: Array) -> Array:
     chord (3, n) [m], length (n,) [m], EA (n,) [N], load (3, n) total load w L0 [N].
     """
     c = np.sqrt(columns.dot(chord, chord))
-    e = chord / np.maximum(c, 1e-300)
+    e = chord / np.maximum(c, NONZERO)
     own2 = columns.dot(load, load)
-    across2 = np.maximum(own2 - columns.dot(load, e) ** 2, 1e-12 * own2)
+    across2 = np.maximum(own2 - columns.dot(load, e) ** 2, START_ACROSS * own2)
     taut = EA * (c / length - 1)
     hanging = np.cbrt(EA * across2 / 24)
     x = np.maximum(np.maximum(taut, 0), hanging)
-    for _ in range(12):
+    for _ in range(START_ROUNDS):
         f = x * x * (x - taut) - EA * across2 / 24
-        x = x - f / np.maximum(3 * x * x - 2 * taut * x, 1e-300)
+        x = x - f / np.maximum(3 * x * x - 2 * taut * x, NONZERO)
     loose = np.clip(1 - c / length, 0, 1)
-    return np.asarray(np.maximum(x, 1e-3 * np.sqrt(own2) * (1 - loose)) * e)
+    return np.asarray(np.maximum(x, START_SLACK * np.sqrt(own2) * (1 - loose)) * e)
 
 
 @dataclass(frozen=True)
@@ -161,7 +173,7 @@ def _begin(ties: _Ties, warm: Array | None) -> tuple[Array, Array, Array, Array]
 
 def _damped(size: Array, tension: Array) -> Array:
     """Share of the step that keeps it below `NEWTON_REACH` of the tension."""
-    return np.minimum(1.0, NEWTON_REACH * np.sqrt(columns.dot(tension, tension)) / np.maximum(size, 1e-300))
+    return np.minimum(1.0, NEWTON_REACH * np.sqrt(columns.dot(tension, tension)) / np.maximum(size, NONZERO))
 
 
 def _off_line(chord: Array, unit: Array) -> Array:
@@ -181,7 +193,7 @@ def _miss(ties: _Ties, tension: Array) -> tuple[Array, Array, Array]:
     at_a, at_b = tension + ties.load / 2, tension - ties.load / 2
     a, b = np.sqrt(columns.dot(at_a, at_a)), np.sqrt(columns.dot(at_b, at_b))
     s = a + b
-    rest = np.maximum(2 * (a * b + columns.dot(at_a, at_b)) / (s * s), 1e-30)
+    rest = np.maximum(2 * (a * b + columns.dot(at_a, at_b)) / (s * s), FOLDED)
     phi = _atanh_ratio(ties.own / s, rest)
     par = columns.dot(tension, ties.unit) * ties.unit
     per = tension - par
@@ -201,7 +213,7 @@ def _miss(ties: _Ties, tension: Array) -> tuple[Array, Array, Array]:
 
 def _atanh_ratio(z: Array, rest: Array) -> Array:
     """atanh(z)/z with 1 - z^2 = rest given, so that z near one loses nothing."""
-    small = z < 1e-2
+    small = z < SERIES_BELOW
     safe = np.where(small, 0.5, z)
     z2 = z * z
     series = 1 + z2 / 3 * (1 + 3 * z2 / 5 * (1 + 5 * z2 / 7))
@@ -251,8 +263,11 @@ def pull_straight(chord: Array, length: Array, EA: Array) -> Hanging:
 
 @dataclass(frozen=True)
 class Shape:
-    """Cables as they hang, in closed form: `unit` (n, 3) along the load, `load` (n,) [N/m], `across` p = |T_per| (n,) [N] with its vector,
-    `along` T_par at mid-length (n,) [N]; `straight` (n,) where the load is nothing against the tension."""
+    """Cables as they hang, in closed form.
+
+    tension, total (n, 3) [N] at mid-length, and the whole load; length (n,) [m]; EA (n,) [N]; unit (n, 3) along the load; load (n,) [N/m]
+    level (n, 3) [N] T_per, across (n,) [N] p = |T_per|; straight (n,) where the load is nothing against the tension
+    """
 
     tension: Array
     total: Array
@@ -268,10 +283,10 @@ class Shape:
 def shape(tension: Array, total: Array, length: Array, EA: Array) -> Shape:
     """Shape of cables (n, ...) from the tension at mid-length and the whole load, both [N]; lengths [m] and stiffness [N]."""
     size, pull = np.sqrt(dot(total, total)), np.sqrt(dot(tension, tension))
-    straight = size <= 1e-12 * pull
-    unit = np.where(straight[:, None], np.array([0.0, 0, -1]), total / np.maximum(size, 1e-300)[:, None])
+    straight = size <= STRAIGHT_BELOW * pull
+    unit = np.where(straight[:, None], np.array([0.0, 0, -1]), total / np.maximum(size, NONZERO)[:, None])
     level = tension - dot(tension, unit)[:, None] * unit
-    across = np.maximum(np.sqrt(dot(level, level)), 1e-12 * np.maximum(size, 1e-300))
+    across = np.maximum(np.sqrt(dot(level, level)), LEVEL_FLOOR * np.maximum(size, NONZERO))
     return Shape(tension, total, length, EA, unit, np.where(straight, 1.0, size / length), across, level, straight)
 
 
@@ -292,7 +307,7 @@ def curve(s: Shape, points: int) -> Array:
     u, size = _angle(s, f)
     fall = ((size[:, :1] - size) / s.load[:, None])[..., None] * s.unit[:, None]
     away = ((u[:, :1] - u) / s.load[:, None])[..., None] * s.level[:, None]
-    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), 1e-300)
+    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), NONZERO)
     direct = ((f + 0.5) * s.length[:, None])[..., None] * (s.tension / pull[:, None])[:, None]
     return np.asarray(elastic + np.where(s.straight[:, None, None], direct, fall + away))
 
@@ -308,6 +323,6 @@ def centroid(s: Shape) -> Array:
     fall = ((size[:, 0] - of_size / length) / w)[:, None] * s.unit
     away = ((u[:, 0] - of_u / length) / w)[:, None] * s.level
     elastic = (length / s.EA)[:, None] * (0.5 * s.tension + s.total / 12)
-    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), 1e-300)
+    pull = np.maximum(np.sqrt(dot(s.tension, s.tension)), NONZERO)
     direct = 0.5 * length[:, None] * s.tension / pull[:, None]
     return np.asarray(elastic + np.where(s.straight[:, None], direct, fall + away))

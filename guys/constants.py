@@ -1,4 +1,4 @@
-"""Physical constants, each with its source.
+"""Physical constants, each with its source, and what stands for zero under a division.
 
 The exact values are definitions: standard gravity (3rd CGPM, 1901), the international yard and pound (agreement of 1959), the
 nautical mile (1929).  The standard atmosphere is that of ISO 2533:1975; its values are quoted from memory, and
@@ -52,6 +52,9 @@ EARTH_RADIUS: Final = 6_356_766.0
 
 ICE_DENSITY: Final = 900.0
 """Glaze [kg/m3], the usual figure for clear ice (common practice, ISO 12494 glaze from memory)."""
+
+NONZERO: Final = 1e-300
+"""Divided by in place of zero where the numerator is then zero too: 0/0 comes out as 0."""
 
 
 def air_density(altitude: float, temperature: float | None = None) -> float:

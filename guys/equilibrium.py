@@ -21,6 +21,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import band, beam, cable, columns, joint
+from guys.constants import NONZERO
 from guys.loads import LoadCases
 from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, turn, turned
 from guys.structure import Points, Structure
@@ -31,8 +32,7 @@ Index = NDArray[np.int64]
 @dataclass(frozen=True)
 class State:
     """u (case, node, 3) [m]; psi (case, node, 3, 3); tension (case, cable, 3) [N] at mid-length (zero: not known); axial (case, element)
-    [N]
-    the axial force to build the geometric stiffness with (NaN: that of the present position)."""
+    [N] the axial force to build the geometric stiffness with (NaN: that of the present position)."""
 
     u: Array
     psi: Array
@@ -71,7 +71,7 @@ class Evaluation:
 
 @dataclass(frozen=True)
 class Problem:
-    """A structure under load cases with given unstressed lengths (cable,) or (case, cable) [m] at the setting temperature."""
+    """A structure under load cases with given unstressed lengths (cable,) [m] at the setting temperature."""
 
     structure: Structure
     loads: LoadCases
@@ -109,8 +109,7 @@ class Problem:
 
     def take(self, rows: Index) -> Problem:
         """The cases `rows`."""
-        length = self.length if self.length.ndim == 1 else self.length[rows]
-        return replace(self, loads=self.loads.take(rows), length=length)
+        return replace(self, loads=self.loads.take(rows))
 
     def drawn(self) -> State:
         """The unloaded geometry, for every case."""
@@ -150,7 +149,7 @@ class Problem:
         """Cables of all cases at given chords (case, cable, 3)."""
         c, k = chord.shape[:2]
         flat = chord.reshape(-1, 3)
-        length = np.broadcast_to(self.natural, (c, k)).reshape(-1)
+        length = self.natural.reshape(-1)
         stiffness = np.broadcast_to(self.structure.cables.EA, (c, k)).reshape(-1)
         if self.structure.scenario.analysis.cable == "straight":
             out = cable.pull_straight(flat, length, stiffness)
@@ -164,7 +163,7 @@ class Problem:
     @cached_property
     def cable_total(self) -> Array:
         """(case, cable, 3) [N] whole load of every cable."""
-        return np.asarray(self.loads.cable_load * np.broadcast_to(self.length, self.loads.present.shape)[..., None])
+        return self.loads.cable_load * self.length[:, None]
 
     def evaluate(self, state: State) -> Evaluation:
         """Net forces and moments of every case."""
@@ -293,7 +292,7 @@ class Problem:
         whole = self.whole_step(state, step)
         turns = np.max(np.abs(whole[..., 3:]), axis=(1, 2), initial=0.0)
         moves = np.max(np.abs(whole[..., :3]), axis=(1, 2), initial=0.0)
-        share = np.minimum(1.0, np.minimum(turning / np.maximum(turns, 1e-300), moving / np.maximum(moves, 1e-300)))
+        share = np.minimum(1.0, np.minimum(turning / np.maximum(turns, NONZERO), moving / np.maximum(moves, NONZERO)))
         return np.asarray(share[:, None] * step)
 
     def advance(self, state: State, found: Evaluation, step: Array) -> State:
@@ -328,9 +327,7 @@ class Problem:
         s = self.structure
         _, reached = self.reach(s.head, state)
         line = s.position[s.head.node] - s.position[s.foot] + reached - state.u[:, s.foot]
-        rigid = np.array([spar.rigid for spar in s.scenario.spar])
-        whole = np.where(rigid[:, None], reached - state.u[:, s.foot], line)
-        return np.asarray(whole / np.sqrt(dot(whole, whole))[..., None])
+        return np.asarray(line / np.sqrt(dot(line, line))[..., None])
 
 
 def _passed_on(k: Array, arm: Array, force: Array) -> Array:

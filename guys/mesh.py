@@ -21,6 +21,8 @@ from itertools import pairwise
 import numpy as np
 from numpy.typing import NDArray
 
+from guys.constants import NONZERO
+
 Array = NDArray[np.float64]
 
 MERGE = 5e-3
@@ -29,6 +31,10 @@ ELEMENTS = 4
 """Elements in a span."""
 SHORTEST = 1 / 15
 """Shortest element a stretch is cut into, of the spar's length over the elements in a span."""
+SAME = 1e-9
+"""Ends of sections nearer than this share of the spar's length are one: lengths of sections are sums."""
+SPARE = 1e-6
+"""Part of an element by which a stretch may be longer than a whole number of them without getting one more: rounding."""
 
 
 @dataclass(frozen=True)
@@ -52,7 +58,7 @@ def divide(
     elements : elements in a span;  finer : parts every one of them is then divided into
     """
     least = MERGE * length
-    fixed = _thinned([0.0, length, *boundaries], 1e-9 * length)
+    fixed = _thinned([0.0, length, *boundaries], SAME * length)
     held = list(held)
     for at in sorted(held) + sorted(attached):
         if min(abs(at - s) for s in fixed) > least:
@@ -63,7 +69,7 @@ def divide(
     for low, high in pairwise(fixed):
         span = _span(levels, 0.5 * (low + high))
         most = (high - low) / length * elements / SHORTEST
-        parts = finer * max(1, math.ceil(min((high - low) / span * elements, most) - 1e-6))
+        parts = finer * max(1, math.ceil(min((high - low) / span * elements, most) - SPARE))
         out += [low + (high - low) * k / parts for k in range(1, parts + 1)]
     return Stations(np.array(out))
 
@@ -77,6 +83,7 @@ def _thinned(stations: Iterable[float], least: float) -> list[float]:
 
 
 def _span(levels: list[float], at: float) -> float:
+    """Length of the span at a station; next to nothing above a level that took the place of the head."""
     upper = next((s for s in levels if s >= at), levels[-1])
     lower = max((s for s in levels if s < at), default=0.0)
-    return max(upper - lower, 1e-12)
+    return max(upper - lower, NONZERO)

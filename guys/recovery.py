@@ -21,6 +21,9 @@ from guys.rotation import Array, cross, turned
 SLACK_HANGING = 1e-6
 """A catenary is slack where the tension at mid-length is below its own load by more than this share of that load."""
 
+AT_CUT = 1e-9
+"""What hangs at a cut of a rigid spar, to this share of its length, counts above it."""
+
 
 @dataclass(frozen=True)
 class Forces:
@@ -64,7 +67,7 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
         tension_top=np.linalg.norm(at_b, axis=-1),
         on_anchor=at_a,
         on_spar=-at_b,
-        length=np.broadcast_to(problem.natural, present.shape).copy(),
+        length=problem.natural,
         slack=_slack(problem, state, found) & present,
         present=present,
         pull=-found.structural[:, s.anchor, :3],
@@ -112,8 +115,10 @@ def _hanging(problem: Problem, state: State, found: Evaluation) -> tuple[Array, 
     if s.scenario.analysis.cable == "straight":
         return start, None
     shape = start.shape[:2]
-    length, stiffness = (np.broadcast_to(x, shape).reshape(-1) for x in (problem.natural, s.cables.EA))
-    return start, cable.shape(found.hanging.tension.reshape(-1, 3), problem.cable_total.reshape(-1, 3), length, stiffness)
+    stiffness = np.broadcast_to(s.cables.EA, shape).reshape(-1)
+    return start, cable.shape(
+        found.hanging.tension.reshape(-1, 3), problem.cable_total.reshape(-1, 3), problem.natural.reshape(-1), stiffness
+    )
 
 
 def lines(problem: Problem, state: State, found: Evaluation) -> tuple[SparLine, ...]:
@@ -180,18 +185,15 @@ def _rigid_sections(problem: Problem, state: State, found: Evaluation, k: int) -
     hung = _hung_on(problem, state, found, k)
     force, moment = np.zeros((problem.cases, 3)), np.zeros((problem.cases, 3))
     out_f, out_m = np.zeros((problem.cases, len(mine), 2, 3)), np.zeros((problem.cases, len(mine), 2, 3))
-    above = float(s.length[k])
+    above = np.inf
     for row in reversed(range(len(mine))):
         low, high = s.pieces.station[mine[row]]
+        least = high - AT_CUT * s.length[k]
         for h in hung:
-            if (
-                high - 1e-9 * s.length[k] <= h.station
-                and h.station < above + 1e-9 * s.length[k]
-                and (row == len(mine) - 1 or h.station < above)
-            ):
+            if least <= h.station < above:
                 moment = moment + h.moment + cross((h.station - high) * t, h.force)
                 force = force + h.force
-        above = high - 1e-9 * s.length[k]
+        above = least
         out_f[:, row, 1], out_m[:, row, 1] = force, moment
         q, lever = problem.loads.on_pieces[:, mine[row], 0], problem.loads.on_pieces[:, mine[row], 1]
         moment = moment + cross((high - low) * t, force) + cross(t, lever - low * q)

@@ -27,6 +27,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import band, cable, solver, stability
+from guys.constants import NONZERO
 from guys.equilibrium import Evaluation, Problem, State
 from guys.errors import Fault, ScenarioError
 from guys.loads import CaseLine, LoadCases, Placed, as_drawn, assemble, setting_line
@@ -39,8 +40,15 @@ MET = 1e-10
 ROUNDED = 1e-15
 """... and what rounding of chord over length adds for a straight cable, over its stretch."""
 ROUNDS = 40
+FIRST_LEAD = 1 / 4
 LEAST_LEAD = 1 / 200
-"""Least step, of the whole way, when measures are led to their targets."""
+"""First and least step, of the whole way, when measures are led to their targets."""
+LEAST_MEASURE = 1e-12
+"""A measure below it has no useful logarithm: the cable is slack to rounding."""
+RANK = 1e-14
+"""Singular values below this share of the greatest count as zero: changes of length together that change nothing asked for."""
+AT_BOUND = 1e-9
+"""A tension this share of its target below its bound is at the bound."""
 TIGHT = 1e-3
 """Stretch by which the measure of a straight cable that is to be just tight is scaled."""
 WILD = 0.5
@@ -51,8 +59,10 @@ PLACED = 1e-10
 """Change of ln L0 at which a plumb setting is found: the move it makes is below a micrometre."""
 LEAST_SHARE = 0.1
 """Least tension of a plumb setting, of its target."""
+FIRST_GRID = np.concatenate([np.linspace(0, 1, 60) ** 4 * 1e-2, np.geomspace(1.1e-2, 1.0, 90)])
+"""Where a first length is looked for between the tautest it may be (0) and twice that (1): closest where tension falls fast."""
 ZOOMS = 5
-"""Times the bracket of a first length is searched again, twenty times finer."""
+"""Times a first length is looked for, each time but the first between neighbours of the last, twenty times finer."""
 AS_DRAWN = 1e-5
 """Displacement, of the height, that weighs as much as a tension off its target by all of it."""
 PLUMB_TURN = 0.01
@@ -137,11 +147,10 @@ def _first_lengths(structure: Structure, loads: LoadCases, asked: _Asked) -> Arr
     if structure.scenario.analysis.cable == "straight":
         return np.asarray(c / np.where(asked.tight, 1.0, 1 + asked.target / EA))
     weight = np.sqrt(dot(load, load))
-    taut = c / (1 + (asked.target + weight * c) / EA)
-    grid = np.concatenate([np.linspace(0, 1, 60) ** 4 * 1e-2, np.geomspace(1.1e-2, 1.0, 90)])
-    low = high = taut
+    low = c / (1 + (asked.target + weight * c) / EA)
+    high, grid = 2 * low, FIRST_GRID
     for _ in range(ZOOMS):
-        between = low + grid[:, None] * (high - low) if high is not taut else taut * (1 + grid[:, None])
+        between = low + grid[:, None] * (high - low)
         measure = _measure_alone(chord, EA, load, between, asked)
         below = measure < 1
         _refuse_unmet(structure.scenario, asked, measure, np.asarray(below.any(axis=0)))
@@ -286,7 +295,7 @@ def _measure_rates(problem: Problem, state: State, found: Evaluation, asked: _As
 
 def _log_rate(vector: Array, rate: Array) -> Array:
     """d ln |v| from dv: (n, 3), (n, 3, m) -> (n, m)."""
-    return np.asarray(np.einsum("ni,nim->nm", vector, rate) / np.maximum(dot(vector, vector), 1e-300)[:, None])
+    return np.asarray(np.einsum("ni,nim->nm", vector, rate) / np.maximum(dot(vector, vector), NONZERO)[:, None])
 
 
 def _with_change(problem: Problem, change: Array, asked: _Asked) -> Problem:
@@ -309,8 +318,8 @@ def _meet(problem: Problem, state: State, asked: _Asked) -> tuple[Problem, State
     if not out.converged[0]:
         raise ScenarioError([_not_met(problem.structure.scenario, asked)])
     here = (problem, out.state)
-    start = np.log(np.maximum(_rates(*here, asked).measure, 1e-12))
-    done, step = 0.0, 0.25
+    start = np.log(np.maximum(_rates(*here, asked).measure, LEAST_MEASURE))
+    done, step = 0.0, FIRST_LEAD
     while done < 1 and step > LEAST_LEAD:
         there = _newton(*here, asked, start * (1 - min(1.0, done + step)))
         if there is None:
@@ -331,11 +340,11 @@ def _newton(problem: Problem, state: State, asked: _Asked, goal: Array) -> tuple
     close = MET + ROUNDED / _stretch_wanted(problem, asked) if straight else MET
     for _ in range(ROUNDS):
         rates = _rates(problem, state, asked)
-        scale = np.ones_like(rates.measure) if straight else 1 / np.maximum(rates.measure, 1e-12)
+        scale = np.ones_like(rates.measure) if straight else 1 / np.maximum(rates.measure, LEAST_MEASURE)
         miss = rates.measure - np.exp(goal) if straight else np.clip(-np.log(scale) - goal, -STEP, STEP)
         if np.all(np.abs(miss) < close) and rates.error < solver.ENOUGH:
             return problem, state
-        change: Array = np.linalg.lstsq(scale[:, None] * rates.rate, -miss - scale * rates.drift, rcond=1e-14)[0].astype(float)
+        change: Array = np.linalg.lstsq(scale[:, None] * rates.rate, -miss - scale * rates.drift, rcond=RANK)[0].astype(float)
         step = (rates.settle + rates.step @ change)[None]
         share = _share(problem.limited(state, step, solver.TURN_CAP, solver.MOVE_CAP * problem.structure.height), step)
         if not np.isfinite(share) or np.max(np.abs(share * change)) > WILD:
@@ -415,13 +424,13 @@ def _nearest(rates: _Rates, away: Array, slope: Array) -> Array:
 
 def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:
     """Least squares |a x - wanted| with g x >= least."""
-    x = np.linalg.lstsq(a, wanted, rcond=1e-14)[0]
-    if (g @ x >= least - 1e-9).all():
+    x = np.linalg.lstsq(a, wanted, rcond=RANK)[0]
+    if (g @ x >= least - AT_BOUND).all():
         return np.asarray(x)
     from scipy.optimize import LinearConstraint, minimize
 
     scale = np.linalg.norm(a, axis=0)
-    a, g, size = a / scale, g / scale, 1 / max(float(wanted @ wanted), 1e-300)
+    a, g, size = a / scale, g / scale, 1 / max(float(wanted @ wanted), NONZERO)
 
     def miss(y: Array) -> float:
         return float(0.5 * size * np.sum((a @ y - wanted) ** 2))

@@ -41,6 +41,10 @@ TURN_CAP = 0.35
 """[rad] greatest turn of a node in one step."""
 MOVE_CAP = 0.25
 """Greatest move of a node in one step, of the height."""
+RAISES = 40
+"""Times mu is raised tenfold: it then outweighs any tangent."""
+FALLS = 0.9
+"""An out-of-balance above this share of the least so far has not fallen."""
 STALLED = 3
 """Rounds without a fall of the out-of-balance, once below ENOUGH, after which rounding has been reached."""
 
@@ -119,7 +123,7 @@ def _capped(part: Problem, here: State, step: Array, seen: _Progress, open_: Ind
 
 def _judge(seen: _Progress, open_: Index, error: Array) -> NDArray[np.bool_]:
     """Which of the open cases are done; notes their error."""
-    better = error < 0.9 * seen.error[open_]
+    better = error < FALLS * seen.error[open_]
     seen.stalled[open_] = np.where(better | (error >= ENOUGH), 0, seen.stalled[open_] + 1)
     seen.error[open_] = error
     return np.asarray((error < TARGET) | (seen.stalled[open_] >= STALLED))
@@ -134,7 +138,7 @@ def damped_step(k_band: Array, residual: Array, mass: Array, damping: Array, roo
     np.copyto(room, k_band)
     factors, definite = _factor_shifted(room, mu, mass)
     missing = np.flatnonzero(~definite)
-    for _ in range(40):
+    for _ in range(RAISES):
         if len(missing) == 0:
             break
         mu[missing] = np.where(mu[missing] <= LEAST_DAMPING, FIRST_DAMPING, 10 * mu[missing])
