@@ -160,33 +160,39 @@ def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judge
     no, nowhere = np.zeros(problem.cases, bool), np.full(problem.cases, np.nan)
     stuck = ~out.converged & ~out.stopped
     judged = Judged(out.state, code, out.error, out.rounds, nowhere, no, stuck, no.copy(), {}, {})
-    for case in np.flatnonzero(code == UNSTABLE):
-        _push(problem, judged, int(case))
+    _push(problem, judged, np.flatnonzero(code == UNSTABLE))
     return judged
 
 
-def _push(problem: Problem, judged: Judged, case: int) -> None:
-    """Push an unstable case along its lowest mode both ways; write the stable state it comes to, if near, and its mirror."""
-    one, here = problem.take(np.array([case])), judged.state.take(np.array([case]))
-    shape = modes(one, here, 1).shape[0]
-    pair = problem.take(np.array([case, case]))
-    both = pair.repeat(here)
+def _push(problem: Problem, judged: Judged, cases: Index) -> None:
+    """Push unstable cases along their lowest modes both ways; write the stable states they come to, if near, and the mirrors."""
+    shape = {int(c): modes(problem.take(np.array([c])), judged.state.take(np.array([c])), 1).shape[0] for c in cases}
     for amplitude in PUSHES:
-        sway = np.array([amplitude, -amplitude])[:, None, None] * problem.structure.height * shape
-        step = band.pick(problem.pattern, sway)
-        out = solver.solve(pair, pair.advance(both, pair.evaluate(both), step), turned_over, PATH_ROUNDS)
-        good = out.converged & ~out.stopped
-        good[good] = classify(pair.take(np.flatnonzero(good)), out.state.take(np.flatnonzero(good))) <= NEUTRAL
-        good &= turn_between(pair, out.state, both) < 2 * FAR
-        if good.any():
-            chosen = int(np.flatnonzero(good)[0])
-            judged.state.put(np.array([case]), out.state.take(np.array([chosen])))
-            judged.code[case] = STABLE
-            judged.error[case], judged.branched[case] = out.error[chosen], True
-            judged.rounds[case] += out.rounds[chosen]
-            if good.all():
-                judged.mirror[case] = out.state.take(np.array([1]))
+        if len(cases) == 0:
             return
+        pairs = np.repeat(cases, 2)
+        both, there = problem.take(pairs), judged.state.take(pairs)
+        way = np.tile([amplitude, -amplitude], len(cases))[:, None, None] * problem.structure.height
+        step = band.pick(both.pattern, way * np.array([shape[int(c)] for c in pairs]))
+        out = solver.solve(both, both.advance(there, both.evaluate(there), step), turned_over, PATH_ROUNDS)
+        good = out.converged & ~out.stopped & (turn_between(both, out.state, there) < 2 * FAR)
+        held = np.flatnonzero(good)
+        if len(held):
+            good[held] = classify(both.take(held), out.state.take(held)) <= NEUTRAL
+        for k in np.flatnonzero(good.reshape(-1, 2).any(axis=1)):
+            _stand_aside(judged, int(cases[k]), out, 2 * int(k), good)
+        cases = cases[~good.reshape(-1, 2).any(axis=1)]
+
+
+def _stand_aside(judged: Judged, case: int, out: solver.Outcome, first: int, good: NDArray[np.bool_]) -> None:
+    """Write the stable state beside an unstable one: of the pair pushed from it, `first` and the next, the first that is good."""
+    chosen, other = (first, first + 1) if good[first] else (first + 1, first)
+    judged.state.put(np.array([case]), out.state.take(np.array([chosen])))
+    judged.code[case] = STABLE
+    judged.error[case], judged.branched[case] = out.error[chosen], True
+    judged.rounds[case] += out.rounds[chosen]
+    if good[other]:
+        judged.mirror[case] = out.state.take(np.array([other]))
 
 
 @dataclass
