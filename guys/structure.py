@@ -32,8 +32,9 @@ from guys.sections import Properties, properties
 Index = NDArray[np.int64]
 HOLD = 1e5
 """Stiffness of a joint that only holds, over EI/L of its spar: it turns by 1e-5 of what the spar's own bending gives."""
-HOLD_RIGID = 1e6
-"""The same for rigid spars, over (weight of the whole, or a thousandth of the stiffest cable's EA) times the spar's length."""
+HOLD_RIGID = 1e5
+"""The same for rigid spars, over (weight of the whole, or a thousandth of the stiffest cable's EA) times the spar's length;
+ten times as much, and the rounding of its rotations passes for a force of 1e-9 of that."""
 
 HELD = {
     "pinned": (True, True, True, False, False, True),
