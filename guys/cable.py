@@ -12,6 +12,7 @@ together).  With T the tension vector at mid-length, pointing from end A to end 
     F = dr/dT = L0 [ I/EA + (2/S) (P_par + (atanh z / z) P_per) - (2/S^2) (T_par + T_per/(1 - z^2)) n^T ],
     n = T_A/|T_A| + T_B/|T_B|,     1 - z^2 = 2 (|T_A| |T_B| + T_A.T_B) / S^2
 
+(where the ends pull against each other, in a loop, that sum is |w L0|^2 |T_per|^2 / (|T_A| |T_B| - T_A.T_B), which cancels nothing)
 is symmetric positive definite: F^-1 is the stiffness between the ends, and Newton on T is the minimisation of a convex
 complementary energy.  The pull of the cable on A is T_A, on B it is -T_B.  Lengthening at given T moves the ends by
 dr/dL0 = half the sum over both ends of (1/EA + 1/|T|) T.
@@ -193,10 +194,13 @@ def _miss(ties: _Ties, tension: Array) -> tuple[Array, Array, Array]:
     at_a, at_b = tension + ties.load / 2, tension - ties.load / 2
     a, b = np.sqrt(columns.dot(at_a, at_a)), np.sqrt(columns.dot(at_b, at_b))
     s = a + b
-    rest = np.maximum(2 * (a * b + columns.dot(at_a, at_b)) / (s * s), FOLDED)
-    phi = _atanh_ratio(ties.own / s, rest)
     par = columns.dot(tension, ties.unit) * ties.unit
     per = tension - par
+    with_each_other = columns.dot(at_a, at_b)
+    sure = a * b + np.abs(with_each_other)
+    rest = np.where(with_each_other > 0, sure, ties.own**2 * columns.dot(per, per) / sure)
+    rest = np.maximum(2 * rest / (s * s), FOLDED)
+    phi = _atanh_ratio(ties.own / s, rest)
     gap = ties.length * (tension / ties.EA + (2 / s) * (par + phi * per)) - ties.chord
     n = at_a / a + at_b / b
     q = (ties.length / (s * s)) * (par + per / rest)

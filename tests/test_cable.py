@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import assume, given
 from hypothesis import settings as limits
 from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
@@ -15,6 +15,8 @@ INTEGRATED = 1e-9
 """Relative to the length: what Runge-Kutta at a relative tolerance of 1e-12 leaves."""
 CLOSED = 2e-13
 """Chord missed, of length plus chord: some roundings of the sums that make it."""
+NARROW = 1e-5
+"""Relative: rounding of a vertical tension of newtons in one level of 1e-12 of it."""
 MICROMETRE = 1e-6
 """A micrometre in a metre, which nobody measures: the sum over 20,000 chords, and loops hanging in line with their load, are as good."""
 DIFFERENCES = 1e-6
@@ -177,6 +179,28 @@ def test_a_cable_in_line_with_its_load_hangs_down_as_a_loop() -> None:
     assert h.at_b[0] == pytest.approx(np.array([0.0, 0.0, 11.0]), abs=1e-5)
 
 
+@pytest.mark.parametrize("aside", [1e-2, 1e-4, 1e-6, 1e-8, 1e-10])
+def test_a_loop_opens_by_the_catenary_however_narrow_it_is(aside: float) -> None:
+    """That cable, inextensible, its ends `aside` apart: with H level and V up at the ends, aside = H/w (asinh V_A/H + asinh V_B/H)
+
+    The sum of |T_A||T_B| and T_A.T_B, taken as it is written, lost this below a hundred-thousandth of the chord.
+    """
+    w, EA = 1.0, 1e12
+    h = cable.hang(np.array([[aside, 0.0, 10.0]]), np.array([12.0]), np.array([EA]), np.array([[0.0, 0.0, -12.0 * w]]))
+    level, low, high = h.tension[0, 0], -h.at_a[0, 2], h.at_b[0, 2]
+    opened = level / w * (np.arcsinh(low / level) + np.arcsinh(high / level))
+    assert opened == pytest.approx(aside, rel=NARROW, abs=0.0)
+
+
+OFF_LINE = 1e-4
+"""[rad] a load nearer than this to the chord is left out: within 1e-6 a slack cable may not be found, unless the load is vertical."""
+
+
+def off_line(chord: tuple[float, ...], load: tuple[float, ...]) -> float:
+    sine = np.linalg.norm(np.cross(chord, load)) / (np.linalg.norm(chord) * np.linalg.norm(load))
+    return float(sine)
+
+
 @limits(max_examples=60)
 @given(
     st.tuples(*[st.floats(-30, 30)] * 3).filter(lambda v: np.linalg.norm(v) > 0.5),
@@ -187,6 +211,7 @@ def test_a_cable_in_line_with_its_load_hangs_down_as_a_loop() -> None:
 )
 def test_any_cable_finds_its_chord(chord: tuple[float, ...], ratio: float, stiffness: float, load: tuple[float, ...], size: float) -> None:
     """From taut to three times its chord, EA from 1e4 to 1e9 N, load per length from 0.01 to 100 N/m in any direction."""
+    assume(off_line(chord, load) > OFF_LINE)
     r = np.array([chord])
     c = np.linalg.norm(r)
     length, EA = np.array([ratio * c]), np.array([10.0**stiffness])
@@ -194,6 +219,17 @@ def test_any_cable_finds_its_chord(chord: tuple[float, ...], ratio: float, stiff
     h = cable.hang(r, length, EA, w)
     s = cable.shape(h.tension, w, length, EA)
     assert np.abs(cable.curve(s, 3)[0, -1] - r[0]).max() < MICROMETRE * (length[0] + c)
+
+
+@pytest.mark.parametrize("off", [0.1, 1e-3, 1e-5, 1e-6, 1e-7, 1e-8, 1e-9, 1e-12, 0.0])
+@pytest.mark.parametrize("ratio", [1.001, 1.1, 1.5])
+def test_slack_cables_beside_and_below_each_other_are_found_under_their_weight(off: float, ratio: float) -> None:
+    """The load vertical, as in still air, and the chord as near upright as may be, either end up."""
+    chord = np.array([[off, 0.0, 1.0], [off, 0.0, -1.0]])
+    length, EA = np.full(2, ratio * np.hypot(off, 1.0)), np.full(2, 1e6)
+    w = np.array([0.0, 0.0, -3.4]) * length[:, None]
+    s = cable.shape(cable.hang(chord, length, EA, w).tension, w, length, EA)
+    assert np.abs(cable.curve(s, 3)[:, -1] - chord).max() < MICROMETRE * 2.5
 
 
 # ---------------------------------------------------------------- straight
