@@ -43,7 +43,9 @@ PUSHES = (0.003, 0.02, 0.08)
 FIRST_STEP = 0.25
 LEAST_STEP = 1 / 256
 """Steps of a path, of the whole load; below the least the path has ended."""
-PATH_ROUNDS = 40
+CASE_ROUNDS = 60
+"""Rounds for a case from the setting: what takes longer is found quicker along its path."""
+PATH_ROUNDS = 25
 """Rounds of the solver for a step of a path, which starts close to its answer."""
 FINER = 1 / 16
 """A path on which the solver fails while the structure is still stiff is followed this much finer before that is called a fault."""
@@ -142,7 +144,7 @@ def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_s
     setting : the setting state (one case), `loads_at_setting` its loads;  least_step : how finely the end of a path is found, of the load
     """
     first = problem.repeat(setting)
-    judged = settle(problem, first)
+    judged = settle(problem, first, CASE_ROUNDS)
     away = turn_between(problem, judged.state, first)
     doubtful = np.flatnonzero((judged.code >= UNSTABLE) | (away > FAR))
     if len(doubtful):
