@@ -40,20 +40,21 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     stream.write(f"{scenario.title}\n{_states(solution)}\n")
 
     def load(value: float) -> str:
-        return " / ".join(rounding.plain_force(value, s) for s in systems) if math.isfinite(value) else "–"
+        return _in_each(rounding.load, value, systems)
 
-    def turning(value: float) -> str:
-        return " / ".join(rounding.moment(value, s) for s in systems) if math.isfinite(value) else "–"
+    def signed(value: float) -> str:
+        return "none" if value < rounding.NO_FORCE else load(value)
 
     anchors = [
-        [a.name, load(a.resultant.peak), load(a.horizontal.peak), load(a.uplift.peak), *_place(a.resultant)] for a in solution.worst_anchors
+        [a.name, load(a.resultant.peak), load(a.horizontal.peak), signed(a.uplift.peak), *_place(a.resultant)]
+        for a in solution.worst_anchors
     ]
     table("Greatest load of each anchor", ["anchor", "pull", "horizontal", "uplift", "case", "wind from"], anchors, stream)
     cables = [
         [
             c.name,
             load(c.tension.peak),
-            load(c.strength),
+            _in_each(rounding.capacity, c.strength, systems),
             rounding.factor(c.factor) if math.isfinite(c.factor) else "not judged",
             *_place(c.tension),
             "drops" if c.slack_winds or solution.cables.slack[:, k].any() else "taut",
@@ -65,15 +66,15 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
         [
             f.spar,
             "ground" if f.carried_by is None else f.carried_by,
-            load(f.down.peak),
-            load(f.lift.peak),
+            signed(f.down.peak),
+            signed(f.lift.peak),
             load(f.sideways.peak),
-            turning(f.turning.peak),
+            _in_each(rounding.moment, f.turning.peak, systems),
         ]
         for f in solution.worst_feet
     ]
     table("Feet", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
-    _findings(solution.findings, stream)
+    _findings(solution, stream)
     for title, lines in (
         ("Warnings", solution.warnings),
         ("Notes", solution.notes),
@@ -82,6 +83,10 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     ):
         if lines:
             stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
+
+
+def _in_each(how: rounding.Say, value: float, systems: Sequence[System]) -> str:
+    return " / ".join(how(value, s) for s in systems) if math.isfinite(value) else rounding.ABSENT
 
 
 def _states(solution: Solution) -> str:
@@ -96,8 +101,9 @@ def _place(extreme: Extreme) -> tuple[str, str]:
     return extreme.peak_case, wind
 
 
-def _findings(findings: Sequence[Finding], stream: TextIO) -> None:
+def _findings(solution: Solution, stream: TextIO) -> None:
     """What is past, then the nearest of what is within, of each quantity."""
+    findings = solution.findings
     shown: list[Finding] = [f for f in findings if f.verdict == "past"]
     seen = {f.quantity for f in shown}
     for f in findings:
@@ -109,8 +115,9 @@ def _findings(findings: Sequence[Finding], stream: TextIO) -> None:
          "–" if math.isnan(f.wind_from) else rounding.bearing(f.wind_from)]
         for f in shown
     ]  # fmt: skip
+    of_which = ", of the cases with an equilibrium" if any(solution.unsettled) else ""
     table(
-        "Against the allowables (all that is past, and the nearest within)",
+        f"Against the allowables (all that is past, and the nearest within{of_which})",
         ["thing", "quantity", "factor", "required", "case", "wind from"],
         rows,
         stream,
@@ -128,12 +135,13 @@ def table(title: str, head: Row, rows: Sequence[Row], stream: TextIO) -> None:
         from rich import box
         from rich.console import Console
         from rich.table import Table
+        from rich.text import Text
 
-        drawn = Table(title=title, box=box.SIMPLE_HEAD, title_justify="left", title_style="bold")
+        drawn = Table(title=Text(title), box=box.SIMPLE_HEAD, title_justify="left", title_style="bold")
         for name in head:
-            drawn.add_column(name)
+            drawn.add_column(Text(name))
         for row in rows:
-            drawn.add_row(*row)
+            drawn.add_row(*(Text(cell) for cell in row))  # names may hold brackets: no markup
         Console(file=stream).print(drawn)
         return
     widths = [max(len(row[k]) for row in (head, *rows)) for k in range(len(head))]

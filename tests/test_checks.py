@@ -188,12 +188,29 @@ def test_falls_between_the_listed_directions_are_warned_about() -> None:
     document["spar"][0]["fitting"].append(made.fitting("panel", at=10.0, area=2.0, drag=1.3))
     s = made.solved(document)
     assert s.state == ("stable", "stable")
-    gap = warned(s, "between the listed directions there is no stable equilibrium: design, wind from")
+    gap = warned(s, "design: no stable equilibrium between the listed directions either, in wind from")
     assert len(gap) == 1
     assert "pylon falls toward" in gap[0]
     tipping = [round(math.degrees(b)) for b in s.sweep.bearing[0][np.isnan(s.sweep.resultant[0, :, 0])]] if s.sweep else []
     assert 90 in tipping
     assert 270 not in tipping
+
+
+def test_gaps_are_told_case_by_case_in_the_order_of_the_compass() -> None:
+    lines = [CaseLine(name, math.radians(b), 1.0, 1.0, 0.0, 288.15) for name in ("storm", "iced") for b in (0.0, 90.0)]
+    gaps = [("storm", math.radians(b), f"falls at {b}") for b in (80.0, 10.0, 92.5, 90.0)] + [("iced", math.radians(40.0), "tips")]
+    assert alarms._between_directions(lines, gaps) == [
+        "storm: no stable equilibrium between the listed directions either, in wind from 10°, 80°, 92.5°; from 10°: falls at 10.0",
+        "iced: no stable equilibrium between the listed directions either, in wind from 40°; from 40°: tips",
+    ]
+
+
+def test_the_first_falls_are_told_and_the_others_named() -> None:
+    s = made.solved(made.mast(*(30.0 * k for k in range(12)), case=[{"name": "lost", "without": ["9 m A", "17 m A"]}]))
+    falls = [f"{round(math.degrees(w))}°" for w, state in zip(s.wind_from, s.state, strict=True) if state == "none"]
+    assert len(falls) > alarms.SAID
+    assert len(warned(s, "lost, wind from", "of the way")) == alarms.SAID
+    assert warned(s, f"lost, wind from {', '.join(falls[alarms.SAID :])}: no stable equilibrium either")
 
 
 def test_failed_self_checks_are_warned_about() -> None:

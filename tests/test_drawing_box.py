@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 import sheet_samples as samples
 
-from guys.drawing import box, compose, strip, table
+from guys.drawing import box, compose, strip, table, under_ground
 from guys.drawing.rounding import tongue
 from guys.results import SelfCheck
 
@@ -33,7 +33,7 @@ def test_averaging(seconds: float, said: str) -> None:
 
 def test_findings_with_demand_and_capacity() -> None:
     hardest = words(samples.solution(samples.FOUR))["Hardest"]
-    assert hardest.startswith("cable 17 m E tension 7.4 kN / 23.0 kN, factor 3.13 (2 needed, default): within; wind from 95°")
+    assert hardest.startswith("cable 17 m E tension 7.35 kN / 23.0 kN, factor 3.13 (2 needed, default): within; wind from 95°")
 
 
 def test_every_finding_past_is_named() -> None:
@@ -111,6 +111,49 @@ def test_verdict_of_the_strip() -> None:
     assert strip.strip_words(samples.solution(samples.EIGHT))[1] == ("8 of 17 checks PAST the allowable, 8 not judged", True)
 
 
+def test_one_check_is_not_all_checks() -> None:
+    solution = samples.solution(samples.FOUR)
+    one = replace(solution, findings=tuple(f for f in solution.findings if f.quantity == "lean"))
+    assert strip.strip_words(one)[1] == ("1 check within", False)
+    assert strip.strip_words(replace(solution, findings=()))[1] == ("Nothing to judge", False)
+
+
+def test_checks_of_what_does_not_stand_are_not_called_within() -> None:
+    """Where some cases fall the verdict says of which cases it speaks; an equilibrium that does not hold is not judged at all."""
+    some = samples.falling(samples.FOUR, [2])
+    some = replace(some, unsettled=tuple(s == "none" for s in some.state))
+    assert strip.strip_words(some)[1][0].startswith("Of the cases that stand: ")
+    cases = len(some.state)
+    unstable = replace(some, state=("unstable",) + ("none",) * (cases - 1), unsettled=(True,) * cases)
+    assert strip.strip_words(unstable)[1] == ("Nothing judged: nothing stands", False)
+    assert strip.strip_words(unstable)[0][0].endswith("loads are of an equilibrium that does not hold")
+    assert "Hardest" not in words(unstable)
+
+
+def test_a_fall_told_in_a_warning_is_not_told_again() -> None:
+    some = samples.falling(samples.FOUR, [2, 3])
+    reason = some.reason[2] or ""
+    assert words(some)["Falls"].endswith(reason)
+    assert reason not in words(replace(some, warnings=(f"design: {reason}",)))["Falls"]
+    other = replace(some, reason=tuple("another" if i == 3 else r for i, r in enumerate(some.reason)))
+    assert words(other)["Falls"].endswith("and otherwise, see result.json")
+
+
+def test_factors_of_cases_are_named() -> None:
+    assert "factors on weight, wind pressure and weight of ice" in words(samples.solution(samples.FOUR))["Cases"]
+
+
+def test_a_base_that_is_lifted_is_not_pushed_down_by_a_negative_force() -> None:
+    solution = samples.solution(samples.FOUR)
+    foot = solution.worst_feet[0]
+    up = replace(foot, down=replace(foot.down, value=-4700.0, peak=-4700.0), lift=replace(foot.lift, value=4700.0, peak=4701.0))
+    row = table.base_grid(replace(solution, worst_feet=(up,)), SI).rows[0]
+    assert (row[1], row[2], row[-1]) == (("none",), ("–",), ("4.8 kN",))
+    said = under_ground.base_lines(up, SI)[1].text
+    assert "down" not in said
+    assert said.endswith("LIFTED BY 4.8 kN")
+
+
 def test_bases_stand_first_with_what_they_bear() -> None:
     row = table.base_grid(samples.solution(samples.BOOM), SI).rows
     assert [cells[0] for cells in row] == [("mast",), ("boom on mast",)]
@@ -125,7 +168,7 @@ def test_anchor_rows() -> None:
     assert row["bearing"] == ("97°",)
     assert row["radius"] == ("9.50 m",)
     assert row["hardest guy"] == ("17 m E",)
-    assert row["demand / capacity"] == ("7.4 / 23.0 kN",)
+    assert row["demand / capacity"] == ("7.35 / 23.0 kN",)
     assert row["factor"] == ("3.13 within",)
 
 

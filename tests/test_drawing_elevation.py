@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from math import atan2, degrees, hypot
 
 import numpy as np
 import pytest
 import sheet_samples as samples
 
-from guys.drawing import elevation, key, under_ground
+from guys.drawing import compose, elevation, key, under_ground
 from guys.drawing.page import Page, Rect, new_page
 from guys.drawing.reading import View, look_bearing
 from guys.drawing.rounding import tongue
@@ -86,3 +87,24 @@ def test_fittings_are_numbered_from_the_foot_up() -> None:
     rows = key.numbered_fittings(samples.solution(samples.PYLON))
     assert [n for n, _, _ in rows] == ["1", "2", "3"]
     assert [f.at for _, _, f in rows] == sorted(f.at for _, _, f in rows)
+
+
+def test_levels_are_those_of_the_drawing_also_where_thrust_shortens_the_mast() -> None:
+    solution = samples.solution(samples.FOUR)
+    spar = solution.spars[0]
+    short = spar.displacement - np.array([0.0, 0.0, 0.02]) * (spar.station / spar.station[-1])[:, None]
+    page = drawn(replace(solution, spars=(replace(spar, displacement=short), *solution.spars[1:])), 0.0)
+    said = [a.get_text() for a in page.figure.get_children() if hasattr(a, "get_text")]
+    assert "+9.00 m" in said
+    assert "+17.00 m" in said
+
+
+def test_words_of_many_anchors_stand_in_tiers_under_their_points() -> None:
+    """Twelve anchors: every leader falls plumb, or nearly, to its words; nothing overlaps."""
+    solution = samples.solution(samples.Guyed("twelve", 30.0, (14.0, 28.0), samples.ring(12, 13.0, 5.0)))
+    page = compose.draw_page(solution, "A3", np.deg2rad(345.0), "SI")
+    assert not page.crowded
+    zone = [a for a in page.figure.get_children() if a.get_gid() == "leader"]
+    runs = [np.ptp(np.column_stack(line.get_data()), axis=0) for line in zone]  # type: ignore[attr-defined]
+    long = [run for run in runs if run[1] > 6.0 and run[0] < 5.0]
+    assert len(long) >= 8

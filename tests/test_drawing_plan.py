@@ -107,3 +107,22 @@ def test_no_ring_reaches_its_neighbour_and_no_bar_passes_its_guy() -> None:
         radii = np.array([r.radius for r in rings])
         away = np.linalg.norm(centres[:, None] - centres[None], axis=-1) + 1e6 * np.eye(len(rings))
         assert (away > radii[:, None] + radii[None] - 1e-9).all()
+
+
+def words(page: Page) -> list[str]:
+    return [a.get_text() for a in page.figure.get_children() if hasattr(a, "get_text")]
+
+
+def test_a_fall_circle_larger_than_the_plan_is_told_in_words() -> None:
+    solution = samples.solution(samples.Guyed("tall on a small plot", 20.0, (18.0,), samples.ring(3, 3.0)))
+    page = drawn(solution, 50.0)
+    assert "fall circle of mast 20.00 m: beyond this plan" in words(page)
+    assert not page.crowded
+    assert "fall circle of mast 20.00 m" in words(drawn(solution, 300.0))
+
+
+def test_without_anchors_the_fall_circle_gives_the_plan_its_size() -> None:
+    solution = samples.solution(samples.FOUR)
+    bare = replace(solution, anchors=replace(solution.anchors, name=(), position=np.zeros((0, 3))), worst_anchors=())
+    reach = plan.fall_circles(solution)[0][2]
+    assert np.ptp(plan.bounds(bare), axis=0) == pytest.approx([2.0 * reach] * 2, rel=DRAWN)

@@ -43,9 +43,10 @@ def test_numbers_of_two_figures_stay(digits: int, place: int) -> None:
         (52.0, "52 N", "12 lbf"),
         (51_000.0, "51 kN", "12 kip"),  # 11465 lbf
         (2.34e6, "2.4 MN", "530 kip"),
-        (0.0, "0", "0"),
+        (0.0, "0 N", "0 lbf"),
+        (9.5e-13, "0 N", "0 lbf"),  # what a solver leaves of nothing
         (nan, "–", "–"),
-        (-4420.0, "-4.4 kN", "-990 lbf"),
+        (-4420.0, "−4.4 kN", "−990 lbf"),
     ],
 )
 def test_force(newtons: float, si: str, us: str) -> None:
@@ -70,7 +71,27 @@ def test_bearings_to_half_a_degree() -> None:
     assert r.bearing(nan) == "–"
 
 
-def test_capacities_keep_three_figures() -> None:
+def test_capacities_keep_three_figures_and_are_rounded_down() -> None:
+    assert r.capacity(23.09e3, "SI") == "23.0 kN"
+    assert r.capacity(23e3, "SI") == "23.0 kN"
+    assert r.capacity(59e3, "US") == "13200 lbf"  # 59000 / 4.4482216152605 = 13263.7
+    assert r.load(10.001e3, "SI") == "10.1 kN"
+    assert r.load(3.371e3, "SI") == "3.38 kN"
+
+
+def test_a_moment_keeps_its_unit_at_nothing() -> None:
+    assert r.moment(0.0, "SI") == r.moment(1.4e-6, "SI") == "0 N m"
+    assert r.moment(0.0, "US") == "0 lbf ft"
+    assert r.moment(99.5, "SI") == "0.10 kN m"
+    assert r.moment(0.45, "SI") == "0.45 N m"
+
+
+def test_a_tension_set_to_a_rounding_below_a_kilonewton() -> None:
+    assert r.plain_force(999.9999, "SI") == r.plain_force(1000.0, "SI") == "1.00 kN"
+    assert r.plain_force(99.99, "SI") == "0.100 kN"
+
+
+def test_plain_tensions_keep_three_figures() -> None:
     assert r.plain_force(23e3, "SI") == "23.0 kN"
     assert r.plain_force(23e3, "US") == "5170 lbf"
     assert r.plain_force(152e3, "SI") == "152 kN"
@@ -79,7 +100,7 @@ def test_capacities_keep_three_figures() -> None:
 def test_a_factor_never_reads_better_than_it_is() -> None:
     assert r.factor(1.999) == "1.99"
     assert r.factor(2.0) == "2.00"
-    assert r.factor(inf) == "over 1000"
+    assert r.factor(inf) == r.factor(8.2e14) == "over 1000"
 
 
 def test_speeds_temperatures_masses() -> None:
@@ -94,5 +115,5 @@ def test_speeds_temperatures_masses() -> None:
 def test_both_systems() -> None:
     both = r.tongue("both")
     assert both.say(r.force, 5201.0) == "5.3 kN (1200 lbf)"
-    assert both.say(r.force, 0.0) == "0"
+    assert both.say(r.force, 0.0) == "0 N (0 lbf)"
     assert both.each(r.length, 11.0) == ("11.00 m", "36 ft 1 in")

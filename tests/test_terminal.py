@@ -122,3 +122,33 @@ def test_files_are_named_with_their_directory() -> None:
     out = io.StringIO()
     terminal.files([Path("there/result.json"), Path("there/sheet.pdf")], out)
     assert out.getvalue() == "\nWritten to there: result.json, sheet.pdf\n"
+
+
+def test_names_with_brackets_are_not_taken_for_markup() -> None:
+    """On a terminal tables are drawn by rich, which would read [bold] as a command and fail on [/]."""
+    stream = Terminal()
+    terminal.table("Loads [/]", ["thing [red]"], [["guy [bold] 1"], ["[/] N"]], stream)
+    assert "guy [bold] 1" in stream.getvalue()
+    assert "[/] N" in stream.getvalue()
+    assert "thing [red]" in stream.getvalue()
+
+
+def test_loads_are_rounded_up_strengths_down_and_nothing_keeps_its_unit() -> None:
+    s = made.solved(made.mast(30.0, rope={"rope": made.rope(strength=20.19e3)}))
+    text = printed(s)
+    tension = float(section(text, "Greatest tension of each cable")[1].split()[3]) * 1000.0
+    assert s.worst_cables[0].tension.peak <= tension <= s.worst_cables[0].tension.peak * 1.01
+    assert "20.1 kN" in text
+    still = made.solved(made.mast())
+    row = section(printed(still), "Feet")[1]
+    assert row.split()[-6:] == ["none", "0", "N", "0", "N", "m"]
+
+
+def test_a_base_that_is_only_lifted_has_no_negative_push() -> None:
+    up = made.fitting(at=4.0, load=made.vector(0.0, 0.0, 3000.0))
+    s = made.solved(made.document([made.spar(base="fixed", section=[made.tube(4.0)], fitting=[up])], still=True))
+    assert section(printed(s), "Feet")[1].split()[:5] == ["mast", "ground", "none", "2.74", "kN"]
+
+
+def test_checks_beside_falls_say_of_which_cases_they_are() -> None:
+    assert "of the cases with an equilibrium)" in printed(made.solved(made.losing()))

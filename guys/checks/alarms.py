@@ -12,6 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from guys import constants
 from guys.loads import CaseLine
 from guys.recovery import Forces
 from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
@@ -23,8 +24,11 @@ BALANCE = 1e-9
 """Greatest imbalance of the whole structure, relative to the reference force."""
 SHOWN = 1e-6
 """Share of the reference force below which a pull on a base is rounding."""
+POUND_FORCE = float(constants.POUND * constants.GRAVITY)
 SAID = 6
-"""Cases named one by one before the rest is counted."""
+"""Cases told one by one before the rest is only named."""
+MOST_WINDS = 12
+"""Bearings named before the rest is counted."""
 
 CAUTIONS = (
     "An estimate, to be confirmed by a competent, licensed person under the local code.",
@@ -76,7 +80,19 @@ def warnings(
 
 def place(line_name: str, wind_from: float) -> str:
     """A case and its wind in words."""
-    return line_name if math.isnan(wind_from) else f"{line_name}, wind from {round(math.degrees(wind_from)) % 360}°"
+    return line_name if math.isnan(wind_from) else f"{line_name}, wind from {_bearing(wind_from)}"
+
+
+def _bearing(radians: float) -> str:
+    """To half a degree, as on the sheet."""
+    halves = round(2 * math.degrees(radians)) % 720
+    return f"{halves / 2:g}°"
+
+
+def _winds(winds: Sequence[float]) -> str:
+    """Bearings in the order of the compass, each once, the first of many."""
+    words = list(dict.fromkeys(_bearing(w) for w in sorted(winds)))
+    return ", ".join(words[:MOST_WINDS]) + (f" and {len(words) - MOST_WINDS} more" if len(words) > MOST_WINDS else "")
 
 
 def _not_standing(lines: Sequence[CaseLine], verdicts: Verdicts) -> list[str]:
@@ -84,18 +100,31 @@ def _not_standing(lines: Sequence[CaseLine], verdicts: Verdicts) -> list[str]:
     if verdicts.falls[0]:
         bad = bad[:1]
     out = [f"{place(lines[k].name, lines[k].wind_from)}: {verdicts.reason[k]}" for k in bad[:SAID]]
-    if len(bad) > SAID:
-        out.append(f"... and {len(bad) - SAID} more cases without a stable equilibrium")
-    return out
+    rest = [lines[k] for k in bad[SAID:]]
+    return out + [f"{where}: no stable equilibrium either" for where in _gathered([(line.name, line.wind_from) for line in rest])]
+
+
+def _gathered(cases: Sequence[tuple[str, float]]) -> list[str]:
+    """Cases with all their winds in one."""
+    winds: dict[str, list[float]] = {}
+    for name, wind_from in cases:
+        winds.setdefault(name, []).extend([] if math.isnan(wind_from) else [wind_from])
+    return [f"{name}, wind from {_winds(some)}" if some else name for name, some in winds.items()]
 
 
 def _between_directions(lines: Sequence[CaseLine], gaps: Sequence[tuple[str, float, str | None]]) -> list[str]:
     listed = {(line.name, line.wind_from) for line in lines}
-    fresh = [g for g in gaps if (g[0], g[1]) not in listed]
-    if not fresh:
-        return []
-    bearings = ", ".join(f"{round(math.degrees(b)) % 360}°" for _, b, _ in fresh[:SAID]) + (" ..." if len(fresh) > SAID else "")
-    return [f"between the listed directions there is no stable equilibrium: {fresh[0][0]}, wind from {bearings}: {fresh[0][2]}"]
+    fresh: dict[str, list[tuple[float, str | None]]] = {}
+    for name, wind_from, reason in gaps:
+        if (name, wind_from) not in listed:
+            fresh.setdefault(name, []).append((wind_from, reason))
+    out = []
+    for name, unsorted in fresh.items():
+        found = sorted(unsorted, key=lambda pair: pair[0])
+        head = f"{name}: no stable equilibrium between the listed directions either, in wind from {_winds([w for w, _ in found])}"
+        first, reason = found[0]
+        out.append(f"{head}; from {_bearing(first)}: {reason}")
+    return out
 
 
 def _checks(check: SelfCheck) -> list[str]:
@@ -134,7 +163,9 @@ def _where(extreme: Extreme) -> str:
 
 
 def _newtons(force: float) -> str:
-    return f"{force / 1000:.3g} kN" if force >= 1000 else f"{force:.3g} N"
+    """In both unit systems, as near as three figures tell it."""
+    si = f"{force / 1000:.3g} kN" if force >= 1000 else f"{force:.3g} N"
+    return f"{si} ({force / POUND_FORCE:.3g} lbf)" if force < 999.5 * POUND_FORCE else f"{si} ({force / POUND_FORCE:.0f} lbf)"
 
 
 def _broken(cables: Sequence[CableWorst]) -> list[str]:

@@ -22,7 +22,7 @@ from guys.drawing.reading import (
     greatest,
     wind_words,
 )
-from guys.drawing.rounding import Tongue, bearing, force, length, level
+from guys.drawing.rounding import NO_FORCE, Tongue, bearing, force, length, level
 from guys.results import AnchorWorst, Solution
 
 MOST_ROOM = (52.0, 28.0)
@@ -106,7 +106,7 @@ def _site_lines(turn: float, radius: float, above: float, tongue: Tongue) -> lis
 
 def uplift_words(up: float, tongue: Tongue) -> str:
     """An uplift, or "none" where the anchor is never lifted."""
-    return "none" if isfinite(up) and up <= 0.0 else tongue.say(force, up)
+    return "none" if isfinite(up) and up < NO_FORCE else tongue.say(force, up)
 
 
 def _broken(name: str, longest: int = 26) -> list[Line]:

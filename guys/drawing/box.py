@@ -20,10 +20,11 @@ from guys.drawing.rounding import (
     INCH,
     Tongue,
     bearing,
+    capacity,
     factor,
-    force,
     length,
     line_mass,
+    load,
     moment,
     plain_force,
     small_angle,
@@ -31,7 +32,7 @@ from guys.drawing.rounding import (
     temperature,
     thickness,
 )
-from guys.drawing.strip import kinds, state_summary
+from guys.drawing.strip import kinds, standing, state_summary
 from guys.results import Finding, Solution
 
 SIZE = 8.6
@@ -82,14 +83,22 @@ def _warnings(solution: Solution) -> list[Entry]:
 def _state(solution: Solution) -> list[Entry]:
     rows = [Entry("State", f"{state_summary(solution)}, still air among them")]
     for state, word in (("none", "Falls"), ("unstable", "Unstable"), ("neutral", "Neutral")):
-        by_reason: dict[tuple[str, str], list[int]] = {}
+        by_case: dict[str, list[int]] = {}
         for i in (i for i, kind in enumerate(kinds(solution)) if kind == state):
-            by_reason.setdefault((solution.case[i], solution.reason[i] or solution.note[i] or ""), []).append(i)
-        for (case, reason), which in by_reason.items():
-            winds = [bearing(float(solution.wind_from[i])) for i in which if isfinite(solution.wind_from[i])]
-            where = f"{case}, wind from {', '.join(winds)}" if winds else f"{case}, still air"
-            rows.append(Entry(word, f"{where}: {reason}" if reason else where, alarming=True))
+            by_case.setdefault(solution.case[i], []).append(i)
+        rows += [Entry(word, _which(solution, case, which), alarming=True) for case, which in by_case.items()]
     return rows
+
+
+def _which(solution: Solution, case: str, which: list[int]) -> str:
+    """A case with its winds; why, once, where that is one reason no warning has told already."""
+    winds = [bearing(float(solution.wind_from[i])) for i in which if isfinite(solution.wind_from[i])]
+    where = f"{case}, wind from {', '.join(winds)}" if winds else f"{case}, still air"
+    reasons = list(dict.fromkeys(solution.reason[i] or solution.note[i] or "" for i in which))
+    told = any(reason and reason in warning for reason in reasons for warning in solution.warnings)
+    if told or not any(reasons):
+        return where
+    return f"{where}: {reasons[0]}" if len(reasons) == 1 else f"{where}: {reasons[0]}, and otherwise, see result.json"
 
 
 def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
@@ -97,7 +106,7 @@ def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
     if not isfinite(value):
         return ABSENT
     if unit == "N":
-        return tongue.say(force if demand else plain_force, value)
+        return tongue.say(load if demand else capacity, value)
     if unit == "N m":
         return tongue.say(moment, value)
     if unit == "m":
@@ -143,7 +152,7 @@ def _past(solution: Solution, tongue: Tongue) -> list[Entry]:
 
 
 def _checked(solution: Solution, tongue: Tongue) -> list[Entry]:
-    if set(solution.state) == {"none"}:
+    if not standing(solution):
         return []
     within = [f for f in worst_of_each(solution.findings) if f.verdict == "within"]
     return [Entry("Hardest", finding_words(solution, f, tongue)) for f in within]
@@ -193,6 +202,7 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
         parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}")
     if ice is not None:
         parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {ice.density:g} kg/m³")
+    parts.append("factors on weight, wind pressure and weight of ice; initial tension is in every load, never factored")
     return [*rows, Entry("Cases", "; ".join(parts))]
 
 
@@ -206,7 +216,7 @@ def _cables(solution: Solution, tongue: Tongue) -> list[Entry]:
     for name in dict.fromkeys(c.rope for c in asked.cable):
         rope = asked.rope.get(name)
         if rope is not None:
-            least = f", least breaking load {tongue.say(plain_force, rope.strength)}" if rope.strength else ""
+            least = f", least breaking load {tongue.say(capacity, rope.strength)}" if rope.strength else ""
             parts.append(f"{name} {tongue.say(thickness, rope.diameter)}, {tongue.say(line_mass, rope.mass)}{least}")
     model = "hanging as catenaries" if asked.analysis.cable == "catenary" else "straight and weightless"
     rows = [Entry("Cables", f"{'; '.join(parts)}; {model}")] if parts else []
@@ -267,7 +277,7 @@ def _units(tongue: Tongue) -> str:
     names = " and ".join(tongue.systems)
     force_names = " and ".join("kN" if s == "SI" else "lbf" for s in tongue.systems)
     masses = " and ".join("kg" if s == "SI" else "lb" for s in tongue.systems)
-    return f"{names} units: {force_names} force, {masses} mass; loads rounded up to two figures, full digits in result.json"
+    return f"{names} units: {force_names} force, {masses} mass; loads rounded up, full digits in result.json"
 
 
 @dataclass(frozen=True)

@@ -15,10 +15,11 @@ from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
 from guys.drawing.key import lettered_sections, numbered_fittings
 from guys.drawing.labels import Array, Field, all_over, around, column, place
-from guys.drawing.lettering import fitted
+from guys.drawing.lettering import fitted, shortened
 from guys.drawing.page import Page, Rect
 from guys.drawing.reading import (
     View,
+    at_drawn_station,
     at_station,
     base_point,
     dropping,
@@ -104,9 +105,9 @@ def _heading(page: Page, solution: Solution, on: ElevationFrame, ratio: float, t
     x, y = on.zone.left, on.zone.top - 4.6
     wide = page.text(x, y, f"Elevation, looking toward {bearing(on.view.toward)}", style.HEADING, bold=True)
     page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
-    first = solution.spars[0].name
+    first = shortened(solution.spars[0].name, 26.0, style.SMALL)
     how = "cables as they hang in still air" if stands(solution) else "AS DRAWN, cables straight: it does not stand in still air"
-    words = f"{how} · levels above the foot of {first} · guy angles from the ground"
+    words = f"{how} · levels as drawn, above the foot of {first} · guy angles from the ground"
     page.text(x, y - 4.6, fitted(words, on.zone.width, style.SMALL), style.SMALL)
 
 
@@ -159,14 +160,16 @@ def _levels(page: Page, solution: Solution, on: ElevationFrame, field: Field, to
 
 
 def _level_tags(solution: Solution, on: ElevationFrame, tongue: Tongue) -> list[tuple[Array, list[Line]]]:
-    """Where cables are made fast to spars, each place once, with its level."""
+    """Where cables are made fast to spars, each place once, with its level as drawn (in still air thrust and lean take
+    millimetres off it)."""
     ground = base_point(solution)[2]
     tags: dict[tuple[str, int], tuple[Array, list[Line]]] = {}
     for cable in solution.scenario.cable:
         for end in (cable.from_, cable.to):
             if isinstance(end, model.SparPoint):
                 where = at_station(solution, end.spar, end.at)
-                lines = [Line(level(where[2] - ground, s), style.SMALL) for s in tongue.systems]
+                drawn = at_drawn_station(solution, end.spar, end.at)
+                lines = [Line(level(drawn[2] - ground, s), style.SMALL) for s in tongue.systems]
                 tags.setdefault((end.spar, round(end.at * 100.0)), (on.on_page(where), lines))
     return list(tags.values())
 

@@ -55,9 +55,11 @@ class PlanFrame:
 
 
 def bounds(solution: Solution) -> Array:
-    """(2, 2) least and greatest east, north of all that the plan shows."""
+    """(2, 2) least and greatest east, north of all that the plan shows; fall circles where no anchors give it a size."""
     spars = [hung_spar(solution, s)[:, :2] for s in solution.spars]
     points = np.concatenate([solution.anchors.position[:, :2], *spars])
+    if not len(solution.anchors.name):
+        points = np.concatenate([points, *(foot + reach * np.array([[-1, -1], [1, 1]]) for _, foot, reach in fall_circles(solution))])
     return np.stack([points.min(axis=0), points.max(axis=0)])
 
 
@@ -232,7 +234,7 @@ def _label_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) ->
         points = on.on_page(hung_spar(solution, spar))
         leans = float(np.hypot(*(points[-1] - points[0]))) > 12.0
         at = points[len(points) * 2 // 3] if leans else points[0]
-        lines = [Line(spar.name, colour=style.INK)]
+        lines = [Line(shortened(spar.name, 40.0, style.BODY), colour=style.INK)]
         wish = around(at, blocks.size(lines), 1.0 if leans else 1.8, (0.6, -0.8))
         blocks.draw_placed(page, place(field, wish, all_over(wish, on.room)), at, lines)
 
@@ -273,8 +275,11 @@ def _fall_circles(page: Page, solution: Solution, on: PlanFrame, field: Field, t
         line = arc(centre, reach * on.per_metre, 721)
         hidden = _hidden(line, field)
         shown = np.where(hidden[:, None], np.nan, line)
-        words = [Line(f"fall circle of {name} {tongue.say(length, reach)}", colour=style.GREY)]
-        if (~hidden).sum() > 60:
+        what = f"fall circle of {shortened(name, 40.0, style.BODY)} {tongue.say(length, reach)}"
+        words = [Line(what, colour=style.GREY)]
+        if hidden.all():
+            _beyond(page, field, [Line(f"{what}: beyond this plan", colour=style.GREY)])
+        elif (~hidden).sum() > 60:
             wide, high = blocks.size(words)
             spots = line[~hidden][::6]
             half = np.array([wide, high]) / 2.0
@@ -284,6 +289,15 @@ def _fall_circles(page: Page, solution: Solution, on: PlanFrame, field: Field, t
                 blocks.draw(page, spot.box, words)
             shown = np.where(_hidden(line, field)[:, None], np.nan, line)
         page.line(shown, style.GREY, 0.9, style.DOTTED, order=1.0, name="fall circle")
+
+
+def _beyond(page: Page, field: Field, words: list[Line]) -> None:
+    """Words of a circle too large for the plan, at its foot, or wherever there is room."""
+    wide, high = blocks.size(words)
+    spot = place(field, _anywhere(field.room, (wide, high), np.array([field.room.left + wide / 2.0, field.room.bottom + high / 2.0 + 1.0])))
+    blocks.draw(page, spot.box, words)
+    if spot.clashes:
+        page.crowded.append(words[0].text)
 
 
 def _hidden(line: Array, field: Field, gap: float = 0.8) -> np.ndarray:

@@ -70,6 +70,12 @@ def at_station(solution: Solution, name: str, at: float) -> Array:
     return np.array([np.interp(at, spar.station, points[:, i]) for i in range(3)])
 
 
+def at_drawn_station(solution: Solution, name: str, at: float) -> Array:
+    """(3,) the drawn place of a point of a spar's axis."""
+    spar = spar_named(solution, name)
+    return np.array([np.interp(at, spar.station, spar.drawn[:, i]) for i in range(3)])
+
+
 def spar_named(solution: Solution, name: str) -> SparLine:
     """The spar of that name."""
     return next(spar for spar in solution.spars if spar.name == name)

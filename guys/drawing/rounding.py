@@ -1,7 +1,8 @@
 """Numbers as a crew reads them, in SI, US units or both.
 
-Loads are rounded up to two figures (full digits stay in the result file), distances to 0.01 m or 1 in, bearings to half a degree.
-kg and lb are mass, kN and lbf are force.
+Loads are rounded up, to two figures on the sheet and three on the terminal (full digits stay in the result file), capacities and factors
+down, distances to 0.01 m or 1 in, bearings to half a degree.  What is nothing but rounding of the solver reads 0, with its unit.  kg and
+lb are mass, kN and lbf are force.
 
 The factors are those of `guys.constants`; a mile is 5280 ft, exactly 1609.344 m.
 """
@@ -26,69 +27,105 @@ MILE_PER_HOUR = 1609.344 / 3600.0
 ABSENT = "–"
 # Binary fractions of values that were exact in the input (5.2 kN) must not be rounded up a whole step.
 _ROUNDING_NOISE = 1e-9
+NO_FORCE = 1e-3
+"""A force [N] below this, a tenth of a gram's weight, reads 0."""
+NO_MOMENT = 1e-2
+"""A moment [N m] below this, a newton at a centimetre, reads 0: less than any lug or base is made to."""
+MOST_FACTOR = 1000.0
+"""Factors above this say only that they are."""
+
+
+Scale = tuple[float, float, str]
+SCALES: dict[tuple[System, bool], tuple[Scale, ...]] = {
+    ("SI", True): ((1.0, 100.0, "N"), (1e3, 1e3, "kN"), (1e6, inf, "MN")),
+    ("SI", False): ((1.0, 100.0, "N"), (1e3, 1e3, "kN"), (1e6, inf, "MN")),
+    ("US", True): ((POUND_FORCE, 1e4, "lbf"), (1e3 * POUND_FORCE, inf, "kip")),
+    ("US", False): ((POUND_FORCE, 1e6, "lbf"), (1e3 * POUND_FORCE, inf, "kip")),
+}
+"""Units of force, each up to its number below which it is used; kip for loads of two figures (True) only once lbf grows long."""
 
 
 def round_up(value: float, figures: int = 2) -> float:
     """`value` rounded toward plus infinity to so many significant figures."""
+    return _stepped(value, figures, ceil, -_ROUNDING_NOISE)
+
+
+def round_down(value: float, figures: int = 3) -> float:
+    """`value` rounded toward minus infinity to so many significant figures."""
+    return _stepped(value, figures, floor, _ROUNDING_NOISE)
+
+
+def round_near(value: float, figures: int = 3) -> float:
+    """`value` rounded to so many significant figures."""
+    return _stepped(value, figures, round, 0.0)
+
+
+def _stepped(value: float, figures: int, whole: Callable[[float], int], noise: float) -> float:
     if value == 0.0 or not isfinite(value):
         return value
     place = floor(log10(abs(value))) - figures + 1
-    steps = ceil(value * 10.0**-place - _ROUNDING_NOISE * 10**figures)
+    steps = whole(value * 10.0**-place + noise * 10**figures)
     return float(round(steps * 10.0**place, -place))
 
 
-def up_text(value: float, figures: int = 2) -> str:
-    """`round_up` written with exactly the digits it has."""
-    raised = round_up(value, figures)
-    if not isfinite(raised):
+def written(rounded: float, figures: int) -> str:
+    """A rounded value with exactly the digits it has."""
+    if not isfinite(rounded):
         return ABSENT
-    if raised == 0.0:
+    if rounded == 0.0:
         return "0"
-    place = floor(log10(abs(raised)) + 1e-12) - figures + 1
-    return f"{raised:.{max(0, -place)}f}"
+    place = floor(log10(abs(rounded)) + 1e-12) - figures + 1
+    return f"{rounded:.{max(0, -place)}f}".replace("-", "−")
+
+
+def up_text(value: float, figures: int = 2) -> str:
+    """`round_up` written out."""
+    return written(round_up(value, figures), figures)
 
 
 def force(newtons: float, system: System) -> str:
     """A force rounded up to two figures, in N, kN, MN or lbf, kip."""
-    if not isfinite(newtons):
-        return ABSENT
-    if abs(newtons) < 1e-6:
-        return "0"
-    if system == "US":
-        pounds = newtons / POUND_FORCE
-        return f"{up_text(pounds)} lbf" if abs(round_up(pounds)) < 1e4 else f"{up_text(pounds / 1e3)} kip"
-    size = abs(round_up(newtons))
-    if size < 100.0:
-        return f"{up_text(newtons)} N"
-    return f"{up_text(newtons / 1e3)} kN" if size < 1e6 else f"{up_text(newtons / 1e6)} MN"
+    return _force(newtons, system, round_up, 2)
+
+
+def load(newtons: float, system: System) -> str:
+    """A force rounded up to three figures, for the terminal."""
+    return _force(newtons, system, round_up, 3)
+
+
+def capacity(newtons: float, system: System) -> str:
+    """A strength rounded down to three figures."""
+    return _force(newtons, system, round_down, 3)
 
 
 def plain_force(newtons: float, system: System) -> str:
-    """A force as near as three figures tell it: a tension to set, a capacity."""
+    """A force as near as three figures tell it: a tension to set."""
+    return _force(newtons, system, round_near, 3)
+
+
+def _force(newtons: float, system: System, rounded: Callable[[float, int], float], figures: int) -> str:
     if not isfinite(newtons):
         return ABSENT
-    if system == "US":
-        return f"{_three(newtons / POUND_FORCE)} lbf"
-    return f"{_three(newtons / 1e3)} kN" if abs(newtons) >= 100.0 else f"{newtons:.3g} N"
+    if abs(newtons) < NO_FORCE:
+        return "0 N" if system == "SI" else "0 lbf"
+    unit, name = next((unit, name) for unit, below, name in SCALES[system, figures < 3] if _shown(newtons, unit, rounded, figures) < below)
+    return f"{written(rounded(newtons / unit, figures), figures)} {name}"
 
 
-def _three(value: float) -> str:
-    """Three figures without an exponent."""
-    if not value:
-        return "0"
-    place = floor(log10(abs(value)) + 1e-12) - 2
-    return f"{round(value, -place):.{max(0, -place)}f}"
+def _shown(newtons: float, unit: float, rounded: Callable[[float, int], float], figures: int) -> float:
+    """The size [unit] that would be written, so that 99.5 N, rounded up, is told in kN."""
+    return abs(rounded(newtons / unit, figures)) * (1.0 + _ROUNDING_NOISE)
 
 
 def moment(newton_metres: float, system: System) -> str:
     """A moment rounded up to two figures."""
     if not isfinite(newton_metres):
         return ABSENT
-    if abs(newton_metres) < 1e-6:
-        return "0"
+    if abs(newton_metres) < NO_MOMENT:
+        return "0 N m" if system == "SI" else "0 lbf ft"
     if system == "US":
         return f"{up_text(newton_metres / (POUND_FORCE * 12 * INCH))} lbf ft"
-    return f"{up_text(newton_metres)} N m" if abs(newton_metres) < 100.0 else f"{up_text(newton_metres / 1e3)} kN m"
+    return f"{up_text(newton_metres)} N m" if abs(round_up(newton_metres)) < 100.0 else f"{up_text(newton_metres / 1e3)} kN m"
 
 
 def length(metres: float, system: System) -> str:
@@ -161,8 +198,8 @@ def small_angle(radians: float) -> str:
 
 def factor(value: float) -> str:
     """A factor, rounded down so that it never reads better than it is."""
-    if value == inf:
-        return "over 1000"
+    if value > MOST_FACTOR:
+        return f"over {MOST_FACTOR:.0f}"
     return f"{floor(value * 100.0 + 1e-9) / 100.0:.2f}" if isfinite(value) else ABSENT
 
 

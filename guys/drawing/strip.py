@@ -44,18 +44,28 @@ def strip_words(solution: Solution) -> list[tuple[str, bool]]:
 
 
 def _of_which(solution: Solution) -> str:
-    if "none" not in solution.state:
-        return ""
-    return "; loads are of the cases that stand" if set(solution.state) != {"none"} else "; there are no loads to show"
+    if set(solution.state) == {"none"}:
+        return "; there are no loads to show"
+    if not standing(solution):
+        return "; loads are of an equilibrium that does not hold"
+    return "; loads are of the cases that stand" if "none" in solution.state else ""
+
+
+def standing(solution: Solution) -> bool:
+    """Does any case stand."""
+    return not {"stable", "spins"}.isdisjoint(kinds(solution))
 
 
 def _verdict(solution: Solution) -> str:
-    if set(solution.state) == {"none"}:
+    if not standing(solution):
         return "nothing judged: nothing stands"
     judged = sum(f.verdict != "not judged" for f in solution.findings)
     past, open_ = len(solution.past), len(solution.findings) - judged
-    words = f"{past} of {judged} checks PAST the allowable" if past else f"all {judged} checks within" if judged else "nothing judged"
-    return f"{words}, {open_} not judged" if open_ else words
+    checks = f"{judged} check{'s' if judged != 1 else ''}"
+    words = f"{past} of {checks} PAST the allowable" if past else f"{'all ' if judged > 1 else ''}{checks} within" if judged else ""
+    if words and any(solution.unsettled):
+        words = f"of the cases that stand: {words}"
+    return ", ".join(w for w in (words, f"{open_} not judged" if open_ else "") if w) or "nothing to judge"
 
 
 def _raised(words: str) -> str:

@@ -25,7 +25,7 @@ from guys.drawing.reading import (
     pull_angle,
     wind_words,
 )
-from guys.drawing.rounding import Tongue, angle, bearing, factor, force, length, level, moment, plain_force
+from guys.drawing.rounding import ABSENT, NO_FORCE, Tongue, angle, bearing, capacity, factor, force, length, level, load, moment
 from guys.results import AnchorWorst, CableWorst, FootWorst, Solution
 
 ROW, HEAD_ROW = 4.2, 5.0
@@ -129,11 +129,11 @@ def base_grid(solution: Solution, tongue: Tongue) -> Grid:
 
 def _base_row(solution: Solution, worst: FootWorst, tongue: Tongue) -> Row:
     down, side, turning, lift = (greatest(e) for e in (worst.down, worst.sideways, worst.turning, worst.lift))
-    lifts = ("none",) if lift.value <= 0.0 else tongue.each(force, lift.value)
+    downs, lifts = (("none",) if e.value < NO_FORCE else tongue.each(force, e.value) for e in (down, lift))
     return [
         (worst.spar if worst.carried_by is None else f"{worst.spar} on {worst.carried_by}",),
-        tongue.each(force, down.value),
-        (when(solution, down),),
+        downs,
+        (when(solution, down) if down.value >= NO_FORCE else ABSENT,),
         tongue.each(force, side.value),
         (when(solution, side),),
         tuple(dict.fromkeys(tongue.each(moment, turning.value))),
@@ -166,7 +166,7 @@ def _anchor_row(solution: Solution, worst: AnchorWorst, tongue: Tongue) -> Row:
         tongue.each(length, radius), tongue.each(level, point[2] - base_point(solution)[2]),
         tongue.each(length, slope), tongue.each(force, pull.value), (angle(pull_angle(solution, worst)),),
         tongue.each(force, greatest(worst.horizontal).value),
-        tongue.each(force, up) if up > 0.0 else (uplift_words(up, tongue),),
+        tongue.each(force, up) if up >= NO_FORCE else (uplift_words(up, tongue),),
         (when(solution, pull),), *_hardest(solution, worst.name, tongue),
     ]  # fmt: skip
 
@@ -188,12 +188,12 @@ def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cel
     if not (isfinite(cable.factor) and isfinite(demand)):
         return (cable.name,), tongue.each(force, demand), ("not judged",)
     past = cable.factor < solution.scenario.allowables.cable
-    stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, demand), tongue.each(plain_force, cable.strength), strict=True))
+    stacked = tuple(_over(a, b) for a, b in zip(tongue.each(load, demand), tongue.each(capacity, cable.strength), strict=True))
     return (cable.name,), stacked, (f"{factor(cable.factor)} {'past' if past else 'within'}",)
 
 
 def _over(demand: str, capacity: str) -> str:
-    """ "6.3 / 23.0 kN": the unit once where it is the same."""
+    """ "6.29 / 23.0 kN": the unit once where it is the same."""
     number, _, unit = demand.partition(" ")
     return f"{number} / {capacity}" if capacity.endswith(f" {unit}") else f"{demand} / {capacity}"
 
@@ -204,16 +204,23 @@ def check_lines(solution: Solution, tongue: Tongue, room: float) -> list[str]:
     return wrapped("Check distances, level: " + " · ".join(pairs), room, style.SMALL) if pairs else []
 
 
+def grids(solution: Solution, tongue: Tongue) -> list[Grid]:
+    """The grid of feet, and that of anchors where there are any."""
+    return [base_grid(solution, tongue), *([anchor_grid(solution, tongue)] if solution.worst_anchors else [])]
+
+
 def table_height(solution: Solution, tongue: Tongue, room: float) -> float:
-    """Height [mm] of both grids and the check distances."""
+    """Height [mm] of the grids and the check distances."""
     lines = len(check_lines(solution, tongue, room))
-    return base_grid(solution, tongue).height + anchor_grid(solution, tongue).height + 3.0 + 4.2 * lines
+    return sum(grid.height for grid in grids(solution, tongue)) + 3.0 + 4.2 * lines
 
 
 def draw_table(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> None:
-    """Both grids from the top of the zone down."""
-    y = draw_grid(page, base_grid(solution, tongue), zone.left, zone.top, zone.width)
-    y = draw_grid(page, anchor_grid(solution, tongue), zone.left, y - 1.0, zone.width) - 3.0
+    """The grids from the top of the zone down."""
+    y = zone.top + 1.0
+    for grid in grids(solution, tongue):
+        y = draw_grid(page, grid, zone.left, y - 1.0, zone.width)
+    y -= 3.0
     for line in check_lines(solution, tongue, zone.width):
         page.text(zone.left, y, line, style.SMALL)
         y -= 4.2

@@ -15,7 +15,7 @@ from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
 from guys.drawing.labels import Array, Field, Place, Wish, all_over, place
 from guys.drawing.lettering import shortened
-from guys.drawing.page import Page, Rect
+from guys.drawing.page import Align, Page, Rect
 from guys.drawing.reading import (
     View,
     anchor_cables,
@@ -24,11 +24,17 @@ from guys.drawing.reading import (
     guy_angle,
     spar_named,
 )
-from guys.drawing.rounding import Tongue, angle, force
+from guys.drawing.rounding import NO_FORCE, Tongue, angle, force
 from guys.results import FootWorst, Solution
 
 OnPage = Callable[[Array], Array]
 TIER = 5.0
+FEW = 3
+"""Of more anchors on one side, each is given room for a tier of its own."""
+ASTRAY = 25.0
+"""Cost of words that do not stand under their point."""
+LONGEST_NAME = 60.0
+"""Room [mm] for the name of a spar over what its base bears."""
 
 
 BESIDE = 0.8
@@ -40,7 +46,8 @@ def below_room(solution: Solution, zone: Rect, view: View) -> float:
     across = view.project(solution.anchors.position - base_point(solution))[:, 0]
     wide = np.array([anchor_line(solution, name).width + 3.0 for name in solution.anchors.name])
     sides = [side for side in (across < 0.0, across >= 0.0) if side.any()]
-    rows = [1 + min(int(side.sum()) - 1, int(wide[side].sum() // (zone.width / 2.0))) for side in sides]
+    many = [int(side.sum()) for side in sides]
+    rows = [n if n > FEW else 1 + min(n - 1, int(wide[side].sum() // (zone.width / 2.0))) for n, side in zip(many, sides, strict=True)]
     return 19.0 + TIER * max(rows, default=0)
 
 
@@ -68,11 +75,16 @@ def words_under_ground(page: Page, solution: Solution, on_page: OnPage, field: F
     best = min(range(len(orders)), key=lambda i: sum(spot.cost for spot in trials[i]))
     for (wish, lines), spot in zip(orders[best], trials[best], strict=True):
         field.add_place(spot)
-        blocks.draw(page, spot.box, lines, "centre")
+        blocks.draw(page, spot.box, lines, _ranged(spot.box, wish.point))
         if spot.leader is not None:
             page.line(spot.leader, style.GREY, style.HAIR, order=3.0, name="leader")
         if spot.clashes:
             page.crowded.append(f"{lines[0].text} at {wish.point}")
+
+
+def _ranged(box: Array, point: Array) -> Align:
+    """Toward the point, where the words lie to one side of it."""
+    return "left" if box[0] > point[0] else "right" if box[2] < point[0] else "centre"
 
 
 Wished = tuple[Wish, Sequence[Line]]
@@ -83,7 +95,8 @@ def _trial(field: Field, order: Sequence[Wished]) -> list[Place]:
     spots = []
     for wish, _ in order:
         deep = replace(field.room, top=min(field.room.top, float(wish.point[1])))
-        spots.append(place(field, wish, all_over(wish, deep, step=2.5)))
+        anywhere = all_over(wish, deep, step=2.5)
+        spots.append(place(field, wish, replace(anywhere, cost=anywhere.cost + ASTRAY)))
     return spots
 
 
@@ -123,6 +136,8 @@ def _base_wishes(page: Page, solution: Solution, on_page: OnPage, field: Field, 
 
 
 def base_lines(worst: FootWorst, tongue: Tongue) -> list[Line]:
-    """The greatest push on the ground and the greatest sideways force."""
-    down, side = tongue.say(force, greatest(worst.down).value), tongue.say(force, greatest(worst.sideways).value)
-    return [Line(f"{worst.spar} base", style.BODY, bold=True, colour=style.LOAD), Line(f"down {down}, sideways {side}", colour=style.LOAD)]
+    """The greatest push on the ground, the greatest sideways force, and the greatest pull where it is lifted."""
+    parts = [(word, greatest(e).value) for word, e in (("down", worst.down), ("sideways", worst.sideways), ("LIFTED BY", worst.lift))]
+    said = ", ".join(f"{word} {tongue.say(force, value)}" for word, value in parts if word == "sideways" or not value < NO_FORCE)
+    name = shortened(worst.spar, LONGEST_NAME, style.BODY, bold=True)
+    return [Line(f"{name} base", style.BODY, bold=True, colour=style.LOAD), Line(said, colour=style.LOAD)]
