@@ -136,6 +136,29 @@ def test_a_structure_that_does_not_stand_in_still_air_has_no_cases() -> None:
     assert s.check.resolve == "not run"
     assert all(math.isnan(c.tension.peak) for c in s.worst_cables)
     assert len(s.warnings) == 1
+    for held in (s.spars[0].displacement, s.spars[0].axial, s.cables.curve, s.cables.tension_top, s.bases.force, s.head_lean):
+        assert np.isnan(held).all()
+
+
+def test_what_has_no_load_is_not_judged() -> None:
+    """Nothing stands: a cable has no tension, a base no push; neither is within its allowable."""
+    rope = {"rope": made.rope(strength=20e3)}
+    document = made.stayed(made.spar(rigid=True, friction=0.4), 60.0, 90.0, 120.0, length=19.6, wind=made.wind(0.0), rope=rope)
+    s = made.solved(document)
+    assert set(s.state) == {"none"}
+    assert all(math.isnan(c.factor) for c in s.worst_cables)
+    assert s.findings
+    assert {f.verdict for f in s.findings} == {"not judged"}
+    assert {f.why for f in s.findings if f.quantity != "pull"} == {"no case has an equilibrium, so there is no load to judge"}
+
+
+def test_of_values_alike_but_for_rounding_the_first_in_the_file_is_named() -> None:
+    """A mast of threefold symmetry in three winds of the same symmetry: every guy is as near its strength as the others."""
+    s = made.solved(made.mast(10.0, 130.0, 250.0, rope={"rope": made.rope(strength=20e3)}))
+    tensions = [f.thing for f in s.findings if f.quantity == "tension"]
+    levels = [t.split()[1] for t in tensions]
+    assert tensions == sorted(tensions, key=lambda t: (levels.index(t.split()[1]), t))
+    assert s.worst_feet[0].down.wind_from == pytest.approx(math.radians(10.0))
 
 
 def test_a_column_without_cables_and_anchors_is_solved_too() -> None:
@@ -151,3 +174,19 @@ def test_results_are_plain_frozen_data() -> None:
     with pytest.raises(AttributeError):
         s.case = ()  # type: ignore[misc]
     assert {f.name for f in fields(s)} >= {"cables", "anchors", "bases", "heels", "spars", "findings", "warnings", "sweep", "check"}
+
+
+def test_every_free_spin_is_named_however_many_there_are() -> None:
+    """Six ball-based masts side by side: six motions cost nothing, each a spin, and none of them hides another."""
+    names = "ABCDEF"
+    spars, ring, guys = [], [], []
+    for k, n in enumerate(names):
+        east = 30.0 * k
+        spars.append(made.spar(n, 9.0, foot={"east": east, "north": 0.0, "level": 0.0}, base="ball"))
+        for side, (x, y) in enumerate(((0.0, 8.0), (7.0, -4.0), (-7.0, -4.0))):
+            ring.append({"name": f"{n}{side}", "east": east + x, "north": y})
+            guys.append(made.cable(f"guy {n}{side}", 8.5, f"{n}{side}", spar=n, tension=900.0))
+    s = made.solved(made.document(spars, ring, guys, still=True))
+    assert s.state == ("neutral", "neutral")
+    assert s.note[0] == f"{', '.join(names)} may spin freely about its own axis"
+    assert s.unsettled == (False, False)

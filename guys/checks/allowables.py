@@ -17,6 +17,8 @@ from guys.results import AnchorWorst, CableWorst, Extreme, Finding, Verdict
 from guys.scenario import Scenario
 from guys.scenario.model import GroundFoot
 
+NO_LOAD = "no case has an equilibrium, so there is no load to judge"
+
 
 def findings(
     scenario: Scenario,
@@ -34,7 +36,12 @@ def findings(
     out += [_lean(scenario, name, extreme) for name, extreme in leans.items() if not math.isnan(extreme.peak)]
     out += [_anchor(scenario, a) for a in anchors]
     order = {"past": 0, "within": 1, "not judged": 2}
-    return tuple(sorted(out, key=lambda f: (order[f.verdict], math.inf if math.isnan(f.factor) else f.factor / f.required)))
+    return tuple(sorted(out, key=lambda f: (order[f.verdict], _reserve(f))))
+
+
+def _reserve(finding: Finding) -> float:
+    """Factor over the one required, to eight digits, so that what is alike but for rounding stays in the order of the file."""
+    return math.inf if math.isnan(finding.factor) else float(f"{finding.factor / finding.required:.8g}")
 
 
 def _judge(factor: float, required: float) -> Verdict:
@@ -46,7 +53,9 @@ def _judge(factor: float, required: float) -> Verdict:
 def _cable(scenario: Scenario, worst: CableWorst) -> Finding:
     required = scenario.allowables.cable
     t = worst.tension
-    why = "least breaking load over greatest tension" if not math.isnan(worst.strength) else "its rope has no strength"
+    why = (
+        "its rope has no strength" if math.isnan(worst.strength) else NO_LOAD if math.isnan(t.peak) else "least breaking load over tension"
+    )
     return Finding(
         f"cable {worst.name}", "tension", t.peak, worst.strength, "N", required, worst.factor, _judge(worst.factor, required), t.peak_case,
         t.peak_wind_from, why, "cable" in scenario.allowables.defaulted,
@@ -58,7 +67,7 @@ def _slide(scenario: Scenario, name: str, friction: float | None, slide: Extreme
     factor = math.nan
     if friction is not None and not math.isnan(slide.peak):
         factor = math.inf if slide.peak == 0 else friction / slide.peak
-    why = "no friction given for its base" if friction is None else "friction coefficient over sideways/down"
+    why = "no friction given for its base" if friction is None else NO_LOAD if math.isnan(slide.peak) else "friction over sideways/down"
     return Finding(
         f"base of {name}", "sideways/down", slide.peak, math.nan if friction is None else friction, "", required, factor, _judge(factor,
         required),

@@ -13,6 +13,8 @@ from guys.recovery import Forces
 from guys.results import Extreme
 from guys.rotation import Array
 
+TIE = 1e-9
+"""Values nearer than this to the greatest, relative, are alike but for rounding: the first of them in the order of the file is named."""
 GROUPS = ("tension", "resultant", "horizontal", "uplift", "down", "lift", "sideways", "turning", "slide", "lean")
 
 
@@ -60,8 +62,8 @@ def extreme(listed: Array, lines: Sequence[CaseLine], swept: Array, swept_lines:
     """Greatest of `listed` (case,), and of all with `swept`; NaN where no case has an equilibrium."""
     value, line = _greatest(listed, lines)
     peak, peak_line = _greatest(swept, swept_lines) if len(swept) else (math.nan, None)
-    if math.isnan(peak) or value >= peak:
-        peak, peak_line = value, line
+    if not peak > value + TIE * abs(value):
+        peak, peak_line = float(np.fmax(value, peak)), line
     return Extreme(
         value,
         line.name if line else "",
@@ -75,5 +77,6 @@ def extreme(listed: Array, lines: Sequence[CaseLine], swept: Array, swept_lines:
 def _greatest(values: Array, lines: Sequence[CaseLine]) -> tuple[float, CaseLine | None]:
     if len(values) == 0 or np.isnan(values).all():
         return math.nan, None
-    k = int(np.nanargmax(values))
-    return float(values[k]), lines[k]
+    greatest = float(np.nanmax(values))
+    alike = np.flatnonzero(values >= greatest - TIE * abs(greatest)) if math.isfinite(greatest) else [np.nanargmax(values)]
+    return greatest, lines[int(alike[0])]

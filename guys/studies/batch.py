@@ -99,6 +99,7 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
     notes = [_note(problem, judged, k) for k in range(problem.cases)]
     spars = recovery.lines(problem, judged.state, found) if detail else ()
     curves = recovery.curves(problem, judged.state, found, CURVE_POINTS) if detail else np.zeros((problem.cases, 0, 0, 3))
+    curves[gone] = np.nan
     return Batch(
         lines=problem.loads.lines,
         code=judged.code,

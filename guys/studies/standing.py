@@ -171,7 +171,7 @@ def _gaps(swept: Batch | None) -> list[tuple[str, float, str | None]]:
 def _cable_worst(structure: Structure, worst: _Worst, swept: Batch | None, k: int) -> CableWorst:
     tension = worst.of("tension", k)
     strength = float(structure.cables.strength[k])
-    factor = strength / tension.peak if tension.peak > 0 else (math.inf if not math.isnan(strength) else math.nan)
+    factor = math.inf if tension.peak == 0 and not math.isnan(strength) else strength / tension.peak if tension.peak != 0 else math.nan
     slack: tuple[tuple[str, float], ...] = ()
     if swept is not None:
         slack = tuple((swept.lines[c].name, swept.lines[c].wind_from) for c in np.flatnonzero(swept.forces.slack[:, k]))
