@@ -121,7 +121,7 @@ def hang(chord: Array, length: Array, EA: Array, load: Array, warm: Array | None
 
     chord : (n, 3) [m] from end A to end B;  length : (n,) [m] unstressed;  EA : (n,) [N]
     load : (n, 3) [N] total load w L0 on the cable;  warm : (n, 3) [N] tensions to start from where they serve
-    Valid for any length > 0 and any chord not exactly in line with the load while slack.
+    Valid for any length > 0.  A chord in line with the load is taken to lean from it by `LEVEL_FLOOR`, to whichever side.
     """
     ties = _ties(chord, length, EA, load)
     tension, gap, flexibility, ends = _begin(ties, None if warm is None else warm.T.copy())

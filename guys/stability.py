@@ -51,6 +51,8 @@ FINER = 1 / 16
 """A path on which the solver fails while the structure is still stiff is followed this much finer before that is called a fault."""
 SOFT = 0.3
 """Share of its still-air value to which the least eigenvalue has fallen where a structure falls; above it a failed step is the solver's."""
+FREE = 3
+"""Motions that a spar on its foot may have free: sway both ways, and spin."""
 STABLE, NEUTRAL, UNSTABLE, NONE, FAILED = range(5)
 """Codes of a case; FAILED: the solver did not converge although the path is stable up to the full load."""
 
@@ -110,8 +112,9 @@ def tangent(problem: Problem, state: State) -> Array:
     return problem.tangent(present, problem.evaluate(present))
 
 
-def modes(problem: Problem, state: State, count: int = 4) -> Mode:
-    """The lowest modes of a problem of one case."""
+def modes(problem: Problem, state: State, count: int | None = None) -> Mode:
+    """The `count` lowest modes of a problem of one case; None: as many as show every free motion and one more."""
+    count = FREE * len(problem.structure.scenario.spar) + 1 if count is None else count
     k_band = tangent(problem, state)[0]
     n, width = k_band.shape
     root = np.sqrt(problem.mass)
@@ -255,7 +258,7 @@ def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) 
 
 def _least_cost(one: Problem, state: State) -> float:
     """Least eigenvalue of one case that is not a free motion's; infinite where there is none such among the lowest."""
-    value = modes(one, state, 6).value
+    value = modes(one, state).value
     return float(np.min(value[value > ZERO], initial=np.inf))
 
 
