@@ -6,6 +6,7 @@ Exit status: 0 solved and within the allowables; 1 an internal fault; 2 the inpu
 
 from __future__ import annotations
 
+import io
 import os
 import sys
 from collections.abc import Sequence
@@ -93,7 +94,10 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
     from guys import doors
     from guys.units import parse
 
-    toward = None if look is None else parse(look, "angle")
+    try:
+        toward = None if look is None else parse(look, "angle")
+    except GuysError as error:
+        raise click.BadParameter(str(error), param_hint="--look") from error
     return doors.solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
 
 
@@ -111,6 +115,7 @@ def run(arguments: Sequence[str] | None = None) -> int:
     """Run a command and return its exit status; every fault is told in words, none as a traceback."""
     try:
         status = commands.main(arguments, prog_name="guys", standalone_mode=False)
+        sys.stdout.flush()
     except click.ClickException as error:
         error.show()
         return error.exit_code
@@ -120,6 +125,11 @@ def run(arguments: Sequence[str] | None = None) -> int:
     except GuysError as error:
         _tell(error)
         return error.exit_status
+    except OSError as error:
+        from guys.exchange.files import reason
+
+        click.echo(f"guys: what is printed cannot be written: {reason(error).split(';')[0]}", err=True)
+        return INTERNAL_FAULT
     except Exception as error:
         if TRACEBACK in os.environ:
             raise
@@ -141,4 +151,15 @@ def _tell(error: GuysError) -> None:
 
 def main() -> None:
     """The `guys` command."""
+    _readied_streams()
     sys.exit(run())
+
+
+def _readied_streams() -> None:
+    """A closed stream swallows what is printed; one of a poorer alphabet (a degree sign in ASCII) gets a question mark."""
+    for name in ("stdout", "stderr"):
+        stream = getattr(sys, name)
+        if stream is None:
+            setattr(sys, name, io.StringIO())
+        elif isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="replace")

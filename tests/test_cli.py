@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+import os
 import subprocess
 import sys
 from pathlib import Path
@@ -141,7 +142,7 @@ def test_schema_is_json(capsys: pytest.CaptureFixture[str]) -> None:
 
 def test_a_bearing_to_look_toward_needs_its_unit(good: Path, tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     assert cli.run(["solve", str(good), "--out", str(tmp_path / "out"), "--look", "45"]) == 2
-    assert capsys.readouterr().err == 'guys: "45" has no unit; write "45 deg" or "45 rad"\n'
+    assert capsys.readouterr().err.endswith('Error: Invalid value for --look: "45" has no unit; write "45 deg" or "45 rad"\n')
 
 
 def test_an_internal_fault_is_told_in_words(good: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]) -> None:
@@ -163,3 +164,31 @@ def test_the_package_runs_as_a_program() -> None:
     done = fresh("validate", "no-such-file.toml")
     assert (done.returncode, done.stdout) == (2, "")
     assert done.stderr.splitlines()[0] == "no-such-file.toml: no such file"
+
+
+@pytest.mark.skipif(not Path("/dev/full").exists(), reason="no device that is always full here")
+def test_a_full_disk_under_what_is_printed_is_told_in_words(good: Path) -> None:
+    with Path("/dev/full").open("w") as full:
+        done = subprocess.run(
+            [sys.executable, "-m", "guys", "validate", str(good)], stdout=full, stderr=subprocess.PIPE, text=True, check=False
+        )
+    assert done.returncode == 1
+    assert done.stderr == "guys: what is printed cannot be written: the disk is full\n"
+
+
+def test_a_terminal_of_a_poorer_alphabet_gets_question_marks(tmp_path: Path) -> None:
+    file = tmp_path / "far.toml"
+    file.write_text(dumps_tables(changed(MAST, (("title",), "Mast \u6f22 \u2013 1"))), encoding="utf-8")
+    done = subprocess.run(
+        [sys.executable, "-m", "guys", "validate", str(file)],
+        env={**os.environ, "PYTHONIOENCODING": "latin-1"},
+        capture_output=True,
+        check=False,
+    )
+    assert done.returncode == 0
+    assert done.stdout.startswith(b"Mast ? ? 1")
+
+
+def test_a_closed_output_loses_what_is_printed_and_nothing_else(good: Path) -> None:
+    done = subprocess.run(["sh", "-c", f"exec {sys.executable} -m guys validate {good} >&-"], capture_output=True, text=True, check=False)
+    assert (done.returncode, done.stderr) == (0, "")

@@ -164,6 +164,8 @@ def test_a_directory_that_cannot_be_made_is_named(tmp_path: Path) -> None:
     (tmp_path / "taken").write_text("a file", encoding="utf-8")
     with pytest.raises(OutputError, match="taken"):
         doors.write(made.solved(made.mast()), tmp_path / "taken" / "out", "SI", "A4", None)
+    with pytest.raises(OutputError, match="taken: cannot be written: a file has that name, where a directory is needed"):
+        doors.write(made.solved(made.mast()), tmp_path / "taken", "SI", "A4", None)
     assert OutputError("x", "y").exit_status != 0
 
 

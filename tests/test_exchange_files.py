@@ -84,3 +84,18 @@ def test_target_is_a_directory(tmp_path: Path) -> None:
 
 def test_an_unknown_reason_keeps_the_system_s_words() -> None:
     assert files.reason(OSError(errno.EIO, "Input/output error")) == "Input/output error"
+
+
+def test_of_several_files_none_is_replaced_where_one_is_a_directory(tmp_path: Path) -> None:
+    (tmp_path / "one.csv").write_text("old")
+    (tmp_path / "two.csv").mkdir()
+    with pytest.raises(OutputError, match="a directory has that name"):
+        _both_written(tmp_path / "one.csv", tmp_path / "two.csv")
+    assert (tmp_path / "one.csv").read_text() == "old"
+    assert sorted(p.name for p in tmp_path.iterdir()) == ["one.csv", "two.csv"]
+
+
+def _both_written(first: Path, second: Path) -> None:
+    with replaced(first) as one, replaced(second) as two:
+        one.write_text("new")
+        two.write_text("new")

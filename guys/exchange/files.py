@@ -25,6 +25,7 @@ _REASONS = {
     errno.ENOENT: "the directory does not exist",
     errno.ENOTDIR: "part of its path is not a directory",
     errno.EISDIR: "a directory has that name",
+    errno.EEXIST: "a file has that name, where a directory is needed",
 }
 
 
@@ -32,11 +33,15 @@ _REASONS = {
 def replaced(path: str | os.PathLike[str]) -> Iterator[Path]:
     """Yield a temporary path to write to; on success it becomes `path`, on any failure it is removed.
 
+    A directory of that name is refused before anything is written, so that of several files entered together none is replaced.
+
     Raises `OutputError` for what the operating system refuses, with the reason in words.
     """
     target = Path(path)
     temporary: Path | None = None
     try:
+        if target.is_dir():
+            raise IsADirectoryError(errno.EISDIR, os.strerror(errno.EISDIR))
         temporary = _beside(target)
         yield temporary
         _flush(temporary)
