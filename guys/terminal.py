@@ -13,6 +13,7 @@ from typing import TextIO
 
 from guys.drawing import rounding
 from guys.drawing.rounding import System, Units
+from guys.drawing.strip import standing
 from guys.results import Extreme, Finding, Solution
 
 Row = Sequence[str]
@@ -77,7 +78,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     _findings(solution, stream)
     for title, lines in (
         ("Warnings", solution.warnings),
-        ("Notes", solution.notes),
+        ("Notes", [note for note in solution.notes if not any(note in warning for warning in solution.warnings)]),
         ("Not checked", solution.not_checked),
         ("Cautions", solution.cautions),
     ):
@@ -104,6 +105,9 @@ def _place(extreme: Extreme) -> tuple[str, str]:
 def _findings(solution: Solution, stream: TextIO) -> None:
     """What is past, then the nearest of what is within, of each quantity."""
     findings = solution.findings
+    if not standing(solution):
+        stream.write("\nNothing judged: nothing stands\n")
+        return
     shown: list[Finding] = [f for f in findings if f.verdict == "past"]
     seen = {f.quantity for f in shown}
     for f in findings:

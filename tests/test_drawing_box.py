@@ -58,6 +58,28 @@ def test_tensions_to_set() -> None:
     assert words(samples.solution(samples.FOUR))["Set to"] == "9 m 1.20 kN, 17 m 1.20 kN; at the lower end, still air, 15 °C"
 
 
+def test_tensions_that_differ_are_told_cable_by_cable() -> None:
+    """As on uneven ground, or where plumb = true has found them: a range would not tell the crew what to set where."""
+    solution = samples.solution(samples.FOUR)
+    tension = solution.cables.tension_anchor.copy()
+    tension[0, [c.name for c in solution.scenario.cable].index("9 m E")] = 1430.0
+    other = replace(solution, cables=replace(solution.cables, tension_anchor=tension))
+    said = words(other)["Set to"]
+    assert said.startswith("9 m N 1.20 kN, 9 m E 1.43 kN, 9 m S 1.20 kN, 9 m W 1.20 kN, 17 m 1.20 kN; at the lower end")
+
+
+def test_densities_are_in_the_units_of_the_sheet() -> None:
+    rows = {r.label: r.text for r in box.entries(samples.solution(samples.FOUR), tongue("US"))}
+    assert "air 0.0765 lb/ft³" in rows["Wind"]  # 1.225 kg/m3 x 0.0624280 lb/ft3 per kg/m3
+    assert "kg" not in rows["Wind"]
+
+
+def test_a_note_told_in_a_warning_is_not_told_again() -> None:
+    solution = replace(samples.solution(samples.FOUR), notes=("it branches",))
+    assert words(solution)["Note"] == "it branches"
+    assert "Note" not in words(replace(solution, warnings=("the structure branches in setting: it branches",)))
+
+
 def test_warnings_come_first_and_once() -> None:
     solution = replace(samples.solution(samples.FOUR), warnings=("one", "two", "one"))
     rows = box.entries(solution, SI)
@@ -128,6 +150,7 @@ def test_checks_of_what_does_not_stand_are_not_called_within() -> None:
     assert strip.strip_words(unstable)[1] == ("Nothing judged: nothing stands", False)
     assert strip.strip_words(unstable)[0][0].endswith("loads are of an equilibrium that does not hold")
     assert "Hardest" not in words(unstable)
+    assert all(row[-1] == ("not judged",) for row in table.anchor_grid(unstable, SI).rows)
 
 
 def test_a_fall_told_in_a_warning_is_not_told_again() -> None:

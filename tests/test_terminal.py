@@ -152,3 +152,10 @@ def test_a_base_that_is_only_lifted_has_no_negative_push() -> None:
 
 def test_checks_beside_falls_say_of_which_cases_they_are() -> None:
     assert "of the cases with an equilibrium)" in printed(made.solved(made.losing()))
+
+
+def test_nothing_is_called_within_where_nothing_stands() -> None:
+    rope = {"rope": made.rope(strength=20e3)}
+    text = printed(made.solved(made.stayed(made.spar(rigid=True), 60.0, 90.0, 120.0, length=19.6, wind=made.wind(0.0), rope=rope)))
+    assert "\nNothing judged: nothing stands\n" in text
+    assert "within" not in text

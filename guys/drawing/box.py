@@ -21,6 +21,7 @@ from guys.drawing.rounding import (
     Tongue,
     bearing,
     capacity,
+    density,
     factor,
     length,
     line_mass,
@@ -63,7 +64,7 @@ def entries(solution: Solution, tongue: Tongue) -> list[Entry]:
         *_weather(solution, tongue),
         *_cables(solution, tongue),
         *_lean(solution),
-        *(Entry("Note", note) for note in solution.notes),
+        *(Entry("Note", note) for note in solution.notes if not any(note in warning for warning in solution.warnings)),
         *([Entry("Not checked", "; ".join(solution.not_checked))] if solution.not_checked else []),
         *_other_state(solution),
     ]
@@ -192,7 +193,7 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
             Entry(
                 "Wind",
                 f"{tongue.say(speed, wind.speed)}, {averaging_words(wind.averaging)} at {tongue.say(_height, wind.height)}, {how}, "
-                f"air {wind.air_density:.4g} kg/m³; {len(wind.directions)} bearings listed{swept}",
+                f"air {tongue.say(density, wind.air_density)}; {len(wind.directions)} bearings listed{swept}",
             )
         )
     parts = []
@@ -201,7 +202,7 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
         factors = f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}"
         parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}")
     if ice is not None:
-        parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {ice.density:g} kg/m³")
+        parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {tongue.say(density, ice.density)}")
     parts.append("factors on weight, wind pressure and weight of ice; initial tension is in every load, never factored")
     return [*rows, Entry("Cases", "; ".join(parts))]
 
@@ -226,15 +227,15 @@ def _cables(solution: Solution, tongue: Tongue) -> list[Entry]:
 
 
 def setting_words(solution: Solution, tongue: Tongue) -> str:
-    """Tensions in still air, by guy level; the range where they differ."""
-    groups: dict[str, list[float]] = {}
+    """Tensions in still air: one for a guy level that has but one, else one for each cable, as they are to be set."""
+    groups: dict[str, list[tuple[str, str]]] = {}
     for cable, tension in zip(solution.scenario.cable, solution.cables.tension_anchor[SETTING], strict=True):
-        groups.setdefault(cable.level or cable.name, []).append(float(tension))
+        if isfinite(tension):
+            groups.setdefault(cable.level or cable.name, []).append((cable.name, tongue.say(plain_force, float(tension))))
     parts = []
-    for name, values in groups.items():
-        if all(isfinite(v) for v in values):
-            ends = list(dict.fromkeys(tongue.say(plain_force, v) for v in (min(values), max(values))))
-            parts.append(f"{name} {' to '.join(ends)}")
+    for level, cables in groups.items():
+        alike = len({tension for _, tension in cables}) == 1
+        parts += [f"{level} {cables[0][1]}"] if alike else [f"{name} {tension}" for name, tension in cables]
     return ", ".join(parts)
 
 

@@ -37,6 +37,8 @@ HEAD, STRIP = 12.0, 9.5
 LONGEST_BAR, LARGEST_RING, LEAST_RING = 24.0, 9.0, 4.0
 DOT = 0.9
 WIND_ARROW = 15.0
+APART = 3.0
+"""Room [mm] about words that belong to no anchor."""
 
 
 @dataclass(frozen=True)
@@ -293,9 +295,9 @@ def _fall_circles(page: Page, solution: Solution, on: PlanFrame, field: Field, t
 
 def _beyond(page: Page, field: Field, words: list[Line]) -> None:
     """Words of a circle too large for the plan, at its foot, or wherever there is room."""
-    wide, high = blocks.size(words)
-    spot = place(field, _anywhere(field.room, (wide, high), np.array([field.room.left + wide / 2.0, field.room.bottom + high / 2.0 + 1.0])))
-    blocks.draw(page, spot.box, words)
+    wide, high = np.array(blocks.size(words)) + APART
+    spot = place(field, _anywhere(field.room, (wide, high), np.array([field.room.left + wide / 2.0, field.room.bottom + high / 2.0])))
+    blocks.draw(page, spot.box + np.array([0.0, APART / 2.0, -APART, -APART / 2.0]), words)
     if spot.clashes:
         page.crowded.append(words[0].text)
 

@@ -167,6 +167,13 @@ def line_mass(kilograms_per_metre: float, system: System) -> str:
     return f"{kilograms_per_metre / POUND * 12 * INCH:.3g} lb/ft"
 
 
+def density(kilograms_per_cubic_metre: float, system: System) -> str:
+    """A mass per volume."""
+    if system == "SI":
+        return f"{kilograms_per_cubic_metre:.4g} kg/m³"
+    return f"{kilograms_per_cubic_metre / POUND * (12 * INCH) ** 3:.3g} lb/ft³"
+
+
 def speed(metres_per_second: float, system: System) -> str:
     """A wind speed."""
     return f"{metres_per_second:.3g} m/s" if system == "SI" else f"{metres_per_second / MILE_PER_HOUR:.3g} mph"

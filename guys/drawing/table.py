@@ -26,6 +26,7 @@ from guys.drawing.reading import (
     wind_words,
 )
 from guys.drawing.rounding import ABSENT, NO_FORCE, Tongue, angle, bearing, capacity, factor, force, length, level, load, moment
+from guys.drawing.strip import standing
 from guys.results import AnchorWorst, CableWorst, FootWorst, Solution
 
 ROW, HEAD_ROW = 4.2, 5.0
@@ -185,7 +186,7 @@ def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cel
     if cable is None:
         return ("–",), ("–",), ("–",)
     demand = greatest(cable.tension).value
-    if not (isfinite(cable.factor) and isfinite(demand)):
+    if not (isfinite(cable.factor) and isfinite(demand) and standing(solution)):
         return (cable.name,), tongue.each(force, demand), ("not judged",)
     past = cable.factor < solution.scenario.allowables.cable
     stacked = tuple(_over(a, b) for a, b in zip(tongue.each(load, demand), tongue.each(capacity, cable.strength), strict=True))
