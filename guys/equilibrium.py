@@ -93,6 +93,11 @@ class Problem:
         return np.asarray(self.length * (1 + self.structure.cables.expansion * self.loads.warming[:, None]))
 
     @cached_property
+    def ride_growth(self) -> Array:
+        """(case, ride, 3) growth of riding nodes' arms at the cases' temperatures [m]."""
+        return np.asarray(self.loads.warming[:, None, None] * self.structure.ride_growth)
+
+    @cached_property
     def mass(self) -> Array:
         """(unknown,) scale of the tangent's diagonal: the weight over the height for translations, times (height/4)^2 for rotations.
         A least eigenvalue is called zero relative to it."""
@@ -129,7 +134,7 @@ class Problem:
     def arms(self, state: State) -> Array:
         """(case, ride, 3) turned arms of riding nodes."""
         carriers = np.array(self.structure.rides.carrier, dtype=np.int64)
-        return turned(state.psi[:, carriers], self.structure.ride_arm)
+        return turned(state.psi[:, carriers], self.structure.ride_arm + self.ride_growth)
 
     def reach(self, points: Points, state: State) -> tuple[Array, Array]:
         """Turned arms (case, point, 3) and displacement from the drawn node position (case, point, 3) of points."""
@@ -301,15 +306,24 @@ class Problem:
         whole = self.whole_step(state, step)
         u, psi = state.u + whole[..., :3], turn(state.psi, whole[..., 3:])
         self._unspin(psi)
-        rides = s.rides
+        self._seat(u, psi)
+        both = np.concatenate([whole[:, s.elements.i], whole[:, s.elements.j]], axis=-1)
+        axial = beam.predicted_axial(s.elements.rods, found.bent, both)
+        return State(u, psi, found.hanging.tension, axial)
+
+    def seated(self, state: State) -> State:
+        """The state with riding feet where their carriers hold them at the cases' temperatures: one found at another may be off."""
+        u, psi = state.u.copy(), state.psi.copy()
+        self._seat(u, psi)
+        return replace(state, u=u, psi=psi)
+
+    def _seat(self, u: Array, psi: Array) -> None:
+        s, rides = self.structure, self.structure.rides
         for k in reversed(range(len(rides.node))):
             node, carrier = rides.node[k], rides.carrier[k]
             if rides.welded[k]:
                 psi[:, node] = psi[:, carrier]
-            u[:, node] = u[:, carrier] + (psi[:, carrier] @ s.ride_arm[k])
-        both = np.concatenate([whole[:, s.elements.i], whole[:, s.elements.j]], axis=-1)
-        axial = beam.predicted_axial(s.elements.rods, found.bent, both)
-        return State(u, psi, found.hanging.tension, axial)
+            u[:, node] = u[:, carrier] + psi[:, carrier] @ s.ride_arm[k] + turned(psi[:, carrier], self.ride_growth[:, k])
 
     def _unspin(self, psi: Array) -> None:
         """Turn feet that do not spin back about their drawn axis, so that their rotation vector is square to it.

@@ -17,6 +17,7 @@ from guys import beam, cable
 from guys.equilibrium import Evaluation, Problem, State
 from guys.results import SparLine
 from guys.rotation import Array, cross, turned
+from guys.scenario.model import SparPoint
 
 SLACK_HANGING = 1e-6
 """A catenary is slack where the tension at mid-length is below its own load by more than this share of that load."""
@@ -145,10 +146,15 @@ def _places(problem: Problem, state: State, k: int) -> tuple[Array, Array, Array
     t, foot = s.axes[k, 2], s.position[s.foot[k]]
     displacement = state.u[:, node]
     if s.scenario.spar[k].rigid:
-        growth = s.head.growth[k] @ t / s.length[k]
-        arm = (1 + problem.loads.warming[:, None, None] * growth) * station[:, None] * t
+        arm = _warm_stations(problem, mine).reshape(problem.cases, -1, 1) * t
         displacement = displacement + turned(state.psi[:, node], arm) - station[:, None] * t
     return station, foot + station[:, None] * t, displacement
+
+
+def _warm_stations(problem: Problem, rows: NDArray[np.int64]) -> Array:
+    """(case, row, 2) distances of the ends of a rigid spar's pieces from its foot, at the cases' temperatures [m]."""
+    pieces = problem.structure.pieces
+    return np.asarray(pieces.station[rows] + problem.loads.warming[:, None, None] * pieces.growth[rows])
 
 
 def _elastic_sections(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:
@@ -169,9 +175,11 @@ def _elastic_sections(problem: Problem, state: State, found: Evaluation) -> tupl
 
 @dataclass(frozen=True)
 class _Hung:
-    """What is made fast to a rigid spar: station [m], force (case, 3) [N] on the spar, moment (case, 3) [N m] about the axis there."""
+    """What is made fast to a rigid spar: station [m], its distance from the foot as warm as it is (case, 1) [m], force (case, 3) [N] on the
+    spar, moment (case, 3) [N m] about the axis there."""
 
     station: float
+    along: Array
     force: Array
     moment: Array
 
@@ -182,21 +190,21 @@ def _rigid_sections(problem: Problem, state: State, found: Evaluation, k: int) -
     mine = np.flatnonzero(s.pieces.spar == k)
     axes = turned(state.psi[:, s.foot[k], None], s.axes[k])
     t = axes[:, 2]
-    hung = _hung_on(problem, state, found, k)
+    hung, at = _hung_on(problem, state, found, k), _warm_stations(problem, mine)[..., None]
     force, moment = np.zeros((problem.cases, 3)), np.zeros((problem.cases, 3))
     out_f, out_m = np.zeros((problem.cases, len(mine), 2, 3)), np.zeros((problem.cases, len(mine), 2, 3))
     above = np.inf
     for row in reversed(range(len(mine))):
-        low, high = s.pieces.station[mine[row]]
+        high, warm = s.pieces.station[mine[row], 1], at[:, row]
         least = high - AT_CUT * s.length[k]
         for h in hung:
             if least <= h.station < above:
-                moment = moment + h.moment + cross((h.station - high) * t, h.force)
+                moment = moment + h.moment + cross((h.along - warm[:, 1]) * t, h.force)
                 force = force + h.force
         above = least
         out_f[:, row, 1], out_m[:, row, 1] = force, moment
         q, lever = problem.loads.on_pieces[:, mine[row], 0], problem.loads.on_pieces[:, mine[row], 1]
-        moment = moment + cross((high - low) * t, force) + cross(t, lever - low * q)
+        moment = moment + cross((warm[:, 1] - warm[:, 0]) * t, force) + cross(t, lever - warm[:, 0] * q)
         force = force + q
         out_f[:, row, 0], out_m[:, row, 0] = force, moment
     return np.einsum("cab,cpeb->cpea", axes, out_f), np.einsum("cab,cpeb->cpea", axes, out_m)
@@ -207,23 +215,24 @@ def _hung_on(problem: Problem, state: State, found: Evaluation, k: int) -> list[
     t0, psi = s.axes[k, 2], state.psi[:, node]
     out = []
 
-    def add(arm: Array, force: Array, moment: Array) -> None:
-        at = float(arm @ t0)
-        aside = turned(psi, arm - at * t0)
-        out.append(_Hung(at, force, moment + cross(aside, force)))
+    def add(at: float, arm: Array, growth: Array, force: Array, moment: Array) -> None:
+        along = at + problem.loads.warming[:, None] * (growth @ t0)
+        out.append(_Hung(at, along, force, moment + cross(turned(psi, arm - at * t0), force)))
 
     present = problem.loads.present[..., None]
     none = np.zeros((problem.cases, 3))
-    for points, pull in ((s.cables.a, found.hanging.at_a * present), (s.cables.b, -found.hanging.at_b * present)):
-        for c in np.flatnonzero(points.node == node):
-            add(points.arm[c], pull[:, c], none)
-    for f in np.flatnonzero(s.fittings.point.node == node):
-        add(s.fittings.point.arm[f], problem.loads.on_fittings[:, f], none)
+    for n, cable_run in enumerate(s.scenario.cable):
+        for end, points, pull in ((cable_run.to, s.cables.a, found.hanging.at_a), (cable_run.from_, s.cables.b, -found.hanging.at_b)):
+            if isinstance(end, SparPoint) and points.node[n] == node:
+                add(end.at, points.arm[n], points.growth[n], (pull * present)[:, n], none)
+    point = s.fittings.point
+    for f in np.flatnonzero(point.node == node):
+        add(float(s.fittings.station[f]), point.arm[f], point.growth[f], problem.loads.on_fittings[:, f], none)
     force, moment = _feet(problem, state, found)
     for ride, carrier in enumerate(s.rides.carrier):
         if carrier == node:
             rider = int(np.flatnonzero(s.foot == s.rides.node[ride])[0])
-            add(s.ride_arm[ride], force[:, rider], moment[:, rider])
+            add(float(s.ride_arm[ride] @ t0), s.ride_arm[ride], s.ride_growth[ride], force[:, rider], moment[:, rider])
     return out
 
 
@@ -257,7 +266,7 @@ def _turning_of_levers(problem: Problem, state: State) -> Array:
     for node, first in ((s.pieces.low, 1), (s.pieces.high, 3)):
         total += np.cross(turned(state.psi[:, node], s.pieces.axis), problem.loads.on_pieces[:, :, first]).sum(axis=1)
     point = s.fittings.point
-    return np.asarray(total + np.cross(turned(state.psi[:, point.node], point.arm), problem.loads.on_fittings).sum(axis=1))
+    return np.asarray(total + np.cross(problem.reach(point, state)[0], problem.loads.on_fittings).sum(axis=1))
 
 
 def _cable_loads(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:

@@ -78,7 +78,7 @@ class _Progress:
 def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int = ROUNDS) -> Outcome:
     """Bring every case to equilibrium from `start`; `stop` tells which cases to give up (a spar that has turned over)."""
     cases = problem.cases
-    state = start.take(np.arange(cases))
+    state = problem.seated(start.take(np.arange(cases)))
     seen = _Progress(
         np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64),
         np.ones(cases), np.zeros((cases, problem.pattern.unknowns)),

@@ -63,7 +63,8 @@ class Pieces:
 
     spar (piece,) index; station (piece, 2) [m]; low, high : the node that takes each end's share (the same for a rigid spar); rigid
     (piece,)
-    mass, iced_mass [kg/m]; width, iced_width [m]; drag [-]; axis (piece, 3) drawn axis
+    mass, iced_mass [kg/m]; width, iced_width [m]; drag [-]; axis (piece, 3) drawn axis; growth (piece, 2) [m/K] by which the ends of a
+    piece of a rigid spar move off from the foot with temperature
     """
 
     spar: Index
@@ -77,6 +78,7 @@ class Pieces:
     iced_width: Array
     drag: Array
     axis: Array
+    growth: Array
 
 
 @dataclass(frozen=True)
@@ -120,8 +122,9 @@ class Fittings:
 @dataclass(frozen=True)
 class Structure:
     """The whole structure.  See the module's text; `position` (node, 3) [m] drawn; `spar` (node,) index or -1; `station` (node,) [m];
-    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6) in `frames`; `unspun` spars whose
-    feet do not spin; `give` (anchor,) [N/m], inf: none."""
+    `axes` (spar, 3, 3) rows x, y, t; `foot` (spar,) node; `head` point of every spar; `held` (node, 6) in `frames`;
+    `ride_arm` (ride, 3) [m] and `ride_growth` [m/K] of riding feet from their carriers' nodes; `unspun` spars whose feet do not spin;
+    `give` (anchor,) [N/m], inf: none."""
 
     scenario: Scenario
     position: Array
@@ -134,6 +137,7 @@ class Structure:
     held: NDArray[np.bool_]
     rides: Rides
     ride_arm: Array
+    ride_growth: Array
     frames: Frames
     unspun: tuple[int, ...]
     elements: Elements
@@ -223,12 +227,14 @@ class _Builder:
         local, beyond = self.stations[k].nearest(at)
         along = beyond * self.axes[k, 2]
         arm = along if offset is None else along + offset
-        return int(self.first[k]) + local, arm, along * self._expansion(k)
+        return int(self.first[k]) + local, arm, self._growth(k, at - beyond, at) * self.axes[k, 2]
 
-    def _expansion(self, k: int) -> float:
-        """Mean expansion of a spar [1/K]."""
-        spar = self.scenario.spar[k]
-        return sum(p.expansion * s.length for p, s in zip(self.sections[k], spar.section, strict=True)) / spar.length
+    def _growth(self, k: int, start: float, end: float) -> float:
+        """By how much spar k grows between two stations [m/K], negative where `end` is below `start`."""
+        bounds = self._bounds(k)
+        expansion = np.array([p.expansion for p in self.sections[k]])
+        low, high = (np.clip(at, bounds[:-1], bounds[1:]) for at in (start, end))
+        return float((high - low) @ expansion)
 
     def drawn(self, end: SparPoint | AnchorPoint) -> Array:
         """Drawn position of a cable's end on the axis of its spar, or of its anchor."""
@@ -253,7 +259,7 @@ class _Builder:
         cables = self._cables()
         weight = self._weight(pieces, cables)
         position, spar, station = self._nodes()
-        held, rides, arms, joints = self._supports(weight, cables)
+        held, rides, arms, growth, joints = self._supports(weight, cables)
         frames, unspun = self._frames()
         top = max([float(np.abs(self.axes[k, 2]).max() * s.length) for k, s in enumerate(scenario.spar)])
         return Structure(
@@ -268,6 +274,7 @@ class _Builder:
             held=held,
             rides=rides,
             ride_arm=arms,
+            ride_growth=growth,
             frames=frames,
             unspun=unspun,
             elements=self._elements(),
@@ -345,6 +352,7 @@ class _Builder:
             iced_width=each("iced_width"),
             drag=each("drag"),
             axis=self.axes[spar_of, 2],
+            growth=np.array([[self._growth(r[0], 0.0, at) if r[5] else 0.0 for at in r[1:3]] for r in rows]),
         )
 
     def _cables(self) -> Cables:
@@ -376,25 +384,26 @@ class _Builder:
         kilos = float(pieces.mass @ spans) + sum(f.mass for f in fittings) + float(cables.mass @ np.array(chords))
         return STANDARD_GRAVITY * kilos + sum(math.hypot(f.load.east, f.load.north, f.load.up) for f in fittings)
 
-    def _supports(self, weight: float, cables: Cables) -> tuple[NDArray[np.bool_], Rides, Array, Joints]:
+    def _supports(self, weight: float, cables: Cables) -> tuple[NDArray[np.bool_], Rides, Array, Array, Joints]:
         held = np.zeros((self.ground + 1, 6), dtype=bool)
         held[self.ground] = True
         held[int(self.first[-1]) :, 3:] = True
         for k, a in enumerate(self.scenario.anchor):
             held[int(self.first[-1]) + k, :3] = a.give is None
-        rides: list[tuple[int, int, bool, Array]] = []
+        rides: list[tuple[int, int, bool, Array, Array]] = []
         joints: list[tuple[str, int, int, float, Array]] = []
         for k in self._outermost_first():
             spar, foot = self.scenario.spar[k], int(self.first[k])
             carrier = self.ground
             if isinstance(spar.foot, HeelFoot):
-                carrier, arm, _ = self.point(self.number[spar.foot.spar], spar.foot.at)
-                rides.append((foot, carrier, spar.base == "fixed", arm))
+                carrier, arm, growth = self.point(self.number[spar.foot.spar], spar.foot.at)
+                rides.append((foot, carrier, spar.base == "fixed", arm, growth))
             else:
                 held[foot] = HELD[spar.base]
             joints += [(kind, foot, carrier, stiffness, axis) for kind, stiffness, axis in self._holds(k, weight, cables)]
         order = Rides(tuple(r[0] for r in rides), tuple(r[1] for r in rides), tuple(r[2] for r in rides))
-        return held, order, np.array([r[3] for r in rides]).reshape(-1, 3), _joints(joints)
+        arms, growths = (np.array([r[n] for r in rides]).reshape(-1, 3) for n in (3, 4))
+        return held, order, arms, growths, _joints(joints)
 
     def _holds(self, k: int, weight: float, cables: Cables) -> list[tuple[str, float, Array]]:
         """Kind, stiffness and axes of the joints at the foot of spar k."""

@@ -268,6 +268,36 @@ def test_tension_of_a_restrained_cable_against_temperature(change: float) -> Non
     assert s.cables.unstressed_length[1, 0] == pytest.approx(14.985 * (1 + 11.5e-6 * change), rel=1e-12)
 
 
+@pytest.mark.parametrize("change", [-35.0, 25.0])
+def test_a_rigid_spar_grows_section_by_section(change: float) -> None:
+    """A stay at the top of a steel section (12e-6 1/K) below one without expansion rises by all of the steel's growth, not by a mean."""
+    steel, cold = made.tube(6.0, drag=0.0), made.weightless(6.0)
+    document = made.stayed(made.spar(base="fixed", rigid=True, section=[steel, cold]), 90.0, at=6.0, length=9.99, straight=True)
+    document["case"] = [{"name": "other", "wind": 0.0, "temperature": 15.0 + change}]
+    s = made.solved(document)
+    chord = math.hypot(8.0, 6.0 * (1 + 12e-6 * change))
+    expected = 1.4e6 * (chord / (9.99 * (1 + 11.5e-6 * change)) - 1)
+    assert s.cables.tension_anchor[1, 0] == pytest.approx(expected, rel=1e-9)
+    grown = s.spars[0].displacement[1, [0, -1], 2]
+    assert grown == pytest.approx([0.0, 6.0 * 12e-6 * change], abs=1e-12)
+
+
+@pytest.mark.parametrize("base", ["pinned", "fixed"])
+@pytest.mark.parametrize("change", [-35.0, 25.0])
+def test_a_heel_on_a_rigid_spar_rises_as_that_grows(base: str, change: float) -> None:
+    """A rigid pole without expansion on the head of a rigid steel mast, upright between three equal stays: their chords in closed form."""
+    mast = made.spar(base="fixed", rigid=True, section=[made.tube(6.0, drag=0.0)])
+    pole = made.spar("pole", foot={"spar": "mast", "at": 6.0}, base=base, rigid=True, section=[made.weightless(3.0)])
+    ring = made.anchors(12.0, 0.0, 120.0, 240.0)
+    stays = [made.cable(f"stay {a['name']}", 3.0, a["name"], spar="pole", length=14.98) for a in ring]
+    document = made.document([mast, pole], ring, stays, straight=True)
+    document["case"] = [{"name": "other", "wind": 0.0, "temperature": 15.0 + change}]
+    s = made.solved(document)
+    chord = math.hypot(12.0, 9.0 + 6.0 * 12e-6 * change)
+    expected = 1.4e6 * (chord / (14.98 * (1 + 11.5e-6 * change)) - 1)
+    assert s.cables.tension_anchor[1] == pytest.approx([expected] * 3, rel=1e-9)
+
+
 @pytest.mark.parametrize("rigid", [False, True])
 def test_sprung_base_resists_with_stiffness_times_its_angle(rigid: bool) -> None:
     """A spar on a spring with a side load: the moment on the ground is k times the angle of its foot, against the turning."""

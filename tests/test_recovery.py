@@ -123,6 +123,21 @@ def test_rigid_spars_have_the_sections_of_very_stiff_ones() -> None:
         assert np.abs(stiff - rig).max() < FLEXED * scale, name
 
 
+@pytest.mark.parametrize("bearing", [90.0, 270.0])
+def test_a_level_lug_on_a_leaning_rigid_spar_acts_at_its_station(bearing: float) -> None:
+    """Weightless, stayed at 6 m from a lug 0.3 m off, which on a spar leaning 50 degrees lies 0.23 m further up or down along the axis: the
+    sections below 6 m carry the stay's pull, those above nothing."""
+    spar = made.spar(base="fixed", rigid=True, lean=50.0, toward=90.0, section=[made.weightless(10.0)])
+    s = made.solved(made.stayed(spar, bearing, at=6.0, arm=0.3, radius=14.0, tension=900.0, straight=True))
+    line, pull = s.spars[0], s.cables.force_on_spar[0, 0]
+    lean = math.radians(50.0)
+    along = pull @ np.array([math.sin(lean), 0.0, math.cos(lean)])
+    below = np.arange(len(line.station)) < np.searchsorted(line.station, 6.0, side="right") - 1
+    assert line.axial[0] == pytest.approx(np.where(below, along, 0.0), abs=1e-9 * 900.0)
+    lug = np.array([math.copysign(0.3, pull[0]), 0.0, 0.0])
+    assert line.bending[0, below][-1, 0] == pytest.approx(np.cross(lug, pull) @ line.axes[0], rel=1e-9, abs=1e-9 * 270.0)
+
+
 def test_a_couple_at_the_head_twists_the_whole_column() -> None:
     """60 N north at 0.5 m east of the axis: 30 N m all the way down and on the ground."""
     aside = made.fitting(at=4.0, load=made.vector(0.0, 60.0, 0.0), offset=made.vector(0.5, 0.0, 0.0))

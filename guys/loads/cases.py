@@ -17,7 +17,7 @@ from guys.loads import dead, wind
 from guys.loads.spread import Weights, to_nodes, weights
 from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
-from guys.structure import Points, Structure
+from guys.structure import Pieces, Points, Structure
 
 
 @dataclass(frozen=True)
@@ -106,13 +106,15 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     still = dead.dead(structure, w).times(d).plus(dead.ice(structure, w).times(i))
     blown, on_cables = _wind(structure, lines, placed, w)
     both = still.plus(blown.times(v))
+    warming = np.array([c.temperature - scenario.setting.temperature for c in lines])
+    _move_off(structure.pieces, both.on_pieces, warming)
     cable_dead, cable_ice = dead.cable_weight(structure)
     down = (d[:, None] * cable_dead + i[:, None] * cable_ice)[..., None] * dead.DOWN
     hangs = scenario.analysis.cable == "catenary"
     names = [c.name for c in scenario.cable]
     present = np.array([[name not in c.without for name in names] for c in lines], dtype=float).reshape(len(lines), -1)
     force, dyad = to_nodes(structure.pieces, both.on_pieces, structure.nodes)
-    _add_points(structure, both.on_fittings, force, dyad)
+    _add_points(structure, both.on_fittings, warming, force, dyad)
     cable_weight = hangs * (np.abs(down[..., 2]) * placed.length * present).sum(axis=1)
     cable_wind = hangs * (on_cables * present[..., None]).sum(axis=1)
     return LoadCases(
@@ -121,7 +123,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
         on_pieces=both.on_pieces,
         on_fittings=both.on_fittings,
         cable_load=(down + v[:, None, None] * on_cables / placed.length[:, None]) * hangs,
-        warming=np.array([c.temperature - scenario.setting.temperature for c in lines]),
+        warming=warming,
         present=present,
         weight=np.linalg.norm(still.total(), axis=-1) + cable_weight,
         wind_force=v * np.linalg.norm(blown.total() + cable_wind, axis=-1),
@@ -129,11 +131,19 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     )
 
 
-def _add_points(structure: Structure, on_fittings: Array, force: Array, dyad: Array) -> None:
+def _move_off(pieces: Pieces, on_pieces: Array, warming: Array) -> None:
+    """Change the levers of loads on rigid spars, which are about their feet, as the spars grow; elastic ones carry their nodes off."""
+    start, end = pieces.station.T
+    rate = (pieces.growth[:, 1] - pieces.growth[:, 0]) / (end - start)
+    from_foot = (pieces.growth[:, 0] - rate * start)[:, None] * on_pieces[:, :, 0] + rate[:, None] * on_pieces[:, :, 1]
+    on_pieces[:, :, 1] += warming[:, None, None] * from_foot
+
+
+def _add_points(structure: Structure, on_fittings: Array, warming: Array, force: Array, dyad: Array) -> None:
     point = structure.fittings.point
     for k, node in enumerate(point.node):
         force[:, node] += on_fittings[:, k]
-        dyad[:, node] += outer(point.arm[k], on_fittings[:, k])
+        dyad[:, node] += outer(point.arm[k] + warming[:, None] * point.growth[k], on_fittings[:, k])
 
 
 def _wind(structure: Structure, lines: Sequence[CaseLine], placed: Placed, w: Weights) -> tuple[dead.Loads, Array]:
