@@ -68,7 +68,7 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
         tension_top=np.linalg.norm(at_b, axis=-1),
         on_anchor=at_a,
         on_spar=-at_b,
-        length=problem.natural,
+        length=np.broadcast_to(problem.length, present.shape).copy(),
         slack=_slack(problem, state, found) & present,
         present=present,
         pull=-found.structural[:, s.anchor, :3],

@@ -34,7 +34,7 @@ class CableForces:
     name : (cable,) names; from_spar, to_anchor : (cable,) name of the spar it leaves and of the anchor it runs to (None between two spars)
     tension_anchor, tension_top : (case, cable) [N] at the `to` and the `from` end
     force_on_anchor, force_on_spar : (case, cable, 3) [N] on what holds the `to` end and on the spar at the `from` end
-    unstressed_length : (case, cable) [m] at the case's temperature
+    unstressed_length : (case, cable) [m] at the setting's temperature, the same in every case
     slack, present : (case, cable) dropped by the contract's rule; False where the case takes the cable away
     curve : (case, cable, point, 3) [m] the cable as it hangs, from the `to` end to the `from` end
     strength : (cable,) [N] least breaking load, NaN where not given
