@@ -9,7 +9,8 @@ import numpy as np
 import pytest
 import sheet_samples as samples
 
-from guys.drawing import compose, elevation, key, under_ground
+from guys.drawing import compose, elevation, key, style, under_ground
+from guys.drawing.lettering import width
 from guys.drawing.page import Page, Rect, new_page
 from guys.drawing.reading import View, look_bearing
 from guys.drawing.rounding import tongue
@@ -108,3 +109,13 @@ def test_words_of_many_anchors_stand_in_tiers_under_their_points() -> None:
     runs = [np.ptp(np.column_stack(line.get_data()), axis=0) for line in zone]  # type: ignore[attr-defined]
     long = [run for run in runs if run[1] > 6.0 and run[0] < 5.0]
     assert len(long) >= 8
+
+
+@pytest.mark.parametrize("name", ["mast", "west mast", "a mast with a very long name, put up in the spring of last year"])
+@pytest.mark.parametrize("made", [samples.solution(samples.FOUR), samples.falling(samples.FOUR, range(4))], ids=["stands", "falls"])
+def test_a_long_name_does_not_cut_what_the_heading_says(name: str, made: Solution) -> None:
+    named = replace(made, spars=(replace(made.spars[0], name=name), *made.spars[1:]))
+    said = elevation.how_drawn(named, ZONE.width)
+    assert said.endswith(" · guy angles from the ground")
+    assert width(said, style.SMALL) <= ZONE.width
+    assert ("NOT STAND" in said) == (made.state[0] == "none")

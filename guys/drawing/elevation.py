@@ -15,7 +15,7 @@ from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
 from guys.drawing.key import lettered_sections, numbered_fittings
 from guys.drawing.labels import Array, Field, all_over, around, column, place
-from guys.drawing.lettering import fitted, shortened
+from guys.drawing.lettering import fitted, shortened, width
 from guys.drawing.page import Page, Rect
 from guys.drawing.reading import (
     View,
@@ -105,10 +105,17 @@ def _heading(page: Page, solution: Solution, on: ElevationFrame, ratio: float, t
     x, y = on.zone.left, on.zone.top - 4.6
     wide = page.text(x, y, f"Elevation, looking toward {bearing(on.view.toward)}", style.HEADING, bold=True)
     page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
-    first = shortened(solution.spars[0].name, 26.0, style.SMALL)
-    how = "cables as they hang in still air" if stands(solution) else "AS DRAWN, cables straight: it does not stand in still air"
-    words = f"{how} · levels as drawn, above the foot of {first} · guy angles from the ground"
-    page.text(x, y - 4.6, fitted(words, on.zone.width, style.SMALL), style.SMALL)
+    page.text(x, y - 4.6, how_drawn(solution, on.zone.width), style.SMALL)
+
+
+def how_drawn(solution: Solution, room: float) -> str:
+    """What the elevation shows, in one line; the name of the first spar gives way."""
+    how = "cables as they hang in still air · levels as drawn, from the foot of "
+    if not stands(solution):
+        how = "AS DRAWN: it does NOT STAND in still air · levels from the foot of "
+    after = " · guy angles from the ground"
+    name = shortened(solution.spars[0].name, room - width(how + after, style.SMALL), style.SMALL)
+    return fitted(f"{how}{name}{after}", room, style.SMALL)
 
 
 def _ground(page: Page, solution: Solution, on: ElevationFrame, field: Field) -> None:
