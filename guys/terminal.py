@@ -17,6 +17,8 @@ from guys.drawing.strip import standing
 from guys.results import Extreme, Finding, Solution
 
 Row = Sequence[str]
+MEANING = {"none": " (no equilibrium: it falls)", "unstable": " (does not hold)", "neutral": " (free to move)"}
+"""What the states of the result file mean, for who reads them first here."""
 
 
 @contextmanager
@@ -92,9 +94,10 @@ def _in_each(how: rounding.Say, value: float, systems: Sequence[System]) -> str:
 
 def _states(solution: Solution) -> str:
     count = {state: solution.state.count(state) for state in ("stable", "neutral", "unstable", "none")}
-    words = ", ".join(f"{n} {state}" for state, n in count.items() if n)
+    words = ", ".join(f"{n} {state}{MEANING.get(state, '')}" for state, n in count.items() if n)
     check = solution.check
-    return f"{len(solution.state)} cases: {words}; loads and reactions balance to {check.balance:.0e}; solved again: {check.resolve}"
+    again = f"solved again by another method: {check.resolve}"
+    return f"{len(solution.state)} cases: {words}; loads and reactions balance to {check.balance:.0e}; {again}"
 
 
 def _place(extreme: Extreme) -> tuple[str, str]:

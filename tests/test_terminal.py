@@ -35,7 +35,7 @@ def test_plain_report_has_every_table_and_no_drawing() -> None:
     text = printed(s)
     assert text.startswith("made for a test\n5 cases: ")
     assert "stable" in text.split("\n")[1]
-    assert "none" in text.split("\n")[1]
+    assert "1 none (no equilibrium: it falls)" in text.split("\n")[1]
     anchors = section(text, "Greatest load of each anchor")
     assert re.split(r" {2,}", anchors[0].strip()) == ["anchor", "pull", "horizontal", "uplift", "case", "wind from"]
     assert [row.split()[0] for row in anchors[1:]] == ["A", "B", "C"]
