@@ -181,6 +181,19 @@ def test_a_cable_above_its_strength_is_warned_about() -> None:
     assert len(warned(s, "is above its strength 1.6 kN")) == len(above)
 
 
+def test_initial_tensions_that_the_setting_does_not_hold_are_told() -> None:
+    """Tensions whose thrust buckles the mast: it comes to rest bowed, its guys nowhere near what was asked for."""
+    document = made.mast()
+    document["spar"][0]["section"] = [made.tube(18.0, 0.06, 0.002)]
+    for guy in document["cable"]:
+        guy["tension"] = 2500.0
+    s = made.solved(document)
+    assert s.state[0] == "stable"
+    assert abs(s.cables.tension_anchor[0] - 2500.0).max() > 25.0
+    assert len(warned(s, "does not hold the initial tensions asked for", "for 2.5 kN (562 lbf)")) == 1
+    assert not warned(made.solved(made.mast(30.0)), "asked for")
+
+
 def test_falls_between_the_listed_directions_are_warned_about() -> None:
     """A leaning pylon without a forestay, listed only in winds that press it onto its backstays: from the east it would tip."""
     document = made.pylon(wind=made.wind(270.0, speed=30.0))

@@ -25,6 +25,8 @@ BALANCE = 1e-9
 SHOWN = 1e-6
 """Share of the reference force below which a pull on a base is rounding."""
 POUND_FORCE = float(constants.POUND * constants.GRAVITY)
+AS_ASKED = 0.01
+"""Share by which a still-air tension may miss the initial tension asked for before it is told; no gauge of the trade reads nearer."""
 SAID = 6
 """Cases told one by one before the rest is only named."""
 MOST_WINDS = 12
@@ -71,6 +73,7 @@ def warnings(
         *_checks(check),
         *_lifted(structure, lines, forces, feet),
         *_broken(cables),
+        *_not_as_asked(structure, forces),
         *_leaning(structure, lines, forces),
         *_branching(lines, verdicts),
         *structure.scenario.warnings,
@@ -174,6 +177,19 @@ def _broken(cables: Sequence[CableWorst]) -> list[str]:
         for c in cables
         if not math.isnan(c.factor) and c.factor < 1
     ]
+
+
+def _not_as_asked(structure: Structure, forces: Forces) -> list[str]:
+    """Initial tensions that the setting does not have, as where it has branched off the one they were found for."""
+    if structure.scenario.setting.plumb:
+        return []
+    out = []
+    for k, cable in enumerate(structure.scenario.cable):
+        got = float(forces.tension_anchor[0, k])
+        if cable.tension is not None and abs(got - cable.tension) > AS_ASKED * cable.tension:
+            out.append(f"{cable.name} {_newtons(got)} for {_newtons(cable.tension)}")
+    more = f" and {len(out) - SAID} more" if len(out) > SAID else ""
+    return [f"in still air the structure does not hold the initial tensions asked for: {'; '.join(out[:SAID])}{more}"] if out else []
 
 
 def _leaning(structure: Structure, lines: Sequence[CaseLine], forces: Forces) -> list[str]:
