@@ -152,6 +152,18 @@ def test_what_has_no_load_is_not_judged() -> None:
     assert {f.why for f in s.findings if f.quantity != "pull"} == {"no case has an equilibrium, so there is no load to judge"}
 
 
+def test_an_equilibrium_that_does_not_hold_is_not_judged() -> None:
+    """A mast too slender for its guys' pull, in still air: found, unstable, and nothing of it within or past."""
+    document = made.mast(30.0, rope={"rope": made.rope(strength=1600.0)})
+    document["spar"][0]["section"] = [made.tube(18.0, 0.025, 0.002)]
+    for guy in document["cable"]:
+        guy["tension"] = 3000.0
+    s = made.solved(document)
+    assert s.state == ("unstable", "none")
+    assert {f.verdict for f in s.findings} == {"not judged"}
+    assert {f.why for f in s.findings if f.quantity == "tension"} == {"no case stands"}
+
+
 def test_of_values_alike_but_for_rounding_the_first_in_the_file_is_named() -> None:
     """A mast of threefold symmetry in three winds of the same symmetry: every guy is as near its strength as the others."""
     s = made.solved(made.mast(10.0, 130.0, 250.0, rope={"rope": made.rope(strength=20e3)}))

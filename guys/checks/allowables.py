@@ -12,6 +12,7 @@ The demand is the greater of the listed cases and the refined peak over the full
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 from guys.results import AnchorWorst, CableWorst, Extreme, Finding, Verdict
 from guys.scenario import Scenario
@@ -37,6 +38,11 @@ def findings(
     out += [_anchor(scenario, a) for a in anchors]
     order = {"past": 0, "within": 1, "not judged": 2}
     return tuple(sorted(out, key=lambda f: (order[f.verdict], _reserve(f))))
+
+
+def unjudged(found: tuple[Finding, ...]) -> tuple[Finding, ...]:
+    """The findings where no case stands: what an equilibrium that does not hold bears says nothing of an allowable."""
+    return tuple(f if f.verdict == "not judged" else replace(f, factor=math.nan, verdict="not judged", why="no case stands") for f in found)
 
 
 def _reserve(finding: Finding) -> float:

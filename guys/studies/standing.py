@@ -123,6 +123,8 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
     slides = {s.name: worst.of("slide", k) for k, s in enumerate(scenario.spar)}
     leans = {s.name: worst.of("lean", k, windy=True) for k, s in enumerate(scenario.spar)}
     found = allowables.findings(scenario, cables, anchors, slides, leans)
+    if not ((listed.code == stability.STABLE) | listed.spins).any():
+        found = allowables.unjudged(found)
     check = _self_check(setting, listed, cables)
     return Solution(
         scenario=scenario,
