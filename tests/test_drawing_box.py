@@ -36,6 +36,13 @@ def test_findings_with_demand_and_capacity() -> None:
     assert hardest.startswith("cable 17 m E tension 7.35 kN / 23.0 kN, factor 3.13 (2 needed, default): within; wind from 95°")
 
 
+def test_of_findings_alike_but_for_rounding_the_first_is_named() -> None:
+    first = next(f for f in samples.solution(samples.FOUR).findings if f.quantity == "tension")
+    second = replace(first, thing="cable after it", factor=first.factor * (1.0 - 1e-12))
+    assert box.worst_of_each([first, second]) == [first]
+    assert box.worst_of_each([first, replace(second, factor=first.factor * 0.999)])[0].thing == "cable after it"
+
+
 def test_every_finding_past_is_named() -> None:
     solution = samples.solution(samples.TALL)
     past = words(solution)["Past"]

@@ -137,7 +137,8 @@ def worst_of_each(findings: Iterable[Finding]) -> list[Finding]:
 
 
 def _reserve(finding: Finding) -> float:
-    return finding.factor / finding.required if finding.required else finding.factor
+    """To eight digits: of what is alike but for rounding the first stands."""
+    return float(f"{finding.factor / finding.required if finding.required else finding.factor:.8g}")
 
 
 def _past(solution: Solution, tongue: Tongue) -> list[Entry]:

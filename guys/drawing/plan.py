@@ -247,7 +247,7 @@ def _governing_wind(page: Page, solution: Solution, on: PlanFrame, field: Field,
     winds = [(g, name) for g, name in pulls if isfinite(g.value) and isfinite(g.wind_from)]
     if not winds or max(p[0].value for p in pulls if isfinite(p[0].value)) > max(w[0].value for w in winds):
         return
-    top, name = max(winds, key=lambda w: w[0].value)
+    top, name = max(winds, key=lambda w: float(f"{w[0].value:.8g}"))  # of pulls alike but for rounding the first
     short = shortened(name, 34.0, style.BODY)
     words = Line(wind_words(solution, top.case, top.wind_from), colour=style.WIND, bold=True)
     lines = [words, Line(f"governs {short}: pull {tongue.say(force, top.value)}", colour=style.WIND)]
