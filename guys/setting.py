@@ -33,6 +33,7 @@ from guys.errors import Fault, ScenarioError
 from guys.loads import CaseLine, LoadCases, Placed, as_drawn, assemble, setting_line
 from guys.rotation import Array, cross, dot
 from guys.scenario import Scenario
+from guys.scenario.reader import fault_at
 from guys.structure import Structure
 
 MET = 1e-10
@@ -180,11 +181,12 @@ def _refuse_unmet(scenario: Scenario, asked: _Asked, measure: Array, met: NDArra
     for k in np.flatnonzero(~met):
         c = scenario.cable[asked.index[k]]
         least = float(measure[:, k].min() * asked.target[k])
+        how = "tight" if c.tight else "tension"
         text = (
             f'"{c.name}": {asked.target[k]:.3g} N cannot be met: the cable\'s own weight gives at least {least:.3g} N '
             "at its anchor end; give more"
         )
-        faults.append(Fault(scenario.path, None, None, "tension", text))
+        faults.append(fault_at(scenario, (*c.key, how), text))
     if faults:
         raise ScenarioError(faults)
 
@@ -365,7 +367,8 @@ def _not_met(scenario: Scenario, asked: _Asked) -> Fault:
         f"no still-air state was found that meets the initial tensions of {names} together: they do not balance; "
         "give tensions that balance at each level, or setting.plumb = true"
     )
-    return Fault(scenario.path, None, None, "tension", text)
+    first = scenario.cable[asked.index[0]]
+    return fault_at(scenario, (*first.key, "tight" if first.tight else "tension"), text)
 
 
 def _held_nodes(structure: Structure) -> list[tuple[int, int]]:

@@ -14,6 +14,7 @@ from toml_text import BOOM, MAST, changed, dumps, dumps_tables
 from guys import parse_scenario, read_scenario
 from guys.constants import air_density
 from guys.scenario import AnchorPoint, GroundFoot, HeelFoot, Rope, SparPoint, drawn
+from guys.scenario.reader import fault_at
 
 REPOSITORY = Path(__file__).parent.parent
 ROUNDING = 1e-15
@@ -212,3 +213,19 @@ def test_scenarios_are_frozen_and_can_be_sent_to_another_process() -> None:
     assert pickle.loads(pickle.dumps(scenario)) == scenario
     with pytest.raises(ValidationError):
         scenario.title = "other"  # type: ignore[misc]
+
+
+def test_a_fault_found_after_reading_stands_at_the_line_of_its_key(tmp_path: Path) -> None:
+    """And without a line once the file is no longer what was read, or where there is no file."""
+    file = tmp_path / "mast.toml"
+    text = dumps_tables(MAST)
+    file.write_text(text, encoding="utf-8")
+    scenario = read_scenario(file)
+    guy = scenario.cable[-1]
+    fault = fault_at(scenario, (*guy.key, "tension"), "too little")
+    line = text.splitlines()[(fault.line or 0) - 1]
+    assert line.startswith("tension")
+    assert str(fault).startswith(f"{file}:{fault.line}:1: {guy.key[0]}[{guy.key[1]}].tension: too little")
+    file.write_text("# changed since\n" + text, encoding="utf-8")
+    assert fault_at(scenario, (*guy.key, "tension"), "").line is None
+    assert fault_at(parse_scenario(text), (*guy.key, "tension"), "").line is None

@@ -231,6 +231,8 @@ class Cable(Model):
     """Just free of slack in the dead-load position."""
     level: str | None = None
     """The guy level it came from, None for a single cable."""
+    key: tuple[str | int, ...] = ()
+    """Where it stands in the file, such as ("guy_level", 0)."""
 
 
 class Rope(Model):

@@ -6,13 +6,14 @@ import hashlib
 import re
 import tomllib
 from collections.abc import Iterable, Iterator
+from contextlib import suppress
 from os import PathLike, fspath
 from typing import Any
 
 from guys.errors import Fault, ScenarioError
 from guys.scenario import drawn, frame, names, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
-from guys.scenario.keys import Finding, independent, placer, written
+from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
 from guys.scenario.quantity import shown
 
@@ -138,6 +139,17 @@ def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fa
     return sorted(faults, key=lambda fault: (fault.line or 0, fault.column or 0))
 
 
+def fault_at(scenario: Scenario, key: Key, message: str) -> Fault:
+    """A fault found after reading, with the line of its key where the file is still what was read."""
+    line, column = None, None
+    if scenario.path is not None:
+        with suppress(OSError, ValueError), open(scenario.path, "rb") as file:
+            content = file.read(LARGEST)
+            if hashlib.sha256(content).hexdigest() == scenario.sha256:
+                line, column = placer(content.decode("utf-8-sig"))(key)
+    return Fault(scenario.path, line, column, written(key), message)
+
+
 def _present(entries: Iterable[Any]) -> list[Any]:
     """The entries, none of which is missing once a file has no faults."""
     return [entry for entry in entries if entry is not None]
@@ -147,7 +159,8 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
     spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
     foot = drawn.foot(spars, next(iter(spars)))
     heights = [level["at"] for level in tables.document.get("guy_level", [])]
-    guys = [guy for entry, at in zip(_present(tables.guy_level), heights, strict=True) for guy in resolve.guys_of(entry, at)]
+    levels = zip(_present(tables.guy_level), heights, strict=True)
+    guys = [guy for index, (entry, at) in enumerate(levels) for guy in resolve.guys_of(index, entry, at)]
     setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
     assert setting is not None
     assert allowables is not None
@@ -158,7 +171,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         note=tables.note,
         spar=tuple(spars.values()),
         anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
-        cable=(*guys, *map(resolve.cable, _present(tables.cable))),
+        cable=(*guys, *(resolve.cable(index, entry) for index, entry in enumerate(_present(tables.cable)))),
         rope={name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
         setting=setting,

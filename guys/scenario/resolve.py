@@ -56,8 +56,8 @@ def anchor(entry: AnchorEntry, foot: drawn.Point) -> Anchor:
     return Anchor(name=entry.name, east=east, north=north, level=level, give=entry.give)
 
 
-def guys_of(entry: GuyLevel, at_text: str) -> Iterator[Cable]:
-    """The cables of a guy level; `at_text` is its height as written."""
+def guys_of(index: int, entry: GuyLevel, at_text: str) -> Iterator[Cable]:
+    """The cables of the guy level of that index; `at_text` is its height as written."""
     level = entry.name or " ".join(at_text.split())
     for name in entry.to:
         yield Cable(
@@ -69,11 +69,12 @@ def guys_of(entry: GuyLevel, at_text: str) -> Iterator[Cable]:
             length=entry.length,
             tight=bool(entry.tight),
             level=level,
+            key=("guy_level", index),
         )
 
 
-def cable(entry: CableEntry) -> Cable:
-    """A single cable."""
+def cable(index: int, entry: CableEntry) -> Cable:
+    """The single cable of that index."""
     return Cable(
         name=entry.name,
         from_=entry.from_,
@@ -82,6 +83,7 @@ def cable(entry: CableEntry) -> Cable:
         tension=entry.tension,
         length=entry.length,
         tight=bool(entry.tight),
+        key=("cable", index),
     )
 
 
