@@ -194,6 +194,17 @@ def test_initial_tensions_that_the_setting_does_not_hold_are_told() -> None:
     assert not warned(made.solved(made.mast(30.0)), "asked for")
 
 
+def test_a_plumb_setting_far_from_its_targets_is_told() -> None:
+    """One guy asked for five times what its neighbours are cannot stay so on a mast that stands as drawn."""
+    document = {**made.mast(), "setting": {"plumb": True}}
+    document["cable"][0]["tension"] = 5000.0
+    s = made.solved(document)
+    got = s.cables.tension_anchor[0, 0]
+    assert got < 2500.0
+    assert len(warned(s, "to stand as drawn", "for 5 kN (1124 lbf)")) == 1
+    assert not warned(made.solved({**made.mast(), "setting": {"plumb": True}}), "to stand as drawn")
+
+
 def test_falls_between_the_listed_directions_are_warned_about() -> None:
     """A leaning pylon without a forestay, listed only in winds that press it onto its backstays: from the east it would tip."""
     document = made.pylon(wind=made.wind(270.0, speed=30.0))
