@@ -144,6 +144,18 @@ def _sources(pair: Index, of: dict[tuple[int, int], int], free: Index) -> Index:
     return source
 
 
+def column_sources(pattern: Pattern, node: int, direction: int) -> Index:
+    """Where a column of the tangent stands in the blocks, flat, one index for every unknown: that of a direction of a node, held or not."""
+    pairs = len(pattern.pair) + 1
+    out = np.full(pattern.unknowns, pairs - 1, dtype=np.int64)
+    for row, (other, turned) in enumerate(pattern.free.tolist()):
+        at = pattern.of.get((max(other, node), min(other, node)))
+        if at is not None:
+            a, b = (turned, direction) if other >= node else (direction, turned)
+            out[row] = (a * 6 + b) * pairs + at
+    return out
+
+
 @dataclass(frozen=True)
 class Room:
     """Memory for the tangents of so many cases, used again at every step: fresh memory costs as much as filling it.

@@ -325,6 +325,31 @@ class Problem:
                 psi[:, node] = psi[:, carrier]
             u[:, node] = u[:, carrier] + psi[:, carrier] @ s.ride_arm[k] + turned(psi[:, carrier], self.ride_growth[:, k])
 
+    def spin_of_tilts(self, state: State, found: Evaluation) -> tuple[Array, Array]:
+        """What the last tangent leaves out at feet that do not spin: net forces change by (K - sum c a^T) d.
+
+        c, a : (case, unknown, 3 a foot)
+
+        Tilting such a foot also turns it back about its drawn axis t (`_unspin`), by a.d with a = (x'.t, y'.t)/(x'.x + y'.y) for the turned
+        axes x', y': c is the tangent's column of the held spin.  And the moment m the foot passes on about t does not follow the tilt, so
+        that turning about x changes the moment about y by m/2 and the other way round: K is the symmetric part.
+        """
+        s = self.structure
+        flat = self.room.blocks.reshape(36 * self.room.blocks.shape[2], self.cases)
+        whole = band.fold_gradient(self.pattern, found.gradient, self.arms(state))
+        c = np.zeros((self.cases, self.pattern.unknowns, 3 * len(s.unspun)))
+        a = np.zeros(c.shape)
+        for row, k in enumerate(s.unspun):
+            x, y, t = s.axes[k]
+            tilts, first = s.tilts[row], 3 * row
+            turned_x, turned_y = turned(state.psi[:, s.foot[k]], x), turned(state.psi[:, s.foot[k]], y)
+            c[:, :, first] = flat[s.spin_columns[row]].T
+            a[:, tilts, first] = -np.stack([turned_x @ t, turned_y @ t], axis=-1) / (turned_x @ x + turned_y @ y)[:, None]
+            half = 0.5 * (whole[:, s.foot[k], 3:] @ t)
+            c[:, tilts[0], first + 1] = c[:, tilts[1], first + 2] = 1.0
+            a[:, tilts[1], first + 1], a[:, tilts[0], first + 2] = -half, half
+        return c, a
+
     def _unspin(self, psi: Array) -> None:
         """Turn feet that do not spin back about their drawn axis, so that their rotation vector is square to it.
 

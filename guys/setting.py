@@ -109,19 +109,26 @@ class _Asked:
 
 
 def find(structure: Structure) -> Setting:
-    """The setting of a structure.  Raises ScenarioError where no still-air state meets a tension asked for."""
+    """The setting of a structure.
+
+    Raises ScenarioError where no still-air state meets a tension asked for; that is so too where the only one lies down, although with
+    the lengths that would give the tensions as drawn the structure stands.
+    """
     scenario = structure.scenario
     asked = _asked(scenario)
     length = np.array([c.length if c.length is not None else math.nan for c in scenario.cable])
     drawn = as_drawn(structure, np.nan_to_num(length, nan=1.0))
     loads = assemble(structure, [setting_line(scenario)], drawn)
     length[asked.index] = _first_lengths(structure, loads, asked)
-    problem = Problem(structure, loads, length)
+    first = problem = Problem(structure, loads, length)
     state = problem.drawn()
     if len(asked.index):
         search = _plumb if scenario.setting.plumb else _meet
         problem, state = search(problem, state, asked)
-    return Setting(problem.length, stability.settle(problem, state), problem)
+    judged = stability.settle(problem, state)
+    if stability.turned_over(problem, judged.state)[0] and stability.settle(first, first.drawn()).code[0] <= stability.NEUTRAL:
+        raise ScenarioError([_not_met(scenario, asked)])
+    return Setting(problem.length, judged, problem)
 
 
 def _asked(scenario: Scenario) -> _Asked:
@@ -213,6 +220,9 @@ def _rates(problem: Problem, state: State, asked: _Asked) -> _Rates:
     found = problem.evaluate(state)
     k_full = band.dense(problem.tangent(state, found)[0])
     k_full[np.diag_indices_from(k_full)] += stability.ZERO * problem.mass
+    if problem.structure.unspun:
+        c, a = problem.spin_of_tilts(state, found)
+        k_full -= c[0] @ a[0].T
     pushed, direct = _by_length(problem, state, found, asked)
     both = -np.linalg.solve(k_full, np.column_stack([pushed, found.residual[0]]))
     step, settle = both[:, :-1], both[:, -1]

@@ -36,7 +36,7 @@ ENOUGH = 1e-9
 ROUNDS = 120
 LEAST_DAMPING = 1e-9
 """mu never falls below this: a free spin then gets no wild step, and any other direction is slowed by less than 1e-9."""
-FIRST_DAMPING = 1e-2
+FIRST_DAMPING = 1e-6
 TURN_CAP = 0.35
 """[rad] greatest turn of a node in one step."""
 MOVE_CAP = 0.25
@@ -45,6 +45,10 @@ RAISES = 40
 """Times mu is raised tenfold: it then outweighs any tangent."""
 FALLS = 0.9
 """An out-of-balance above this share of the least so far has not fallen."""
+SPIN_AFTER = 4
+"""Rounds after which the step knows that a pinned foot turns back when it tilts: most cases have ended by then, twisted ones need it."""
+NEAR_SINGULAR = 0.1
+"""Determinant of Woodbury's small matrix below which its correction is not trusted."""
 STALLED = 3
 """Rounds without a fall of the out-of-balance, once below ENOUGH, after which rounding has been reached."""
 
@@ -84,7 +88,7 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
         np.ones(cases), np.zeros((cases, problem.pattern.unknowns)),
     )  # fmt: skip
     open_, part, here = np.arange(cases), problem, state
-    for _ in range(rounds):
+    for round_ in range(rounds):
         found = part.evaluate(here)
         done = _judge(seen, open_, found.error)
         if stop is not None:
@@ -97,6 +101,8 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
             break
         tangent = part.tangent(here, found)
         step, seen.damping[open_] = damped_step(tangent, found.residual, part.mass, seen.damping[open_], part.room.factors)
+        if round_ >= SPIN_AFTER and part.structure.unspun:
+            step = with_spins(part.room.factors, step, *part.spin_of_tilts(here, found))
         here = part.advance(here, found, _capped(part, here, step, seen, open_))
         seen.rounds[open_[~done]] += 1
         if done.any():
@@ -146,6 +152,16 @@ def damped_step(k_band: Array, residual: Array, mass: Array, damping: Array, roo
         missing = missing[~definite]
     next_mu = np.where(mu > LEAST_DAMPING, mu / 5, mu)
     return band.solve(factors, -residual), np.where(next_mu < FIRST_DAMPING / 20, LEAST_DAMPING, next_mu)
+
+
+def with_spins(factors: Array, step: Array, c: Array, a: Array) -> Array:
+    """The step of K - sum c a^T, given that of K and its factors (Woodbury); that of K where the small matrix is near singular."""
+    z = band.solve(factors, c)
+    small = np.eye(c.shape[2]) - np.swapaxes(a, 1, 2) @ z
+    known = np.abs(np.linalg.det(small)) > NEAR_SINGULAR
+    small[~known] = np.eye(c.shape[2])
+    share = np.linalg.solve(small, np.swapaxes(a, 1, 2) @ step[..., None])
+    return np.asarray(np.where(known[:, None], step + (z @ share)[..., 0], step))
 
 
 def _factor_shifted(k_band: Array, mu: Array, mass: Array) -> tuple[Array, NDArray[np.bool_]]:

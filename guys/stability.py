@@ -44,7 +44,7 @@ FIRST_STEP = 0.25
 LEAST_STEP = 1 / 256
 """Steps of a path, of the whole load; below the least the path has ended."""
 CASE_ROUNDS = 60
-"""Rounds for a case from the setting: what takes longer is found quicker along its path."""
+"""Rounds for a case from the setting, or pushed aside: what takes longer is found quicker along its path."""
 PATH_ROUNDS = 25
 """Rounds of the solver for a step of a path, which starts close to its answer."""
 FINER = 1 / 16
@@ -179,7 +179,7 @@ def _push(problem: Problem, judged: Judged, cases: Index) -> None:
         both, there = problem.take(pairs), judged.state.take(pairs)
         way = np.tile([amplitude, -amplitude], len(cases))[:, None, None] * problem.structure.height
         step = band.pick(both.pattern, way * np.array([shape[int(c)] for c in pairs]))
-        out = solver.solve(both, both.advance(there, both.evaluate(there), step), turned_over, PATH_ROUNDS)
+        out = solver.solve(both, both.advance(there, both.evaluate(there), step), turned_over, CASE_ROUNDS)
         good = out.converged & ~out.stopped & (turn_between(both, out.state, there) < 2 * FAR)
         held = np.flatnonzero(good)
         if len(held):

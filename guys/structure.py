@@ -20,7 +20,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import mesh
-from guys.band import Frames, Pattern, Rides, lay_out
+from guys.band import Frames, Pattern, Rides, column_sources, lay_out
 from guys.beam import Rods
 from guys.constants import STANDARD_GRAVITY
 from guys.joint import Joints
@@ -171,6 +171,17 @@ class Structure:
         rows = [e.i, e.j, e.j, self.cables.b.node, a, np.maximum(a, b), m, n, np.maximum(m, n)]
         columns = [e.i, e.j, e.i, self.cables.b.node, a, np.minimum(a, b), m, n, np.minimum(m, n)]
         return lay_out(rows, columns, self.held, self.rides, self.frames)
+
+    @cached_property
+    def spin_columns(self) -> Index:
+        """(unspun, unknown) where the tangent's columns of the held spins stand in its blocks."""
+        return np.array([column_sources(self.pattern, int(self.foot[k]), 5) for k in self.unspun], dtype=np.int64)
+
+    @cached_property
+    def tilts(self) -> Index:
+        """(unspun, 2) the unknowns that tilt the feet that do not spin, about the axes x and y of their spars."""
+        number = {(int(n), int(d)): row for row, (n, d) in enumerate(self.pattern.free)}
+        return np.array([[number[int(self.foot[k]), d] for d in (3, 4)] for k in self.unspun], dtype=np.int64).reshape(-1, 2)
 
 
 def axis_of(spar: Spar) -> Array:

@@ -10,11 +10,16 @@ os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 
 import numpy as np  # noqa: E402
 import pytest  # noqa: E402
-from hypothesis import HealthCheck, settings  # noqa: E402
+from hypothesis import HealthCheck, Phase, settings  # noqa: E402
 
 SEED = 20_240_611
 
-settings.register_profile("fixed", derandomize=True, deadline=None, database=None, suppress_health_check=[HealthCheck.too_slow])
+PHASES = (Phase.explicit, Phase.generate, Phase.target)
+"""Without shrinking: of a whole structure it takes minutes and seldom says more than the structure."""
+
+settings.register_profile(
+    "fixed", derandomize=True, deadline=None, database=None, phases=PHASES, suppress_health_check=[HealthCheck.too_slow]
+)
 settings.load_profile("fixed")
 
 
