@@ -1,10 +1,10 @@
 """What kind of equilibrium a state is, and what becomes of a case that has none.
 
-Converged is not stable.  With the tangent K and the scale M of `Problem.mass`, three banded factorisations tell
+Converged is not stable.  With the tangent K and the scale M of `Problem.mass`, one or two banded factorisations tell
 
     K - zM positive definite           stable       (every eigenvalue of K x = lam M x above z)
     only K + zM positive definite      neutral      (a motion that costs nothing, |lam| <= z)
-    neither                            unstable     (some lam < -z; their number is that of the unstable modes)
+    neither                            unstable     (some lam < -z)
 
 with z = `ZERO`.  An unstable state is pushed along its lowest mode, both ways, and solved again: where it comes to rest in a stable
 state nearby, the case branches and stands there.
