@@ -54,7 +54,7 @@ SOFT = 0.3
 FREE = 3
 """Motions that a spar on its foot may have free: sway both ways, and spin."""
 STABLE, NEUTRAL, UNSTABLE, NONE, FAILED = range(5)
-"""Codes of a case; FAILED: the solver did not converge although the path is stable up to the full load."""
+"""Codes of a case; FAILED: the solver did not converge, and along the path, where one was followed, the structure was still stiff."""
 
 
 @dataclass(frozen=True)
@@ -156,7 +156,7 @@ def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_s
 
 
 def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judged:
-    """Solve from `start`, classify, and push what is unstable; cases not found are NONE."""
+    """Solve from `start`, classify, and push what is unstable; cases that turn over are NONE, those not found otherwise FAILED."""
     out = solver.solve(problem, start, turned_over, rounds)
     code = np.full(problem.cases, NONE)
     found = np.flatnonzero(out.converged & ~out.stopped)
@@ -164,6 +164,7 @@ def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judge
         code[found] = classify(problem.take(found), out.state.take(found))
     no, nowhere = np.zeros(problem.cases, bool), np.full(problem.cases, np.nan)
     stuck = ~out.converged & ~out.stopped
+    code[stuck] = FAILED
     judged = Judged(out.state, code, out.error, out.rounds, nowhere, no, stuck, no.copy(), {}, {})
     _push(problem, judged, np.flatnonzero(code == UNSTABLE))
     return judged

@@ -170,7 +170,7 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
     code = int(judged.code[k])
     if code <= stability.NEUTRAL:
         return None
-    if code == stability.FAILED or (code == stability.NONE and judged.stuck[k]):
+    if code == stability.FAILED:
         return "the solver failed on this case; this is a fault of the program, not a statement about the structure"
     if judged.drifts[k]:
         motion = f"the load drives a motion that nothing resists{_ball_words(problem)}"
