@@ -46,6 +46,8 @@ RAISES = 40
 """Times mu is raised tenfold: it then outweighs any tangent."""
 FALLS = 0.9
 """An out-of-balance above this share of the least so far has not fallen."""
+LEAST_REACH = 1 / 8
+"""Share of the caps to which reversing steps halve them at the most: with less a swinging boom was held where it was."""
 SPIN_AFTER = 4
 """Rounds after which the step knows that a pinned foot turns back when it tilts: most cases have ended by then, twisted ones need it."""
 NEAR_SINGULAR = 0.1
@@ -121,7 +123,7 @@ def _capped(part: Problem, here: State, step: Array, seen: _Progress, open_: Ind
     full caps that would go on for ever.
     """
     same = np.einsum("cu,cu,u->c", step, seen.last[open_], part.mass)
-    reach = np.minimum(1.0, seen.reach[open_] * np.where(same < 0, 0.5, np.where(same > 0, 1.25, 1.0)))
+    reach = np.clip(seen.reach[open_] * np.where(same < 0, 0.5, np.where(same > 0, 1.25, 1.0)), LEAST_REACH, 1.0)
     out = part.limited(here, step, TURN_CAP * reach, MOVE_CAP * part.structure.height * reach)
     short = np.abs(out).max(axis=1, initial=0.0) < np.abs(step).max(axis=1, initial=0.0)
     seen.reach[open_], seen.last[open_] = reach, np.where(short[:, None], out, 0.0)
