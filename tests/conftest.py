@@ -11,11 +11,16 @@ os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 import numpy as np  # noqa: E402
 import pytest  # noqa: E402
 from hypothesis import HealthCheck, Phase, settings  # noqa: E402
+from hypothesis.internal.conjecture import providers  # noqa: E402
 
 SEED = 20_240_611
 
 PHASES = (Phase.explicit, Phase.generate, Phase.target)
 """Without shrinking: of a whole structure it takes minutes and seldom says more than the structure."""
+
+if hasattr(providers, "_get_local_constants"):
+    providers._get_local_constants = lambda: providers._local_constants
+    """Numbers that stand in the modules loaded so far would else be tried too: then no two orders of tests have the same examples."""
 
 settings.register_profile(
     "fixed", derandomize=True, deadline=None, database=None, phases=PHASES, suppress_health_check=[HealthCheck.too_slow]
