@@ -10,6 +10,9 @@ step that turns a nearly inextensible member stretches it in second order, so an
 geometric stiffness takes the axial force predicted from the step (`State.axial`), steps are capped, and the end of the iteration is
 judged (see `guys.stability`).
 
+Feet that do not spin have no potential; from round `SPIN_AFTER` on the step is that of the exact, unsymmetric tangent K - sum c a^T
+(`Problem.spin_of_tilts`), by Woodbury's formula from the same factor.
+
 Every case runs for itself: it leaves the batch when its out-of-balance is below `TARGET` or no longer falls near it, and so gives
 the same numbers alone or in company.
 
@@ -38,6 +41,7 @@ ROUNDS = 400
 LEAST_DAMPING = 1e-9
 """mu never falls below this: a free spin then gets no wild step, and any other direction is slowed by less than 1e-9."""
 FIRST_DAMPING = 1e-6
+"""mu where the least does not do: a mast bowed by its own thrust may turn its bow almost freely, and more damping would hold it there."""
 TURN_CAP = 0.35
 """[rad] greatest turn of a node in one step."""
 MOVE_CAP = 0.25
@@ -117,7 +121,7 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
 
 
 def _capped(part: Problem, here: State, step: Array, seen: _Progress, open_: Index) -> Array:
-    """The step within the caps of each case, which halve where it would undo a capped one.
+    """The step within the caps of each case, which halve, down to `LEAST_REACH`, where it would undo a capped one.
 
     A slack cable pushes nothing back, so a step to where it is taut goes to the cap, and the one back may overshoot into slackness: at
     full caps that would go on for ever.
