@@ -9,7 +9,8 @@ from __future__ import annotations
 import io
 import os
 import sys
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
+from typing import Any
 
 import click
 
@@ -20,6 +21,7 @@ UNAVAILABLE = ("plumb", "size", "setout", "compare", "search", "limit", "lost", 
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
+Command = Callable[..., Any]
 TRACEBACK = "GUYS_TRACEBACK"
 """Environment variable: set to anything, an internal fault shows where it happened."""
 
@@ -45,6 +47,19 @@ def _refusing(name: str) -> click.Command:
     words = click.Argument(["words"], nargs=-1, type=click.UNPROCESSED)
     settings = {"ignore_unknown_options": True, "help_option_names": []}
     return click.Command(name, callback=refuse, params=[words], context_settings=settings, hidden=True)
+
+
+def computing(files: str, out_required: bool = False) -> Callable[[Command], Command]:
+    """What every command that computes takes: the scenario FILE, --out DIR for its `files`, --json and --units."""
+
+    def decorate(command: Command) -> Command:
+        systems = click.Choice(["SI", "US", "both"])
+        units = click.option("--units", type=systems, default="SI", show_default=True, help="Units of what is shown.")
+        as_json = click.option("--json", "as_json", is_flag=True, help="Print the result as JSON in place of the table.")
+        out = click.option("--out", required=out_required, metavar="DIR", help=f"Directory for {files}.")
+        return click.argument("file")(out(as_json(units(command))))
+
+    return decorate
 
 
 @click.group(cls=Commands, context_settings={"help_option_names": ["-h", "--help"]})
@@ -79,10 +94,7 @@ def validate(file: str) -> None:
 
 
 @commands.command()
-@click.argument("file")
-@click.option("--out", required=True, metavar="DIR", help="Directory for result.json, anchors.csv, cables.csv and the sheet.")
-@click.option("--json", "as_json", is_flag=True, help="Print the result as JSON in place of the table.")
-@click.option("--units", type=click.Choice(["SI", "US", "both"]), default="SI", show_default=True, help="Units of the sheet and the table.")
+@computing("result.json, anchors.csv, cables.csv and the sheet", out_required=True)
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
 @click.option("--look", metavar="BEARING", help='Bearing the elevation looks toward, such as "45 deg"; left out: the one that shows most.')
 def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None) -> int:
@@ -91,14 +103,14 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
     Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past its allowable; 4 some case is
     unstable, neutral or without an equilibrium. With 3 and 4 every file is still written.
     """
-    from guys import doors
+    from guys.doors.solve import solve_command
     from guys.units import parse
 
     try:
         toward = None if look is None else parse(look, "angle")
     except GuysError as error:
         raise click.BadParameter(str(error), param_hint="--look") from error
-    return doors.solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
+    return solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
 
 
 @commands.command()

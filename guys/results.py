@@ -159,7 +159,7 @@ class FootWorst:
 
 @dataclass(frozen=True)
 class Finding:
-    """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged"."""
+    """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged".  source : of the capacity."""
 
     thing: str
     quantity: str
@@ -173,6 +173,7 @@ class Finding:
     wind_from: float
     why: str
     default: bool = False
+    source: str = ""
 
 
 @dataclass(frozen=True)

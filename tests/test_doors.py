@@ -11,7 +11,9 @@ from pathlib import Path
 import pytest
 import scenarios_made as made
 
-from guys import cli, doors
+from guys import cli
+from guys.doors import common
+from guys.doors import solve as door
 from guys.errors import OutputError, ScenarioError
 from guys.exchange import files
 
@@ -25,7 +27,7 @@ def stored(folder: Path, document: made.Document) -> str:
 
 
 def solve(tmp_path: Path, document: made.Document, as_json: bool = False) -> int:
-    return doors.solve_command(stored(tmp_path, document), str(tmp_path / "out"), as_json)
+    return door.solve_command(stored(tmp_path, document), str(tmp_path / "out"), as_json)
 
 
 def left_in(folder: Path) -> list[str]:
@@ -69,15 +71,15 @@ def test_a_case_that_falls_is_4_and_still_writes_every_file(tmp_path: Path) -> N
 def test_exit_status_of_every_verdict() -> None:
     """4 goes before 3, 1 before both; a free spin of a ball base is not held against it, any other free motion is."""
     within, past = made.solved(made.mast()), made.solved(made.mast(rope={"rope": made.rope(strength=2900.0)}))
-    assert [doors.exit_status(s) for s in (within, past)] == [0, 3]
-    assert doors.exit_status(made.solved(made.losing())) == 4
-    assert doors.exit_status(replace(past, unsettled=(False, True))) == 4
-    assert doors.exit_status(replace(past, unsettled=(False, True), failed=True)) == 1
-    assert doors.exit_status(replace(within, check=replace(within.check, balance=1.1e-9))) == 1
-    assert doors.exit_status(replace(within, check=replace(within.check, balance=0.9e-9))) == 0
-    assert doors.exit_status(made.solved(made.mast(base="ball"))) == 0
+    assert [common.exit_status(s) for s in (within, past)] == [0, 3]
+    assert common.exit_status(made.solved(made.losing())) == 4
+    assert common.exit_status(replace(past, unsettled=(False, True))) == 4
+    assert common.exit_status(replace(past, unsettled=(False, True), failed=True)) == 1
+    assert common.exit_status(replace(within, check=replace(within.check, balance=1.1e-9))) == 1
+    assert common.exit_status(replace(within, check=replace(within.check, balance=0.9e-9))) == 0
+    assert common.exit_status(made.solved(made.mast(base="ball"))) == 0
     free = made.stayed(made.spar(rigid=True, section=[made.weightless(10.0)]), 0.0, 120.0, 240.0, length=13.0, straight=True)
-    assert doors.exit_status(made.solved(free)) == 4
+    assert common.exit_status(made.solved(free)) == 4
 
 
 @pytest.mark.parametrize("spoil", ["unknown key", "no unit", "unmet tension", "nothing there"])
@@ -142,7 +144,7 @@ def test_a_failed_run_leaves_what_was_there(
         (out / name).write_text(f"old {name}", encoding="utf-8")
     Disk(monkeypatch, after, failure)
     with pytest.raises(seen) as caught:
-        doors.write(made.solved(made.mast()), out, "SI", "A4", None)
+        door.write(made.solved(made.mast()), out, "SI", "A4", None)
     monkeypatch.undo()
     assert left_in(out) == FILES
     assert {name: (out / name).read_text(encoding="utf-8") for name in FILES} == {name: f"old {name}" for name in FILES}
@@ -154,24 +156,24 @@ def test_a_fault_while_the_sheet_is_drawn_writes_nothing(tmp_path: Path, monkeyp
     def broken(*_: object, **__: object) -> bytes:
         raise RuntimeError("no such luck")
 
-    monkeypatch.setattr(doors, "figure_bytes", broken)
+    monkeypatch.setattr(door, "figure_bytes", broken)
     with pytest.raises(RuntimeError, match="no such luck"):
-        doors.write(made.solved(made.mast()), tmp_path / "out", "SI", "A4", None)
+        door.write(made.solved(made.mast()), tmp_path / "out", "SI", "A4", None)
     assert left_in(tmp_path / "out") == []
 
 
 def test_a_directory_that_cannot_be_made_is_named(tmp_path: Path) -> None:
     (tmp_path / "taken").write_text("a file", encoding="utf-8")
     with pytest.raises(OutputError, match="taken"):
-        doors.write(made.solved(made.mast()), tmp_path / "taken" / "out", "SI", "A4", None)
+        door.write(made.solved(made.mast()), tmp_path / "taken" / "out", "SI", "A4", None)
     with pytest.raises(OutputError, match="taken: cannot be written: a file has that name, where a directory is needed"):
-        doors.write(made.solved(made.mast()), tmp_path / "taken", "SI", "A4", None)
+        door.write(made.solved(made.mast()), tmp_path / "taken", "SI", "A4", None)
     assert OutputError("x", "y").exit_status != 0
 
 
 def test_files_are_the_same_bytes_each_time(tmp_path: Path) -> None:
     for folder in ("one", "two"):
-        doors.write(made.solved(made.mast()), tmp_path / folder, "both", "letter", 0.5)
+        door.write(made.solved(made.mast()), tmp_path / folder, "both", "letter", 0.5)
     for name in FILES:
         assert (tmp_path / "one" / name).read_bytes() == (tmp_path / "two" / name).read_bytes(), name
 
@@ -179,6 +181,6 @@ def test_files_are_the_same_bytes_each_time(tmp_path: Path) -> None:
 def test_replaced_is_the_way_every_file_goes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     seen: list[str] = []
     real = files.replaced
-    monkeypatch.setattr(doors, "replaced", lambda path: (seen.append(Path(path).name), real(path))[1])
-    doors.write(made.solved(made.mast()), tmp_path, "SI", "A4", None)
+    monkeypatch.setattr(common, "replaced", lambda path: (seen.append(Path(path).name), real(path))[1])
+    door.write(made.solved(made.mast()), tmp_path, "SI", "A4", None)
     assert sorted(seen) == FILES == left_in(tmp_path)

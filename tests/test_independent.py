@@ -16,7 +16,8 @@ from typing import Any
 import numpy as np
 import pytest
 
-from guys import Solution, doors, read_scenario, solve
+from guys import Solution, read_scenario, solve
+from guys.doors import common
 
 FOLDER = Path(__file__).parent / "independent"
 EXPECTED: dict[str, Any] = json.loads((FOLDER / "expected.json").read_text(encoding="utf-8"))["scenarios"]
@@ -61,7 +62,7 @@ def greatest(case: dict[str, Any]) -> float:
 
 @pytest.mark.parametrize("name", NAMES)
 def test_exit_status_and_states(name: str) -> None:
-    assert doors.exit_status(solved(name)) in EXPECTED[name]["exit"]
+    assert common.exit_status(solved(name)) in EXPECTED[name]["exit"]
     for k in range(len(EXPECTED[name]["cases"])):
         theirs, ours, row = both(name, k)
         assert ours.state[row] in theirs["state"]

@@ -198,6 +198,7 @@ def _finding(f: Finding) -> dict[str, Any]:
         "wind_from_deg": bearing(f.wind_from),
         "why": f.why,
         "allowable_is_default": f.default,
+        "source": f.source,
     }
 
 

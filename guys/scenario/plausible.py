@@ -156,7 +156,7 @@ def _cables(scenario: Scenario) -> Iterator[str]:
 def _pull(what: str, cable: Cable, scenario: Scenario) -> Iterator[str]:
     strength = scenario.rope[cable.rope].strength
     if cable.tension is not None and strength is not None and cable.tension > 0.4 * strength:
-        share = f"{100 * cable.tension / strength:.0f} % of the strength of rope \"{cable.rope}\""
+        share = f'{100 * cable.tension / strength:.0f} % of the strength of rope "{cable.rope}"'
         yield f"{what}, tension: {units.both(cable.tension, 'force')} is {share}"
 
 

@@ -98,9 +98,7 @@ def _fitting(fitting: Fitting, key: Key, windy: CaseEntry | None, icy: CaseEntry
     if icy and not only_load:
         wanted = ("iced_mass",) if fitting.area is None else ("iced_mass", "iced_area")
         causes = ((*key, "area"), (*key, "mass"))
-        yield from (
-            Finding((*key, name), f"missing; {_has(icy, 'ice')}", causes) for name in wanted if getattr(fitting, name) is None
-        )
+        yield from (Finding((*key, name), f"missing; {_has(icy, 'ice')}", causes) for name in wanted if getattr(fitting, name) is None)
 
 
 def _has(case: CaseEntry, what: str) -> str:
@@ -122,5 +120,5 @@ def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
         if name in used and windy and catenary and rope.drag is None:
             yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}", (("analysis",),))
         if name in used and warm and rope.expansion is None:
-            text = f"missing; case \"{clipped(warm.name)}\" is not at the setting's temperature; give expansion, such as \"12e-6 1/K\""
+            text = f'missing; case "{clipped(warm.name)}" is not at the setting\'s temperature; give expansion, such as "12e-6 1/K"'
             yield Finding((*key, "expansion"), text, (("setting",), ("case",)))

@@ -11,6 +11,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import band, recovery, stability
+from guys.checks import demands
+from guys.checks.demands import Demands
 from guys.equilibrium import Problem, State
 from guys.loads import CaseLine
 from guys.results import SparLine
@@ -35,7 +37,8 @@ class Batch:
 
     code : (case,) of `guys.stability`;  error, reference, rounds, lost_at, balance : (case,);  reason, note : (case,) words
     branched : (case,) stands off its straight branch;  spins : (case,) neutral, but only by the free spin of ball-based spars
-    forces : of every case, NaN where there is no equilibrium;  mirror : forces of the other state of branched cases, mirror_lines theirs
+    forces, demands : of every case, NaN where there is no equilibrium
+    mirror, mirror_demands : of the other state of branched cases, mirror_lines theirs
     spars, curves : with detail only
     """
 
@@ -51,7 +54,9 @@ class Batch:
     branched: NDArray[np.bool_]
     spins: NDArray[np.bool_]
     forces: recovery.Forces
+    demands: Demands
     mirror: recovery.Forces | None
+    mirror_demands: Demands | None
     mirror_lines: tuple[CaseLine, ...]
     spars: tuple[SparLine, ...]
     curves: Array
@@ -61,6 +66,12 @@ class Batch:
         """Cases with an equilibrium, be it stable or not."""
         return np.asarray(self.code <= stability.UNSTABLE)
 
+    def judged(self) -> tuple[tuple[CaseLine, ...], Demands]:
+        """Lines and demands of every state found, mirror states after the rest."""
+        if self.mirror_demands is None:
+            return self.lines, self.demands
+        return self.lines + self.mirror_lines, demands.join([self.demands, self.mirror_demands])
+
     def take(self, rows: NDArray[np.int64]) -> Batch:
         """The cases `rows` without detail; mirror states stay, all of them."""
         kept: dict[str, Any] = {
@@ -68,7 +79,7 @@ class Batch:
         }
         kept |= {n: tuple(getattr(self, n)[k] for k in rows) for n in ("lines", "reason", "note")}
         forces = recovery.Forces(**{f.name: getattr(self.forces, f.name)[rows] for f in fields(recovery.Forces)})
-        return replace(self, **kept, forces=forces, spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
+        return replace(self, **kept, forces=forces, demands=self.demands.take(rows), spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
 
 
 def solve_lines(setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
@@ -89,11 +100,13 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
     forces = recovery.forces(problem, judged.state, found)
     gone = np.flatnonzero(judged.code >= stability.NONE)
     mirrored = sorted(judged.mirror)
-    mirror = None
+    mirror, mirror_demands = None, None
     if mirrored:
         part = problem.take(np.array(mirrored))
         other = State(*(np.concatenate([getattr(judged.mirror[k], f) for k in mirrored]) for f in ("u", "psi", "tension", "axial")))
-        mirror = recovery.forces(part, other, part.evaluate(other))
+        again = part.evaluate(other)
+        mirror = recovery.forces(part, other, again)
+        mirror_demands = demands.of(part, other, again, mirror)
     balance = recovery.whole_balance(problem, judged.state, found, forces)
     balance[gone] = np.nan
     notes = [_note(problem, judged, k) for k in range(problem.cases)]
@@ -113,7 +126,9 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
         branched=judged.branched & (judged.code <= stability.NEUTRAL),
         spins=np.array([spins for _, spins in notes]),
         forces=forces.blank(gone),
+        demands=demands.of(problem, judged.state, found, forces).blank(gone),
         mirror=mirror,
+        mirror_demands=mirror_demands,
         mirror_lines=tuple(problem.loads.lines[k] for k in mirrored),
         spars=tuple(_blank(s, gone) for s in spars),
         curves=curves,
@@ -129,6 +144,7 @@ def _blank(spar: SparLine, gone: NDArray[np.int64]) -> SparLine:
 def join(parts: Sequence[Batch]) -> Batch:
     """Batches one after another."""
     mirrors = [p.mirror for p in parts if p.mirror is not None]
+    mirror_demands = [p.mirror_demands for p in parts if p.mirror_demands is not None]
 
     def spar(k: int) -> SparLine:
         first = parts[0].spars[k]
@@ -153,7 +169,9 @@ def join(parts: Sequence[Batch]) -> Batch:
         branched=together("branched"),
         spins=together("spins"),
         forces=recovery.join([p.forces for p in parts]),
+        demands=demands.join([p.demands for p in parts]),
         mirror=recovery.join(mirrors) if mirrors else None,
+        mirror_demands=demands.join(mirror_demands) if mirror_demands else None,
         mirror_lines=tuple(x for p in parts for x in p.mirror_lines),
         spars=tuple(spar(k) for k in range(len(parts[0].spars))),
         curves=together("curves"),

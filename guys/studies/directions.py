@@ -57,7 +57,7 @@ def _with_wind(batch: Batch) -> Batch:
 
 def _worth_trying(batch: Batch, templates: Sequence[CaseLine]) -> list[float]:
     """Bearings where some measure of some case may be greater than at all those solved for."""
-    values: Array = measures(batch.forces).joined()
+    values: Array = np.concatenate([measures(batch.forces).joined(), batch.demands.use], axis=1)
     names = np.array([line.name for line in batch.lines])
     bearing = np.array([line.wind_from for line in batch.lines])
     known = np.unique(bearing).tolist()

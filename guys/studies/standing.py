@@ -12,7 +12,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from guys import recovery, stability
-from guys.checks import alarms, allowables, extremes, resolve
+from guys.checks import alarms, allowables, demands, extremes, resolve
 from guys.loads import CaseLine, lines_of
 from guys.results import (
     AnchorPulls,
@@ -92,14 +92,9 @@ class _Worst:
     swept: extremes.Measures
     swept_lines: tuple[CaseLine, ...]
 
-    def of(self, group: str, item: int, windy: bool = False) -> Extreme:
-        """Greatest value of one item; `windy`: only in cases with wind."""
+    def of(self, group: str, item: int) -> Extreme:
+        """Greatest value of one item."""
         a, b = getattr(self.listed, group)[:, item], getattr(self.swept, group)[:, item]
-        if windy:
-            a, b = (
-                np.where([math.isnan(line.wind_from) for line in lines], np.nan, x)
-                for x, lines in ((a, self.listed_lines), (b, self.swept_lines))
-            )
         return extremes.extreme(a, self.listed_lines, b, self.swept_lines)
 
 
@@ -120,9 +115,7 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         for k, a in enumerate(scenario.anchor)
     )
     feet = tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar)))
-    slides = {s.name: worst.of("slide", k) for k, s in enumerate(scenario.spar)}
-    leans = {s.name: worst.of("lean", k, windy=True) for k, s in enumerate(scenario.spar)}
-    found = allowables.findings(scenario, cables, anchors, slides, leans)
+    found = allowables.findings(*_everything_judged(listed, swept))
     if not ((listed.code == stability.STABLE) | listed.spins).any():
         found = allowables.unjudged(found)
     check = _self_check(setting, listed, cables)
@@ -156,6 +149,12 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
     )
+
+
+def _everything_judged(listed: Batch, swept: Batch | None) -> tuple[demands.Demands, tuple[CaseLine, ...]]:
+    """Demands and lines of the listed cases and of all winds solved for."""
+    parts = [batch.judged() for batch in (listed, swept) if batch is not None]
+    return demands.join([d for _, d in parts]), tuple(line for lines, _ in parts for line in lines)
 
 
 def _verdicts(listed: Batch) -> alarms.Verdicts:
