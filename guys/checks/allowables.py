@@ -53,11 +53,11 @@ def _finding(item: Item, demands: Demands, use: Array, k: int, lines: Sequence[C
             "not judged", "", math.nan, item.lacking if lacking else NO_LOAD, item.default, item.source,
         )  # fmt: skip
     row, first = governing(score)
-    factor = float(demands.factor[row, k])
+    demand, capacity, required, factor = (float(a[row, k]) for a in (demands.demand, demands.capacity, demands.required, demands.factor))
+    line, why = lines[first], item.lacking if math.isnan(factor) else item.why
     return Finding(
-        item.thing, item.quantity, float(demands.demand[row, k]), float(demands.capacity[row, k]), item.unit, float(demands.required[row, k]),
-        factor, judge(factor, float(demands.required[row, k])), lines[first].name, lines[first].wind_from,
-        item.lacking if math.isnan(factor) else item.why, item.default, item.source,
+        item.thing, item.quantity, demand, capacity, item.unit, required, factor, judge(factor, required), line.name, line.wind_from, why,
+        item.default, item.source,
     )  # fmt: skip
 
 
