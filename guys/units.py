@@ -178,6 +178,12 @@ def convert(value: float, unit: str) -> float:
     return value / float(known.factor) - float(known.zero)
 
 
+def to_si(number: float, unit: str) -> float:
+    """A number of the unit named, in SI: `convert` the other way."""
+    known = UNITS[unit]
+    return (number + float(known.zero)) * float(known.factor)
+
+
 def show(value: float, unit: str, digits: int = 4) -> str:
     """An SI value written in the unit named, such as ``18 m``."""
     return f"{_rounded(convert(value, unit), digits)} {unit}"

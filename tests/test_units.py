@@ -157,6 +157,7 @@ def test_a_number_comes_back_from_its_text(number: float, name: str) -> None:
     )
     scale = abs(number) + float(unit.zero)
     assert units.convert(value, name) == pytest.approx(number, rel=ROUNDING, abs=scale * ROUNDING)
+    assert units.to_si(number, name) == pytest.approx(value, rel=ROUNDING, abs=scale * ROUNDING)
 
 
 @given(st.integers(0, 500), st.integers(0, 11), st.integers(0, 63))
