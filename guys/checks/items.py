@@ -1,0 +1,85 @@
+"""What is judged, as columns: demand, capacity and the factor required of every item, case by case.
+
+    factor = capacity / demand        use = required / factor        past its allowable: use > 1
+
+Each kind of thing judged has a module beside this one, whose function makes its columns from solved cases; `guys.checks.demands` puts them
+side by side.  Capacity may differ from case to case, as that of a block does with the pull's direction.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys.rotation import Array
+
+
+@dataclass(frozen=True)
+class Item:
+    """One thing judged.
+
+    thing, quantity, unit : as findings show them;  why : how the factor is formed;  lacking : why it is not judged where it is not
+    source : where the capacity comes from;  default : the factor required is not the user's;  if_loaded : no finding where no case loads it
+    """
+
+    thing: str
+    quantity: str
+    unit: str
+    why: str
+    lacking: str = ""
+    source: str = ""
+    default: bool = False
+    if_loaded: bool = False
+
+
+@dataclass(frozen=True)
+class Demands:
+    """demand, capacity, required : (case, item), SI.  demand NaN: no equilibrium, or not asked in that case; capacity NaN: not judged."""
+
+    items: tuple[Item, ...]
+    demand: Array
+    capacity: Array
+    required: Array
+
+    @property
+    def factor(self) -> Array:
+        """(case, item) capacity over demand; inf without demand, NaN where not judged."""
+        bare = np.where(self.demand > 0, self.demand, 1.0)
+        return np.where(np.isnan(self.demand + self.capacity), np.nan, np.where(self.demand > 0, self.capacity / bare, np.inf))
+
+    @property
+    def use(self) -> Array:
+        """(case, item) factor required over factor found; NaN where not judged."""
+        factor = self.factor
+        out = np.where(factor > 0, self.required / np.where(factor > 0, factor, 1.0), np.inf)
+        return np.where(np.isnan(factor), np.nan, out)
+
+    def take(self, rows: NDArray[np.int64]) -> Demands:
+        """The cases `rows`."""
+        return Demands(self.items, self.demand[rows], self.capacity[rows], self.required[rows])
+
+    def blank(self, rows: NDArray[np.int64]) -> Demands:
+        """Without demand in the cases `rows`."""
+        demand = self.demand.copy()
+        demand[rows] = np.nan
+        return Demands(self.items, demand, self.capacity, self.required)
+
+
+def join(parts: Sequence[Demands]) -> Demands:
+    """Cases one after another, the same items in all."""
+    return Demands(parts[0].items, *(np.concatenate([getattr(p, n) for p in parts]) for n in ("demand", "capacity", "required")))
+
+
+def beside(groups: Sequence[Demands]) -> Demands:
+    """Items side by side, the same cases in all."""
+    items = tuple(item for group in groups for item in group.items)
+    return Demands(items, *(np.concatenate([getattr(g, n) for g in groups], axis=1) for n in ("demand", "capacity", "required")))
+
+
+def group(items: Sequence[Item], demand: Array, capacity: Array | float, required: Array | float) -> Demands:
+    """Columns of one group; capacity and required may be anything that spreads over (case, item)."""
+    shape = demand.shape
+    return Demands(tuple(items), demand, np.broadcast_to(capacity, shape).copy(), np.broadcast_to(required, shape).copy())
