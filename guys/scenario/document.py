@@ -13,7 +13,8 @@ from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag,
 
 from guys import constants, units
 from guys.scenario import quantity as q
-from guys.scenario.model import Analysis, End, Ice, Material, Model, Setting, Spar, SparPoint
+from guys.scenario.model import Analysis, End, Ice, Material, Setting, Spar, SparPoint
+from guys.scenario.table import Model
 
 
 def _sweep(value: Any) -> Any:

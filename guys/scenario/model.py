@@ -12,18 +12,13 @@ import math
 from collections.abc import Mapping
 from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag
+from pydantic import Discriminator, Field, Tag
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.table import Model
 
 Base = Literal["pinned", "ball", "hinged", "fixed", "sprung"]
-
-
-class Model(BaseModel):
-    """Frozen, no unknown keys; the docstrings below each field become the descriptions of the JSON Schema."""
-
-    model_config = ConfigDict(frozen=True, extra="forbid", populate_by_name=True, use_attribute_docstrings=True)
 
 
 class Vector(Model):
