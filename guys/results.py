@@ -159,7 +159,10 @@ class FootWorst:
 
 @dataclass(frozen=True)
 class Finding:
-    """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged".  source : of the capacity."""
+    """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged".
+
+    source : of the capacity;  governs : the part, the way of failing or the place that governs, in words, where there are several
+    """
 
     thing: str
     quantity: str
@@ -174,6 +177,7 @@ class Finding:
     why: str
     default: bool = False
     source: str = ""
+    governs: str = ""
 
 
 @dataclass(frozen=True)

@@ -57,7 +57,7 @@ def _finding(item: Item, demands: Demands, use: Array, k: int, lines: Sequence[C
     line, why = lines[first], item.lacking if math.isnan(factor) else item.why
     return Finding(
         item.thing, item.quantity, demand, capacity, item.unit, required, factor, judge(factor, required), line.name, line.wind_from, why,
-        item.default, item.source,
+        item.default, item.source, item.modes[mode] if (mode := int(demands.mode[row, k])) >= 0 else "",
     )  # fmt: skip
 
 

@@ -16,6 +16,8 @@ from numpy.typing import NDArray
 
 from guys.rotation import Array
 
+COLUMNS = ("demand", "capacity", "required", "mode")
+
 
 @dataclass(frozen=True)
 class Item:
@@ -23,6 +25,7 @@ class Item:
 
     thing, quantity, unit : as findings show them;  why : how the factor is formed;  lacking : why it is not judged where it is not
     source : where the capacity comes from;  default : the factor required is not the user's;  if_loaded : no finding where no case loads it
+    modes : in words, the ways of failing, parts or places that may govern it, as `Demands.mode` counts them
     """
 
     thing: str
@@ -33,16 +36,21 @@ class Item:
     source: str = ""
     default: bool = False
     if_loaded: bool = False
+    modes: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
 class Demands:
-    """demand, capacity, required : (case, item), SI.  demand NaN: no equilibrium, or not asked in that case; capacity NaN: not judged."""
+    """demand, capacity, required : (case, item), SI.  demand NaN: no equilibrium, or not asked in that case; capacity NaN: not judged.
+
+    mode : (case, item) which of the item's `modes` governs there, -1 where there is none to tell
+    """
 
     items: tuple[Item, ...]
     demand: Array
     capacity: Array
     required: Array
+    mode: NDArray[np.int64]
 
     @property
     def factor(self) -> Array:
@@ -59,27 +67,29 @@ class Demands:
 
     def take(self, rows: NDArray[np.int64]) -> Demands:
         """The cases `rows`."""
-        return Demands(self.items, self.demand[rows], self.capacity[rows], self.required[rows])
+        return Demands(self.items, self.demand[rows], self.capacity[rows], self.required[rows], self.mode[rows])
 
     def blank(self, rows: NDArray[np.int64]) -> Demands:
         """Without demand in the cases `rows`."""
         demand = self.demand.copy()
         demand[rows] = np.nan
-        return Demands(self.items, demand, self.capacity, self.required)
+        return Demands(self.items, demand, self.capacity, self.required, self.mode)
 
 
 def join(parts: Sequence[Demands]) -> Demands:
     """Cases one after another, the same items in all."""
-    return Demands(parts[0].items, *(np.concatenate([getattr(p, n) for p in parts]) for n in ("demand", "capacity", "required")))
+    return Demands(parts[0].items, *(np.concatenate([getattr(p, n) for p in parts]) for n in COLUMNS))
 
 
 def beside(groups: Sequence[Demands]) -> Demands:
     """Items side by side, the same cases in all."""
     items = tuple(item for group in groups for item in group.items)
-    return Demands(items, *(np.concatenate([getattr(g, n) for g in groups], axis=1) for n in ("demand", "capacity", "required")))
+    return Demands(items, *(np.concatenate([getattr(g, n) for g in groups], axis=1) for n in COLUMNS))
 
 
-def group(items: Sequence[Item], demand: Array, capacity: Array | float, required: Array | float) -> Demands:
-    """Columns of one group; capacity and required may be anything that spreads over (case, item)."""
-    shape = demand.shape
-    return Demands(tuple(items), demand, np.broadcast_to(capacity, shape).copy(), np.broadcast_to(required, shape).copy())
+def group(
+    items: Sequence[Item], demand: Array, capacity: Array | float, required: Array | float, mode: NDArray[np.int64] | int = -1
+) -> Demands:
+    """Columns of one group; capacity, required and mode may be anything that spreads over (case, item)."""
+    columns = (np.broadcast_to(value, demand.shape).copy() for value in (capacity, required, mode))
+    return Demands(tuple(items), demand, *columns)

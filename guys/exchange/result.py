@@ -199,6 +199,7 @@ def _finding(f: Finding) -> dict[str, Any]:
         "why": f.why,
         "allowable_is_default": f.default,
         "source": f.source,
+        "governs": f.governs,
     }
 
 
