@@ -16,6 +16,8 @@ Change = tuple[tuple[str | int, ...], Any]
 SPAR, SECTION, FITTING, LEVEL, ROPE = ("spar", 0), ("spar", 0, "section", 0), ("spar", 0, "fitting", 0), ("guy_level", 0), ("rope", "wire")
 OUTRIGHT = {"length": "12 m", "mass": "9 kg/m", "EA": "180 MN", "EI": "160 kN m2", "GJ": "120 kN m2", "width": "89 mm", "drag": 1.2}
 ICED_CASE: tuple[Change, ...] = ((("case",), [{"name": "frost", "ice": 1.0}]), (("ice",), {"thickness": "10 mm"}))
+PROFILE = ("wind", "profile")
+HILL = {"shape": "hill", "height": "20 m", "half_length": "100 m"}
 FITTING_ICED: tuple[Change, ...] = (((*FITTING, "iced_mass"), "20 kg"), ((*FITTING, "iced_area"), "0.5 m2"))
 
 
@@ -270,8 +272,23 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
         "spar[0].section[0].lattice",
         "not available in this version",
     ),
-    ("profile", MAST, ((("wind", "profile"), {"asce7": "C"}),), "wind.profile.asce7", "not available in this version"),
-    ("european profile", MAST, ((("wind", "profile"), {"en1991": "II"}),), "wind.profile.en1991", "not available in this version"),
+    # profiles of standards
+    ("exposure", MAST, ((PROFILE, {"asce7": "A"}),), "wind.profile.asce7", '"A" is not one of "B", "C", "D"'),
+    ("terrain", MAST, ((PROFILE, {"en1991": 2}),), "wind.profile.en1991", "2 is not one of"),
+    ("key of the other", MAST, ((PROFILE, {"asce7": "C", "orography": 1.1}),), "wind.profile.orography", "unknown key"),
+    ("no such profile", MAST, ((PROFILE, {"as7": "C"}),), "wind.profile", "a table here is one of"),
+    ("two profiles", MAST, ((PROFILE, {"asce7": "C", "power": 0.1}),), "wind.profile", "a table here is one of"),
+    ("averaging", MAST, ((PROFILE, {"en1991": "II"}), (("wind", "averaging"), "2 h")), "wind.averaging", "cannot be converted to the 600"),
+    ("averaging too short", MAST, ((PROFILE, {"asce7": "C"}), (("wind", "averaging"), "0.5 s")), "wind.averaging", "cannot be converted"),
+    ("height", MAST, ((PROFILE, {"asce7": "C"}), (("wind", "height"), "6 m")), "wind.height", "6 m will not do"),
+    ("gust curve", MAST, ((("wind", "gust_curve"), "durst"),), "wind.gust_curve", "takes the speed as it is"),
+    ("two Kzt", MAST, ((PROFILE, {"asce7": "C", "kzt": 1.2, "topography": HILL}),), "wind.profile.kzt", "give one of the two"),
+    ("return period", MAST, ((("wind", "return_period"), {"years": 1.0}),), "wind.return_period.years", "at least 2"),
+    ("no source", MAST, ((("wind", "return_period"), {"years": 5, "K": 0.1}),), "wind.return_period.source", "not the recommended"),
+    ("half a season", MAST, ((("wind", "season"), {"start": "May"}),), "wind.season", "incomplete; give start"),
+    ("season twice", MAST, ((("wind", "season"), {"months": 2, "factor": 0.8, "source": "x"}),), "wind.season.factor", "months is given"),
+    ("season from nowhere", MAST, ((("wind", "season"), {"factor": 0.8}),), "wind.season.source", "say where"),
+    ("stay", MAST, ((("wind", "duration"), {"stay": "long"}),), "wind.duration.stay", "is not one of"),
     # format
     ("newer format", MAST, ((("format",), 2),), "format", "2 is newer than this version reads; it reads format 1"),
     ("format zero", MAST, ((("format",), 0),), "format", "0 is not a version of the format"),

@@ -2,14 +2,19 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import pytest
 
 from guys import tables
 from guys.scenario.resolve import built_in_materials
 
+DATA = Path(tables.__file__).parent / "data"
 
-def test_every_row_names_its_source() -> None:
-    assert all(row["source"].strip() for row in tables.rows("materials"))
+
+@pytest.mark.parametrize("name", sorted(path.stem for path in DATA.glob("*.csv")))
+def test_every_row_names_its_source(name: str) -> None:
+    assert all(row["source"].strip() for row in tables.rows(name))
 
 
 def test_steel_is_isotropic() -> None:

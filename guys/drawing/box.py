@@ -35,6 +35,7 @@ from guys.drawing.rounding import (
 )
 from guys.drawing.strip import kinds, standing, state_summary
 from guys.results import Finding, Solution
+from guys.scenario.standard_wind import averaging_words
 
 SIZE = 8.6
 PITCH = SIZE * style.POINT_MM * 1.28
@@ -68,12 +69,6 @@ def entries(solution: Solution, tongue: Tongue) -> list[Entry]:
         *([Entry("Not checked", "; ".join(solution.not_checked))] if solution.not_checked else []),
         *_other_state(solution),
     ]
-
-
-def averaging_words(seconds: float) -> str:
-    """ "3 s gust", "10 min mean"."""
-    amount = f"{seconds:g} s" if seconds < 60.0 else f"{seconds / 60.0:g} min" if seconds < 3600.0 else f"{seconds / 3600.0:g} h"
-    return f"{amount} {'gust' if seconds < 60.0 else 'mean'}"
 
 
 def _warnings(solution: Solution) -> list[Entry]:
@@ -188,13 +183,12 @@ def _dropped(solution: Solution) -> list[Entry]:
 def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
     rows, wind, ice = [], solution.scenario.wind, solution.scenario.ice
     if wind is not None:
-        how = "uniform with height" if wind.profile.kind == "uniform" else f"power law {wind.profile.exponent:g} with height"
         swept = "; full circle swept, peaks refined" if solution.sweep is not None else ""
         rows.append(
             Entry(
                 "Wind",
-                f"{tongue.say(speed, wind.speed)}, {averaging_words(wind.averaging)} at {tongue.say(_height, wind.height)}, {how}, "
-                f"air {tongue.say(density, wind.air_density)}; {len(wind.directions)} bearings listed{swept}",
+                f"{tongue.say(speed, wind.speed)}, {averaging_words(wind.averaging)} at {tongue.say(_height, wind.height)}, "
+                f"{wind.profile.words}, air {tongue.say(density, wind.air_density)}; {len(wind.directions)} bearings listed{swept}",
             )
         )
     parts = []

@@ -6,60 +6,15 @@ serves both.
 
 from __future__ import annotations
 
-import math
-from typing import Annotated, Any, Literal
+from typing import Annotated
 
-from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag, WithJsonSchema
+from pydantic import Field
 
-from guys import constants, units
+from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.model import Analysis, End, Ice, Material, Setting, Spar, SparPoint
 from guys.scenario.table import Model
-
-
-def _sweep(value: Any) -> Any:
-    """``every 30 deg`` → the step's text; a list passes as it is."""
-    if isinstance(value, str):
-        head, _, step = value.strip().partition(" ")
-        if head != "every" or not step.strip():
-            raise q.fault(f'"{value}" is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
-        return step.strip()
-    raise q.fault(f'{q.shown(value)} is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
-
-
-def _whole_step(step: float) -> float:
-    turns = math.tau / step
-    if abs(turns - round(turns)) > 1e-6:
-        raise q.fault(f"a full circle is not a whole number of steps of {math.degrees(step):.6g} deg")
-    if not 1 <= round(turns) <= MOST_DIRECTIONS:
-        raise q.fault(f"{round(turns)} directions are too many; at most {MOST_DIRECTIONS}")
-    return step
-
-
-MOST_DIRECTIONS = 3600
-Step = Annotated[
-    q.PositiveAngle,
-    BeforeValidator(_sweep),
-    AfterValidator(_whole_step),
-    WithJsonSchema({"type": "string", "pattern": rf"^ *every +{units.json_pattern('angle')[1:]}", "examples": ["every 30 deg"]}),
-]
-Directions = Annotated[
-    Annotated[Annotated[list[q.Angle], Field(min_length=1, max_length=MOST_DIRECTIONS)], Tag("<list>")] | Annotated[Step, Tag("<step>")],
-    Discriminator(lambda value: "<list>" if isinstance(value, (list, tuple)) else "<step>"),
-]
-
-
-class PowerProfile(Model):
-    """Wind speed rising with height as a power."""
-
-    power: q.Factor
-    """Exponent p of V = speed (z / height) ** p."""
-
-
-ProfileEntry = Annotated[
-    Annotated[PowerProfile, Tag("<power>")] | Annotated[Literal["uniform"], Tag("<uniform>")],
-    Discriminator(lambda value: "<uniform>" if isinstance(value, str) else "<power>"),
-]
+from guys.scenario.wind_entry import WindEntry
 
 
 class AnchorEntry(Model):
@@ -142,27 +97,6 @@ class RopeEntry(Model):
     """Thermal expansion."""
     drag: q.Factor | None = None
     """Force coefficient on the diameter."""
-
-
-class WindEntry(Model):
-    """The reference wind."""
-
-    speed: q.Speed
-    """Reference speed."""
-    averaging: q.Duration
-    """Time the speed is averaged over."""
-    height: q.PositiveLength
-    """Height of the reference speed."""
-    profile: ProfileEntry = "uniform"
-    """uniform, or { power = 0.14 }."""
-    air_density: q.Density | None = None
-    """Density of the air; left out: 1.225 kg/m3, or that of `altitude` and `temperature`."""
-    altitude: q.Length | None = None
-    """Altitude of the site, in place of air_density."""
-    temperature: q.Temperature | None = None
-    """Temperature of the air, with `altitude`; left out: the standard one of that altitude."""
-    directions: Directions = math.pi / 6
-    """Bearings the wind comes from: "every 30 deg" (the default), or a list."""
 
 
 class CaseEntry(Model):

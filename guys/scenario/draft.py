@@ -23,13 +23,13 @@ from guys.scenario.document import (
     GuyLevel,
     RopeEntry,
     ScenarioFile,
-    WindEntry,
 )
 from guys.scenario.keys import Finding, Key, nearest
 from guys.scenario.model import Analysis, Ice, Material, Setting, Spar
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.unavailable import without
+from guys.scenario.wind_entry import WindEntry
 
 
 @dataclass(frozen=True)

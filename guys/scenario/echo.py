@@ -9,6 +9,7 @@ from guys import units
 from guys.scenario import drawn
 from guys.scenario.model import Cable, Case, HeelFoot, Scenario, Spar, Wind
 from guys.scenario.plausible import section_mass
+from guys.scenario.standard_wind import AS_HIGH, REFERENCE_HEIGHT, averaging_words, beaufort
 
 
 def lines(scenario: Scenario) -> Iterator[str]:
@@ -30,6 +31,8 @@ def lines(scenario: Scenario) -> Iterator[str]:
         yield f"ice: {units.both(scenario.ice.thickness, 'length', ('mm', 'in'))}, {units.both(scenario.ice.density, 'density')}"
     for case in scenario.case:
         yield f'case "{case.name}": {_case(case)}'
+    for note in scenario.notes:
+        yield f"note: {note}"
 
 
 def _spar(scenario: Scenario, spar: Spar) -> str:
@@ -55,9 +58,10 @@ def _cable(cable: Cable, top: drawn.Point, bottom: drawn.Point) -> str:
 
 
 def _wind(wind: Wind) -> str:
-    profile = "uniform" if wind.profile.kind == "uniform" else f"power {wind.profile.exponent:g}"
-    reference = f"{units.both(wind.speed, 'speed')}, {wind.averaging:g} s at {units.both(wind.height, 'length')}"
-    return f"{reference}, {profile}, air {units.both(wind.air_density, 'density')}, {len(wind.directions)} directions"
+    reference = f"{units.both(wind.speed, 'speed')}, {averaging_words(wind.averaging)} at {units.both(wind.height, 'length')}"
+    number = beaufort(wind.speed, wind.averaging) if abs(wind.height - REFERENCE_HEIGHT) <= AS_HIGH else None
+    reference += "" if number is None else f" (Beaufort {number})"
+    return f"{reference}, {wind.profile.words}, air {units.both(wind.air_density, 'density')}, {len(wind.directions)} directions"
 
 
 def _case(case: Case) -> str:

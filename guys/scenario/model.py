@@ -266,16 +266,31 @@ class Setting(Model):
 
 
 class Profile(Model):
-    """Wind speed over height: uniform, or V = speed (z / height) ** exponent."""
+    """Wind over height, z above the foot; how the fields give the pressure is told in `guys.loads.pressure`.
 
-    kind: Literal["uniform", "power"] = "uniform"
+    exponent : p of the speed;  reference : height [m] it counts from, None: that of the wind;  low, high : heights [m] below and above
+    which nothing changes;  roughness z0 [m], terrain k_r, orography c_o : of the logarithmic profile;  crest : K1 K2 and gamma / Lh [1/m]
+    of a hill, None: level ground;  turbulence : intensity at 10 m, None: of the logarithmic profile, or not known;  words : for the reader
+    """
+
+    kind: Literal["uniform", "power", "asce7", "en1991"] = "uniform"
     exponent: float = 0.0
+    reference: float | None = None
+    low: float = 0.0
+    high: float = math.inf
+    roughness: float = 1.0
+    terrain: float = 0.0
+    orography: float = 1.0
+    crest: tuple[float, float] | None = None
+    turbulence: float | None = None
+    words: str = "uniform with height"
 
 
 class Wind(Model):
     """The reference wind.
 
-    speed [m/s] averaged over `averaging` [s] at `height` [m]; air_density [kg/m3]; directions: bearings it comes from [rad], in [0, 2 pi)
+    speed [m/s] averaged over `averaging` [s] at `height` [m], as given; air_density [kg/m3]; directions: bearings it comes from [rad], in
+    [0, 2 pi); speed_factor, pressure_factor: what conversion and chosen factors make of speed and pressure; notes: each of them in words
     """
 
     speed: float
@@ -284,6 +299,10 @@ class Wind(Model):
     profile: Profile = Profile()
     air_density: float = constants.AIR_DENSITY
     directions: tuple[float, ...]
+    speed_factor: float = 1.0
+    pressure_factor: float = 1.0
+    notes: tuple[str, ...] = ()
+    warnings: tuple[str, ...] = ()
 
 
 class Ice(Model):
@@ -348,3 +367,5 @@ class Scenario(Model):
     path: str | None = None
     warnings: tuple[str, ...] = ()
     """Values that look like a slip."""
+    notes: tuple[str, ...] = ()
+    """What was converted, chosen or looked up, each with its source."""

@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from guys import units
 from guys.constants import ZERO_CELSIUS
 from guys.scenario import drawn, resolve
-from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Scenario, Section, Spar
+from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Profile, Scenario, Section, Spar
 
 
 @dataclass(frozen=True)
@@ -59,6 +59,8 @@ FITTING_AREA = Bounds("area", 0.0, 150.0)
 FITTING_MASS = Bounds("mass", 0.0, 20_000.0)
 OFFSET = Bounds("length", 0.0, 10.0)
 ARM = Bounds("length", 0.0, 5.0)
+EN_HIGHEST = 200.0
+"""[m], EN 1991-1-4 4.3.2, read in a public transcription."""
 GREATEST_DRAG = 3.0
 GREATEST_FACTOR = 3.0
 STEEP, SHALLOW = math.radians(75.0), math.radians(10.0)
@@ -191,8 +193,8 @@ def _weather(scenario: Scenario) -> Iterator[str]:
         yield from AVERAGING.warn("wind, averaging", scenario.wind.averaging)
         yield from WIND_HEIGHT.warn("wind, height", scenario.wind.height)
         yield from AIR.warn("wind, air_density", scenario.wind.air_density)
-        if scenario.wind.profile.exponent > 0.5:
-            yield f"wind, power: {scenario.wind.profile.exponent:g} is more than 0.5"
+        yield from scenario.wind.warnings
+        yield from _profile(scenario, scenario.wind.profile)
     if scenario.ice is not None:
         yield from ICE_THICKNESS.warn("ice, thickness", scenario.ice.thickness)
         yield from ICE_DENSITY.warn("ice, density", scenario.ice.density)
@@ -206,6 +208,14 @@ def _weather(scenario: Scenario) -> Iterator[str]:
                 yield f"{what}, {name}: a factor of {getattr(case, name):g} is more than {GREATEST_FACTOR:g}"
         if case.dead == 0.0:
             yield f"{what}, dead: 0 takes all weights away"
+
+
+def _profile(scenario: Scenario, profile: Profile) -> Iterator[str]:
+    if profile.kind == "power" and profile.exponent > 0.5:
+        yield f"wind, power: {profile.exponent:g} is more than 0.5"
+    for spar in scenario.spar:
+        if profile.kind == "en1991" and spar.length > EN_HIGHEST:
+            yield f'spar "{spar.name}": {units.both(spar.length, "length")} long; the profile of EN 1991-1-4 is given up to 200 m'
 
 
 def _cold_sections(scenario: Scenario) -> Iterator[str]:

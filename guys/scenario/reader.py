@@ -161,6 +161,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
     heights = [level["at"] for level in tables.document.get("guy_level", [])]
     levels = zip(_present(tables.guy_level), heights, strict=True)
     guys = [guy for index, (entry, at) in enumerate(levels) for guy in resolve.guys_of(index, entry, at)]
+    wind = None if tables.wind is None else resolve.wind(tables.wind)
     setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
     assert setting is not None
     assert allowables is not None
@@ -175,11 +176,12 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         rope={name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
         setting=setting,
-        wind=None if tables.wind is None else resolve.wind(tables.wind),
+        wind=wind,
         ice=tables.ice,
         case=resolve.cases(_present(tables.case), setting),
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         sha256=digest,
         path=path,
+        notes=() if wind is None else wind.notes,
     )

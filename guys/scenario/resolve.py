@@ -6,9 +6,9 @@ import math
 from collections.abc import Iterator, Mapping
 from functools import cache
 
-from guys import constants, tables
-from guys.scenario import drawn
-from guys.scenario.document import AllowablesEntry, AnchorEntry, CableEntry, CaseEntry, GuyLevel, PowerProfile, RopeEntry, WindEntry
+from guys import tables
+from guys.scenario import drawn, standard_wind
+from guys.scenario.document import AllowablesEntry, AnchorEntry, CableEntry, CaseEntry, GuyLevel, RopeEntry
 from guys.scenario.model import (
     Allowables,
     Anchor,
@@ -16,13 +16,13 @@ from guys.scenario.model import (
     Cable,
     Case,
     Material,
-    Profile,
     Rope,
     Setting,
     Spar,
     SparPoint,
     Wind,
 )
+from guys.scenario.wind_entry import WindEntry
 
 DEFAULT_CASE = "design"
 
@@ -103,21 +103,8 @@ def directions(entry: float | list[float]) -> tuple[float, ...]:
 
 
 def wind(entry: WindEntry) -> Wind:
-    """The wind with its air density worked out."""
-    density = constants.AIR_DENSITY
-    if entry.air_density is not None:
-        density = entry.air_density
-    elif entry.altitude is not None:
-        density = constants.air_density(entry.altitude, entry.temperature)
-    profile = Profile(kind="power", exponent=entry.profile.power) if isinstance(entry.profile, PowerProfile) else Profile()
-    return Wind(
-        speed=entry.speed,
-        averaging=entry.averaging,
-        height=entry.height,
-        profile=profile,
-        air_density=density,
-        directions=directions(entry.directions),
-    )
+    """The wind with its profile, air density and factors worked out."""
+    return standard_wind.resolved(entry, directions(entry.directions))
 
 
 def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:

@@ -24,8 +24,6 @@ _PATTERNS: tuple[tuple[tuple[str, ...], str], ...] = (
     (("spar", _EVERY, "section", _EVERY, "lattice"), "; give mass, EA, EI, GJ, width and drag outright"),
     (("guy_level", _EVERY, "ends"), ""),
     (("cable", _EVERY, "ends"), ""),
-    (("wind", "profile", "asce7"), '; give "uniform" or { power = 0.14 }'),
-    (("wind", "profile", "en1991"), '; give "uniform" or { power = 0.14 }'),
 )
 
 
@@ -33,8 +31,7 @@ def sweep(document: dict[str, Any]) -> tuple[dict[str, Any], list[Finding]]:
     """The document without what is not available, and a finding for each."""
     found = [Finding(key, NOT_AVAILABLE + hint) for pattern, hint in _PATTERNS for key in _matches(document, pattern)]
     for finding in found:
-        whole_profile = finding.key[:2] == ("wind", "profile")
-        document = without(document, finding.key[:2] if whole_profile else finding.key)
+        document = without(document, finding.key)
     return document, found
 
 

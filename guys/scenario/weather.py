@@ -2,20 +2,15 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Iterator
 
-from guys.scenario import resolve
+from guys.scenario import wind_rules
 from guys.scenario.document import CaseEntry
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items
 from guys.scenario.model import Fitting, Section
 
 NO_DEFAULT = "default drag from the shape is not available in this version"
-SAME_BEARING = 1e-9
-"""Bearings nearer than this [rad] are one direction."""
-TROPOSPHERE = (-1000.0, 11_000.0)
-"""Altitudes [m] for which the standard atmosphere is worked out."""
 
 
 def findings(draft: Draft) -> Iterator[Finding]:
@@ -26,8 +21,7 @@ def findings(draft: Draft) -> Iterator[Finding]:
         yield Finding(("wind",), f'missing; case "{clipped(windy.name)}" has wind = {windy.wind:g}; give [wind], or wind = 0 in every case')
     if icy and "ice" not in draft.document:
         yield Finding(("ice",), f'missing; case "{clipped(icy.name)}" has ice = {icy.ice:g}; give [ice]')
-    yield from _air(draft)
-    yield from _directions(draft)
+    yield from wind_rules.findings(draft)
     for index, spar in enumerate(draft.spar):
         for place, section in enumerate(spar.section if spar else ()):
             yield from _section(section, ("spar", index, "section", place), windy, icy)
@@ -52,31 +46,6 @@ def warmed(draft: Draft) -> CaseEntry | None:
 
 def _first(draft: Draft, factor: str) -> CaseEntry | None:
     return next((case for case in draft.cases() if getattr(case, factor) > 0.0), None)
-
-
-def _air(draft: Draft) -> Iterator[Finding]:
-    wind = draft.wind
-    if wind is None:
-        return
-    if wind.air_density is not None:
-        for name in ("altitude", "temperature"):
-            if getattr(wind, name) is not None:
-                yield Finding(("wind", name), f"air_density is given; leave {name} out, or give altitude and temperature alone")
-    elif wind.temperature is not None and wind.altitude is None:
-        yield Finding(("wind", "altitude"), "missing; temperature is given for the air density and needs it", (("wind", "air_density"),))
-    if wind.altitude is not None and not TROPOSPHERE[0] <= wind.altitude <= TROPOSPHERE[1]:
-        yield Finding(("wind", "altitude"), "out of range: the standard atmosphere is known here from -1 km to 11 km")
-    if wind.temperature is not None and wind.temperature < 100.0:
-        yield Finding(("wind", "temperature"), "too cold for air")
-
-
-def _directions(draft: Draft) -> Iterator[Finding]:
-    listed = draft.wind.directions if draft.wind else None
-    bearings = resolve.directions(listed) if isinstance(listed, list) else ()
-    order = sorted(range(len(bearings)), key=bearings.__getitem__)
-    for before, place in zip(order[-1:] + order[:-1], order, strict=True):
-        if before != place and abs(math.remainder(bearings[place] - bearings[before], math.tau)) < SAME_BEARING:
-            yield Finding(("wind", "directions", max(before, place)), "this direction is in the list already")
 
 
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:

@@ -143,7 +143,7 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
         warnings=alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
-        notes=tuple(sorted({n for n in listed.note if n})),
+        notes=(*scenario.notes, *sorted({n for n in listed.note if n})),
         not_checked=alarms.NOT_CHECKED,
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
