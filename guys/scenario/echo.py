@@ -60,7 +60,7 @@ def _cable(cable: Cable, top: drawn.Point, bottom: drawn.Point) -> str:
 def _wind(wind: Wind) -> str:
     reference = f"{units.both(wind.speed, 'speed')}, {averaging_words(wind.averaging)} at {units.both(wind.height, 'length')}"
     number = beaufort(wind.speed, wind.averaging) if abs(wind.height - REFERENCE_HEIGHT) <= AS_HIGH else None
-    reference += "" if number is None else f" (Beaufort {number})"
+    reference += "" if number is None else f", Beaufort {number}"
     return f"{reference}, {wind.profile.words}, air {units.both(wind.air_density, 'density')}, {len(wind.directions)} directions"
 
 
