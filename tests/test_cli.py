@@ -103,7 +103,8 @@ def test_validate_echoes_both_systems(good: Path, capsys: pytest.CaptureFixture[
         'spar "mast": 12 m (39.37 ft) long, pinned on the ground, 91.25 kg (201.2 lb) with its fittings',
         'anchor "SE": bearing 120 deg, radius 8 m (26.25 ft), level 0 m (0 ft)',
         'cable "9 m N": chord 12.04 m (39.51 ft), 48.4 deg from the ground, initial tension 1 kN (224.8 lbf)',
-        "wind: 25 m/s (55.92 mph), 3 s gust at 10 m (32.81 ft), Beaufort 8, uniform with height, air 1.225 kg/m3 (0.07647 lb/ft3), 12 directions",
+        "wind: 25 m/s (55.92 mph), 3 s gust at 10 m (32.81 ft), Beaufort 8, uniform with height, air 1.225 kg/m3 (0.07647 lb/ft3), "
+        "12 directions",
         'case "design": dead 1, wind 1, ice 0, 15 degC (59 degF)',
     ):
         assert line in told.out.splitlines()
