@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("plumb", "size", "setout", "compare", "search", "limit", "lost", "raise", "field", "record", "list")
+UNAVAILABLE = ("plumb", "size", "setout", "compare", "search", "limit", "lost", "raise", "field", "record")
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
@@ -111,6 +111,21 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
     except GuysError as error:
         raise click.BadParameter(str(error), param_hint="--look") from error
     return solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
+
+
+@commands.command(name="list")
+@click.argument("kind", type=click.Choice(["ropes", "tubes", "parts", "materials", "holdfasts", "profiles"]))
+@click.argument("words", nargs=-1)
+@click.option("--json", "as_json", is_flag=True, help="Print the entries as JSON, in SI.")
+@click.option("--units", type=click.Choice(["SI", "US", "both"]), default="SI", show_default=True, help="Units of the table.")
+def list_(kind: str, words: tuple[str, ...], as_json: bool, units: str) -> int:
+    """List what the catalogue holds, with sources; WORDS narrow it: guys list ropes 7x19
+
+    What is from memory is marked so, and warned about when a scenario uses it.
+    """
+    from guys.doors.list import list_command
+
+    return list_command(kind, words, as_json, units)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -11,6 +11,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+from guys.catalogue import tubes
 from guys.scenario import Ice, Section
 from guys.scenario.model import Material
 
@@ -74,8 +75,7 @@ def _outright(section: Section) -> dict[str, float | None]:
 
 
 def _tube(diameter: float, wall: float, material: Material, ice: Ice | None) -> dict[str, float | None]:
-    area = math.pi * (diameter - wall) * wall
-    second = math.pi / 64 * (diameter**4 - (diameter - 2 * wall) ** 4)
+    area, second = tubes.area(diameter, wall), tubes.second_moment(diameter, wall)
     thickness = 0.0 if ice is None else ice.thickness
     return {
         "mass": material.density * area,

@@ -46,7 +46,7 @@ class CableEntry(Model):
     to: End
     """The anchor or point of a spar it runs to."""
     rope: q.Name
-    """A [rope.NAME] of the file."""
+    """A rope of the catalogue (guys list ropes), or a [rope.NAME] of the file."""
     tension: q.PositiveForce | None = None
     """Initial tension at the `to` end, still air, at setting.temperature."""
     length: q.PositiveLength | None = None
@@ -67,7 +67,7 @@ class GuyLevel(Model):
     arm: q.LengthFromZero = 0.0
     """Lug: level distance from the axis toward the anchor."""
     rope: q.Name
-    """A [rope.NAME] of the file."""
+    """A rope of the catalogue (guys list ropes), or a [rope.NAME] of the file."""
     to: Annotated[list[q.Name], Field(min_length=1)]
     """The anchors."""
     tension: q.PositiveForce | None = None

@@ -7,13 +7,13 @@ from collections.abc import Iterator
 
 from guys import units
 from guys.scenario import drawn
-from guys.scenario.model import Cable, Case, HeelFoot, Scenario, Spar, Wind
+from guys.scenario.model import Cable, Case, HeelFoot, Rope, Scenario, Spar, Wind
 from guys.scenario.plausible import section_mass
 from guys.scenario.standard_wind import AS_HIGH, REFERENCE_HEIGHT, averaging_words, beaufort
 
 
 def lines(scenario: Scenario) -> Iterator[str]:
-    """One line for each spar, anchor and cable, for the wind, the ice and each case."""
+    """One line for each spar, anchor, cable and rope, for the wind, the ice and each case."""
     yield scenario.title
     for spar in scenario.spar:
         yield f'spar "{spar.name}": {_spar(scenario, spar)}'
@@ -25,6 +25,8 @@ def lines(scenario: Scenario) -> Iterator[str]:
         yield f'anchor "{anchor.name}": bearing {bearing:.4g} deg, radius {radius}, level {level}'
     for cable, ends in zip(scenario.cable, drawn.scenario_cable_ends(scenario), strict=True):
         yield f'cable "{cable.name}": {_cable(cable, *ends)}'
+    for name, rope in scenario.rope.items():
+        yield f'rope "{name}": {_rope(rope)}'
     if scenario.wind is not None:
         yield f"wind: {_wind(scenario.wind)}"
     if scenario.ice is not None:
@@ -55,6 +57,13 @@ def _cable(cable: Cable, top: drawn.Point, bottom: drawn.Point) -> str:
     else:
         given = "tight"
     return f"chord {units.both(chord, 'length')}, {angle:.3g} deg from the ground, {given}"
+
+
+def _rope(rope: Rope) -> str:
+    strength = "no strength given" if rope.strength is None else f"strength {units.both(rope.strength, 'force')}"
+    source = "" if rope.source is None else f"; {rope.source}"
+    size = f"{units.both(rope.diameter, 'length', ('mm', 'in'))}, {units.both(rope.mass, 'mass per length')}"
+    return f"{size}, stiffness {units.both(rope.stiffness, 'force', ('kN', 'kip'))}, {strength}{source}"
 
 
 def _wind(wind: Wind) -> str:

@@ -231,7 +231,10 @@ class Cable(Model):
 
 
 class Rope(Model):
-    """A rope: diameter [m], mass [kg/m], stiffness EA [N], strength [N], expansion [1/K], drag."""
+    """A rope: diameter [m], mass [kg/m], stiffness EA [N], strength [N], expansion [1/K], drag.
+
+    source : of a catalogue rope; None where the file gives the rope
+    """
 
     diameter: float
     mass: float
@@ -239,6 +242,7 @@ class Rope(Model):
     strength: float | None = None
     expansion: float | None = None
     drag: float | None = None
+    source: str | None = None
 
 
 class Material(Model):

@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections.abc import Collection, Iterator, Mapping
 from typing import Any
 
+from guys.catalogue import ropes as stock
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items, nearest
 from guys.scenario.resolve import built_in_materials
@@ -118,11 +119,24 @@ def _ends(document: Mapping[str, Any], spars: Known, anchors: Known) -> Iterator
 
 def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
     ropes = document.get("rope")
-    known = ropes if isinstance(ropes, dict) else None if ropes else {}
+    own = ropes if isinstance(ropes, dict) else None if ropes else {}
     for kind in ("guy_level", "cable"):
         for index, item in items(document, kind):
-            remedy = "; catalogue ropes are not available in this version; give [rope.NAME]"
-            yield from _unknown((kind, index, "rope"), "rope", item.get("rope"), known, remedy)
+            name = item.get("rope")
+            if isinstance(name, str) and own is not None and name not in own and stock.find(name) is None:
+                yield Finding((kind, index, "rope"), f'no rope is named "{clipped(name)}"{_near_rope(name, own)}')
+
+
+def _near_rope(name: str, own: Collection[str]) -> str:
+    """The file's rope meant where one is near, else what the catalogue has to say."""
+    near = nearest(name, own) if own else ""
+    if "did you mean" in near:
+        return near
+    made = stock.hint(name)
+    if made is not None:
+        return f"; {made}"
+    near = nearest(name, [rope.name for rope in stock.listed()])
+    return f"{near or '; give [rope.NAME], or a name of the catalogue'} (guys list ropes)"
 
 
 def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:

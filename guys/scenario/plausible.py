@@ -11,6 +11,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from guys import units
+from guys.catalogue import ropes as stock
 from guys.constants import ZERO_CELSIUS
 from guys.scenario import drawn, resolve
 from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Profile, Scenario, Section, Spar
@@ -167,6 +168,9 @@ def _ropes(scenario: Scenario) -> Iterator[str]:
     for name, rope in scenario.rope.items():
         what = f'rope "{name}"'
         area = math.pi / 4 * rope.diameter**2
+        if rope.source is not None:
+            yield from (f"{what} of the catalogue: {caution}" for caution in _stock_cautions(name))
+            continue
         if name not in used:
             yield f"{what}: no cable is made of it"
         yield from ROPE_DIAMETER.warn(f"{what}, diameter", rope.diameter)
@@ -176,6 +180,11 @@ def _ropes(scenario: Scenario) -> Iterator[str]:
         yield from ROPE_STRESS.warn(f"{what}, strength over the full circle", None if rope.strength is None else rope.strength / area)
         yield from EXPANSION.warn(f"{what}, expansion", rope.expansion)
         yield from _drag(what, rope.drag)
+
+
+def _stock_cautions(name: str) -> Iterator[str]:
+    found = stock.find(name)
+    yield from () if found is None else stock.cautions(found)
 
 
 def _material(what: str, material: Material) -> Iterator[str]:

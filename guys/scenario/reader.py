@@ -162,6 +162,8 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
     levels = zip(_present(tables.guy_level), heights, strict=True)
     guys = [guy for index, (entry, at) in enumerate(levels) for guy in resolve.guys_of(index, entry, at)]
     wind = None if tables.wind is None else resolve.wind(tables.wind)
+    cables = (*guys, *(resolve.cable(index, entry) for index, entry in enumerate(_present(tables.cable))))
+    ropes = {name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None}
     setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
     assert setting is not None
     assert allowables is not None
@@ -172,8 +174,8 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         note=tables.note,
         spar=tuple(spars.values()),
         anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
-        cable=(*guys, *(resolve.cable(index, entry) for index, entry in enumerate(_present(tables.cable)))),
-        rope={name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None},
+        cable=cables,
+        rope={**ropes, **resolve.stock_ropes(cables, ropes)},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
         setting=setting,
         wind=wind,

@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
+from collections.abc import Collection, Iterable, Iterator, Mapping
 from functools import cache
 
 from guys import tables
+from guys.catalogue import ropes as stock
+from guys.catalogue.rope import StockRope
 from guys.scenario import drawn, standard_wind
 from guys.scenario.document import AllowablesEntry, AnchorEntry, CableEntry, CaseEntry, GuyLevel, RopeEntry
 from guys.scenario.model import (
@@ -92,6 +94,28 @@ def rope(entry: RopeEntry) -> Rope:
     stiffness = entry.stiffness if entry.stiffness is not None else (entry.modulus or 0.0) * (entry.metal_area or 0.0)
     given = entry.model_dump(include={"diameter", "mass", "strength", "expansion", "drag"})
     return Rope(stiffness=stiffness, **given)
+
+
+STOCK_DRAG, STOCK_DRAG_SOURCE = 1.2, "Drag 1.2: EN 1991-1-4 7.9, round and subcritical, read"
+"""Force coefficient of catalogue ropes on their diameter."""
+
+
+def stock_ropes(cables: Iterable[Cable], own: Collection[str]) -> dict[str, Rope]:
+    """The catalogue ropes that cables are made of, where the file has none of that name."""
+    wanted = dict.fromkeys(cable.rope for cable in cables if cable.rope not in own)
+    return {name: _stocked(found) for name in wanted if (found := stock.find(name)) is not None}
+
+
+def _stocked(found: StockRope) -> Rope:
+    return Rope(
+        diameter=found.diameter,
+        mass=found.mass,
+        stiffness=found.stiffness.used,
+        strength=found.strength,
+        expansion=found.expansion,
+        drag=STOCK_DRAG,
+        source=f"{found.source}. {STOCK_DRAG_SOURCE}",
+    )
 
 
 def directions(entry: float | list[float]) -> tuple[float, ...]:

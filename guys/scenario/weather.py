@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from guys.catalogue import ropes as stock
 from guys.scenario import wind_rules
 from guys.scenario.document import CaseEntry
 from guys.scenario.draft import Draft
@@ -76,6 +77,7 @@ def _has(case: CaseEntry, what: str) -> str:
 
 def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
     used = used_ropes(draft)
+    yield from _stock_ropes(draft)
     catenary = draft.analysis is not None and draft.analysis.cable == "catenary"
     warm = warmed(draft)
     for name, rope in draft.rope.items():
@@ -91,3 +93,15 @@ def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
         if name in used and warm and rope.expansion is None:
             text = f'missing; case "{clipped(warm.name)}" is not at the setting\'s temperature; give expansion, such as "12e-6 1/K"'
             yield Finding((*key, "expansion"), text, (("setting",), ("case",)))
+
+
+def _stock_ropes(draft: Draft) -> Iterator[Finding]:
+    """Catalogue ropes whose expansion is not known, where a case asks for it."""
+    warm = warmed(draft)
+    for kind in ("guy_level", "cable") if warm else ():
+        for index, item in items(draft.document, kind):
+            name = item.get("rope")
+            found = stock.find(name) if isinstance(name, str) and name not in draft.rope else None
+            if warm and found is not None and found.expansion is None:
+                text = f'no thermal expansion of "{name}" is known, and case "{clipped(warm.name)}" is not at the setting\'s temperature'
+                yield Finding((kind, index, "rope"), f"{text}; give a [rope.NAME] with expansion", (("setting",), ("case",)))
