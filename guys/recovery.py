@@ -260,13 +260,16 @@ def whole_balance(problem: Problem, state: State, found: Evaluation, given: Forc
 
 
 def _turning_of_levers(problem: Problem, state: State) -> Array:
-    """Moments of lever loads and of loads on arms, from the loads themselves: t x lever on pieces, arm x force on fittings."""
+    """Moments of lever loads and of loads on arms, t x lever on pieces, arm x force on fittings and cable ends."""
     s = problem.structure
     total = np.zeros((problem.cases, 3))
     for node, first in ((s.pieces.low, 1), (s.pieces.high, 3)):
         total += np.cross(turned(state.psi[:, node], s.pieces.axis), problem.loads.on_pieces[:, :, first]).sum(axis=1)
-    point = s.fittings.point
-    return np.asarray(total + np.cross(problem.reach(point, state)[0], problem.loads.on_fittings).sum(axis=1))
+    on_points = [(s.fittings.point, problem.loads.on_fittings)]
+    on_points += [(points, problem.loads.at_ends[:, :, end]) for end, points in enumerate((s.cables.a, s.cables.b))]
+    for points, force in on_points:
+        total += np.cross(problem.reach(points, state)[0], force).sum(axis=1)
+    return total
 
 
 def _cable_loads(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:

@@ -159,4 +159,6 @@ def table(title: str, head: Row, rows: Sequence[Row], stream: TextIO) -> None:
 
 def files(written: Sequence[Path], stream: TextIO) -> None:
     """Where the files are."""
+    if not written:
+        return
     stream.write(f"\nWritten to {written[0].parent}: {', '.join(path.name for path in written)}\n")

@@ -7,8 +7,7 @@ from pathlib import Path
 from typing import TextIO
 
 from guys import drawing, terminal
-from guys.doors.common import exit_status, store
-from guys.drawing.files import figure_bytes
+from guys.doors.common import exit_status, pictures, store
 from guys.exchange import result, tables
 from guys.results import Solution
 from guys.scenario import read_scenario
@@ -38,9 +37,7 @@ def write(solution: Solution, directory: Path, units: drawing.Units, paper: draw
         "cables.csv": tables.cables(solution).encode(),
     }
     figure = drawing.sheet(solution, paper=paper, look_toward=look, units=units)
-    for kind in ("pdf", "svg", "png"):
-        contents[f"sheet.{kind}"] = figure_bytes(figure, kind, solution.scenario.title, solution.version)
-    return store(directory, contents)
+    return store(directory, contents | pictures("sheet", figure, solution.scenario.title))
 
 
 def _show(solution: Solution, written: list[Path], as_json: bool, units: drawing.Units, stream: TextIO) -> None:

@@ -13,7 +13,8 @@ from guys.results import Extreme, Solution
 Cell = str | float | bool | None
 
 
-def _csv(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> str:
+def as_csv(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> str:
+    """Rows under their heads; nothing where there is nothing."""
     out = io.StringIO()
     writer = csv.writer(out, lineterminator="\n")
     writer.writerow(head)
@@ -40,7 +41,7 @@ def anchors(solution: Solution) -> str:
             east, north, up_n = (float(x) for x in pulls.pull[k, a])
             wind = bearing(float(solution.wind_from[k]))
             rows.append([worst.name, case_name, wind, east, north, up_n, float(pulls.horizontal[k, a]), float(pulls.resultant[k, a])])
-    return _csv(head, rows)
+    return as_csv(head, rows)
 
 
 def cables(solution: Solution) -> str:
@@ -73,4 +74,4 @@ def cables(solution: Solution) -> str:
             rows.append(
                 [worst.name, case_name, wind, anchor, top, greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c])]
             )
-    return _csv(head, rows)
+    return as_csv(head, rows)

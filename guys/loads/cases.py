@@ -49,6 +49,7 @@ class LoadCases:
     force (case, node, 3) [N], dyad (case, node, 3, 3) [N m]: on the nodes; on_pieces (case, piece, 4, 3), on_fittings (case, fitting, 3):
     the
     same before they reached the nodes; cable_load (case, cable, 3) [N/m] per unstressed length at the setting temperature;
+    at_ends (case, cable, 2, 3) [N] on what holds the `to` and the `from` end of a cable, as when one parts (`guys.loads.parting`);
     warming (case,) [K] above the setting; present (case, cable), 1 or 0, or a share while a cable fades along a path;
     weight, wind_force (case,) [N] sizes of the total dead and ice load, and of the total wind; lines: what each case is.
     """
@@ -58,6 +59,7 @@ class LoadCases:
     on_pieces: Array
     on_fittings: Array
     cable_load: Array
+    at_ends: Array
     warming: Array
     present: Array
     weight: Array
@@ -114,7 +116,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     names = [c.name for c in scenario.cable]
     present = np.array([[name not in c.without for name in names] for c in lines], dtype=float).reshape(len(lines), -1)
     force, dyad = to_nodes(structure.pieces, both.on_pieces, structure.nodes)
-    _add_points(structure, both.on_fittings, warming, force, dyad)
+    add_points(structure.fittings.point, both.on_fittings, warming, force, dyad)
     cable_weight = hangs * (np.abs(down[..., 2]) * placed.length * present).sum(axis=1)
     cable_wind = hangs * (on_cables * present[..., None]).sum(axis=1)
     return LoadCases(
@@ -123,6 +125,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
         on_pieces=both.on_pieces,
         on_fittings=both.on_fittings,
         cable_load=(down + v[:, None, None] * on_cables / placed.length[:, None]) * hangs,
+        at_ends=np.zeros((*present.shape, 2, 3)),
         warming=warming,
         present=present,
         weight=np.linalg.norm(still.total(), axis=-1) + cable_weight,
@@ -139,11 +142,11 @@ def _move_off(pieces: Pieces, on_pieces: Array, warming: Array) -> None:
     on_pieces[:, :, 1] += warming[:, None, None] * from_foot
 
 
-def _add_points(structure: Structure, on_fittings: Array, warming: Array, force: Array, dyad: Array) -> None:
-    point = structure.fittings.point
-    for k, node in enumerate(point.node):
-        force[:, node] += on_fittings[:, k]
-        dyad[:, node] += outer(point.arm[k] + warming[:, None] * point.growth[k], on_fittings[:, k])
+def add_points(points: Points, on_points: Array, warming: Array, force: Array, dyad: Array) -> None:
+    """Put forces (case, point, 3) at points on their nodes, arms growing with temperature."""
+    for k, node in enumerate(points.node):
+        force[:, node] += on_points[:, k]
+        dyad[:, node] += outer(points.arm[k] + warming[:, None] * points.growth[k], on_points[:, k])
 
 
 def _wind(structure: Structure, lines: Sequence[CaseLine], placed: Placed, w: Weights) -> tuple[dead.Loads, Array]:

@@ -12,6 +12,7 @@ from pydantic import Field
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, End, Ice, Material, Setting, Spar, SparPoint
 from guys.scenario.table import Model
 from guys.scenario.wind_entry import WindEntry
@@ -162,3 +163,5 @@ class ScenarioFile(Model):
     """Least factors asked for."""
     analysis: Analysis = Analysis()
     """How things are modelled."""
+    lost: Lost = Lost()
+    """For `guys lost`."""

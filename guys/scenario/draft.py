@@ -25,6 +25,7 @@ from guys.scenario.document import (
     ScenarioFile,
 )
 from guys.scenario.keys import Finding, Key, nearest
+from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Ice, Material, Setting, Spar
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.resolve import DEFAULT_CASE
@@ -52,6 +53,7 @@ class Draft:
     case: tuple[CaseEntry | None, ...]
     allowables: AllowablesEntry | None
     analysis: Analysis | None
+    lost: Lost | None
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
         """Readable spars by name, with their index; of two with one name the first."""

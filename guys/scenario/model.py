@@ -16,6 +16,7 @@ from pydantic import Discriminator, Field, Tag
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.lost import Lost
 from guys.scenario.table import Model
 
 Base = Literal["pinned", "ball", "hinged", "fixed", "sprung"]
@@ -366,6 +367,7 @@ class Scenario(Model):
     case: tuple[Case, ...]
     allowables: Allowables = Allowables()
     analysis: Analysis = Analysis()
+    lost: Lost = Lost()
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None

@@ -155,6 +155,12 @@ def _present(entries: Iterable[Any]) -> list[Any]:
     return [entry for entry in entries if entry is not None]
 
 
+def _there[T](table: T | None) -> T:
+    """A table, which is not missing once a file has no faults."""
+    assert table is not None
+    return table
+
+
 def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
     spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
     foot = drawn.foot(spars, next(iter(spars)))
@@ -183,6 +189,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         case=resolve.cases(_present(tables.case), setting),
         allowables=resolve.allowables(allowables),
         analysis=analysis,
+        lost=_there(tables.lost),
         sha256=digest,
         path=path,
         notes=() if wind is None else wind.notes,

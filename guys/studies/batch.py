@@ -14,7 +14,7 @@ from guys import band, recovery, stability
 from guys.checks import demands
 from guys.checks.demands import Demands
 from guys.equilibrium import Problem, State
-from guys.loads import CaseLine
+from guys.loads import CaseLine, LoadCases
 from guys.results import SparLine
 from guys.rotation import Array, turned
 from guys.setting import Setting
@@ -29,6 +29,8 @@ PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
 """Called with cases done and cases in all."""
+Change = Callable[[LoadCases, slice], LoadCases]
+"""Changes the loads of the lines of a slice."""
 
 
 @dataclass(frozen=True)
@@ -82,11 +84,15 @@ class Batch:
         return replace(self, **kept, forces=forces, demands=self.demands.take(rows), spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
 
 
-def solve_lines(setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None) -> Batch:
-    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely."""
+def solve_lines(
+    setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None, change: Change | None = None
+) -> Batch:
+    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads."""
     parts = []
     for first in range(0, len(lines), CHUNK):
         problem = setting.under(lines[first : first + CHUNK])
+        if change is not None:
+            problem = replace(problem, loads=change(problem.loads, slice(first, first + CHUNK)))
         judged = stability.judge(problem, setting.state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail))
         if progress is not None:

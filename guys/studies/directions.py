@@ -31,8 +31,7 @@ Solve = Callable[[Sequence[CaseLine]], Batch]
 
 def sweep(templates: Sequence[CaseLine], listed: Batch, solve: Solve) -> Batch:
     """All directions solved for, listed ones included, for one template line of every case with wind."""
-    known = [line.wind_from for line in listed.lines if not math.isnan(line.wind_from)]
-    ring = [float(b) for b in np.arange(0.0, 2 * math.pi, COARSE) if not _near(b, known)]
+    ring = between([line.wind_from for line in listed.lines if not math.isnan(line.wind_from)])
     parts = [_with_wind(listed), solve(_lines(templates, ring))] if ring else [_with_wind(listed)]
     for _ in range(ROUNDS):
         fresh = _worth_trying(join(parts), templates)
@@ -40,6 +39,11 @@ def sweep(templates: Sequence[CaseLine], listed: Batch, solve: Solve) -> Batch:
             break
         parts.append(solve(_lines(templates, fresh)))
     return join(parts)
+
+
+def between(known: Sequence[float]) -> list[float]:
+    """Bearings every COARSE round the circle but for those known."""
+    return [float(b) for b in np.arange(0.0, 2 * math.pi, COARSE) if not _near(b, known)]
 
 
 def _lines(templates: Sequence[CaseLine], bearings: Sequence[float]) -> list[CaseLine]:

@@ -1,0 +1,63 @@
+"""`guys lost`: every cable and every anchor taken away in turn.
+
+Exit status 4 where the structure does not stand with everything in place, 3 where something falls or passes its allowable once a cable or
+anchor is lost.
+"""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+from typing import TextIO
+
+from guys import terminal
+from guys.checks.alarms import CAUTIONS
+from guys.doors.common import pictures, store
+from guys.drawing import rounding
+from guys.drawing.losses import draw_losses, load_row
+from guys.drawing.rounding import Units, tongue
+from guys.exchange import losses
+from guys.scenario import read_scenario
+from guys.studies.lost import FALLS, NOT_FOUND, PAST, WORDS, Lost, judged_by, lose
+
+
+def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
+    """Take everything away in turn; files go to the directory `out` where one is given.
+
+    Raises `GuysError` for what is the user's to mend; nothing is written then.
+    """
+    scenario = read_scenario(file)
+    with terminal.progress(sys.stderr) as tick:
+        found = lose(scenario, tick)
+    contents = {"lost.json": losses.as_text(found).encode(), "lost.csv": losses.as_table(found).encode()}
+    written = [] if out is None else store(Path(out), contents | pictures("lost", draw_losses(found, "A3", units), found.scenario.title))
+    if as_json:
+        sys.stdout.write(losses.as_text(found))
+    else:
+        report(found, units, sys.stdout)
+        terminal.files(written, sys.stdout)
+    return status(found)
+
+
+def status(found: Lost) -> int:
+    """The exit status."""
+    verdict = found.verdict
+    if (verdict == NOT_FOUND).any():
+        return 1
+    return 4 if (verdict[0] >= FALLS).any() else 3 if (verdict >= PAST).any() else 0
+
+
+def report(found: Lost, units: Units, stream: TextIO) -> None:
+    """One line a loss: in how many cases and winds it falls, and the worst of those in which it stands."""
+    stream.write(f"{found.scenario.title}\n{len(found.losses) - 1} losses, {len(found.lines)} cases and winds each\n")
+    head = ["lost", "still air", "falls", "past", "least factor", "of", "wind from", "tension", "of", "pull", "of"]
+    rows = []
+    for k, loss in enumerate(found.losses):
+        verdict = found.cells[k].verdict
+        counts = ["all" if found.still[k] else str(int((verdict >= FALLS).sum())), str(int((verdict == PAST).sum()))]
+        rows.append([loss.words, WORDS[verdict[0]], *counts, *load_row(found, k, tongue(units), rounding.load)])
+    terminal.table("What is lost, and what stands", head, rows, stream)
+    falls = [f"{loss.words}: {cells.reason[0]}" for loss, cells in zip(found.losses, found.cells, strict=True) if cells.reason[0]]
+    for title, lines in (("Falls in still air when lost", falls), ("How", judged_by(found)), ("Cautions", CAUTIONS)):
+        if lines:
+            stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))

@@ -1,0 +1,285 @@
+"""Every cable and every anchor taken away in turn, every case and direction: stands or falls, and what is left of the factors.
+
+An anchor lost takes all its cables with it; with `lost.pairs` every two cables and every two anchors go together as well.  Unstressed
+lengths are those of the whole structure as set.  Still air comes first: dead load alone, without what is lost.  What falls then is said to
+fall in every case and wind, and these are not solved: a wind that would hold it up drops.  All else is solved, in batches:
+
+    1. every case and direction with all cables   2. still air without each   3. every case and direction without each that stands
+    4. with `lost.sudden` > 1 the same again at the far point of the swing (`guys.loads.parting`); loads and verdicts are the worse of both
+
+A loss that leaves the same cables as another (an anchor with one cable) is solved once.  Directions are the scenario's own and every 10
+degrees round the circle; peaks between them are not narrowed down.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass, fields, replace
+from itertools import combinations
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+
+from guys import stability
+from guys.checks.demands import Demands, Item
+from guys.checks.extremes import measures
+from guys.loads import CaseLine, lines_of, setting_line
+from guys.loads.parting import parted
+from guys.recovery import Forces
+from guys.rotation import Array
+from guys.scenario import Scenario
+from guys.scenario.model import AnchorPoint
+from guys.setting import Setting, find
+from guys.structure import build
+from guys.studies.batch import Batch, Change, Progress, recover, solve_lines
+from guys.studies.directions import between
+from guys.version import __version__
+
+Kind = Literal["nothing", "cable", "anchor", "two cables", "two anchors"]
+WORDS = ("within", "not judged", "past", "falls", "not found")
+WITHIN, NOT_JUDGED, PAST, FALLS, NOT_FOUND = range(5)
+"""Verdicts, the graver the greater; NOT_FOUND: the solver failed, a fault of the program."""
+ITS_STILL_AIR = "falls in still air already; this wind was not solved"
+
+
+@dataclass(frozen=True)
+class Loss:
+    """What is lost: nothing, one or two cables or anchors by name; cables : all that go with it."""
+
+    kind: Kind
+    name: tuple[str, ...]
+    cables: tuple[str, ...]
+
+    @property
+    def words(self) -> str:
+        """Its name in tables."""
+        return "nothing" if self.kind == "nothing" else f"{self.kind} {' and '.join(self.name)}"
+
+
+@dataclass(frozen=True)
+class Cells:
+    """What became of some cases (case,), the worse of what is held together.
+
+    verdict : code;  reason : why it falls
+    use, governs, required : greatest use of anything judged, its item and the factor required (NaN, -1, NaN: nothing)
+    tension : (case, cable) greater end [N];  pull : (case, anchor) resultant [N]
+    """
+
+    verdict: NDArray[np.int64]
+    use: Array
+    governs: NDArray[np.int64]
+    required: Array
+    tension: Array
+    pull: Array
+    reason: tuple[str, ...]
+
+    def take(self, rows: Sequence[int]) -> Cells:
+        """The cases `rows`."""
+        k = np.array(rows, dtype=np.int64)
+        some = {f.name: getattr(self, f.name)[k] for f in fields(Cells) if f.name != "reason"}
+        return Cells(**some, reason=tuple(self.reason[r] for r in rows))
+
+
+@dataclass(frozen=True)
+class Lost:
+    """What the study found.
+
+    losses : the first is nothing;  lines : the first is still air;  cells : (loss,) of the lines each;  items : everything judged
+    still : (loss,) falls in still air, so that its other lines were not solved
+    """
+
+    scenario: Scenario
+    version: str
+    losses: tuple[Loss, ...]
+    lines: tuple[CaseLine, ...]
+    cells: tuple[Cells, ...]
+    items: tuple[Item, ...]
+    still: tuple[bool, ...]
+
+    @property
+    def verdict(self) -> NDArray[np.int64]:
+        """(loss, line) codes."""
+        return np.array([c.verdict for c in self.cells])
+
+
+def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
+    """Take everything away in turn.
+
+    A structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets the initial tensions.
+    """
+    scenario = after_a_loss(scenario)
+    setting = find(build(scenario))
+    losses, lines = losses_of(scenario), _lines(scenario)
+    if not setting.stands:
+        return _nothing_stands(setting, losses, lines)
+    whole = solve_lines(setting, lines, False, progress)
+    sets = list(dict.fromkeys(loss.cables for loss in losses[1:]))
+    first = _solved(setting, sets, whole, slice(0, 1), progress)
+    standing = [s for s in sets if first[s].verdict[0] < FALLS]
+    rest = _solved(setting, standing, whole, slice(1, None), progress)
+    found = {s: _joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
+    cells = (_cells(whole), *(found[loss.cables] for loss in losses[1:]))
+    still = tuple(len(loss.cables) > 0 and loss.cables not in rest for loss in losses)
+    return Lost(scenario, __version__, losses, lines, cells, whole.demands.items, still)
+
+
+def after_a_loss(scenario: Scenario) -> Scenario:
+    """The scenario with the allowables of `[lost]` where it gives its own."""
+    allowed = scenario.allowables
+    own = {key: value for key in ("cable", "anchor", "sliding", "lean") if (value := getattr(scenario.lost, key)) is not None}
+    return scenario.model_copy(update={"allowables": allowed.model_copy(update={**own, "defaulted": allowed.defaulted - own.keys()})})
+
+
+def losses_of(scenario: Scenario) -> tuple[Loss, ...]:
+    """Nothing, every cable, every anchor that holds one, and every two of each where asked for."""
+    cables = {c.name: (c.name,) for c in scenario.cable}
+    anchors = {a.name: _held_by(scenario, a.name) for a in scenario.anchor}
+    anchors = {name: held for name, held in anchors.items() if held}
+    out = [Loss("nothing", (), ())]
+    out += [Loss("cable", (name,), some) for name, some in cables.items()]
+    out += [Loss("anchor", (name,), some) for name, some in anchors.items()]
+    if scenario.lost.pairs:
+        out += [Loss("two cables", pair, pair) for pair in combinations(cables, 2)]
+        out += [Loss("two anchors", (a, b), _in_order(scenario, {*anchors[a], *anchors[b]})) for a, b in combinations(anchors, 2)]
+    return tuple(out)
+
+
+def _held_by(scenario: Scenario, anchor: str) -> tuple[str, ...]:
+    return tuple(c.name for c in scenario.cable if isinstance(c.to, AnchorPoint) and c.to.anchor == anchor)
+
+
+def _in_order(scenario: Scenario, names: set[str]) -> tuple[str, ...]:
+    return tuple(c.name for c in scenario.cable if c.name in names)
+
+
+def _lines(scenario: Scenario) -> tuple[CaseLine, ...]:
+    """Still air, then every case, the windy ones in the scenario's directions and every 10 degrees, in order round the circle."""
+    own = scenario.wind.directions if scenario.wind is not None else ()
+    return (setting_line(scenario), *lines_of(scenario, sorted([*own, *between(own)])))
+
+
+def _solved(
+    setting: Setting, sets: Sequence[tuple[str, ...]], whole: Batch, some: slice, progress: Progress | None
+) -> dict[tuple[str, ...], Cells]:
+    """The cells of every set of cables taken away in some lines of the whole structure, all in one batch."""
+    lines = whole.lines[some]
+    wanted = [replace(line, without=tuple(dict.fromkeys((*line.without, *s)))) for s in sets for line in lines]
+    if not wanted:
+        return {}
+    cells = _cells(solve_lines(setting, wanted, False, progress))
+    sudden = setting.problem.structure.scenario.lost.sudden
+    if sudden > 1:
+        swing = _swing(setting, whole, np.tile(np.arange(len(whole.lines))[some], len(sets)), sudden)
+        cells = _worse(cells, _cells(solve_lines(setting, wanted, False, progress, swing)))
+    n = len(lines)
+    return {s: cells.take(range(k * n, (k + 1) * n)) for k, s in enumerate(sets)}
+
+
+def _swing(setting: Setting, whole: Batch, rows: NDArray[np.int64], sudden: float) -> Change:
+    """What the cables that go leave over of the forces they exert in the same case with all of them; nothing where that does not stand."""
+    structure, forces = setting.problem.structure, whole.forces
+    at_to, at_from = (np.nan_to_num(getattr(forces, name)[rows]) for name in ("on_anchor", "on_spar"))
+    return lambda loads, some: parted(structure, loads, at_to[some], at_from[some], sudden)
+
+
+def _cells(batch: Batch) -> Cells:
+    """Verdicts and loads of every line; a line that branches has the worse of both its states."""
+    stands = (batch.code == stability.STABLE) | batch.spins
+    plain = _read(batch.demands, batch.forces)
+    if batch.mirror is not None and batch.mirror_demands is not None:
+        beside = _read(batch.mirror_demands, batch.mirror)
+        row = {line: k for k, line in enumerate(batch.lines)}
+        for k, line in enumerate(batch.mirror_lines):
+            _put_worse(plain, row[line], beside, k)
+    use, required, governs, tension, pull = plain
+    judged = np.where(np.isnan(use), NOT_JUDGED, np.where(use > 1, PAST, WITHIN))
+    verdict = np.where(stands, judged, np.where(batch.code == stability.FAILED, NOT_FOUND, FALLS))
+    reason = tuple("" if ok else (why or note or "") for ok, why, note in zip(stands, batch.reason, batch.note, strict=True))
+    return _without_loads(Cells(verdict, use, governs, required, tension, pull, reason))
+
+
+def _without_loads(cells: Cells) -> Cells:
+    """The cells with nothing but verdict and reason where they do not stand."""
+    gone = cells.verdict >= FALLS
+    use, required = np.where(gone, np.nan, cells.use), np.where(gone, np.nan, cells.required)
+    tension, pull = np.where(gone[:, None], np.nan, cells.tension), np.where(gone[:, None], np.nan, cells.pull)
+    return Cells(cells.verdict, use, np.where(gone, -1, cells.governs), required, tension, pull, cells.reason)
+
+
+_Plain = tuple[Array, Array, NDArray[np.int64], Array, Array]
+
+
+def _read(judged: Demands, forces: Forces) -> _Plain:
+    """Greatest use with the factor required and its item, tensions and pulls."""
+    known, each = np.where(np.isnan(judged.use), -1.0, judged.use), np.arange(len(judged.use))
+    best = known.argmax(axis=1)
+    none = known[each, best] < 0
+    use, required = (np.where(none, np.nan, a[each, best]) for a in (known, judged.required))
+    found = measures(forces)
+    return use, required, np.where(none, -1, best), found.tension, found.resultant
+
+
+def _put_worse(mine: _Plain, k: int, other: _Plain, j: int) -> None:
+    if other[0][j] > mine[0][k]:
+        for a, b in zip(mine[:3], other[:3], strict=True):
+            a[k] = b[j]
+    for a, b in zip(mine[3:], other[3:], strict=True):
+        a[k] = np.fmax(a[k], b[j])
+
+
+def _worse(a: Cells, b: Cells) -> Cells:
+    """Line by line the graver verdict, the greater use and the greater loads; none of these where it falls in either."""
+    swings = (b.use > a.use) | np.isnan(a.use)
+    governs, required = np.where(swings, b.governs, a.governs), np.where(swings, b.required, a.required)
+    reason = tuple(x or (f"as it swings: {y}" if y else "") for x, y in zip(a.reason, b.reason, strict=True))
+    use, tension, pull = (np.fmax(getattr(a, n), getattr(b, n)) for n in ("use", "tension", "pull"))
+    return _without_loads(Cells(np.maximum(a.verdict, b.verdict), use, governs, required, tension, pull, reason))
+
+
+def _joined(a: Cells, b: Cells) -> Cells:
+    both = {f.name: np.concatenate([getattr(a, f.name), getattr(b, f.name)]) for f in fields(Cells) if f.name != "reason"}
+    return Cells(**both, reason=a.reason + b.reason)
+
+
+def _fallen(still: Cells, lines: int) -> Cells:
+    """One that falls in still air: so in every other line too, which are not solved."""
+    every = still.take([0] * lines)
+    return replace(every, reason=(still.reason[0], *[ITS_STILL_AIR] * (lines - 1)))
+
+
+def _nothing_stands(setting: Setting, losses: tuple[Loss, ...], lines: tuple[CaseLine, ...]) -> Lost:
+    """Where the structure falls in still air with all its cables, so it does without some."""
+    alone = recover(setting.problem, setting.judged, detail=False)
+    cells = _fallen(_cells(alone), len(lines))
+    scenario = setting.problem.structure.scenario
+    many = len(losses)
+    return Lost(scenario, __version__, losses, lines, (cells,) * many, alone.demands.items, (True,) * many)
+
+
+def worst_first(cells: Cells) -> int:
+    """The line of the gravest verdict, and of these of the greatest use."""
+    return max(range(len(cells.use)), key=lambda k: (cells.verdict[k], -math.inf if math.isnan(cells.use[k]) else cells.use[k]))
+
+
+def worst_use(cells: Cells) -> int | None:
+    """The line of the greatest use; None where nothing is judged or nothing stands."""
+    return None if np.isnan(cells.use).all() else int(np.nanargmax(cells.use))
+
+
+def judged_by(found: Lost) -> tuple[str, ...]:
+    """What was tested, and how, in words."""
+    sudden = found.scenario.lost.sudden
+    swing = "Taken away slowly: the swing of a cable that parts at once is not in these loads; lost.sudden puts it in."
+    if sudden > 1:
+        swing = (
+            f"The far point of the swing has the lost cable's end forces taken away {sudden:g} times (lost.sudden, the user's): an "
+            "equivalent static load; 2 bounds one linear step without damping. Loads and verdicts are the worse of swing and rest."
+        )
+    return (
+        "Taken from the whole structure as set, unstressed lengths kept. Still air (dead load alone) comes first: what falls in it is said "
+        "to fall in every case and wind, and those were not solved. Loads and factors are of what stands.",
+        "Wind from the listed directions and every 10°; peaks between them are not narrowed down.",
+        swing,
+    )
