@@ -26,8 +26,9 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
-from guys.exchange import result, tables
+from guys.exchange import losses, result, tables
 from guys.scenario import draft, schema, starters
+from guys.studies.lost import WORDS, lose
 
 REPOSITORY = Path(__file__).parent.parent
 PAGES = [REPOSITORY / "README.md", REPOSITORY / "DEVELOPERS.md", *sorted((REPOSITORY / "docs").glob("*.md"))]
@@ -194,6 +195,7 @@ TABLES = {
     "CaseEntry": "[[case]]`",
     "AllowablesEntry": "[allowables]`",
     "Analysis": "[analysis]`",
+    "Lost": "[lost]`",
 }
 
 
@@ -239,6 +241,13 @@ def test_the_guide_names_every_key_and_column_of_the_results() -> None:
     told = keys_of(result.as_dict(solution)) - names
     assert not sorted(told - known - {"lift_N", "sideways_N"})
     assert not [column for head in heads for column in head if column not in known]
+
+
+def test_the_guide_names_every_key_and_column_of_the_losses() -> None:
+    found = lose(parse_scenario(starters.text("boom")))
+    known = code_words("docs/user-guide.md")
+    assert not sorted(keys_of(losses.as_dict(found)) - known - set(WORDS))
+    assert not [column for column in losses.as_table(found).splitlines()[0].split(",") if column not in known]
 
 
 def test_the_guide_names_every_command_and_option() -> None:

@@ -44,7 +44,7 @@ NOT_CHECKED = (
     "what holds the anchors (no holdfasts in this version)",
     "lugs, terminations and turnbuckles",
     "section stresses and the ground under the base",
-    "raising, fatigue, vibration, loss of a cable unless listed as a case",
+    "raising, fatigue, vibration, loss of a cable unless listed as a case (`guys lost` takes each away)",
 )
 
 

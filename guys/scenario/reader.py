@@ -8,7 +8,7 @@ import tomllib
 from collections.abc import Iterable, Iterator
 from contextlib import suppress
 from os import PathLike, fspath
-from typing import Any
+from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
 from guys.scenario import drawn, frame, names, plausible, resolve, rigging, unavailable, weather
@@ -21,6 +21,7 @@ LARGEST = 5_000_000
 """Bytes a scenario file may have."""
 
 FORMAT = 1
+_Table = TypeVar("_Table")
 _TOO_DEEP = "not readable as TOML: nested too deeply"
 _DEEP = re.compile(r"(?:^|[\[{,])[ \t]*(?:[\w\"'-]+[ \t]*\.[ \t]*){32}", re.MULTILINE)
 _PLACE = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
@@ -155,7 +156,7 @@ def _present(entries: Iterable[Any]) -> list[Any]:
     return [entry for entry in entries if entry is not None]
 
 
-def _there[T](table: T | None) -> T:
+def _there(table: _Table | None) -> _Table:
     """A table, which is not missing once a file has no faults."""
     assert table is not None
     return table
