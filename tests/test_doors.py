@@ -156,7 +156,7 @@ def test_a_fault_while_the_sheet_is_drawn_writes_nothing(tmp_path: Path, monkeyp
     def broken(*_: object, **__: object) -> bytes:
         raise RuntimeError("no such luck")
 
-    monkeypatch.setattr(door, "figure_bytes", broken)
+    monkeypatch.setattr(common, "figure_bytes", broken)
     with pytest.raises(RuntimeError, match="no such luck"):
         door.write(made.solved(made.mast()), tmp_path / "out", "SI", "A4", None)
     assert left_in(tmp_path / "out") == []
