@@ -41,7 +41,6 @@ CAUTIONS = (
     "Nothing added to the mast. Check holdfasts after rain, thaw and wind, and each morning.",
 )
 NOT_CHECKED = (
-    "what holds the anchors (no holdfasts in this version)",
     "lugs, terminations and turnbuckles",
     "section stresses and the ground under the base",
     "raising, fatigue, vibration, loss of a cable unless listed as a case (`guys lost` takes each away)",

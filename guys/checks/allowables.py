@@ -44,20 +44,24 @@ def _reserve(finding: Finding) -> float:
 
 
 def _finding(item: Item, demands: Demands, use: Array, k: int, lines: Sequence[CaseLine]) -> Finding:
-    """The governing case of item `k`: that of the greatest use, of the greatest demand where it is not judged."""
-    score = np.where(np.isnan(use), -np.inf, use) if not np.isnan(use).all() else demands.demand[:, k]
+    """The governing case of item `k`: that of the greatest use; of the greatest demand not judged, where nothing judged is past."""
+    demand, capacity, required, mode = (a[:, k] for a in (demands.demand, demands.capacity, demands.required, demands.mode))
+    unknown = np.isnan(capacity) & (demand > 0)
+    score = np.where(np.isnan(use), -np.inf, use)
+    if np.isnan(use).all() or (unknown.any() and score.max() <= 1.0):
+        score = np.where(unknown, demand, np.nan) if unknown.any() else demand
     if np.isnan(score).all():
-        lacking = np.isnan(demands.capacity[:, k]).all()
+        lacking = np.isnan(capacity).all()
         return Finding(
-            item.thing, item.quantity, math.nan, float(demands.capacity[0, k]), item.unit, float(demands.required[0, k]), math.nan,
+            item.thing, item.quantity, math.nan, float(capacity[0]), item.unit, float(required[0]), math.nan,
             "not judged", "", math.nan, item.lacking if lacking else NO_LOAD, item.default, item.source,
         )  # fmt: skip
     row, first = governing(score)
-    demand, capacity, required, factor = (float(a[row, k]) for a in (demands.demand, demands.capacity, demands.required, demands.factor))
-    line, why = lines[first], item.lacking if math.isnan(factor) else item.why
+    factor, line = float(demands.factor[row, k]), lines[first]
     return Finding(
-        item.thing, item.quantity, demand, capacity, item.unit, required, factor, judge(factor, required), line.name, line.wind_from, why,
-        item.default, item.source, item.modes[mode] if (mode := int(demands.mode[row, k])) >= 0 else "",
+        item.thing, item.quantity, float(demand[row]), float(capacity[row]), item.unit, float(required[row]), factor,
+        judge(factor, float(required[row])), line.name, line.wind_from, item.lacking if math.isnan(factor) else item.why,
+        item.default, item.source, item.modes[int(mode[row])] if mode[row] >= 0 else "",
     )  # fmt: skip
 
 

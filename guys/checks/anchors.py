@@ -1,21 +1,83 @@
-"""Anchors: holding over pull; not judged without a holdfast.
+"""Anchors: what holds each, along the pull of each case, over that pull.
+
+    demand    the resultant of all that pulls on the anchor
+    capacity  the low value of its holdfast along that pull's direction: of what it may hold the least is judged, the best and the high
+              value stand beside it in words
+
+Holding depends on the direction, so the worst case is that of the least factor, which need not be that of the greatest pull.  Where the
+holdfast is not judged in a direction (a downward pull on a deadman) and all cables of the anchor are slack, what hangs there is no demand.
+An anchor without a holdfast is reported and not judged.
 """
 
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator
 
+import numpy as np
+from numpy.typing import NDArray
+
+from guys import holdfasts
 from guys.checks.items import Demands, Item, group
 from guys.equilibrium import Problem
+from guys.recovery import Forces
 from guys.rotation import Array
+from guys.scenario import Scenario
+from guys.scenario.holding import Holdfast
+from guys.scenario.model import AnchorPoint
+
+NOTHING = "no holdfast given: what holds it is not checked"
+USUAL = math.radians(45.0)
+"""A pull at which a holdfast is asked what it lacks and how far its values spread; both are the same for all pulls, or nearly."""
 
 
-def demands(problem: Problem, pull: Array) -> Demands:
-    """Holding against pull, one item an anchor; pull : (case, anchor) [N]."""
+def demands(problem: Problem, forces: Forces) -> Demands:
+    """Holding against pull, one item an anchor."""
     scenario = problem.structure.scenario
-    allowed = scenario.allowables
-    lacking = "no holdfast given: what holds it is not checked"
-    items = [
-        Item(f"anchor {a.name}", "pull", "N", "holding over pull", lacking, default="anchor" in allowed.defaulted) for a in scenario.anchor
-    ]
-    return group(items, pull, math.nan, allowed.anchor)
+    pull = np.linalg.norm(forces.pull, axis=-1)
+    capacity, mode = np.full(pull.shape, np.nan), np.full(pull.shape, -1)
+    idle, default = _idle(scenario, forces), "anchor" in scenario.allowables.defaulted
+    items = []
+    for k, anchor in enumerate(scenario.anchor):
+        thing = f"anchor {anchor.name}"
+        if anchor.holdfast is None:
+            items.append(Item(thing, "pull", "N", "", NOTHING, default=default))
+            continue
+        holdfast = scenario.holdfast[anchor.holdfast]
+        found = holdfasts.of(holdfast, angle(forces.pull[:, k]))
+        capacity[:, k], mode[:, k] = found.low, found.mode
+        pull[:, k] = np.where(idle[:, k] & np.isnan(found.low) & ~np.isnan(pull[:, k]), 0.0, pull[:, k])
+        why, lacking = f"{anchor.holdfast} over pull{_range(holdfast)}", f"{anchor.holdfast} is not judged in this direction"
+        items.append(Item(thing, "pull", "N", why, lacking, found.source, default, modes=found.modes))
+    return group(items, pull, capacity, scenario.allowables.anchor, mode)
+
+
+def angle(pull: Array) -> Array:
+    """Angle of pulls (case, 3) above the horizontal [rad]."""
+    return np.asarray(np.arctan2(pull[:, 2], np.hypot(pull[:, 0], pull[:, 1])))
+
+
+def _range(holdfast: Holdfast) -> str:
+    """Where best and high stand above the low value that is judged, where they do."""
+    found = holdfasts.of(holdfast, np.array([USUAL]))
+    best, high = float(found.best[0] / found.low[0]), float(found.high[0] / found.low[0])
+    return f", its low value; best {best:.3g} and high {high:.3g} times that" if best > 1.0 or high > 1.0 else ""
+
+
+def _idle(scenario: Scenario, forces: Forces) -> NDArray[np.bool_]:
+    """(case, anchor) where every cable of the anchor is slack or taken away."""
+    ends = [c.to.anchor if isinstance(c.to, AnchorPoint) else None for c in scenario.cable]
+    pulling = forces.present & ~forces.slack
+    columns = [~pulling[:, [k for k, end in enumerate(ends) if end == a.name]].any(axis=1) for a in scenario.anchor]
+    return np.array(columns, dtype=bool).reshape(len(scenario.anchor), len(pulling)).T
+
+
+def unchecked(scenario: Scenario) -> Iterator[str]:
+    """What is not looked at of what holds the anchors, in words."""
+    bare = [anchor.name for anchor in scenario.anchor if anchor.holdfast is None]
+    if bare:
+        yield f"what holds {', '.join(bare)}: no holdfast given"
+    for name in dict.fromkeys(anchor.holdfast for anchor in scenario.anchor if anchor.holdfast is not None):
+        lacking = holdfasts.of(scenario.holdfast[name], np.array([USUAL])).unjudged
+        if lacking:
+            yield f"holdfast {name}: {'; '.join(lacking)}"

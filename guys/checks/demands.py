@@ -25,6 +25,6 @@ def of(problem: Problem, state: State, found: Evaluation, forces: Forces) -> Dem
             chains.demands(problem, m.tension),
             bases.sliding(problem, m.slide),
             spars.leans(problem, m.lean),
-            anchors.demands(problem, m.resultant),
+            anchors.demands(problem, forces),
         ]
     )

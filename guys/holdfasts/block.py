@@ -23,7 +23,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from guys.constants import STANDARD_GRAVITY
+from guys.constants import NONZERO, STANDARD_GRAVITY
 from guys.holdfasts.holding import Holding, at_most, governed
 from guys.rotation import Array
 
@@ -94,5 +94,6 @@ def _bearing(weight: float, slope: float, tilt: Array, side: float, eye: float, 
     if C >= 0.0:
         return np.zeros_like(tilt)
     root = np.sqrt(B**2 - 4 * A * C)
-    some = np.where(B >= 0.0, -2 * C / np.where(B >= 0.0, np.maximum(B + root, 1e-300), 1.0), (root - B) / np.where(B < 0.0, 2 * np.maximum(A, 1e-300), 1.0))
-    return np.asarray(some)
+    upward = B >= 0.0  # the root in the form that does not cancel
+    plain = (root - B) / np.where(upward, 1.0, 2 * np.maximum(A, NONZERO))
+    return np.asarray(np.where(upward, -2 * C / np.where(upward, np.maximum(B + root, NONZERO), 1.0), plain))

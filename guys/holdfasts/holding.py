@@ -16,31 +16,36 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
 from guys.rotation import Array
 
 TOLD = math.radians(10.0)
 MOST_OFF = math.radians(30.0)
 DOWNWARD = "the pull is downward"
-Refusal = tuple[Array, str]
-"""Cases that are not judged (case,) bool, and why."""
 
 
 @dataclass(frozen=True)
 class Holding:
-    """low, best, high : (case,) [N] along the pull, NaN where not judged;  mode : (case,) what governs, or why it is not judged
+    """low, best, high : (case,) [N] along the pull, NaN where not judged
 
+    modes : in words, what may govern and why it may not be judged;  mode : (case,) which of them holds
     source : where the numbers come from;  notes : what was taken for granted;  unjudged : ways of giving way that lack data
     """
 
     low: Array
     best: Array
     high: Array
-    mode: tuple[str, ...]
+    modes: tuple[str, ...]
+    mode: NDArray[np.int64]
     source: str
     notes: tuple[str, ...] = ()
     unjudged: tuple[str, ...] = ()
+
+    @property
+    def words(self) -> tuple[str, ...]:
+        """What holds in each case."""
+        return tuple(self.modes[k] for k in self.mode)
 
     def citing(self, source: str) -> Holding:
         """With the user's own source before ours."""
@@ -63,20 +68,20 @@ def governed(
     rod : angle of the rod above the horizontal [rad], None where it lies in the pull's line
     """
     a = np.atleast_1d(np.asarray(angle, dtype=float))
-    names = list(ways)
-    every = np.stack([np.broadcast_to(np.asarray(ways[name], dtype=float), a.shape) for name in names])
+    every = np.stack([np.broadcast_to(np.asarray(way, dtype=float), a.shape) for way in ways.values()])
+    off = np.zeros_like(a) if rod is None else np.abs(a - rod)
     first = np.argmin(every, axis=0)
     best = np.take_along_axis(every, first[None], axis=0)[0]
-    off = np.zeros_like(a) if rod is None else np.abs(a - rod)
-    words = [names[k] + (f", pulled {math.degrees(o):.0f}° off its rod, which bends it" if o > TOLD else "") for k, o in zip(first, off, strict=True)]
-    every_refusal = [*refused, (off > MOST_OFF, f"pulled more than {math.degrees(MOST_OFF):.0f}° off its rod"), (np.isnan(a), "no pull")]
-    for where, why in every_refusal:
+    mode = first + np.where(off > TOLD, len(ways), 0)
+    bent = [] if rod is None else [f"{way}, pulled off its rod, which bends it" for way in ways]
+    reasons = [*refused, (off > MOST_OFF, f"pulled more than {math.degrees(MOST_OFF):.0f}° off its rod"), (np.isnan(a), "no pull")]
+    for k, (where, _) in enumerate(reasons):
         cases = np.broadcast_to(np.asarray(where, dtype=bool), a.shape) & ~np.isnan(best)
-        words = [why if refuse else word for word, refuse in zip(words, cases, strict=True)]
-        best = np.where(cases, np.nan, best)
-    low, high = (np.where(np.isnan(best), np.nan, best * np.asarray(share)) for share in spread)
+        mode, best = np.where(cases, len(ways) + len(bent) + k, mode), np.where(cases, np.nan, best)
+    low, high = (best * np.asarray(share) for share in spread)
     more = () if rod is None else ("its rod lies in the upright plane of the pull",)
-    return Holding(low, best, high, tuple(words), source, (*notes, *more), tuple(unjudged))
+    modes = (*ways, *bent, *(reason for _, reason in reasons))
+    return Holding(low, best, high, modes, mode, source, (*notes, *more), tuple(unjudged))
 
 
 def at_most(load: ArrayLike, per_pull: ArrayLike) -> Array:

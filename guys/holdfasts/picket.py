@@ -31,7 +31,9 @@ STEEPEST = math.radians(45.0)
 @cache
 def combinations() -> dict[str, tuple[int, float, str]]:
     """Pattern -> number of pickets, holding in loam [N], source; the weakest first."""
-    found = {row["pattern"]: (int(row["pickets"]), float(row["holding_lbf"]) * float(POUND) * STANDARD_GRAVITY, row["source"]) for row in tables.rows("pickets")}
+    pound_force = float(POUND) * STANDARD_GRAVITY
+    rows = tables.rows("pickets")
+    found = {row["pattern"]: (int(row["pickets"]), float(row["holding_lbf"]) * pound_force, row["source"]) for row in rows}
     return dict(sorted(found.items(), key=lambda item: item[1][1]))
 
 
@@ -56,5 +58,8 @@ def holding(
         "wooden pickets of 3 in by 5 ft, driven 3 to 4 ft, raked 15° away from the pull, 3 to 6 ft apart, undisturbed ground",
         f"the source names no angle of pull; taken up to {math.degrees(steepest):g}° from the ground",
     ]
-    refused = ((a < 0.0, DOWNWARD), (a > steepest * (1 + 1e-9), f"the pull is steeper than {math.degrees(steepest):g}°, which draws a picket"))
+    refused = (
+        (a < 0.0, DOWNWARD),
+        (a > steepest * (1 + 1e-9), f"steeper than {math.degrees(steepest):g}°, which draws a picket"),
+    )
     return governed({f"{pattern} combination": np.full(a.shape, pull * factor)}, a, source, (low, high), refused, notes=notes)

@@ -47,7 +47,7 @@ def holding(
     low: float = 1.0,
     high: float = 1.0,
 ) -> Holding:
-    """Holding of a grouted bar; lengths [m], stresses [Pa], unit_weight of the rock [N/m3], angles [rad]; area: of the bar's thread [m2]."""
+    """Holding of a grouted bar; lengths [m], area of its thread [m2], stresses [Pa], unit_weight of the rock [N/m3], angles [rad]."""
     a = np.asarray(angle, dtype=float)
     ways = {"bond between grout and bar": np.full(a.shape, math.pi * bar * bond_length * bond_stress)}
     unjudged = []

@@ -26,7 +26,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from guys import tables
-from guys.constants import INCH, STANDARD_GRAVITY
+from guys.constants import INCH, NONZERO, STANDARD_GRAVITY
 from guys.holdfasts.holding import DOWNWARD, Holding, governed
 from guys.rotation import Array
 
@@ -49,7 +49,8 @@ def holding(
     *,
     helix: Sequence[float],
     depth: float,
-    soil: Mapping[str, float],
+    soil: Mapping[str, float] | None = None,
+    torque: float | None = None,
     spacing: float | None = None,
     shaft: Mapping[str, float] | None = None,
     wet: bool = False,
@@ -60,28 +61,30 @@ def holding(
     """Holding of a screw anchor.
 
     helix : diameters [m], the lowest plate first;  depth : of the lowest plate below the ground [m];  spacing : along the shaft [m]
-    soil : friction_angle [rad] and unit_weight [N/m3], or cohesion [Pa], or torque [N m];  shaft : { square: } or { round: } [m]
+    soil : friction_angle [rad] and unit_weight [N/m3], or cohesion [Pa], or torque [N m]
+    torque : in place of soil [N m];  shaft : { square: } or { round: } [m]
     rod : angle of the shaft above the horizontal [rad]; None: in line with the pull
     """
     a = np.asarray(angle, dtype=float)
     size = np.asarray(helix, dtype=float)
+    ground = {"torque": torque} if soil is None and torque is not None else dict(soil or {})
     H = plate_depths(size, depth, spacing, np.clip(a if rod is None else np.full_like(a, rod), 0.0, np.pi / 2))
     A = np.pi / 4 * (size**2 - _hole(shaft))
     notes = [] if len(size) == 1 else [f"plates {APART:g} diameters apart or more: each acts alone"]
     spread: ArrayLike = 1.0
-    if "torque" in soil:
+    if "torque" in ground:
         factor, source = torque_factor(shaft or {})
-        ways = {"torque correlation": np.full(a.shape, factor * soil["torque"])}
+        ways = {"torque correlation": np.full(a.shape, factor * ground["torque"])}
         notes.append(f"Kt = {factor:.3g}/m ({source})")
-    elif "cohesion" in soil:
-        ways, source = clay(H, size, A, soil["cohesion"]), "9 c per plate; breakout in clay Meyerhof 1973 (from memory)"
+    elif "cohesion" in ground:
+        ways, source = clay(H, size, A, ground["cohesion"]), "9 c per plate; breakout in clay Meyerhof 1973 (from memory)"
         notes.append("clay judged by its undrained cohesion; the weight of the ground above is left out")
     else:
-        weight = soil["unit_weight"] - (WATER if wet else 0.0)
-        ways, source = sand(H, size, A, soil["friction_angle"], weight), "gamma D Nq per plate; breakout in sand Meyerhof and Adams 1968"
-        lesser = sand(H, size, A, soil["friction_angle"], weight, critical=True)
+        weight = ground["unit_weight"] - (WATER if wet else 0.0)
+        ways, source = sand(H, size, A, ground["friction_angle"], weight), "gamma D Nq per plate; breakout in sand Meyerhof and Adams 1968"
+        lesser = sand(H, size, A, ground["friction_angle"], weight, critical=True)
         least, most = (np.min(list(some.values()), axis=0) for some in (lesser, ways))
-        spread = least / np.maximum(most, 1e-300)
+        spread = least / np.maximum(most, NONZERO)
         if low is None:
             notes.append("the low value holds breakout at the critical depth of Meyerhof and Adams (from memory)")
     return governed(ways, a, source, (spread if low is None else low, high), ((a < 0.0, DOWNWARD),), rod, notes)

@@ -32,7 +32,7 @@ def holding(
         return governed(holds, a, SOURCE, (low, high), notes=("tested at the pull's own angle, as the file says",))
     off = np.abs(a - test_angle)
     far = ((off > MOST_OFF, f"pulled more than {math.degrees(MOST_OFF):.0f}° off the direction of the test"),)
-    notes = (f"tested at {math.degrees(test_angle):g}° from the ground",)
+    notes = [f"tested at {math.degrees(test_angle):g}° from the ground"]
     if np.any((off > TOLD) & (off <= MOST_OFF)):
-        notes += (f"some pulls are more than {math.degrees(TOLD):.0f}° off the direction of the test",)
+        notes.append(f"some pulls are more than {math.degrees(TOLD):.0f}° off the direction of the test")
     return governed(holds, a, SOURCE, (low, high), far, notes=notes)

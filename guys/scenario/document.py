@@ -12,6 +12,7 @@ from pydantic import Field
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.holding import Holdfast
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, End, Ice, Material, Setting, Spar, SparPoint
 from guys.scenario.table import Model
@@ -35,6 +36,8 @@ class AnchorEntry(Model):
     """Height above the origin's level; left out: that of the first spar's foot."""
     give: q.Spring | None = None
     """The anchor moves by the sum of its pulls divided by this."""
+    holdfast: q.Name | None = None
+    """A [holdfast.NAME] of the file: what holds it; left out: not judged."""
 
 
 class CableEntry(Model):
@@ -151,6 +154,8 @@ class ScenarioFile(Model):
     """Ropes by name."""
     material: dict[q.Name, Material] = {}
     """Materials by name."""
+    holdfast: dict[q.Name, Holdfast] = {}
+    """What holds anchors, by name."""
     setting: Setting = Setting()
     """The state in which the cables are tensioned."""
     wind: WindEntry | None = None

@@ -24,6 +24,7 @@ from guys.scenario.document import (
     RopeEntry,
     ScenarioFile,
 )
+from guys.scenario.holding import Holdfast
 from guys.scenario.keys import Finding, Key, nearest
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Ice, Material, Setting, Spar
@@ -47,6 +48,7 @@ class Draft:
     cable: tuple[CableEntry | None, ...]
     rope: dict[str, RopeEntry | None]
     material: dict[str, Material | None]
+    holdfast: dict[str, Holdfast | None]
     setting: Setting | None
     wind: WindEntry | None
     ice: Ice | None

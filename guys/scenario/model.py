@@ -16,6 +16,7 @@ from pydantic import Discriminator, Field, Tag
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.holding import Holdfast
 from guys.scenario.lost import Lost
 from guys.scenario.table import Model
 
@@ -189,6 +190,8 @@ class Anchor(Model):
     level: float
     give: float | None = None
     """The anchor moves by the sum of its pulls divided by this [N/m]; None: it does not move."""
+    holdfast: str | None = None
+    """The holdfast that holds it."""
 
 
 class SparPoint(Model):
@@ -361,6 +364,7 @@ class Scenario(Model):
     cable: tuple[Cable, ...] = ()
     rope: dict[str, Rope] = {}
     material: dict[str, Material] = {}
+    holdfast: dict[str, Holdfast] = {}
     setting: Setting = Setting()
     wind: Wind | None = None
     ice: Ice | None = None

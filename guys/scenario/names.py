@@ -36,6 +36,7 @@ def findings(draft: Draft) -> Iterator[Finding]:
     yield from _ropes(document)
     yield from _materials(document)
     yield from _taken_away(document, cables)
+    yield from _holdfasts(document)
 
 
 def _text(table: Mapping[str, Any], key: str) -> str | None:
@@ -145,6 +146,13 @@ def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:
     for index, spar in items(document, "spar"):
         for place, section in items(spar, "section"):
             yield from _unknown(("spar", index, "section", place, "material"), "material", section.get("material"), known)
+
+
+def _holdfasts(document: Mapping[str, Any]) -> Iterator[Finding]:
+    tables = document.get("holdfast")
+    known = tables if isinstance(tables, dict) else None if tables else {}
+    for index, anchor in items(document, "anchor"):
+        yield from _unknown(("anchor", index, "holdfast"), "holdfast", anchor.get("holdfast"), known, "; give [holdfast.NAME]")
 
 
 def _taken_away(document: Mapping[str, Any], cables: Known) -> Iterator[Finding]:

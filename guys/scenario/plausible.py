@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from guys import units
 from guys.catalogue import ropes as stock
 from guys.constants import ZERO_CELSIUS
-from guys.scenario import drawn, resolve
+from guys.scenario import drawn, held, resolve
 from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Profile, Scenario, Section, Spar
 
 
@@ -78,6 +78,7 @@ def warnings(scenario: Scenario) -> Iterator[str]:
     for name, material in scenario.material.items():
         if name not in resolve.built_in_materials() or material != resolve.built_in_materials()[name]:
             yield from _material(f"material {name}", material)
+    yield from held.warnings(scenario)
     yield from _weather(scenario)
     yield from _cold_sections(scenario)
     for name in ("cable", "anchor", "sliding"):

@@ -11,7 +11,7 @@ from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import drawn, frame, names, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import drawn, frame, held, names, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
@@ -132,6 +132,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from frame.findings(tables)
     yield from rigging.findings(tables)
     yield from weather.findings(tables)
+    yield from held.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -184,6 +185,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         cable=cables,
         rope={**ropes, **resolve.stock_ropes(cables, ropes)},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
+        holdfast={name: entry for name, entry in tables.holdfast.items() if entry is not None},
         setting=setting,
         wind=wind,
         ice=tables.ice,

@@ -55,7 +55,7 @@ def spar(entry: Spar) -> Spar:
 def anchor(entry: AnchorEntry, foot: drawn.Point) -> Anchor:
     """The anchor at its place, `foot` being that of the first spar."""
     east, north, level = drawn.anchor_place(entry, foot)
-    return Anchor(name=entry.name, east=east, north=north, level=level, give=entry.give)
+    return Anchor(name=entry.name, east=east, north=north, level=level, give=entry.give, holdfast=entry.holdfast)
 
 
 def guys_of(index: int, entry: GuyLevel, at_text: str) -> Iterator[Cable]:

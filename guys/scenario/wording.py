@@ -124,4 +124,6 @@ def _wanted(kind: str, context: dict[str, Any]) -> str:
         return "a finite number belongs here"
     if kind in ("greater_than", "greater_than_equal"):
         return f"it must be {'more than' if kind == 'greater_than' else 'at least'} {context.get('gt', context.get('ge'))}"
+    if kind in ("less_than", "less_than_equal"):
+        return f"it must be {'less than' if kind == 'less_than' else 'at most'} {context.get('lt', context.get('le')):g}"
     return "see `guys schema`"

@@ -13,6 +13,7 @@ import numpy as np
 
 from guys import recovery, stability
 from guys.checks import alarms, allowables, demands, extremes, resolve
+from guys.checks.anchors import unchecked
 from guys.loads import CaseLine, lines_of
 from guys.results import (
     AnchorPulls,
@@ -144,7 +145,7 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         check=check,
         warnings=alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
         notes=(*scenario.notes, *sorted({n for n in listed.note if n})),
-        not_checked=alarms.NOT_CHECKED,
+        not_checked=(*unchecked(scenario), *alarms.NOT_CHECKED),
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
