@@ -277,12 +277,10 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     ("in space", MAST, ((("wind", "altitude"), "90 km"),), "wind.altitude", "out of range"),
     # not available
     ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site", "not available in this version"),
-    ("holdfast", MAST, ((("holdfast",), {"a": {"kind": "block"}}),), "holdfast", "not available in this version"),
     ("part", MAST, ((("part",), {"a": {"strength": "1 kN"}}),), "part", "not available in this version"),
     ("limit", MAST, ((("limit",), {"actions": [0.6]}),), "limit", "not available in this version"),
     ("raise", MAST, ((("raise",), {"spar": "mast"}),), "raise", "not available in this version"),
     ("layout", MAST, ((("layout",), [{"name": "a"}]),), "layout", "not available in this version"),
-    ("anchor holdfast", MAST, ((("anchor", 0, "holdfast"), "a"),), "anchor[0].holdfast", "not available in this version"),
     ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate", "not available in this version"),
     ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends", "not available in this version"),
     ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends", "not available in this version"),

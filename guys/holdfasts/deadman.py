@@ -27,14 +27,13 @@ from guys import tables
 from guys.constants import INCH, POUND, STANDARD_GRAVITY
 from guys.holdfasts.holding import DOWNWARD, Holding, governed, soil_factor
 from guys.rotation import Array
+from guys.scenario.held import SLENDEREST
 
 WHAT = "a log or timber buried across the pull"
 SOURCE = "TM 5-5420-278-10, table 9 (read in a public transcription)"
 FOOT = float(12 * INCH)
 PSF = float(POUND) * STANDARD_GRAVITY / FOOT**2
 TRENCH = FOOT
-SLENDEREST = {"log": 5.0, "timber": 9.0}
-"""Greatest length over thickness or face height."""
 STEEPEST_READ = math.radians(45.0)
 
 

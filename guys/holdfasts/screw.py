@@ -29,6 +29,7 @@ from guys import tables
 from guys.constants import INCH, NONZERO, STANDARD_GRAVITY
 from guys.holdfasts.holding import DOWNWARD, Holding, governed
 from guys.rotation import Array
+from guys.scenario.held import APART
 
 WHAT = "plates on a shaft turned into the ground"
 SOURCE = "plate bearing 9 c, gamma D Nq; breakout Meyerhof and Adams 1968; torque Hoyt and Clemence 1989"
@@ -37,8 +38,6 @@ WATER = 1000.0 * STANDARD_GRAVITY
 DEEP_CLAY = 9.0
 BREAKOUT_CLAY = 1.2
 """Breakout factor of a round plate in clay per H/D, Meyerhof 1973, from memory."""
-APART = 3.0
-"""Least distance between plates, in diameters of the lower one, at which each acts alone (common practice)."""
 _FOOT = float(12 * INCH)
 SLIM = 3.5 * float(INCH)
 """Round shafts thinner than this have the Kt of square ones."""

@@ -18,10 +18,10 @@ if TYPE_CHECKING:
 
 FOOT = float(12 * INCH)
 SLENDEREST = {"log": 5.0, "timber": 9.0}
-"""Greatest length of a deadman over its thickness or face (see `guys.holdfasts.deadman`)."""
+"""Greatest length of a deadman over its thickness or the height of its face (see `guys.holdfasts.deadman`)."""
 STEEPEST_GROUND = math.radians(45.0)
 APART = 3.0
-"""Least distance between plates in diameters of the lower one (see `guys.holdfasts.screw`)."""
+"""Least distance between plates, in diameters of the lower one, at which each acts alone (common practice)."""
 NOTHING_PRESUMED = "nothing is presumed of the ground"
 SOILS = {
     "unit_weight": ("weight per volume", 5e3, 30e3),
@@ -152,7 +152,7 @@ def _plates(entry: Screw, key: Key) -> Iterator[Finding]:
     gaps = [APART * d for d in entry.helix[:-1]] if entry.spacing is None else [entry.spacing] * (len(entry.helix) - 1)
     if entry.depth < widest:
         text = (
-            f"{units.both(entry.depth, 'length')} is less than the plate's diameter of {units.both(widest, 'length')}; is the unit right?"
+            f"{units.both(entry.depth, 'length')} is less than its plate's {units.both(widest, 'length')} across; is the unit right?"
         )
         yield Finding((*key, "depth"), text, ((*key, "helix"),))
     elif math.fsum(gaps) * (1.0 if entry.rod is None else math.sin(entry.rod)) > entry.depth:

@@ -26,6 +26,7 @@ and, where more is allowed, what the text above the table names. Written by `{CO
 How a number came here: READ, in the document named; READ(2nd), in a later document that quotes it; MEMORY, quoted from memory, the document
 not opened; WORKED OUT, not published, by two independent methods neither of which is a beam or cable finite element; EXACT, a closed form.
 A cables, B masts, C large displacements, D stability and beam-columns, HB examples of handbooks.
+One worked sheet for each kind of holdfast, run by the tests: [holdfasts](holdfasts.md).
 """
 
 
