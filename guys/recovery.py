@@ -8,6 +8,7 @@ A section force acts on the part toward the foot: tension, and the moment of the
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, fields
 
 import numpy as np
@@ -125,16 +126,26 @@ def _hanging(problem: Problem, state: State, found: Evaluation) -> tuple[Array, 
 def lines(problem: Problem, state: State, found: Evaluation) -> tuple[SparLine, ...]:
     """Every spar along its length."""
     s = problem.structure
-    elastic = _elastic_sections(problem, state, found)
     out = []
-    for k, spar in enumerate(s.scenario.spar):
-        parts = _rigid_sections(problem, state, found, k) if spar.rigid else tuple(x[:, s.elements.spar == k] for x in elastic)
+    for k, parts in enumerate(sections(problem, state, found, range(len(s.scenario.spar)))):
+        spar = s.scenario.spar[k]
         station, drawn, displacement = _places(problem, state, k)
         force, moment = (p.reshape(p.shape[0], -1, 3) for p in parts)
         out.append(
             SparLine(spar.name, station, drawn, s.axes[k], displacement, force[..., 2], moment[..., :2], moment[..., 2], force[..., :2])
         )
     return tuple(out)
+
+
+def sections(problem: Problem, state: State, found: Evaluation, spars: Sequence[int]) -> list[tuple[Array, Array]]:
+    """Section forces and moments (case, piece, 2 ends, 3) about the turned local axes x, y, t, of each of the spars."""
+    s = problem.structure
+    elastic = [k for k in spars if not s.scenario.spar[k].rigid]
+    force, moment = _elastic_sections(problem, state, found) if elastic else (np.empty(0), np.empty(0))
+    return [
+        (force[:, mine], moment[:, mine]) if k in elastic else _rigid_sections(problem, state, found, k)
+        for k, mine in ((k, s.elements.spar == k) for k in spars)
+    ]
 
 
 def _places(problem: Problem, state: State, k: int) -> tuple[Array, Array, Array]:

@@ -29,7 +29,8 @@ US = {
     "m": ("ft", 0.3048), "m2": ("ft2", 0.3048**2), "kg": ("lb", 0.45359237), "N": ("lbf", 4.4482216152605), "deg": ("deg", 1.0),
     "kg/m": ("lb/ft", 0.45359237 / 0.3048), "N/m": ("lbf/ft", 4.4482216152605 / 0.3048), "Pa": ("psi", 4.4482216152605 / 0.0254**2),
     "N m2": ("lbf ft2", 4.4482216152605 * 0.3048**2), "N m/rad": ("lbf ft/rad", 4.4482216152605 * 0.3048), "s": ("s", 1.0),
-    "kg/m3": ("lb/ft3", 0.45359237 / 0.3048**3), "m/s": ("ft/s", 0.3048), "1/K": ("1/degF", 1.8),
+    "kg/m3": ("lb/ft3", 0.45359237 / 0.3048**3), "m/s": ("ft/s", 0.3048),
+    "N m": ("lbf ft", 4.4482216152605 * 0.3048), "1/K": ("1/degF", 1.8),
 }  # fmt: skip
 """SI unit: the US one and its factor (exact definitions of 1959; 1 lbf = 0.45359237 kg x 9.80665 m/s2)."""
 
@@ -39,7 +40,8 @@ UNITS: dict[str, dict[str, str]] = {
     "spar": {"lean": "deg", "toward": "deg", "hinge_axis": "deg", "base_stiffness": "N m/rad"},
     "section": {
         "length": "m", "mass": "kg/m", "EA": "N", "EI": "N m2", "EI_x": "N m2", "EI_y": "N m2", "GJ": "N m2", "GA": "N", "width": "m",
-        "iced_mass": "kg/m", "iced_width": "m",
+        "iced_mass": "kg/m", "iced_width": "m", "capacity_axial": "N", "capacity_bending": "N m", "capacity_shear": "N",
+        "capacity_torsion": "N m",
     },
     "tube": {"diameter": "m", "wall": "m"},
     "fitting": {"at": "m", "mass": "kg", "area": "m2", "face": "deg", "face_tilt": "deg", "iced_mass": "kg", "iced_area": "m2"},

@@ -13,6 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import constants
+from guys.checks.spars import too_thin
 from guys.loads import CaseLine
 from guys.recovery import Forces
 from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
@@ -42,7 +43,7 @@ CAUTIONS = (
 )
 NOT_CHECKED = (
     "lugs, terminations and turnbuckles",
-    "section stresses and the ground under the base",
+    "the ground under the base; joints and welds of spars, bolts of bases; spars that are not straight as made",
     "raising, fatigue, vibration, loss of a cable unless listed as a case (`guys lost` takes each away)",
 )
 
@@ -77,6 +78,7 @@ def warnings(
         *_not_as_asked(structure, forces),
         *_leaning(structure, lines, forces),
         *_branching(lines, verdicts),
+        *_thin_walls(structure),
         *structure.scenario.warnings,
     ]
     return tuple(dict.fromkeys(out))
@@ -205,6 +207,17 @@ def _leaning(structure: Structure, lines: Sequence[CaseLine], forces: Forces) ->
                 "the initial tensions or lengths pull it over; setting.plumb = true finds tensions that do not"
             )
     return out
+
+
+def _thin_walls(structure: Structure) -> list[str]:
+    scenario = structure.scenario
+    thin = [
+        f"{spar.name}, section {n + 1} ({section.tube.diameter / section.tube.wall:.3g} times its wall)"
+        for spar in scenario.spar
+        for n, section in enumerate(spar.section)
+        if section.tube is not None and too_thin(section, scenario.material)
+    ]
+    return [f"tubes so thin that the wall buckles before it yields, which is not judged: {'; '.join(thin)}"] if thin else []
 
 
 def _branching(lines: Sequence[CaseLine], verdicts: Verdicts) -> list[str]:

@@ -28,6 +28,8 @@ from guys.drawing.rounding import (
     load,
     moment,
     plain_force,
+    pressure_down,
+    pressure_up,
     small_angle,
     speed,
     temperature,
@@ -107,6 +109,8 @@ def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
         return tongue.say(moment, value)
     if unit == "m":
         return tongue.say(length, value)
+    if unit == "Pa":
+        return tongue.say(pressure_up if demand else pressure_down, value)
     if unit == "rad":
         return small_angle(value)
     return f"{value:.3g} {unit}".strip() if unit not in ("1", "-") else f"{value:.3g}"
@@ -117,6 +121,7 @@ def finding_words(solution: Solution, finding: Finding, tongue: Tongue) -> str:
     both = f"{amount(finding.demand, finding.unit, tongue, True)} / {amount(finding.capacity, finding.unit, tongue, False)}"
     asked = f"{finding.required:g} needed" + (", default" if finding.default else "")
     where = f"; {wind_words(solution, finding.case, finding.wind_from)}" if finding.case else ""
+    where += f"; {finding.governs}" if finding.governs else ""
     return f"{finding.thing} {finding.quantity} {both}, factor {factor(finding.factor)} ({asked}): {finding.verdict}{where}"
 
 

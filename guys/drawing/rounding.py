@@ -45,6 +45,14 @@ SCALES: dict[tuple[System, bool], tuple[Scale, ...]] = {
 """Units of force, each up to its number below which it is used; kip for loads of two figures (True) only once lbf grows long."""
 
 
+MEGAPASCAL = 1e6
+PRESSURES: dict[System, tuple[tuple[float, str], tuple[float, str]]] = {
+    "SI": ((1e3, "kPa"), (MEGAPASCAL, "MPa")),
+    "US": ((POUND_FORCE / (12 * INCH) ** 2, "psf"), (1e3 * POUND_FORCE / INCH**2, "ksi")),
+}
+"""Units of pressure, below and from a megapascal: of the ground, and of metal."""
+
+
 def round_up(value: float, figures: int = 2) -> float:
     """`value` rounded toward plus infinity to so many significant figures."""
     return _stepped(value, figures, ceil, -_ROUNDING_NOISE)
@@ -126,6 +134,23 @@ def moment(newton_metres: float, system: System) -> str:
     if system == "US":
         return f"{up_text(newton_metres / (POUND_FORCE * 12 * INCH))} lbf ft"
     return f"{up_text(newton_metres)} N m" if abs(round_up(newton_metres)) < 100.0 else f"{up_text(newton_metres / 1e3)} kN m"
+
+
+def pressure_up(pascals: float, system: System) -> str:
+    """A stress or pressure that acts, rounded up to three figures."""
+    return _pressure(pascals, system, round_up)
+
+
+def pressure_down(pascals: float, system: System) -> str:
+    """A stress or pressure that can be borne, rounded down to three figures."""
+    return _pressure(pascals, system, round_down)
+
+
+def _pressure(pascals: float, system: System, rounded: Callable[[float, int], float]) -> str:
+    if not isfinite(pascals):
+        return ABSENT
+    scale, unit = PRESSURES[system][abs(pascals) >= MEGAPASCAL]
+    return f"{written(rounded(pascals / scale, 3), 3)} {unit}"
 
 
 def length(metres: float, system: System) -> str:

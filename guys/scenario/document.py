@@ -131,6 +131,10 @@ class AllowablesEntry(Model):
     """Least factor against sliding of a base."""
     lean: q.PositiveAngle = float(constants.DEGREE)
     """Greatest head lean in service."""
+    spar: q.Ratio = 1.67
+    """Least strength / what acts of a spar's section; the default is the factor on yield of AISC 360, allowable strength (from memory)."""
+    bearing: q.Ratio = 1.0
+    """Least bearing / pressure under a base plate; the default takes `bearing` as an allowable pressure."""
 
 
 class ScenarioFile(Model):

@@ -13,6 +13,7 @@ OVERSHOOT = 1e-9
 """An attachment may lie beyond the head by this part of the spar's length: what the conversion of feet and of sums can add."""
 
 _OF_TUBE = ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "width", "iced_mass", "iced_width")
+_CAPACITIES = ("capacity_axial", "capacity_bending", "capacity_shear", "capacity_torsion")
 
 
 def findings(draft: Draft) -> Iterator[Finding]:
@@ -90,10 +91,19 @@ def _section(section: Section, key: Key, rigid: bool) -> Iterator[Finding]:
         yield from _outright(section, key, rigid)
     if section.EI is not None and (section.EI_x is not None or section.EI_y is not None):
         yield Finding((*key, "EI"), "EI stands beside EI_x or EI_y; give EI alone, or EI_x and EI_y")
+    yield from _capacities(section, key)
     if section.iced_mass is not None and section.mass is not None and section.iced_mass < section.mass:
         yield Finding((*key, "iced_mass"), "less than mass; iced_mass is the whole mass with the ice on it")
     if section.iced_width is not None and section.width is not None and section.iced_width < section.width:
         yield Finding((*key, "iced_width"), "less than width; iced_width is the whole width with the ice on it")
+
+
+def _capacities(section: Section, key: Key) -> Iterator[Finding]:
+    """Axial force and bending act together, so their capacities are given together; shear and torsion come with them."""
+    given = [name for name in _CAPACITIES if getattr(section, name) is not None]
+    for name in _CAPACITIES[:2]:
+        if given and name not in given:
+            yield Finding((*key, name), f"missing; it is needed with {' and '.join(given)}", tuple((*key, n) for n in given))
 
 
 def _tube(section: Section, key: Key) -> Iterator[Finding]:

@@ -118,6 +118,14 @@ class Section(Model):
     """Mass per length with the ice on it."""
     iced_width: q.PositiveLength | None = None
     """Width with the ice on it."""
+    capacity_axial: q.PositiveForce | None = None
+    """Axial force it bears, given outright; judged in place of the tube's stress, with capacity_bending."""
+    capacity_bending: q.PositiveMoment | None = None
+    """Bending moment it bears about any axis, given outright."""
+    capacity_shear: q.PositiveForce | None = None
+    """Shear it bears; left out: not judged."""
+    capacity_torsion: q.PositiveMoment | None = None
+    """Torsion it bears; left out: not judged."""
 
 
 class Fitting(Model):
@@ -340,6 +348,8 @@ class Allowables(Model):
     anchor: float = 1.5
     sliding: float = 1.5
     lean: float = math.radians(1.0)
+    spar: float = 1.67
+    bearing: float = 1.0
     defaulted: frozenset[str] = frozenset()
 
 
