@@ -133,8 +133,6 @@ class AllowablesEntry(Model):
     """Greatest head lean in service."""
     spar: q.Ratio = 1.67
     """Least strength / what acts of a spar's section; the default is the factor on yield of AISC 360, allowable strength (from memory)."""
-    bearing: q.Ratio = 1.0
-    """Least bearing / pressure under a base plate; the default takes `bearing` as an allowable pressure."""
 
 
 class ScenarioFile(Model):

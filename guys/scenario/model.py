@@ -349,7 +349,6 @@ class Allowables(Model):
     sliding: float = 1.5
     lean: float = math.radians(1.0)
     spar: float = 1.67
-    bearing: float = 1.0
     defaulted: frozenset[str] = frozenset()
 
 

@@ -81,7 +81,7 @@ def warnings(scenario: Scenario) -> Iterator[str]:
     yield from held.warnings(scenario)
     yield from _weather(scenario)
     yield from _cold_sections(scenario)
-    for name in ("cable", "anchor", "sliding", "spar", "bearing"):
+    for name in ("cable", "anchor", "sliding", "spar"):
         if getattr(scenario.allowables, name) < 1.0:
             yield f"allowables.{name}: {getattr(scenario.allowables, name):g} is less than 1, which lets it fail and calls it within"
 
