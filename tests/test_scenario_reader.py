@@ -47,7 +47,7 @@ def test_allowables_left_out_are_marked_as_defaults() -> None:
     scenario = parse_scenario(dumps(changed(MAST, (("allowables", "cable"), 3.0))))
     assert scenario.allowables.cable == 3.0
     assert (scenario.allowables.anchor, scenario.allowables.sliding, scenario.allowables.lean) == (1.5, 1.5, math.radians(1.0))
-    assert scenario.allowables.defaulted == {"anchor", "sliding", "lean"}
+    assert scenario.allowables.defaulted == {"anchor", "sliding", "lean", "spar"}
 
 
 def test_a_guy_level_becomes_cables_named_after_its_height_or_its_name() -> None:
