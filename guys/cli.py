@@ -84,10 +84,12 @@ def validate(file: str) -> None:
 
     Faults go to the standard error with file, line and key; dimensions are echoed in both unit systems, unusual values warned about.
     """
+    from guys.loads.drag import words
     from guys.scenario import echo, read_scenario
+    from guys.structure import build
 
     scenario = read_scenario(file)
-    for line in echo.lines(scenario):
+    for line in (*echo.lines(scenario), *words.notes(build(scenario))):
         click.echo(line)
     for warning in scenario.warnings:
         click.echo(f"warning: {warning}", err=True)

@@ -1,9 +1,8 @@
 """What a section of a spar is made of: mass, stiffness and width per length, bare and iced.
 
 Round tube of diameter D and wall w: A = pi (D - w) w, I = pi/64 (D^4 - (D - 2w)^4), J = 2 I; no shear flexibility is taken
-(a tube's is below 1e-3 of its bending at ten diameters).  Ice of thickness t and density rho_i all round adds
-pi (D + t) t rho_i to the mass and 2 t to the width.  Properties given outright are used as they are; their iced mass and width are
-the section's with the ice on.
+(a tube's is below 1e-3 of its bending at ten diameters).  Ice on it is that of `guys.icing`, before any effect of height.  Properties
+given outright are used as they are; their iced mass and width are the section's with the ice on.
 """
 
 from __future__ import annotations
@@ -11,15 +10,18 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+import numpy as np
+
 from guys.catalogue import tubes
+from guys.icing import coat
 from guys.scenario import Ice, Section
 from guys.scenario.model import Material
 
 
 @dataclass(frozen=True)
 class Properties:
-    """mass [kg/m], EA [N], EI_x, EI_y, GJ [N m2], GA [N] (inf: none), width [m], iced_mass [kg/m], iced_width [m], expansion [1/K], drag
-    [-].
+    """mass [kg/m], EA [N], EI_x, EI_y, GJ [N m2], GA [N] (inf: none), width [m], iced_mass [kg/m], iced_width [m], expansion [1/K],
+    drag [-] (NaN: chosen from the shape), bar [m]: diameter of a tube, whose ice may change with height (NaN: none).
     """
 
     mass: float
@@ -33,18 +35,14 @@ class Properties:
     iced_width: float
     expansion: float
     drag: float
-
-
-def ice_on_round(diameter: float, ice: Ice | None) -> float:
-    """Mass of ice per length [kg/m] all round a bar of the diameter [m]; 0 without ice."""
-    return 0.0 if ice is None else math.pi * (diameter + ice.thickness) * ice.thickness * ice.density
+    bar: float
 
 
 def properties(section: Section, materials: dict[str, Material], ice: Ice | None) -> Properties:
     """Properties of one section; NaN stands for a stiffness not given (rigid spars need none)."""
     material = materials[section.material] if section.material is not None else None
     expansion = (material.expansion if material is not None else None) or 0.0
-    drag = section.drag if section.drag is not None else 0.0
+    drag = section.drag if section.drag is not None else math.nan
     given = _outright(section)
     if section.tube is not None and material is not None:
         made = _tube(section.tube.diameter, section.tube.wall, material, ice)
@@ -57,7 +55,7 @@ def properties(section: Section, materials: dict[str, Material], ice: Ice | None
             number[iced] = number[bare] if given[bare] is not None else 0.0
         if given[bare] is None:
             number[bare] = 0.0
-    return Properties(**number, expansion=expansion, drag=drag)
+    return Properties(**number, expansion=expansion, drag=drag, bar=math.nan if section.tube is None else section.tube.diameter)
 
 
 def _outright(section: Section) -> dict[str, float | None]:
@@ -76,7 +74,7 @@ def _outright(section: Section) -> dict[str, float | None]:
 
 def _tube(diameter: float, wall: float, material: Material, ice: Ice | None) -> dict[str, float | None]:
     area, second = tubes.area(diameter, wall), tubes.second_moment(diameter, wall)
-    thickness = 0.0 if ice is None else ice.thickness
+    ice_mass, iced_width = coat(np.array(diameter), ice)
     return {
         "mass": material.density * area,
         "EA": material.modulus * area,
@@ -85,6 +83,6 @@ def _tube(diameter: float, wall: float, material: Material, ice: Ice | None) -> 
         "GJ": material.shear_modulus * 2 * second,
         "GA": None,
         "width": diameter,
-        "iced_mass": material.density * area + ice_on_round(diameter, ice),
-        "iced_width": diameter + 2 * thickness,
+        "iced_mass": material.density * area + float(ice_mass),
+        "iced_width": float(iced_width),
     }

@@ -26,7 +26,8 @@ from guys.constants import STANDARD_GRAVITY
 from guys.joint import Joints
 from guys.rotation import Array
 from guys.scenario import Scenario, Spar
-from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot, SparPoint
+from guys.scenario.model import AnchorPoint, Fitting, GroundFoot, HeelFoot, SparPoint
+from guys.scenario.shapes import roughness
 from guys.sections import Properties, properties
 
 Index = NDArray[np.int64]
@@ -63,11 +64,13 @@ class Pieces:
 
     spar (piece,) index; station (piece, 2) [m]; low, high : the node that takes each end's share (the same for a rigid spar); rigid
     (piece,)
-    mass, iced_mass [kg/m]; width, iced_width [m]; drag [-]; axis (piece, 3) drawn axis; growth (piece, 2) [m/K] by which the ends of a
-    piece of a rigid spar move off from the foot with temperature
+    section (piece,) index of the section in its spar; mass, iced_mass [kg/m], width, iced_width [m], before any effect of height on ice;
+    bar [m] of tubes, else NaN; drag [-], NaN: chosen from the shape; axis (piece, 3) drawn axis; growth (piece, 2) [m/K] by which the ends
+    of a piece of a rigid spar move off from the foot with temperature
     """
 
     spar: Index
+    section: Index
     station: Array
     low: Index
     high: Index
@@ -76,6 +79,7 @@ class Pieces:
     iced_mass: Array
     width: Array
     iced_width: Array
+    bar: Array
     drag: Array
     axis: Array
     growth: Array
@@ -95,8 +99,9 @@ class Elements:
 
 @dataclass(frozen=True)
 class Cables:
-    """Cables from end A (`to`) to end B (`from`): points (cable,), EA [N], diameter [m], mass [kg/m], drag, strength [N] (NaN: not given),
-    expansion [1/K], spar of the `from` end (cable,)."""
+    """Cables from end A (`to`) to end B (`from`): points (cable,), EA [N], diameter [m], mass [kg/m], drag (NaN: chosen from the
+    shape), roughness [m] of smooth round ropes (NaN: stranded), strength [N] (NaN: not given), expansion [1/K], spar of the `from` end
+    (cable,)."""
 
     a: Points
     b: Points
@@ -104,6 +109,7 @@ class Cables:
     diameter: Array
     mass: Array
     drag: Array
+    roughness: Array
     strength: Array
     expansion: Array
     spar: Index
@@ -111,12 +117,17 @@ class Cables:
 
 @dataclass(frozen=True)
 class Fittings:
-    """What spars carry, in file order: point, spar index, station [m], index pairs (spar, fitting) into the scenario."""
+    """What spars carry: points, spar index, station [m], index pairs (spar, fitting) into the scenario, side.
+
+    First the fittings in file order (side 0), then the edges of the signs, where their wind acts: side 1 the left one, -1 the right one,
+    for one who looks at the face.
+    """
 
     point: Points
     spar: Index
     station: Array
     of: tuple[tuple[int, int], ...]
+    side: Index
 
 
 @dataclass(frozen=True)
@@ -310,9 +321,9 @@ class _Builder:
     def _bounds(self, k: int) -> Array:
         return np.concatenate([[0.0], np.cumsum([s.length for s in self.scenario.spar[k].section])])
 
-    def _section_at(self, k: int, at: float) -> Properties:
+    def _section_at(self, k: int, at: float) -> int:
         bounds = self._bounds(k)
-        return self.sections[k][min(int(np.searchsorted(bounds, at, side="right")) - 1, len(bounds) - 2)]
+        return min(int(np.searchsorted(bounds, at, side="right")) - 1, len(bounds) - 2)
 
     def _elements(self) -> Elements:
         rows: list[tuple[int, int, int, float, float, Properties]] = []
@@ -321,7 +332,8 @@ class _Builder:
                 s = self.stations[k].station
                 for n in range(len(s) - 1):
                     here = int(self.first[k]) + n
-                    rows.append((here, here + 1, k, float(s[n]), float(s[n + 1]), self._section_at(k, 0.5 * float(s[n] + s[n + 1]))))
+                    made_of = self.sections[k][self._section_at(k, 0.5 * float(s[n] + s[n + 1]))]
+                    rows.append((here, here + 1, k, float(s[n]), float(s[n + 1]), made_of))
         spar_of = np.array([r[2] for r in rows], dtype=np.int64)
         ends = np.array([[r[3], r[4]] for r in rows]).reshape(-1, 2)
         axes = self.axes[spar_of].reshape(-1, 3, 3)
@@ -338,7 +350,7 @@ class _Builder:
         return Elements(rods, i, j, spar_of, ends, each("expansion"))
 
     def _pieces(self) -> Pieces:
-        rows: list[tuple[int, float, float, int, int, bool, Properties]] = []
+        rows: list[tuple[int, float, float, int, int, bool, int]] = []
         for k, spar in enumerate(self.scenario.spar):
             cuts = self.cuts[k].station
             for n in range(len(cuts) - 1):
@@ -349,10 +361,11 @@ class _Builder:
         spar_of = np.array([r[0] for r in rows], dtype=np.int64)
 
         def each(name: str) -> Array:
-            return np.array([getattr(r[6], name) for r in rows])
+            return np.array([getattr(self.sections[r[0]][r[6]], name) for r in rows])
 
         return Pieces(
             spar=spar_of,
+            section=np.array([r[6] for r in rows], dtype=np.int64),
             station=np.array([[r[1], r[2]] for r in rows]),
             low=np.array([r[3] for r in rows], dtype=np.int64),
             high=np.array([r[4] for r in rows], dtype=np.int64),
@@ -361,6 +374,7 @@ class _Builder:
             iced_mass=each("iced_mass"),
             width=each("width"),
             iced_width=each("iced_width"),
+            bar=each("bar"),
             drag=each("drag"),
             axis=self.axes[spar_of, 2],
             growth=np.array([[self._growth(r[0], 0.0, at) if r[5] else 0.0 for at in r[1:3]] for r in rows]),
@@ -375,17 +389,19 @@ class _Builder:
             EA=np.array([r.stiffness for r in ropes]),
             diameter=np.array([r.diameter for r in ropes]),
             mass=np.array([r.mass for r in ropes]),
-            drag=np.array([r.drag if r.drag is not None else 0.0 for r in ropes]),
+            drag=np.array([r.drag if r.drag is not None else math.nan for r in ropes]),
+            roughness=np.array([math.nan if r.surface is None else roughness(r.surface) for r in ropes]),
             strength=np.array([r.strength if r.strength is not None else math.nan for r in ropes]),
             expansion=np.array([r.expansion if r.expansion is not None else 0.0 for r in ropes]),
             spar=np.array([self.number[c.from_.spar] for c in scenario.cable], dtype=np.int64),
         )
 
     def _fittings(self) -> Fittings:
-        of = [(k, n) for k, spar in enumerate(self.scenario.spar) for n in range(len(spar.fitting))]
-        every = [self.scenario.spar[k].fitting[n] for k, n in of]
-        points = [self.point(k, f.at, np.array([f.offset.east, f.offset.north, f.offset.up])) for (k, _), f in zip(of, every, strict=True)]
-        return Fittings(_points(points), np.array([k for k, _ in of], dtype=np.int64), np.array([f.at for f in every]), tuple(of))
+        every = [(k, n, fitting) for k, spar in enumerate(self.scenario.spar) for n, fitting in enumerate(spar.fitting)]
+        rows = [(*row, 0) for row in every] + [(*row, side) for row in every if row[2].sign for side in (1, -1)]
+        points = [self.point(k, f.at, _centre(f) + side * _left_edge(f)) for k, _, f, side in rows]
+        spar, side = (np.array([row[column] for row in rows], dtype=np.int64) for column in (0, 3))
+        return Fittings(_points(points), spar, np.array([f.at for _, _, f, _ in rows]), tuple((k, n) for k, n, _, _ in rows), side)
 
     def _weight(self, pieces: Pieces, cables: Cables) -> float:
         """Dead weight and fixed loads of the whole [N], for scales."""
@@ -454,6 +470,16 @@ class _Builder:
                 depth[k] += 1
                 here = self.number[foot.spar]
         return sorted(range(len(depth)), key=lambda k: -depth[k])
+
+
+def _centre(fitting: Fitting) -> Array:
+    return np.array([fitting.offset.east, fitting.offset.north, fitting.offset.up])
+
+
+def _left_edge(fitting: Fitting) -> Array:
+    """From the middle of a flat face to the edge on the left of one who looks at it."""
+    bearing, half = fitting.face or 0.0, 0.5 * (fitting.width or 0.0)
+    return half * np.array([math.cos(bearing), -math.sin(bearing), 0.0])
 
 
 def _points(rows: list[tuple[int, Array, Array]]) -> Points:

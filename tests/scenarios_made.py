@@ -41,10 +41,13 @@ UNITS: dict[str, dict[str, str]] = {
     "section": {
         "length": "m", "mass": "kg/m", "EA": "N", "EI": "N m2", "EI_x": "N m2", "EI_y": "N m2", "GJ": "N m2", "GA": "N", "width": "m",
         "iced_mass": "kg/m", "iced_width": "m", "capacity_axial": "N", "capacity_bending": "N m", "capacity_shear": "N",
-        "capacity_torsion": "N m",
+        "capacity_torsion": "N m", "depth": "m", "corner": "m", "face": "deg",
     },
     "tube": {"diameter": "m", "wall": "m"},
-    "fitting": {"at": "m", "mass": "kg", "area": "m2", "face": "deg", "face_tilt": "deg", "iced_mass": "kg", "iced_area": "m2"},
+    "fitting": {
+        "at": "m", "mass": "kg", "area": "m2", "face": "deg", "face_tilt": "deg", "iced_mass": "kg", "iced_area": "m2", "width": "m",
+        "height": "m", "bar": "m",
+    },
     "offset": {"east": "m", "north": "m", "up": "m"},
     "load": {"east": "N", "north": "N", "up": "N"},
     "anchor": {"bearing": "deg", "radius": "m", "east": "m", "north": "m", "level": "m", "give": "N/m"},

@@ -124,7 +124,7 @@ def test_all_faults_go_to_the_standard_error_and_nothing_is_written(
     command: list[str], tmp_path: Path, capsys: pytest.CaptureFixture[str]
 ) -> None:
     file, out = tmp_path / "bad.toml", tmp_path / "out"
-    file.write_text(dumps_tables(changed(MAST, (("guy_level", 0, "at"), 17), (("rope", "wire", "drag"), ...))), encoding="utf-8")
+    file.write_text(dumps_tables(changed(MAST, (("guy_level", 0, "at"), 17), (("rope", "wire", "mass"), ...))), encoding="utf-8")
     assert cli.run([*command, *([str(out)] if "--out" in command else []), str(file)]) == 2
     told = capsys.readouterr()
     assert told.out == ""
@@ -132,7 +132,7 @@ def test_all_faults_go_to_the_standard_error_and_nothing_is_written(
     assert lines[-1] == "2 faults; nothing was written"
     assert lines[0].startswith(f"{file}:")
     assert 'guy_level[0].at: 17 has no unit; write "17 m" or "17 ft"' in lines[0]
-    assert "rope.wire.drag: missing" in lines[1]
+    assert "rope.wire.mass: missing" in lines[1]
     assert not out.exists()
 
 

@@ -22,7 +22,7 @@ FLOORS: dict[str, int] = {
     **dict.fromkeys(("errors", "constants", "units", "version"), 0),
     **dict.fromkeys(("tables", "catalogue", "scenario", "site"), 1),
     **dict.fromkeys(("rotation", "columns", "beam", "cable", "joint", "band"), 2),
-    **dict.fromkeys(("mesh", "sections", "structure"), 3),
+    **dict.fromkeys(("icing", "mesh", "sections", "structure"), 3),
     **dict.fromkeys(("loads",), 4),
     **dict.fromkeys(("results", "solver", "equilibrium", "recovery", "setting", "stability"), 5),
     **dict.fromkeys(("holdfasts", "checks"), 6),

@@ -15,6 +15,12 @@ from guys.errors import Fault, ScenarioError
 Change = tuple[tuple[str | int, ...], Any]
 SPAR, SECTION, FITTING, LEVEL, ROPE = ("spar", 0), ("spar", 0, "section", 0), ("spar", 0, "fitting", 0), ("guy_level", 0), ("rope", "wire")
 OUTRIGHT = {"length": "12 m", "mass": "9 kg/m", "EA": "180 MN", "EI": "160 kN m2", "GJ": "120 kN m2", "width": "89 mm", "drag": 1.2}
+
+
+def _without(key: str) -> dict[str, Any]:
+    return {name: value for name, value in OUTRIGHT.items() if name != key}
+
+
 ICED_CASE: tuple[Change, ...] = ((("case",), [{"name": "frost", "ice": 1.0}]), (("ice",), {"thickness": "10 mm"}))
 PROFILE = ("wind", "profile")
 HILL = {"shape": "hill", "height": "20 m", "half_length": "100 m"}
@@ -227,15 +233,122 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
         "ice",
         'missing; case "frost" has ice = 0.5; give [ice]',
     ),
+    ("section drag", MAST, (((*SECTION,), _without("drag")),), "spar[0].section[0].drag", "give drag, or shape"),
+    ("fitting drag", MAST, (((*FITTING, "drag"), ...),), "spar[0].fitting[0].drag", "give drag; it cannot be chosen"),
     (
-        "section drag",
+        "shape of a tube",
         MAST,
-        (((*SECTION, "drag"), ...),),
-        "spar[0].section[0].drag",
-        "give drag; default drag from the shape is not available in this version",
+        (((*SECTION, "shape"), "round"),),
+        "spar[0].section[0].shape",
+        "a tube is round; leave shape out",
     ),
-    ("fitting drag", MAST, (((*FITTING, "drag"), ...),), "spar[0].fitting[0].drag", "give drag; default drag"),
-    ("rope drag", MAST, (((*ROPE, "drag"), ...),), "rope.wire.drag", "give drag; default drag"),
+    (
+        "rectangle without depth",
+        MAST,
+        (((*SECTION,), {**OUTRIGHT, "width": "0.1 m", "shape": "rectangle"}),),
+        "spar[0].section[0].depth",
+        'missing; shape = "rectangle" needs it',
+    ),
+    (
+        "corner of no rectangle",
+        MAST,
+        (((*SECTION,), {**OUTRIGHT, "width": "0.1 m", "shape": "sharp", "corner": "5 mm"}),),
+        "spar[0].section[0].corner",
+        "only a rectangle has it",
+    ),
+    (
+        "corner too large",
+        MAST,
+        (((*SECTION,), {**OUTRIGHT, "width": "0.1 m", "depth": "0.2 m", "shape": "rectangle", "corner": "51 mm"}),),
+        "spar[0].section[0].corner",
+        "more than half the lesser side",
+    ),
+    (
+        "shape of no width",
+        MAST,
+        (((*SECTION,), {**_without("width"), "shape": "sharp"}),),
+        "spar[0].section[0].width",
+        "is that of a width",
+    ),
+    ("surface", MAST, (((*SECTION, "surface"), "velvet"),), "spar[0].section[0].surface", '"velvet" is no surface and no roughness'),
+    (
+        "surface of no round section",
+        MAST,
+        (((*SECTION,), {**OUTRIGHT, "width": "0.1 m", "drag": 1.2, "surface": "rust"}),),
+        "spar[0].section[0].surface",
+        "only round sections",
+    ),
+    (
+        "sign without height",
+        MAST,
+        (((*FITTING,), {"name": "sign", "at": "9 m", "area": "2 m2", "shape": "flat", "face": "0 deg", "width": "2 m"}),),
+        "spar[0].fitting[0].height",
+        "the coefficient chosen from the shape needs height",
+    ),
+    (
+        "area of another size",
+        MAST,
+        (((*FITTING,), {"name": "s", "at": "9 m", "area": "3 m2", "shape": "flat", "face": "0 deg", "width": "2 m", "height": "1 m"}),),
+        "spar[0].fitting[0].area",
+        "is not width by height by solidity",
+    ),
+    (
+        "bars of a sign",
+        MAST,
+        (((*FITTING,), {"name": "s", "at": "9 m", "shape": "flat", "face": "0 deg", "width": "2 m", "height": "1 m", "bar": "9 mm"}),),
+        "spar[0].fitting[0].bar",
+        "only an open frame has bars",
+    ),
+    ("width of anything", MAST, (((*FITTING, "width"), "2 m"),), "spar[0].fitting[0].width", 'shape = "any" does not use it'),
+    ("ice without size", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"drag": 1.3})), "ice", "has neither thickness nor class"),
+    ("ice twice", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"thickness": "9 mm", "class": "G2"})), "ice", "has thickness and class"),
+    ("extreme ice", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "G6"})), "ice.class", "a study of the site"),
+    ("ice class R7", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "R7"})), "ice.class", "is not known to this version"),
+    ("ice class G7", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "G7"})), "ice.class", "is not one of"),
+    (
+        "density of a class",
+        MAST,
+        (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "G2", "density": "900 kg/m3"})),
+        "ice.density",
+        "follows from class G2",
+    ),
+    (
+        "wind reduced without class",
+        MAST,
+        (*ICED_CASE, *FITTING_ICED, (("ice",), {"thickness": "9 mm", "reduce_wind": True})),
+        "ice.reduce_wind",
+        "goes with a class",
+    ),
+    ("vane of glaze", MAST, (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "G2", "vane": "across"})), "ice.vane", "only rime"),
+    (
+        "glaze growing as rime",
+        MAST,
+        (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "G2", "height_effect": "iso12494"})),
+        "ice.height_effect",
+        "is for rime",
+    ),
+    (
+        "rime growing as glaze",
+        MAST,
+        (*ICED_CASE, *FITTING_ICED, (("ice",), {"class": "R2", "height_effect": "asce7"})),
+        "ice.height_effect",
+        "is for glaze",
+    ),
+    ("bare without ice", MAST, ((("case",), [{"name": "gust", "bare": ["9 m N"]}]),), "case[0].bare", "the case has no ice"),
+    (
+        "bare unknown",
+        MAST,
+        (*FITTING_ICED, (("ice",), {"class": "G2"}), (("case",), [{"name": "frost", "ice": 1.0, "bare": ["no such"]}])),
+        "case[0].bare[0]",
+        "no cable is named",
+    ),
+    (
+        "name of a sign's case",
+        MAST,
+        ((("case",), [{"name": "gust, sign force to the left"}]),),
+        "case[0].name",
+        "ends the names of cases made for signs",
+    ),
     ("iced mass", MAST, (*ICED_CASE, FITTING_ICED[1]), "spar[0].fitting[0].iced_mass", 'missing; case "frost" has ice'),
     ("iced area", MAST, (*ICED_CASE, FITTING_ICED[0]), "spar[0].fitting[0].iced_area", 'missing; case "frost" has ice'),
     (
@@ -340,7 +453,7 @@ def test_everything_is_reported_at_once_in_the_order_of_the_file() -> None:
             (("guy_level", 0, "to", 2), "NW"),
             (("cable", 0, "rope"), "wirre"),
             (("cable", 0, "tight"), True),
-            (("rope", "wire", "drag"), ...),
+            (("rope", "wire", "drag"), "1.2"),
             (("wind", "speed"), "25 kg"),
             (("site",), {"crs": "EPSG:1"}),
         )

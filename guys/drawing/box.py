@@ -199,10 +199,12 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
     parts = []
     for case in solution.scenario.case:
         lost = f", without {', '.join(case.without)}" if case.without else ""
+        lost += f", no ice on {', '.join(case.bare)}" if case.bare else ""
         factors = f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}"
         parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}")
     if ice is not None:
-        parts.append(f"ice {tongue.say(thickness, ice.thickness)} all round, {tongue.say(density, ice.density)}")
+        glaze = f"ice {tongue.say(thickness, ice.thickness)} all round, {tongue.say(density, ice.density)}" if ice.thickness else "rime"
+        parts.append(f"{glaze} (class {ice.class_} of ISO 12494)" if ice.class_ else glaze)
     parts.append("factors on weight, wind pressure and weight of ice; initial tension is in every load, never factored")
     return [*rows, Entry("Cases", "; ".join(parts))]
 

@@ -8,21 +8,26 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
+from guys.constants import STANDARD_GRAVITY
 from guys.loads import dead, wind
+from guys.loads.drag import attached
+from guys.loads.iced import Ice, ice_at
 from guys.loads.spread import Weights, to_nodes, weights
 from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
+from guys.scenario.names import ASIDE
 from guys.structure import Pieces, Points, Structure
 
 
 @dataclass(frozen=True)
 class CaseLine:
-    """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away."""
+    """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away; bare:
+    cables without ice; aside: where the forces on signs stand, see `guys.loads.drag.attached`."""
 
     name: str
     wind_from: float
@@ -31,6 +36,8 @@ class CaseLine:
     ice: float
     temperature: float
     without: tuple[str, ...] = ()
+    bare: tuple[str, ...] = ()
+    aside: str = ""
 
 
 @dataclass(frozen=True)
@@ -90,13 +97,18 @@ def setting_line(scenario: Scenario) -> CaseLine:
 
 
 def lines_of(scenario: Scenario, directions: Sequence[float] | None = None) -> tuple[CaseLine, ...]:
-    """The scenario's cases, each with wind once for every direction ([rad]; default: the file's)."""
+    """The scenario's cases, each with wind once for every direction ([rad]; default: the file's), and where there are signs also with
+    the forces on these moved to either side, under a name of its own."""
     out = []
     for case in scenario.case:
         bearings: Sequence[float] = [math.nan]
+        asides: tuple[str, ...] = ("",)
         if case.wind > 0 and scenario.wind is not None:
             bearings = scenario.wind.directions if directions is None else directions
-        out += [CaseLine(case.name, b, case.dead, case.wind, case.ice, case.temperature, case.without) for b in bearings]
+            asides = attached.asides(scenario)
+        line = CaseLine(case.name, math.nan, case.dead, case.wind, case.ice, case.temperature, case.without, case.bare)
+        names = [f"{case.name}{ASIDE}{aside}" if aside else case.name for aside in asides]
+        out += [replace(line, name=n, wind_from=b, aside=a) for n, a in zip(names, asides, strict=True) for b in bearings]
     return tuple(out)
 
 
@@ -104,17 +116,21 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     """Loads of every line on the structure as placed."""
     scenario = structure.scenario
     w = weights(structure.pieces)
-    d, v, i = np.array([[c.dead, c.wind, c.ice] for c in lines]).T
-    still = dead.dead(structure, w).times(d).plus(dead.ice(structure, w).times(i))
-    blown, on_cables = _wind(structure, lines, placed, w)
+    there = _there(structure, placed, w)
+    ice = ice_at(structure, there.z, there.low, there.high)
+    names = [c.name for c in scenario.cable]
+    present, bare = (_named([getattr(c, which) for c in lines], names) for which in ("without", "bare"))
+    present = 1.0 - present
+    reduced = scenario.ice.wind_factor if scenario.ice is not None else 1.0
+    d, v, i = np.array([[c.dead, c.wind * (reduced if c.ice > 0 else 1.0), c.ice] for c in lines]).T
+    still = dead.dead(structure, w).times(d).plus(dead.ice(structure, w, ice.mass).times(i))
+    blown, on_cables = _wind(structure, lines, there, w, ice, v, (i[:, None] > 0) & (bare == 0.0))
     both = still.plus(blown.times(v))
     warming = np.array([c.temperature - scenario.setting.temperature for c in lines])
     _move_off(structure.pieces, both.on_pieces, warming)
-    cable_dead, cable_ice = dead.cable_weight(structure)
-    down = (d[:, None] * cable_dead + i[:, None] * cable_ice)[..., None] * dead.DOWN
+    cable_weights = STANDARD_GRAVITY * (d[:, None] * structure.cables.mass + i[:, None] * (1.0 - bare) * ice.cable_mass)
+    down = cable_weights[..., None] * dead.DOWN
     hangs = scenario.analysis.cable == "catenary"
-    names = [c.name for c in scenario.cable]
-    present = np.array([[name not in c.without for name in names] for c in lines], dtype=float).reshape(len(lines), -1)
     force, dyad = to_nodes(structure.pieces, both.on_pieces, structure.nodes)
     add_points(structure.fittings.point, both.on_fittings, warming, force, dyad)
     cable_weight = hangs * (np.abs(down[..., 2]) * placed.length * present).sum(axis=1)
@@ -149,21 +165,58 @@ def add_points(points: Points, on_points: Array, warming: Array, force: Array, d
         dyad[:, node] += outer(points.arm[k] + warming[:, None] * points.growth[k], on_points[:, k])
 
 
-def _wind(structure: Structure, lines: Sequence[CaseLine], placed: Placed, w: Weights) -> tuple[dead.Loads, Array]:
+def _named(listed: Sequence[Sequence[str]], names: Sequence[str]) -> Array:
+    """(case, cable) 1 where a cable is in the list of a case."""
+    return np.array([[name in some for name in names] for some in listed], dtype=float).reshape(len(listed), len(names))
+
+
+@dataclass(frozen=True)
+class _There:
+    """The placed structure: axis (piece, 3), z (piece, gauss) [m] above the spar's foot; chord (cable, 3), low, high (cable,) [m] heights
+    of the ends of cables above the foot of the spar of their `from` end; fittings (point, 3), foot (spar, 3) [m]."""
+
+    axis: Array
+    z: Array
+    chord: Array
+    low: Array
+    high: Array
+    fittings: Array
+    foot: Array
+
+
+def _there(structure: Structure, placed: Placed, w: Weights) -> _There:
+    pieces, cables = structure.pieces, structure.cables
+    foot = structure.position[structure.foot] + placed.u[structure.foot]
+    start, end = (_on_axis(structure, placed, k) for k in (0, 1))
+    along = end - start
+    fraction = (w.station - pieces.station[:, :1]) / (pieces.station[:, 1:] - pieces.station[:, :1])
+    z = start[:, None, 2] + fraction * along[:, None, 2] - foot[pieces.spar, None, 2]
+    a, b = where(structure, placed, cables.a), where(structure, placed, cables.b)
+    base = foot[cables.spar, 2]
+    axis = along / np.linalg.norm(along, axis=-1, keepdims=True)
+    return _There(axis, z, b - a, a[:, 2] - base, b[:, 2] - base, where(structure, placed, structure.fittings.point), foot)
+
+
+def _wind(
+    structure: Structure, lines: Sequence[CaseLine], there: _There, w: Weights, ice: Ice, factor: Array, iced_cables: wind.Flags
+) -> tuple[dead.Loads, Array]:
     """Loads on spars and fittings, and whole wind forces on cables (case, cable, 3), for a factor of one; zero where there is none."""
     cases, pieces, fittings, cables = len(lines), len(structure.pieces.spar), len(structure.fittings.of), len(structure.cables.EA)
     on_pieces, on_fittings, on_cables = np.zeros((cases, pieces, 4, 3)), np.zeros((cases, fittings, 3)), np.zeros((cases, cables, 3))
     blown = np.array([k for k, c in enumerate(lines) if c.wind != 0], dtype=np.int64)
     blows = structure.scenario.wind
     if len(blown) and blows is not None:
-        bearing = np.array([lines[k].wind_from for k in blown])
-        iced = np.array([lines[k].ice > 0 for k in blown])
-        foot = structure.position[structure.foot] + placed.u[structure.foot]
-        start, end = (_on_axis(structure, placed, k) for k in (0, 1))
-        on_pieces[blown] = wind.on_spars(structure, blows, w, start, end, foot, bearing, iced)
-        on_fittings[blown] = wind.on_fittings(structure, blows, where(structure, placed, structure.fittings.point), foot, bearing, iced)
-        a, b = where(structure, placed, structure.cables.a), where(structure, placed, structure.cables.b)
-        on_cables[blown] = wind.on_cables(structure, blows, a, b, foot, bearing, iced)
+        some = [lines[k] for k in blown]
+        now = wind.Blown(
+            wind_from=np.array([c.wind_from for c in some]),
+            iced=np.array([c.ice > 0 for c in some]),
+            strength=np.minimum(factor[blown], 1.0),
+            iced_cables=iced_cables[blown],
+            aside=[c.aside for c in some],
+        )
+        on_pieces[blown] = wind.on_spars(structure, blows, w, there.axis, there.z, ice, now)
+        on_fittings[blown] = wind.on_fittings(structure, blows, there.fittings, there.foot, now)
+        on_cables[blown] = wind.on_cables(structure, blows, there.chord, there.low, there.high, ice, now)
     return dead.Loads(on_pieces, on_fittings), on_cables
 
 

@@ -7,10 +7,9 @@ from dataclasses import dataclass
 import numpy as np
 
 from guys.constants import STANDARD_GRAVITY
-from guys.loads.spread import Weights, spread
+from guys.loads.spread import Weights, shares, spread
 from guys.rotation import Array
 from guys.scenario.model import Fitting
-from guys.sections import ice_on_round
 from guys.structure import Structure
 
 DOWN = np.array([0.0, 0.0, -1.0])
@@ -42,25 +41,20 @@ class Loads:
 
 
 def _weight(structure: Structure, w: Weights, mass_per_length: Array, point_forces: Array) -> Loads:
+    """Weights of (piece, gauss) [kg/m], and forces on fittings, each once though a sign has points at its edges too."""
     down = np.broadcast_to(DOWN, (1, len(mass_per_length), 3))
-    return Loads(spread(w, STANDARD_GRAVITY * mass_per_length[:, None] * np.ones_like(w.station), down), point_forces[None])
+    own = np.where(structure.fittings.side[:, None] == 0, point_forces, 0.0)
+    return Loads(spread(shares(w, STANDARD_GRAVITY * mass_per_length), down), own[None])
 
 
 def dead(structure: Structure, w: Weights) -> Loads:
     """Weights of spars and fittings and the fixed loads, one case."""
     forces = [np.array([f.load.east, f.load.north, f.load.up]) + STANDARD_GRAVITY * f.mass * DOWN for f in fittings_of(structure)]
-    return _weight(structure, w, structure.pieces.mass, np.array(forces).reshape(-1, 3))
+    return _weight(structure, w, structure.pieces.mass[:, None] * np.ones_like(w.station), np.array(forces).reshape(-1, 3))
 
 
-def ice(structure: Structure, w: Weights) -> Loads:
-    """The weight of ice on spars and fittings, one case."""
+def ice(structure: Structure, w: Weights, mass: Array) -> Loads:
+    """The weight of ice on spars, mass (piece, gauss) [kg/m], and on fittings, one case."""
     gained = [(f.iced_mass if f.iced_mass is not None else f.mass) - f.mass for f in fittings_of(structure)]
     forces = STANDARD_GRAVITY * np.array(gained).reshape(-1, 1) * DOWN
-    return _weight(structure, w, structure.pieces.iced_mass - structure.pieces.mass, forces)
-
-
-def cable_weight(structure: Structure) -> tuple[Array, Array]:
-    """Weight of every cable and of its ice per unstressed length (cable,) [N/m]."""
-    scenario = structure.scenario
-    ice_mass = np.array([ice_on_round(d, scenario.ice) for d in structure.cables.diameter])
-    return STANDARD_GRAVITY * structure.cables.mass, STANDARD_GRAVITY * ice_mass
+    return _weight(structure, w, mass, forces)

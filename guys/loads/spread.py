@@ -48,13 +48,17 @@ def weights(pieces: Pieces) -> Weights:
     )
 
 
-def spread(w: Weights, intensity: Array, direction: Array) -> Array:
-    """What a load of intensity (piece, gauss) [N/m] times direction (case, piece, 3) brings to the ends of every piece.
+def shares(w: Weights, intensity: Array) -> Array:
+    """What a load of intensity (..., piece, gauss) [N/m] brings to the ends of every piece, along its direction.
 
-    Returns (case, piece, 4, 3): force at the low node [N], lever load there [N m], and both at the high node; a lever load m gives
-    the dyad t (x) m.
+    Returns (..., piece, 4): force at the low node [N], lever load there [N m], and both at the high node; a lever load m gives the dyad
+    t (x) m.
     """
-    share = np.stack([np.sum(by * intensity, axis=1) for by in (w.force_low, w.arm_low, w.force_high, w.arm_high)], axis=-1)
+    return np.stack([np.sum(by * intensity, axis=-1) for by in (w.force_low, w.arm_low, w.force_high, w.arm_high)], axis=-1)
+
+
+def spread(share: Array, direction: Array) -> Array:
+    """Shares (case, piece, 4), or (piece, 4) alike in all cases, along directions (case, piece, 3): (case, piece, 4, 3)."""
     return np.asarray(share[..., None] * direction[:, :, None, :])
 
 

@@ -1,5 +1,6 @@
 """The scenario: what a user wrote, read, checked and resolved.  `read_scenario` is the only way in."""
 
+from guys.scenario.ice import Ice
 from guys.scenario.model import (
     Allowables,
     Analysis,
@@ -11,7 +12,6 @@ from guys.scenario.model import (
     ForceVector,
     GroundFoot,
     HeelFoot,
-    Ice,
     Material,
     Profile,
     Rope,

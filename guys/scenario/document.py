@@ -13,8 +13,10 @@ from pydantic import Field
 from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.holding import Holdfast
+from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
-from guys.scenario.model import Analysis, End, Ice, Material, Setting, Spar, SparPoint
+from guys.scenario.model import Analysis, End, Material, Setting, Spar, SparPoint
+from guys.scenario.shapes import Surface
 from guys.scenario.table import Model
 from guys.scenario.wind_entry import WindEntry
 
@@ -100,7 +102,9 @@ class RopeEntry(Model):
     expansion: q.Expansion | None = None
     """Thermal expansion."""
     drag: q.Factor | None = None
-    """Force coefficient on the diameter."""
+    """Force coefficient on the diameter; left out: chosen from the shape."""
+    surface: Surface | None = None
+    """Surface of a smooth, round rope; left out: stranded, 1.2 at every wind speed."""
 
 
 class CaseEntry(Model):
@@ -118,6 +122,8 @@ class CaseEntry(Model):
     """Temperature; left out: setting.temperature."""
     without: list[q.Name] = []
     """Cables taken away."""
+    bare: list[q.Name] = []
+    """Cables without ice in this case."""
 
 
 class AllowablesEntry(Model):

@@ -25,9 +25,10 @@ from guys.scenario.document import (
     ScenarioFile,
 )
 from guys.scenario.holding import Holdfast
+from guys.scenario.ice import Ice
 from guys.scenario.keys import Finding, Key, nearest
 from guys.scenario.lost import Lost
-from guys.scenario.model import Analysis, Ice, Material, Setting, Spar
+from guys.scenario.model import Analysis, Material, Setting, Spar
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.unavailable import without

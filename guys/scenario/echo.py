@@ -6,7 +6,7 @@ import math
 from collections.abc import Iterator
 
 from guys import units
-from guys.scenario import drawn
+from guys.scenario import drawn, ice
 from guys.scenario.model import Cable, Case, HeelFoot, Rope, Scenario, Spar, Wind
 from guys.scenario.plausible import section_mass
 from guys.scenario.standard_wind import AS_HIGH, REFERENCE_HEIGHT, averaging_words, beaufort
@@ -30,7 +30,7 @@ def lines(scenario: Scenario) -> Iterator[str]:
     if scenario.wind is not None:
         yield f"wind: {_wind(scenario.wind)}"
     if scenario.ice is not None:
-        yield f"ice: {units.both(scenario.ice.thickness, 'length', ('mm', 'in'))}, {units.both(scenario.ice.density, 'density')}"
+        yield f"ice: {ice.words(scenario.ice)}"
     for case in scenario.case:
         yield f'case "{case.name}": {_case(case)}'
     for note in scenario.notes:
@@ -75,4 +75,5 @@ def _wind(wind: Wind) -> str:
 
 def _case(case: Case) -> str:
     away = f", without {', '.join(case.without)}" if case.without else ""
+    away += f", no ice on {', '.join(case.bare)}" if case.bare else ""
     return f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}, {units.both(case.temperature, 'temperature')}{away}"

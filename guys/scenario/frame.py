@@ -2,15 +2,19 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
 
 from guys import units
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
-from guys.scenario.model import Fitting, HeelFoot, Section, Spar
+from guys.scenario.model import MOST_OPEN, Fitting, HeelFoot, Section, Spar
 
 OVERSHOOT = 1e-9
 """An attachment may lie beyond the head by this part of the spar's length: what the conversion of feet and of sums can add."""
+
+SAME_AREA = 0.01
+"""Share by which an area may differ from width by height by solidity: both are written rounded."""
 
 _OF_TUBE = ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "width", "iced_mass", "iced_width")
 _CAPACITIES = ("capacity_axial", "capacity_bending", "capacity_shear", "capacity_torsion")
@@ -89,6 +93,7 @@ def _section(section: Section, key: Key, rigid: bool) -> Iterator[Finding]:
         yield from _tube(section, key)
     else:
         yield from _outright(section, key, rigid)
+    yield from _shape(section, key)
     if section.EI is not None and (section.EI_x is not None or section.EI_y is not None):
         yield Finding((*key, "EI"), "EI stands beside EI_x or EI_y; give EI alone, or EI_x and EI_y")
     yield from _capacities(section, key)
@@ -117,6 +122,24 @@ def _tube(section: Section, key: Key) -> Iterator[Finding]:
             yield Finding((*key, name), "follows from the tube; leave it out, or give the section outright without tube")
 
 
+def _shape(section: Section, key: Key) -> Iterator[Finding]:
+    """What only some shapes have."""
+    given, shape = section.model_fields_set, ((*key, "shape"), (*key, "tube"))
+    if section.tube is not None and section.shape is not None:
+        yield Finding((*key, "shape"), "a tube is round; leave shape out", ((*key, "tube"),))
+    elif section.shape is not None and section.width is None:
+        yield Finding((*key, "width"), f'missing; shape = "{section.shape}" is that of a width', shape)
+    if section.shape == "rectangle" and section.depth is None:
+        yield Finding((*key, "depth"), 'missing; shape = "rectangle" needs it, such as depth = "60 mm"', shape)
+    for name in sorted({"depth", "corner", "face"} & given) if section.shape != "rectangle" else ():
+        yield Finding((*key, name), 'only a rectangle has it; write shape = "rectangle" or leave it out', shape)
+    if section.surface is not None and section.tube is None and section.shape != "round":
+        yield Finding((*key, "surface"), "only round sections have a coefficient that depends on it; leave it out", shape)
+    sides = [side for side in (section.width, section.depth) if side is not None]
+    if section.corner > 0.5 * min(sides, default=math.inf) * (1.0 + OVERSHOOT):
+        yield Finding((*key, "corner"), "more than half the lesser side", ((*key, "width"), (*key, "depth")))
+
+
 def _outright(section: Section, key: Key, rigid: bool) -> Iterator[Finding]:
     lacking = [] if section.mass is not None else ["mass"]
     if not rigid:
@@ -138,17 +161,34 @@ def _fitting(fitting: Fitting, key: Key) -> Iterator[Finding]:
     if fitting.shape == "flat":
         if fitting.face is None:
             yield Finding((*key, "face"), 'missing; shape = "flat" needs the bearing of its normal, such as face = "90 deg"', shape)
-        if fitting.area is None:
-            yield Finding((*key, "area"), 'missing; shape = "flat" needs it, such as area = "6 m2"', shape)
+        if fitting.area is None and (fitting.width is None or fitting.height is None):
+            yield Finding((*key, "area"), 'missing; shape = "flat" needs it, such as area = "6 m2", or width and height', shape)
     else:
         for name in sorted({"face", "face_tilt"} & given):
             yield Finding((*key, name), f'shape = "{fitting.shape}" has no face; write shape = "flat" or leave it out', shape)
-    if fitting.drag is not None and fitting.area is None:
+    yield from _size(fitting, key)
+    if fitting.drag is not None and fitting.area is None and (fitting.width is None or fitting.height is None):
         yield Finding((*key, "area"), "missing; drag is given for it")
     if fitting.iced_mass is not None and fitting.iced_mass < fitting.mass:
         yield Finding((*key, "iced_mass"), "less than mass; iced_mass is the whole mass with the ice on it", ((*key, "mass"),))
     if fitting.iced_area is not None and fitting.iced_area < (fitting.area or 0.0):
         yield Finding((*key, "iced_area"), "less than area; iced_area is the whole area with the ice on it", ((*key, "area"),))
+
+
+def _size(fitting: Fitting, key: Key) -> Iterator[Finding]:
+    """Width and height, and what goes with them."""
+    given, shape = fitting.model_fields_set, ((*key, "shape"),)
+    has = {"flat": {"width", "height", "solidity", "bar"}, "round": {"width", "height", "surface"}, "any": set()}[fitting.shape]
+    for name in sorted({"width", "height", "solidity", "bar", "surface"} & given - has):
+        yield Finding((*key, name), f'shape = "{fitting.shape}" does not use it; leave it out, or give the shape that does', shape)
+    if fitting.bar is not None and not fitting.open_frame:
+        text = f"only an open frame has bars; give solidity up to {MOST_OPEN:g}, or leave bar out"
+        yield Finding((*key, "bar"), text, ((*key, "solidity"),))
+    if fitting.area is not None and fitting.width is not None and fitting.height is not None:
+        made = fitting.width * fitting.height * (fitting.solidity or 1.0)
+        if abs(fitting.area - made) > SAME_AREA * made:
+            told = f"{units.both(fitting.area, 'area')} is not width by height by solidity, {units.both(made, 'area')}; leave area out"
+            yield Finding((*key, "area"), told, tuple((*key, name) for name in ("width", "height", "solidity")))
 
 
 def _standing(draft: Draft) -> Iterator[Finding]:

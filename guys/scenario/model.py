@@ -17,9 +17,13 @@ from pydantic import Discriminator, Field, Tag
 from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.holding import Holdfast
+from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
+from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
 
+MOST_OPEN = 0.7
+"""Solidity up to which a face is an open frame; a fuller one is a sign with openings (ASCE 7 figures 29.3-1 and 29.4-2, read)."""
 Base = Literal["pinned", "ball", "hinged", "fixed", "sprung"]
 
 
@@ -113,7 +117,17 @@ class Section(Model):
     width: q.PositiveLength | None = None
     """Width the wind meets; of a lattice the projected solid area per length."""
     drag: q.Factor | None = None
-    """Force coefficient on the width."""
+    """Force coefficient on the width; left out: chosen from the shape."""
+    shape: SectionShape | None = None
+    """What a width given outright is that of: round, rectangle, hexagon, octagon, or sharp (angles, channels, I-sections)."""
+    depth: q.PositiveLength | None = None
+    """Depth of a rectangle behind `width`."""
+    corner: q.LengthFromZero = 0.0
+    """Corner radius of a rectangle."""
+    face: q.Angle | None = None
+    """Bearing of the normal to the face `width` of a rectangle; left out: the spar's `toward`."""
+    surface: Surface | None = None
+    """Surface of a round section, such as "galvanised steel" (the default), or its roughness."""
     iced_mass: q.LinearMass | None = None
     """Mass per length with the ice on it."""
     iced_width: q.PositiveLength | None = None
@@ -140,9 +154,19 @@ class Fitting(Model):
     area: q.Area | None = None
     """Area the wind meets."""
     drag: q.Factor | None = None
-    """Force coefficient on the area."""
-    shape: Literal["any", "flat"] = "any"
-    """any: the same area from all bearings; flat: a face with a normal."""
+    """Force coefficient on the area; left out: chosen from the shape."""
+    shape: FittingShape = "any"
+    """any: the same area from all bearings; flat: a face with a normal; round: an upright round body."""
+    width: q.PositiveLength | None = None
+    """Width of a flat face, or diameter of a round body."""
+    height: q.PositiveLength | None = None
+    """Height of a flat face, or length of a round body."""
+    solidity: q.Share | None = None
+    """Solid share of a flat face with openings; left out: 1."""
+    bar: q.PositiveLength | None = None
+    """Diameter of the round members of a face that is an open frame; left out: they are flat-sided."""
+    surface: Surface | None = None
+    """Surface of a round body, such as "galvanised steel" (the default), or its roughness."""
     face: q.Angle | None = None
     """Bearing of the face's normal, for flat."""
     face_tilt: q.Angle = 0.0
@@ -155,6 +179,16 @@ class Fitting(Model):
     """Mass with the ice on it."""
     iced_area: q.Area | None = None
     """Area with the ice on it."""
+
+    @property
+    def open_frame(self) -> bool:
+        """Whether it is a frame the wind blows through, not a sign."""
+        return self.shape == "flat" and self.solidity is not None and self.solidity <= MOST_OPEN
+
+    @property
+    def sign(self) -> bool:
+        """Whether it is a sign whose force, chosen from its shape, may stand to either side of its middle."""
+        return self.shape == "flat" and self.drag is None and self.width is not None and not self.open_frame
 
 
 class Spar(Model):
@@ -255,6 +289,7 @@ class Rope(Model):
     expansion: float | None = None
     drag: float | None = None
     source: str | None = None
+    surface: str | None = None
 
 
 class Material(Model):
@@ -315,19 +350,17 @@ class Wind(Model):
     profile: Profile = Profile()
     air_density: float = constants.AIR_DENSITY
     directions: tuple[float, ...]
+    coefficients: Rules | None = None
+    """Whose force coefficients are chosen from shapes; None: those that go with the profile."""
     speed_factor: float = 1.0
     pressure_factor: float = 1.0
     notes: tuple[str, ...] = ()
     warnings: tuple[str, ...] = ()
 
-
-class Ice(Model):
-    """Ice on everything."""
-
-    thickness: q.PositiveLength
-    """Thickness all round."""
-    density: q.Density = constants.ICE_DENSITY
-    """Density; left out: 900 kg/m3."""
+    @property
+    def rules(self) -> Rules:
+        """Whose force coefficients are chosen from shapes."""
+        return self.coefficients or ("asce7" if str(self.profile.kind) == "asce7" else "en")
 
 
 class Case(Model):
@@ -339,6 +372,7 @@ class Case(Model):
     ice: float = 0.0
     temperature: float
     without: tuple[str, ...] = ()
+    bare: tuple[str, ...] = ()
 
 
 class Allowables(Model):

@@ -14,6 +14,8 @@ from guys.scenario.keys import Finding, Key, clipped, items, nearest
 from guys.scenario.resolve import built_in_materials
 
 SETTING = "setting"
+ASIDE = ", sign force "
+"""What the names of cases have in common whose sign forces are moved aside."""
 Known = Collection[str] | None
 """Names there are; None where some could not be read, so that nothing can be called unknown."""
 
@@ -83,6 +85,8 @@ def _reserved(document: Mapping[str, Any]) -> Iterator[Finding]:
     for key, name in _names(document, "case").items():
         if name == SETTING:
             yield Finding(key, f'"{SETTING}" is the name of the still-air case; choose another')
+        if ASIDE in name:
+            yield Finding(key, f'"{ASIDE.strip(", ")} ..." ends the names of cases made for signs; choose another')
 
 
 def _unknown(key: Key, kind: str, name: object, known: Known, remedy: str = "") -> Iterator[Finding]:
@@ -157,10 +161,11 @@ def _holdfasts(document: Mapping[str, Any]) -> Iterator[Finding]:
 
 def _taken_away(document: Mapping[str, Any], cables: Known) -> Iterator[Finding]:
     for index, case in items(document, "case"):
-        without, seen = case.get("without"), set[str]()
-        for place, name in enumerate(without if isinstance(without, list) else ()):
-            key = ("case", index, "without", place)
-            yield from _unknown(key, "cable", name, cables)
-            if isinstance(name, str) and name in seen:
-                yield Finding(key, f'cable "{clipped(name)}" is named twice')
-            seen.add(name if isinstance(name, str) else "")
+        for kind in ("without", "bare"):
+            named, seen = case.get(kind), set[str]()
+            for place, name in enumerate(named if isinstance(named, list) else ()):
+                key = ("case", index, kind, place)
+                yield from _unknown(key, "cable", name, cables)
+                if isinstance(name, str) and name in seen:
+                    yield Finding(key, f'cable "{clipped(name)}" is named twice')
+                seen.add(name if isinstance(name, str) else "")

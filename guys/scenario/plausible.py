@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from guys import units
 from guys.catalogue import ropes as stock
 from guys.constants import ZERO_CELSIUS
-from guys.scenario import drawn, held, resolve
+from guys.scenario import drawn, held, ice, resolve
 from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Profile, Scenario, Section, Spar
 
 
@@ -208,6 +208,7 @@ def _weather(scenario: Scenario) -> Iterator[str]:
     if scenario.ice is not None:
         yield from ICE_THICKNESS.warn("ice, thickness", scenario.ice.thickness)
         yield from ICE_DENSITY.warn("ice, density", scenario.ice.density)
+        yield from ice.cautions(scenario.ice)
     yield from TEMPERATURE.warn("setting, temperature", scenario.setting.temperature)
     for case in scenario.case:
         what = f'case "{case.name}"'

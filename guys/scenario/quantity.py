@@ -113,6 +113,7 @@ PositiveAngle = Annotated[float, Quantity("angle", "positive")]
 Temperature = Annotated[float, Quantity("temperature")]
 Expansion = Annotated[float, Quantity("expansion", "not negative")]
 Ratio = Annotated[float, Field(strict=True, gt=0.0, allow_inf_nan=False)]
+Share = Annotated[float, Field(strict=True, gt=0.0, le=1.0, allow_inf_nan=False)]
 Factor = Annotated[float, Field(strict=True, ge=0.0, allow_inf_nan=False)]
 Flag = Annotated[bool, Field(strict=True)]
 _CHARACTER = r"[^\x00-\x1f\x7f]"

@@ -11,7 +11,7 @@ from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import drawn, frame, held, names, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import drawn, frame, held, ice, names, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
@@ -133,6 +133,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from rigging.findings(tables)
     yield from weather.findings(tables)
     yield from held.findings(tables)
+    yield from ice.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -188,7 +189,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         holdfast={name: entry for name, entry in tables.holdfast.items() if entry is not None},
         setting=setting,
         wind=wind,
-        ice=tables.ice,
+        ice=None if tables.ice is None else ice.resolved(tables.ice),
         case=resolve.cases(_present(tables.case), setting),
         allowables=resolve.allowables(allowables),
         analysis=analysis,

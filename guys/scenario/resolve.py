@@ -17,6 +17,7 @@ from guys.scenario.model import (
     AnchorPoint,
     Cable,
     Case,
+    Fitting,
     Material,
     Rope,
     Setting,
@@ -46,10 +47,16 @@ def built_in_materials() -> Mapping[str, Material]:
 
 
 def spar(entry: Spar) -> Spar:
-    """The spar with the axis of its hinge filled in."""
-    if entry.base == "hinged" and entry.hinge_axis is None:
-        return entry.model_copy(update={"hinge_axis": entry.toward + math.pi / 2})
-    return entry
+    """The spar with the axis of its hinge and the areas of its fittings filled in."""
+    axis = entry.toward + math.pi / 2 if entry.base == "hinged" and entry.hinge_axis is None else entry.hinge_axis
+    return entry.model_copy(update={"hinge_axis": axis, "fitting": tuple(fitting(each) for each in entry.fitting)})
+
+
+def fitting(entry: Fitting) -> Fitting:
+    """The fitting, its area worked out from width, height and solidity where so given."""
+    if entry.area is not None or entry.width is None or entry.height is None:
+        return entry
+    return entry.model_copy(update={"area": entry.width * entry.height * (entry.solidity or 1.0)})
 
 
 def anchor(entry: AnchorEntry, foot: drawn.Point) -> Anchor:
@@ -92,7 +99,7 @@ def cable(index: int, entry: CableEntry) -> Cable:
 def rope(entry: RopeEntry) -> Rope:
     """The rope, its stiffness worked out from modulus and metal area where so given."""
     stiffness = entry.stiffness if entry.stiffness is not None else (entry.modulus or 0.0) * (entry.metal_area or 0.0)
-    given = entry.model_dump(include={"diameter", "mass", "strength", "expansion", "drag"})
+    given = entry.model_dump(include={"diameter", "mass", "strength", "expansion", "drag", "surface"})
     return Rope(stiffness=stiffness, **given)
 
 
@@ -141,6 +148,7 @@ def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
             ice=entry.ice,
             temperature=setting.temperature if entry.temperature is None else entry.temperature,
             without=tuple(entry.without),
+            bare=tuple(entry.bare),
         )
         for entry in entries or [CaseEntry(name=DEFAULT_CASE)]
     )

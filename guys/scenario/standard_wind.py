@@ -96,6 +96,7 @@ def resolved(entry: WindEntry, directions: tuple[float, ...]) -> Wind:
         profile=profile,
         air_density=density,
         directions=directions,
+        coefficients=entry.coefficients,
         speed_factor=speed,
         pressure_factor=pressure,
         notes=(*profile_note, *speed_notes, *pressure_notes, *_left_off(entry.profile)),

@@ -11,7 +11,7 @@ from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items
 from guys.scenario.model import Fitting, Section
 
-NO_DEFAULT = "default drag from the shape is not available in this version"
+NO_SHAPE = "it cannot be chosen, since the shape is not known"
 
 
 def findings(draft: Draft) -> Iterator[Finding]:
@@ -28,7 +28,7 @@ def findings(draft: Draft) -> Iterator[Finding]:
             yield from _section(section, ("spar", index, "section", place), windy, icy)
         for place, fitting in enumerate(spar.fitting if spar else ()):
             yield from _fitting(fitting, ("spar", index, "fitting", place), windy, icy)
-    yield from _ropes(draft, windy)
+    yield from _ropes(draft)
 
 
 def used_ropes(draft: Draft) -> set[str]:
@@ -52,9 +52,10 @@ def _first(draft: Draft, factor: str) -> CaseEntry | None:
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
     outright = section.tube is None
     shape = ((*key, "tube"), (*key, "lattice"))
-    if windy and section.drag is None:
-        yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}")
-    if windy and outright and section.width is None:
+    if windy and section.drag is None and outright and section.shape is None:
+        text = f"missing; {_has(windy, 'wind')}; give drag, or shape; {NO_SHAPE}"
+        yield Finding((*key, "drag"), text, (*shape, (*key, "shape")))
+    if windy and outright and section.width is None and section.shape is None:
         yield Finding((*key, "width"), f'missing; {_has(windy, "wind")}; give width, such as width = "100 mm"', shape)
     for name in ("iced_mass", "iced_width"):
         if icy and outright and getattr(section, name) is None:
@@ -62,23 +63,32 @@ def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry
 
 
 def _fitting(fitting: Fitting, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
-    if windy and fitting.area is not None and fitting.drag is None:
-        yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}")
-    only_load = fitting.area is None and fitting.mass == 0.0
-    if icy and not only_load:
-        wanted = ("iced_mass",) if fitting.area is None else ("iced_mass", "iced_area")
+    if windy and fitting.drag is None:
+        yield from _drag(fitting, key, windy)
+    no_area = fitting.area is None and (fitting.width is None or fitting.height is None)
+    if icy and not (no_area and fitting.mass == 0.0):
+        wanted = ("iced_mass",) if no_area else ("iced_mass", "iced_area")
         causes = ((*key, "area"), (*key, "mass"))
         yield from (Finding((*key, name), f"missing; {_has(icy, 'ice')}", causes) for name in wanted if getattr(fitting, name) is None)
+
+
+def _drag(fitting: Fitting, key: Key, windy: CaseEntry) -> Iterator[Finding]:
+    """What is lacking for a coefficient chosen from the shape."""
+    if fitting.shape == "any" and fitting.area is not None:
+        yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_SHAPE}", ((*key, "shape"),))
+    for name in ("width", "height") if fitting.shape != "any" else ():
+        if getattr(fitting, name) is None:
+            text = f"missing; {_has(windy, 'wind')} and no drag is given; the coefficient chosen from the shape needs {name}"
+            yield Finding((*key, name), text, ((*key, "shape"), (*key, "drag")))
 
 
 def _has(case: CaseEntry, what: str) -> str:
     return f'case "{clipped(case.name)}" has {what}'
 
 
-def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
+def _ropes(draft: Draft) -> Iterator[Finding]:
     used = used_ropes(draft)
     yield from _stock_ropes(draft)
-    catenary = draft.analysis is not None and draft.analysis.cable == "catenary"
     warm = warmed(draft)
     for name, rope in draft.rope.items():
         key: Key = ("rope", name)
@@ -88,8 +98,6 @@ def _ropes(draft: Draft, windy: CaseEntry | None) -> Iterator[Finding]:
         if given not in (["stiffness"], ["modulus", "metal_area"]):
             got = f"has {' and '.join(given)}" if given else "has no stiffness"
             yield Finding(key, f"{got}; give stiffness, or modulus and metal_area")
-        if name in used and windy and catenary and rope.drag is None:
-            yield Finding((*key, "drag"), f"missing; {_has(windy, 'wind')}; give drag; {NO_DEFAULT}", (("analysis",),))
         if name in used and warm and rope.expansion is None:
             text = f'missing; case "{clipped(warm.name)}" is not at the setting\'s temperature; give expansion, such as "12e-6 1/K"'
             yield Finding((*key, "expansion"), text, (("setting",), ("case",)))

@@ -12,6 +12,7 @@ from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag,
 
 from guys import units
 from guys.scenario import quantity as q
+from guys.scenario.shapes import Rules
 from guys.scenario.table import Model
 
 MOST_DIRECTIONS = 3600
@@ -189,3 +190,5 @@ class WindEntry(Model):
     """Length of the stay; left out: off."""
     directions: Directions = math.pi / 6
     """Bearings the wind comes from: "every 30 deg" (the default), or a list."""
+    coefficients: Rules | None = None
+    """Whose force coefficients are chosen from shapes: "en" or "asce7"; left out: those that go with the profile, else "en"."""

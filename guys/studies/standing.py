@@ -15,6 +15,7 @@ from guys import recovery, stability
 from guys.checks import alarms, allowables, demands, extremes, resolve
 from guys.checks.anchors import unchecked
 from guys.loads import CaseLine, lines_of
+from guys.loads.drag import words
 from guys.results import (
     AnchorPulls,
     AnchorWorst,
@@ -144,7 +145,7 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
         warnings=alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
-        notes=(*scenario.notes, *sorted({n for n in listed.note if n})),
+        notes=(*scenario.notes, *words.notes(structure), *sorted({n for n in listed.note if n})),
         not_checked=(*unchecked(scenario), *alarms.NOT_CHECKED),
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
