@@ -103,10 +103,6 @@ def rope(entry: RopeEntry) -> Rope:
     return Rope(stiffness=stiffness, **given)
 
 
-STOCK_DRAG, STOCK_DRAG_SOURCE = 1.2, "Drag 1.2: EN 1991-1-4 7.9, round and subcritical, read"
-"""Force coefficient of catalogue ropes on their diameter."""
-
-
 def stock_ropes(cables: Iterable[Cable], own: Collection[str]) -> dict[str, Rope]:
     """The catalogue ropes that cables are made of, where the file has none of that name."""
     wanted = dict.fromkeys(cable.rope for cable in cables if cable.rope not in own)
@@ -120,8 +116,7 @@ def _stocked(found: StockRope) -> Rope:
         stiffness=found.stiffness.used,
         strength=found.strength,
         expansion=found.expansion,
-        drag=STOCK_DRAG,
-        source=f"{found.source}. {STOCK_DRAG_SOURCE}",
+        source=found.source,
     )
 
 
