@@ -340,7 +340,7 @@ def test_what_is_chosen_is_told_with_its_source_and_its_range() -> None:
 
 
 FAST = 0.05
-"""[s] for the loads of 1,000 cases of a 45 m mast."""
+"""[s] of processor time for the loads of 1,000 cases of a 45 m mast."""
 
 
 def test_loads_of_a_thousand_cases_are_made_in_a_twentieth_of_a_second() -> None:
@@ -358,7 +358,7 @@ def test_loads_of_a_thousand_cases_are_made_in_a_twentieth_of_a_second() -> None
     assert len(lines) == 1000
     spent = []
     for _ in range(5):
-        begun = time.perf_counter()
+        begun = time.process_time()
         assemble(s, lines, placed)
-        spent.append(time.perf_counter() - begun)
+        spent.append(time.process_time() - begun)
     assert min(spent) < FAST, f"{1000 * min(spent):.1f} ms"

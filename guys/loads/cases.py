@@ -167,7 +167,11 @@ def add_points(points: Points, on_points: Array, warming: Array, force: Array, d
 
 def _named(listed: Sequence[Sequence[str]], names: Sequence[str]) -> Array:
     """(case, cable) 1 where a cable is in the list of a case."""
-    return np.array([[name in some for name in names] for some in listed], dtype=float).reshape(len(listed), len(names))
+    out = np.zeros((len(listed), len(names)))
+    for row, some in enumerate(listed):
+        if some:
+            out[row] = [name in some for name in names]
+    return out
 
 
 @dataclass(frozen=True)

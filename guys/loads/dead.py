@@ -37,7 +37,7 @@ class Loads:
 
     def total(self) -> Array:
         """Sum of the forces (case, 3) [N]."""
-        return np.asarray(self.on_pieces[:, :, (0, 2)].sum(axis=(1, 2)) + self.on_fittings.sum(axis=1))
+        return np.asarray(self.on_pieces[:, :, ::2].sum(axis=(1, 2)) + self.on_fittings.sum(axis=1))
 
 
 def _weight(structure: Structure, w: Weights, mass_per_length: Array, point_forces: Array) -> Loads:
