@@ -13,6 +13,7 @@ ground" and "on the anchor" are what the structure does to the ground.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from typing import Literal
 
@@ -162,6 +163,7 @@ class Finding:
     """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged".
 
     source : of the capacity;  governs : the part, the way of failing or the place that governs, in words, where there are several
+    source : of the capacity;  margin [m] : of rules of the site: the distance found (capacity) less the one needed (demand)
     """
 
     thing: str
@@ -178,6 +180,7 @@ class Finding:
     default: bool = False
     source: str = ""
     governs: str = ""
+    margin: float = math.nan
 
 
 @dataclass(frozen=True)

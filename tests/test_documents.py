@@ -181,6 +181,7 @@ def section_of(page: str, heading: str) -> str:
 
 
 TABLES = {
+    "SiteEntry": "[site]`",
     "Spar": "[[spar]]`",
     "Section": "[[spar.section]]`",
     "Fitting": "[[spar.fitting]]`",

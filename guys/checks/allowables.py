@@ -7,7 +7,7 @@ words are "within" and "past" the allowable, and "not judged" where a capacity i
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import replace
 
 import numpy as np
@@ -29,8 +29,13 @@ def findings(demands: Demands, lines: Sequence[CaseLine]) -> tuple[Finding, ...]
         for k, item in enumerate(demands.items)
         if not (item.if_loaded and np.isnan(demands.demand[:, k]).all())
     ]
+    return sorted_findings(out)
+
+
+def sorted_findings(found: Iterable[Finding]) -> tuple[Finding, ...]:
+    """The nearest to its allowable first, what is not judged last."""
     order = {"past": 0, "within": 1, "not judged": 2}
-    return tuple(sorted(out, key=lambda f: (order[f.verdict], _reserve(f))))
+    return tuple(sorted(found, key=lambda f: (order[f.verdict], _reserve(f), -math.inf if math.isnan(f.margin) else f.margin)))
 
 
 def unjudged(found: tuple[Finding, ...]) -> tuple[Finding, ...]:

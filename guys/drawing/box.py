@@ -118,11 +118,21 @@ def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
 
 def finding_words(solution: Solution, finding: Finding, tongue: Tongue) -> str:
     """Thing, demand / capacity, factor against the one required, verdict, and with what."""
+    if isfinite(finding.margin):
+        return _rule_words(solution, finding, tongue)
     both = f"{amount(finding.demand, finding.unit, tongue, True)} / {amount(finding.capacity, finding.unit, tongue, False)}"
     asked = f"{finding.required:g} needed" + (", default" if finding.default else "")
     where = f"; {wind_words(solution, finding.case, finding.wind_from)}" if finding.case else ""
     where += f"; {finding.governs}" if finding.governs else ""
     return f"{finding.thing} {finding.quantity} {both}, factor {factor(finding.factor)} ({asked}): {finding.verdict}{where}"
+
+
+def _rule_words(solution: Solution, finding: Finding, tongue: Tongue) -> str:
+    """A rule of the site: distance found and needed, and what it lacks."""
+    found, needed, lacks = (tongue.say(length, v) for v in (finding.capacity, finding.demand, -finding.margin))
+    where = f"; {wind_words(solution, finding.case, finding.wind_from)}" if finding.case else ""
+    verdict = f"past by {lacks}" if finding.verdict == "past" else finding.verdict
+    return f"{finding.thing} {finding.quantity} {found}, {needed} needed: {verdict}{where}"
 
 
 def worst_of_each(findings: Iterable[Finding]) -> list[Finding]:

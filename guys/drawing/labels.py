@@ -225,3 +225,12 @@ def column(wish: Wish, x: float, room: Rect) -> Wish:
     shift = np.arange(-0.5, 0.5, 1.0 / 120.0) * room.height
     low = np.column_stack([np.full(len(shift), x if x > wish.point[0] else x - wide), wish.point[1] - high / 2.0 + shift])
     return replace(wish, boxes=np.hstack([low, low + np.array([wide, high])]), cost=0.8 * np.abs(shift))
+
+
+def hidden(line: Array, field: Field, gap: float = 0.8) -> NDArray[np.bool_]:
+    """(point,) under words or outside the plan."""
+    room = field.room
+    out = (line[:, 0] < room.left) | (line[:, 0] > room.right) | (line[:, 1] < room.bottom) | (line[:, 1] > room.top)
+    boxes = np.concatenate(field.boxes) + np.array([-gap, -gap, gap, gap])
+    inside = (line[:, None, :] > boxes[None, :, :2]).all(axis=-1) & (line[:, None, :] < boxes[None, :, 2:]).all(axis=-1)
+    return np.asarray(out | inside.any(axis=1))

@@ -16,7 +16,7 @@ import numpy as np
 from guys.drawing import blocks, style
 from guys.drawing.anchor_words import label_anchors, label_room, worst_of
 from guys.drawing.blocks import Line
-from guys.drawing.labels import Array, Field, Wish, all_over, around, clashes, place
+from guys.drawing.labels import Array, Field, Wish, all_over, around, clashes, hidden, place
 from guys.drawing.lettering import shortened
 from guys.drawing.page import Page, Rect, arc
 from guys.drawing.reading import (
@@ -31,6 +31,7 @@ from guys.drawing.reading import (
 )
 from guys.drawing.rounding import Tongue, force, length
 from guys.drawing.scales import length_bar, load_bar, ratio_text, ratio_to_fit
+from guys.drawing.site import draw_site
 from guys.results import AnchorWorst, Solution
 
 HEAD, STRIP = 12.0, 9.5
@@ -87,6 +88,7 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     field = Field(on.room)
     per_newton = load_scale(solution, on)
     largest = _largest(solution)
+    site = solution.scenario.site
     _heading(page, solution, on, ratio)
     _north(page, on, field)
     _foot_strip(page, on, per_newton, largest * per_newton, tongue)
@@ -98,6 +100,8 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     label_anchors(page, solution, field, on.on_page, rings, tongue)
     _label_spars(page, solution, on, field)
     _governing_wind(page, solution, on, field, tongue)
+    if site is not None:
+        draw_site(page, site, field, on.on_page, tongue)
     _fall_circles(page, solution, on, field, tongue)
 
 
@@ -275,21 +279,21 @@ def _fall_circles(page: Page, solution: Solution, on: PlanFrame, field: Field, t
     for name, foot, reach in fall_circles(solution):
         centre = on.on_page(foot)
         line = arc(centre, reach * on.per_metre, 721)
-        hidden = _hidden(line, field)
-        shown = np.where(hidden[:, None], np.nan, line)
+        covered = hidden(line, field)
+        shown = np.where(covered[:, None], np.nan, line)
         what = f"fall circle of {shortened(name, 40.0, style.BODY)} {tongue.say(length, reach)}"
         words = [Line(what, colour=style.GREY)]
-        if hidden.all():
+        if covered.all():
             _beyond(page, field, [Line(f"{what}: beyond this plan", colour=style.GREY)])
-        elif (~hidden).sum() > 60:
+        elif (~covered).sum() > 60:
             wide, high = blocks.size(words)
-            spots = line[~hidden][::6]
+            spots = line[~covered][::6]
             half = np.array([wide, high]) / 2.0
             cost = np.linalg.norm(spots - [on.centre[0], on.room.bottom], axis=1) * 0.05
             spot = place(field, Wish(centre, np.hstack([spots - half, spots + half]), cost, leader_from=1e6))
             if not spot.clashes:
                 blocks.draw(page, spot.box, words)
-            shown = np.where(_hidden(line, field)[:, None], np.nan, line)
+            shown = np.where(hidden(line, field)[:, None], np.nan, line)
         page.line(shown, style.GREY, 0.9, style.DOTTED, order=1.0, name="fall circle")
 
 
@@ -300,12 +304,3 @@ def _beyond(page: Page, field: Field, words: list[Line]) -> None:
     blocks.draw(page, spot.box + np.array([0.0, APART / 2.0, -APART, -APART / 2.0]), words)
     if spot.clashes:
         page.crowded.append(words[0].text)
-
-
-def _hidden(line: Array, field: Field, gap: float = 0.8) -> np.ndarray:
-    """(point,) under words or outside the plan."""
-    room = field.room
-    out = (line[:, 0] < room.left) | (line[:, 0] > room.right) | (line[:, 1] < room.bottom) | (line[:, 1] > room.top)
-    boxes = np.concatenate(field.boxes) + np.array([-gap, -gap, gap, gap])
-    inside = (line[:, None, :] > boxes[None, :, :2]).all(axis=-1) & (line[:, None, :] < boxes[None, :, 2:]).all(axis=-1)
-    return np.asarray(out | inside.any(axis=1))

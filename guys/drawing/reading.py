@@ -13,6 +13,7 @@ from math import isfinite, nan
 import numpy as np
 from numpy.typing import NDArray
 
+from guys.checks import plan
 from guys.drawing.rounding import ABSENT, bearing
 from guys.results import AnchorWorst, Array, Extreme, Flags, Solution, SparLine, Sweep
 
@@ -270,15 +271,4 @@ def check_distances(solution: Solution) -> list[tuple[str, float]]:
 def fall_circles(solution: Solution) -> list[tuple[str, Array, float]]:
     """For every spar on the ground its name, foot (2,) and the farthest any point of it, or of spars it carries, is from that foot."""
     carried = {spar: by for spar, by in zip(solution.heels.spar, solution.heels.carried_by, strict=True) if by is not None}
-
-    def root(name: str) -> str:
-        return root(carried[name]) if name in carried else name
-
-    circles = []
-    for spar in solution.spars:
-        if spar.name in carried:
-            continue
-        family = [other.drawn for other in solution.spars if root(other.name) == spar.name]
-        reach = max(float(np.linalg.norm(points - spar.drawn[0], axis=1).max()) for points in family)
-        circles.append((spar.name, spar.drawn[0, :2], reach))
-    return circles
+    return [(name, foot[:2], reach) for name, foot, reach in plan.fall_circles(solution.spars, carried)]

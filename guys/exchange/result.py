@@ -200,6 +200,7 @@ def _finding(f: Finding) -> dict[str, Any]:
         "allowable_is_default": f.default,
         "source": f.source,
         "governs": f.governs,
+        "margin_m": number(f.margin),
     }
 
 

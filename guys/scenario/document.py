@@ -17,6 +17,7 @@ from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, End, Material, Setting, Spar, SparPoint
 from guys.scenario.shapes import Surface
+from guys.scenario.site_table import Latitude, Longitude, SiteEntry
 from guys.scenario.table import Model
 from guys.scenario.wind_entry import WindEntry
 
@@ -34,8 +35,12 @@ class AnchorEntry(Model):
     """Distance east of the origin."""
     north: q.Length | None = None
     """Distance north of the origin."""
+    lat: Latitude | None = None
+    """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
+    lon: Longitude | None = None
+    """Longitude, degrees east, WGS 84; a bare number."""
     level: q.Length | None = None
-    """Height above the origin's level; left out: that of the first spar's foot."""
+    """Height above the origin's level; left out: that of the ground there, or of the first spar's foot."""
     give: q.Spring | None = None
     """The anchor moves by the sum of its pulls divided by this."""
     holdfast: q.Name | None = None
@@ -150,6 +155,8 @@ class ScenarioFile(Model):
     """Title."""
     note: q.Text | None = None
     """Free text, printed on the sheet."""
+    site: SiteEntry | None = None
+    """Coordinate system, boundary, obstacles, ground."""
     spar: Annotated[list[Spar], Field(min_length=1)]
     """Masts, booms and pylons."""
     anchor: list[AnchorEntry] = []

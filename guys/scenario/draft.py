@@ -31,6 +31,7 @@ from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Material, Setting, Spar
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.resolve import DEFAULT_CASE
+from guys.scenario.site_table import SiteEntry
 from guys.scenario.unavailable import without
 from guys.scenario.wind_entry import WindEntry
 
@@ -43,6 +44,7 @@ class Draft:
     format: int
     title: str
     note: str | None
+    site: SiteEntry | None
     spar: tuple[Spar | None, ...]
     anchor: tuple[AnchorEntry | None, ...]
     guy_level: tuple[GuyLevel | None, ...]

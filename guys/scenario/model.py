@@ -12,7 +12,7 @@ import math
 from collections.abc import Mapping
 from typing import Annotated, Any, Literal
 
-from pydantic import Discriminator, Field, Tag
+from pydantic import Discriminator, Field, InstanceOf, Tag
 
 from guys import constants
 from guys.scenario import quantity as q
@@ -21,6 +21,7 @@ from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
+from guys.site import Site
 
 MOST_OPEN = 0.7
 """Solidity up to which a face is an open frame; a fuller one is a sign with openings (ASCE 7 figures 29.3-1 and 29.4-2, read)."""
@@ -402,6 +403,8 @@ class Scenario(Model):
     format: int = 1
     title: str
     note: str | None = None
+    site: InstanceOf[Site] | None = None
+    """Boundary, obstacles and ground, with the coordinate grid; None where the file has no [site]."""
     spar: tuple[Spar, ...]
     anchor: tuple[Anchor, ...] = ()
     cable: tuple[Cable, ...] = ()

@@ -13,8 +13,8 @@ from dataclasses import dataclass
 from guys import units
 from guys.catalogue import ropes as stock
 from guys.constants import ZERO_CELSIUS
-from guys.scenario import drawn, held, ice, resolve
-from guys.scenario.model import AnchorPoint, Cable, HeelFoot, Material, Profile, Scenario, Section, Spar
+from guys.scenario import drawn, held, ice, place, resolve
+from guys.scenario.model import AnchorPoint, Cable, GroundFoot, HeelFoot, Material, Profile, Scenario, Section, Spar
 
 
 @dataclass(frozen=True)
@@ -84,6 +84,8 @@ def warnings(scenario: Scenario) -> Iterator[str]:
     for name in ("cable", "anchor", "sliding", "spar"):
         if getattr(scenario.allowables, name) < 1.0:
             yield f"allowables.{name}: {getattr(scenario.allowables, name):g} is less than 1, which lets it fail and calls it within"
+    if scenario.site is not None:
+        yield from place.warnings([(s.name, s.foot) for s in scenario.spar if isinstance(s.foot, GroundFoot)], scenario.site)
 
 
 def section_mass(section: Section, materials: dict[str, Material]) -> float | None:
@@ -106,8 +108,8 @@ def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
         yield from SPAR_MASS.warn(f"{what}{total}, mass per length", weight / spar.length)
     if not isinstance(spar.foot, HeelFoot) and math.cos(spar.lean) < math.cos(STEEP):
         yield f"{what}, lean: {units.show(spar.lean, 'deg')} from the vertical is nearly level, or head down"
-    for place, section in enumerate(spar.section):
-        here = f"{what}, section {place + 1}"
+    for number, section in enumerate(spar.section, 1):
+        here = f"{what}, section {number}"
         if section.tube is not None:
             yield from TUBE_DIAMETER.warn(f"{here}, diameter", section.tube.diameter)
             yield from TUBE_WALL.warn(f"{here}, wall", section.tube.wall)

@@ -11,11 +11,12 @@ from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import drawn, frame, held, ice, names, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import drawn, frame, held, ice, names, place, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
 from guys.scenario.quantity import shown
+from guys.site import Site
 
 LARGEST = 5_000_000
 """Bytes a scenario file may have."""
@@ -81,11 +82,12 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     _check_format(document, text, path)
     document, refused = unavailable.sweep(document)
     tables, unfit = draft(document)
-    broken = refused + unfit
+    tables, site, misplaced = place.placed(tables, path)
+    broken = refused + unfit + misplaced
     findings = broken + independent(_rules(tables), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))
-    scenario = _resolved(tables, hashlib.sha256(content).hexdigest(), path)
+    scenario = _resolved(tables, site, hashlib.sha256(content).hexdigest(), path)
     return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario))})
 
 
@@ -164,7 +166,7 @@ def _there(table: _Table | None) -> _Table:
     return table
 
 
-def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
+def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -> Scenario:
     spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
     foot = drawn.foot(spars, next(iter(spars)))
     heights = [level["at"] for level in tables.document.get("guy_level", [])]
@@ -181,6 +183,7 @@ def _resolved(tables: Draft, digest: str, path: str | None) -> Scenario:
         format=tables.format,
         title=tables.title,
         note=tables.note,
+        site=site,
         spar=tuple(spars.values()),
         anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
         cable=cables,

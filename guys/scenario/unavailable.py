@@ -11,13 +11,10 @@ NOT_AVAILABLE = "not available in this version"
 
 _EVERY = "*"
 _PATTERNS: tuple[tuple[tuple[str, ...], str], ...] = (
-    (("site",), "; coordinates are local, from the first spar's foot"),
     (("part",), ""),
     (("limit",), ""),
     (("raise",), ""),
     (("layout",), ""),
-    (("anchor", _EVERY, "lat"), "; give bearing and radius, or east and north"),
-    (("anchor", _EVERY, "lon"), "; give bearing and radius, or east and north"),
     (("spar", _EVERY, "plate"), ""),
     (("spar", _EVERY, "section", _EVERY, "lattice"), "; give mass, EA, EI, GJ, width and drag outright"),
     (("guy_level", _EVERY, "ends"), ""),

@@ -12,7 +12,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from guys import recovery, stability
-from guys.checks import alarms, allowables, demands, extremes, resolve
+from guys.checks import alarms, allowables, demands, extremes, plan, resolve
 from guys.checks.anchors import unchecked
 from guys.loads import CaseLine, lines_of
 from guys.loads.drag import words
@@ -117,7 +117,9 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         for k, a in enumerate(scenario.anchor)
     )
     feet = tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar)))
-    found = allowables.findings(*_everything_judged(listed, swept))
+    hung = _hung(structure, listed)
+    rules = plan.findings(scenario.site, hung) if setting.stands else ()
+    found = allowables.sorted_findings((*allowables.findings(*_everything_judged(listed, swept)), *rules))
     if not ((listed.code == stability.STABLE) | listed.spins).any():
         found = allowables.unjudged(found)
     check = _self_check(setting, listed, cables)
@@ -144,13 +146,21 @@ def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batc
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
-        warnings=alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
         notes=(*scenario.notes, *words.notes(structure), *sorted({n for n in listed.note if n})),
         not_checked=(*unchecked(scenario), *alarms.NOT_CHECKED),
+        warnings=(
+            *alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
+            *plan.warnings(scenario.site, hung),
+        ),
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
     )
+
+
+def _hung(structure: Structure, listed: Batch) -> plan.Hung:
+    curves = np.where(listed.forces.present[:, :, None, None], listed.curves, np.nan)
+    return plan.Hung(structure.scenario, listed.lines, curves, structure.position[structure.anchor], listed.spars)
 
 
 def _everything_judged(listed: Batch, swept: Batch | None) -> tuple[demands.Demands, tuple[CaseLine, ...]]:
