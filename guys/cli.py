@@ -89,7 +89,7 @@ def validate(file: str) -> None:
     from guys.structure import build
 
     scenario = read_scenario(file)
-    for line in (*echo.lines(scenario), *words.notes(build(scenario))):
+    for line in (*echo.lines(scenario), *(f"note: {note}" for note in words.notes(build(scenario)))):
         click.echo(line)
     for warning in scenario.warnings:
         click.echo(f"warning: {warning}", err=True)

@@ -123,9 +123,10 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     present = 1.0 - present
     reduced = scenario.ice.wind_factor if scenario.ice is not None else 1.0
     d, v, i = np.array([[c.dead, c.wind * (reduced if c.ice > 0 else 1.0), c.ice] for c in lines]).T
-    still = dead.dead(structure, w).times(d).plus(dead.ice(structure, w, ice.mass).times(i))
+    both = dead.superposed(np.stack([d, i], axis=1), [dead.dead(structure, w), dead.ice(structure, w, ice.mass)])
+    still = both.total()
     blown, on_cables = _wind(structure, lines, there, w, ice, v, (i[:, None] > 0) & (bare == 0.0))
-    both = still.plus(blown.times(v))
+    both.add(v, blown)
     warming = np.array([c.temperature - scenario.setting.temperature for c in lines])
     _move_off(structure.pieces, both.on_pieces, warming)
     cable_weights = STANDARD_GRAVITY * (d[:, None] * structure.cables.mass + i[:, None] * (1.0 - bare) * ice.cable_mass)
@@ -144,7 +145,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
         at_ends=np.zeros((*present.shape, 2, 3)),
         warming=warming,
         present=present,
-        weight=np.linalg.norm(still.total(), axis=-1) + cable_weight,
+        weight=np.linalg.norm(still, axis=-1) + cable_weight,
         wind_force=v * np.linalg.norm(blown.total() + cable_wind, axis=-1),
         lines=tuple(lines),
     )

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -27,17 +28,24 @@ class Loads:
     on_pieces: Array
     on_fittings: Array
 
-    def times(self, factor: Array) -> Loads:
-        """Scaled case by case, factor (case,)."""
-        return Loads(factor[:, None, None, None] * self.on_pieces, factor[:, None, None] * self.on_fittings)
-
-    def plus(self, other: Loads) -> Loads:
-        """Both together."""
-        return Loads(self.on_pieces + other.on_pieces, self.on_fittings + other.on_fittings)
+    def add(self, factor: Array, other: Loads) -> None:
+        """Add other loads of the same cases, scaled case by case, factor (case,), to these."""
+        for to, more in ((self.on_pieces, other.on_pieces), (self.on_fittings, other.on_fittings)):
+            to += factor.reshape(-1, *([1] * (more.ndim - 1))) * more
 
     def total(self) -> Array:
         """Sum of the forces (case, 3) [N]."""
         return np.asarray(self.on_pieces[:, :, ::2].sum(axis=(1, 2)) + self.on_fittings.sum(axis=1))
+
+
+def superposed(factors: Array, parts: Sequence[Loads]) -> Loads:
+    """Loads of one case each put together for every case; factors (case, part)."""
+
+    def mixed(arrays: list[Array]) -> Array:
+        one = np.stack([a[0].reshape(-1) for a in arrays])
+        return np.asarray((factors @ one).reshape(len(factors), *arrays[0].shape[1:]))
+
+    return Loads(mixed([p.on_pieces for p in parts]), mixed([p.on_fittings for p in parts]))
 
 
 def _weight(structure: Structure, w: Weights, mass_per_length: Array, point_forces: Array) -> Loads:

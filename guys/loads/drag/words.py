@@ -14,7 +14,7 @@ from guys.scenario.model import Wind
 from guys.scenario.shapes import surface_words
 from guys.structure import Structure
 
-READ = "read in a public transcription"
+READ = "read"
 ROUND = {
     "en": f"round, EN 1991-1-4 7.9 ({READ}) by Reynolds number",
     "asce7": f"round, ASCE 7 figure 29.4-1 for h/D of 25 and more ({READ}) by D sqrt(q)",
