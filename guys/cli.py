@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("plumb", "size", "setout", "compare", "search", "limit", "raise", "field", "record")
+UNAVAILABLE = ("plumb", "setout", "compare", "search", "limit", "raise", "field", "record")
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
@@ -141,6 +141,19 @@ def lost(file: str, out: str | None, as_json: bool, units: str) -> int:
     from guys.doors.lost import lost_command
 
     return lost_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("size.json and size.csv")
+def size(file: str, out: str | None, as_json: bool, units: str) -> int:
+    """Size the holdfasts of the file for every anchor: mass, length, pattern, depth, torque, whichever of them is on hand.
+
+    Exit status: 0 every anchor can be held; 3 none of the holdfasts can be made to hold some anchor; 4 some case has no stable
+    equilibrium; 1 and 2 as ever.
+    """
+    from guys.doors.size import size_command
+
+    return size_command(file, out, as_json, units)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -36,7 +36,7 @@ def demands(problem: Problem, forces: Forces) -> Demands:
     scenario = problem.structure.scenario
     pull = np.linalg.norm(forces.pull, axis=-1)
     capacity, mode = np.full(pull.shape, np.nan), np.full(pull.shape, -1)
-    idle, default = _idle(scenario, forces), "anchor" in scenario.allowables.defaulted
+    hanging, default = idle(scenario, forces), "anchor" in scenario.allowables.defaulted
     items = []
     for k, anchor in enumerate(scenario.anchor):
         thing = f"anchor {anchor.name}"
@@ -46,7 +46,7 @@ def demands(problem: Problem, forces: Forces) -> Demands:
         holdfast = scenario.holdfast[anchor.holdfast]
         found = holdfasts.of(holdfast, angle(forces.pull[:, k]))
         capacity[:, k], mode[:, k] = found.low, found.mode
-        pull[:, k] = np.where(idle[:, k] & np.isnan(found.low) & ~np.isnan(pull[:, k]), 0.0, pull[:, k])
+        pull[:, k] = np.where(hanging[:, k] & np.isnan(found.low) & ~np.isnan(pull[:, k]), 0.0, pull[:, k])
         why, lacking = f"{anchor.holdfast} over pull{_range(holdfast)}", f"{anchor.holdfast} is not judged in this direction"
         items.append(Item(thing, "pull", "N", why, lacking, found.source, default, modes=found.modes))
     return group(items, pull, capacity, scenario.allowables.anchor, mode)
@@ -64,7 +64,7 @@ def _range(holdfast: Holdfast) -> str:
     return f", its low value; best {best:.3g} and high {high:.3g} times that" if best > 1.0 or high > 1.0 else ""
 
 
-def _idle(scenario: Scenario, forces: Forces) -> NDArray[np.bool_]:
+def idle(scenario: Scenario, forces: Forces) -> NDArray[np.bool_]:
     """(case, anchor) where every cable of the anchor is slack or taken away."""
     ends = [c.to.anchor if isinstance(c.to, AnchorPoint) else None for c in scenario.cable]
     pulling = forces.present & ~forces.slack
@@ -78,6 +78,11 @@ def unchecked(scenario: Scenario) -> Iterator[str]:
     if bare:
         yield f"what holds {', '.join(bare)}: no holdfast given"
     for name in dict.fromkeys(anchor.holdfast for anchor in scenario.anchor if anchor.holdfast is not None):
-        lacking = holdfasts.of(scenario.holdfast[name], np.array([USUAL])).unjudged
-        if lacking:
-            yield f"holdfast {name}: {'; '.join(lacking)}"
+        yield from lacking(name, scenario.holdfast[name])
+
+
+def lacking(name: str, holdfast: Holdfast) -> Iterator[str]:
+    """The ways of giving way of a holdfast that are not looked at for want of data, in words."""
+    ways = holdfasts.of(holdfast, np.array([USUAL])).unjudged
+    if ways:
+        yield f"holdfast {name}: {'; '.join(ways)}"

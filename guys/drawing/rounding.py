@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from math import ceil, degrees, floor, inf, isfinite, log10
 from typing import Literal
 
-from guys import constants
+from guys import constants, units
 
 System = Literal["SI", "US"]
 Units = Literal["SI", "US", "both"]
@@ -182,7 +182,7 @@ def area(square_metres: float, system: System) -> str:
 
 def mass(kilograms: float, system: System) -> str:
     """A mass."""
-    return f"{kilograms:.4g} kg" if system == "SI" else f"{kilograms / POUND:.3g} lb"
+    return units.show(kilograms, "kg") if system == "SI" else units.show(kilograms, "lb", 3)
 
 
 def line_mass(kilograms_per_metre: float, system: System) -> str:
@@ -197,6 +197,12 @@ def density(kilograms_per_cubic_metre: float, system: System) -> str:
     if system == "SI":
         return f"{kilograms_per_cubic_metre:.4g} kg/m³"
     return f"{kilograms_per_cubic_metre / POUND * (12 * INCH) ** 3:.3g} lb/ft³"
+
+
+def at_least(value: float, dimension: str, system: System) -> str:
+    """A size of some dimension, rounded up to three figures: what is needed at least."""
+    unit = units.DIMENSIONS[dimension][0 if system == "SI" else 1]
+    return f"{up_text(units.convert(value, unit), 3)} {unit}"
 
 
 def speed(metres_per_second: float, system: System) -> str:

@@ -1,6 +1,7 @@
 """The table: what every base and every anchor must bear, bases first.
 
 Loads are the greatest of each over all cases and winds, rounded up to two figures; the wind named is the one of the greatest pull.
+A last grid says what to install at each anchor where a holdfast is given.
 "demand / capacity" is the hardest-worked guy of the anchor with its strength.  A column that does not fit goes, the least needed first;
 long names take more lines.
 """
@@ -13,6 +14,7 @@ from math import isfinite
 
 from guys.drawing import style
 from guys.drawing.anchor_words import uplift_words
+from guys.drawing.install import install_words
 from guys.drawing.lettering import fitted, plain, width, wrapped
 from guys.drawing.page import Align, Page, Rect
 from guys.drawing.reading import (
@@ -28,6 +30,7 @@ from guys.drawing.reading import (
 from guys.drawing.rounding import ABSENT, NO_FORCE, Tongue, angle, bearing, capacity, factor, force, length, level, load, moment
 from guys.drawing.strip import standing
 from guys.results import AnchorWorst, CableWorst, FootWorst, Solution
+from guys.scenario.model import Anchor
 
 ROW, HEAD_ROW = 4.2, 5.0
 PAD = 2.2
@@ -199,6 +202,25 @@ def _over(demand: str, capacity: str) -> str:
     return f"{number} / {capacity}" if capacity.endswith(f" {unit}") else f"{demand} / {capacity}"
 
 
+def holdfast_grid(solution: Solution, tongue: Tongue) -> Grid:
+    """What to install at each anchor, and whether it holds: its low value over the pull of the case that governs."""
+    columns = (Column("anchor"), Column("install"), Column("gives way by", spare=1), Column("pull /\nholding", "right"), Column("factor"))
+    return Grid(columns, tuple(_holdfast_row(solution, anchor, tongue) for anchor in solution.scenario.anchor))
+
+
+def _holdfast_row(solution: Solution, anchor: Anchor, tongue: Tongue) -> Row:
+    name = tuple(wrapped(anchor.name, LONGEST_NAME, style.BODY, bold=True))
+    found = next((f for f in solution.findings if f.thing == f"anchor {anchor.name}" and f.quantity == "pull"), None)
+    if anchor.holdfast is None or found is None:
+        return [name, ("no holdfast given",), ("–",), ("–",), ("not judged",)]
+    words = (install_words(solution.scenario.holdfast[anchor.holdfast], tongue), anchor.holdfast)
+    governs = (found.governs or "–",)
+    if found.verdict == "not judged" or not standing(solution):
+        return [name, words, governs, ("–",), ("not judged",)]
+    stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, found.demand), tongue.each(capacity, found.capacity), strict=True))
+    return [name, words, governs, stacked, (f"{factor(found.factor)} {found.verdict}",)]
+
+
 def check_lines(solution: Solution, tongue: Tongue, room: float) -> list[str]:
     """Check distances between neighbouring anchors, as lines."""
     pairs = [f"{names} {tongue.say(length, away)}" for names, away in check_distances(solution)]
@@ -206,8 +228,13 @@ def check_lines(solution: Solution, tongue: Tongue, room: float) -> list[str]:
 
 
 def grids(solution: Solution, tongue: Tongue) -> list[Grid]:
-    """The grid of feet, and that of anchors where there are any."""
-    return [base_grid(solution, tongue), *([anchor_grid(solution, tongue)] if solution.worst_anchors else [])]
+    """The grid of feet, and those of anchors and of what to install where there are any."""
+    out = [base_grid(solution, tongue)]
+    if solution.worst_anchors:
+        out.append(anchor_grid(solution, tongue))
+    if any(anchor.holdfast is not None for anchor in solution.scenario.anchor):
+        out.append(holdfast_grid(solution, tongue))
+    return out
 
 
 def table_height(solution: Solution, tongue: Tongue, room: float) -> float:

@@ -49,11 +49,14 @@ def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = Non
     Returns a `Solution`; a structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets
     the initial tensions asked for.
     """
-    structure = build(scenario, finer)
-    setting = find(structure)
+    return _solution(*cases(scenario, finer, progress))
+
+
+def cases(scenario: Scenario, finer: int = 1, progress: Progress | None = None) -> tuple[Setting, Batch, Batch | None]:
+    """The setting, the listed cases, and those of the full circle of winds, None where no case has wind or still air does not stand."""
+    setting = find(build(scenario, finer))
     listed = _listed(setting, progress)
-    swept = _swept(setting, listed, progress)
-    return _solution(structure, setting, listed, swept)
+    return setting, listed, _swept(setting, listed, progress)
 
 
 def _listed(setting: Setting, progress: Progress | None) -> Batch:
@@ -108,7 +111,8 @@ def _worst(listed: Batch, swept: Batch | None) -> _Worst:
     return _Worst(*with_mirrors(listed), *with_mirrors(swept if swept is not None else listed))
 
 
-def _solution(structure: Structure, setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
+def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
+    structure = setting.problem.structure
     scenario = structure.scenario
     worst = _worst(listed, swept)
     cables = tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable)))
