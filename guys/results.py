@@ -14,7 +14,8 @@ ground" and "on the anchor" are what the structure does to the ground.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from collections.abc import Sequence
+from dataclasses import dataclass, fields, replace
 from typing import Literal
 
 import numpy as np
@@ -159,6 +160,15 @@ class FootWorst:
 
 
 @dataclass(frozen=True)
+class Worst:
+    """The greatest loads of some of the cases."""
+
+    cables: tuple[CableWorst, ...]
+    anchors: tuple[AnchorWorst, ...]
+    feet: tuple[FootWorst, ...]
+
+
+@dataclass(frozen=True)
 class Finding:
     """One thing checked.  `factor` is capacity / demand (or allowed / found); NaN with verdict "not judged".
 
@@ -200,6 +210,12 @@ class Sweep:
     uplift: Array
     slack: Flags
 
+    def of(self, names: Sequence[str]) -> Sweep:
+        """The case lines of those names."""
+        rows = [k for k, name in enumerate(self.case) if name in names]
+        columns = (getattr(self, f.name)[rows] for f in fields(self) if f.name != "case")
+        return Sweep(tuple(self.case[k] for k in rows), *columns)
+
 
 @dataclass(frozen=True)
 class SelfCheck:
@@ -226,6 +242,8 @@ class Solution:
     head_lean : (case, spar) [rad] between the drawn axis and the line foot-head
     unsettled : (case,) whether a case counts as not standing (a free spin of a ball-based spar does not); failed : the solver failed
     somewhere
+    worst_cables, worst_anchors, worst_feet : over all cases;  crew : over service cases, None where every case is one, or where no service
+    case holds the wind that others do
     """
 
     scenario: Scenario
@@ -256,6 +274,22 @@ class Solution:
     cautions: tuple[str, ...] = ()
     unsettled: tuple[bool, ...] = ()
     failed: bool = False
+    crew: Worst | None = None
+
+    @property
+    def loads_are(self) -> Literal["", "service", "FACTORED"]:
+        """Of which cases a crew's loads are: "" where all are service cases, "FACTORED" where none of those there are will do."""
+        if all(case.service for case in self.scenario.case):
+            return ""
+        return "FACTORED" if self.crew is None else "service"
+
+    def for_crew(self) -> Solution:
+        """As a crew is to see it: greatest loads and sweep of the service cases alone."""
+        if self.crew is None:
+            return self
+        kind = self.scenario.kind_of
+        sweep = None if self.sweep is None else self.sweep.of([name for name in self.sweep.case if kind(name) == "service"])
+        return replace(self, worst_cables=self.crew.cables, worst_anchors=self.crew.anchors, worst_feet=self.crew.feet, sweep=sweep)
 
     @property
     def past(self) -> tuple[Finding, ...]:

@@ -41,6 +41,8 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     systems: tuple[System, ...] = ("SI", "US") if units == "both" else (units,)
     scenario = solution.scenario
     stream.write(f"{scenario.title}\n{_states(solution)}\n")
+    solution = solution.for_crew()
+    of = {"": "", "service": " in service cases", "FACTORED": ", FACTORED"}[solution.loads_are]
 
     def load(value: float) -> str:
         return _in_each(rounding.load, value, systems)
@@ -52,7 +54,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
         [a.name, load(a.resultant.peak), load(a.horizontal.peak), signed(a.uplift.peak), *_place(a.resultant)]
         for a in solution.worst_anchors
     ]
-    table("Greatest load of each anchor", ["anchor", "pull", "horizontal", "uplift", "case", "wind from"], anchors, stream)
+    table(f"Greatest load of each anchor{of}", ["anchor", "pull", "horizontal", "uplift", "case", "wind from"], anchors, stream)
     cables = [
         [
             c.name,
@@ -64,7 +66,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
         ]
         for k, c in enumerate(solution.worst_cables)
     ]
-    table("Greatest tension of each cable", ["cable", "tension", "strength", "factor", "case", "wind from", "slack"], cables, stream)
+    table(f"Greatest tension of each cable{of}", ["cable", "tension", "strength", "factor", "case", "wind from", "slack"], cables, stream)
     feet = [
         [
             f.spar,
@@ -76,7 +78,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
         ]
         for f in solution.worst_feet
     ]
-    table("Feet", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
+    table(f"Feet{of}", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
     _findings(solution, stream)
     for title, lines in (
         ("Warnings", solution.warnings),

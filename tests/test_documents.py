@@ -194,6 +194,8 @@ TABLES = {
     "WindEntry": "[wind]`",
     "Ice": "[ice]`",
     "CaseEntry": "[[case]]`",
+    "CombinationsEntry": "[combinations]`",
+    "FactoredEntry": "[allowables]`",
     "AllowablesEntry": "[allowables]`",
     "Analysis": "[analysis]`",
     "Lost": "[lost]`",

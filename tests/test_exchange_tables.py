@@ -21,7 +21,7 @@ def rows(text: str) -> list[Row]:
 def test_anchors_have_a_row_for_each_case_with_the_numbers_of_the_solution() -> None:
     s = made.solved(made.losing())
     found = rows(tables.anchors(s))
-    assert list(found[0]) == ["anchor", "case", "wind_from_deg", "east_N", "north_N", "up_N", "horizontal_N", "resultant_N"]
+    assert list(found[0]) == ["anchor", "case", "wind_from_deg", "east_N", "north_N", "up_N", "horizontal_N", "resultant_N", "kind"]
     for a, name in enumerate(s.anchors.name):
         mine = [r for r in found if r["anchor"] == name and not r["case"].startswith("greatest")]
         assert [r["case"] for r in mine] == list(s.case)

@@ -17,6 +17,7 @@ from guys.checks.spars import too_thin
 from guys.loads import CaseLine
 from guys.recovery import Forces
 from guys.results import CableWorst, Extreme, FootWorst, SelfCheck
+from guys.scenario import Scenario
 from guys.structure import Structure
 
 STILL_LEAN = 1 / 500
@@ -70,6 +71,7 @@ def warnings(
 ) -> tuple[str, ...]:
     """Everything alarming about a run, the gravest first; `gaps`: swept directions without a stable equilibrium, with the reason."""
     out = [
+        *_no_service(structure.scenario),
         *_not_standing(lines, verdicts),
         *_between_directions(lines, gaps),
         *_checks(check),
@@ -82,6 +84,20 @@ def warnings(
         *structure.scenario.warnings,
     ]
     return tuple(dict.fromkeys(out))
+
+
+def has_crew_loads_apart(scenario: Scenario) -> bool:
+    """Not every case is a service case, and those that are hold wind if any does."""
+    return not all(case.service for case in scenario.case) and not _no_service(scenario)
+
+
+def _no_service(scenario: Scenario) -> list[str]:
+    """Crew loads come from service cases; where none is like the others, it is told before all else."""
+    windy = [case for case in scenario.case if case.wind > 0.0]
+    if any(case.service for case in windy or scenario.case):
+        return []
+    lacks = "no service case holds wind" if windy else "no case is a service case"
+    return [f'{lacks}: LOADS TOLD ARE FACTORED, not what a crew meets; add "service" to combinations.sets, or a [[case]] of kind service']
 
 
 def place(line_name: str, wind_from: float) -> str:

@@ -41,14 +41,14 @@ def demands(problem: Problem, forces: Forces) -> Demands:
     for k, anchor in enumerate(scenario.anchor):
         thing = f"anchor {anchor.name}"
         if anchor.holdfast is None:
-            items.append(Item(thing, "pull", "N", "", NOTHING, default=default))
+            items.append(Item(thing, "pull", "N", "", NOTHING, default=default, allowable="anchor"))
             continue
         holdfast = scenario.holdfast[anchor.holdfast]
         found = holdfasts.of(holdfast, angle(forces.pull[:, k]))
         capacity[:, k], mode[:, k] = found.low, found.mode
         pull[:, k] = np.where(hanging[:, k] & np.isnan(found.low) & ~np.isnan(pull[:, k]), 0.0, pull[:, k])
         why, lacking = f"{anchor.holdfast} over pull{_range(holdfast)}", f"{anchor.holdfast} is not judged in this direction"
-        items.append(Item(thing, "pull", "N", why, lacking, found.source, default, modes=found.modes))
+        items.append(Item(thing, "pull", "N", why, lacking, found.source, default, modes=found.modes, allowable="anchor"))
     return group(items, pull, capacity, scenario.allowables.anchor, mode)
 
 

@@ -21,7 +21,7 @@ def sliding(problem: Problem, slide: Array) -> Demands:
     items = [
         Item(
             f"base of {scenario.spar[k].name}", "sideways/down", "", "friction over sideways/down", "no friction given for its base",
-            default="sliding" in allowed.defaulted,
+            default="sliding" in allowed.defaulted, allowable="sliding",
         )
         for k in feet
     ]  # fmt: skip

@@ -15,7 +15,7 @@ def demands(problem: Problem, tension: Array) -> Demands:
     items = [
         Item(
             f"cable {c.name}", "tension", "N", "least breaking load over tension", "its rope has no strength",
-            default="cable" in allowed.defaulted,
+            default="cable" in allowed.defaulted, allowable="cable",
         )
         for c in scenario.cable
     ]  # fmt: skip

@@ -8,6 +8,10 @@ whose function takes solved cases and gives `Demands`, one item a column.
 
 from __future__ import annotations
 
+from dataclasses import replace
+
+import numpy as np
+
 from guys.checks import anchors, bases, chains, spars
 from guys.checks.extremes import measures
 from guys.checks.items import Demands, Item, beside, group, join
@@ -20,7 +24,7 @@ __all__ = ["Demands", "Item", "beside", "group", "join", "of"]
 def of(problem: Problem, state: State, found: Evaluation, forces: Forces) -> Demands:
     """Everything judged, in every case of solved equilibria."""
     m = measures(forces)
-    return beside(
+    every = beside(
         [
             chains.demands(problem, m.tension),
             bases.sliding(problem, m.slide),
@@ -29,3 +33,14 @@ def of(problem: Problem, state: State, found: Evaluation, forces: Forces) -> Dem
             anchors.demands(problem, forces),
         ]
     )
+    return _in_factored_cases(problem, every)
+
+
+def _in_factored_cases(problem: Problem, every: Demands) -> Demands:
+    """The factors required of factored cases where `allowables.factored` has its own."""
+    other = problem.structure.scenario.allowables.factored
+    required = every.required.copy()
+    factored = np.array([line.kind == "factored" for line in problem.loads.lines])
+    for k, item in enumerate(every.items):
+        required[factored, k] = other.get(item.allowable, required[factored, k])
+    return replace(every, required=required)

@@ -25,6 +25,7 @@ class Item:
 
     thing, quantity, unit : as findings show them;  why : how the factor is formed;  lacking : why it is not judged where it is not
     source : where the capacity comes from;  default : the factor required is not the user's;  if_loaded : no finding where no case loads it
+    allowable : the key of `[allowables]` that holds the factor required, where factored cases may have another
     modes : in words, the ways of failing, parts or places that may govern it, as `Demands.mode` counts them
     """
 
@@ -37,6 +38,7 @@ class Item:
     default: bool = False
     if_loaded: bool = False
     modes: tuple[str, ...] = ()
+    allowable: str = ""
 
 
 @dataclass(frozen=True)

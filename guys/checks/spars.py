@@ -1,4 +1,4 @@
-"""Spars: what their sections bear along the length, and the lean of their heads in cases with wind.
+"""Spars: what their sections bear along the length, and the lean of their heads in service cases with wind.
 
 The section forces are those of the deformed state, so bending holds what thrust makes of deflection, and a spar that buckles as a whole
 has no equilibrium: what is left to judge is the section itself (`guys.checks.stress`).  It is judged at both ends of every element, in
@@ -66,11 +66,11 @@ def leans(problem: Problem, lean: Array) -> Demands:
         )
         for s in scenario.spar
     ]  # fmt: skip
-    return group(items, np.where(_windy(problem.loads.lines)[:, None], lean, np.nan), allowed.lean, 1.0)
+    return group(items, np.where(_asked(problem.loads.lines)[:, None], lean, np.nan), allowed.lean, 1.0)
 
 
-def _windy(lines: Sequence[CaseLine]) -> NDArray[np.bool_]:
-    return np.array([not math.isnan(line.wind_from) for line in lines])
+def _asked(lines: Sequence[CaseLine]) -> NDArray[np.bool_]:
+    return np.array([not math.isnan(line.wind_from) and line.kind == "service" for line in lines])
 
 
 def sections(problem: Problem, state: State, found: Evaluation) -> Demands:
@@ -121,7 +121,8 @@ def _item(spar: Spar, n: int, strength: Strength, stations: Array, default: bool
     thing = f"spar {spar.name}" + (f", section {n + 1}" if len(spar.section) > 1 else "")
     places = tuple(_place(float(at)) for at in stations) if strength.why else ()
     return Item(
-        thing, strength.quantity, strength.unit, strength.why, strength.lacking, strength.source, default, if_loaded=False, modes=places
+        thing, strength.quantity, strength.unit, strength.why, strength.lacking, strength.source, default, if_loaded=False, modes=places,
+        allowable="spar",
     )
 
 

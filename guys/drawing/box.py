@@ -64,6 +64,7 @@ def entries(solution: Solution, tongue: Tongue) -> list[Entry]:
         *_checked(solution, tongue),
         *_not_judged(solution),
         *_dropped(solution),
+        *_whose(solution),
         *_weather(solution, tongue),
         *_cables(solution, tongue),
         *_lean(solution),
@@ -195,6 +196,15 @@ def _dropped(solution: Solution) -> list[Entry]:
     return [Entry("Dropped", "; ".join(parts))]
 
 
+def _whose(solution: Solution) -> list[Entry]:
+    """Which cases the loads of the sheet are of, where there are others."""
+    if solution.crew is None:
+        return []
+    service = ", ".join(c.name for c in solution.scenario.case if c.service)
+    text = f"of service cases, unfactored: {service}; factored and allowable-stress cases are judged too, their loads are in result.json"
+    return [Entry("Loads", text)]
+
+
 def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
     rows, wind, ice = [], solution.scenario.wind, solution.scenario.ice
     if wind is not None:
@@ -211,7 +221,8 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
         lost = f", without {', '.join(case.without)}" if case.without else ""
         lost += f", no ice on {', '.join(case.bare)}" if case.bare else ""
         factors = f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}"
-        parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}")
+        kind = "" if case.service else f", {case.kind}"
+        parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}{kind}")
     if ice is not None:
         glaze = f"ice {tongue.say(thickness, ice.thickness)} all round, {tongue.say(density, ice.density)}" if ice.thickness else "rime"
         parts.append(f"{glaze} (class {ice.class_} of ISO 12494)" if ice.class_ else glaze)

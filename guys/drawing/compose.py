@@ -54,6 +54,7 @@ def draw_sheet(solution: Solution, paper: str, look_toward: float | None, units:
 def draw_page(solution: Solution, paper: str, look_toward: float | None, units: Units) -> Page:
     """The whole sheet with what was placed on it."""
     speech = tongue(units)
+    solution = solution.for_crew()
     rows = box.entries(solution, speech)
     layout = lay_out(solution, paper, speech, rows)
     page = new_page(paper, layout.taller)

@@ -126,7 +126,7 @@ def _draw_row(page: Page, grid: Grid, row: Row, across: tuple[list[float], list[
 
 def base_grid(solution: Solution, tongue: Tongue) -> Grid:
     """One row for each foot: what it does to the ground, or to the spar that carries it."""
-    heads = ("base", "down", "wind from", "sideways", "wind from", "turning", "lift")
+    heads = ("base", _headed("down", solution), "wind from", "sideways", "wind from", "turning", "lift")
     columns = tuple(Column(h, spare=2 if i in (2, 4) else 0) for i, h in enumerate(heads))
     return Grid(columns, tuple(_base_row(solution, worst, tongue) for worst in solution.worst_feet))
 
@@ -145,6 +145,11 @@ def _base_row(solution: Solution, worst: FootWorst, tongue: Tongue) -> Row:
     ]
 
 
+def _headed(head: str, solution: Solution) -> str:
+    """The head of loads that are not what a crew meets says so."""
+    return f"FACTORED\n{head}" if solution.loads_are == "FACTORED" else head
+
+
 def when(solution: Solution, governing: Governing) -> str:
     """The wind that governs, under a head that says "wind from"."""
     return wind_words(solution, governing.case, governing.wind_from).removeprefix("wind from ")
@@ -154,7 +159,7 @@ def anchor_grid(solution: Solution, tongue: Tongue) -> Grid:
     """One row for each anchor."""
     columns = (
         Column("anchor"), Column("bearing", "right"), Column("radius", "right"), Column("level", "right"),
-        Column("slope\ndistance", "right", 2), Column("pull", "right"), Column("angle", "right"), Column("out", "right"),
+        Column("slope\ndistance", "right", 2), Column(_headed("pull", solution), "right"), Column("angle", "right"), Column("out", "right"),
         Column("up", "right"), Column("wind\nfrom"), Column("hardest\nguy", spare=1), Column("demand /\ncapacity", "right"),
         Column("factor"),
     )  # fmt: skip
@@ -191,7 +196,7 @@ def _hardest(solution: Solution, anchor: str, tongue: Tongue) -> tuple[Cell, Cel
     demand = greatest(cable.tension).value
     if not (isfinite(cable.factor) and isfinite(demand) and standing(solution)):
         return (cable.name,), tongue.each(force, demand), ("not judged",)
-    past = cable.factor < solution.scenario.allowables.cable
+    past = cable.factor < solution.scenario.allowables.required("cable", solution.scenario.kind_of(cable.tension.peak_case))
     stacked = tuple(_over(a, b) for a, b in zip(tongue.each(load, demand), tongue.each(capacity, cable.strength), strict=True))
     return (cable.name,), stacked, (f"{factor(cable.factor)} {'past' if past else 'within'}",)
 

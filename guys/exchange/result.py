@@ -33,6 +33,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
             "bases": [_worst_foot(f) for f in solution.worst_feet if f.carried_by is None],
             "heels": [_worst_foot(f) for f in solution.worst_feet if f.carried_by is not None],
         },
+        "service_worst": _service_worst(solution),
         "findings": [_finding(f) for f in solution.findings],
         "sweep": None if solution.sweep is None else _sweep(solution, solution.sweep),
         "self_check": {
@@ -74,6 +75,7 @@ def _case(solution: Solution, k: int) -> dict[str, Any]:
         "layout": "as drawn",
         "case": solution.case[k],
         "wind_from_deg": bearing(float(solution.wind_from[k])),
+        "kind": solution.scenario.kind_of(solution.case[k]),
         "state": solution.state[k],
         "out_of_balance": None if gone else number(float(solution.out_of_balance[k])),
         "reference_force_N": number(float(solution.reference_force[k])),
@@ -92,6 +94,19 @@ def _case(solution: Solution, k: int) -> dict[str, Any]:
     if without and not gone:
         out["without"] = without
     return out
+
+
+def _service_worst(solution: Solution) -> dict[str, Any] | None:
+    """Greatest loads of service cases, where others are listed beside them."""
+    crew = solution.crew
+    if crew is None:
+        return None
+    return {
+        "cables": [_worst_cable(c) for c in crew.cables],
+        "anchors": [_worst_anchor(a) for a in crew.anchors],
+        "bases": [_worst_foot(f) for f in crew.feet if f.carried_by is None],
+        "heels": [_worst_foot(f) for f in crew.feet if f.carried_by is not None],
+    }
 
 
 def _cable(solution: Solution, k: int, c: int) -> dict[str, Any]:

@@ -29,18 +29,19 @@ def _peak(extreme: Extreme) -> list[Cell]:
 
 def anchors(solution: Solution) -> str:
     """Every anchor in every case, after its greatest loads (`case` = greatest) over the full circle of winds."""
-    head = ["anchor", "case", "wind_from_deg", "east_N", "north_N", "up_N", "horizontal_N", "resultant_N"]
-    pulls = solution.anchors
+    head = ["anchor", "case", "wind_from_deg", "east_N", "north_N", "up_N", "horizontal_N", "resultant_N", "kind"]
+    pulls, kind = solution.anchors, solution.scenario.kind_of
     rows: list[list[Cell]] = []
     for a, worst in enumerate(solution.worst_anchors):
         for name, extreme in (("resultant", worst.resultant), ("horizontal", worst.horizontal), ("uplift", worst.uplift)):
             value, case, wind = _peak(extreme)
             up, level, whole = (value if name == n else None for n in ("uplift", "horizontal", "resultant"))
-            rows.append([worst.name, f"greatest {name}: {case}", wind, None, None, up, level, whole])
+            rows.append([worst.name, f"greatest {name}: {case}", wind, None, None, up, level, whole, kind(extreme.peak_case)])
         for k, case_name in enumerate(solution.case):
             east, north, up_n = (float(x) for x in pulls.pull[k, a])
             wind = bearing(float(solution.wind_from[k]))
-            rows.append([worst.name, case_name, wind, east, north, up_n, float(pulls.horizontal[k, a]), float(pulls.resultant[k, a])])
+            sizes = [float(pulls.horizontal[k, a]), float(pulls.resultant[k, a])]
+            rows.append([worst.name, case_name, wind, east, north, up_n, *sizes, kind(case_name)])
     return as_csv(head, rows)
 
 
@@ -57,12 +58,14 @@ def cables(solution: Solution) -> str:
         "factor",
         "slack",
         "unstressed_length_m",
+        "kind",
     ]
-    f = solution.cables
+    f, kind = solution.cables, solution.scenario.kind_of
     rows: list[list[Cell]] = []
     for c, worst in enumerate(solution.worst_cables):
         value, case, wind = _peak(worst.tension)
-        rows.append([worst.name, f"greatest tension: {case}", wind, None, None, value, worst.strength, worst.factor, None, None])
+        told = [value, worst.strength, worst.factor, None, None, kind(worst.tension.peak_case)]
+        rows.append([worst.name, f"greatest tension: {case}", wind, None, None, *told])
         for k, case_name in enumerate(solution.case):
             if not f.present[k, c]:
                 continue
@@ -71,7 +74,6 @@ def cables(solution: Solution) -> str:
             factor = worst.strength / greatest if greatest > 0 else math.nan
             slack = "" if math.isnan(greatest) else ("yes" if f.slack[k, c] else "no")
             wind = bearing(float(solution.wind_from[k]))
-            rows.append(
-                [worst.name, case_name, wind, anchor, top, greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c])]
-            )
+            told = [greatest, worst.strength, factor, slack, float(f.unstressed_length[k, c]), kind(case_name)]
+            rows.append([worst.name, case_name, wind, anchor, top, *told])
     return as_csv(head, rows)

@@ -20,14 +20,14 @@ from guys.loads.iced import Ice, ice_at
 from guys.loads.spread import Weights, to_nodes, weights
 from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
-from guys.scenario.names import ASIDE
+from guys.scenario.model import ASIDE, CaseKind
 from guys.structure import Pieces, Points, Structure
 
 
 @dataclass(frozen=True)
 class CaseLine:
     """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away; bare:
-    cables without ice; aside: where the forces on signs stand, see `guys.loads.drag.attached`."""
+    cables without ice; kind: of the case; aside: where the forces on signs stand, see `guys.loads.drag.attached`."""
 
     name: str
     wind_from: float
@@ -38,6 +38,7 @@ class CaseLine:
     without: tuple[str, ...] = ()
     bare: tuple[str, ...] = ()
     aside: str = ""
+    kind: CaseKind = "service"
 
 
 @dataclass(frozen=True)
@@ -106,7 +107,7 @@ def lines_of(scenario: Scenario, directions: Sequence[float] | None = None) -> t
         if case.wind > 0 and scenario.wind is not None:
             bearings = scenario.wind.directions if directions is None else directions
             asides = attached.asides(scenario)
-        line = CaseLine(case.name, math.nan, case.dead, case.wind, case.ice, case.temperature, case.without, case.bare)
+        line = CaseLine(case.name, math.nan, case.dead, case.wind, case.ice, case.temperature, case.without, case.bare, kind=case.kind)
         names = [f"{case.name}{ASIDE}{aside}" if aside else case.name for aside in asides]
         out += [replace(line, name=n, wind_from=b, aside=a) for n, a in zip(names, asides, strict=True) for b in bearings]
     return tuple(out)

@@ -12,10 +12,11 @@ from pydantic import Field
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.combination_entry import CombinationsEntry, FactoredEntry
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
-from guys.scenario.model import Analysis, End, Material, Setting, Spar, SparPoint
+from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar, SparPoint
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import Latitude, Longitude, SiteEntry
 from guys.scenario.table import Model
@@ -129,6 +130,8 @@ class CaseEntry(Model):
     """Cables taken away."""
     bare: list[q.Name] = []
     """Cables without ice in this case."""
+    kind: CaseKind = "service"
+    """service: loads once, what a crew installs and lowers by; allowable: of an allowable-stress design; factored: of a strength design."""
 
 
 class AllowablesEntry(Model):
@@ -144,6 +147,8 @@ class AllowablesEntry(Model):
     """Greatest head lean in service."""
     spar: q.Ratio = 1.67
     """Least strength / what acts of a spar's section; the default is the factor on yield of AISC 360, allowable strength (from memory)."""
+    factored: FactoredEntry = FactoredEntry()
+    """Least factors in factored cases."""
 
 
 class ScenarioFile(Model):
@@ -178,7 +183,9 @@ class ScenarioFile(Model):
     ice: Ice | None = None
     """Ice; may be left out when no case has ice."""
     case: list[CaseEntry] = []
-    """Load cases; left out: one named "design" with dead 1, wind 1, ice 0."""
+    """Load cases; left out: one named "design" with dead 1, wind 1, ice 0, unless there are combinations."""
+    combinations: CombinationsEntry | None = None
+    """Named sets of load cases."""
     allowables: AllowablesEntry = AllowablesEntry()
     """Least factors asked for."""
     analysis: Analysis = Analysis()

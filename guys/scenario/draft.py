@@ -6,7 +6,7 @@ them, which lets the rules between tables be checked in the same run; one that c
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cache
 from typing import Annotated, Any, get_args, get_origin
@@ -14,7 +14,8 @@ from typing import Annotated, Any, get_args, get_origin
 from pydantic import TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
-from guys.scenario import wording
+from guys.scenario import combinations, wording
+from guys.scenario.combination_entry import CombinationsEntry
 from guys.scenario.document import (
     AllowablesEntry,
     AnchorEntry,
@@ -56,6 +57,7 @@ class Draft:
     wind: WindEntry | None
     ice: Ice | None
     case: tuple[CaseEntry | None, ...]
+    combinations: CombinationsEntry | None
     allowables: AllowablesEntry | None
     analysis: Analysis | None
     lost: Lost | None
@@ -69,8 +71,13 @@ class Draft:
         return found
 
     def cases(self) -> list[CaseEntry]:
-        """Readable cases, or the default one where the file has none."""
-        return [case for case in self.case if case is not None] if "case" in self.document else [CaseEntry(name=DEFAULT_CASE)]
+        """Readable cases and those of combinations, or the default one where the file has none."""
+        written = [case for case in self.case if case is not None] + self.combined()
+        return written if written or "case" in self.document or "combinations" in self.document else [CaseEntry(name=DEFAULT_CASE)]
+
+    def combined(self, cables: Sequence[str] = ("a cable",)) -> list[CaseEntry]:
+        """The cases of the combinations."""
+        return combinations.lines(self.combinations, "ice" in self.document, cables)
 
 
 def draft(document: dict[str, Any]) -> tuple[Draft, list[Finding]]:

@@ -76,4 +76,5 @@ def _wind(wind: Wind) -> str:
 def _case(case: Case) -> str:
     away = f", without {', '.join(case.without)}" if case.without else ""
     away += f", no ice on {', '.join(case.bare)}" if case.bare else ""
+    away += "" if case.service else f", {case.kind}"
     return f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}, {units.both(case.temperature, 'temperature')}{away}"

@@ -364,8 +364,16 @@ class Wind(Model):
         return self.coefficients or ("asce7" if str(self.profile.kind) == "asce7" else "en")
 
 
+ASIDE = ", sign force "
+"""What the names of cases have in common whose sign forces are moved aside."""
+CaseKind = Literal["service", "allowable", "factored"]
+
+
 class Case(Model):
-    """A load case: factors on the weights, the wind pressure and the weight of ice; the temperature [K]; cables taken away."""
+    """A load case: factors on the weights, the wind pressure and the weight of ice; the temperature [K]; cables taken away.
+
+    kind : see `guys.scenario.combinations`; what a crew installs and when it lowers comes from service cases alone
+    """
 
     name: str
     dead: float = 1.0
@@ -374,17 +382,29 @@ class Case(Model):
     temperature: float
     without: tuple[str, ...] = ()
     bare: tuple[str, ...] = ()
+    kind: CaseKind = "service"
+
+    @property
+    def service(self) -> bool:
+        """Loads once."""
+        return self.kind == "service"
 
 
 class Allowables(Model):
-    """Least factors asked for; `defaulted` names those the user did not give."""
+    """Least factors asked for; `defaulted` names those the user did not give; `factored`: of factored cases, where not the same."""
 
     cable: float = 2.0
     anchor: float = 1.5
     sliding: float = 1.5
     lean: float = math.radians(1.0)
     spar: float = 1.67
+    factored: Mapping[str, float] = {}
     defaulted: frozenset[str] = frozenset()
+
+    def required(self, name: str, kind: CaseKind) -> float:
+        """The least factor of that name in cases of that kind."""
+        common: float = getattr(self, name)
+        return self.factored.get(name, common) if kind == "factored" else common
 
 
 class Analysis(Model):
@@ -425,3 +445,7 @@ class Scenario(Model):
     """Values that look like a slip."""
     notes: tuple[str, ...] = ()
     """What was converted, chosen or looked up, each with its source."""
+
+    def kind_of(self, case: str) -> CaseKind:
+        """The kind of a case, sign forces moved aside or not; still air is a service case."""
+        return next((each.kind for each in self.case if each.name == case.partition(ASIDE)[0]), "service")

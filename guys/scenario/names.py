@@ -5,17 +5,16 @@ They work on the tables as read, so that a fault elsewhere in a table does not h
 
 from __future__ import annotations
 
-from collections.abc import Collection, Iterator, Mapping
+from collections.abc import Collection, Iterator, Mapping, Sequence
 from typing import Any
 
 from guys.catalogue import ropes as stock
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items, nearest
+from guys.scenario.model import ASIDE
 from guys.scenario.resolve import built_in_materials
 
 SETTING = "setting"
-ASIDE = ", sign force "
-"""What the names of cases have in common whose sign forces are moved aside."""
 Known = Collection[str] | None
 """Names there are; None where some could not be read, so that nothing can be called unknown."""
 
@@ -39,6 +38,7 @@ def findings(draft: Draft) -> Iterator[Finding]:
     yield from _materials(document)
     yield from _taken_away(document, cables)
     yield from _holdfasts(document)
+    yield from _combined(draft, list(cables or ()))
 
 
 def _text(table: Mapping[str, Any], key: str) -> str | None:
@@ -79,6 +79,14 @@ def _twice(kind: str, names: Mapping[Key, str], remedy: str = "") -> Iterator[Fi
             hint = remedy if key[0] == "guy_level" else ""
             yield Finding(key, f'another {kind} is named "{clipped(name)}"; names are unique within their kind{hint}')
         first.add(name)
+
+
+def _combined(draft: Draft, cables: Sequence[str]) -> Iterator[Finding]:
+    """Names of the file that a line of a set takes too."""
+    taken = {case.name for case in draft.combined(cables)}
+    for key, name in _names(draft.document, "case").items():
+        if name in taken:
+            yield Finding(key, f'a set of combinations writes a case named "{clipped(name)}" too; choose another name')
 
 
 def _reserved(document: Mapping[str, Any]) -> Iterator[Finding]:

@@ -11,7 +11,7 @@ from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import drawn, frame, held, ice, names, place, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import combinations, drawn, frame, held, ice, names, place, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
@@ -134,6 +134,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from frame.findings(tables)
     yield from rigging.findings(tables)
     yield from weather.findings(tables)
+    yield from combinations.findings(tables)
     yield from held.findings(tables)
     yield from ice.findings(tables)
 
@@ -175,6 +176,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
     wind = None if tables.wind is None else resolve.wind(tables.wind)
     cables = (*guys, *(resolve.cable(index, entry) for index, entry in enumerate(_present(tables.cable))))
     ropes = {name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None}
+    combined = tables.combined([cable.name for cable in cables])
     setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
     assert setting is not None
     assert allowables is not None
@@ -193,11 +195,11 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         setting=setting,
         wind=wind,
         ice=None if tables.ice is None else ice.resolved(tables.ice),
-        case=resolve.cases(_present(tables.case), setting),
+        case=resolve.cases(_present(tables.case) + combined, setting),
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         lost=_there(tables.lost),
         sha256=digest,
         path=path,
-        notes=() if wind is None else wind.notes,
+        notes=(*(() if wind is None else wind.notes), *combinations.notes(tables.combinations, tables.ice is not None)),
     )

@@ -144,6 +144,7 @@ def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
             temperature=setting.temperature if entry.temperature is None else entry.temperature,
             without=tuple(entry.without),
             bare=tuple(entry.bare),
+            kind=entry.kind,
         )
         for entry in entries or [CaseEntry(name=DEFAULT_CASE)]
     )
@@ -152,4 +153,6 @@ def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
 def allowables(entry: AllowablesEntry) -> Allowables:
     """The allowables, with the names of those left out."""
     given = entry.model_fields_set
-    return Allowables(**entry.model_dump(), defaulted=frozenset(set(AllowablesEntry.model_fields) - given))
+    factored = entry.factored.model_dump(exclude_none=True)
+    defaulted = frozenset(set(AllowablesEntry.model_fields) - given - {"factored"})
+    return Allowables(**entry.model_dump(exclude={"factored"}), factored=factored, defaulted=defaulted)

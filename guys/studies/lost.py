@@ -129,7 +129,9 @@ def after_a_loss(scenario: Scenario) -> Scenario:
     """The scenario with the allowables of `[lost]` where it gives its own."""
     allowed = scenario.allowables
     own = {key: value for key in ("cable", "anchor", "sliding", "lean") if (value := getattr(scenario.lost, key)) is not None}
-    return scenario.model_copy(update={"allowables": allowed.model_copy(update={**own, "defaulted": allowed.defaulted - own.keys()})})
+    factored = {name: factor for name, factor in allowed.factored.items() if name not in own}
+    after = allowed.model_copy(update={**own, "factored": factored, "defaulted": allowed.defaulted - own.keys()})
+    return scenario.model_copy(update={"allowables": after})
 
 
 def losses_of(scenario: Scenario) -> tuple[Loss, ...]:

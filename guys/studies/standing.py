@@ -28,6 +28,7 @@ from guys.results import (
     Solution,
     State,
     Sweep,
+    Worst,
 )
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
@@ -103,6 +104,17 @@ class _Worst:
         return extremes.extreme(a, self.listed_lines, b, self.swept_lines)
 
 
+    def of_service(self) -> _Worst:
+        """Those of service cases, still air among them."""
+        return _Worst(*_service(self.listed, self.listed_lines), *_service(self.swept, self.swept_lines))
+
+
+def _service(m: extremes.Measures, lines: tuple[CaseLine, ...]) -> tuple[extremes.Measures, tuple[CaseLine, ...]]:
+    rows = np.array([k for k, line in enumerate(lines) if line.kind == "service"], dtype=np.int64)
+    kept = {group: getattr(m, group)[rows] for group in extremes.GROUPS}
+    return extremes.Measures(**kept), tuple(lines[k] for k in rows)
+
+
 def _worst(listed: Batch, swept: Batch | None) -> _Worst:
     def with_mirrors(batch: Batch) -> tuple[extremes.Measures, tuple[CaseLine, ...]]:
         every = batch.forces if batch.mirror is None else recovery.join([batch.forces, batch.mirror])
@@ -115,12 +127,8 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
     structure = setting.problem.structure
     scenario = structure.scenario
     worst = _worst(listed, swept)
-    cables = tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable)))
-    anchors = tuple(
-        AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k))
-        for k, a in enumerate(scenario.anchor)
-    )
-    feet = tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar)))
+    greatest = _greatest(structure, worst, swept)
+    cables, feet = greatest.cables, greatest.feet
     hung = _hung(structure, listed)
     rules = plan.findings(scenario.site, hung) if setting.stands else ()
     found = allowables.sorted_findings((*allowables.findings(*_everything_judged(listed, swept)), *rules))
@@ -145,7 +153,7 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         heels=_foot_forces(scenario, listed, ground=False),
         spars=listed.spars,
         worst_cables=cables,
-        worst_anchors=anchors,
+        worst_anchors=greatest.anchors,
         worst_feet=feet,
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
@@ -159,6 +167,21 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
+        crew=_greatest(structure, worst.of_service(), swept) if alarms.has_crew_loads_apart(scenario) else None,
+    )
+
+
+def _greatest(structure: Structure, worst: _Worst, swept: Batch | None) -> Worst:
+    """The greatest loads on everything."""
+    scenario = structure.scenario
+    anchors = (
+        AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k))
+        for k, a in enumerate(scenario.anchor)
+    )
+    return Worst(
+        tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable))),
+        tuple(anchors),
+        tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar))),
     )
 
 
