@@ -88,10 +88,8 @@ def iced_round(scenario: Scenario) -> float:
 
 
 def of_section(section: Section) -> float:
-    """The coefficient of a shape on its width, the same in every wind; 0 where no wind is told of."""
-    if section.shape in ("hexagon", "octagon"):
-        return angular.POLYGON
-    return angular.SHARP if section.shape == "sharp" else 0.0
+    """The coefficient of a shape on its width, the same in every wind."""
+    return {"hexagon": angular.POLYGON, "octagon": angular.POLYGON, "sharp": angular.SHARP}[section.shape or "no shape and no drag"]
 
 
 def _rectangle(section: Section, width: Array) -> tuple[Array, Array]:
