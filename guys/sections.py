@@ -1,8 +1,9 @@
 """What a section of a spar is made of: mass, stiffness and width per length, bare and iced.
 
 Round tube of diameter D and wall w: A = pi (D - w) w, I = pi/64 (D^4 - (D - 2w)^4), J = 2 I; no shear flexibility is taken
-(a tube's is below 1e-3 of its bending at ten diameters).  Ice on it is that of `guys.icing`, before any effect of height.  Properties
-given outright are used as they are; their iced mass and width are the section's with the ice on.
+(a tube's is below 1e-3 of its bending at ten diameters).  A lattice is worked out in `guys.lattice`.  Ice on either is that of
+`guys.icing`, of a lattice on every member, before any effect of height.  Properties given outright are used as they are; their iced mass
+and width are the section's with the ice on.
 """
 
 from __future__ import annotations
@@ -12,9 +13,11 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from guys import lattice
 from guys.catalogue import tubes
 from guys.icing import coat
-from guys.scenario import Ice, Section
+from guys.rotation import Array
+from guys.scenario import Ice, Lattice, Section
 from guys.scenario.model import Material
 
 
@@ -44,8 +47,8 @@ def properties(section: Section, materials: dict[str, Material], ice: Ice | None
     expansion = (material.expansion if material is not None else None) or 0.0
     drag = section.drag if section.drag is not None else math.nan
     given = _outright(section)
-    if section.tube is not None and material is not None:
-        made = _tube(section.tube.diameter, section.tube.wall, material, ice)
+    made = None if material is None else _made(section, material, ice)
+    if made is not None:
         given = {key: value if value is not None else made[key] for key, value in given.items()}
     number = {key: math.nan if value is None else value for key, value in given.items()}
     if given["GA"] is None:
@@ -70,6 +73,43 @@ def _outright(section: Section) -> dict[str, float | None]:
         "iced_mass": section.iced_mass,
         "iced_width": section.iced_width,
     }
+
+
+def _made(section: Section, material: Material, ice: Ice | None) -> dict[str, float | None] | None:
+    """What follows from the section's shape; None where it has none."""
+    if section.tube is not None:
+        return _tube(section.tube.diameter, section.tube.wall, material, ice)
+    return None if section.lattice is None else _lattice(section.lattice, material, ice)
+
+
+def _lattice(made: Lattice, material: Material, ice: Ice | None) -> dict[str, float | None]:
+    stiff, mass = lattice.stiffness(made, material.modulus), lattice.mass(made, material.density)
+    ice_mass, iced_width = coated(made, ice)
+    return {
+        "mass": mass,
+        "EA": stiff.EA,
+        "EI_x": stiff.EI,
+        "EI_y": stiff.EI,
+        "GJ": stiff.GJ,
+        "GA": stiff.GA,
+        "width": lattice.face(made).solid,
+        "iced_mass": mass + float(ice_mass),
+        "iced_width": float(iced_width),
+    }
+
+
+def coated(made: Lattice, ice: Ice | None, z: Array | None = None) -> tuple[Array, Array]:
+    """Mass of ice per length [kg/m] on every member of a lattice at heights z [m], and width with it [m]; z None: before any effect of
+    height."""
+    bars = [np.full(() if z is None else z.shape, bar.diameter) for bar in (made.legs, made.lacing)]
+    (on_legs, legs), (on_lacing, lacing) = (coat(bar, ice, z) for bar in bars)
+    return np.asarray(lattice.along(made, on_legs, on_lacing)), lattice.solid(made, legs, lacing)
+
+
+def faces(made: Lattice, ice: Ice | None) -> tuple[lattice.Face, lattice.Face]:
+    """A face of a lattice bare and with ice, before any effect of height."""
+    legs, lacing = (float(coat(np.array(bar.diameter), ice)[1]) for bar in (made.legs, made.lacing))
+    return lattice.face(made), lattice.face(made, legs, lacing)
 
 
 def _tube(diameter: float, wall: float, material: Material, ice: Ice | None) -> dict[str, float | None]:

@@ -398,11 +398,14 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends", "not available in this version"),
     ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends", "not available in this version"),
     (
-        "lattice",
+        "lattice without legs",
         MAST,
-        (((*SECTION,), {"length": "12 m", "lattice": {"face": "300 mm"}, "material": "steel", "drag": 1}),),
-        "spar[0].section[0].lattice",
-        "not available in this version",
+        (
+            ((*SECTION, "tube"), ...),
+            ((*SECTION, "lattice"), {"face": "300 mm", "lacing": "10 mm", "panel": "350 mm", "sides": 3}),
+        ),
+        "spar[0].section[0].lattice.legs",
+        "missing",
     ),
     # profiles of standards
     ("exposure", MAST, ((PROFILE, {"asce7": "A"}),), "wind.profile.asce7", '"A" is not one of "B", "C", "D"'),

@@ -135,6 +135,8 @@ def strength_of(section: Section, materials: Mapping[str, Material]) -> Strength
     """What a section is judged by."""
     if section.capacity_axial is not None and section.capacity_bending is not None:
         return _outright(section.capacity_axial, section.capacity_bending, section)
+    if section.lattice is not None:
+        return _not_judged("legs and lacing of a lattice are not judged in this version; give capacity_axial and capacity_bending")
     if section.tube is None or section.material is None:
         return _not_judged("given outright without capacity_axial and capacity_bending")
     material = materials[section.material]

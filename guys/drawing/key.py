@@ -74,6 +74,11 @@ def _section_words(spar: model.Spar, section: model.Section, count: int, speech:
     if section.tube is not None:
         size = f"{speech.say(thickness, section.tube.diameter)} × {speech.say(thickness, section.tube.wall)}"
         words += f" tube {size}, {section.material or ''}".rstrip(", ")
+    if section.lattice is not None:
+        legs = section.lattice.legs
+        bar = speech.say(thickness, legs.diameter) + (f" × {speech.say(thickness, legs.wall)}" if legs.wall < legs.diameter / 2 else "")
+        face = speech.say(thickness, section.lattice.face)
+        words += f" lattice of {section.lattice.sides} legs {bar}, face {face}, {section.material or ''}"
     return words + (f", leaning {angle(spar.lean)} toward {bearing(spar.toward)}" if spar.lean else "")
 
 

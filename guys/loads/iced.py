@@ -9,6 +9,7 @@ import numpy as np
 from guys.icing import coat
 from guys.loads.spread import GAUSS
 from guys.rotation import Array
+from guys.sections import coated
 from guys.structure import Structure
 
 
@@ -30,6 +31,10 @@ def ice_at(structure: Structure, z: Array, low: Array, high: Array) -> Ice:
     if ice is not None and ice.height_effect != "none":
         grows = np.flatnonzero(~np.isnan(pieces.bar))
         mass[grows], width[grows] = coat(np.broadcast_to(pieces.bar[grows, None], z[grows].shape), ice, z[grows])
+        for n, (spar, place) in enumerate(zip(pieces.spar, pieces.section, strict=True)):
+            lattice = structure.scenario.spar[spar].section[place].lattice
+            if lattice is not None:
+                mass[n], width[n] = coated(lattice, ice, z[n])
     x, w = np.polynomial.legendre.leggauss(GAUSS)
     heights = low[:, None] + 0.5 * (1 + x) * (high - low)[:, None]
     around = coat(np.broadcast_to(structure.cables.diameter[:, None], heights.shape), ice, heights)

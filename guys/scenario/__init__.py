@@ -1,6 +1,7 @@
 """The scenario: what a user wrote, read, checked and resolved.  `read_scenario` is the only way in."""
 
 from guys.scenario.ice import Ice
+from guys.scenario.lattice import Bar, Lattice
 from guys.scenario.model import (
     Allowables,
     Analysis,
@@ -31,6 +32,7 @@ __all__ = [
     "Analysis",
     "Anchor",
     "AnchorPoint",
+    "Bar",
     "Cable",
     "Case",
     "Fitting",
@@ -38,6 +40,7 @@ __all__ = [
     "GroundFoot",
     "HeelFoot",
     "Ice",
+    "Lattice",
     "Material",
     "Profile",
     "Rope",

@@ -6,9 +6,11 @@ import math
 from collections.abc import Iterator
 
 from guys import units
+from guys.catalogue import tubes
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
-from guys.scenario.model import MOST_OPEN, Fitting, HeelFoot, Section, Spar
+from guys.scenario.lattice import Lattice
+from guys.scenario.model import MOST_OPEN, Fitting, HeelFoot, Section, Spar, Tube
 
 OVERSHOOT = 1e-9
 """An attachment may lie beyond the head by this part of the spar's length: what the conversion of feet and of sums can add."""
@@ -16,7 +18,7 @@ OVERSHOOT = 1e-9
 SAME_AREA = 0.01
 """Share by which an area may differ from width by height by solidity: both are written rounded."""
 
-_OF_TUBE = ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "width", "iced_mass", "iced_width")
+_OF_SHAPE = ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "width", "iced_mass", "iced_width")
 _CAPACITIES = ("capacity_axial", "capacity_bending", "capacity_shear", "capacity_torsion")
 
 
@@ -89,8 +91,12 @@ def _base(spar: Spar, key: Key) -> Iterator[Finding]:
 
 
 def _section(section: Section, key: Key, rigid: bool) -> Iterator[Finding]:
-    if section.tube is not None:
-        yield from _tube(section, key)
+    if section.tube is not None and section.lattice is not None:
+        yield Finding((*key, "lattice"), "a tube is given too; a section has one or the other")
+    elif section.tube is not None:
+        yield from _tube(section, section.tube, key)
+    elif section.lattice is not None:
+        yield from _lattice(section, section.lattice, key)
     else:
         yield from _outright(section, key, rigid)
     yield from _shape(section, key)
@@ -111,15 +117,29 @@ def _capacities(section: Section, key: Key) -> Iterator[Finding]:
             yield Finding((*key, name), f"missing; it is needed with {' and '.join(given)}", tuple((*key, n) for n in given))
 
 
-def _tube(section: Section, key: Key) -> Iterator[Finding]:
-    tube = section.tube
-    if tube is not None and tube.wall > tube.diameter / 2 * (1.0 + OVERSHOOT):
+def _tube(section: Section, tube: Tube, key: Key) -> Iterator[Finding]:
+    if tube.wall > tube.diameter / 2 * (1.0 + OVERSHOOT):
         yield Finding((*key, "tube", "wall"), "more than half the diameter; a solid bar has a wall of half its diameter")
+    yield from _made(section, key, "tube", _OF_SHAPE)
+
+
+def _lattice(section: Section, lattice: Lattice, key: Key) -> Iterator[Finding]:
+    legs, lacing = lattice.legs, lattice.lacing
+    face = units.both(lattice.face, "length", ("mm", "in"))
+    if legs.diameter >= lattice.face:
+        yield Finding((*key, "lattice", "face"), f"{face} from leg to leg, axis to axis, leaves no room between the legs")
+    if tubes.area(lacing.diameter, lacing.wall) > tubes.area(legs.diameter, legs.wall):
+        yield Finding((*key, "lattice", "lacing"), "has more metal than a leg; are legs and lacing swapped?")
+    yield from _made(section, key, "lattice", (*_OF_SHAPE, "GA"))
+
+
+def _made(section: Section, key: Key, shape: str, follows: tuple[str, ...]) -> Iterator[Finding]:
+    """What a section made of a shape and a material needs and must not say."""
     if section.material is None:
-        yield Finding((*key, "material"), 'missing; a tube needs one, such as material = "steel"')
-    for name in _OF_TUBE:
+        yield Finding((*key, "material"), f'missing; a {shape} needs one, such as material = "steel"')
+    for name in follows:
         if getattr(section, name) is not None:
-            yield Finding((*key, name), "follows from the tube; leave it out, or give the section outright without tube")
+            yield Finding((*key, name), f"follows from the {shape}; leave it out, or give the section outright without {shape}")
 
 
 def _shape(section: Section, key: Key) -> Iterator[Finding]:
@@ -127,6 +147,8 @@ def _shape(section: Section, key: Key) -> Iterator[Finding]:
     given, shape = section.model_fields_set, ((*key, "shape"), (*key, "tube"))
     if section.tube is not None and section.shape is not None:
         yield Finding((*key, "shape"), "a tube is round; leave shape out", ((*key, "tube"),))
+    elif section.lattice is not None and section.shape is not None:
+        yield Finding((*key, "shape"), "a lattice has a coefficient of its own; leave shape out", ((*key, "lattice"),))
     elif section.shape is not None and section.width is None:
         yield Finding((*key, "width"), f'missing; shape = "{section.shape}" is that of a width', shape)
     if section.shape == "rectangle" and section.depth is None:
@@ -149,9 +171,9 @@ def _outright(section: Section, key: Key, rigid: bool) -> Iterator[Finding]:
     if {"EI_x", "EI_y"} <= set(lacking):
         lacking = ["EI (or EI_x and EI_y)" if name == "EI_x" else name for name in lacking if name != "EI_y"]
     if lacking:
-        after = tuple((*key, name) for name in ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "tube"))
-        given = any(getattr(section, name) is not None for name in _OF_TUBE)
-        text = f"lacks {', '.join(lacking)}" if given else f"give tube and material, or outright: {', '.join(lacking)}"
+        after = tuple((*key, name) for name in ("mass", "EA", "EI", "EI_x", "EI_y", "GJ", "tube", "lattice"))
+        given = any(getattr(section, name) is not None for name in _OF_SHAPE)
+        text = f"lacks {', '.join(lacking)}" if given else f"give tube or lattice and material, or outright: {', '.join(lacking)}"
         yield Finding(key, text, after)
 
 

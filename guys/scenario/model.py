@@ -18,6 +18,7 @@ from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
+from guys.scenario.lattice import Lattice
 from guys.scenario.lost import Lost
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
@@ -93,12 +94,14 @@ class Tube(Model):
 
 
 class Section(Model):
-    """A straight stretch of a spar with one cross-section: a tube of a material, or its properties given outright."""
+    """A straight stretch of a spar with one cross-section: a tube or lattice of a material, or its properties given outright."""
 
     length: q.PositiveLength
     """Length along the spar."""
     tube: Tube | None = None
     """A round tube; with `material` it gives mass, stiffness and width."""
+    lattice: Lattice | None = None
+    """A lattice of legs and lacing; with `material` it gives mass, stiffness and width."""
     material: q.Name | None = None
     """steel, aluminium, timber, gfrp, or a [material.NAME] of the file."""
     mass: q.LinearMass | None = None

@@ -10,10 +10,12 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from guys import units
+from guys import lattice, units
 from guys.catalogue import ropes as stock
+from guys.catalogue import tubes
 from guys.constants import ZERO_CELSIUS
 from guys.scenario import drawn, held, ice, place, resolve
+from guys.scenario.lattice import Lattice
 from guys.scenario.model import AnchorPoint, Cable, GroundFoot, HeelFoot, Material, Profile, Scenario, Section, Spar
 
 
@@ -40,6 +42,10 @@ SPAR_LENGTH = Bounds("length", 0.5, 400.0)
 SPAR_MASS = Bounds("mass per length", 0.2, 3000.0)
 TUBE_DIAMETER = Bounds("length", 0.01, 3.0, ("mm", "in"))
 TUBE_WALL = Bounds("length", 0.5e-3, 0.1, ("mm", "in"))
+FACE = Bounds("length", 0.1, 3.0, ("mm", "in"))
+MEMBER = Bounds("length", 0.004, 0.3, ("mm", "in"))
+LACED = math.radians(25.0), math.radians(70.0)
+"""Rise of diagonals that is usual, from the level."""
 WIDTH = Bounds("length", 0.01, 5.0, ("mm", "in"))
 ROPE_DIAMETER = Bounds("length", 0.001, 0.15, ("mm", "in"))
 ROPE_DENSITY = Bounds("density", 300.0, 9000.0)
@@ -89,12 +95,13 @@ def warnings(scenario: Scenario) -> Iterator[str]:
 
 
 def section_mass(section: Section, materials: dict[str, Material]) -> float | None:
-    """Mass per length of a section [kg/m], from its tube where it has one."""
-    if section.tube is None:
-        return section.mass
+    """Mass per length of a section [kg/m], from its tube or lattice where it has one."""
     material = materials.get(section.material or "")
-    inner = section.tube.diameter - 2.0 * section.tube.wall
-    return None if material is None else math.pi / 4 * (section.tube.diameter**2 - inner**2) * material.density
+    if section.tube is not None:
+        return None if material is None else tubes.area(section.tube.diameter, section.tube.wall) * material.density
+    if section.lattice is not None:
+        return None if material is None else lattice.mass(section.lattice, material.density)
+    return section.mass
 
 
 def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
@@ -113,6 +120,8 @@ def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
         if section.tube is not None:
             yield from TUBE_DIAMETER.warn(f"{here}, diameter", section.tube.diameter)
             yield from TUBE_WALL.warn(f"{here}, wall", section.tube.wall)
+        if section.lattice is not None:
+            yield from _lattice(f"{here}, lattice", section.lattice)
         yield from WIDTH.warn(f"{here}, width", section.width)
         yield from _drag(here, section.drag)
     for fitting in spar.fitting:
@@ -121,6 +130,18 @@ def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
         yield from FITTING_MASS.warn(f"{here}, mass", fitting.mass)
         yield from OFFSET.warn(f"{here}, offset", math.hypot(fitting.offset.east, fitting.offset.north, fitting.offset.up))
         yield from _drag(here, fitting.drag)
+
+
+def _lattice(what: str, made: Lattice) -> Iterator[str]:
+    yield from FACE.warn(f"{what}, face", made.face)
+    for name, bar in (("legs", made.legs), ("lacing", made.lacing)):
+        yield from MEMBER.warn(f"{what}, {name}, diameter", bar.diameter)
+        if bar.wall < bar.diameter / 2:
+            yield from TUBE_WALL.warn(f"{what}, {name}, wall", bar.wall)
+    angle = math.atan2(made.panel, made.face)
+    if not LACED[0] <= angle <= LACED[1]:
+        usual = f"{units.show(LACED[0], 'deg')} to {units.show(LACED[1], 'deg')} is usual"
+        yield f"{what}, panel: diagonals rise at {units.show(angle, 'deg', 3)} from the level; {usual}"
 
 
 def _drag(what: str, drag: float | None) -> Iterator[str]:
@@ -172,7 +193,7 @@ def _ropes(scenario: Scenario) -> Iterator[str]:
         what = f'rope "{name}"'
         area = math.pi / 4 * rope.diameter**2
         if rope.source is not None:
-            yield from (f"{what} of the catalogue: {caution}" for caution in _stock_cautions(name))
+            yield from _stock(what, name)
             continue
         if name not in used:
             yield f"{what}: no cable is made of it"
@@ -185,9 +206,12 @@ def _ropes(scenario: Scenario) -> Iterator[str]:
         yield from _drag(what, rope.drag)
 
 
-def _stock_cautions(name: str) -> Iterator[str]:
+def _stock(what: str, name: str) -> Iterator[str]:
+    """What of a catalogue rope may not pass in silence, in one."""
     found = stock.find(name)
-    yield from () if found is None else stock.cautions(found)
+    cautions = [] if found is None else [*stock.cautions(found)]
+    if cautions:
+        yield f"{what} of the catalogue: {'; '.join(cautions)}"
 
 
 def _material(what: str, material: Material) -> Iterator[str]:

@@ -16,7 +16,6 @@ _PATTERNS: tuple[tuple[tuple[str, ...], str], ...] = (
     (("raise",), ""),
     (("layout",), ""),
     (("spar", _EVERY, "plate"), ""),
-    (("spar", _EVERY, "section", _EVERY, "lattice"), "; give mass, EA, EI, GJ, width and drag outright"),
     (("guy_level", _EVERY, "ends"), ""),
     (("cable", _EVERY, "ends"), ""),
 )

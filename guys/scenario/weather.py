@@ -50,7 +50,7 @@ def _first(draft: Draft, factor: str) -> CaseEntry | None:
 
 
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:
-    outright = section.tube is None
+    outright = section.tube is None and section.lattice is None
     shape = ((*key, "tube"), (*key, "lattice"))
     if windy and section.drag is None and outright and section.shape is None:
         text = f"missing; {_has(windy, 'wind')}; give drag, or shape; {NO_SHAPE}"

@@ -4,6 +4,7 @@ The user's `drag` holds as it is, bare and with ice.  What is chosen follows the
 
     tube, round       by Reynolds number and roughness, 7.9 of EN 1991-1-4, or D sqrt(q) of ASCE 7
     rectangle, ...    `guys.loads.drag.angular`
+    lattice           `guys.loads.drag.lattice`, on the solid area of one face; a square as with the wind on its diagonal
     cable             1.2 (EN 1991-1-4 7.9, subcritical: read; for stranded cables at every Reynolds number: from memory), or, with a
                       `surface`, as a round bar
     round with ice    ice.drag, else 1.2 at every Reynolds number: ice is rough, so nothing is gained above the critical one
@@ -19,11 +20,12 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from guys.loads.drag import angular, round
+from guys.loads.drag import angular, lattice, round
 from guys.rotation import Array, dot
-from guys.scenario import Scenario, Section
+from guys.scenario import Lattice, Scenario, Section
 from guys.scenario.model import Wind
-from guys.scenario.shapes import roughness
+from guys.scenario.shapes import Rules, roughness
+from guys.sections import faces
 from guys.structure import Cables, Structure
 
 Flags = NDArray[np.bool_]
@@ -64,6 +66,8 @@ def bars(structure: Structure) -> Bars:
         section = spar.section[pieces.section[n]]
         if section.tube is not None or section.shape == "round":
             fixed[ICED, n], rough[n] = iced_round(scenario), roughness(section.surface)
+        elif section.lattice is not None:
+            fixed[:, n] = of_lattice(section.lattice, scenario)
         elif section.shape == "rectangle":
             face[n] = _face(section, structure.axes[pieces.spar[n]])
             fixed[:, n], second[:, n] = _rectangle(section, width[:, n])
@@ -85,6 +89,14 @@ def iced_round(scenario: Scenario) -> float:
     """Coefficient of round bars with ice on them."""
     given = scenario.ice.drag if scenario.ice is not None else None
     return round.SUBCRITICAL if given is None else given
+
+
+def of_lattice(made: Lattice, scenario: Scenario) -> Array:
+    """Coefficient (2,) on the solid area of one face, bare and with ice, in the worst wind: how its faces stand is not known."""
+    rules: Rules = "en" if scenario.wind is None else scenario.wind.rules
+    both = faces(made, scenario.ice)
+    solidity, rounded = (np.array([getattr(face, name) for face in both]) for name in ("solidity", "round"))
+    return lattice.coefficient(rules, made.sides, solidity, rounded) * lattice.diagonal(rules, made.sides, solidity, rounded)
 
 
 def of_section(section: Section) -> float:

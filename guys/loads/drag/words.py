@@ -20,6 +20,10 @@ ROUND = {
     "asce7": f"round, ASCE 7 figure 29.4-1 for h/D of 25 and more ({READ}) by D sqrt(q)",
 }
 RECTANGLE = f"rectangle, EN 1991-1-4 7.6 ({READ}); between the normals of the faces each takes its share (rule of this program)"
+LATTICE = {
+    "en": f"lattice of round members on one face's solid area, EN 1993-3-1 B.2.2 ({READ}), subcritical, worst direction",
+    "asce7": f"lattice of round members on one face's solid area, ASCE 7 figure 29.4-3 ({READ}), worst direction",
+}
 OTHERS = {
     "hexagon": f"hexagon, ASCE 7 figure 29.4-1 for h/D of 25 and more ({READ})",
     "octagon": f"octagon, ASCE 7 figure 29.4-1 for h/D of 25 and more ({READ})",
@@ -70,6 +74,8 @@ def _sections(structure: Structure, wind: Wind) -> Iterator[str]:
 
 
 def _section(section: Section, wind: Wind) -> str:
+    if section.lattice is not None:
+        return LATTICE[wind.rules]
     if section.tube is not None or section.shape == "round":
         return f"{ROUND[wind.rules]}, {surface_words(section.surface)}"
     return RECTANGLE if section.shape == "rectangle" else OTHERS[section.shape or "sharp"]
