@@ -6,7 +6,7 @@ Tables are drawn by rich on a terminal and are plain aligned text otherwise, so 
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from pathlib import Path
 from typing import TextIO
@@ -80,12 +80,18 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     ]
     table(f"Feet{of}", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
     _findings(solution, stream)
-    for title, lines in (
-        ("Warnings", solution.warnings),
-        ("Notes", [note for note in solution.notes if not any(note in warning for warning in solution.warnings)]),
-        ("Not checked", solution.not_checked),
-        ("Cautions", solution.cautions),
-    ):
+    lists = {
+        "Warnings": solution.warnings,
+        "Notes": [note for note in solution.notes if not any(note in warning for warning in solution.warnings)],
+        "Not checked": solution.not_checked,
+        "Cautions": solution.cautions,
+    }
+    listed(lists, stream)
+
+
+def listed(lists: Mapping[str, Sequence[str]], stream: TextIO) -> None:
+    """Lists under their titles, those with nothing in them left out."""
+    for title, lines in lists.items():
         if lines:
             stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
 

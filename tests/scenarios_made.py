@@ -62,6 +62,8 @@ UNITS: dict[str, dict[str, str]] = {
     "ice": {"thickness": "m", "density": "kg/m3"},
     "case": {"temperature": "degC"},
     "allowables": {"lean": "deg"},
+    "lost": {"lean": "deg"},
+    "ranges": {"level": "m", "temperature": "K"},
 }  # fmt: skip
 """Table: unit of each of its keys that is a quantity."""
 

@@ -26,9 +26,11 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
-from guys.exchange import losses, result, tables
+from guys.exchange import losses, matters, result, tables
 from guys.scenario import draft, schema, starters
-from guys.studies.lost import WORDS, lose
+from guys.studies.cells import WORDS
+from guys.studies.lost import lose
+from guys.studies.matters import weigh
 
 REPOSITORY = Path(__file__).parent.parent
 PAGES = [REPOSITORY / "README.md", REPOSITORY / "DEVELOPERS.md", *sorted((REPOSITORY / "docs").glob("*.md"))]
@@ -199,6 +201,7 @@ TABLES = {
     "AllowablesEntry": "[allowables]`",
     "Analysis": "[analysis]`",
     "Lost": "[lost]`",
+    "Ranges": "[ranges]`",
 }
 
 
@@ -246,11 +249,12 @@ def test_the_guide_names_every_key_and_column_of_the_results() -> None:
     assert not [column for head in heads for column in head if column not in known]
 
 
-def test_the_guide_names_every_key_and_column_of_the_losses() -> None:
-    found = lose(parse_scenario(starters.text("boom")))
+@pytest.mark.parametrize(("study", "told"), [(lose, losses), (weigh, matters)], ids=["lost", "matters"])
+def test_the_guide_names_every_key_and_column_of_the_studies(study: Any, told: Any) -> None:
+    found = study(parse_scenario(starters.text("boom")))
     known = code_words("docs/user-guide.md")
-    assert not sorted(keys_of(losses.as_dict(found)) - known - set(WORDS))
-    assert not [column for column in losses.as_table(found).splitlines()[0].split(",") if column not in known]
+    assert not sorted(keys_of(told.as_dict(found)) - known - set(WORDS))
+    assert not [column for column in told.as_table(found).splitlines()[0].split(",") if column not in known]
 
 
 def test_the_guide_names_every_command_and_option() -> None:

@@ -16,7 +16,7 @@ from hypothesis import strategies as some
 from guys import cli
 from guys.exchange import losses
 from guys.loads import lines_of
-from guys.studies import lost
+from guys.studies import cells, lost
 from guys.studies.batch import solve_lines
 
 
@@ -49,10 +49,10 @@ def test_three_guys_at_one_level_of_a_pinned_mast_lose_one_and_fall_in_still_air
     """The two left pull the head over to their side, and nothing pulls back (statics; common practice: never ease a guy of three)."""
     found = lose(ring_mast(3))
     assert found.losses[1].kind == "cable"
-    assert (found.verdict[1:] == lost.FALLS).all()
+    assert (found.verdict[1:] == cells.FALLS).all()
     assert all(found.still[1:])
     assert not found.still[0]
-    assert (found.verdict[0] < lost.FALLS).all()
+    assert (found.verdict[0] < cells.FALLS).all()
     assert "falls toward 180°" in found.cells[row(found, "guy A")].reason[0]
     assert found.cells[row(found, "guy A")].reason[1] == lost.ITS_STILL_AIR
 
@@ -62,23 +62,23 @@ def test_a_fixed_mast_stands_without_any_of_its_guys() -> None:
         made.spar(length=6.0, base="fixed"), 0.0, 120.0, 240.0, wind=made.wind(0.0, speed=10.0), tension=200.0
     )
     found = lose(document)
-    assert (found.verdict < lost.FALLS).all()
+    assert (found.verdict < cells.FALLS).all()
 
 
 def test_four_guys_to_high_anchors_lose_one_and_stand_in_some_winds_only() -> None:
     """With anchors above the foot the two guys square to the wind hold the head up; losing the guy toward a strong wind they cannot."""
     found = lose(ring_mast(4, 0.0, 180.0, level=2.0, tension=300.0, wind=made.wind(0.0, 180.0, speed=45.0)))
-    cells = found.cells[row(found, "guy A")]
-    assert cells.verdict[0] < lost.FALLS
-    assert cells.verdict[at(found, 180.0)] < lost.FALLS
-    assert cells.verdict[at(found, 0.0)] == lost.FALLS
+    here = found.cells[row(found, "guy A")]
+    assert here.verdict[0] < cells.FALLS
+    assert here.verdict[at(found, 180.0)] < cells.FALLS
+    assert here.verdict[at(found, 0.0)] == cells.FALLS
 
 
 def test_a_structure_that_does_not_stand_is_all_falls_and_exit_status_4(tmp_path: Path) -> None:
     document = ring_mast(3)
     document["cable"] = [made.cable("guy A", 10.0, "A", length=12.9)]
     found = lose(document)
-    assert (found.verdict == lost.FALLS).all()
+    assert (found.verdict == cells.FALLS).all()
     assert all(found.still)
     file = tmp_path / "falls.toml"
     file.write_text(made.text(document))
@@ -104,10 +104,10 @@ def test_the_guy_left_holds_the_lean_and_the_wind_by_moments() -> None:
     lever = abs(head[0] * toward[1] - head[1] * toward[0]) / np.linalg.norm(toward)
     weight = 20.0 * 9.80665 * length * (length / 2) * math.sin(lean)
     blown = 0.5 * 1.25 * 20.0**2 * 1.2 * 0.1 * math.cos(lean) ** 2 * length**2 / 2
-    cells = found.cells[row(found, "east")]
+    here = found.cells[row(found, "east")]
     stretch = 1e-5  # of the guy, at most 3 kN over 1 GN; the head moves by a few times that
     for line, moment in ((0, weight), (at(found, 270.0), weight + blown)):
-        assert cells.tension[line, 0] == pytest.approx(moment / lever, rel=stretch)
+        assert here.tension[line, 0] == pytest.approx(moment / lever, rel=stretch)
 
 
 def test_each_loss_is_the_case_without_those_cables() -> None:

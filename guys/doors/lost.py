@@ -18,7 +18,8 @@ from guys.drawing.losses import draw_losses, load_row
 from guys.drawing.rounding import Units, tongue
 from guys.exchange import losses
 from guys.scenario import read_scenario
-from guys.studies.lost import FALLS, NOT_FOUND, PAST, WORDS, Lost, judged_by, lose
+from guys.studies.cells import FALLS, NOT_FOUND, PAST, WORDS
+from guys.studies.lost import Lost, judged_by, lose
 
 
 def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
@@ -58,6 +59,4 @@ def report(found: Lost, units: Units, stream: TextIO) -> None:
         rows.append([loss.words, WORDS[verdict[0]], *counts, *load_row(found, k, tongue(units), rounding.load)])
     terminal.table("What is lost, and what stands", head, rows, stream)
     falls = [f"{loss.words}: {cells.reason[0]}" for loss, cells in zip(found.losses, found.cells, strict=True) if cells.reason[0]]
-    for title, lines in (("Falls in still air when lost", falls), ("How", judged_by(found)), ("Cautions", CAUTIONS)):
-        if lines:
-            stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
+    terminal.listed({"Falls in still air when lost": falls, "How": judged_by(found), "Cautions": CAUTIONS}, stream)

@@ -19,7 +19,8 @@ from guys.drawing.lettering import fitted, shortened, width
 from guys.drawing.page import Page, Rect
 from guys.drawing.rounding import ABSENT, Say, Tongue, Units, bearing, factor, force, tongue
 from guys.drawing.table import Column, Grid, draw_grid
-from guys.studies.lost import FALLS, NOT_JUDGED, PAST, Lost, judged_by, worst_use
+from guys.studies.cells import FALLS, NOT_JUDGED, PAST, worst_use
+from guys.studies.lost import Lost, judged_by
 
 SQUARE = 5.3
 NAMES, STILL = 62.0, 16.0
@@ -124,7 +125,7 @@ def load_row(found: Lost, k: int, speech: Tongue, how: Say) -> list[str]:
         item = int(cells.governs[least])
         out = [
             f"{factor(cells.required[least] / cells.use[least])}{' past' if cells.use[least] > 1 else ''}",
-            shortened(found.items[item].thing, 32.0, style.BODY),
+            shortened(cells.items[item].thing, 32.0, style.BODY),
             bearing(found.lines[least].wind_from),
         ]
     names = ([c.name for c in found.scenario.cable], [a.name for a in found.scenario.anchor])

@@ -12,7 +12,8 @@ from guys.checks.alarms import CAUTIONS
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.rotation import Array
-from guys.studies.lost import FALLS, WORDS, Cells, Lost, judged_by, worst_first, worst_use
+from guys.studies.cells import FALLS, WORDS, Cells, worst_first, worst_use
+from guys.studies.lost import Lost, judged_by
 
 FORMAT = "guys-lost/1"
 
@@ -64,7 +65,7 @@ def _governing(found: Lost, cells: Cells, line: int) -> dict[str, Any]:
         return {}
     required, use = float(cells.required[line]), float(cells.use[line])
     factor = number(required / use if use > 0 else float("inf"))
-    thing = found.items[item]
+    thing = cells.items[item]
     return {"governs": thing.thing, "quantity": thing.quantity, "factor": factor, "factor_required": required}
 
 

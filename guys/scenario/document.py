@@ -17,6 +17,7 @@ from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar, SparPoint
+from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import Latitude, Longitude, SiteEntry
 from guys.scenario.table import Model
@@ -192,3 +193,5 @@ class ScenarioFile(Model):
     """How things are modelled."""
     lost: Lost = Lost()
     """For `guys lost`."""
+    ranges: Ranges = Ranges()
+    """For `guys matters`."""

@@ -31,6 +31,7 @@ from guys.scenario.keys import Finding, Key, nearest
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Material, Setting, Spar
 from guys.scenario.quantity import FROM_FILE, shown
+from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.unavailable import without
@@ -61,6 +62,7 @@ class Draft:
     allowables: AllowablesEntry | None
     analysis: Analysis | None
     lost: Lost | None
+    ranges: Ranges | None
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
         """Readable spars by name, with their index; of two with one name the first."""

@@ -20,6 +20,7 @@ from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lattice import Lattice
 from guys.scenario.lost import Lost
+from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
 from guys.site import Site
@@ -441,6 +442,7 @@ class Scenario(Model):
     allowables: Allowables = Allowables()
     analysis: Analysis = Analysis()
     lost: Lost = Lost()
+    ranges: Ranges = Ranges()
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None

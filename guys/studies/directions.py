@@ -15,8 +15,9 @@ from dataclasses import replace
 import numpy as np
 
 from guys.checks.extremes import measures
-from guys.loads import CaseLine
+from guys.loads import CaseLine, lines_of, setting_line
 from guys.rotation import Array
+from guys.scenario import Scenario
 from guys.studies.batch import Batch, join
 
 COARSE = math.radians(10)
@@ -44,6 +45,12 @@ def sweep(templates: Sequence[CaseLine], listed: Batch, solve: Solve) -> Batch:
 def between(known: Sequence[float]) -> list[float]:
     """Bearings every COARSE round the circle but for those known."""
     return [float(b) for b in np.arange(0.0, 2 * math.pi, COARSE) if not _near(b, known)]
+
+
+def round_lines(scenario: Scenario) -> tuple[CaseLine, ...]:
+    """Still air, then every case, the windy ones in the scenario's directions and every COARSE, in order round the circle."""
+    own = scenario.wind.directions if scenario.wind is not None else ()
+    return (setting_line(scenario), *lines_of(scenario, sorted([*own, *between(own)])))
 
 
 def _lines(templates: Sequence[CaseLine], bearings: Sequence[float]) -> list[CaseLine]:

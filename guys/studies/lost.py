@@ -13,34 +13,26 @@ degrees round the circle; peaks between them are not narrowed down.
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
-from dataclasses import dataclass, fields, replace
+from dataclasses import dataclass, replace
 from itertools import combinations
 from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import stability
-from guys.checks.demands import Demands, Item
-from guys.checks.extremes import measures
-from guys.loads import CaseLine, lines_of, setting_line
+from guys.loads import CaseLine
 from guys.loads.parting import parted
-from guys.recovery import Forces
-from guys.rotation import Array
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint
 from guys.setting import Setting, find
 from guys.structure import build
 from guys.studies.batch import Batch, Change, Progress, recover, solve_lines
-from guys.studies.directions import between
+from guys.studies.cells import FALLS, Cells, cells_of, joined, without_loads
+from guys.studies.directions import round_lines
 from guys.version import __version__
 
 Kind = Literal["nothing", "cable", "anchor", "two cables", "two anchors"]
-WORDS = ("within", "not judged", "past", "falls", "not found")
-WITHIN, NOT_JUDGED, PAST, FALLS, NOT_FOUND = range(5)
-"""Verdicts, the graver the greater; NOT_FOUND: the solver failed, a fault of the program."""
 ITS_STILL_AIR = "falls in still air already; this wind was not solved"
 
 
@@ -59,34 +51,10 @@ class Loss:
 
 
 @dataclass(frozen=True)
-class Cells:
-    """What became of some cases (case,), the worse of what is held together.
-
-    verdict : code;  reason : why it falls
-    use, governs, required : greatest use of anything judged, its item and the factor required (NaN, -1, NaN: nothing)
-    tension : (case, cable) greater end [N];  pull : (case, anchor) resultant [N]
-    """
-
-    verdict: NDArray[np.int64]
-    use: Array
-    governs: NDArray[np.int64]
-    required: Array
-    tension: Array
-    pull: Array
-    reason: tuple[str, ...]
-
-    def take(self, rows: Sequence[int]) -> Cells:
-        """The cases `rows`."""
-        k = np.array(rows, dtype=np.int64)
-        some = {f.name: getattr(self, f.name)[k] for f in fields(Cells) if f.name != "reason"}
-        return Cells(**some, reason=tuple(self.reason[r] for r in rows))
-
-
-@dataclass(frozen=True)
 class Lost:
     """What the study found.
 
-    losses : the first is nothing;  lines : the first is still air;  cells : (loss,) of the lines each;  items : everything judged
+    losses : the first is nothing;  lines : the first is still air;  cells : (loss,) of the lines each;
     still : (loss,) falls in still air, so that its other lines were not solved
     """
 
@@ -95,7 +63,6 @@ class Lost:
     losses: tuple[Loss, ...]
     lines: tuple[CaseLine, ...]
     cells: tuple[Cells, ...]
-    items: tuple[Item, ...]
     still: tuple[bool, ...]
 
     @property
@@ -111,7 +78,7 @@ def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
     """
     scenario = after_a_loss(scenario)
     setting = find(build(scenario))
-    losses, lines = losses_of(scenario), _lines(scenario)
+    losses, lines = losses_of(scenario), round_lines(scenario)
     if not setting.stands:
         return _nothing_stands(setting, losses, lines)
     whole = solve_lines(setting, lines, False, progress)
@@ -119,10 +86,10 @@ def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
     first = _solved(setting, sets, whole, slice(0, 1), progress)
     standing = [s for s in sets if first[s].verdict[0] < FALLS]
     rest = _solved(setting, standing, whole, slice(1, None), progress)
-    found = {s: _joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
-    cells = (_cells(whole), *(found[loss.cables] for loss in losses[1:]))
+    found = {s: joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
+    cells = (cells_of(whole), *(found[loss.cables] for loss in losses[1:]))
     still = tuple(len(loss.cables) > 0 and loss.cables not in rest for loss in losses)
-    return Lost(scenario, __version__, losses, lines, cells, whole.demands.items, still)
+    return Lost(scenario, __version__, losses, lines, cells, still)
 
 
 def after_a_loss(scenario: Scenario) -> Scenario:
@@ -156,12 +123,6 @@ def _in_order(scenario: Scenario, names: set[str]) -> tuple[str, ...]:
     return tuple(c.name for c in scenario.cable if c.name in names)
 
 
-def _lines(scenario: Scenario) -> tuple[CaseLine, ...]:
-    """Still air, then every case, the windy ones in the scenario's directions and every 10 degrees, in order round the circle."""
-    own = scenario.wind.directions if scenario.wind is not None else ()
-    return (setting_line(scenario), *lines_of(scenario, sorted([*own, *between(own)])))
-
-
 def _solved(
     setting: Setting, sets: Sequence[tuple[str, ...]], whole: Batch, some: slice, progress: Progress | None
 ) -> dict[tuple[str, ...], Cells]:
@@ -170,11 +131,11 @@ def _solved(
     wanted = [replace(line, without=tuple(dict.fromkeys((*line.without, *s)))) for s in sets for line in lines]
     if not wanted:
         return {}
-    cells = _cells(solve_lines(setting, wanted, False, progress))
+    cells = cells_of(solve_lines(setting, wanted, False, progress))
     sudden = setting.problem.structure.scenario.lost.sudden
     if sudden > 1:
         swing = _swing(setting, whole, np.tile(np.arange(len(whole.lines))[some], len(sets)), sudden)
-        cells = _worse(cells, _cells(solve_lines(setting, wanted, False, progress, swing)))
+        cells = _worse(cells, cells_of(solve_lines(setting, wanted, False, progress, swing)))
     n = len(lines)
     return {s: cells.take(range(k * n, (k + 1) * n)) for k, s in enumerate(sets)}
 
@@ -186,63 +147,13 @@ def _swing(setting: Setting, whole: Batch, rows: NDArray[np.int64], sudden: floa
     return lambda loads, some: parted(structure, loads, at_to[some], at_from[some], sudden)
 
 
-def _cells(batch: Batch) -> Cells:
-    """Verdicts and loads of every line; a line that branches has the worse of both its states."""
-    stands = (batch.code == stability.STABLE) | batch.spins
-    plain = _read(batch.demands, batch.forces)
-    if batch.mirror is not None and batch.mirror_demands is not None:
-        beside = _read(batch.mirror_demands, batch.mirror)
-        row = {line: k for k, line in enumerate(batch.lines)}
-        for k, line in enumerate(batch.mirror_lines):
-            _put_worse(plain, row[line], beside, k)
-    use, required, governs, tension, pull = plain
-    judged = np.where(np.isnan(use), NOT_JUDGED, np.where(use > 1, PAST, WITHIN))
-    verdict = np.where(stands, judged, np.where(batch.code == stability.FAILED, NOT_FOUND, FALLS))
-    reason = tuple("" if ok else (why or note or "") for ok, why, note in zip(stands, batch.reason, batch.note, strict=True))
-    return _without_loads(Cells(verdict, use, governs, required, tension, pull, reason))
-
-
-def _without_loads(cells: Cells) -> Cells:
-    """The cells with nothing but verdict and reason where they do not stand."""
-    gone = cells.verdict >= FALLS
-    use, required = np.where(gone, np.nan, cells.use), np.where(gone, np.nan, cells.required)
-    tension, pull = np.where(gone[:, None], np.nan, cells.tension), np.where(gone[:, None], np.nan, cells.pull)
-    return Cells(cells.verdict, use, np.where(gone, -1, cells.governs), required, tension, pull, cells.reason)
-
-
-_Plain = tuple[Array, Array, NDArray[np.int64], Array, Array]
-
-
-def _read(judged: Demands, forces: Forces) -> _Plain:
-    """Greatest use with the factor required and its item, tensions and pulls."""
-    known, each = np.where(np.isnan(judged.use), -1.0, judged.use), np.arange(len(judged.use))
-    best = known.argmax(axis=1)
-    none = known[each, best] < 0
-    use, required = (np.where(none, np.nan, a[each, best]) for a in (known, judged.required))
-    found = measures(forces)
-    return use, required, np.where(none, -1, best), found.tension, found.resultant
-
-
-def _put_worse(mine: _Plain, k: int, other: _Plain, j: int) -> None:
-    if other[0][j] > mine[0][k]:
-        for a, b in zip(mine[:3], other[:3], strict=True):
-            a[k] = b[j]
-    for a, b in zip(mine[3:], other[3:], strict=True):
-        a[k] = np.fmax(a[k], b[j])
-
-
 def _worse(a: Cells, b: Cells) -> Cells:
     """Line by line the graver verdict, the greater use and the greater loads; none of these where it falls in either."""
     swings = (b.use > a.use) | np.isnan(a.use)
     governs, required = np.where(swings, b.governs, a.governs), np.where(swings, b.required, a.required)
     reason = tuple(x or (f"as it swings: {y}" if y else "") for x, y in zip(a.reason, b.reason, strict=True))
     use, tension, pull = (np.fmax(getattr(a, n), getattr(b, n)) for n in ("use", "tension", "pull"))
-    return _without_loads(Cells(np.maximum(a.verdict, b.verdict), use, governs, required, tension, pull, reason))
-
-
-def _joined(a: Cells, b: Cells) -> Cells:
-    both = {f.name: np.concatenate([getattr(a, f.name), getattr(b, f.name)]) for f in fields(Cells) if f.name != "reason"}
-    return Cells(**both, reason=a.reason + b.reason)
+    return without_loads(Cells(np.maximum(a.verdict, b.verdict), use, governs, required, tension, pull, reason, a.items))
 
 
 def _fallen(still: Cells, lines: int) -> Cells:
@@ -254,20 +165,10 @@ def _fallen(still: Cells, lines: int) -> Cells:
 def _nothing_stands(setting: Setting, losses: tuple[Loss, ...], lines: tuple[CaseLine, ...]) -> Lost:
     """Where the structure falls in still air with all its cables, so it does without some."""
     alone = recover(setting.problem, setting.judged, detail=False)
-    cells = _fallen(_cells(alone), len(lines))
+    cells = _fallen(cells_of(alone), len(lines))
     scenario = setting.problem.structure.scenario
     many = len(losses)
-    return Lost(scenario, __version__, losses, lines, (cells,) * many, alone.demands.items, (True,) * many)
-
-
-def worst_first(cells: Cells) -> int:
-    """The line of the gravest verdict, and of these of the greatest use."""
-    return max(range(len(cells.use)), key=lambda k: (cells.verdict[k], -math.inf if math.isnan(cells.use[k]) else cells.use[k]))
-
-
-def worst_use(cells: Cells) -> int | None:
-    """The line of the greatest use; None where nothing is judged or nothing stands."""
-    return None if np.isnan(cells.use).all() else int(np.nanargmax(cells.use))
+    return Lost(scenario, __version__, losses, lines, (cells,) * many, (True,) * many)
 
 
 def judged_by(found: Lost) -> tuple[str, ...]:

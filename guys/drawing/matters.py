@@ -1,0 +1,139 @@
+"""How far each range moves the greatest anchor pull and the reserve: one row a range, what moves most on top.
+
+Through each panel goes an upright line at the value as drawn.  A row runs from the value with less (ring) to that with more (dot), both
+written at its ends; one that does not stand says so.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+from matplotlib.figure import Figure
+
+from guys.checks.alarms import CAUTIONS
+from guys.drawing import style
+from guys.drawing.leaf import Words, leaf
+from guys.drawing.lettering import shortened, width
+from guys.drawing.page import Page, Rect
+from guys.drawing.rounding import ABSENT, MOST_FACTOR, Units, factor, load, tongue
+from guys.studies.matters import Matters, Reading, Span, told
+
+ROW, ABOVE, KEY = 7.0, 17.0, 9.0
+NAMES, ENDS, GAP = 54.0, 62.0, 10.0
+ROOM = 24.0
+"""Millimetres: height of a row, of heads above and the key below; width of names, of ends in words, between panels, of a value."""
+RING = 1.25
+
+
+@dataclass(frozen=True)
+class Panel:
+    """One measure: where, its heading, how a reading's value is got and written."""
+
+    zone: Rect
+    head: tuple[str, str]
+    value: Callable[[Reading], float]
+    write: Callable[[float], str]
+
+
+def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
+    """The page."""
+    rows = max(len(found.spans), 1)
+    page, zone = leaf(paper, Words(found.scenario.title, "what matters most", told(found), CAUTIONS), ABOVE + ROW * rows + KEY)
+    speech = tongue(units)
+    wide = (zone.width - NAMES - ENDS - 2 * GAP) / 2
+    left = zone.left + NAMES + ENDS + GAP
+    body = (zone.top - ABOVE - ROW * rows, zone.top)
+    point = found.point
+    if not found.stands:
+        page.text(zone.left, zone.top - ABOVE, f"Nothing was varied: {point.reason}", style.BODY, bold=True)
+        return page.figure
+    pull = speech.say(load, point.pull)
+    panels = (
+        Panel(
+            Rect(left, body[0], left + wide, body[1]), ("greatest anchor pull", f"as drawn {pull} {point.anchor}"),
+            lambda r: r.pull, lambda v: speech.say(load, v),
+        ),
+        Panel(
+            Rect(left + wide + GAP, body[0], zone.right, body[1]),
+            ("reserve: least factor over the one required", f"as drawn {factor(point.reserve)} {point.thing}"),
+            lambda r: r.reserve, factor,
+        ),
+    )  # fmt: skip
+    for panel in panels:
+        _panel(page, panel, found)
+    for k, span in enumerate(found.spans):
+        _name(page, span, zone, zone.top - ABOVE - ROW * (k + 0.5))
+    _key(page, zone)
+    return page.figure
+
+
+def _name(page: Page, span: Span, zone: Rect, y: float) -> None:
+    page.text(zone.left, y - 1.1, shortened(span.what, NAMES - 3.0, style.BODY, bold=True), style.BODY, bold=True)
+    words = " / ".join(span.ends) + ("" if span.given else ", default")
+    page.text(zone.left + NAMES, y - 1.1, shortened(words, ENDS - 1.0, style.SMALL), style.SMALL, colour=style.GREY)
+    page.line([(zone.left, y - ROW / 2), (zone.right, y - ROW / 2)], style.PALE, 0.35, order=1.0)
+
+
+def _panel(page: Page, panel: Panel, found: Matters) -> None:
+    zone, point = panel.zone, panel.value(found.point)
+    for k, line in enumerate(panel.head):
+        page.text(zone.left, zone.top - 4.0 - 4.4 * k, shortened(line, zone.width, style.BODY, bold=k == 0), style.BODY, bold=k == 0)
+    ends = [panel.value(e) for s in found.spans if not s.lacking for e in (s.less, s.more)]
+    known = [v for v in (point, *ends) if math.isfinite(v)]
+    if not math.isfinite(point) or point > MOST_FACTOR * max(1.0, min(known)):
+        page.text(zone.left, zone.top - ABOVE - 4.0, "not judged", style.BODY, colour=style.GREY)
+        return
+    low, high = min(known), max(known)
+    scale = (zone.width - 2 * ROOM) / (high - low) if high - low > 1e-9 * abs(high) else 0.0
+
+    def across(value: float) -> float:
+        return zone.left + ROOM + scale * (value - low) if scale else (zone.left + zone.right) / 2
+
+    x = across(point)
+    page.line([(x, zone.top - ABOVE + 2.0), (x, zone.bottom)], style.INK, style.THIN)
+    for k, span in enumerate(found.spans):
+        _row(page, panel, span, found.point, across, zone.top - ABOVE - ROW * (k + 0.5))
+
+
+def _row(page: Page, panel: Panel, span: Span, point: Reading, across: Callable[[float], float], y: float) -> None:
+    zone = panel.zone
+    if span.lacking:
+        words = shortened(f"not solved: {span.lacking}", zone.width, style.SMALL)
+        page.text(zone.left, y - 1.1, words, style.SMALL, colour=style.GREY)
+        return
+    readings = ((span.less, False), (span.more, True))
+    reached = [(panel.value(r), r, more) for r, more in readings if math.isfinite(panel.value(r)) and r.falls <= point.falls]
+    if len(reached) == 2:
+        page.line([(across(reached[0][0]), y), (across(reached[1][0]), y)], style.LOAD, 1.6, order=2.5, butt=True)
+    for value, _, more in reached:
+        page.circle((across(value), y), RING, fill=style.LOAD if more else style.WHITE, edge=style.LOAD, weight=1.2, order=3.0)
+    _values(page, panel, reached, across, y)
+    for reading, more in readings:
+        if reading.falls > point.falls:
+            words = f"{span.ends[more]}: falls in {reading.falls}"
+            side = zone.right if more else zone.left
+            page.text(side, y - 1.1, words, style.SMALL, True, align="right" if more else "left")
+
+
+def _values(
+    page: Page, panel: Panel, reached: Sequence[tuple[float, Reading, bool]], across: Callable[[float], float], y: float
+) -> None:
+    """The value of each end outside the row, on the side it lies."""
+    for k, (value, _, _) in enumerate(sorted(reached, key=lambda r: r[0])):
+        words = panel.write(value) if math.isfinite(value) else ABSENT
+        last = k == len(reached) - 1
+        x = across(value) + (RING + 1.5 if last else -RING - 1.5)
+        start = x if last else x - width(words, style.SMALL)
+        box = (start - 0.5, start + width(words, style.SMALL) + 0.5)
+        page.shape([(box[0], y - 1.6), (box[1], y - 1.6), (box[1], y + 2.0), (box[0], y + 2.0)], fill=style.WHITE, order=2.2)
+        page.text(start, y - 1.1, words, style.SMALL)
+
+
+def _key(page: Page, zone: Rect) -> None:
+    x, y = zone.left, zone.bottom + 2.0
+    for fill, words in ((style.WHITE, "less, lower, colder"), (style.LOAD, "more, higher, warmer")):
+        page.circle((x + RING, y), RING, fill=fill, edge=style.LOAD, weight=1.2)
+        x += 2 * RING + 1.5 + page.text(x + 2 * RING + 1.5, y - 1.1, words, style.SMALL) + 6.0
+    page.text(x, y - 1.1, "upright line: as drawn", style.SMALL)

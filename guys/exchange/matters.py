@@ -1,0 +1,68 @@
+"""`matters.json` (format guys-matters/1) and `matters.csv`: what each range does to the worst pull and the reserve; SI."""
+
+from __future__ import annotations
+
+import json
+from typing import Any
+
+from guys.checks.alarms import CAUTIONS
+from guys.exchange.result import bearing, number
+from guys.exchange.tables import Cell, as_csv
+from guys.loads import CaseLine
+from guys.studies.matters import Matters, Reading, Span, told
+
+FORMAT = "guys-matters/1"
+
+
+def as_dict(found: Matters) -> dict[str, Any]:
+    """The whole result as plain lists and numbers."""
+    return {
+        "format": FORMAT,
+        "title": found.scenario.title,
+        "guys_version": found.version,
+        "scenario_sha256": found.scenario.sha256,
+        "point": _reading(found.point),
+        "ranges": [_span(s) for s in found.spans],
+        "judged_by": list(told(found)),
+        "cautions": list(CAUTIONS),
+    }
+
+
+def as_text(found: Matters) -> str:
+    """The text of `matters.json`."""
+    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+
+
+def _place(line: CaseLine | None) -> dict[str, Any]:
+    return {} if line is None else {"case": line.name, "wind_from_deg": bearing(line.wind_from)}
+
+
+def _reading(r: Reading) -> dict[str, Any]:
+    return {
+        "greatest_pull": {"anchor": r.anchor, "resultant_N": number(r.pull), **_place(r.pull_line)},
+        "reserve": {"governs": r.thing, "factor_over_required": number(r.reserve), **_place(r.reserve_line)},
+        "falls": r.falls,
+        **({"reason": r.reason} if r.reason else {}),
+    }
+
+
+def _span(s: Span) -> dict[str, Any]:
+    out = {"of": s.what, "from": s.ends[0], "to": s.ends[1], "default": not s.given}
+    return {**out, "not_solved": s.lacking} if s.lacking else {**out, "less": _reading(s.less), "more": _reading(s.more)}
+
+
+def as_table(found: Matters) -> str:
+    """The text of `matters.csv`: the point, then both ends of every range."""
+    head = ["of", "end", "default", "greatest_pull_N", "anchor", "factor_over_required", "governs", "falls", "not_solved"]
+
+    def row(of: str, end: str, default: str, r: Reading) -> list[Cell]:
+        return [of, end, default, r.pull, r.anchor, number(r.reserve), r.thing, r.falls, None]
+
+    rows = [row("as drawn", "", "", found.point)]
+    for s in found.spans:
+        default = "no" if s.given else "yes"
+        if s.lacking:
+            rows.append([s.what, "", default, None, None, None, None, None, s.lacking])
+        else:
+            rows += [row(s.what, end, default, r) for end, r in zip(s.ends, (s.less, s.more), strict=True)]
+    return as_csv(head, rows)
