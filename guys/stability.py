@@ -144,14 +144,16 @@ def turn_between(problem: Problem, a: State, b: State) -> Array:
 def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_step: float = LEAST_STEP) -> Judged:
     """Solve every case from the setting and say what kind of equilibrium it has.
 
-    setting : the setting state (one case), `loads_at_setting` its loads;  least_step : how finely the end of a path is found, of the load
+    setting : the setting state, `loads_at_setting` its loads (one case, or one for every case);  least_step : how finely the end of a path
+    is found, of the load
     """
-    first = problem.repeat(setting)
+    each = np.zeros(problem.cases, dtype=np.int64) if len(setting.u) == 1 else np.arange(problem.cases)
+    first, loads_at_setting = setting.take(each), loads_at_setting.take(each)
     judged = settle(problem, first, CASE_ROUNDS)
     away = turn_between(problem, judged.state, first)
     doubtful = np.flatnonzero((judged.code >= UNSTABLE) | (away > FAR))
     if len(doubtful):
-        _follow(problem, setting, loads_at_setting, judged, doubtful, least_step)
+        _follow(problem, first.take(doubtful), loads_at_setting.take(doubtful), judged, doubtful, least_step)
     return judged
 
 
@@ -217,11 +219,11 @@ class _Path:
 
 
 def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, rows: Index, least_step: float) -> None:
-    """Follow the path of the cases `rows` and write what is found at its end."""
+    """Follow the path of the cases `rows`, each from its own start, and write what is found at its end."""
     whole = problem.take(rows)
     n = len(rows)
     branched, ended, drifts = np.zeros((3, n), bool)
-    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), whole.repeat(setting), branched, ended, drifts, {}, {}, np.full(n, np.nan))
+    path = _Path(np.zeros(n), np.full(n, FIRST_STEP), setting.take(np.arange(n)), branched, ended, drifts, {}, {}, np.full(n, np.nan))
     _walk(whole, start, path, np.arange(n), least_step)
     stuck = _still_stiff(whole, setting, start, path)
     if len(stuck):
@@ -229,7 +231,7 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
         stuck = _still_stiff(whole, setting, start, path)
     path.stuck[:] = False
     path.stuck[stuck] = True
-    near = turn_between(whole, judged.state.take(rows), whole.repeat(setting)) < FAR
+    near = turn_between(whole, judged.state.take(rows), setting) < FAR
     for k, case in enumerate(rows):
         _arrive(whole, judged, path, k, int(case), bool(near[k]))
 
@@ -249,12 +251,15 @@ def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) 
     if len(ended) == 0:
         return ended
     part = whole.take(ended)
-    there = replace(part, loads=part.loads.between(start, path.reached[ended]))
+    there = replace(part, loads=part.loads.between(start.take(ended), path.reached[ended]))
     drifts = np.array([classify(there.take(np.array([k])), path.state.take(ended[k : k + 1]))[0] == NEUTRAL for k in range(len(ended))])
     path.drifts[ended[drifts]] = True
-    least = [_least_cost(there.take(np.array([k])), path.state.take(ended[k : k + 1])) for k in range(len(ended))]
-    still = replace(part.take(np.array([0])), loads=start)
-    return np.asarray(ended[(np.array(least) > SOFT * _least_cost(still, setting)) & ~drifts])
+    still = replace(part, loads=start.take(ended))
+    least, at_start = (
+        np.array([_least_cost(p.take(np.array([k])), states.take(ended[k : k + 1])) for k in range(len(ended))])
+        for p, states in ((there, path.state), (still, setting))
+    )
+    return np.asarray(ended[(least > SOFT * at_start) & ~drifts])
 
 
 def _least_cost(one: Problem, state: State) -> float:
@@ -289,7 +294,7 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     """Try the next share of every open path from its last state."""
     share = np.minimum(1.0, path.reached[open_] + path.step[open_])
     part = whole.take(open_)
-    there = replace(part, loads=part.loads.between(start, share))
+    there = replace(part, loads=part.loads.between(start.take(open_), share))
     before = path.state.take(open_)
     found = settle(there, before, PATH_ROUNDS)
     near = turn_between(there, found.state, before) < NEXT

@@ -203,6 +203,15 @@ def losing() -> Document:
     return mast(30.0, 200.0, case=[{"name": "whole"}, *({"name": name, "wind": 0.0, "without": cables} for name, cables in away)])
 
 
+def ring_mast(sides: int, *directions: float, level: float = 0.0, tension: float = 500.0, **tables: Any) -> Document:
+    """A rigid mast of 10 m, 20 kg/m, pinned, with guys from its head at 0, 360/sides, ... to anchors 8 m off at `level`."""
+    section = weightless(10.0) | {"mass": 20.0, "drag": 1.2}
+    mast = spar(length=10.0, rigid=True, section=[section])
+    ring = anchors(8.0, *(360.0 / sides * k for k in range(sides)), level=level)
+    guys = [cable(f"guy {a['name']}", 10.0, a["name"], tension=tension) for a in ring]
+    return document([mast], ring, guys, straight=True, **{"wind": wind(*(directions or (0.0,))), **tables})
+
+
 def stayed(one: Document, *bearings: float, at: float | None = None, radius: float = 8.0, arm: float = 0.0, **tables: Any) -> Document:
     """One spar on guys from its head (or from `at`) to anchors A, B, ... at the bearings; tension=, length= or tight= of all guys."""
     length = sum(s["length"] for s in one["section"])

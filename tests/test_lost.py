@@ -5,7 +5,6 @@ from __future__ import annotations
 import math
 from dataclasses import replace
 from pathlib import Path
-from typing import Any
 
 import numpy as np
 import pytest
@@ -33,21 +32,12 @@ def at(found: lost.Lost, degrees: float) -> int:
     return next(i for i, line in enumerate(found.lines) if abs(math.degrees(line.wind_from) - degrees) < 1e-6)
 
 
-def ring_mast(sides: int, *directions: float, level: float = 0.0, tension: float = 500.0, **tables: Any) -> made.Document:
-    """A rigid mast of 10 m, 20 kg/m, pinned, with guys from its head at 0, 360/sides, ... to anchors 8 m off at `level`."""
-    section = made.weightless(10.0) | {"mass": 20.0, "drag": 1.2}
-    mast = made.spar(length=10.0, rigid=True, section=[section])
-    ring = made.anchors(8.0, *(360.0 / sides * k for k in range(sides)), level=level)
-    guys = [made.cable(f"guy {a['name']}", 10.0, a["name"], tension=tension) for a in ring]
-    return made.document([mast], ring, guys, straight=True, **{"wind": made.wind(*directions or (0.0,)), **tables})
-
-
 # ---------------------------------------------------------------- stands or falls
 
 
 def test_three_guys_at_one_level_of_a_pinned_mast_lose_one_and_fall_in_still_air() -> None:
     """The two left pull the head over to their side, and nothing pulls back (statics; common practice: never ease a guy of three)."""
-    found = lose(ring_mast(3))
+    found = lose(made.ring_mast(3))
     assert found.losses[1].kind == "cable"
     assert (found.verdict[1:] == cells.FALLS).all()
     assert all(found.still[1:])
@@ -67,7 +57,7 @@ def test_a_fixed_mast_stands_without_any_of_its_guys() -> None:
 
 def test_four_guys_to_high_anchors_lose_one_and_stand_in_some_winds_only() -> None:
     """With anchors above the foot the two guys square to the wind hold the head up; losing the guy toward a strong wind they cannot."""
-    found = lose(ring_mast(4, 0.0, 180.0, level=2.0, tension=300.0, wind=made.wind(0.0, 180.0, speed=45.0)))
+    found = lose(made.ring_mast(4, 0.0, 180.0, level=2.0, tension=300.0, wind=made.wind(0.0, 180.0, speed=45.0)))
     here = found.cells[row(found, "guy A")]
     assert here.verdict[0] < cells.FALLS
     assert here.verdict[at(found, 180.0)] < cells.FALLS
@@ -75,7 +65,7 @@ def test_four_guys_to_high_anchors_lose_one_and_stand_in_some_winds_only() -> No
 
 
 def test_a_structure_that_does_not_stand_is_all_falls_and_exit_status_4(tmp_path: Path) -> None:
-    document = ring_mast(3)
+    document = made.ring_mast(3)
     document["cable"] = [made.cable("guy A", 10.0, "A", length=12.9)]
     found = lose(document)
     assert (found.verdict == cells.FALLS).all()
@@ -124,7 +114,7 @@ def test_each_loss_is_the_case_without_those_cables() -> None:
 
 
 def test_an_anchor_with_one_cable_is_that_cable_and_with_two_takes_both() -> None:
-    single = lose(ring_mast(4))
+    single = lose(made.ring_mast(4))
     assert (single.cells[row(single, "guy A")].verdict == single.cells[row(single, "A")].verdict).all()
     double = lost.losses_of(made.scenario(made.mast(0.0)))
     assert next(loss for loss in double if loss.name == ("A",)).cables == ("9 m A", "17 m A")
@@ -137,7 +127,7 @@ def test_pairs_are_every_two_cables_and_every_two_anchors() -> None:
 
 
 def test_losing_north_in_wind_from_south_mirrors_losing_south_in_wind_from_north() -> None:
-    found = lose(ring_mast(4, 0.0, 180.0, level=3.0))
+    found = lose(made.ring_mast(4, 0.0, 180.0, level=3.0))
     north, south = found.cells[row(found, "guy A")], found.cells[row(found, "guy C")]
     a, b = at(found, 180.0), at(found, 0.0)
     assert north.verdict[a] == south.verdict[b]
@@ -171,7 +161,7 @@ def test_a_linear_structure_swings_as_far_as_sudden_says(sudden: float) -> None:
     line = lines_of(setting.problem.structure.scenario)[0]
     gone = [replace(line, without=("guy A",))]
     whole = solve_lines(setting, [line], False)
-    change = lost._swing(setting, whole, np.array([0]), sudden)
+    change = lost.swing_of(setting, whole, np.array([0]), sudden)
     t0, t1, ts = (
         float(batch.forces.tension_anchor[0, 1])
         for batch in (whole, solve_lines(setting, gone, False), solve_lines(setting, gone, True, change=change))
@@ -188,7 +178,7 @@ def test_the_swing_balances_as_a_whole() -> None:
     setting = made.setting(document)
     line = lines_of(setting.problem.structure.scenario)[0]
     whole = solve_lines(setting, [line], False)
-    swing = lost._swing(setting, whole, np.array([0]), 2.0)
+    swing = lost.swing_of(setting, whole, np.array([0]), 2.0)
     batch = solve_lines(setting, [replace(line, without=("9 m A",))], False, change=swing)
     assert batch.code[0] == 0
     assert batch.balance[0] < 1e-9  # of the reference force, as every case
@@ -223,7 +213,7 @@ def test_a_suddenness_below_one_is_refused(tmp_path: Path, capsys: pytest.Captur
 
 def test_files_table_and_exit_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "a.toml"
-    file.write_text(made.text(ring_mast(3)))
+    file.write_text(made.text(made.ring_mast(3)))
     assert cli.run(["lost", str(file), "--out", str(tmp_path / "out")]) == 3
     printed = capsys.readouterr().out
     assert "cable guy A" in printed

@@ -82,7 +82,7 @@ class LoadCases:
         return self._each(lambda name: getattr(self, name)[rows], tuple(self.lines[r] for r in rows))
 
     def between(self, start: LoadCases, share: Array) -> LoadCases:
-        """From the one case of `start` toward each case here: all departures together, at the shares (case,) of the way."""
+        """From the case of `start`, or its case each, toward each case here: all departures together, at the shares (case,) of the way."""
 
         def mix(name: str) -> Array:
             a, b = getattr(start, name), getattr(self, name)

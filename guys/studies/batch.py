@@ -31,6 +31,8 @@ Progress = Callable[[int, int], None]
 """Called with cases done and cases in all."""
 Change = Callable[[LoadCases, slice], LoadCases]
 """Changes the loads of the lines of a slice."""
+Start = tuple[State, LoadCases]
+"""States of equilibrium and their loads, from which paths go out."""
 
 
 @dataclass(frozen=True)
@@ -85,15 +87,25 @@ class Batch:
 
 
 def solve_lines(
-    setting: Setting, lines: Sequence[CaseLine], detail: bool, progress: Progress | None = None, change: Change | None = None
+    setting: Setting,
+    lines: Sequence[CaseLine],
+    detail: bool,
+    progress: Progress | None = None,
+    change: Change | None = None,
+    start: Start | None = None,
 ) -> Batch:
-    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads."""
+    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads;
+    `start`: of each line's path, where that is not the setting."""
     parts = []
     for first in range(0, len(lines), CHUNK):
         problem = setting.under(lines[first : first + CHUNK])
         if change is not None:
             problem = replace(problem, loads=change(problem.loads, slice(first, first + CHUNK)))
-        judged = stability.judge(problem, setting.state, setting.loads, stability.LEAST_STEP if detail else SWEPT_STEP)
+        state, loads = setting.state, setting.loads
+        if start is not None:
+            rows = np.arange(first, first + problem.cases)
+            state, loads = start[0].take(rows), start[1].take(rows)
+        judged = stability.judge(problem, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail))
         if progress is not None:
             progress(min(first + CHUNK, len(lines)), len(lines))

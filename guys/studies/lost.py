@@ -4,8 +4,9 @@ An anchor lost takes all its cables with it; with `lost.pairs` every two cables 
 lengths are those of the whole structure as set.  Still air comes first: dead load alone, without what is lost.  What falls then is said to
 fall in every case and wind, and these are not solved: a wind that would hold it up drops.  All else is solved, in batches:
 
-    1. every case and direction with all cables   2. still air without each   3. every case and direction without each that stands
-    4. with `lost.sudden` > 1 the same again at the far point of the swing (`guys.loads.parting`); loads and verdicts are the worse of both
+    1. every case and direction with all cables   2. still air without each   3. every case and direction without each that stands, along
+    paths that go out from 2   4. with `lost.sudden` > 1 the same again at the far point of the swing (`guys.loads.parting`); loads and
+    verdicts are the worse of both
 
 A loss that leaves the same cables as another (an anchor with one cable) is solved once.  Directions are the scenario's own and every 10
 degrees round the circle; peaks between them are not narrowed down.
@@ -21,13 +22,15 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-from guys.loads import CaseLine
+from guys import stability
+from guys.equilibrium import State
+from guys.loads import CaseLine, LoadCases
 from guys.loads.parting import parted
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint
 from guys.setting import Setting, find
 from guys.structure import build
-from guys.studies.batch import Batch, Change, Progress, recover, solve_lines
+from guys.studies.batch import Batch, Change, Progress, Start, recover, solve_lines
 from guys.studies.cells import FALLS, Cells, cells_of, joined, without_loads
 from guys.studies.directions import round_lines
 from guys.version import __version__
@@ -83,9 +86,13 @@ def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
         return _nothing_stands(setting, losses, lines)
     whole = solve_lines(setting, lines, False, progress)
     sets = list(dict.fromkeys(loss.cables for loss in losses[1:]))
-    first = _solved(setting, sets, whole, slice(0, 1), progress)
-    standing = [s for s in sets if first[s].verdict[0] < FALLS]
-    rest = _solved(setting, standing, whole, slice(1, None), progress)
+    calm = setting.under([replace(lines[0], without=s) for s in sets])
+    judged = stability.judge(calm, setting.state, setting.loads)
+    at_rest = cells_of(recover(calm, judged, detail=False))
+    study = _Study(setting, whole, judged.state, calm.loads, progress)
+    first = study.swung(sets, list(range(len(sets))), slice(0, 1), at_rest)
+    standing = [k for k, s in enumerate(sets) if first[s].verdict[0] < FALLS]
+    rest = study.solved(sets, standing)
     found = {s: joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
     cells = (cells_of(whole), *(found[loss.cables] for loss in losses[1:]))
     still = tuple(len(loss.cables) > 0 and loss.cables not in rest for loss in losses)
@@ -123,24 +130,55 @@ def _in_order(scenario: Scenario, names: set[str]) -> tuple[str, ...]:
     return tuple(c.name for c in scenario.cable if c.name in names)
 
 
-def _solved(
-    setting: Setting, sets: Sequence[tuple[str, ...]], whole: Batch, some: slice, progress: Progress | None
-) -> dict[tuple[str, ...], Cells]:
-    """The cells of every set of cables taken away in some lines of the whole structure, all in one batch."""
-    lines = whole.lines[some]
-    wanted = [replace(line, without=tuple(dict.fromkeys((*line.without, *s)))) for s in sets for line in lines]
-    if not wanted:
-        return {}
-    cells = cells_of(solve_lines(setting, wanted, False, progress))
-    sudden = setting.problem.structure.scenario.lost.sudden
-    if sudden > 1:
-        swing = _swing(setting, whole, np.tile(np.arange(len(whole.lines))[some], len(sets)), sudden)
-        cells = _worse(cells, cells_of(solve_lines(setting, wanted, False, progress, swing)))
-    n = len(lines)
-    return {s: cells.take(range(k * n, (k + 1) * n)) for k, s in enumerate(sets)}
+@dataclass(frozen=True)
+class _Study:
+    """What the batches share: all cases with everything in place, and the still-air states and loads of every set taken away.
+
+    Paths of cases without a set go out from still air without it: on the way only the load grows, and it is the same start for all winds.
+    """
+
+    setting: Setting
+    whole: Batch
+    state: State
+    loads: LoadCases
+    progress: Progress | None
+
+    def solved(self, sets: Sequence[tuple[str, ...]], some: Sequence[int]) -> dict[tuple[str, ...], Cells]:
+        """The cells of some sets taken away in every line but still air, all in one batch."""
+        if not some or len(self.whole.lines) == 1:
+            return {sets[k]: _none_of(self.whole) for k in some}
+        wanted, start = self._without(sets, some, slice(1, None))
+        batch = solve_lines(self.setting, wanted, False, self.progress, start=start)
+        cells = cells_of(batch)
+        lost = np.flatnonzero(batch.code == stability.FAILED)
+        if len(lost):
+            cells = cells.put(lost, cells_of(solve_lines(self.setting, [wanted[k] for k in lost], False, self.progress)))
+        return self.swung(sets, some, slice(1, None), cells)
+
+    def swung(
+        self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice, at_rest: Cells
+    ) -> dict[tuple[str, ...], Cells]:
+        """The cells at rest of some sets in some lines, or the worse of rest and the far point of the swing where that is asked for."""
+        n, sudden = len(self.whole.lines[lines]), self.setting.problem.structure.scenario.lost.sudden
+        if sudden > 1:
+            wanted, start = self._without(sets, some, lines)
+            rows = np.tile(np.arange(len(self.whole.lines))[lines], len(some))
+            swing = swing_of(self.setting, self.whole, rows, sudden)
+            at_rest = _worse(at_rest, cells_of(solve_lines(self.setting, wanted, False, self.progress, swing, start)))
+        return {sets[s]: at_rest.take(range(k * n, (k + 1) * n)) for k, s in enumerate(some)}
+
+    def _without(self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice) -> tuple[list[CaseLine], Start]:
+        """Lines without each of some sets, and where their paths go out from."""
+        wanted = [replace(x, without=tuple(dict.fromkeys((*x.without, *sets[k])))) for k in some for x in self.whole.lines[lines]]
+        rows = np.repeat(np.array(some, dtype=np.int64), len(self.whole.lines[lines]))
+        return wanted, (self.state.take(rows), self.loads.take(rows))
 
 
-def _swing(setting: Setting, whole: Batch, rows: NDArray[np.int64], sudden: float) -> Change:
+def _none_of(whole: Batch) -> Cells:
+    return cells_of(whole).take([])
+
+
+def swing_of(setting: Setting, whole: Batch, rows: NDArray[np.int64], sudden: float) -> Change:
     """What the cables that go leave over of the forces they exert in the same case with all of them; nothing where that does not stand."""
     structure, forces = setting.problem.structure, whole.forces
     at_to, at_from = (np.nan_to_num(getattr(forces, name)[rows]) for name in ("on_anchor", "on_spar"))
