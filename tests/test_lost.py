@@ -12,7 +12,7 @@ import scenarios_made as made
 from hypothesis import given, settings
 from hypothesis import strategies as some
 
-from guys import cli
+from guys import cli, stability
 from guys.exchange import losses
 from guys.loads import lines_of
 from guys.studies import cells, lost
@@ -32,6 +32,11 @@ def at(found: lost.Lost, degrees: float) -> int:
     return next(i for i, line in enumerate(found.lines) if abs(math.degrees(line.wind_from) - degrees) < 1e-6)
 
 
+def short() -> made.Document:
+    """A mast of 6 m on a fixed base with three guys, which needs none of them in a moderate wind."""
+    return made.stayed(made.spar(length=6.0, base="fixed"), 0.0, 120.0, 240.0, wind=made.wind(0.0, speed=10.0), tension=200.0)
+
+
 # ---------------------------------------------------------------- stands or falls
 
 
@@ -48,20 +53,36 @@ def test_three_guys_at_one_level_of_a_pinned_mast_lose_one_and_fall_in_still_air
 
 
 def test_a_fixed_mast_stands_without_any_of_its_guys() -> None:
-    document = made.stayed(
-        made.spar(length=6.0, base="fixed"), 0.0, 120.0, 240.0, wind=made.wind(0.0, speed=10.0), tension=200.0
-    )
+    document = short()
     found = lose(document)
     assert (found.verdict < cells.FALLS).all()
 
 
-def test_four_guys_to_high_anchors_lose_one_and_stand_in_some_winds_only() -> None:
-    """With anchors above the foot the two guys square to the wind hold the head up; losing the guy toward a strong wind they cannot."""
-    found = lose(made.ring_mast(4, 0.0, 180.0, level=2.0, tension=300.0, wind=made.wind(0.0, 180.0, speed=45.0)))
-    here = found.cells[row(found, "guy A")]
+def test_a_loss_that_stands_in_still_air_may_fall_in_some_winds_only(monkeypatch: pytest.MonkeyPatch) -> None:
+    """A slender mast without one of its three low guys stands where the wind presses it on the two others, or those above hold it.
+
+    Told apart by a solve of each wind alone whose path starts from the whole mast and ends a sixteen times finer than the study's.
+    """
+    document = made.mast(10.0, 190.0, 250.0, wind=made.wind(10.0, 190.0, 250.0, speed=40.0))
+    some_losses = lost.losses_of(made.scenario(document))
+    monkeypatch.setattr(lost, "losses_of", lambda _: [loss for loss in some_losses if loss.name in ((), ("9 m C",))])
+    found = lose(document)
+    here = found.cells[1]
     assert here.verdict[0] < cells.FALLS
-    assert here.verdict[at(found, 180.0)] < cells.FALLS
-    assert here.verdict[at(found, 0.0)] == cells.FALLS
+    setting = made.setting(document)
+    lines = [replace(line, without=("9 m C",)) for line in lines_of(setting.problem.structure.scenario)]
+    alone = solve_lines(setting, lines, True)
+    fallen = here.verdict[[at(found, d) for d in (10.0, 190.0, 250.0)]] == cells.FALLS
+    assert fallen.tolist() == (alone.code == stability.NONE).tolist()
+    assert set(fallen.tolist()) == {True, False}
+
+
+def test_a_cable_gone_where_the_others_catch_the_mast_far_over_does_not_count_as_a_fall() -> None:
+    """Anchors 2 m above the foot: without the north guy the two square to it hold the head up however strong the wind, since the mast
+    cannot turn without stretching them (geometry). A path in coarse steps of the fading guy misses that state."""
+    found = lose(made.ring_mast(4, 0.0, level=2.0, tension=300.0, wind=made.wind(0.0, speed=45.0)))
+    here = found.cells[row(found, "guy A")]
+    assert (here.verdict < cells.FALLS).all()
 
 
 def test_a_structure_that_does_not_stand_is_all_falls_and_exit_status_4(tmp_path: Path) -> None:
@@ -139,7 +160,7 @@ def test_losing_north_in_wind_from_south_mirrors_losing_south_in_wind_from_north
 
 
 def test_suddenness_of_one_is_the_loss_at_rest() -> None:
-    document = made.mast(0.0, 70.0)
+    document = short()
     plain, one = lose(document), lose({**document, "lost": {"sudden": 1.0}})
     for a, b in zip(plain.cells, one.cells, strict=True):
         assert (a.verdict == b.verdict).all()
@@ -185,7 +206,7 @@ def test_the_swing_balances_as_a_whole() -> None:
 
 
 def test_the_swing_is_never_better_than_rest() -> None:
-    document = made.mast(0.0, 70.0)
+    document = short()
     rest, swing = lose(document), lose({**document, "lost": {"sudden": 1.8}})
     assert (swing.verdict >= rest.verdict).all()
     for a, b in zip(rest.cells[1:], swing.cells[1:], strict=True):
