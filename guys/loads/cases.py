@@ -27,7 +27,8 @@ from guys.structure import Pieces, Points, Structure
 @dataclass(frozen=True)
 class CaseLine:
     """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away; bare:
-    cables without ice; kind: of the case; aside: where the forces on signs stand, see `guys.loads.drag.attached`."""
+    cables without ice; kind: of the case; aside: where the forces on signs stand, see `guys.loads.drag.attached`;
+    drag: factor on every drag coefficient."""
 
     name: str
     wind_from: float
@@ -39,6 +40,7 @@ class CaseLine:
     bare: tuple[str, ...] = ()
     aside: str = ""
     kind: CaseKind = "service"
+    drag: float = 1.0
 
 
 @dataclass(frozen=True)

@@ -2,7 +2,7 @@
 
     initial tension    all given tensions times 1 -+ r, and the setting found again
     rope stiffness     EA of all ropes times 1 -+ r, and the setting found again: the tensions are those asked for
-    drag               all drag coefficients times 1 -+ r, which is wind pressure times 1 -+ r
+    drag               all drag coefficients times 1 -+ r, those chosen from the shape too, at the Reynolds numbers they were chosen for
     level of an anchor the unstressed lengths found, with one anchor after another lower or higher
     temperature        every case colder and warmer; still air stays at the setting's temperature
 
@@ -104,7 +104,7 @@ def _in_one_batch(setting: Setting, progress: Progress | None) -> tuple[Reading,
     """The point, and what changes loads alone."""
     scenario = setting.problem.structure.scenario
     ranges, lines = scenario.ranges, round_lines(scenario)
-    blown = [[replace(x, wind=x.wind * (1 + side * ranges.drag)) for x in lines] for side in (MINUS, PLUS)]
+    blown = [[replace(x, drag=1 + side * ranges.drag) for x in lines] for side in (MINUS, PLUS)]
     warmed = [[lines[0], *(replace(x, temperature=x.temperature + side * ranges.temperature) for x in lines[1:])] for side in (MINUS, PLUS)]
     no_wind = "" if any(not math.isnan(x.wind_from) for x in lines) else "no case has wind"
     stiff = [name for name, rope in scenario.rope.items() if rope.expansion is None and any(c.rope == name for c in scenario.cable)]
