@@ -125,7 +125,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     present, bare = (_named([getattr(c, which) for c in lines], names) for which in ("without", "bare"))
     present = 1.0 - present
     reduced = scenario.ice.wind_factor if scenario.ice is not None else 1.0
-    d, v, i = np.array([[c.dead, c.wind * (reduced if c.ice > 0 else 1.0), c.ice] for c in lines]).T
+    d, v, i = np.array([[c.dead, c.wind * c.drag * (reduced if c.ice > 0 else 1.0), c.ice] for c in lines]).T
     both = dead.superposed(np.stack([d, i], axis=1), [dead.dead(structure, w), dead.ice(structure, w, ice.mass)])
     still = both.total()
     blown, on_cables = _wind(structure, lines, there, w, ice, v, (i[:, None] > 0) & (bare == 0.0))
