@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("plumb", "setout", "compare", "search", "limit", "raise", "field", "record")
+UNAVAILABLE = ("plumb", "compare", "search", "limit", "raise", "field", "record")
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
@@ -113,6 +113,20 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
     except GuysError as error:
         raise click.BadParameter(str(error), param_hint="--look") from error
     return solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("setout.json, .csv, .geojson, .kml, .dxf and the set-out sheet")
+@click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
+@click.option("--as-built", "surveyed", metavar="FILE.csv", help="Pegs as surveyed: tell how far each is off, and solve again.")
+def setout(file: str, out: str | None, as_json: bool, units: str, paper: str, surveyed: str | None) -> int:
+    """Set out the anchors: coordinates, bearings, distances and check distances, as sheet and files.
+
+    With --as-built the exit status is that of the solution with the pegs as found.
+    """
+    from guys.doors.setout import setout_command
+
+    return setout_command(file, out, as_json, units, paper, surveyed)  # type: ignore[arg-type]
 
 
 @commands.command(name="list")

@@ -32,7 +32,7 @@ MEANINGS = {
     **dict.fromkeys(("north", "northing", "y"), "north"),
     **dict.fromkeys(("level", "elevation", "height", "z"), "level"),
 }
-_COLUMN = re.compile(r"^\s*([A-Za-z]+)\s*(?:[\[(_ ]\s*([A-Za-z]+)\s*[\])]?)?\s*$")
+COLUMN = re.compile(r"^\s*([A-Za-z]+)\s*(?:[\[(_ ]\s*([A-Za-z]+)\s*[\])]?)?\s*$")
 MOST_FAULTS = 10
 """Faulty lines of one file told one by one."""
 ON_EDGE = 1e-6
@@ -133,13 +133,13 @@ def _header(cells: list[str]) -> tuple[dict[str, int], dict[str, float | None]]:
     columns: dict[str, int] = {}
     factor: dict[str, float | None] = {}
     for place, cell in enumerate(cells):
-        match = _COLUMN.match(cell.removeprefix("\ufeff"))
+        match = COLUMN.match(cell.removeprefix("\ufeff"))
         meaning = MEANINGS.get(match[1].lower()) if match else None
         if match is None or meaning is None:
             continue
         if meaning in columns:
             raise GroundError(f'line 1: two columns for {meaning}: "{cells[columns[meaning]]}" and "{cell}"')
-        columns[meaning], factor[meaning] = place, _unit(match[2], cell)
+        columns[meaning], factor[meaning] = place, unit_of(match[2], cell)
     lacking = [m for m in ("east", "north", "level") if m not in columns]
     if lacking:
         raise GroundError(
@@ -148,7 +148,8 @@ def _header(cells: list[str]) -> tuple[dict[str, int], dict[str, float | None]]:
     return columns, factor
 
 
-def _unit(word: str | None, cell: str) -> float | None:
+def unit_of(word: str | None, cell: str) -> float | None:
+    """Metres in the unit a column's head names, None where it names none; raises GroundError."""
     if word is None:
         return None
     try:
