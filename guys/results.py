@@ -128,13 +128,19 @@ class Extreme:
 
 @dataclass(frozen=True)
 class CableWorst:
-    """factor = strength / greater of listed and refined tension; NaN where no strength is given."""
+    """factor = strength / greater of listed and refined tension; NaN where no strength is given.
+
+    strength : of the weakest link, whose name is `weakest` ("" where the cable has no ends)
+    initial : still-air tension at the `to` end over the rope's breaking load
+    """
 
     name: str
     tension: Extreme
     strength: float
     factor: float
     slack_winds: tuple[tuple[str, float], ...] = ()
+    weakest: str = ""
+    initial: float = math.nan
 
 
 @dataclass(frozen=True)
@@ -149,13 +155,15 @@ class AnchorWorst:
 
 @dataclass(frozen=True)
 class FootWorst:
-    """down: greatest push on the ground [N]; lift: greatest pull up [N] (0: never); sideways [N]; turning [N m]."""
+    """down: greatest push on the ground [N]; lift: greatest pull up [N] (0: never); sideways [N]; whole: resultant [N], of a hinged foot
+    the force on its pin; turning [N m]."""
 
     spar: str
     carried_by: str | None
     down: Extreme
     lift: Extreme
     sideways: Extreme
+    whole: Extreme
     turning: Extreme
 
 

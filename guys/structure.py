@@ -25,7 +25,7 @@ from guys.beam import Rods
 from guys.constants import STANDARD_GRAVITY
 from guys.joint import Joints
 from guys.rotation import Array
-from guys.scenario import Scenario, Spar
+from guys.scenario import Scenario, Spar, parts
 from guys.scenario.model import AnchorPoint, Fitting, GroundFoot, HeelFoot, SparPoint
 from guys.scenario.shapes import roughness
 from guys.sections import Properties, properties
@@ -100,8 +100,8 @@ class Elements:
 @dataclass(frozen=True)
 class Cables:
     """Cables from end A (`to`) to end B (`from`): points (cable,), EA [N], diameter [m], mass [kg/m], drag (NaN: chosen from the
-    shape), roughness [m] of smooth round ropes (NaN: stranded), strength [N] (NaN: not given), expansion [1/K], spar of the `from` end
-    (cable,)."""
+    shape), roughness [m] of smooth round ropes (NaN: stranded), strength [N] of the weakest link (NaN: not given), expansion [1/K],
+    spar of the `from` end (cable,)."""
 
     a: Points
     b: Points
@@ -391,7 +391,7 @@ class _Builder:
             mass=np.array([r.mass for r in ropes]),
             drag=np.array([r.drag if r.drag is not None else math.nan for r in ropes]),
             roughness=np.array([math.nan if r.surface is None else roughness(r.surface) for r in ropes]),
-            strength=np.array([r.strength if r.strength is not None else math.nan for r in ropes]),
+            strength=np.array([parts.held(scenario.rope[c.rope].strength, c.ends, scenario.part) for c in scenario.cable], dtype=float),
             expansion=np.array([r.expansion if r.expansion is not None else 0.0 for r in ropes]),
             spar=np.array([self.number[c.from_.spar] for c in scenario.cable], dtype=np.int64),
         )

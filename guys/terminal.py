@@ -11,7 +11,9 @@ from contextlib import contextmanager
 from pathlib import Path
 from typing import TextIO
 
+from guys.checks.chains import usual_words
 from guys.drawing import rounding
+from guys.drawing.box import amount
 from guys.drawing.rounding import System, Units
 from guys.drawing.strip import standing
 from guys.results import Extreme, Finding, Solution
@@ -62,11 +64,15 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
             _in_each(rounding.capacity, c.strength, systems),
             rounding.factor(c.factor) if math.isfinite(c.factor) else "not judged",
             *_place(c.tension),
+            f"{100 * c.initial:.0f} %" if math.isfinite(c.initial) else rounding.ABSENT,
             "drops" if c.slack_winds or solution.cables.slack[:, k].any() else "taut",
         ]
         for k, c in enumerate(solution.worst_cables)
     ]
-    table(f"Greatest tension of each cable{of}", ["cable", "tension", "strength", "factor", "case", "wind from", "slack"], cables, stream)
+    head = ["cable", "tension", "strength", "factor", "case", "wind from", "initial", "slack"]
+    table(f"Greatest tension of each cable{of}", head, cables, stream)
+    if any(math.isfinite(c.initial) for c in solution.worst_cables):
+        stream.write(f"\nInitial: still-air tension over the rope's strength; usual {usual_words()}\n")
     feet = [
         [
             f.spar,
@@ -74,12 +80,13 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
             signed(f.down.peak),
             signed(f.lift.peak),
             load(f.sideways.peak),
+            load(f.whole.peak),
             _in_each(rounding.moment, f.turning.peak, systems),
         ]
         for f in solution.worst_feet
     ]
-    table(f"Feet{of}", ["spar", "on", "down", "up", "sideways", "turning"], feet, stream)
-    _findings(solution, stream)
+    table(f"Feet{of}", ["spar", "on", "down", "up", "sideways", "resultant", "turning"], feet, stream)
+    _findings(solution, systems, stream)
     lists = {
         "Warnings": solution.warnings,
         "Notes": [note for note in solution.notes if not any(note in warning for warning in solution.warnings)],
@@ -113,7 +120,7 @@ def _place(extreme: Extreme) -> tuple[str, str]:
     return extreme.peak_case, wind
 
 
-def _findings(solution: Solution, stream: TextIO) -> None:
+def _findings(solution: Solution, systems: tuple[System, ...], stream: TextIO) -> None:
     """What is past, then the nearest of what is within, of each quantity."""
     findings = solution.findings
     if not standing(solution):
@@ -125,15 +132,17 @@ def _findings(solution: Solution, stream: TextIO) -> None:
         if f.verdict == "within" and f.quantity not in seen:
             shown.append(f)
             seen.add(f.quantity)
+    spoken = rounding.Tongue(systems)
     rows = [
-        [f.thing, f.quantity, f"{rounding.factor(f.factor)} {f.verdict}", f"{f.required:g}{' (default)' if f.default else ''}", f.case,
-         "–" if math.isnan(f.wind_from) else rounding.bearing(f.wind_from)]
+        [f.thing, f.quantity, amount(f.demand, f.unit, spoken, True, rounding.load), amount(f.capacity, f.unit, spoken, False),
+         f"{rounding.factor(f.factor)} {f.verdict}", f"{f.required:g}{' (default)' if f.default else ''}", f.case,
+         "–" if math.isnan(f.wind_from) else rounding.bearing(f.wind_from), f.governs]
         for f in shown
     ]  # fmt: skip
     of_which = ", of the cases with an equilibrium" if any(solution.unsettled) else ""
     table(
         f"Against the allowables (all that is past, and the nearest within{of_which})",
-        ["thing", "quantity", "factor", "required", "case", "wind from"],
+        ["thing", "quantity", "demand", "capacity", "factor", "required", "case", "wind from", "governs"],
         rows,
         stream,
     )

@@ -56,6 +56,8 @@ UNITS: dict[str, dict[str, str]] = {
     "from": _POINT,
     "to": _POINT,
     "rope": {"diameter": "m", "mass": "kg/m", "stiffness": "N", "strength": "N", "expansion": "1/K"},
+    "plate": {"length": "m", "width": "m", "bearing": "Pa", "along": "deg"},
+    "part": {"strength": "N"},
     "material": {"density": "kg/m3", "modulus": "Pa", "shear_modulus": "Pa", "yield": "Pa", "expansion": "1/K"},
     "setting": {"temperature": "degC"},
     "wind": {"speed": "m/s", "averaging": "s", "height": "m", "air_density": "kg/m3", "directions": "deg"},
@@ -67,8 +69,8 @@ UNITS: dict[str, dict[str, str]] = {
 }  # fmt: skip
 """Table: unit of each of its keys that is a quantity."""
 
-INLINE = {"foot", "tube", "offset", "load", "from", "to", "profile"}
-NAMED = {"rope", "material"}
+INLINE = {"foot", "plate", "tube", "offset", "load", "from", "to", "profile"}
+NAMED = {"rope", "part", "material"}
 
 
 def text(document: Document, us: bool = False) -> str:
@@ -279,6 +281,8 @@ def _moved(original: Document, bearing: Callable[[float], float], vector: Callab
         if not isinstance(value, dict):
             return value
         out = {k: walk(v) for k, v in value.items()}
+        if {"length", "width"} <= set(out):  # a plate, whose bearing is a pressure
+            return {**out, **({"along": bearing(out["along"])} if "along" in out else {})}
         for key in ("bearing", "toward", "hinge_axis", "face"):
             if key in out:
                 out[key] = bearing(out[key])

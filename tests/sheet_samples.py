@@ -263,8 +263,9 @@ def solution(made: Guyed) -> Solution:
 
     def foot_worst(spar: str, by: str | None, share_of: float) -> FootWorst:
         side = np.hypot(foot[:, 0, 0], foot[:, 0, 1]) * share_of
+        whole = np.hypot(down * share_of, side)
         none = Extreme(0.0, "setting", nan, 0.0, "setting", nan)
-        return FootWorst(spar, by, foot_extreme(down * share_of), none, foot_extreme(side), none)
+        return FootWorst(spar, by, foot_extreme(down * share_of), none, foot_extreme(side), foot_extreme(whole), none)
 
     feet = [foot_worst("mast", None, 1.0)] + ([foot_worst("boom", "mast", 0.1)] if made.boom else [])
     heels = (

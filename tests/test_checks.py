@@ -64,7 +64,7 @@ def test_measures_by_hand() -> None:
     m = extremes.measures(forces((3.0, 4.0, -50.0)))
     got = {g: float(getattr(m, g)[0, 0]) for g in extremes.GROUPS}
     expected = {"tension": 4.0, "resultant": 13.0, "horizontal": 5.0, "uplift": 12.0, "down": 50.0, "lift": 0.0, "sideways": 5.0}
-    assert got == pytest.approx({**expected, "turning": 10.0, "slide": 0.1, "lean": 0.1})
+    assert got == pytest.approx({**expected, "whole": math.sqrt(2525.0), "turning": 10.0, "slide": 0.1, "lean": 0.1})
 
 
 def test_a_lifted_base_slides_without_bound() -> None:

@@ -192,6 +192,7 @@ TABLES = {
     "CableEntry": "[[cable]]`",
     "RopeEntry": "[rope.NAME]`",
     "Material": "[material.NAME]`",
+    "Part": "[part.NAME]`",
     "Setting": "[setting]`",
     "WindEntry": "[wind]`",
     "Ice": "[ice]`",

@@ -17,7 +17,7 @@ from guys.doors import solve as door
 from guys.errors import OutputError, ScenarioError
 from guys.exchange import files
 
-FILES = ["anchors.csv", "cables.csv", "result.json", "sheet.pdf", "sheet.png", "sheet.svg"]
+FILES = ["anchors.csv", "cables.csv", "findings.csv", "result.json", "sheet.pdf", "sheet.png", "sheet.svg"]
 
 
 def stored(folder: Path, document: made.Document) -> str:

@@ -141,7 +141,8 @@ def test_loads_are_rounded_up_strengths_down_and_nothing_keeps_its_unit() -> Non
     assert "20.1 kN" in text
     still = made.solved(made.mast())
     row = section(printed(still), "Feet")[1]
-    assert row.split()[-6:] == ["none", "0", "N", "0", "N", "m"]
+    assert row.split()[-8:-6] == ["none", "0"]
+    assert row.split()[-3:] == ["0", "N", "m"]
 
 
 def test_a_base_that_is_only_lifted_has_no_negative_push() -> None:

@@ -28,6 +28,7 @@ def of(problem: Problem, state: State, found: Evaluation, forces: Forces) -> Dem
         [
             chains.demands(problem, m.tension),
             bases.sliding(problem, m.slide),
+            bases.bearing(problem, forces),
             spars.leans(problem, m.lean),
             spars.sections(problem, state, found),
             anchors.demands(problem, forces),

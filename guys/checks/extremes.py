@@ -15,13 +15,13 @@ from guys.rotation import Array
 
 TIE = 1e-9
 """Values nearer than this to the greatest, relative, are alike but for rounding: the first of them in the order of the file is named."""
-GROUPS = ("tension", "resultant", "horizontal", "uplift", "down", "lift", "sideways", "turning", "slide", "lean")
+GROUPS = ("tension", "resultant", "horizontal", "uplift", "down", "lift", "sideways", "whole", "turning", "slide", "lean")
 
 
 @dataclass(frozen=True)
 class Measures:
-    """(case, item) arrays: tension of the greater end by cable [N]; resultant, horizontal, uplift by anchor [N]; down, lift, sideways [N],
-    turning [N m], slide (sideways over down, inf where lifted) by foot; lean by spar [rad].  NaN where a case has no equilibrium."""
+    """(case, item) arrays: tension of the greater end by cable [N]; resultant, horizontal, uplift by anchor [N]; down, lift, sideways,
+    whole [N], turning [N m], slide (sideways over down, inf where lifted) by foot; lean by spar [rad].  NaN without an equilibrium."""
 
     tension: Array
     resultant: Array
@@ -30,6 +30,7 @@ class Measures:
     down: Array
     lift: Array
     sideways: Array
+    whole: Array
     turning: Array
     slide: Array
     lean: Array
@@ -52,6 +53,7 @@ def measures(forces: Forces) -> Measures:
         down=down,
         lift=np.where(np.isnan(down), np.nan, np.maximum(foot[..., 2], 0.0)),
         sideways=sideways,
+        whole=np.linalg.norm(foot, axis=-1),
         turning=np.linalg.norm(forces.foot_moment, axis=-1),
         slide=np.where(np.isnan(down), np.nan, np.where(down > 0, sideways / np.where(down > 0, down, 1.0), np.inf)),
         lean=forces.head_lean,

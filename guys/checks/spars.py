@@ -118,12 +118,16 @@ def _worst(
 
 
 def _item(spar: Spar, n: int, strength: Strength, stations: Array, default: bool) -> Item:
-    thing = f"spar {spar.name}" + (f", section {n + 1}" if len(spar.section) > 1 else "")
     places = tuple(_place(float(at)) for at in stations) if strength.why else ()
     return Item(
-        thing, strength.quantity, strength.unit, strength.why, strength.lacking, strength.source, default, if_loaded=False, modes=places,
+        section_thing(spar, n), strength.quantity, strength.unit, strength.why, strength.lacking, strength.source, default, modes=places,
         allowable="spar",
     )
+
+
+def section_thing(spar: Spar, n: int) -> str:
+    """Section `n` of a spar as findings name it; a spar of one section by itself."""
+    return f"spar {spar.name}" + (f", section {n + 1}" if len(spar.section) > 1 else "")
 
 
 @cache

@@ -34,6 +34,7 @@ def write(solution: Solution, directory: Path, units: drawing.Units, paper: draw
     contents = {
         "result.json": result.as_text(solution).encode(),
         "anchors.csv": tables.anchors(solution).encode(),
+        "findings.csv": tables.findings(solution).encode(),
         "cables.csv": tables.cables(solution).encode(),
     }
     figure = drawing.sheet(solution, paper=paper, look_toward=look, units=units)

@@ -11,6 +11,7 @@ from math import degrees, isfinite, tan
 
 import numpy as np
 
+from guys.checks.chains import usual_words
 from guys.drawing import style
 from guys.drawing.lettering import wrapped
 from guys.drawing.page import Page, Rect
@@ -18,6 +19,7 @@ from guys.drawing.reading import SETTING, slack_sectors, wind_words
 from guys.drawing.rounding import (
     ABSENT,
     INCH,
+    Say,
     Tongue,
     bearing,
     capacity,
@@ -100,12 +102,12 @@ def _which(solution: Solution, case: str, which: list[int]) -> str:
     return f"{where}: {reasons[0]}" if len(reasons) == 1 else f"{where}: {reasons[0]}, and otherwise, see result.json"
 
 
-def amount(value: float, unit: str, tongue: Tongue, demand: bool) -> str:
-    """A demand or capacity in the words of its unit."""
+def amount(value: float, unit: str, tongue: Tongue, demand: bool, force: Say = load) -> str:
+    """A demand or capacity in the words of its unit; `force` says a force that acts."""
     if not isfinite(value):
         return ABSENT
     if unit == "N":
-        return tongue.say(load if demand else capacity, value)
+        return tongue.say(force if demand else capacity, value)
     if unit == "N m":
         return tongue.say(moment, value)
     if unit == "m":
@@ -246,7 +248,16 @@ def _cables(solution: Solution, tongue: Tongue) -> list[Entry]:
     rows = [Entry("Cables", f"{'; '.join(parts)}; {model}")] if parts else []
     words = setting_words(solution, tongue)
     warm = tongue.say(temperature, asked.setting.temperature)
-    return [*rows, Entry("Set to", f"{words}; at the lower end, still air, {warm}")] if words else rows
+    return [*rows, Entry("Set to", f"{words}; at the lower end, still air, {warm}{_shares(solution)}")] if words else rows
+
+
+def _shares(solution: Solution) -> str:
+    """Initial tensions as shares of the ropes' breaking loads, beside the usual band."""
+    shares = [100 * c.initial for c in solution.worst_cables if isfinite(c.initial)]
+    if not shares:
+        return ""
+    least, most = (f"{share:.0f}" for share in (min(shares), max(shares)))
+    return f"; {least if least == most else f'{least} to {most}'} % of the rope's breaking load, usual {usual_words()}"
 
 
 def setting_words(solution: Solution, tongue: Tongue) -> str:

@@ -13,6 +13,7 @@ from typing import Any
 
 import numpy as np
 
+from guys.checks.spars import section_thing
 from guys.results import CableWorst, Extreme, Finding, FootForces, FootWorst, Solution, SparLine, Sweep
 from guys.rotation import Array
 
@@ -30,8 +31,9 @@ def as_dict(solution: Solution) -> dict[str, Any]:
         "worst": {
             "cables": [_worst_cable(c) for c in solution.worst_cables],
             "anchors": [_worst_anchor(a) for a in solution.worst_anchors],
-            "bases": [_worst_foot(f) for f in solution.worst_feet if f.carried_by is None],
+            "bases": [_worst_base(solution, f) for f in solution.worst_feet if f.carried_by is None],
             "heels": [_worst_foot(f) for f in solution.worst_feet if f.carried_by is not None],
+            "spars": [_worst_spar(solution, k) for k in range(len(solution.spars))],
         },
         "service_worst": _service_worst(solution),
         "findings": [_finding(f) for f in solution.findings],
@@ -173,7 +175,8 @@ def _extreme(key: str, extreme: Extreme) -> dict[str, Any]:
 
 def _worst_cable(c: CableWorst) -> dict[str, Any]:
     """`factor` belongs to the listed tension; `peak_factor`, which is checked, to the refined one."""
-    out = {"name": c.name, **_extreme("tension_N", c.tension), "strength_N": number(c.strength)}
+    out = {"name": c.name, **_extreme("tension_N", c.tension), "strength_N": number(c.strength), "weakest": c.weakest}
+    out["initial_over_rope_strength"] = number(c.initial)
     listed = c.strength / c.tension.value if c.tension.value > 0 else math.nan
     return {**out, "factor": number(listed), "peak_factor": number(c.factor)}
 
@@ -194,9 +197,38 @@ def _worst_foot(f: FootWorst) -> dict[str, Any]:
     if f.carried_by is not None:
         out["carried_by"] = f.carried_by
     out |= {"down": _extreme("down_N", f.down), "lift": _extreme("lift_N", f.lift), "sideways": _extreme("sideways_N", f.sideways)}
+    out["resultant"] = _extreme("resultant_N", f.whole)
     turning = _extreme("turning_Nm", f.turning)
     turning["peak_Nm"] = turning.pop("peak_N")
     return {**out, "turning": turning}
+
+
+def _worst_base(solution: Solution, f: FootWorst) -> dict[str, Any]:
+    return {**_worst_foot(f), "bearing": next(iter(_findings_of(solution, f"base of {f.spar}", "bearing")), None)}
+
+
+def _worst_spar(solution: Solution, k: int) -> dict[str, Any]:
+    """The head's greatest displacement from where it is drawn, of the listed cases, and what its sections and its lean come to."""
+    spar = solution.spars[k]
+    moved = np.linalg.norm(spar.displacement[:, -1], axis=-1)
+    worst = None if np.isnan(moved).all() else int(np.nanargmax(moved))
+    return {
+        "spar": spar.name,
+        "head_displacement_m": None if worst is None else float(moved[worst]),
+        "case": "" if worst is None else solution.case[worst],
+        "wind_from_deg": None if worst is None else bearing(float(solution.wind_from[worst])),
+        "lean": next(iter(_findings_of(solution, f"spar {spar.name}", "lean")), None),
+        "sections": [_finding(f) for f in solution.findings if f.thing in _section_things(solution, k) and f.quantity != "lean"],
+    }
+
+
+def _section_things(solution: Solution, k: int) -> set[str]:
+    spar = solution.scenario.spar[k]
+    return {section_thing(spar, n) for n in range(len(spar.section))}
+
+
+def _findings_of(solution: Solution, thing: str, quantity: str) -> list[dict[str, Any]]:
+    return [_finding(f) for f in solution.findings if (f.thing, f.quantity) == (thing, quantity)]
 
 
 def _finding(f: Finding) -> dict[str, Any]:

@@ -1,4 +1,6 @@
-"""`anchors.csv` and `cables.csv`: one row a thing and case, full digits, SI, a unit in every column head."""
+"""`findings.csv`: one row a thing judged; `anchors.csv` and `cables.csv`: one row a thing and case.
+
+Full digits, SI, a unit in every column head."""
 
 from __future__ import annotations
 
@@ -42,6 +44,20 @@ def anchors(solution: Solution) -> str:
             wind = bearing(float(solution.wind_from[k]))
             sizes = [float(pulls.horizontal[k, a]), float(pulls.resultant[k, a])]
             rows.append([worst.name, case_name, wind, east, north, up_n, *sizes, kind(case_name)])
+    return as_csv(head, rows)
+
+
+def findings(solution: Solution) -> str:
+    """Everything judged, in its governing case, the nearest to its allowable first."""
+    head = [
+        "thing", "quantity", "demand", "capacity", "unit", "factor_required", "required_is_default", "factor", "verdict", "case",
+        "wind_from_deg", "governs", "source", "why",
+    ]  # fmt: skip
+    rows: list[list[Cell]] = [
+        [f.thing, f.quantity, f.demand, f.capacity, f.unit, f.required, "yes" if f.default else "no", f.factor, f.verdict, f.case,
+         bearing(f.wind_from), f.governs, f.source, f.why]
+        for f in solution.findings
+    ]  # fmt: skip
     return as_csv(head, rows)
 
 

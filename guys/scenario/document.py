@@ -17,6 +17,7 @@ from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar, SparPoint
+from guys.scenario.parts import Part
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import Latitude, Longitude, SiteEntry
@@ -66,6 +67,8 @@ class CableEntry(Model):
     """Unstressed length at setting.temperature."""
     tight: q.Flag | None = None
     """true: just free of slack in the dead-load position."""
+    ends: list[q.Name] = []
+    """Parts in the load path: names of the catalogue, or of a [part.NAME] of the file."""
 
 
 class GuyLevel(Model):
@@ -89,6 +92,8 @@ class GuyLevel(Model):
     """Unstressed length at setting.temperature."""
     tight: q.Flag | None = None
     """true: just free of slack in the dead-load position."""
+    ends: list[q.Name] = []
+    """Parts in the load path: names of the catalogue, or of a [part.NAME] of the file."""
 
 
 class RopeEntry(Model):
@@ -148,6 +153,8 @@ class AllowablesEntry(Model):
     """Greatest head lean in service."""
     spar: q.Ratio = 1.67
     """Least strength / what acts of a spar's section; the default is the factor on yield of AISC 360, allowable strength (from memory)."""
+    bearing: q.Ratio = 1.0
+    """Least bearing / pressure under a base plate; the default takes `bearing` as an allowable pressure."""
     factored: FactoredEntry = FactoredEntry()
     """Least factors in factored cases."""
 
@@ -175,6 +182,8 @@ class ScenarioFile(Model):
     """Ropes by name."""
     material: dict[q.Name, Material] = {}
     """Materials by name."""
+    part: dict[q.Name, Part] = {}
+    """Parts in the load path of cables, by name."""
     holdfast: dict[q.Name, Holdfast] = {}
     """What holds anchors, by name."""
     setting: Setting = Setting()

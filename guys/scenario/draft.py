@@ -30,6 +30,7 @@ from guys.scenario.ice import Ice
 from guys.scenario.keys import Finding, Key, nearest
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Material, Setting, Spar
+from guys.scenario.parts import Part
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
@@ -53,6 +54,7 @@ class Draft:
     cable: tuple[CableEntry | None, ...]
     rope: dict[str, RopeEntry | None]
     material: dict[str, Material | None]
+    part: dict[str, Part | None]
     holdfast: dict[str, Holdfast | None]
     setting: Setting | None
     wind: WindEntry | None

@@ -25,6 +25,9 @@ def lines(scenario: Scenario) -> Iterator[str]:
         yield f'anchor "{anchor.name}": bearing {bearing:.4g} deg, radius {radius}, level {level}'
     for cable, ends in zip(scenario.cable, drawn.scenario_cable_ends(scenario), strict=True):
         yield f'cable "{cable.name}": {_cable(cable, *ends)}'
+    for name, part in scenario.part.items():
+        share = part.strength is None
+        yield f'part "{name}": ' + (f"{part.efficiency:g} of the rope's strength" if share else units.both(part.strength or 0.0, "force"))
     for name, rope in scenario.rope.items():
         yield f'rope "{name}": {_rope(rope)}'
     if scenario.wind is not None:

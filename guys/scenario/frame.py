@@ -76,6 +76,8 @@ def beyond(spar: Spar, at: float, key: Key) -> Iterator[Finding]:
 def _heel(spar: Spar, key: Key, spars: dict[str, tuple[int, Spar]]) -> Iterator[Finding]:
     if isinstance(spar.foot, HeelFoot) and spar.foot.spar in spars:
         yield from beyond(spars[spar.foot.spar][1], spar.foot.at, (*key, "foot", "at"))
+        if spar.plate is not None:
+            yield Finding((*key, "plate"), "a heel has no plate on the ground; leave plate out")
         if spar.friction is not None:
             yield Finding((*key, "friction"), "a heel does not slide on the ground; leave friction out")
 

@@ -20,6 +20,8 @@ from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lattice import Lattice
 from guys.scenario.lost import Lost
+from guys.scenario.parts import Part
+from guys.scenario.plate import Plate
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
@@ -217,6 +219,8 @@ class Spar(Model):
     """true: does not bend; sections then need no stiffness."""
     friction: q.Factor | None = None
     """Coefficient between base plate and ground, for the sliding check."""
+    plate: Plate | None = None
+    """Plate under its base, for the pressure on the ground."""
     section: Annotated[tuple[Section, ...], Field(min_length=1)]
     """Sections from the foot up."""
     fitting: tuple[Fitting, ...] = ()
@@ -275,6 +279,8 @@ class Cable(Model):
     """Unstressed length at the setting temperature [m]."""
     tight: bool = False
     """Just free of slack in the dead-load position."""
+    ends: tuple[str, ...] = ()
+    """Parts in its load path."""
     level: str | None = None
     """The guy level it came from, None for a single cable."""
     key: tuple[str | int, ...] = ()
@@ -402,6 +408,7 @@ class Allowables(Model):
     sliding: float = 1.5
     lean: float = math.radians(1.0)
     spar: float = 1.67
+    bearing: float = 1.0
     factored: Mapping[str, float] = {}
     defaulted: frozenset[str] = frozenset()
 
@@ -422,6 +429,7 @@ class Scenario(Model):
     """A whole scenario.
 
     cable : those of guy levels in file order, then the single ones; material : the built-in ones and the file's own
+    part : the file's own and those of the catalogue that are used
     """
 
     format: int = 1
@@ -434,6 +442,7 @@ class Scenario(Model):
     cable: tuple[Cable, ...] = ()
     rope: dict[str, Rope] = {}
     material: dict[str, Material] = {}
+    part: dict[str, Part] = {}
     holdfast: dict[str, Holdfast] = {}
     setting: Setting = Setting()
     wind: Wind | None = None

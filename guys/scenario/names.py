@@ -9,6 +9,7 @@ from collections.abc import Collection, Iterator, Mapping, Sequence
 from typing import Any
 
 from guys.catalogue import ropes as stock
+from guys.catalogue.parts import parts as catalogue
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items, nearest
 from guys.scenario.model import ASIDE
@@ -39,6 +40,7 @@ def findings(draft: Draft) -> Iterator[Finding]:
     yield from _taken_away(document, cables)
     yield from _holdfasts(document)
     yield from _combined(draft, list(cables or ()))
+    yield from _parts(document)
 
 
 def _text(table: Mapping[str, Any], key: str) -> str | None:
@@ -158,6 +160,19 @@ def _materials(document: Mapping[str, Any]) -> Iterator[Finding]:
     for index, spar in items(document, "spar"):
         for place, section in items(spar, "section"):
             yield from _unknown(("spar", index, "section", place, "material"), "material", section.get("material"), known)
+
+
+def _parts(document: Mapping[str, Any]) -> Iterator[Finding]:
+    own = document.get("part")
+    if own is not None and not isinstance(own, dict):
+        return
+    known = {**(own or {}), **catalogue()}
+    for kind in ("guy_level", "cable"):
+        for index, item in items(document, kind):
+            ends = item.get("ends")
+            for place, name in enumerate(ends if isinstance(ends, list) else ()):
+                remedy = "; give [part.NAME], or a name of the catalogue (guys list parts)"
+                yield from _unknown((kind, index, "ends", place), "part", name, known, remedy)
 
 
 def _holdfasts(document: Mapping[str, Any]) -> Iterator[Finding]:

@@ -10,7 +10,7 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from guys import lattice, units
+from guys import lattice, tables, units
 from guys.catalogue import ropes as stock
 from guys.catalogue import tubes
 from guys.constants import ZERO_CELSIUS
@@ -37,6 +37,7 @@ class Bounds:
             yield f"{what}: {echo} is {side} than {than}; is the unit right?"
 
 
+GREATEST_PRESUMED = max(units.to_si(float(row["bearing_psf"]), "psf") for row in tables.rows("bearing"))
 _ZERO = float(ZERO_CELSIUS)
 SPAR_LENGTH = Bounds("length", 0.5, 400.0)
 SPAR_MASS = Bounds("mass per length", 0.2, 3000.0)
@@ -47,6 +48,10 @@ MEMBER = Bounds("length", 0.004, 0.3, ("mm", "in"))
 LACED = math.radians(25.0), math.radians(70.0)
 """Rise of diagonals that is usual, from the level."""
 WIDTH = Bounds("length", 0.01, 5.0, ("mm", "in"))
+PART_STRENGTH = Bounds("force", 500.0, 20e6)
+PLATE = Bounds("length", 0.05, 10.0)
+BEARING = Bounds("pressure", 10e3, GREATEST_PRESUMED, ("kPa", "psf"))
+"""Greatest: that of crystalline bedrock in the table of presumptive pressures."""
 ROPE_DIAMETER = Bounds("length", 0.001, 0.15, ("mm", "in"))
 ROPE_DENSITY = Bounds("density", 300.0, 9000.0)
 ROPE_MODULUS = Bounds("pressure", 0.2e9, 220e9, ("GPa", "ksi"))
@@ -81,13 +86,14 @@ def warnings(scenario: Scenario) -> Iterator[str]:
     yield from _anchors(scenario)
     yield from _cables(scenario)
     yield from _ropes(scenario)
+    yield from _parts(scenario)
     for name, material in scenario.material.items():
         if name not in resolve.built_in_materials() or material != resolve.built_in_materials()[name]:
             yield from _material(f"material {name}", material)
     yield from held.warnings(scenario)
     yield from _weather(scenario)
     yield from _cold_sections(scenario)
-    for name in ("cable", "anchor", "sliding", "spar"):
+    for name in ("cable", "anchor", "sliding", "spar", "bearing"):
         if getattr(scenario.allowables, name) < 1.0:
             yield f"allowables.{name}: {getattr(scenario.allowables, name):g} is less than 1, which lets it fail and calls it within"
     if scenario.site is not None:
@@ -115,6 +121,10 @@ def _spar(spar: Spar, materials: dict[str, Material]) -> Iterator[str]:
         yield from SPAR_MASS.warn(f"{what}{total}, mass per length", weight / spar.length)
     if not isinstance(spar.foot, HeelFoot) and math.cos(spar.lean) < math.cos(STEEP):
         yield f"{what}, lean: {units.show(spar.lean, 'deg')} from the vertical is nearly level, or head down"
+    if spar.plate is not None:
+        yield from PLATE.warn(f"{what}, plate, length", spar.plate.length)
+        yield from PLATE.warn(f"{what}, plate, width", spar.plate.width)
+        yield from BEARING.warn(f"{what}, plate, bearing", spar.plate.bearing)
     for number, section in enumerate(spar.section, 1):
         here = f"{what}, section {number}"
         if section.tube is not None:
@@ -185,6 +195,14 @@ def _pull(what: str, cable: Cable, scenario: Scenario) -> Iterator[str]:
     if cable.tension is not None and strength is not None and cable.tension > 0.4 * strength:
         share = f'{100 * cable.tension / strength:.0f} % of the strength of rope "{cable.rope}"'
         yield f"{what}, tension: {units.both(cable.tension, 'force')} is {share}"
+
+
+def _parts(scenario: Scenario) -> Iterator[str]:
+    named = {end for cable in scenario.cable for end in cable.ends}
+    for name, part in scenario.part.items():
+        if name not in named:
+            yield f'part "{name}": no cable has it in its ends'
+        yield from PART_STRENGTH.warn(f'part "{name}", strength', part.strength)
 
 
 def _ropes(scenario: Scenario) -> Iterator[str]:

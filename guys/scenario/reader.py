@@ -5,13 +5,13 @@ from __future__ import annotations
 import hashlib
 import re
 import tomllib
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Mapping
 from contextlib import suppress
 from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import combinations, drawn, frame, held, ice, names, place, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import combinations, drawn, frame, held, ice, names, parts, place, plausible, resolve, rigging, unavailable, weather
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
@@ -167,6 +167,11 @@ def _there(table: _Table | None) -> _Table:
     return table
 
 
+def _given(tables: Mapping[str, _Table | None]) -> dict[str, _Table]:
+    """Tables by name, none of which is missing once a file has no faults."""
+    return {name: entry for name, entry in tables.items() if entry is not None}
+
+
 def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -> Scenario:
     spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
     foot = drawn.foot(spars, next(iter(spars)))
@@ -191,6 +196,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         cable=cables,
         rope={**ropes, **resolve.stock_ropes(cables, ropes)},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
+        part=parts.used([end for each in cables for end in each.ends], _given(tables.part)),
         holdfast={name: entry for name, entry in tables.holdfast.items() if entry is not None},
         setting=setting,
         wind=wind,

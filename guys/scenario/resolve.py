@@ -77,6 +77,7 @@ def guys_of(index: int, entry: GuyLevel, at_text: str) -> Iterator[Cable]:
             tension=entry.tension,
             length=entry.length,
             tight=bool(entry.tight),
+            ends=tuple(entry.ends),
             level=level,
             key=("guy_level", index),
         )
@@ -92,6 +93,7 @@ def cable(index: int, entry: CableEntry) -> Cable:
         tension=entry.tension,
         length=entry.length,
         tight=bool(entry.tight),
+        ends=tuple(entry.ends),
         key=("cable", index),
     )
 

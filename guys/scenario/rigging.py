@@ -11,6 +11,7 @@ from guys.scenario.document import AnchorEntry, CableEntry, GuyLevel
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
 from guys.scenario.model import AnchorPoint, HeelFoot, Spar, SparPoint
+from guys.scenario.parts import Part
 
 SAME_PLACE = 1e-3
 """Two points nearer than this [m] are one place: a millimetre, below what anyone sets out."""
@@ -27,6 +28,9 @@ def findings(draft: Draft) -> Iterator[Finding]:
         for place, point in _points(entry):
             if point.spar in spars:
                 yield from frame.beyond(spars[point.spar], point.at, (*key, *place, "at"))
+    for name, part in draft.part.items():
+        if part is not None:
+            yield from _part(part, ("part", name))
     yield from _plumb(draft)
     if not frame.loops(draft):
         yield from _runs(draft, spars)
@@ -83,6 +87,14 @@ def _tension(entry: GuyLevel | CableEntry, key: Key) -> Iterator[Finding]:
     elif len(given) != 1:
         got = f"has {' and '.join(given)}" if given else "has none of them"
         yield Finding(key, f"{got}; give one of tension, length, tight = true")
+
+
+def _part(part: Part, key: Key) -> Iterator[Finding]:
+    given = [name for name in ("strength", "efficiency") if getattr(part, name) is not None]
+    if len(given) != 1:
+        got = "has strength and efficiency" if given else "has neither"
+        causes = tuple((*key, name) for name in ("strength", "efficiency"))
+        yield Finding(key, f"{got}; give one of strength (its own) and efficiency (the share of the rope's that it leaves)", causes)
 
 
 def _plumb(draft: Draft) -> Iterator[Finding]:

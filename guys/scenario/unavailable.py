@@ -11,13 +11,9 @@ NOT_AVAILABLE = "not available in this version"
 
 _EVERY = "*"
 _PATTERNS: tuple[tuple[tuple[str, ...], str], ...] = (
-    (("part",), ""),
     (("limit",), ""),
     (("raise",), ""),
     (("layout",), ""),
-    (("spar", _EVERY, "plate"), ""),
-    (("guy_level", _EVERY, "ends"), ""),
-    (("cable", _EVERY, "ends"), ""),
 )
 
 

@@ -12,7 +12,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from guys import recovery, stability
-from guys.checks import alarms, allowables, demands, extremes, plan, resolve
+from guys.checks import alarms, allowables, chains, demands, extremes, plan, resolve
 from guys.checks.anchors import unchecked
 from guys.loads import CaseLine, lines_of
 from guys.loads.drag import words
@@ -30,7 +30,8 @@ from guys.results import (
     Sweep,
     Worst,
 )
-from guys.scenario import Scenario
+from guys.rotation import Array
+from guys.scenario import Scenario, parts
 from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
 from guys.setting import Setting, find
 from guys.structure import Structure, build
@@ -127,7 +128,8 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
     structure = setting.problem.structure
     scenario = structure.scenario
     worst = _worst(listed, swept)
-    greatest = _greatest(structure, worst, swept)
+    initial = chains.initial(scenario, listed.forces.tension_anchor[0])
+    greatest = _greatest(structure, worst, swept, initial)
     cables, feet = greatest.cables, greatest.feet
     hung = _hung(structure, listed)
     rules = plan.findings(scenario.site, hung) if setting.stands else ()
@@ -158,7 +160,7 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
-        notes=(*scenario.notes, *words.notes(structure), *sorted({n for n in listed.note if n})),
+        notes=(*scenario.notes, *chains.notes(scenario), *words.notes(structure), *sorted({n for n in listed.note if n})),
         not_checked=(*unchecked(scenario), *alarms.NOT_CHECKED),
         warnings=(
             *alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
@@ -167,19 +169,19 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         cautions=alarms.CAUTIONS,
         unsettled=tuple((listed.code != stability.STABLE) & ~listed.spins),
         failed=bool((listed.code == stability.FAILED).any()),
-        crew=_greatest(structure, worst.of_service(), swept) if alarms.has_crew_loads_apart(scenario) else None,
+        crew=_greatest(structure, worst.of_service(), swept, initial) if alarms.has_crew_loads_apart(scenario) else None,
     )
 
 
-def _greatest(structure: Structure, worst: _Worst, swept: Batch | None) -> Worst:
-    """The greatest loads on everything."""
+def _greatest(structure: Structure, worst: _Worst, swept: Batch | None, initial: Array) -> Worst:
+    """The greatest loads on everything; initial : (cable,) initial tension over the rope's breaking load."""
     scenario = structure.scenario
     anchors = (
         AnchorWorst(a.name, worst.of("resultant", k), worst.of("horizontal", k), worst.of("uplift", k))
         for k, a in enumerate(scenario.anchor)
     )
     return Worst(
-        tuple(_cable_worst(structure, worst, swept, k) for k in range(len(scenario.cable))),
+        tuple(_cable_worst(structure, worst, swept, k, float(share)) for k, share in enumerate(initial)),
         tuple(anchors),
         tuple(_foot_worst(scenario, worst, k) for k in range(len(scenario.spar))),
     )
@@ -208,20 +210,23 @@ def _gaps(swept: Batch | None) -> list[tuple[str, float, str | None]]:
     return [(swept.lines[k].name, swept.lines[k].wind_from, swept.reason[k]) for k in bad]
 
 
-def _cable_worst(structure: Structure, worst: _Worst, swept: Batch | None, k: int) -> CableWorst:
+def _cable_worst(structure: Structure, worst: _Worst, swept: Batch | None, k: int, initial: float) -> CableWorst:
     tension = worst.of("tension", k)
     strength = float(structure.cables.strength[k])
     factor = math.inf if tension.peak == 0 and not math.isnan(strength) else strength / tension.peak if tension.peak != 0 else math.nan
     slack: tuple[tuple[str, float], ...] = ()
     if swept is not None:
         slack = tuple((swept.lines[c].name, swept.lines[c].wind_from) for c in np.flatnonzero(swept.forces.slack[:, k]))
-    return CableWorst(structure.scenario.cable[k].name, tension, strength, factor, slack)
+    cable = structure.scenario.cable[k]
+    least = parts.weakest(chains.links_of(structure.scenario, cable)) if cable.ends and not math.isnan(strength) else None
+    return CableWorst(cable.name, tension, strength, factor, slack, least.words if least is not None else "", initial)
 
 
 def _foot_worst(scenario: Scenario, worst: _Worst, k: int) -> FootWorst:
     spar = scenario.spar[k]
     carried_by = spar.foot.spar if isinstance(spar.foot, HeelFoot) else None
-    return FootWorst(spar.name, carried_by, worst.of("down", k), worst.of("lift", k), worst.of("sideways", k), worst.of("turning", k))
+    down, lift, sideways, whole, turning = (worst.of(group, k) for group in ("down", "lift", "sideways", "whole", "turning"))
+    return FootWorst(spar.name, carried_by, down, lift, sideways, whole, turning)
 
 
 def _cable_forces(structure: Structure, listed: Batch) -> CableForces:
