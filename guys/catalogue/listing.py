@@ -1,7 +1,7 @@
 """What can be listed, kind by kind: columns with their units and rows in SI.
 
 A kind is a function that gives a `Listing`, named in `KINDS`; how it is printed is the door's business.  Every listing ends with how its
-values came here and their source.
+values came here, empty where there are none, and their source.
 """
 
 from __future__ import annotations
@@ -11,6 +11,8 @@ from dataclasses import dataclass
 
 from guys import tables, units
 from guys.catalogue import parts, ropes, tubes
+from guys.catalogue.known import FROM_MEMORY, READ
+from guys.scenario import holding
 
 Cell = str | float | None
 
@@ -136,7 +138,73 @@ def _materials() -> Listing:
     return Listing("Materials of spars", note, columns, rows, tuple(r["known"] for r in found), tuple(r["source"] for r in found))
 
 
-KINDS: Mapping[str, Callable[[], Listing]] = {"ropes": _ropes, "tubes": _tubes, "parts": _parts, "materials": _materials}
+_FIGURES = {
+    "block": ("friction",),
+    "deadman": ("deadman", "holdfast_soils"),
+    "picket": ("pickets", "holdfast_soils"),
+    "screw": ("breakout", "torque_factors"),
+}
+"""Tables a kind of holdfast takes its figures from, or helps to choose them; the others are worked out from the user's alone."""
+
+
+def _holdfasts() -> Listing:
+    columns = (_NAME, Column("what", "what"), Column("needs", "needs"), Column("takes too", "takes"))
+    rows, known, source = [], [], []
+    for kind, model in holding.MODELS.items():
+        fields = {field.alias or name: field for name, field in model.model_fields.items() if name not in ("kind", "source")}
+        needed = [key for key, field in fields.items() if field.is_required() or (field.description or "").endswith("needed.")]
+        what = (model.__doc__ or "").split(".")[0].lower()
+        rows.append((kind, what, ", ".join(needed), ", ".join(key for key in fields if key not in needed)))
+        figures = [row["source"] for table in _FIGURES.get(kind, ()) for row in tables.rows(table) if row.get("kind", kind) == kind]
+        said = [text for text in dict.fromkeys(figures) if not text.startswith("the same")]
+        known.append((f"{READ}; some {FROM_MEMORY}" if any(FROM_MEMORY in text for text in figures) else READ) if figures else "")
+        source.append("; ".join(said) or "worked out from the dimensions and values given")
+    note = 'Written as [holdfast.NAME] with kind = "block" and so on, and named by an anchor: holdfast = "NAME".'
+    return Listing("Kinds of holdfast", note, columns, tuple(rows), tuple(known), tuple(source))
+
+
+def _profiles() -> Listing:
+    columns = (
+        Column("profile", "name"),
+        Column("terrain", "terrain"),
+        Column("z0", "z0_m", ("m", "ft")),
+        Column("constant below", "zmin_m", ("m", "ft")),
+        Column("alpha", "alpha"),
+        Column("gradient height", "gradient_height_m", ("m", "ft")),
+    )
+    plain = [
+        ('"uniform"', "the same speed at every height", None, None, None, None),
+        ("{ power = 0.14 }", "speed rising as a power of height, the exponent given", None, None, None, None),
+    ]
+    exposures = {"B": "built-up or wooded", "C": "open", "D": "along open water"}
+    asce, european = tables.rows("terrain_asce7"), tables.rows("terrain_en1991")
+    rows = [
+        *plain,
+        *(
+            (f'{{ asce7 = "{r["exposure"]}", edition = "{r["edition"]}" }}', exposures[r["exposure"]], None, float(r["zmin"]),
+             float(r["alpha"]), float(r["zg"]))
+            for r in asce
+        ),
+        *(
+            (f'{{ en1991 = "{r["category"]}"' + ("" if r["annex"] == "recommended" else f', annex = "{r["annex"]}"') + " }", r["terrain"],
+             float(r["z0"]), float(r["zmin"]), None, None)
+            for r in european
+        ),
+    ]  # fmt: skip
+    source = ["the speed given"] * len(plain) + [r["source"] for r in (*asce, *european)]
+    known = [READ + (f"; some {FROM_MEMORY}" if FROM_MEMORY in text else "") for text in source[len(plain) :]]
+    note = "Written as profile = ... in [wind]. Speeds are converted to the averaging time a standard expects, and the conversion is told."
+    return Listing("Wind profiles", note, columns, tuple(rows), ("", "", *known), tuple(source))
+
+
+KINDS: Mapping[str, Callable[[], Listing]] = {
+    "ropes": _ropes,
+    "tubes": _tubes,
+    "parts": _parts,
+    "materials": _materials,
+    "holdfasts": _holdfasts,
+    "profiles": _profiles,
+}
 """What can be listed, by the word that asks for it."""
 
 

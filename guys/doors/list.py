@@ -9,19 +9,10 @@ from typing import TextIO
 from guys import terminal
 from guys.catalogue.listing import KINDS, Column, Listing, shown
 from guys.drawing.rounding import Units
-from guys.errors import UnavailableError
-
-PLANNED = ("holdfasts", "profiles")
-"""Kinds this version knows by name and does not list."""
 
 
 def list_command(kind: str, words: tuple[str, ...], as_json: bool, units: Units) -> int:
-    """Print one kind, those entries alone that hold every word.
-
-    Raises UnavailableError for a kind that is planned and not there.
-    """
-    if kind not in KINDS:
-        raise UnavailableError(f"'list {kind}'")
+    """Print one kind, those entries alone that hold every word."""
     found = KINDS[kind]().holding(words)
     if as_json:
         _as_json(kind, found, sys.stdout)
