@@ -116,6 +116,39 @@ def test_stress_of_a_guyed_mast_is_that_of_its_section_forces() -> None:
     assert np.nanmax(normal) <= f.demand <= 1.02 * np.nanmax(normal)
 
 
+def lattice(bracing: str, sides: int = 3, legs: str = "33.7 x 2.6 mm", material: str = "steel") -> Solution:
+    made_of = {"face": "0.4 m", "legs": legs, "lacing": "10 mm", "panel": "0.5 m", "sides": sides, "bracing": bracing}
+    document = column(lattice=made_of, material=material, drag=1.0)
+    del document["spar"][0]["section"][0]["tube"]
+    return made.solved(document)
+
+
+@pytest.mark.parametrize(("bracing", "panels", "diagonals"), [("zigzag", 2, 1), ("horizontals", 1, 1), ("cross", 1, 2)])
+def test_a_lattice_is_judged_by_its_bars(bracing: str, panels: int, diagonals: int) -> None:
+    """The same column, by hand: at the foot N, M of the pull and the weight's arm, V, T; legs 346 mm off the face of the others."""
+    s = lattice(bracing)
+    pressed, pulled, lacing = (finding(s, "spar mast", q) for q in ("leg compression", "leg tension", "lacing force"))
+    thrust = -s.bases.force[0, 0, 2]
+    bending = math.hypot(300.0 * 3.0, 100.0 * G * 0.2)
+    lever = 0.4 * math.sin(math.radians(60))
+    assert pressed.demand == pytest.approx(bending / lever + thrust / 3, rel=1e-9)
+    assert pulled.demand == pytest.approx(bending / lever - thrust / 3, rel=1e-9)
+    area, second = math.pi * 0.0311 * 0.0026, math.pi / 64 * (0.0337**4 - 0.0285**4)
+    assert pulled.capacity == pytest.approx(area * 235e6)
+    slender = math.sqrt(area * 235e6 / (math.pi**2 * 210e9 * second)) * 0.5 * panels
+    phi = 0.5 * (1 + 0.49 * (slender - 0.2) + slender**2)
+    assert pressed.capacity == pytest.approx(area * 235e6 / (phi + math.sqrt(phi**2 - slender**2)))
+    face = 2 / 3 * 300.0 + 60.0 / (3 * 0.4 / (2 * math.sqrt(3)))
+    assert lacing.demand == pytest.approx(face * math.hypot(0.4, 0.5) / 0.4 / diagonals, rel=1e-9)
+    assert {f.governs for f in (pressed, pulled)} == {"0 m (0 ft) from the foot"}
+
+
+def test_a_lattice_that_cannot_be_judged_says_so() -> None:
+    assert finding(lattice("cross", material="gfrp"), "spar mast").verdict == "not judged"
+    thin = finding(lattice("cross", 4, "60 x 0.5 mm"), "spar mast")
+    assert (thin.verdict, thin.why) == ("not judged", "the wall of its members buckles before it yields")
+
+
 def test_capacities_come_together() -> None:
     with pytest.raises(ScenarioError) as caught:
         parse_scenario(made.text(column(capacity_shear=1e3)))

@@ -6,6 +6,7 @@ every case, by what its file gives:
 
     capacities given outright    1 over |N|/N_c + |M|/M_c, or |V|/V_c + |T|/T_c (common practice: linear interaction)
     tube of a material           yield over von Mises stress; not where the wall buckles before it yields
+    lattice of a material        legs and diagonals as pinned bars: buckling load over compression, yield over tension
 
 What has neither, such as a tube of a material that breaks without yielding, is not judged.
 """
@@ -21,11 +22,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import recovery, tables, units
+from guys.catalogue import tubes
 from guys.checks import stress
 from guys.checks.items import Demands, Item, group
 from guys.equilibrium import Evaluation, Problem, State
+from guys.lattice import DIAGONALS
 from guys.loads import CaseLine
 from guys.rotation import Array
+from guys.scenario.lattice import Bar, Lattice
 from guys.scenario.model import Material, Section, Spar
 from guys.structure import Structure
 
@@ -77,13 +81,13 @@ def sections(problem: Problem, state: State, found: Evaluation) -> Demands:
     """Strength against what acts, one item a section of a spar, at its worst station in every case."""
     structure = problem.structure
     scenario = structure.scenario
-    strengths = [[strength_of(section, scenario.material) for section in spar.section] for spar in scenario.spar]
-    judged = [k for k, some in enumerate(strengths) if not all(math.isnan(s.capacity) for s in some)]
+    strengths = [[strengths_of(section, scenario.material) for section in spar.section] for spar in scenario.spar]
+    judged = [k for k, some in enumerate(strengths) if not all(math.isnan(s.capacity) for each in some for s in each)]
     acting = dict(zip(judged, recovery.sections(problem, state, found, judged), strict=True))
     items, capacity, demand, mode = [], [], [], []
     for k, spar in enumerate(scenario.spar):
         station, which = _stations(structure, k)
-        for n, strength in enumerate(strengths[k]):
+        for n, strength in ((n, strength) for n, each in enumerate(strengths[k]) for strength in each):
             mine = np.flatnonzero(which == n)
             worst, at = _worst(strength, acting.get(k), mine, problem.cases)
             items.append(_item(spar, n, strength, station[mine], "spar" in scenario.allowables.defaulted))
@@ -135,8 +139,59 @@ def _place(station: float) -> str:
     return f"{units.both(station, 'length')} from the foot"
 
 
-def strength_of(section: Section, materials: Mapping[str, Material]) -> Strength:
-    """What a section is judged by."""
+def strengths_of(section: Section, materials: Mapping[str, Material]) -> tuple[Strength, ...]:
+    """Everything a section is judged by."""
+    outright = section.capacity_axial is not None
+    if outright or section.lattice is None or section.material is None:
+        return (_strength_of(section, materials),)
+    material = materials[section.material]
+    if material.yield_ is None:
+        return (_not_judged(_no_yield(section.material)),)
+    return _lattice(section.lattice, material, _source_of_yield(section.material, material))
+
+
+def _lattice(made: Lattice, material: Material, source: str) -> tuple[Strength, ...]:
+    """Legs pressed and pulled, and diagonals, which bear their force either way.
+
+    A leg is held both ways by its faces at every panel point, but only at every second one of a zigzag without horizontals.
+    """
+    f, E, n, b, p = material.yield_ or math.nan, material.modulus, made.sides, made.face, made.panel
+    if max(bar.diameter / bar.wall for bar in (made.legs, made.lacing)) > stress.thinnest(f, E):
+        return (_not_judged("the wall of its members buckles before it yields"),)
+    apart = 2 * p if made.bracing == "zigzag" else p
+    pressed, pulled = _bar(made.legs, apart, material), f * tubes.area(made.legs.diameter, made.legs.wall)
+    diagonal, many = _bar(made.lacing, math.hypot(b, p), material), DIAGONALS[made.bracing]
+    curve = "EN 1993-1-1 6.3.1.2, curve c, from memory; yield: " + source
+    held = f"pinned at both ends, {units.both(apart, 'length')} long, worst orientation; {SECOND_ORDER}"
+    return (
+        Strength(
+            "leg compression", "N", pressed, lambda a: stress.leg_forces(n, b, a.axial, a.bending)[0],
+            f"buckling load of a leg over its compression; {held}", source=curve,
+        ),
+        Strength(
+            "leg tension", "N", pulled, lambda a: stress.leg_forces(n, b, a.axial, a.bending)[1],
+            f"yield of a leg over its tension, worst orientation, joints not judged; {SECOND_ORDER}", source=source,
+        ),
+        Strength(
+            "lacing force", "N", diagonal, lambda a: stress.diagonal_force(n, b, p, a.shear, a.torsion) / many,
+            "buckling load of a diagonal, pinned at its ends, over its force from shear and torsion; welds and joints not judged",
+            source=curve,
+        ),
+    )  # fmt: skip
+
+
+def _bar(bar: Bar, length: float, material: Material) -> float:
+    """Buckling load of a bar [N]."""
+    area, second = tubes.area(bar.diameter, bar.wall), tubes.second_moment(bar.diameter, bar.wall)
+    return stress.strut(area, second, length, material.modulus, material.yield_ or math.nan)
+
+
+def _no_yield(material: str) -> str:
+    return f"{material} has no yield stress; give capacity_axial and capacity_bending of the section"
+
+
+def _strength_of(section: Section, materials: Mapping[str, Material]) -> Strength:
+    """What a section other than a lattice is judged by."""
     if section.capacity_axial is not None and section.capacity_bending is not None:
         return _outright(section.capacity_axial, section.capacity_bending, section)
     if section.lattice is not None:
@@ -145,7 +200,7 @@ def strength_of(section: Section, materials: Mapping[str, Material]) -> Strength
         return _not_judged("given outright without capacity_axial and capacity_bending")
     material = materials[section.material]
     if material.yield_ is None:
-        return _not_judged(f"{section.material} has no yield stress; give capacity_axial and capacity_bending of the section")
+        return _not_judged(_no_yield(section.material))
     diameter, wall = section.tube.diameter, section.tube.wall
     if too_thin(section, materials):
         limit = stress.thinnest(material.yield_, material.modulus)
