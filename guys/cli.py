@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("plumb", "compare", "search", "limit", "raise", "field", "record")
+UNAVAILABLE = ("plumb", "compare", "search", "raise", "field", "record")
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
@@ -181,6 +181,19 @@ def matters(file: str, out: str | None, as_json: bool, units: str) -> int:
     from guys.doors.matters import matters_command
 
     return matters_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("limit.json, limit.csv and the polar figure")
+def limit(file: str, out: str | None, as_json: bool, units: str) -> int:
+    """Find the wind from every direction at which something passes its allowable or equilibrium is lost.
+
+    Exit status: 0 no limit is below the scenario's own wind; 1 an internal fault; 2 the input is wrong; 3 something passes its allowable
+    below the scenario's wind; 4 equilibrium is lost below it. With 3 and 4 every file is still written.
+    """
+    from guys.doors.limit import limit_command
+
+    return limit_command(file, out, as_json, units)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -14,6 +14,7 @@ greater; the reference force is the largest of total weight, total wind, greates
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -42,6 +43,11 @@ class State:
     def take(self, rows: Index) -> State:
         """The cases `rows`."""
         return State(self.u[rows], self.psi[rows], self.tension[rows], self.axial[rows])
+
+    @staticmethod
+    def join(parts: Sequence[State]) -> State:
+        """States one after another."""
+        return State(*(np.concatenate([getattr(p, n) for p in parts]) for n in ("u", "psi", "tension", "axial")))
 
     def put(self, rows: Index, other: State) -> None:
         """Write the cases of `other` at `rows`."""

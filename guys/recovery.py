@@ -70,7 +70,7 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
         on_anchor=at_a,
         on_spar=-at_b,
         length=np.broadcast_to(problem.length, present.shape).copy(),
-        slack=_slack(problem, state, found) & present,
+        slack=(looseness(problem, state, found) > 0) & present,
         present=present,
         pull=-found.structural[:, s.anchor, :3],
         foot_force=force,
@@ -79,11 +79,16 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
     )
 
 
-def _slack(problem: Problem, state: State, found: Evaluation) -> NDArray[np.bool_]:
+def looseness(problem: Problem, state: State, found: Evaluation) -> Array:
+    """(case, cable) above zero where a cable is slack; continuous in the state, so that the wind at which it drops can be found.
+
+    A catenary by what its tension at mid-length lacks, of its own load; a weightless cable by its length over the chord.
+    """
     _, _, chord = problem.chords(state)
-    longer = problem.natural > np.linalg.norm(chord, axis=-1) * (1 + cable.SLACK_BELOW)
+    longer = problem.natural / np.linalg.norm(chord, axis=-1) - (1 + cable.SLACK_BELOW)
     own = np.linalg.norm(problem.cable_total, axis=-1)
-    return np.asarray(np.where(own > 0, np.linalg.norm(found.hanging.tension, axis=-1) < (1 - SLACK_HANGING) * own, longer))
+    lacking = (1 - SLACK_HANGING) - np.linalg.norm(found.hanging.tension, axis=-1) / np.where(own > 0, own, 1.0)
+    return np.asarray(np.where(own > 0, lacking, longer))
 
 
 def _feet(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:

@@ -157,8 +157,11 @@ def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_s
     return judged
 
 
-def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judged:
-    """Solve from `start`, classify, and push what is unstable; cases that turn over are NONE, those not found otherwise FAILED."""
+def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS, pushed: NDArray[np.bool_] | None = None) -> Judged:
+    """Solve from `start`, classify, and push what is unstable; cases that turn over are NONE, those not found otherwise FAILED.
+
+    pushed : (case,) which to push if unstable; None: all
+    """
     out = solver.solve(problem, start, turned_over, rounds)
     code = np.full(problem.cases, NONE)
     found = np.flatnonzero(out.converged & ~out.stopped)
@@ -168,7 +171,7 @@ def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judge
     stuck = ~out.converged & ~out.stopped
     code[stuck] = FAILED
     judged = Judged(out.state, code, out.error, out.rounds, nowhere, no, stuck, no.copy(), {}, {})
-    _push(problem, judged, np.flatnonzero(code == UNSTABLE))
+    _push(problem, judged, np.flatnonzero((code == UNSTABLE) & (True if pushed is None else pushed)))
     return judged
 
 
@@ -256,13 +259,13 @@ def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) 
     path.drifts[ended[drifts]] = True
     still = replace(part, loads=start.take(ended))
     least, at_start = (
-        np.array([_least_cost(p.take(np.array([k])), states.take(ended[k : k + 1])) for k in range(len(ended))])
+        np.array([least_cost(p.take(np.array([k])), states.take(ended[k : k + 1])) for k in range(len(ended))])
         for p, states in ((there, path.state), (still, setting))
     )
     return np.asarray(ended[(least > SOFT * at_start) & ~drifts])
 
 
-def _least_cost(one: Problem, state: State) -> float:
+def least_cost(one: Problem, state: State) -> float:
     """Least eigenvalue of one case that is not a free motion's; infinite where there is none such among the lowest."""
     value = modes(one, state).value
     return float(np.min(value[value > ZERO], initial=np.inf))

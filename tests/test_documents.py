@@ -203,6 +203,7 @@ TABLES = {
     "Analysis": "[analysis]`",
     "Lost": "[lost]`",
     "Ranges": "[ranges]`",
+    "Limit": "[limit]`",
 }
 
 

@@ -391,7 +391,8 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     # not available
     ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site", "not available in this version"),
     ("part", MAST, ((("part",), {"a": {"strength": "1 kN"}}),), "part", "not available in this version"),
-    ("limit", MAST, ((("limit",), {"actions": [0.6]}),), "limit", "not available in this version"),
+    ("action level above the limit", MAST, ((("limit",), {"actions": [0.6, 1.2]}),), "limit.actions[1]", "less than 1"),
+    ("time to lower without a unit", MAST, ((("limit",), {"lower_in": 20}),), "limit.lower_in", "has no unit"),
     ("raise", MAST, ((("raise",), {"spar": "mast"}),), "raise", "not available in this version"),
     ("layout", MAST, ((("layout",), [{"name": "a"}]),), "layout", "not available in this version"),
     ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate", "not available in this version"),

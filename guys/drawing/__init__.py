@@ -14,12 +14,13 @@ from typing import TYPE_CHECKING, Literal
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
+    from guys.limits import Limits
     from guys.results import Solution
 
 Paper = Literal["A3", "A4", "letter", "tabloid"]
 Units = Literal["SI", "US", "both"]
 
-__all__ = ["Shown", "sheet", "show", "write_sheet"]
+__all__ = ["Shown", "limit_page", "sheet", "show", "write_sheet"]
 
 
 def sheet(solution: Solution, *, paper: Paper = "A3", look_toward: float | None = None, units: Units = "SI") -> Figure:
@@ -30,6 +31,13 @@ def sheet(solution: Solution, *, paper: Paper = "A3", look_toward: float | None 
     from guys.drawing.compose import draw_sheet
 
     return draw_sheet(solution, paper, look_toward, units)
+
+
+def limit_page(limits: Limits, *, paper: Paper = "A4", units: Units = "SI") -> Figure:
+    """The polar figure of the limiting winds."""
+    from guys.drawing.limit import draw_limits
+
+    return draw_limits(limits, paper, units)
 
 
 def write_sheet(

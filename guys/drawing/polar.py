@@ -6,9 +6,11 @@ anchor that governs each sector is named, so that no line style has to be told a
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from math import ceil
 
 import numpy as np
+from numpy.typing import NDArray
 
 from guys.drawing import blocks, style
 from guys.drawing.blocks import Line
@@ -47,7 +49,7 @@ def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> No
     radius = min(zone.width - 2 * RIM, zone.height - HEAD - 2 * RIM) / 2.0
     centre = np.array([(zone.left + zone.right) / 2.0, zone.top - HEAD - RIM - radius])
     field = Field(zone)
-    _web(page, field, centre, radius, round(rim / step))
+    web(page, field, centre, radius, round(rim / step))
     _curves(page, bearings, pull * radius / rim, centre)
     _rim(page, field, (solution.anchors.name, bearings, pull), centre, radius)
 
@@ -63,13 +65,15 @@ def _greatest(sweep: Sweep, bearings: Array) -> Array:
     return np.asarray(np.fmax.reduce(lines, axis=0))
 
 
-def _spoke(turn: float | Array) -> Array:
+def spoke(turn: float | Array) -> Array:
+    """Unit vectors (..., 2) on the page at bearings, north up."""
     return np.stack([np.sin(turn), np.cos(turn)], axis=-1)
 
 
-def _web(page: Page, field: Field, centre: Array, radius: float, rings: int) -> None:
+def web(page: Page, field: Field, centre: Array, radius: float, rings: int) -> None:
+    """Rings, spokes and bearings."""
     for turn in np.arange(0.0, 2.0 * np.pi, np.pi / 6.0):
-        page.line([centre, centre + radius * _spoke(turn)], style.PALE, 0.35, order=1.0)
+        page.line([centre, centre + radius * spoke(turn)], style.PALE, 0.35, order=1.0)
     for i in range(1, rings):
         page.line(arc(centre, radius * i / rings, 91), style.PALE, 0.35, order=1.0)
     page.line(arc(centre, radius, 121), style.GREY, style.HAIR, order=1.2)
@@ -77,7 +81,7 @@ def _web(page: Page, field: Field, centre: Array, radius: float, rings: int) -> 
     for turn in range(0, 360, 90):
         line = Line(f"{turn}°", style.SMALL, colour=style.GREY)
         half = np.array(blocks.size([line])) / 2.0
-        unit = _spoke(np.deg2rad(turn))
+        unit = spoke(np.deg2rad(turn))
         at = centre + unit * (radius + 2.6 + float(np.abs(unit) @ half))
         box = np.concatenate([at - half, at + half])
         blocks.draw(page, box, [line])
@@ -85,7 +89,7 @@ def _web(page: Page, field: Field, centre: Array, radius: float, rings: int) -> 
 
 
 def _curves(page: Page, bearings: Array, pull: Array, centre: Array) -> None:
-    spokes = np.vstack([_spoke(bearings), _spoke(bearings[:1])])
+    spokes = np.vstack([spoke(bearings), spoke(bearings[:1])])
     closed = np.vstack([pull, pull[:1]])
     for anchor in range(pull.shape[1]):
         page.line(centre + closed[:, anchor, None] * spokes, style.GREY, style.HAIR, order=2.0)
@@ -93,28 +97,40 @@ def _curves(page: Page, bearings: Array, pull: Array, centre: Array) -> None:
 
 
 def _rim(page: Page, field: Field, swept: tuple[tuple[str, ...], Array, Array], centre: Array, radius: float) -> None:
-    """A tick where the governing anchor changes, and its name between."""
     names, bearings, pull = swept
-    governs = np.argmax(np.nan_to_num(pull, nan=-1.0), axis=1)
-    known = np.isfinite(pull).any(axis=1)
+    governs = np.where(np.isfinite(pull).any(axis=1), np.argmax(np.nan_to_num(pull, nan=-1.0), axis=1), -1)
+    rim_names(page, field, names, governs, bearings, centre, radius)
+
+
+def rim_names(
+    page: Page,
+    field: Field,
+    names: Sequence[str],
+    governs: NDArray[np.int64],
+    bearings: Array,
+    centre: Array,
+    radius: float,
+    room: float = 15.0,
+) -> None:
+    """Ticks between the sectors and the name of what governs each; governs : (bearing,) place in `names`, -1 for none."""
     edge = bearings - ((bearings - np.roll(bearings, 1)) % (2.0 * np.pi)) / 2.0
-    runs = [(int(a), *run) for a in np.unique(governs[known]) for run in sectors((governs == a) & known, bearings)]
+    runs = [(int(a), *run) for a in np.unique(governs[governs >= 0]) for run in sectors(governs == a, bearings)]
     if len(runs) > 1:
         for _, first, _ in runs:
-            tick = centre + np.array([radius, radius + 2.0])[:, None] * _spoke(edge[np.argmin(np.abs(bearings - first))])
+            tick = centre + np.array([radius, radius + 2.0])[:, None] * spoke(edge[np.argmin(np.abs(bearings - first))])
             page.line(tick, style.INK, style.THIN)
             field.add_line(tick)
     for anchor, first, last in runs:
         span = (last - first) % (2.0 * np.pi)
         if len(runs) == 1 or span > np.deg2rad(4.0):
-            _name_on_rim(page, field, names[anchor], centre, radius, first + span / 2.0)
+            _name_on_rim(page, field, names[anchor], centre, radius, first + span / 2.0, room)
 
 
-def _name_on_rim(page: Page, field: Field, name: str, centre: Array, radius: float, turn: float) -> None:
-    lines = [Line(shortened(name, 15.0, style.SMALL, bold=True), style.SMALL, bold=True)]
+def _name_on_rim(page: Page, field: Field, name: str, centre: Array, radius: float, turn: float, room: float = 15.0) -> None:
+    lines = [Line(shortened(name, room, style.SMALL, bold=True), style.SMALL, bold=True)]
     half = np.array(blocks.size(lines)) / 2.0
     turns = turn + np.deg2rad([0.0, 5.0, -5.0, 10.0, -10.0, 16.0, -16.0, 22.0, -22.0])
-    spokes = np.tile(_spoke(turns), (3, 1))
+    spokes = np.tile(spoke(turns), (3, 1))
     reach = np.repeat([2.6, 4.0, 6.0], len(turns))
     push = np.abs(spokes) @ half
     middle = centre + spokes * (radius + reach + push)[:, None]

@@ -210,6 +210,14 @@ def speed(metres_per_second: float, system: System) -> str:
     return f"{metres_per_second:.3g} m/s" if system == "SI" else f"{metres_per_second / MILE_PER_HOUR:.3g} mph"
 
 
+def speed_below(metres_per_second: float, system: System) -> str:
+    """A wind speed not to be exceeded, rounded down to three figures."""
+    if not isfinite(metres_per_second):
+        return ABSENT
+    unit, name = (1.0, "m/s") if system == "SI" else (MILE_PER_HOUR, "mph")
+    return f"{written(round_down(metres_per_second / unit), 3)} {name}"
+
+
 def temperature(kelvin: float, system: System) -> str:
     """A temperature."""
     celsius = kelvin - ZERO_CELSIUS

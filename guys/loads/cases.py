@@ -20,7 +20,7 @@ from guys.loads.iced import Ice, ice_at
 from guys.loads.spread import Weights, to_nodes, weights
 from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
-from guys.scenario.model import ASIDE, CaseKind
+from guys.scenario.model import ASIDE, CaseKind, Wind
 from guys.structure import Pieces, Points, Structure
 
 
@@ -28,7 +28,7 @@ from guys.structure import Pieces, Points, Structure
 class CaseLine:
     """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away; bare:
     cables without ice; kind: of the case; aside: where the forces on signs stand, see `guys.loads.drag.attached`;
-    drag: factor on every drag coefficient."""
+    drag: factor on every drag coefficient; speed [m/s] of the wind, None: the scenario's."""
 
     name: str
     wind_from: float
@@ -41,6 +41,7 @@ class CaseLine:
     aside: str = ""
     kind: CaseKind = "service"
     drag: float = 1.0
+    speed: float | None = None
 
 
 @dataclass(frozen=True)
@@ -211,21 +212,30 @@ def _wind(
     """Loads on spars and fittings, and whole wind forces on cables (case, cable, 3), for a factor of one; zero where there is none."""
     cases, pieces, fittings, cables = len(lines), len(structure.pieces.spar), len(structure.fittings.of), len(structure.cables.EA)
     on_pieces, on_fittings, on_cables = np.zeros((cases, pieces, 4, 3)), np.zeros((cases, fittings, 3)), np.zeros((cases, cables, 3))
-    blown = np.array([k for k, c in enumerate(lines) if c.wind != 0], dtype=np.int64)
-    blows = structure.scenario.wind
-    if len(blown) and blows is not None:
-        some = [lines[k] for k in blown]
+    for blows, rows in _winds(structure.scenario.wind, lines):
+        some = [lines[k] for k in rows]
         now = wind.Blown(
             wind_from=np.array([c.wind_from for c in some]),
             iced=np.array([c.ice > 0 for c in some]),
-            strength=np.minimum(factor[blown], 1.0),
-            iced_cables=iced_cables[blown],
+            strength=np.minimum(factor[rows], 1.0),
+            iced_cables=iced_cables[rows],
             aside=[c.aside for c in some],
         )
-        on_pieces[blown] = wind.on_spars(structure, blows, w, there.axis, there.z, ice, now)
-        on_fittings[blown] = wind.on_fittings(structure, blows, there.fittings, there.foot, now)
-        on_cables[blown] = wind.on_cables(structure, blows, there.chord, there.low, there.high, ice, now)
+        on_pieces[rows] = wind.on_spars(structure, blows, w, there.axis, there.z, ice, now)
+        on_fittings[rows] = wind.on_fittings(structure, blows, there.fittings, there.foot, now)
+        on_cables[rows] = wind.on_cables(structure, blows, there.chord, there.low, there.high, ice, now)
     return dead.Loads(on_pieces, on_fittings), on_cables
+
+
+def _winds(blows: Wind | None, lines: Sequence[CaseLine]) -> list[tuple[Wind, NDArray[np.int64]]]:
+    """The wind at every speed that lines ask for, and the lines that do."""
+    if blows is None:
+        return []
+    by_speed: dict[float, list[int]] = {}
+    for k, line in enumerate(lines):
+        if line.wind != 0:
+            by_speed.setdefault(blows.speed if line.speed is None else line.speed, []).append(k)
+    return [(blows.model_copy(update={"speed": speed}), np.array(rows)) for speed, rows in by_speed.items()]
 
 
 def where(structure: Structure, placed: Placed, points: Points) -> Array:

@@ -15,6 +15,7 @@ from guys.scenario import quantity as q
 from guys.scenario.combination_entry import CombinationsEntry, FactoredEntry
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
+from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar, SparPoint
 from guys.scenario.parts import Part
@@ -204,3 +205,5 @@ class ScenarioFile(Model):
     """For `guys lost`."""
     ranges: Ranges = Ranges()
     """For `guys matters`."""
+    limit: Limit = Limit()
+    """What the limit study is asked."""

@@ -28,6 +28,7 @@ from guys.scenario.document import (
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.keys import Finding, Key, nearest
+from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Material, Setting, Spar
 from guys.scenario.parts import Part
@@ -65,6 +66,7 @@ class Draft:
     analysis: Analysis | None
     lost: Lost | None
     ranges: Ranges | None
+    limit: Limit | None
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
         """Readable spars by name, with their index; of two with one name the first."""

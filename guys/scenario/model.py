@@ -19,6 +19,7 @@ from guys.scenario import quantity as q
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lattice import Lattice
+from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.parts import Part
 from guys.scenario.plate import Plate
@@ -452,6 +453,7 @@ class Scenario(Model):
     analysis: Analysis = Analysis()
     lost: Lost = Lost()
     ranges: Ranges = Ranges()
+    limit: Limit = Limit()
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None

@@ -206,6 +206,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         analysis=analysis,
         lost=_there(tables.lost),
         ranges=_there(tables.ranges),
+        limit=_there(tables.limit),
         sha256=digest,
         path=path,
         notes=(*(() if wind is None else wind.notes), *combinations.notes(tables.combinations, tables.ice is not None)),

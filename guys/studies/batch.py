@@ -121,7 +121,7 @@ def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
     mirror, mirror_demands = None, None
     if mirrored:
         part = problem.take(np.array(mirrored))
-        other = State(*(np.concatenate([getattr(judged.mirror[k], f) for k in mirrored]) for f in ("u", "psi", "tension", "axial")))
+        other = State.join([judged.mirror[k] for k in mirrored])
         again = part.evaluate(other)
         mirror = recovery.forces(part, other, again)
         mirror_demands = demands.of(part, other, again, mirror)
@@ -216,12 +216,20 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
     before, after = state, judged.beyond.get(k) if code == stability.NONE else None
     if after is None and stability.turned_over(one, state)[0]:
         before, after = one.drawn(), state
-    spar, bearing = stability.falling_part(one, before, after or _along_lowest_mode(one, state))
-    name = problem.structure.scenario.spar[spar].name
     how = "is in an equilibrium that does not hold: it goes" if code == stability.UNSTABLE else "falls"
-    dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(forces.slack[k])]
-    slack = f"; slack by then: {', '.join(dropped)}" if dropped else "; no cable is slack by then"
-    return f"{name} {how} toward {bearing_words(bearing)}{_share_words(problem, judged, k)}{slack}"
+    return f"{falling_words(one, before, after, how)}{_share_words(problem, judged, k)}{slack_words(problem, forces.slack[k])}"
+
+
+def falling_words(one: Problem, before: State, after: State | None, how: str = "falls") -> str:
+    """Which spar falls toward which bearing, from one state to the next; None: along the lowest mode."""
+    spar, bearing = stability.falling_part(one, before, after or _along_lowest_mode(one, before))
+    return f"{one.structure.scenario.spar[spar].name} {how} toward {bearing_words(bearing)}"
+
+
+def slack_words(problem: Problem, slack: NDArray[np.bool_]) -> str:
+    """The cables (cable,) that are slack."""
+    dropped = [problem.structure.scenario.cable[c].name for c in np.flatnonzero(slack)]
+    return f"; slack by then: {', '.join(dropped)}" if dropped else "; no cable is slack by then"
 
 
 def _ball_words(problem: Problem) -> str:

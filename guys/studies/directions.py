@@ -42,9 +42,9 @@ def sweep(templates: Sequence[CaseLine], listed: Batch, solve: Solve) -> Batch:
     return join(parts)
 
 
-def between(known: Sequence[float]) -> list[float]:
-    """Bearings every COARSE round the circle but for those known."""
-    return [float(b) for b in np.arange(0.0, 2 * math.pi, COARSE) if not _near(b, known)]
+def between(known: Sequence[float], apart: float = COARSE) -> list[float]:
+    """Bearings every `apart` round the circle but for those known."""
+    return [float(b) for b in np.arange(0.0, 2 * math.pi, apart) if not near(b, known)]
 
 
 def round_lines(scenario: Scenario) -> tuple[CaseLine, ...]:
@@ -57,7 +57,8 @@ def _lines(templates: Sequence[CaseLine], bearings: Sequence[float]) -> list[Cas
     return [replace(t, wind_from=float(b)) for t in templates for b in bearings]
 
 
-def _near(bearing: float, others: Sequence[float]) -> bool:
+def near(bearing: float, others: Sequence[float]) -> bool:
+    """Whether a bearing is one of the others."""
     return any(abs((bearing - o + math.pi) % (2 * math.pi) - math.pi) < SAME for o in others)
 
 
@@ -78,7 +79,7 @@ def _worth_trying(batch: Batch, templates: Sequence[CaseLine]) -> list[float]:
         rows = rows[np.argsort(bearing[rows])]
         for column in values[rows].T:
             for b in _around_peak(bearing[rows], column):
-                if not _near(b, known) and not _near(b, out):
+                if not near(b, known) and not near(b, out):
                     out.append(b)
     return out
 
