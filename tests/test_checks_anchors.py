@@ -91,6 +91,14 @@ def test_what_is_not_looked_at_is_listed() -> None:
     assert set(told) <= set(s.not_checked)
 
 
+def test_what_was_taken_for_granted_is_told() -> None:
+    """A memory mark reaches every output: the column of the table for steep pulls rests on one."""
+    s = held({"kind": "deadman", "length": "1.8 m", "height": "0.3 m", "depth": "1.2 m", "soil": "loam"})
+    (told,) = [note for note in s.notes if note.startswith("holdfast h: ")]
+    assert "dry loam: factor 1" in told
+    assert "from memory" in told
+
+
 def test_an_allowable_of_one_is_met_at_the_pull_itself() -> None:
     """A holdfast tested to just what is pulled has a factor of one; a newton less is past."""
     first = finding(held({"kind": "tested", "pull": "50 kN"}))

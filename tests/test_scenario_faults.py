@@ -389,15 +389,15 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     ("no altitude", MAST, ((("wind", "temperature"), "9 degC"),), "wind.altitude", "missing; temperature is given for the air density"),
     ("in space", MAST, ((("wind", "altitude"), "90 km"),), "wind.altitude", "out of range"),
     # not available
-    ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site", "not available in this version"),
-    ("part", MAST, ((("part",), {"a": {"strength": "1 kN"}}),), "part", "not available in this version"),
+    ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site.origin", "crs needs the place of the origin"),
+    ("part", MAST, ((("part",), {"a": {"strength": "1 kN", "efficiency": 0.8}}),), "part.a", "give one of"),
     ("action level above the limit", MAST, ((("limit",), {"actions": [0.6, 1.2]}),), "limit.actions[1]", "less than 1"),
     ("time to lower without a unit", MAST, ((("limit",), {"lower_in": 20}),), "limit.lower_in", "has no unit"),
     ("raise", MAST, ((("raise",), {"spar": "mast"}),), "raise", "not available in this version"),
     ("layout", MAST, ((("layout",), [{"name": "a"}]),), "layout", "not available in this version"),
-    ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate", "not available in this version"),
-    ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends", "not available in this version"),
-    ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends", "not available in this version"),
+    ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate.width", "missing"),
+    ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends[0]", "no part is named"),
+    ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends[0]", "no part is named"),
     (
         "lattice without legs",
         MAST,
@@ -439,10 +439,10 @@ def test_one_mistake_gives_one_fault(document: dict[str, Any], changes: tuple[Ch
     assert says in found[0][1]
 
 
-def test_geographic_anchors_are_refused_by_name() -> None:
+def test_geographic_anchors_need_a_coordinate_system() -> None:
     found = told(MAST, (("anchor", 0), {"name": "N", "lat": 51.0, "lon": 3.0}))
-    assert [key for key, _ in found] == ["anchor[0].lat", "anchor[0].lon"]
-    assert all("not available in this version" in message for _, message in found)
+    assert [key for key, _ in found] == ["anchor[0]"]
+    assert "need [site] with crs and origin" in found[0][1]
 
 
 def test_everything_is_reported_at_once_in_the_order_of_the_file() -> None:
@@ -459,14 +459,14 @@ def test_everything_is_reported_at_once_in_the_order_of_the_file() -> None:
             (("cable", 0, "tight"), True),
             (("rope", "wire", "drag"), "1.2"),
             (("wind", "speed"), "25 kg"),
-            (("site",), {"crs": "EPSG:1"}),
+            (("site",), {"crs": "EPSG:32631"}),
         )
     )
     faults = faults_of(text)
     assert sorted(fault.key for fault in faults) == sorted(
         [
             "titel", "spar[0].lean", "spar[0].section[0].material", "spar[1].fitting[0].at", "anchor[1].radius", "guy_level[0].to[2]",
-            "cable[0].rope", "cable[0]", "rope.wire.drag", "wind.speed", "site",
+            "cable[0].rope", "cable[0]", "rope.wire.drag", "wind.speed", "site.origin",
         ]
     )  # fmt: skip
     places = [(fault.line or 0, fault.column or 0) for fault in faults]

@@ -81,6 +81,16 @@ def unchecked(scenario: Scenario) -> Iterator[str]:
         yield from lacking(name, scenario.holdfast[name])
 
 
+def assumptions(scenario: Scenario, pull: Array) -> Iterator[str]:
+    """What was taken for granted of the holdfasts under the pulls (case, anchor, 3) found, in words."""
+    for name in dict.fromkeys(anchor.holdfast for anchor in scenario.anchor if anchor.holdfast is not None):
+        on_it = [k for k, anchor in enumerate(scenario.anchor) if anchor.holdfast == name]
+        angles = angle(pull[:, on_it].reshape(-1, 3))
+        notes = holdfasts.of(scenario.holdfast[name], angles[~np.isnan(angles)]).notes
+        if notes:
+            yield f"holdfast {name}: {'; '.join(notes)}"
+
+
 def lacking(name: str, holdfast: Holdfast) -> Iterator[str]:
     """The ways of giving way of a holdfast that are not looked at for want of data, in words."""
     ways = holdfasts.of(holdfast, np.array([USUAL])).unjudged

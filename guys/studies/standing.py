@@ -13,7 +13,7 @@ import numpy as np
 
 from guys import recovery, stability
 from guys.checks import alarms, allowables, chains, demands, extremes, plan, resolve
-from guys.checks.anchors import unchecked
+from guys.checks.anchors import assumptions, unchecked
 from guys.loads import CaseLine, lines_of
 from guys.loads.drag import words
 from guys.results import (
@@ -160,7 +160,13 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         findings=found,
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
-        notes=(*scenario.notes, *chains.notes(scenario), *words.notes(structure), *sorted({n for n in listed.note if n})),
+        notes=(
+            *scenario.notes,
+            *chains.notes(scenario),
+            *assumptions(scenario, listed.forces.pull),
+            *words.notes(structure),
+            *sorted({n for n in listed.note if n}),
+        ),
         not_checked=(*unchecked(scenario), *alarms.NOT_CHECKED),
         warnings=(
             *alarms.warnings(structure, listed.lines, listed.forces, _verdicts(listed), feet, cables, check, _gaps(swept)),
