@@ -14,6 +14,7 @@ from toml_text import BOOM, MAST, changed, dumps, dumps_tables
 from guys import parse_scenario, read_scenario
 from guys.constants import air_density
 from guys.scenario import AnchorPoint, GroundFoot, HeelFoot, Rope, SparPoint, drawn
+from guys.scenario.document import AllowablesEntry
 from guys.scenario.reader import fault_at
 
 REPOSITORY = Path(__file__).parent.parent
@@ -47,7 +48,7 @@ def test_allowables_left_out_are_marked_as_defaults() -> None:
     scenario = parse_scenario(dumps(changed(MAST, (("allowables", "cable"), 3.0))))
     assert scenario.allowables.cable == 3.0
     assert (scenario.allowables.anchor, scenario.allowables.sliding, scenario.allowables.lean) == (1.5, 1.5, math.radians(1.0))
-    assert scenario.allowables.defaulted == {"anchor", "sliding", "lean", "spar"}
+    assert scenario.allowables.defaulted == set(AllowablesEntry.model_fields) - {"cable", "factored"}
 
 
 def test_a_guy_level_becomes_cables_named_after_its_height_or_its_name() -> None:
