@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("plumb", "compare", "search", "raise", "field", "record")
+UNAVAILABLE = ("plumb", "compare", "search", "raise", "record")
 """Commands this version knows by name and does not do."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
@@ -194,6 +194,19 @@ def limit(file: str, out: str | None, as_json: bool, units: str) -> int:
     from guys.doors.limit import limit_command
 
     return limit_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("field.json, field.csv, lengths.csv, readings.csv and the pages")
+@click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A4", show_default=True, help="Paper of the pages.")
+def field(file: str, out: str | None, as_json: bool, units: str, paper: str) -> int:
+    """Pages for the crew: rope to cut, tensions by temperature, how to read them without a gauge, what to accept and prove.
+
+    Exit status: 0; 4 the structure does not stand in still air; 1 and 2 as ever.
+    """
+    from guys.doors.field import field_command
+
+    return field_command(file, out, as_json, units, paper)  # type: ignore[arg-type]
 
 
 @commands.command()

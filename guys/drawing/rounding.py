@@ -164,6 +164,27 @@ def length(metres: float, system: System) -> str:
     return f"{sign}{inches // 12} ft {inches % 12} in" if inches >= 12 else f"{sign}{inches} in"
 
 
+def fine_length(metres: float, system: System) -> str:
+    """A length to 1 mm or to 1/10 in: of rope to cut, of a sag to read."""
+    if not isfinite(metres):
+        return ABSENT
+    if system == "SI":
+        return f"{_unsigned_zero(metres, 3)} m" if abs(metres) >= 1.0 else f"{_unsigned_zero(1e3 * metres, 0)} mm"
+    tenths = round(abs(metres) / INCH * 10)
+    sign, feet = "−" if metres < 0 and tenths else "", tenths // 120
+    return f"{sign}{feet} ft {(tenths - 120 * feet) / 10:.1f} in" if feet else f"{sign}{tenths / 10:.1f} in"
+
+
+def seconds(value: float, system: System) -> str:
+    """A time stopped by hand, to a hundredth; the same in both systems."""
+    return f"{value:.2f} s" if isfinite(value) else ABSENT
+
+
+def share(value: float) -> str:
+    """An error of itself, rounded up to a whole percent."""
+    return f"±{ceil(100 * value - 1e-9)} %" if isfinite(value) else ABSENT
+
+
 def level(metres: float, system: System) -> str:
     """A level with its sign."""
     text = length(metres, system)

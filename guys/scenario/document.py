@@ -13,6 +13,7 @@ from pydantic import Field
 from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.combination_entry import CombinationsEntry, FactoredEntry
+from guys.scenario.field import FieldWork
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.limit import Limit
@@ -207,3 +208,5 @@ class ScenarioFile(Model):
     """For `guys matters`."""
     limit: Limit = Limit()
     """What the limit study is asked."""
+    field: FieldWork = FieldWork()
+    """For `guys field`."""

@@ -25,6 +25,7 @@ from guys.scenario.document import (
     RopeEntry,
     ScenarioFile,
 )
+from guys.scenario.field import FieldWork
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.keys import Finding, Key, nearest
@@ -67,6 +68,7 @@ class Draft:
     lost: Lost | None
     ranges: Ranges | None
     limit: Limit | None
+    field: FieldWork | None
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
         """Readable spars by name, with their index; of two with one name the first."""

@@ -16,6 +16,7 @@ from pydantic import Discriminator, Field, InstanceOf, Tag
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.field import FieldWork
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lattice import Lattice
@@ -454,6 +455,7 @@ class Scenario(Model):
     lost: Lost = Lost()
     ranges: Ranges = Ranges()
     limit: Limit = Limit()
+    field: FieldWork = FieldWork()
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None

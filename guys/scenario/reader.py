@@ -11,7 +11,22 @@ from os import PathLike, fspath
 from typing import Any, TypeVar
 
 from guys.errors import Fault, ScenarioError
-from guys.scenario import combinations, drawn, frame, held, ice, names, parts, place, plausible, resolve, rigging, unavailable, weather
+from guys.scenario import (
+    combinations,
+    drawn,
+    field,
+    frame,
+    held,
+    ice,
+    names,
+    parts,
+    place,
+    plausible,
+    resolve,
+    rigging,
+    unavailable,
+    weather,
+)  # fmt: skip
 from guys.scenario.draft import Draft, draft
 from guys.scenario.keys import Finding, Key, independent, placer, written
 from guys.scenario.model import Scenario, Spar
@@ -137,6 +152,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from combinations.findings(tables)
     yield from held.findings(tables)
     yield from ice.findings(tables)
+    yield from field.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -207,6 +223,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         lost=_there(tables.lost),
         ranges=_there(tables.ranges),
         limit=_there(tables.limit),
+        field=_there(tables.field),
         sha256=digest,
         path=path,
         notes=(*(() if wind is None else wind.notes), *combinations.notes(tables.combinations, tables.ice is not None)),
