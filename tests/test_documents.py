@@ -26,9 +26,11 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
+from guys.exchange import field as crew
 from guys.exchange import losses, matters, result, tables
 from guys.scenario import draft, schema, starters
 from guys.studies.cells import WORDS
+from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
 
@@ -204,6 +206,8 @@ TABLES = {
     "Lost": "[lost]`",
     "Ranges": "[ranges]`",
     "Limit": "[limit]`",
+    "FieldWork": "[field]`",
+    "Rigged": "[field]`",
 }
 
 
@@ -251,7 +255,7 @@ def test_the_guide_names_every_key_and_column_of_the_results() -> None:
     assert not [column for head in heads for column in head if column not in known]
 
 
-@pytest.mark.parametrize(("study", "told"), [(lose, losses), (weigh, matters)], ids=["lost", "matters"])
+@pytest.mark.parametrize(("study", "told"), [(field, crew), (lose, losses), (weigh, matters)], ids=["field", "lost", "matters"])
 def test_the_guide_names_every_key_and_column_of_the_studies(study: Any, told: Any) -> None:
     found = study(parse_scenario(starters.text("boom")))
     known = code_words("docs/user-guide.md")
