@@ -23,6 +23,7 @@ from guys.scenario.standard_wind import averaging_words
 
 MARGIN = 12.0
 RIM = 26.0
+NAME_ROOM = 40.0
 COLUMN = 138.0
 TITLE_HIGH = 8.5
 BEYOND = 1.15
@@ -85,7 +86,7 @@ def _polar(page: Page, limits: Limits, zone: Rect, speech: Tongue) -> None:
     page.text(centre[0], centre[1] - radius * wind.speed / unit / rim - 4.0, "own wind", style.SMALL, colour=style.WIND, align="centre")
     names = list(dict.fromkeys(limit.governs for limit in least))
     governs = np.array([names.index(limit.governs) for limit in least])
-    rim_names(page, field, names, governs, bearings, centre, radius, RIM)
+    rim_names(page, field, names, governs, bearings, centre, radius, NAME_ROOM)
     page.text(zone.left, zone.bottom, f"rim {rim:g} {name}, rings {step:g} {name} apart", style.SMALL, colour=style.GREY)
     _key(page, zone)
 
