@@ -1,0 +1,59 @@
+"""`plumb.json` (format guys-plumb/1) and `plumb.csv`: tensions as asked and for plumb; SI, angles in degrees."""
+
+from __future__ import annotations
+
+import json
+import math
+from typing import Any
+
+from guys.checks.alarms import CAUTIONS
+from guys.exchange.result import number
+from guys.exchange.tables import as_csv
+from guys.studies.plumbing import Plumb
+from guys.version import __version__
+
+FORMAT = "guys-plumb/1"
+
+
+def rows(found: Plumb) -> list[dict[str, Any]]:
+    """Every cable given by tension."""
+    return [
+        {
+            "cable": name,
+            "tension_asked_N": float(found.asked[k]),
+            "tension_plumb_N": float(found.plumb[k]),
+            "change": float(found.change[k]),
+        }
+        for k, name in enumerate(found.name)
+    ]
+
+
+def as_dict(found: Plumb) -> dict[str, Any]:
+    """The whole result as plain lists and numbers."""
+    return {
+        "format": FORMAT,
+        "title": found.scenario.title,
+        "guys_version": __version__,
+        "scenario_sha256": found.scenario.sha256,
+        "cables": rows(found),
+        "spars": [
+            {
+                "name": name,
+                "lean_as_asked_deg": number(math.degrees(found.lean[k])),
+                "lean_plumb_deg": number(math.degrees(found.plumb_lean[k])),
+            }
+            for k, name in enumerate(found.spar)
+        ],
+        "cautions": list(CAUTIONS),
+    }
+
+
+def as_text(found: Plumb) -> str:
+    """The text of `plumb.json`."""
+    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+
+
+def as_table(found: Plumb) -> str:
+    """`plumb.csv`."""
+    table = rows(found)
+    return as_csv(list(table[0]), [list(row.values()) for row in table])
