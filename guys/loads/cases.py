@@ -14,13 +14,15 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys.constants import STANDARD_GRAVITY
-from guys.loads import dead, wind
+from guys.loads import dead, gusts, pressure, wind
 from guys.loads.drag import attached
 from guys.loads.iced import Ice, ice_at
 from guys.loads.spread import Weights, to_nodes, weights
 from guys.rotation import Array, outer, turned
 from guys.scenario import Scenario
+from guys.scenario import patches as bands
 from guys.scenario.model import ASIDE, CaseKind, Wind
+from guys.scenario.patches import MEAN, Patch
 from guys.structure import Pieces, Points, Structure
 
 
@@ -28,7 +30,8 @@ from guys.structure import Pieces, Points, Structure
 class CaseLine:
     """One case in one wind direction; wind_from [rad], NaN without wind; temperature [K]; without: cables taken away; bare:
     cables without ice; kind: of the case; aside: where the forces on signs stand, see `guys.loads.drag.attached`;
-    drag: factor on every drag coefficient; speed [m/s] of the wind, None: the scenario's."""
+    drag: factor on every drag coefficient; speed [m/s] of the wind, None: the scenario's; patches: its gusts, each solved for in a line
+    of its own that has it as its `patch` (`states`); neither: the peak pressure on everything at once."""
 
     name: str
     wind_from: float
@@ -42,6 +45,14 @@ class CaseLine:
     kind: CaseKind = "service"
     drag: float = 1.0
     speed: float | None = None
+    patches: tuple[Patch, ...] = ()
+    patch: Patch | None = None
+
+    def states(self) -> tuple[CaseLine, ...]:
+        """What is solved for it: itself, or the mean wind and then every patch with the mean wind."""
+        if not self.patches:
+            return (self,)
+        return tuple(replace(self, patches=(), patch=patch) for patch in (MEAN, *self.patches))
 
 
 @dataclass(frozen=True)
@@ -107,11 +118,14 @@ def lines_of(scenario: Scenario, directions: Sequence[float] | None = None) -> t
     for case in scenario.case:
         bearings: Sequence[float] = [math.nan]
         asides: tuple[str, ...] = ("",)
+        patches: tuple[Patch, ...] = ()
         if case.wind > 0 and scenario.wind is not None:
             bearings = scenario.wind.directions if directions is None else directions
             asides = attached.asides(scenario)
-        line = CaseLine(case.name, math.nan, case.dead, case.wind, case.ice, case.temperature, case.without, case.bare, kind=case.kind)
+            patches = bands.of(scenario)
+        line = CaseLine(case.name, math.nan, case.dead, case.wind, case.ice, case.temperature, case.without, case.bare)
         names = [f"{case.name}{ASIDE}{aside}" if aside else case.name for aside in asides]
+        line = replace(line, kind=case.kind, patches=patches)
         out += [replace(line, name=n, wind_from=b, aside=a) for n, a in zip(names, asides, strict=True) for b in bearings]
     return tuple(out)
 
@@ -119,8 +133,8 @@ def lines_of(scenario: Scenario, directions: Sequence[float] | None = None) -> t
 def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) -> LoadCases:
     """Loads of every line on the structure as placed."""
     scenario = structure.scenario
-    w = weights(structure.pieces)
-    there = _there(structure, placed, w)
+    there = _there(structure, placed, lines)
+    w = there.weights
     ice = ice_at(structure, there.z, there.low, there.high)
     names = [c.name for c in scenario.cable]
     present, bare = (_named([getattr(c, which) for c in lines], names) for which in ("without", "bare"))
@@ -129,7 +143,7 @@ def assemble(structure: Structure, lines: Sequence[CaseLine], placed: Placed) ->
     d, v, i = np.array([[c.dead, c.wind * c.drag * (reduced if c.ice > 0 else 1.0), c.ice] for c in lines]).T
     both = dead.superposed(np.stack([d, i], axis=1), [dead.dead(structure, w), dead.ice(structure, w, ice.mass)])
     still = both.total()
-    blown, on_cables = _wind(structure, lines, there, w, ice, v, (i[:, None] > 0) & (bare == 0.0))
+    blown, on_cables = _wind(structure, lines, there, ice, v, (i[:, None] > 0) & (bare == 0.0))
     both.add(v, blown)
     warming = np.array([c.temperature - scenario.setting.temperature for c in lines])
     _move_off(structure.pieces, both.on_pieces, warming)
@@ -184,6 +198,7 @@ class _There:
     """The placed structure: axis (piece, 3), z (piece, gauss) [m] above the spar's foot; chord (cable, 3), low, high (cable,) [m] heights
     of the ends of cables above the foot of the spar of their `from` end; fittings (point, 3), foot (spar, 3) [m]."""
 
+    weights: Weights
     axis: Array
     z: Array
     chord: Array
@@ -193,35 +208,51 @@ class _There:
     foot: Array
 
 
-def _there(structure: Structure, placed: Placed, w: Weights) -> _There:
+def _there(structure: Structure, placed: Placed, lines: Sequence[CaseLine]) -> _There:
     pieces, cables = structure.pieces, structure.cables
     foot = structure.position[structure.foot] + placed.u[structure.foot]
     start, end = (_on_axis(structure, placed, k) for k in (0, 1))
     along = end - start
+    w = weights(pieces, _cuts(structure, lines, start[:, 2], along[:, 2], foot[:, 2]))
     fraction = (w.station - pieces.station[:, :1]) / (pieces.station[:, 1:] - pieces.station[:, :1])
     z = start[:, None, 2] + fraction * along[:, None, 2] - foot[pieces.spar, None, 2]
     a, b = where(structure, placed, cables.a), where(structure, placed, cables.b)
     base = foot[cables.spar, 2]
     axis = along / np.linalg.norm(along, axis=-1, keepdims=True)
-    return _There(axis, z, b - a, a[:, 2] - base, b[:, 2] - base, where(structure, placed, structure.fittings.point), foot)
+    return _There(w, axis, z, b - a, a[:, 2] - base, b[:, 2] - base, where(structure, placed, structure.fittings.point), foot)
+
+
+def _cuts(structure: Structure, lines: Sequence[CaseLine], start: Array, rise: Array, foot: Array) -> Array:
+    """Shares (piece, cut) of pieces that start at a level and rise so much [m] at which the pressure jumps or bends."""
+    blows = structure.scenario.wind
+    if blows is None or all(line.wind == 0 for line in lines):
+        return np.zeros((len(start), 0))
+    bent = [foot[structure.pieces.spar] + z for z in pressure.bends(blows.profile)]
+    jumps = [np.full(len(start), foot[bands.mast(structure.scenario)] + height) for height in gusts.edges([line.patch for line in lines])]
+    steep = np.where(np.abs(rise) > pressure.LEVEL, rise, np.inf)
+    return np.asarray((np.stack([*bent, *jumps], axis=1) - start[:, None]) / steep[:, None])
 
 
 def _wind(
-    structure: Structure, lines: Sequence[CaseLine], there: _There, w: Weights, ice: Ice, factor: Array, iced_cables: wind.Flags
+    structure: Structure, lines: Sequence[CaseLine], there: _There, ice: Ice, factor: Array, iced_cables: wind.Flags
 ) -> tuple[dead.Loads, Array]:
     """Loads on spars and fittings, and whole wind forces on cables (case, cable, 3), for a factor of one; zero where there is none."""
     cases, pieces, fittings, cables = len(lines), len(structure.pieces.spar), len(structure.fittings.of), len(structure.cables.EA)
     on_pieces, on_fittings, on_cables = np.zeros((cases, pieces, 4, 3)), np.zeros((cases, fittings, 3)), np.zeros((cases, cables, 3))
     for blows, rows in _winds(structure.scenario.wind, lines):
         some = [lines[k] for k in rows]
+        patches, patch = wind.patched([c.patch for c in some])
         now = wind.Blown(
             wind_from=np.array([c.wind_from for c in some]),
             iced=np.array([c.ice > 0 for c in some]),
             strength=np.minimum(factor[rows], 1.0),
             iced_cables=iced_cables[rows],
             aside=[c.aside for c in some],
+            patches=patches,
+            patch=patch,
+            above_mast=there.foot[:, 2] - there.foot[bands.mast(structure.scenario), 2],
         )
-        on_pieces[rows] = wind.on_spars(structure, blows, w, there.axis, there.z, ice, now)
+        on_pieces[rows] = wind.on_spars(structure, blows, there.weights, there.axis, there.z, ice, now)
         on_fittings[rows] = wind.on_fittings(structure, blows, there.fittings, there.foot, now)
         on_cables[rows] = wind.on_cables(structure, blows, there.chord, there.low, there.high, ice, now)
     return dead.Loads(on_pieces, on_fittings), on_cables

@@ -16,6 +16,8 @@ I = c (10 m / z)^(1/6) (26.11-7, from memory); a uniform or power profile says n
 
 from __future__ import annotations
 
+import math
+from collections.abc import Callable, Sequence
 from itertools import pairwise
 
 import numpy as np
@@ -23,6 +25,7 @@ import numpy as np
 from guys.rotation import Array
 from guys.scenario.model import Profile, Wind
 
+Share = Callable[[Array], Array]
 LEVEL = 1e-6
 """[m] heights nearer than this count as one level, where the mean is the value itself."""
 POINTS = 16
@@ -51,21 +54,31 @@ def turbulence_intensity(profile: Profile, z: Array) -> Array | None:
     return None if profile.turbulence is None else np.asarray(profile.turbulence * (10.0 / at) ** (1 / 6))
 
 
-def mean_pressure(wind: Wind, low: Array, high: Array) -> Array:
-    """Mean of q [Pa] over straight lines from height `low` to `high` [m], in either order."""
+def bends(profile: Profile) -> tuple[float, ...]:
+    """Heights [m] at which a profile starts, or stops to change."""
+    return tuple(each for each in (0.0, profile.low, profile.high) if math.isfinite(each))
+
+
+def mean_pressure(wind: Wind, low: Array, high: Array, share: Share | None = None, jumps: Sequence[Array] = ()) -> Array:
+    """Mean of q [Pa] over straight lines from height `low` to `high` (line,) [m], in either order; `share` gives the share of q that blows
+    at heights (line, point), and jumps at heights `jumps`, each (line,)."""
     bottom, top = np.minimum(low, high), np.maximum(low, high)
     x, w = np.polynomial.legendre.leggauss(POINTS)
     t = 0.5 * (1 + x)
-    share, weight = t**GRADING, 0.5 * w * GRADING * t ** (GRADING - 1)
-    edges = [bottom, *(np.clip(b, bottom, top) for b in (0.0, wind.profile.low, wind.profile.high)), top]
+    along, weight = t**GRADING, 0.5 * w * GRADING * t ** (GRADING - 1)
+
+    def blows(z: Array) -> Array:
+        return _shape(wind, z) if share is None else _shape(wind, z) * share(z)
+
+    edges = np.sort([bottom, *(np.clip(b, bottom, top) for b in (*bends(wind.profile), *jumps)), top], axis=0)
     total = np.zeros_like(bottom)
     for a, b in pairwise(edges):
         part = b - a
         if part.any():
-            total += part * (_shape(wind, a[..., None] + part[..., None] * share) @ weight)
+            total += part * (blows(a[..., None] + part[..., None] * along) @ weight)
     rise = top - bottom
     level = rise < LEVEL
-    mean = np.where(level, _shape(wind, 0.5 * (bottom + top)), total / np.where(level, 1.0, rise))
+    mean = np.where(level, blows(0.5 * (bottom + top)[..., None])[..., 0], total / np.where(level, 1.0, rise))
     return np.asarray(_still(wind) * mean)
 
 

@@ -4,7 +4,7 @@ On an elastic element the position is x(s) = N1 x_i + N2 t_i + N3 x_j + N4 t_j w
 axis, so a load q(s) gives forces int N1 q, int N3 q and the dyads t (x) int N2 q, t (x) int N4 q (for a uniform load q h/2 and the
 moments +-(h^2/12) t x q).  On a rigid spar the position is x_foot + s t: a force int q and a dyad t (x) int s q.
 
-Weight functions are integrated by Gauss points, so any pressure profile is taken as it is.
+Weight functions are integrated by Gauss points between the places where a load jumps or bends, so any pressure profile is taken as it is.
 """
 
 from __future__ import annotations
@@ -17,7 +17,7 @@ from guys.rotation import Array
 from guys.structure import Pieces
 
 GAUSS = 16
-"""Points a stretch: a profile z^0.3 from z = 0 is then integrated within 1e-4, any other far closer."""
+"""Points between two cuts: a profile z^0.3 from z = 0 is then integrated within 1e-4, any other far closer."""
 
 
 @dataclass(frozen=True)
@@ -31,12 +31,15 @@ class Weights:
     arm_high: Array
 
 
-def weights(pieces: Pieces) -> Weights:
-    """Weights with which a load at the Gauss points of every stretch acts on the nodes of its ends."""
+def weights(pieces: Pieces, cuts: Array) -> Weights:
+    """Weights with which a load at the Gauss points of every stretch acts on the nodes of its ends; cuts (piece, any) are the shares of a
+    stretch at which the load may jump or bend, those outside 0 to 1 being none."""
     x, w = np.polynomial.legendre.leggauss(GAUSS)
     h = (pieces.station[:, 1] - pieces.station[:, 0])[:, None]
-    f = 0.5 * (1 + x)[None, :]
-    dw = 0.5 * w[None, :] * h
+    bounds = _bounds(cuts)
+    part = np.diff(bounds, axis=1)[..., None]
+    f = (bounds[:, :-1, None] + part * (0.5 * (1 + x))).reshape(len(h), -1)
+    dw = (part * (0.5 * w)).reshape(len(h), -1) * h
     station = pieces.station[:, :1] + f * h
     rigid = pieces.rigid[:, None]
     return Weights(
@@ -46,6 +49,14 @@ def weights(pieces: Pieces) -> Weights:
         np.where(rigid, 0.0, dw * (3 * f**2 - 2 * f**3)),
         np.where(rigid, 0.0, -dw * h * f**2 * (1 - f)),
     )
+
+
+def _bounds(cuts: Array) -> Array:
+    """(piece, part + 1) from 0 to 1: every piece is cut into as many parts as the one with most cuts, some of no length."""
+    inside = (cuts > 0.0) & (cuts < 1.0)
+    most = int(inside.sum(axis=1).max(initial=0))
+    kept = np.sort(np.where(inside, cuts, 1.0), axis=1)[:, :most]
+    return np.pad(np.pad(kept, ((0, 0), (1, 0))), ((0, 0), (0, 1)), constant_values=1.0)
 
 
 def shares(w: Weights, intensity: Array) -> Array:

@@ -19,12 +19,15 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys.loads.dead import fittings_of
+from guys.loads import gusts
 from guys.loads.drag import attached, chosen
 from guys.loads.iced import Ice
 from guys.loads.pressure import across, blowing_to, mean_pressure, pressure
 from guys.loads.spread import Weights, shares, spread
 from guys.rotation import Array, dot
+from guys.scenario import Scenario
 from guys.scenario.model import Fitting, Wind
+from guys.scenario.patches import Patch
 from guys.structure import Structure
 
 Flags = NDArray[np.bool_]
@@ -33,25 +36,41 @@ Flags = NDArray[np.bool_]
 @dataclass(frozen=True)
 class Blown:
     """Cases with wind: wind_from [rad], iced, strength (factor on the pressure, at most 1, at which coefficients are taken) (case,);
-    iced_cables (case, cable); aside (case,) where forces on signs stand, see `guys.loads.drag.attached`."""
+    iced_cables (case, cable); aside (case,) where forces on signs stand, see `guys.loads.drag.attached`; patches: the gusts there are, and
+    patch (case,) which of them blows; above_mast (spar,) [m] heights of feet above that of the mast."""
 
     wind_from: Array
     iced: Flags
     strength: Array
     iced_cables: Flags
     aside: Sequence[str]
+    patches: tuple[Patch | None, ...]
+    patch: NDArray[np.int64]
+    above_mast: Array
+
+    def over_peak(self, scenario: Scenario, z: Array, spar: NDArray[np.int64]) -> Array:
+        """(patch, ...) of the peak pressure at z (thing, ...) [m] above the feet of the spars (thing,)."""
+        height = z + self.above_mast[spar].reshape(-1, *([1] * (z.ndim - 1)))
+        return np.stack([gusts.share(scenario, patch, z, height) for patch in self.patches])
+
+
+def patched(each: Sequence[Patch | None]) -> tuple[tuple[Patch | None, ...], NDArray[np.int64]]:
+    """The gusts of cases (case,), each once, and which of them each has."""
+    distinct = tuple(dict.fromkeys(each))
+    return distinct, np.array([distinct.index(patch) for patch in each], dtype=np.int64)
 
 
 def on_spars(structure: Structure, wind: Wind, w: Weights, axis: Array, z: Array, ice: Ice, blown: Blown) -> Array:
     """Loads (case, piece, 4, 3) on the pieces, see `guys.loads.spread`; axis (piece, 3), z (piece, gauss) [m] in the setting position."""
     held = chosen.bars(structure)
     strength = blown.strength if held.by_wind.any() else np.ones_like(blown.strength)
-    states, state = np.unique(np.stack([blown.iced.astype(float), strength]), axis=1, return_inverse=True)
-    iced = states[0] == 1.0
+    states, state = np.unique(np.stack([blown.iced.astype(float), strength, blown.patch]), axis=1, return_inverse=True)
+    iced, patch = states[0] == 1.0, states[2].astype(int)
     q = pressure(wind, z)
     c = chosen.on_bars(held, wind, states[1][:, None, None] * q, iced)
     width = np.where(iced[:, None, None], ice.width, held.width[chosen.BARE][:, None])
-    share = shares(w, q * c * width)[state.reshape(-1)]
+    blows = blown.over_peak(structure.scenario, z, structure.pieces.spar)[patch]
+    share = shares(w, q * blows * c * width)[state.reshape(-1)]
     return spread(share, chosen.pattern(held, blowing_to(blown.wind_from), axis, blown.iced))
 
 
@@ -62,6 +81,7 @@ def on_fittings(structure: Structure, wind: Wind, at: Array, foot: Array, blown:
     force = np.zeros((len(to), len(points.of), 3))
     level = at[:, 2] - foot[points.spar, 2]
     ground = float(foot[:, 2].min())
+    blows = blown.over_peak(scenario, level, points.spar)[blown.patch]
     for k, f in enumerate(fittings_of(structure)):
         if f.area is None or (f.sign and points.side[k] == 0):
             continue
@@ -72,7 +92,7 @@ def on_fittings(structure: Structure, wind: Wind, at: Array, foot: Array, blown:
             c = _at_edge(f, wind, float(at[k, 2]) - ground, int(points.side[k]), blown.aside)
         else:
             c = attached.coefficient(f, scenario, wind, q * blown.strength, blown.iced)
-        force[:, k] = (q * c * area)[:, None] * _pattern(f, to)
+        force[:, k] = (q * blows[:, k] * c * area)[:, None] * _pattern(f, to)
     return force
 
 
@@ -101,7 +121,17 @@ def on_cables(structure: Structure, wind: Wind, chord: Array, low: Array, high: 
     cables = structure.cables
     c = np.sqrt(dot(chord, chord))
     q = mean_pressure(wind, low, high)
+    blows = np.stack([_mean_in(patch, structure, wind, low, high, blown) for patch in blown.patches])[blown.patch]
     drag = chosen.on_cables(cables, structure.scenario, wind, blown.strength[:, None] * q, blown.iced_cables)
     width = np.where(blown.iced_cables, ice.cable_width, cables.diameter)
     pattern = across(blowing_to(blown.wind_from)[:, None, :], chord / c[:, None])
-    return (q * drag * c * width)[..., None] * pattern
+    return (blows * drag * c * width)[..., None] * pattern
+
+
+def _mean_in(patch: Patch | None, structure: Structure, wind: Wind, low: Array, high: Array, blown: Blown) -> Array:
+    """Mean pressure (cable,) [Pa] over the chord with the gust in one patch."""
+    if patch is None:
+        return mean_pressure(wind, low, high)
+    lift = blown.above_mast[structure.cables.spar]
+    jumps = [edge - lift for edge in gusts.edges([patch])]
+    return mean_pressure(wind, low, high, lambda z: gusts.share(structure.scenario, patch, z, z + lift[:, None]), jumps)

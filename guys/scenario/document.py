@@ -14,6 +14,7 @@ from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.combination_entry import CombinationsEntry, FactoredEntry
 from guys.scenario.field import FieldWork
+from guys.scenario.gust import Gust
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.limit import Limit
@@ -192,6 +193,8 @@ class ScenarioFile(Model):
     """The state in which the cables are tensioned."""
     wind: WindEntry | None = None
     """The reference wind; may be left out when no case has wind."""
+    gust: Gust = Gust()
+    """How the gusts of the wind come; left out: the peak on everything at once."""
     ice: Ice | None = None
     """Ice; may be left out when no case has ice."""
     case: list[CaseEntry] = []

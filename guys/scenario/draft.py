@@ -26,6 +26,7 @@ from guys.scenario.document import (
     ScenarioFile,
 )
 from guys.scenario.field import FieldWork
+from guys.scenario.gust import Gust
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.keys import Finding, Key, nearest
@@ -60,6 +61,7 @@ class Draft:
     holdfast: dict[str, Holdfast | None]
     setting: Setting | None
     wind: WindEntry | None
+    gust: Gust | None
     ice: Ice | None
     case: tuple[CaseEntry | None, ...]
     combinations: CombinationsEntry | None

@@ -17,6 +17,7 @@ from pydantic import Discriminator, Field, InstanceOf, Tag
 from guys import constants
 from guys.scenario import quantity as q
 from guys.scenario.field import FieldWork
+from guys.scenario.gust import Gust
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
 from guys.scenario.lattice import Lattice
@@ -448,6 +449,7 @@ class Scenario(Model):
     holdfast: dict[str, Holdfast] = {}
     setting: Setting = Setting()
     wind: Wind | None = None
+    gust: Gust = Gust()
     ice: Ice | None = None
     case: tuple[Case, ...]
     allowables: Allowables = Allowables()

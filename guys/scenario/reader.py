@@ -20,6 +20,7 @@ from guys.scenario import (
     ice,
     names,
     parts,
+    patches,
     place,
     plausible,
     resolve,
@@ -103,7 +104,8 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     if findings:
         raise ScenarioError(_faults(findings, text, path))
     scenario = _resolved(tables, site, hashlib.sha256(content).hexdigest(), path)
-    return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario))})
+    told = (*scenario.notes, *patches.notes(scenario))
+    return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario)), "notes": told})
 
 
 def _document(text: str, path: str | None) -> dict[str, Any]:
@@ -153,6 +155,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from held.findings(tables)
     yield from ice.findings(tables)
     yield from field.findings(tables)
+    yield from patches.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -216,6 +219,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         holdfast={name: entry for name, entry in tables.holdfast.items() if entry is not None},
         setting=setting,
         wind=wind,
+        gust=_there(tables.gust),
         ice=None if tables.ice is None else ice.resolved(tables.ice),
         case=resolve.cases(_present(tables.case) + combined, setting),
         allowables=resolve.allowables(allowables),
