@@ -8,7 +8,7 @@ A section force acts on the part toward the foot: tension, and the moment of the
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, fields
 
 import numpy as np
@@ -27,9 +27,15 @@ AT_CUT = 1e-9
 """What hangs at a cut of a rigid spar, to this share of its length, counts above it."""
 
 
+Acting = Mapping[int, tuple[Array, Array]]
+"""By spar: section forces and moments (case, piece, 2 ends, 3) about the turned local axes x, y, t."""
+
+
 @dataclass(frozen=True)
 class Forces:
-    """End forces of every case (see `guys.results` for shapes): at cables' ends, on anchors, on what carries every spar's foot."""
+    """End forces of every case (see `guys.results` for shapes): at cables' ends, on anchors, on what carries every spar's foot; foot_up
+    (case, spar) [N] the greatest upward part of the latter; head_off (case, spar, 3) how far the line foot-head, of length 1, has turned
+    off the drawn axis."""
 
     tension_anchor: Array
     tension_top: Array
@@ -40,8 +46,14 @@ class Forces:
     present: NDArray[np.bool_]
     pull: Array
     foot_force: Array
+    foot_up: Array
     foot_moment: Array
-    head_lean: Array
+    head_off: Array
+
+    @property
+    def head_lean(self) -> Array:
+        """(case, spar) [rad] between the drawn axis and the line foot-head."""
+        return np.asarray(2 * np.arcsin(np.minimum(1.0, 0.5 * np.linalg.norm(self.head_off, axis=-1))))
 
     def blank(self, rows: NDArray[np.int64]) -> Forces:
         """NaN (False) in the cases `rows`."""
@@ -63,7 +75,6 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
     at_a, at_b = found.hanging.at_a * present[..., None], found.hanging.at_b * present[..., None]
     force, moment = _feet(problem, state, found)
     drawn = s.axes[:, 2]
-    apart = np.linalg.norm(problem.heading(state) - drawn, axis=-1)
     return Forces(
         tension_anchor=np.linalg.norm(at_a, axis=-1),
         tension_top=np.linalg.norm(at_b, axis=-1),
@@ -74,8 +85,9 @@ def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
         present=present,
         pull=-found.structural[:, s.anchor, :3],
         foot_force=force,
+        foot_up=force[..., 2].copy(),
         foot_moment=moment,
-        head_lean=2 * np.arcsin(np.minimum(1.0, 0.5 * apart)),
+        head_off=problem.heading(state) - drawn,
     )
 
 
@@ -128,12 +140,12 @@ def _hanging(problem: Problem, state: State, found: Evaluation) -> tuple[Array, 
     )
 
 
-def lines(problem: Problem, state: State, found: Evaluation) -> tuple[SparLine, ...]:
-    """Every spar along its length."""
+def lines(problem: Problem, state: State, acting: Acting) -> tuple[SparLine, ...]:
+    """Every spar along its length, by the section forces of all of them."""
     s = problem.structure
     out = []
-    for k, parts in enumerate(sections(problem, state, found, range(len(s.scenario.spar)))):
-        spar = s.scenario.spar[k]
+    for k, spar in enumerate(s.scenario.spar):
+        parts = acting[k]
         station, drawn, displacement = _places(problem, state, k)
         force, moment = (p.reshape(p.shape[0], -1, 3) for p in parts)
         out.append(
@@ -142,15 +154,15 @@ def lines(problem: Problem, state: State, found: Evaluation) -> tuple[SparLine, 
     return tuple(out)
 
 
-def sections(problem: Problem, state: State, found: Evaluation, spars: Sequence[int]) -> list[tuple[Array, Array]]:
+def sections(problem: Problem, state: State, found: Evaluation, spars: Sequence[int]) -> Acting:
     """Section forces and moments (case, piece, 2 ends, 3) about the turned local axes x, y, t, of each of the spars."""
     s = problem.structure
     elastic = [k for k in spars if not s.scenario.spar[k].rigid]
     force, moment = _elastic_sections(problem, state, found) if elastic else (np.empty(0), np.empty(0))
-    return [
-        (force[:, mine], moment[:, mine]) if k in elastic else _rigid_sections(problem, state, found, k)
+    return {
+        k: (force[:, mine], moment[:, mine]) if k in elastic else _rigid_sections(problem, state, found, k)
         for k, mine in ((k, s.elements.spar == k) for k in spars)
-    ]
+    }
 
 
 def _places(problem: Problem, state: State, k: int) -> tuple[Array, Array, Array]:

@@ -14,6 +14,7 @@ import numpy as np
 
 from guys.checks.demands import Demands, Item
 from guys.checks.extremes import TIE
+from guys.checks.items import gravity
 from guys.loads import CaseLine
 from guys.results import Finding, Verdict
 from guys.rotation import Array
@@ -50,11 +51,8 @@ def _reserve(finding: Finding) -> float:
 
 def _finding(item: Item, demands: Demands, use: Array, k: int, lines: Sequence[CaseLine]) -> Finding:
     """The governing case of item `k`: that of the greatest use; of the greatest demand not judged, where nothing judged is past."""
-    demand, capacity, required, mode = (a[:, k] for a in (demands.demand, demands.capacity, demands.required, demands.mode))
-    unknown = np.isnan(capacity) & (demand > 0)
-    score = np.where(np.isnan(use), -np.inf, use)
-    if np.isnan(use).all() or (unknown.any() and score.max() <= 1.0):
-        score = np.where(unknown, demand, np.nan) if unknown.any() else demand
+    demand, capacity, required, mode = demands.demand[:, k], demands.capacity[:, k], demands.required[:, k], demands.mode[:, k]
+    score = gravity(demand, capacity, use)
     if np.isnan(score).all():
         lacking = np.isnan(capacity).all()
         return Finding(

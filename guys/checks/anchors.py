@@ -19,21 +19,21 @@ from numpy.typing import NDArray
 
 from guys import holdfasts
 from guys.checks.items import Demands, Item, group
-from guys.equilibrium import Problem
 from guys.recovery import Forces
 from guys.rotation import Array
 from guys.scenario import Scenario
 from guys.scenario.holding import Holdfast
 from guys.scenario.model import AnchorPoint
+from guys.structure import Structure
 
 NOTHING = "no holdfast given: what holds it is not checked"
 USUAL = math.radians(45.0)
 """A pull at which a holdfast is asked what it lacks and how far its values spread; both are the same for all pulls, or nearly."""
 
 
-def demands(problem: Problem, forces: Forces) -> Demands:
+def demands(structure: Structure, forces: Forces) -> Demands:
     """Holding against pull, one item an anchor."""
-    scenario = problem.structure.scenario
+    scenario = structure.scenario
     pull = np.linalg.norm(forces.pull, axis=-1)
     capacity, mode = np.full(pull.shape, np.nan), np.full(pull.shape, -1)
     hanging, default = idle(scenario, forces), "anchor" in scenario.allowables.defaulted

@@ -18,20 +18,20 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys.checks.items import Demands, Item, group
-from guys.equilibrium import Problem
 from guys.recovery import Forces
 from guys.rotation import Array
 from guys.scenario.model import GroundFoot, Spar
 from guys.scenario.plate import Plate
+from guys.structure import Structure
 
 CONTACT = ("whole plate in contact", "one edge of the plate lifts", "the push is off the plate", "lifted off the ground")
 """How a plate stands, as `stand` counts it."""
 KERN = 1 / 6 + 1e-9
 
 
-def sliding(problem: Problem, slide: Array) -> Demands:
+def sliding(structure: Structure, slide: Array) -> Demands:
     """Friction against slide, one item a ground foot; slide : (case, spar) sideways over down, inf where lifted."""
-    scenario = problem.structure.scenario
+    scenario = structure.scenario
     allowed = scenario.allowables
     feet = [k for k, spar in enumerate(scenario.spar) if isinstance(spar.foot, GroundFoot)]
     items = [
@@ -45,17 +45,19 @@ def sliding(problem: Problem, slide: Array) -> Demands:
     return group(items, slide[:, feet], friction, allowed.sliding)
 
 
-def bearing(problem: Problem, forces: Forces) -> Demands:
-    """Allowable against found pressure, one item a base plate."""
-    scenario = problem.structure.scenario
+def bearing(structure: Structure, forces: Forces) -> Demands:
+    """Allowable against found pressure, one item a base plate, by the greatest push and by the least, which stands farther off."""
+    scenario = structure.scenario
     plates = [(k, spar, spar.plate) for k, spar in enumerate(scenario.spar) if spar.plate is not None]
     items, capacity = [], []
-    demand = np.zeros((problem.cases, len(plates)))
+    demand = np.zeros((len(forces.pull), len(plates)))
     mode = np.full(demand.shape, -1)
     for n, (k, spar, plate) in enumerate(plates):
         items.append(_item(spar, plate, "bearing" in scenario.allowables.defaulted))
         capacity.append(math.nan if plate.bearing is None else plate.bearing)
-        demand[:, n], mode[:, n] = stand(plate, spar.toward, forces.foot_force[:, k], forces.foot_moment[:, k])
+        most, least = (stand(plate, spar.toward, up, forces.foot_moment[:, k]) for up in (forces.foot_force[:, k, 2], forces.foot_up[:, k]))
+        demand[:, n] = np.fmax(most[0], least[0])
+        mode[:, n] = np.where(least[0] > most[0], least[1], most[1])
     return group(items, demand, np.array(capacity), scenario.allowables.bearing, mode)
 
 
@@ -66,15 +68,15 @@ def _item(spar: Spar, plate: Plate, default: bool) -> Item:
     return Item(f"base of {spar.name}", "bearing", "Pa", why, lacking, "bearing given", default, modes=CONTACT)
 
 
-def stand(plate: Plate, toward: float, force: Array, moment: Array) -> tuple[Array, NDArray[np.int64]]:
+def stand(plate: Plate, toward: float, up: Array, moment: Array) -> tuple[Array, NDArray[np.int64]]:
     """Pressure [Pa] under a plate and how it stands (`CONTACT`), case by case.
 
-    force, moment : (case, 3) [N], [N m] of the foot on the ground, z up; toward : bearing of the spar it is under [rad]
+    up (case,) [N], moment (case, 3) [N m] : of the foot on the ground, z up; toward : bearing of the spar it is under [rad]
     """
     bearing = toward if plate.along is None else plate.along
     along = np.array([math.sin(bearing), math.cos(bearing)])
     across = np.array([along[1], -along[0]])
-    push = -force[:, 2]
+    push = -up
     bears = push > 0
     safe = np.where(bears, push, 1.0)
     off = np.stack([moment[:, 1], -moment[:, 0]], axis=1) / safe[:, None]

@@ -16,10 +16,10 @@ import numpy as np
 
 from guys.checks.items import Demands, Item, group
 from guys.constants import INCH
-from guys.equilibrium import Problem
 from guys.rotation import Array
 from guys.scenario import parts
 from guys.scenario.model import Cable, Scenario
+from guys.structure import Structure
 
 USUAL = (0.07, 0.15)
 USUAL_SOURCE = "Planning Advisory Notice on ANSI/TIA-222-H, 13.3.2, read"
@@ -28,12 +28,12 @@ CLIPS = "clips"
 """Ends whose name holds this are made with wire rope clips."""
 
 
-def demands(problem: Problem, tension: Array) -> Demands:
+def demands(structure: Structure, tension: Array) -> Demands:
     """Strength against tension, one item a cable; tension : (case, cable) [N] of the greater end.
 
     Beside them the weakest of the parts with a strength of their own, of each cable whose rope has none.
     """
-    scenario = problem.structure.scenario
+    scenario = structure.scenario
     default = "cable" in scenario.allowables.defaulted
     links = [links_of(scenario, cable) for cable in scenario.cable]
     items = [_whole(cable, some, default) for cable, some in zip(scenario.cable, links, strict=True)]
@@ -45,7 +45,7 @@ def demands(problem: Problem, tension: Array) -> Demands:
         )
         for k, link in alone
     ]  # fmt: skip
-    holds = [*problem.structure.cables.strength, *(link.holds for _, link in alone)]
+    holds = [*structure.cables.strength, *(link.holds for _, link in alone)]
     columns = np.concatenate([tension, tension[:, [k for k, _ in alone]]], axis=1)
     mode = np.array([0 if item.modes else -1 for item in items], dtype=np.int64)
     return group(items, columns, np.array(holds, dtype=float), scenario.allowables.cable, mode)

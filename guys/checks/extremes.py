@@ -44,18 +44,18 @@ def measures(forces: Forces) -> Measures:
     """The measures of every case."""
     pull, foot = forces.pull, forces.foot_force
     sideways = np.hypot(foot[..., 0], foot[..., 1])
-    down = -foot[..., 2]
+    least = -forces.foot_up
     return Measures(
         tension=np.maximum(forces.tension_anchor, forces.tension_top),
         resultant=np.linalg.norm(pull, axis=-1),
         horizontal=np.hypot(pull[..., 0], pull[..., 1]),
         uplift=pull[..., 2],
-        down=down,
-        lift=np.where(np.isnan(down), np.nan, np.maximum(foot[..., 2], 0.0)),
+        down=-foot[..., 2],
+        lift=np.where(np.isnan(least), np.nan, np.maximum(forces.foot_up, 0.0)),
         sideways=sideways,
         whole=np.linalg.norm(foot, axis=-1),
         turning=np.linalg.norm(forces.foot_moment, axis=-1),
-        slide=np.where(np.isnan(down), np.nan, np.where(down > 0, sideways / np.where(down > 0, down, 1.0), np.inf)),
+        slide=np.where(np.isnan(least), np.nan, np.where(least > 0, sideways / np.where(least > 0, least, 1.0), np.inf)),
         lean=forces.head_lean,
     )
 

@@ -78,6 +78,15 @@ class Demands:
         return Demands(self.items, demand, self.capacity, self.required, self.mode)
 
 
+def gravity(demand: Array, capacity: Array, use: Array) -> Array:
+    """(case,) of one item, by which cases are told apart: the use; where nothing judged is past, what is not judged by its demand."""
+    unknown = np.isnan(capacity) & (demand > 0)
+    score = np.where(np.isnan(use), -np.inf, use)
+    if np.isnan(use).all() or (unknown.any() and score.max() <= 1.0):
+        return np.where(unknown, demand, np.nan) if unknown.any() else demand
+    return score
+
+
 def join(parts: Sequence[Demands]) -> Demands:
     """Cases one after another, the same items in all."""
     return Demands(parts[0].items, *(np.concatenate([getattr(p, n) for p in parts]) for n in COLUMNS))

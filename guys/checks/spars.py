@@ -21,14 +21,15 @@ from functools import cache
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import recovery, tables, units
+from guys import tables, units
 from guys.catalogue import tubes
 from guys.checks import stress
 from guys.checks.items import Demands, Item, group
-from guys.equilibrium import Evaluation, Problem, State
 from guys.lattice import DIAGONALS
 from guys.loads import CaseLine
+from guys.recovery import Acting
 from guys.rotation import Array
+from guys.scenario import Scenario
 from guys.scenario.lattice import Bar, Lattice
 from guys.scenario.model import Material, Section, Spar
 from guys.structure import Structure
@@ -59,9 +60,9 @@ class Strength:
     source: str = ""
 
 
-def leans(problem: Problem, lean: Array) -> Demands:
+def leans(structure: Structure, lines: Sequence[CaseLine], lean: Array) -> Demands:
     """Allowed against found angle between the drawn axis and the line foot-head, one item a spar; lean : (case, spar) [rad]."""
-    scenario = problem.structure.scenario
+    scenario = structure.scenario
     allowed = scenario.allowables
     items = [
         Item(
@@ -70,26 +71,32 @@ def leans(problem: Problem, lean: Array) -> Demands:
         )
         for s in scenario.spar
     ]  # fmt: skip
-    return group(items, np.where(_asked(problem.loads.lines)[:, None], lean, np.nan), allowed.lean, 1.0)
+    return group(items, np.where(_asked(lines)[:, None], lean, np.nan), allowed.lean, 1.0)
 
 
 def _asked(lines: Sequence[CaseLine]) -> NDArray[np.bool_]:
     return np.array([not math.isnan(line.wind_from) and line.kind == "service" for line in lines])
 
 
-def sections(problem: Problem, state: State, found: Evaluation) -> Demands:
+def judged(scenario: Scenario) -> list[int]:
+    """Spars that have a section with a strength."""
+    return [
+        k
+        for k, spar in enumerate(scenario.spar)
+        if not all(math.isnan(s.capacity) for section in spar.section for s in strengths_of(section, scenario.material))
+    ]
+
+
+def sections(structure: Structure, cases: int, acting: Acting) -> Demands:
     """Strength against what acts, one item a section of a spar, at its worst station in every case."""
-    structure = problem.structure
     scenario = structure.scenario
     strengths = [[strengths_of(section, scenario.material) for section in spar.section] for spar in scenario.spar]
-    judged = [k for k, some in enumerate(strengths) if not all(math.isnan(s.capacity) for each in some for s in each)]
-    acting = dict(zip(judged, recovery.sections(problem, state, found, judged), strict=True))
     items, capacity, demand, mode = [], [], [], []
     for k, spar in enumerate(scenario.spar):
         station, which = _stations(structure, k)
         for n, strength in ((n, strength) for n, each in enumerate(strengths[k]) for strength in each):
             mine = np.flatnonzero(which == n)
-            worst, at = _worst(strength, acting.get(k), mine, problem.cases)
+            worst, at = _worst(strength, acting.get(k), mine, cases)
             items.append(_item(spar, n, strength, station[mine], "spar" in scenario.allowables.defaulted))
             demand.append(worst)
             mode.append(at)

@@ -39,6 +39,7 @@ from guys.drawing.rounding import (
 )
 from guys.drawing.strip import kinds, standing, state_summary
 from guys.results import Finding, Solution
+from guys.scenario.patches import PEAKS
 from guys.scenario.standard_wind import averaging_words
 
 SIZE = 8.6
@@ -218,6 +219,8 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
                 f"{wind.profile.words}, air {tongue.say(density, wind.air_density)}; {len(wind.directions)} bearings listed{swept}",
             )
         )
+    if wind is not None and solution.scenario.gust.method != "plain":
+        rows.append(Entry("Gusts", f"patch by patch: {PEAKS}"))
     parts = []
     for case in solution.scenario.case:
         lost = f", without {', '.join(case.without)}" if case.without else ""

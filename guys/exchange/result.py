@@ -16,6 +16,7 @@ import numpy as np
 from guys.checks.spars import section_thing
 from guys.results import CableWorst, Extreme, Finding, FootForces, FootWorst, Solution, SparLine, Sweep
 from guys.rotation import Array
+from guys.scenario import Scenario, patches
 
 FORMAT = "guys-result/1"
 
@@ -28,6 +29,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
         "guys_version": solution.version,
         "scenario_sha256": solution.scenario.sha256,
         "cases": [_case(solution, k) for k in range(len(solution.case))],
+        "gust": _gust(solution.scenario),
         "worst": {
             "cables": [_worst_cable(c) for c in solution.worst_cables],
             "anchors": [_worst_anchor(a) for a in solution.worst_anchors],
@@ -96,6 +98,20 @@ def _case(solution: Solution, k: int) -> dict[str, Any]:
     if without and not gone:
         out["without"] = without
     return out
+
+
+def _gust(scenario: Scenario) -> dict[str, Any] | None:
+    """The patches of gust of every case with wind, None where gusts are plain."""
+    bands = patches.of(scenario)
+    if not bands:
+        return None
+    return {
+        "method": scenario.gust.method,
+        "k_s": scenario.gust.k_s,
+        "turbulence": scenario.gust.turbulence,
+        "patches": [{"from_m": number(patch.low), "to_m": number(patch.high)} for patch in bands],
+        "note": patches.PEAKS,
+    }
 
 
 def _service_worst(solution: Solution) -> dict[str, Any] | None:

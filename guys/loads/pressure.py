@@ -70,7 +70,8 @@ def mean_pressure(wind: Wind, low: Array, high: Array, share: Share | None = Non
     def blows(z: Array) -> Array:
         return _shape(wind, z) if share is None else _shape(wind, z) * share(z)
 
-    edges = np.sort([bottom, *(np.clip(b, bottom, top) for b in (*bends(wind.profile), *jumps)), top], axis=0)
+    inner = [np.full_like(bottom, z) for z in bends(wind.profile)] + list(jumps)
+    edges = np.sort(np.stack([bottom, *(np.clip(z, bottom, top) for z in inner), top]), axis=0)
     total = np.zeros_like(bottom)
     for a, b in pairwise(edges):
         part = b - a

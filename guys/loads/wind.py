@@ -18,8 +18,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from guys.loads.dead import fittings_of
 from guys.loads import gusts
+from guys.loads.dead import fittings_of
 from guys.loads.drag import attached, chosen
 from guys.loads.iced import Ice
 from guys.loads.pressure import across, blowing_to, mean_pressure, pressure

@@ -30,6 +30,10 @@ SINGLE_UP_TO = 50.0
 """Greatest height [m] of a mast for which a single patch may do (from memory)."""
 GUST = 3.0
 """Longest averaging time [s] of a speed that is a gust."""
+PEAKS = (
+    "every number of a case with wind is its mean and the root of the sum of squares of what each patch changes in it; such peaks are not "
+    "of one equilibrium and do not add up"
+)
 ONE_LEVEL = 0.02
 """Attachments nearer than this share of the mast are one level; a shorter tip belongs to the span below it."""
 
@@ -102,16 +106,13 @@ def notes(scenario: Scenario) -> Iterator[str]:
         return
     gust = scenario.gust
     intensity = "I_v of the profile" if gust.turbulence is None else f"I_v {gust.turbulence:g}, given"
-    told = ", ".join(patch.words.removeprefix("gust from ") for patch in asked)
+    levels = sum(1 for patch in asked if math.isinf(patch.low)) > 1
+    how = "one patch and the tip" if not levels else "spans and tip, and from mid-span to mid-span"
     yield (
-        f"gusts patch by patch, each with the mean wind q/(1 + 7 I_v): {told}; in a patch 2 k_s I_v of the mean on top, k_s {gust.k_s:g}, "
-        f"{intensity} (loads and patches of EN 1993-3-1 B.4.3: from memory)"
+        f"gusts: {len(asked)} patches, {how}, each with the mean wind q/(1 + 7 I_v) on all; in a patch 2 k_s I_v of the mean on top, "
+        f"k_s {gust.k_s:g}, {intensity} (EN 1993-3-1 B.4.3, from memory)"
     )
-    yield (
-        "gusts: every number of a case with wind is its own mean and the root of the sum of the squares of what the patches change in it "
-        "(EN 1993-3-1 B.4.3.2.5: read in a public transcription); such numbers are not of one equilibrium and do not add up. Curves of "
-        "cables and distances to them are those of the mean wind"
-    )
+    yield f"gusts: {PEAKS} (EN 1993-3-1 B.4.3.2.5, read in a public transcription); drawn cables are those of the mean wind"
 
 
 def findings(draft: Draft) -> Iterator[Finding]:

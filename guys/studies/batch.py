@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, fields, replace
 from typing import Any
 
@@ -11,13 +11,15 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import band, recovery, stability
-from guys.checks import demands
+from guys.checks import demands, spars
 from guys.checks.demands import Demands
 from guys.equilibrium import Problem, State
 from guys.loads import CaseLine, LoadCases
 from guys.results import SparLine
 from guys.rotation import Array, turned
 from guys.setting import Setting
+from guys.studies import peaks
+from guys.studies.peaks import Asked
 
 CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
@@ -29,15 +31,15 @@ PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
 """Called with cases done and cases in all."""
-Change = Callable[[LoadCases, slice], LoadCases]
-"""Changes the loads of the lines of a slice."""
+Change = Callable[[LoadCases, NDArray[np.int64]], LoadCases]
+"""Changes the loads of states, told the line each belongs to."""
 Start = tuple[State, LoadCases]
 """States of equilibrium and their loads, from which paths go out."""
 
 
 @dataclass(frozen=True)
 class Batch:
-    """Solved case lines.
+    """Solved case lines.  Of a line with patches of gust everything is the peak over its states (`guys.studies.peaks`).
 
     code : (case,) of `guys.stability`;  error, reference, rounds, lost_at, balance : (case,);  reason, note : (case,) words
     branched : (case,) stands off its straight branch;  spins : (case,) neutral, but only by the free spin of ball-based spars
@@ -97,60 +99,103 @@ def solve_lines(
     """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads;
     `start`: of each line's path, where that is not the setting."""
     parts = []
-    for first in range(0, len(lines), CHUNK):
-        problem = setting.under(lines[first : first + CHUNK])
+    step = max(1, CHUNK // max((len(line.states()) for line in lines), default=1))
+    for first in range(0, len(lines), step):
+        asked, states = peaks.asked(lines[first : first + step])
+        problem = setting.under(states)
         if change is not None:
-            problem = replace(problem, loads=change(problem.loads, slice(first, first + CHUNK)))
+            problem = replace(problem, loads=change(problem.loads, first + asked.owner))
         state, loads = setting.state, setting.loads
         if start is not None:
-            rows = np.arange(first, first + problem.cases)
-            state, loads = start[0].take(rows), start[1].take(rows)
+            state, loads = start[0].take(first + asked.owner), start[1].take(first + asked.owner)
         judged = stability.judge(problem, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
-        parts.append(recover(problem, judged, detail))
+        parts.append(recover(problem, judged, detail, asked))
         if progress is not None:
-            progress(min(first + CHUNK, len(lines)), len(lines))
+            progress(min(first + step, len(lines)), len(lines))
     return join(parts)
 
 
-def recover(problem: Problem, judged: stability.Judged, detail: bool) -> Batch:
-    """What is asked for, from judged states."""
+def recover(problem: Problem, judged: stability.Judged, detail: bool, asked: Asked | None = None) -> Batch:
+    """What is asked for, from judged states; asked: the lines they are of, left out: each is of a line of its own."""
+    asked = asked or peaks.grouped(problem.loads.lines, [1] * problem.cases)
     found = problem.evaluate(judged.state)
     forces = recovery.forces(problem, judged.state, found)
     gone = np.flatnonzero(judged.code >= stability.NONE)
-    mirrored = sorted(judged.mirror)
-    mirror, mirror_demands = None, None
-    if mirrored:
-        part = problem.take(np.array(mirrored))
-        other = State.join([judged.mirror[k] for k in mirrored])
-        again = part.evaluate(other)
-        mirror = recovery.forces(part, other, again)
-        mirror_demands = demands.of(part, other, again, mirror)
+    scenario = problem.structure.scenario
+    acting = recovery.sections(problem, judged.state, found, range(len(scenario.spar)) if detail else spars.judged(scenario))
+    along = recovery.lines(problem, judged.state, acting) if detail else ()
+    curves = recovery.curves(problem, judged.state, found, CURVE_POINTS) if detail else np.zeros((problem.cases, 0, 0, 3))
+    curves[gone] = np.nan
     balance = recovery.whole_balance(problem, judged.state, found, forces)
     balance[gone] = np.nan
     notes = [_note(problem, judged, k) for k in range(problem.cases)]
-    spars = recovery.lines(problem, judged.state, found) if detail else ()
-    curves = recovery.curves(problem, judged.state, found, CURVE_POINTS) if detail else np.zeros((problem.cases, 0, 0, 3))
-    curves[gone] = np.nan
+    reasons = [_reason(problem, judged, forces, k) for k in range(problem.cases)]
+    worst = np.array([max(asked.rows(k), key=lambda row: judged.code[row]) for k in range(len(asked.lines))])
+    settled, spins = judged.code == stability.STABLE, np.array([spins for _, spins in notes])
+    mirror, mirror_demands, mirror_lines = _mirrored(problem, judged, asked)
+    judged_forces, judged_demands = _judged(problem, forces, acting, gone, asked)
     return Batch(
-        lines=problem.loads.lines,
-        code=judged.code,
-        error=judged.error,
-        reference=found.reference,
-        rounds=judged.rounds,
-        lost_at=judged.lost_at,
-        balance=balance,
-        reason=tuple(_reason(problem, judged, forces, k) for k in range(problem.cases)),
-        note=tuple(note for note, _ in notes),
-        branched=judged.branched & (judged.code <= stability.NEUTRAL),
-        spins=np.array([spins for _, spins in notes]),
-        forces=forces.blank(gone),
-        demands=demands.of(problem, judged.state, found, forces).blank(gone),
+        lines=asked.lines,
+        code=judged.code[worst],
+        error=np.maximum.reduceat(judged.error, asked.start),
+        reference=np.maximum.reduceat(found.reference, asked.start),
+        rounds=np.add.reduceat(judged.rounds, asked.start),
+        lost_at=judged.lost_at[worst],
+        balance=np.fmax.reduceat(balance, asked.start),
+        reason=tuple(_in_patch(problem, asked, reasons[row], row) for row in worst),
+        note=tuple(_first(_in_patch(problem, asked, notes[row][0], row) for row in asked.rows(k)) for k in range(len(worst))),
+        branched=np.logical_or.reduceat(judged.branched, asked.start) & (judged.code[worst] <= stability.NEUTRAL),
+        spins=np.logical_and.reduceat(settled | spins, asked.start) & np.logical_or.reduceat(spins, asked.start),
+        forces=judged_forces,
+        demands=judged_demands,
         mirror=mirror,
         mirror_demands=mirror_demands,
-        mirror_lines=tuple(problem.loads.lines[k] for k in mirrored),
-        spars=tuple(_blank(s, gone) for s in spars),
-        curves=curves,
+        mirror_lines=mirror_lines,
+        spars=peaks.spars(asked, [_blank(s, gone) for s in along]),
+        curves=curves[asked.start],
     )
+
+
+def _judged(
+    problem: Problem, forces: recovery.Forces, acting: recovery.Acting, gone: NDArray[np.int64], asked: Asked
+) -> tuple[recovery.Forces, Demands]:
+    """Forces and demands of the lines, NaN where a state of theirs is gone."""
+    s = problem.structure
+    states = demands.of(s, problem.loads.lines, forces, acting).blank(gone)
+    lost = np.unique(asked.owner[gone])
+    together = peaks.forces(asked, forces)
+    if asked.plain:
+        return together.blank(lost), states
+    whole = demands.of(s, asked.lines, together, peaks.acting(asked, acting))
+    return together.blank(lost), peaks.judged(asked, whole, states).blank(lost)
+
+
+def _mirrored(
+    problem: Problem, judged: stability.Judged, asked: Asked
+) -> tuple[recovery.Forces | None, Demands | None, tuple[CaseLine, ...]]:
+    """The same of lines that branch, in the other state where there is one."""
+    if not judged.mirror:
+        return None, None, ()
+    part, rows = asked.take(sorted({int(asked.owner[k]) for k in judged.mirror}))
+    some = problem.take(rows)
+    beside = [judged.mirror.get(int(k)) or judged.state.take(np.array([k])) for k in rows]
+    other = State.join(beside)
+    again = some.evaluate(other)
+    forces = recovery.forces(some, other, again)
+    acting = recovery.sections(some, other, again, spars.judged(some.structure.scenario))
+    gone = np.flatnonzero(judged.code[rows] >= stability.NONE)
+    return *_judged(some, forces, acting, gone, part), part.lines
+
+
+def _first(words: Iterable[str | None]) -> str | None:
+    """The first there are."""
+    return next((some for some in words if some), None)
+
+
+def _in_patch(problem: Problem, asked: Asked, words: str | None, row: int) -> str | None:
+    """What is said of a state, with its gust where it is one of several."""
+    patch = problem.loads.lines[row].patch
+    return words if words is None or asked.plain or patch is None else f"{patch.words}: {words}"
 
 
 def _blank(spar: SparLine, gone: NDArray[np.int64]) -> SparLine:

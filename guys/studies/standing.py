@@ -279,7 +279,7 @@ def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...])
     if k == 0:
         problem, judged = setting.problem, setting.judged
     else:
-        problem = setting.under([line])
+        problem = setting.under(line.states()[:1])
         judged = stability.judge(problem, setting.state, setting.loads)
     again = resolve.resolve(problem, judged.state)
     return SelfCheck(balance, again.verdict, again.difference, line.name, line.wind_from)
