@@ -56,7 +56,7 @@ def forces(foot: tuple[float, float, float]) -> Forces:
     flags = np.zeros((1, 1), dtype=bool)
     return Forces(
         np.array([[3.0]]), np.array([[4.0]]), vector, vector, zero, flags, ~flags, np.array([[[3.0, 4.0, 12.0]]]), np.array([[foot]]),
-        np.array([[[0.0, 6.0, 8.0]]]), np.array([[0.1]]),
+        np.array([[foot[2]]]), np.array([[[0.0, 6.0, 8.0]]]), np.array([[[2 * math.sin(0.05), 0.0, 0.0]]]),
     )  # fmt: skip
 
 

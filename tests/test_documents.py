@@ -197,6 +197,7 @@ TABLES = {
     "Part": "[part.NAME]`",
     "Setting": "[setting]`",
     "WindEntry": "[wind]`",
+    "Gust": "[gust]`",
     "Ice": "[ice]`",
     "CaseEntry": "[[case]]`",
     "CombinationsEntry": "[combinations]`",

@@ -13,7 +13,7 @@ from toml_text import MAST, changed, dumps_tables
 
 from guys import parse_scenario
 from guys.constants import air_density
-from guys.loads.pressure import mean_pressure, mean_wind_pressure, pressure, turbulence_intensity
+from guys.loads.pressure import mean_pressure, turbulence_intensity
 from guys.scenario.model import Wind
 from guys.scenario.standard_wind import ground_elevation_factor, gust_ratio
 from tests.published.winds import q, scenario, wind
@@ -187,18 +187,7 @@ def test_an_en_profile_says_how_high_it_goes() -> None:
 # ---------------------------------------------------------------- mean wind and turbulence
 
 
-@pytest.mark.parametrize("profile", ['{ en1991 = "III", orography = 1.1 }', '{ asce7 = "B" }'])
-def test_peak_is_mean_with_its_turbulence(profile: str) -> None:
-    blows = wind(profile=profile)
-    z = np.array([0.0, 6.0, 30.0, 120.0])
-    mean_wind, turbulence = mean_wind_pressure(blows, z), turbulence_intensity(blows.profile, z)
-    assert mean_wind is not None
-    assert turbulence is not None
-    assert mean_wind * (1 + 7 * turbulence) == pytest.approx(pressure(blows, z), rel=ROUNDING)
-
-
-def test_profiles_without_turbulence_have_no_mean_wind() -> None:
+def test_uniform_and_power_profiles_say_nothing_of_turbulence() -> None:
     for profile in ('"uniform"', "{ power = 0.14 }"):
         blows = wind(profile=profile)
         assert turbulence_intensity(blows.profile, np.array([10.0])) is None
-        assert mean_wind_pressure(blows, np.array([10.0])) is None

@@ -10,7 +10,7 @@ Lh))^2 near a crest, else 1.  s and f are the factors on speed and pressure that
 The mean over a stretch is integrated by Gauss points in every part between `low` and `high`, graded toward the lower end, where a power
 starts with an upright tangent: z = a + (b - a) t^4.
 
-Mean wind: the peak is mean (1 + 7 I_v) by definition of I_v, for every profile whose I_v is known: EN 1991-1-4 by (4.7), ASCE 7 by
+Mean wind: the peak is mean (1 + 7 I_v), for every profile whose I_v is known: EN 1991-1-4 by (4.7), ASCE 7 by
 I = c (10 m / z)^(1/6) (26.11-7, from memory); a uniform or power profile says nothing of turbulence.
 """
 
@@ -38,12 +38,6 @@ PEAK = 7.0
 def pressure(wind: Wind, z: Array) -> Array:
     """q [Pa] at heights z [m]."""
     return np.asarray(_still(wind) * _shape(wind, z))
-
-
-def mean_wind_pressure(wind: Wind, z: Array) -> Array | None:
-    """q_m [Pa] of the mean wind at heights z [m], of which the peak is 1 + 7 I_v; None where the profile has no turbulence."""
-    turbulence = turbulence_intensity(wind.profile, z)
-    return None if turbulence is None else np.asarray(pressure(wind, z) / (1.0 + PEAK * turbulence))
 
 
 def turbulence_intensity(profile: Profile, z: Array) -> Array | None:

@@ -7,7 +7,7 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from guys.loads.pressure import mean_wind_pressure, turbulence_intensity
+from guys.loads.pressure import pressure, turbulence_intensity
 from guys.scenario.model import Wind
 from guys.scenario.standard_wind import probability_factor
 from tests.published.compare import Allowance, Row, published
@@ -34,8 +34,10 @@ def turbulence(blows: Wind, z: float) -> float:
 
 
 def mean_speed(blows: Wind, z: float) -> float:
-    mean = mean_wind_pressure(blows, np.array([z]))
-    assert mean is not None
+    at = np.array([z])
+    turbulence = turbulence_intensity(blows.profile, at)
+    assert turbulence is not None
+    mean = pressure(blows, at) / (1 + 7 * turbulence)
     return math.sqrt(2 * float(mean[0]) / blows.air_density)
 
 
