@@ -25,7 +25,7 @@ N = 12e3
 def stand(east: float, north: float, plate: Plate = PLATE, toward: float = 0.0, push: float = N) -> tuple[float, str]:
     """Pressure and words of a push on the ground at a place east and north of the middle."""
     force = np.array([[0.0, 0.0, -push]])
-    pressure, how = bases.stand(plate, toward, force, np.cross([[east, north, 0.0]], force))
+    pressure, how = bases.stand(plate, toward, force[:, 2], np.cross([[east, north, 0.0]], force))
     return float(pressure[0]), bases.CONTACT[int(how[0])]
 
 

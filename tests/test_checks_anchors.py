@@ -78,7 +78,7 @@ def test_what_hangs_slack_where_a_holdfast_is_not_judged_is_no_load() -> None:
     verdicts = []
     for slack in (True, False):
         some = replace(forces, pull=pull, slack=np.full_like(forces.slack, slack))
-        found = allowables.findings(demands(cases.problem, some), cases.problem.loads.lines)
+        found = allowables.findings(demands(cases.problem.structure, some), cases.problem.loads.lines)
         verdicts.append(next(f for f in found if f.thing == "anchor A").verdict)
     assert verdicts == ["within", "not judged"]
 

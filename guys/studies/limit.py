@@ -17,7 +17,7 @@ from dataclasses import replace
 import numpy as np
 
 from guys import recovery, stability
-from guys.checks import demands
+from guys.checks import demands, spars
 from guys.checks.alarms import CAUTIONS
 from guys.equilibrium import Index, Problem, State
 from guys.errors import Fault, ScenarioError
@@ -26,6 +26,7 @@ from guys.loads import CaseLine, lines_of
 from guys.path import Paths, Stops, crossings, follow
 from guys.rotation import Array
 from guys.scenario import Scenario
+from guys.scenario.reader import fault_at
 from guys.setting import Setting, find
 from guys.structure import build
 from guys.studies.batch import CHUNK, Batch, Progress, falling_words, recover, slack_words, solve_lines
@@ -55,6 +56,9 @@ def limits(scenario: Scenario, *, apart: float = COARSE, progress: Progress | No
     if scenario.wind is None or not any(case.wind > 0 for case in scenario.case):
         fault = Fault(scenario.path, None, None, "case", "no case has wind, so there is no limit to find; give [wind] and a case with wind")
         raise ScenarioError([fault])
+    if scenario.gust.method != "plain":
+        text = 'not available in this version for `guys limit`, which follows one gust on everything; write method = "plain"'
+        raise ScenarioError([fault_at(scenario, ("gust", "method"), text)])
     setting = find(build(scenario))
     most = max(MOST, MOST_TIMES * scenario.wind.speed)
     given = scenario.wind.directions
@@ -182,7 +186,9 @@ def _watched(problem: Problem, state: State) -> Array:
     """(row, 1 + cable): greatest use less one, -1 where nothing is judged; then the looseness of every cable."""
     found = problem.evaluate(state)
     forces = recovery.forces(problem, state, found)
-    use = demands.of(problem, state, found, forces).use
+    structure = problem.structure
+    acting = recovery.sections(problem, state, found, spars.judged(structure.scenario))
+    use = demands.of(structure, problem.loads.lines, forces, acting).use
     loose = np.where(forces.present, recovery.looseness(problem, state, found), np.nan)
     return np.column_stack([np.nan_to_num(use, nan=0.0, posinf=1e6).max(axis=1, initial=0.0) - 1.0, loose])
 
