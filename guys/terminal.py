@@ -121,7 +121,7 @@ def _place(extreme: Extreme) -> tuple[str, str]:
 
 
 def _findings(solution: Solution, systems: tuple[System, ...], stream: TextIO) -> None:
-    """What is past, then the nearest of what is within, of each quantity."""
+    """What is past, then of what is within every anchor and the nearest of each other quantity."""
     findings = solution.findings
     if not standing(solution):
         stream.write("\nNothing judged: nothing stands\n")
@@ -129,7 +129,7 @@ def _findings(solution: Solution, systems: tuple[System, ...], stream: TextIO) -
     shown: list[Finding] = [f for f in findings if f.verdict == "past"]
     seen = {f.quantity for f in shown}
     for f in findings:
-        if f.verdict == "within" and f.quantity not in seen:
+        if f.verdict == "within" and (f.quantity not in seen or f.quantity == "pull"):
             shown.append(f)
             seen.add(f.quantity)
     spoken = rounding.Tongue(systems)
@@ -141,7 +141,7 @@ def _findings(solution: Solution, systems: tuple[System, ...], stream: TextIO) -
     ]  # fmt: skip
     of_which = ", of the cases with an equilibrium" if any(solution.unsettled) else ""
     table(
-        f"Against the allowables (all that is past, and the nearest within{of_which})",
+        f"Against the allowables (all that is past, every anchor, and the nearest within{of_which})",
         ["thing", "quantity", "demand", "capacity", "factor", "required", "case", "wind from", "governs"],
         rows,
         stream,

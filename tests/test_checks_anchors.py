@@ -106,3 +106,22 @@ def test_an_allowable_of_one_is_met_at_the_pull_itself() -> None:
         finding(held({"kind": "tested", "pull": f"{first.demand + more!r} N"}, allowables={"anchor": 1.0})).verdict for more in (1e-6, -1.0)
     )
     assert (at, below) == ("within", "past")
+
+
+def test_a_weak_rod_governs_whatever_the_ground_holds() -> None:
+    """Breaking loads are not spread: low, best and high of a holdfast never pass that of its rod."""
+    heavy = {"kind": "block", "mass": "90 t", "friction": 0.5, "low": 0.5, "high": 2.0}
+    f = finding(held({**heavy, "rod_strength": "40 kN"}))
+    assert (f.capacity, f.governs) == (40e3, "breaking of its rod, eye or strap")
+    assert f.factor == pytest.approx(40e3 / f.demand)
+    strong, without = finding(held({**heavy, "rod_strength": "9 MN"})), finding(held(heavy))
+    assert strong == without
+    assert strong.governs == "sliding"
+
+
+def test_what_a_rod_is_made_of_is_asked_for_but_of_a_test() -> None:
+    """A pull test has pulled the rod too."""
+    told = held({"kind": "block", "mass": "900 kg", "friction": 0.5}).not_checked
+    assert "rod, eye or strap of h (give rod_strength)" in told
+    for known in ({"kind": "tested", "pull": "50 kN"}, {"kind": "block", "mass": "900 kg", "friction": 0.5, "rod_strength": "50 kN"}):
+        assert not any("rod_strength" in words for words in held(known).not_checked)

@@ -247,6 +247,18 @@ def judged(allowables: dict[str, Any], *sets: str) -> dict[str, tuple[float, str
     return {f.thing: (f.required, f.case) for f in solve(parse_scenario(dumps_tables(document))).findings if f.quantity == "tension"}
 
 
+def test_every_factor_of_factored_cases_is_of_something_judged() -> None:
+    """Each key of `allowables.factored` reaches what it names; a base plate among them."""
+    keys = {"cable": 1.1, "anchor": 1.2, "sliding": 1.3, "spar": 1.4, "bearing": 1.5}
+    table = {"wind": {**MAST["wind"], "directions": ["0 deg"]}, "combinations": {"sets": ["eu-strength"]}, "allowables": {"factored": keys}}
+    document = MAST | table | {"holdfast": {"h": {"kind": "tested", "pull": "1 MN"}}}
+    document["anchor"] = [{**anchor, "holdfast": "h"} for anchor in MAST["anchor"]]
+    plate = {"length": "0.5 m", "width": "0.5 m", "bearing": "1 MPa"}
+    document["spar"] = [{**MAST["spar"][0], "plate": plate, "friction": 0.5}]
+    found = solve(parse_scenario(dumps_tables(document))).findings
+    assert {f.required for f in found if f.quantity != "lean" and f.verdict != "not judged"} == set(keys.values())
+
+
 def test_factored_cases_are_judged_by_their_own_factor_where_given() -> None:
     assert {required for required, _ in judged({}, "eu-strength").values()} == {2.0}
     assert {required for required, _ in judged({"factored": {"cable": 1.5}}, "eu-strength").values()} == {1.5}

@@ -99,10 +99,10 @@ def test_a_heavier_block_may_press_too_hard_and_is_sized_all_the_same() -> None:
     block = {**BLOCK, "length": "1.2 m", "width": "1.2 m", "eye_height": "0.1 m", "bearing": "30 kPa"}
     table = made.scenario(document({"block": block})).holdfast["block"]
     [mass] = sizes(table)
-    pulls = Pulls(np.array([3000.0]), np.radians([45.0]), np.array([False]), ())
-    found = least(mass, pulls, 1.5)
+    pulls = Pulls(np.array([3000.0]), np.radians([45.0]), np.array([1.5]), np.array([False]), ())
+    found = least(mass, pulls)
     assert found is not None
-    assert reserve(mass.put(found), pulls) == pytest.approx(1.5, rel=1e-6)
+    assert reserve(mass.put(found), pulls) == pytest.approx(1.0, rel=1e-6)
     assert reserve(mass.put(20 * found), pulls) == 0.0
 
 
@@ -110,6 +110,27 @@ def test_shared_anchors_and_the_default_factor_are_told(sized: Sizing) -> None:
     assert sized.warnings[0].startswith("anchor A holds 2 cables (9 m A, 17 m A), sized for their resultant: a single point of failure")
     assert "default of allowables.anchor" in sized.warnings[-1]
     assert any("cone of rock" in words for words in sized.not_checked)
+
+
+def test_factored_cases_ask_for_their_own_factor() -> None:
+    """The same pulls in a factored case ask for the factor of factored cases, as the findings do; the proof load goes with it."""
+    found = {}
+    for kind in ("service", "factored"):
+        allowed = {"anchor": 1.5, "factored": {"anchor": 3.0}}
+        table = document({"tested": TESTED}, case=[{"name": "storm", "kind": kind}], allowables=allowed)
+        found[kind] = size(made.scenario(table)).anchors[0]
+    for kind, factor in (("service", 1.5), ("factored", 3.0)):
+        assert found[kind].proof == pytest.approx(factor * found[kind].pull)
+        [tested] = found[kind].needs
+        assert tested.required == factor
+        assert tested.needed == pytest.approx(factor * found[kind].pull * 1.25, rel=HALVED)
+
+
+def test_nothing_will_do_behind_a_weak_rod() -> None:
+    found = size(made.scenario(document({"block": {**BLOCK, "rod_strength": "1 kN"}})))
+    assert need(found, "block").holds is None
+    assert need(found, "block").reason.endswith("will do: breaking of its rod, eye or strap")
+    assert found.short == ("A", "B", "C")
 
 
 def test_torque_beside_soil_is_sized_too() -> None:

@@ -56,7 +56,7 @@ def test_every_warning_note_and_caution_is_printed() -> None:
 def test_what_is_past_is_listed_and_the_unjudged_named() -> None:
     rows = section(
         printed(made.solved(made.mast(rope={"rope": made.rope(strength=2900.0)}))),
-        "Against the allowables (all that is past, and the nearest within)",
+        "Against the allowables (all that is past, every anchor, and the nearest within)",
     )
     assert sum(" past" in row for row in rows) == 3
     assert "2 (default)" in rows[1]

@@ -43,9 +43,9 @@ CAUTIONS = (
     "Nothing added to the mast. Check holdfasts after rain, thaw and wind, and each morning.",
 )
 NOT_CHECKED = (
-    "lugs, terminations and turnbuckles that are not among the `ends` of a cable",
-    "the ground under bases without a plate; joints and welds of spars, bolts of bases; spars that are not straight as made",
-    "raising, fatigue, vibration, loss of a cable unless listed as a case (`guys lost` takes each away)",
+    "lugs, terminations and turnbuckles that are not among a cable's ends",
+    "the ground under bases without a plate, bolts of bases; joints and welds of spars, horizontals of lattices; spars bent as made",
+    "raising, fatigue, vibration, loss of a cable unless listed as a case (guys lost takes each away)",
 )
 
 

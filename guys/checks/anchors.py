@@ -12,7 +12,7 @@ An anchor without a holdfast is reported and not judged.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 
 import numpy as np
 from numpy.typing import NDArray
@@ -77,22 +77,32 @@ def unchecked(scenario: Scenario) -> Iterator[str]:
     bare = [anchor.name for anchor in scenario.anchor if anchor.holdfast is None]
     if bare:
         yield f"what holds {', '.join(bare)}: no holdfast given"
-    for name in dict.fromkeys(anchor.holdfast for anchor in scenario.anchor if anchor.holdfast is not None):
-        yield from lacking(name, scenario.holdfast[name])
+    yield from lacking(used(scenario))
+
+
+def used(scenario: Scenario) -> dict[str, Holdfast]:
+    """The holdfasts that hold an anchor, in the order of the anchors."""
+    return {anchor.holdfast: scenario.holdfast[anchor.holdfast] for anchor in scenario.anchor if anchor.holdfast is not None}
 
 
 def assumptions(scenario: Scenario, pull: Array) -> Iterator[str]:
     """What was taken for granted of the holdfasts under the pulls (case, anchor, 3) found, in words."""
-    for name in dict.fromkeys(anchor.holdfast for anchor in scenario.anchor if anchor.holdfast is not None):
+    for name, holdfast in used(scenario).items():
         on_it = [k for k, anchor in enumerate(scenario.anchor) if anchor.holdfast == name]
-        angles = angle(pull[:, on_it].reshape(-1, 3))
-        notes = holdfasts.of(scenario.holdfast[name], angles[~np.isnan(angles)]).notes
-        if notes:
-            yield f"holdfast {name}: {'; '.join(notes)}"
+        yield from granted(name, holdfast, angle(pull[:, on_it].reshape(-1, 3)))
 
 
-def lacking(name: str, holdfast: Holdfast) -> Iterator[str]:
-    """The ways of giving way of a holdfast that are not looked at for want of data, in words."""
-    ways = holdfasts.of(holdfast, np.array([USUAL])).unjudged
-    if ways:
-        yield f"holdfast {name}: {'; '.join(ways)}"
+def granted(name: str, holdfast: Holdfast, angles: Array) -> Iterator[str]:
+    """What is taken for granted of a holdfast under pulls at those angles (case,) [rad], NaN where there is none, in words."""
+    if notes := holdfasts.of(holdfast, angles[~np.isnan(angles)]).notes:
+        yield f"holdfast {name}: {'; '.join(notes)}"
+
+
+def lacking(table: Mapping[str, Holdfast]) -> Iterator[str]:
+    """The ways of giving way of holdfasts that are not looked at for want of data, in words."""
+    for name, holdfast in table.items():
+        if ways := holdfasts.of(holdfast, np.array([USUAL])).unjudged:
+            yield f"holdfast {name}: {'; '.join(ways)}"
+    rods = [name for name, holdfast in table.items() if holdfast.rod_strength is None and holdfast.kind != "tested"]
+    if rods:
+        yield f"rod, eye or strap of {', '.join(rods)} (give rod_strength)"

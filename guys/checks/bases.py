@@ -65,7 +65,7 @@ def _item(spar: Spar, plate: Plate, default: bool) -> Item:
     along = math.degrees(spar.toward if plate.along is None else plate.along) % 360
     why = f"allowable over found pressure on the effective area of its plate, length along {along:.4g} deg"
     lacking = "no bearing given for its plate, and none is presumed"
-    return Item(f"base of {spar.name}", "bearing", "Pa", why, lacking, "bearing given", default, modes=CONTACT)
+    return Item(f"base of {spar.name}", "bearing", "Pa", why, lacking, "bearing given", default, modes=CONTACT, allowable="bearing")
 
 
 def stand(plate: Plate, toward: float, up: Array, moment: Array) -> tuple[Array, NDArray[np.int64]]:

@@ -16,7 +16,7 @@ from guys.doors.common import store
 from guys.drawing import rounding
 from guys.drawing.rounding import Tongue, Units, tongue
 from guys.exchange import sizing as files
-from guys.scenario import read_scenario
+from guys.scenario import Scenario, read_scenario
 from guys.studies.sizing import AnchorNeeds, Need, Sizing, size
 
 
@@ -47,8 +47,7 @@ def status(found: Sizing) -> int:
 def report(found: Sizing, units: Units, stream: TextIO) -> None:
     """A table for each anchor, the least change first; then the warnings."""
     said = tongue(units)
-    required = f"{found.scenario.allowables.anchor:g}"
-    stream.write(f"{found.scenario.title}\nLeast size of every holdfast at a factor of {required}, by its low value\n")
+    stream.write(f"{found.scenario.title}\nLeast size of every holdfast at a factor of {_required(found.scenario)}, by its low value\n")
     head = ["holdfast", "size", "needed", "given", "holds low", "best", "high", "governs", "case", "wind from"]
     for anchor in found.anchors:
         terminal.table(_title(anchor, said), head, [_row(need, said) for need in anchor.needs if need.holds is not None], stream)
@@ -56,11 +55,19 @@ def report(found: Sizing, units: Units, stream: TextIO) -> None:
     for title, lines in (
         ("Nothing will do", nothing),
         ("Warnings", found.warnings),
+        ("Notes", found.notes),
         ("Not checked", found.not_checked),
         ("Cautions", CAUTIONS),
     ):
         if lines:
             stream.write(f"\n{title}\n" + "".join(f"  - {line}\n" for line in lines))
+
+
+def _required(scenario: Scenario) -> str:
+    """The factors required of anchors, and in which cases."""
+    allowed = scenario.allowables
+    factored = allowed.factored.get("anchor")
+    return f"{allowed.anchor:g}" + ("" if factored is None else f" ({factored:g} in factored cases)")
 
 
 def _title(anchor: AnchorNeeds, said: Tongue) -> str:

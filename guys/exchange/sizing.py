@@ -31,6 +31,7 @@ def as_dict(found: Sizing) -> dict[str, Any]:
         "allowable_is_default": "anchor" in found.scenario.allowables.defaulted,
         "anchors": [_anchor(anchor) for anchor in found.anchors],
         "warnings": list(found.warnings),
+        "notes": list(found.notes),
         "not_checked": list(found.not_checked),
         "cautions": list(CAUTIONS),
     }
@@ -75,6 +76,7 @@ def _need(need: Need) -> dict[str, Any]:
         "pull_N": number(need.pull),
         "angle_deg": degrees(need.angle),
         "factor": number(need.factor),
+        "factor_required": number(need.required),
         "case": need.case,
         "wind_from_deg": bearing(need.wind_from),
         "governs": need.governs,
@@ -89,10 +91,10 @@ def degrees(radians: float) -> float | None:
 def as_table(found: Sizing) -> str:
     """The text of `size.csv`."""
     every = [(anchor, need) for anchor in found.anchors for need in anchor.needs]
-    return as_csv(HEAD, [_row(anchor, need, found.scenario.allowables.anchor) for anchor, need in every])
+    return as_csv(HEAD, [_row(anchor, need) for anchor, need in every])
 
 
-def _row(anchor: AnchorNeeds, need: Need, required: float) -> list[Cell]:
+def _row(anchor: AnchorNeeds, need: Need) -> list[Cell]:
     what: list[Cell] = [anchor.name, need.holdfast, need.kind, need.size, UNITS[need.dimension], need.needed, need.given, need.pattern]
-    holds: list[Cell] = [need.low, need.best, need.high, need.pull, degrees(need.angle), need.factor, required]
+    holds: list[Cell] = [need.low, need.best, need.high, need.pull, degrees(need.angle), need.factor, need.required]
     return [*what, *holds, need.case, bearing(need.wind_from), need.governs, need.reason, "; ".join(anchor.cables)]

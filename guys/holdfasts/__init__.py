@@ -40,6 +40,8 @@ def kinds() -> tuple[Kind, ...]:
 def of(holdfast: Holdfast, angle: Array) -> Holding:
     """The holding of a scenario's holdfast along pulls at angles above the horizontal (case,) [rad]."""
     function: Callable[..., Holding] = _MODULES[holdfast.kind].holding
-    given = holdfast.model_dump(exclude={"kind", "source"}, exclude_none=True)
+    given = holdfast.model_dump(exclude={"kind", "rod_strength", "source"}, exclude_none=True)
     found = function(angle, **given)
+    if holdfast.rod_strength is not None:
+        found = found.by_rod(holdfast.rod_strength)
     return found if holdfast.source is None else found.citing(holdfast.source)

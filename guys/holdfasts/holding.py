@@ -23,6 +23,7 @@ from guys.rotation import Array
 TOLD = math.radians(10.0)
 MOST_OFF = math.radians(30.0)
 DOWNWARD = "the pull is downward"
+BREAKS = "breaking of its rod, eye or strap"
 
 
 @dataclass(frozen=True)
@@ -46,6 +47,13 @@ class Holding:
     def words(self) -> tuple[str, ...]:
         """What holds in each case."""
         return tuple(self.modes[k] for k in self.mode)
+
+    def by_rod(self, strength: float) -> Holding:
+        """With a rod, eye or strap of that breaking load [N] between cables and holdfast, which holds no more; steel is not spread."""
+        breaks = np.nan_to_num(self.low, nan=-np.inf) > strength
+        low, best, high = (np.minimum(value, strength) for value in (self.low, self.best, self.high))
+        mode = np.where(breaks, len(self.modes), self.mode)
+        return replace(self, low=low, best=best, high=high, modes=(*self.modes, BREAKS), mode=mode)
 
     def citing(self, source: str) -> Holding:
         """With the user's own source before ours."""

@@ -36,3 +36,5 @@ class FactoredEntry(Model):
     """Least factor against sliding of a base."""
     spar: q.Ratio | None = None
     """Least strength / what acts of a spar's section."""
+    bearing: q.Ratio | None = None
+    """Least allowable pressure / pressure under a base plate."""

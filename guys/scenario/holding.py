@@ -1,7 +1,7 @@
 """The tables [holdfast.NAME]: what holds an anchor, one model a kind.
 
 File and meaning agree, so the models serve both; rules that look at several keys or at published tables are in `held`.  The keys of a
-model, but for `kind` and `source`, are the arguments of its kind's function in `guys.holdfasts`.
+model, but for `kind`, `rod_strength` and `source`, are the arguments of its kind's function in `guys.holdfasts`.
 """
 
 from __future__ import annotations
@@ -26,6 +26,8 @@ class _Common(Model):
     """Low end of what it may hold, as a share of the best value: what is judged.  Left out: 1, of a screw in sand the lesser theory."""
     high: Annotated[float, Field(strict=True, ge=1.0, allow_inf_nan=False)] | None = None
     """High end, as a share of the best value; left out: 1."""
+    rod_strength: q.PositiveForce | None = None
+    """Least breaking load of the rod, eye or strap that the cables pull on; left out: not judged."""
     source: q.Line | None = None
     """Where its numbers come from, printed beside it."""
 

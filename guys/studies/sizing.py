@@ -1,12 +1,13 @@
 """How big the holdfasts must be: for every anchor and every holdfast of the file the least size that holds.
 
-    least x with  min over cases of  low(x, a) / T  >=  allowables.anchor
+    least x with  min over cases of  low(x, a) / (n T)  >=  1
 
-T, a are pull and angle of the anchor in every case and wind solved for: the listed ones and the full circle, refined at the peaks of pull,
-horizontal, uplift and of every factor judged.  The low value of the holdfast counts, along each case's own pull.  One thing is sized at
-a time, the rest of the table kept: mass of a block, length of a deadman, pattern of pickets, depth and plates of a screw (all plates
-scaled alike), the torque to reach, bond length of a bar, the pull to show in a test.  Sizes are looked for from small to large, then
-narrowed by halving, so that a size is found too where more is not always better (a heavier block presses harder on the ground).
+T, a are pull and angle of the anchor and n the factor required (allowables.anchor, its own in factored cases) in every case and wind
+solved for: the listed ones and the full circle, refined at the peaks of pull, horizontal, uplift and of every factor judged.  The low
+value of the holdfast counts, along each case's own pull.  One thing is sized at a time, the rest of the table kept: mass of a block,
+length of a deadman, pattern of pickets, depth and plates of a screw (all plates scaled alike), the torque to reach, bond length of a
+bar, the pull to show in a test.  Sizes are looked for from small to large, then narrowed by halving, so that a size is found too where
+more is not always better (a heavier block presses harder on the ground).
 
 An anchor of several cables is sized for their resultant; it is a single point of failure, and is told so.
 """
@@ -21,7 +22,7 @@ from typing import Any
 import numpy as np
 
 from guys import holdfasts, stability, units
-from guys.checks.anchors import angle, idle, lacking
+from guys.checks.anchors import angle, granted, idle, lacking
 from guys.constants import NONZERO
 from guys.errors import ScenarioError
 from guys.holdfasts.picket import combinations
@@ -64,7 +65,7 @@ class Need:
 
     size, dimension : what is sized;  needed, given : SI, NaN where nothing will do or nothing is given;  pattern : of pickets, else empty
     holds : the holdfast of that size, None where nothing will do, and then the reason
-    low, best, high, pull, factor, angle, case, wind_from, governs : in the case of the least factor
+    low, best, high, pull, factor, required, angle, case, wind_from, governs : in the case of the least factor over the one required
     """
 
     holdfast: str
@@ -81,6 +82,7 @@ class Need:
     high: float = math.nan
     pull: float = math.nan
     factor: float = math.nan
+    required: float = math.nan
     angle: float = math.nan
     case: str = ""
     wind_from: float = math.nan
@@ -96,7 +98,7 @@ class Need:
 
 @dataclass(frozen=True)
 class AnchorNeeds:
-    """cables : that run to the anchor;  pull, angle, case, wind_from : its greatest resultant;  proof : that times the factor required
+    """cables : that run to the anchor;  proof : its greatest resultant times factor required;  pull, angle, case, wind_from : there
 
     needs : smallest first
     """
@@ -122,6 +124,7 @@ class Sizing:
     stands: bool
     failed: bool
     warnings: tuple[str, ...]
+    notes: tuple[str, ...]
     not_checked: tuple[str, ...]
 
     @property
@@ -132,10 +135,11 @@ class Sizing:
 
 @dataclass(frozen=True)
 class Pulls:
-    """Pulls of one anchor in every case and wind with an equilibrium: force, angle, idle (case,), and its lines."""
+    """Pulls of one anchor in every case and wind with an equilibrium: force, angle, factor required, idle (case,), and its lines."""
 
     force: Array
     angle: Array
+    required: Array
     idle: Array
     lines: tuple[CaseLine, ...]
 
@@ -154,8 +158,10 @@ def size(scenario: Scenario, progress: Progress | None = None) -> Sizing:
     settled = [bool(((b.code == stability.STABLE) | b.spins).all()) for b in batches]
     failed = any(bool((b.code == stability.FAILED).any()) for b in batches)
     told = tuple(_warnings(scenario, anchors, all(settled)))
-    lacks = tuple(words for name, holdfast in scenario.holdfast.items() for words in lacking(name, holdfast))
-    return Sizing(scenario, __version__, anchors, all(settled), failed, told, lacks)
+    angles = np.concatenate([angle(batch.forces.pull.reshape(-1, 3)) for batch in batches])
+    said = tuple(words for name, holdfast in scenario.holdfast.items() for words in granted(name, holdfast, angles))
+    lacks = tuple(lacking(scenario.holdfast))
+    return Sizing(scenario, __version__, anchors, all(settled), failed, told, said, lacks)
 
 
 def _pulls(scenario: Scenario, k: int, batches: Sequence[Batch]) -> Pulls:
@@ -166,29 +172,30 @@ def _pulls(scenario: Scenario, k: int, batches: Sequence[Batch]) -> Pulls:
     rows = np.flatnonzero(~np.isnan(pull).any(axis=1))
     flat = [line for some in lines for line in some]
     strength = np.linalg.norm(pull[rows], axis=1)
-    return Pulls(strength, angle(pull[rows]), idle(scenario, forces)[rows, k], tuple(flat[r] for r in rows))
+    required = np.array([scenario.allowables.required("anchor", line.kind) for line in flat])
+    return Pulls(strength, angle(pull[rows]), required[rows], idle(scenario, forces)[rows, k], tuple(flat[r] for r in rows))
 
 
 def _anchor(scenario: Scenario, k: int, pulls: Pulls) -> AnchorNeeds:
-    anchor, required = scenario.anchor[k], scenario.allowables.anchor
+    anchor = scenario.anchor[k]
     cables = tuple(c.name for c in scenario.cable if isinstance(c.to, AnchorPoint) and c.to.anchor == anchor.name)
     if len(pulls.force) == 0:
         return AnchorNeeds(anchor.name, anchor.holdfast, cables, math.nan, math.nan, math.nan, "", math.nan, ())
-    needs = [need for name, holdfast in scenario.holdfast.items() for need in _needs(name, holdfast, pulls, required)]
-    worst = int(np.argmax(pulls.force))
-    line, force = pulls.lines[worst], float(pulls.force[worst])
+    needs = [need for name, holdfast in scenario.holdfast.items() for need in _needs(name, holdfast, pulls)]
+    worst = int(np.argmax(pulls.required * pulls.force))
+    line, force, required = pulls.lines[worst], float(pulls.force[worst]), float(pulls.required[worst])
     return AnchorNeeds(
         anchor.name, anchor.holdfast, cables, force, float(pulls.angle[worst]), required * force, line.name, line.wind_from,
         tuple(sorted(needs, key=lambda need: need.more)),
     )  # fmt: skip
 
 
-def _needs(name: str, holdfast: Holdfast, pulls: Pulls, required: float) -> Iterator[Need]:
+def _needs(name: str, holdfast: Holdfast, pulls: Pulls) -> Iterator[Need]:
     if isinstance(holdfast, Picket):
-        yield _pattern(name, holdfast, pulls, required)
+        yield _pattern(name, holdfast, pulls)
         return
     for each in sizes(holdfast):
-        found = least(each, pulls, required)
+        found = least(each, pulls)
         given = math.nan if each.given is None else each.given
         head = (name, holdfast.kind, each.name, each.dimension)
         if found is None:
@@ -197,13 +204,13 @@ def _needs(name: str, holdfast: Holdfast, pulls: Pulls, required: float) -> Iter
             yield Need(*head, found, given, "", each.put(found), "", **_governing(each.put(found), pulls))
 
 
-def _pattern(name: str, holdfast: Picket, pulls: Pulls, required: float) -> Need:
+def _pattern(name: str, holdfast: Picket, pulls: Pulls) -> Need:
     """The combination of the fewest pickets that holds; the first of the strongest where none does."""
     count = {pattern: number for pattern, (number, _, _) in combinations().items()}
     given = float(count[holdfast.pattern])
     for pattern in sorted(count, key=lambda p: (count[p], combinations()[p][1])):
         tried = holdfast.model_copy(update={"pattern": pattern})
-        if reserve(tried, pulls) >= required:
+        if reserve(tried, pulls) >= 1.0:
             return Need(name, "picket", "pattern", "", float(count[pattern]), given, pattern, tried, "", **_governing(tried, pulls))
     reason = _refusal(holdfast, pulls) or "no published combination holds it"
     return Need(name, "picket", "pattern", "", math.nan, given, "", None, reason)
@@ -250,17 +257,17 @@ def _screw_sizes(holdfast: Screw, keyed: Callable[..., Size]) -> Iterator[Size]:
 
 
 def reserve(holdfast: Holdfast, pulls: Pulls) -> float:
-    """Least low value over pull of all cases; NaN where one that loads it is not judged."""
-    low = holdfasts.of(holdfast, pulls.angle).low
-    loaded = (pulls.force > 0) & ~(np.isnan(low) & pulls.idle)
-    return float(np.min(low[loaded] / pulls.force[loaded], initial=math.inf)) if loaded.any() else math.inf
+    """Least factor over the one required of all cases; NaN where one that loads it is not judged."""
+    low, needed = holdfasts.of(holdfast, pulls.angle).low, pulls.required * pulls.force
+    loaded = (needed > 0) & ~(np.isnan(low) & pulls.idle)
+    return float(np.min(low[loaded] / needed[loaded], initial=math.inf)) if loaded.any() else math.inf
 
 
-def least(size: Size, pulls: Pulls, required: float) -> float | None:
+def least(size: Size, pulls: Pulls) -> float | None:
     """The least size that holds, None where none within the bounds does."""
 
     def holds(x: float) -> bool:
-        return reserve(size.put(x), pulls) >= required
+        return reserve(size.put(x), pulls) >= 1.0
 
     before, steps = None, np.geomspace(size.least, max(size.most, size.least), STEPS)
     for x in (float(s) for s in steps):
@@ -283,12 +290,13 @@ def _governing(holdfast: Holdfast, pulls: Pulls) -> dict[str, Any]:
     """What stands at the case of the least factor."""
     found = holdfasts.of(holdfast, pulls.angle)
     factor = np.where(np.isnan(found.low) | (pulls.force == 0), np.inf, found.low / np.where(pulls.force > 0, pulls.force, 1.0))
-    k = int(np.argmin(factor))
+    k = int(np.argmin(factor / pulls.required))
     values = {name: float(getattr(found, name)[k]) for name in ("low", "best", "high")}
     line = pulls.lines[k]
     return values | {
         "pull": float(pulls.force[k]),
         "factor": float(factor[k]),
+        "required": float(pulls.required[k]),
         "angle": float(pulls.angle[k]),
         "case": line.name,
         "wind_from": line.wind_from,
@@ -299,7 +307,7 @@ def _governing(holdfast: Holdfast, pulls: Pulls) -> dict[str, Any]:
 def _why_not(size: Size, pulls: Pulls) -> str:
     largest = size.put(size.most)
     found = holdfasts.of(largest, pulls.angle)
-    first = found.modes[int(found.mode[np.argmin(found.low / np.maximum(pulls.force, NONZERO))])]
+    first = found.modes[int(found.mode[np.argmin(found.low / np.maximum(pulls.required * pulls.force, NONZERO))])]
     return _refusal(largest, pulls) or f"no {size.name} up to {units.both(size.most, size.dimension)} will do: {first}"
 
 
