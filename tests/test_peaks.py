@@ -24,6 +24,7 @@ from guys.setting import Setting, find
 from guys.structure import build
 from guys.studies import peaks
 from guys.studies.batch import solve_lines
+from guys.studies.limit import limits
 from guys.studies.lost import lose
 from tests.benchmark.masts import lattice_150m_toml
 
@@ -100,6 +101,8 @@ RIGID: Document = {
     "gust": GUST,
     "analysis": {"cable": "straight"},
 }  # fmt: skip
+GUSTS = ((0, 12), (12, 20), (0, 6), (6, 20))
+"""Patches [m] of the rigid mast."""
 LINEAR = 1e-4
 """Relative: stiff guys, so the mast leans by 1e-6; its weight, a thousandth of a kilogram a metre, and the sharing of the pull by the two
 guys across the wind, (lean)^2, are far less."""
@@ -111,7 +114,7 @@ def test_a_statically_determinate_mast_by_hand() -> None:
     q = 382.8 Pa, on 0.1 m 38.28 N/m; mean 1/2.4 of that, a gust 1.4/2.4.  Patches 0-12, 12-20, 0-6, 6-20 m.
     """
     q = 0.5 * 1.225 * 25.0**2 * 0.1
-    moments = [q * 1.4 / 2.4 * (b * b - a * a) / 2 for a, b in ((0, 12), (12, 20), (0, 6), (6, 20))]
+    moments = [q * 1.4 / 2.4 * (b * b - a * a) / 2 for a, b in GUSTS]
     turning = q / 2.4 * 200.0, math.hypot(*moments)
     change = [m / 12.0 / (2 * math.cos(math.radians(45.0))) for m in turning]
     found = solve(parse_scenario(dumps_tables(RIGID)))
@@ -120,12 +123,23 @@ def test_a_statically_determinate_mast_by_hand() -> None:
     assert by_name["12 m S"] == pytest.approx(5000.0 - change[0] + change[1], rel=LINEAR)
     assert by_name["12 m E"] == pytest.approx(5000.0, rel=LINEAR)
     level = q / 2.4 * 20.0 - turning[0] / 12.0
-    shears = [q * 1.4 / 2.4 * (b - a) - m / 12.0 for (a, b), m in zip(((0, 12), (12, 20), (0, 6), (6, 20)), moments, strict=True)]
+    shears = [q * 1.4 / 2.4 * (b - a) - m / 12.0 for (a, b), m in zip(GUSTS, moments, strict=True)]
     assert np.hypot(*found.bases.force[1, 0, :2]) == pytest.approx(abs(level) + math.hypot(*shears), rel=LINEAR)
     mast = found.spars[0]
     at_guys = np.flatnonzero(np.isclose(mast.station, 12.0))
     overhang = q / 2.4 * 32.0, math.hypot(*(q * 1.4 / 2.4 * m for m in (0.0, 32.0, 0.0, 32.0)))
     assert np.linalg.norm(mast.bending[1, at_guys], axis=-1) == pytest.approx(sum(overhang), rel=LINEAR)
+
+
+def test_the_limiting_wind_of_the_same_mast_by_hand() -> None:
+    """12 kN at a factor of 2: 5 kN + V^2 k = 6 kN, before any guy is slack."""
+    per_square = 0.5 * 1.225 * 0.1
+    mean, each = per_square / 2.4 * 200.0, [per_square * 1.4 / 2.4 * (b * b - a * a) / 2 for a, b in GUSTS]
+    k = (mean + math.hypot(*each)) / 12.0 / (2 * math.cos(math.radians(45.0)))
+    weak = changed(RIGID, (("rope", "rod", "strength"), "12 kN"))
+    found = limits(parse_scenario(dumps_tables(weak)), apart=math.tau)
+    assert found.circle[0].speed == pytest.approx(math.sqrt(1000.0 / k), rel=LINEAR)
+    assert found.circle[0].governs == "cable 12 m N: tension"
 
 
 # ---------------------------------------------------------------- against states solved one by one

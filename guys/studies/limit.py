@@ -4,6 +4,9 @@ Every case that has wind, its factors kept, is followed from still air up in spe
 everything judged (`guys.checks.demands`), less one, and the looseness of every cable.  The loads of every speed are worked out anew, none
 is scaled from another: once a cable drops nothing goes with the square of the speed.
 
+A line with patches of gust is followed in each of its states (`CaseLine.states`); it is lost where the first of them is.  Its peaks, which
+belong to no one state, pass an allowable before any of the states does: the answer then comes down to where they meet it.
+
 Each answer is solved again from the setting, as `guys solve` would: that names what governs, and takes in the other state of a branching,
 which may be the worse one; the answer is then brought down to where that meets its allowable.
 """
@@ -26,9 +29,9 @@ from guys.loads import CaseLine, lines_of
 from guys.path import Paths, Stops, crossings, follow
 from guys.rotation import Array
 from guys.scenario import Scenario
-from guys.scenario.reader import fault_at
 from guys.setting import Setting, find
 from guys.structure import build
+from guys.studies import peaks
 from guys.studies.batch import CHUNK, Batch, Progress, falling_words, recover, slack_words, solve_lines
 from guys.studies.directions import COARSE, between, near
 from guys.version import __version__
@@ -56,9 +59,6 @@ def limits(scenario: Scenario, *, apart: float = COARSE, progress: Progress | No
     if scenario.wind is None or not any(case.wind > 0 for case in scenario.case):
         fault = Fault(scenario.path, None, None, "case", "no case has wind, so there is no limit to find; give [wind] and a case with wind")
         raise ScenarioError([fault])
-    if scenario.gust.method != "plain":
-        text = 'not available in this version for `guys limit`, which follows one gust on everything; write method = "plain"'
-        raise ScenarioError([fault_at(scenario, ("gust", "method"), text)])
     setting = find(build(scenario))
     most = max(MOST, MOST_TIMES * scenario.wind.speed)
     given = scenario.wind.directions
@@ -90,23 +90,24 @@ def _none_at_all(setting: Setting, line: CaseLine, words: str, failed: bool) -> 
 
 
 class _Chunk:
-    """Lines followed together."""
+    """Lines followed together, each in all its states: what is of lines is (line,), what is of paths (state,)."""
 
     def __init__(self, setting: Setting, lines: Sequence[CaseLine], most: float) -> None:
         wind = setting.problem.structure.scenario.wind
         assert wind is not None
         self.setting, self.lines, self.wind = setting, lines, wind
+        self.asked, self.states = peaks.asked(lines)
         self.stops = Stops(FIRST * wind.speed, SHARE, most)
 
     def at(self, rows: Index, speed: Array) -> Problem:
-        """The problem of some of the lines at their speeds."""
-        return self.setting.under([replace(self.lines[r], speed=float(v)) for r, v in zip(rows, speed, strict=True)])
+        """The problem of some of the states at their speeds."""
+        return self.setting.under([replace(self.states[r], speed=float(v)) for r, v in zip(rows, speed, strict=True)])
 
     def limits(self, progress: Progress | None) -> list[Limit]:
         """The limit of every line; where no wind blows, a case is the same from every bearing."""
         names = [line.name for line in self.lines]
         first = np.array([names.index(name) for name in dict.fromkeys(names)])
-        still = self.at(first, np.zeros(len(first)))
+        still = self.at(self.asked.start[first], np.zeros(len(first)))
         judged = stability.judge(still, self.setting.state, self.setting.loads)
         reasons = dict(zip(dict.fromkeys(names), recover(still, judged, detail=False).reason, strict=True))
         place = np.searchsorted(first, [names.index(name) for name in names])
@@ -122,19 +123,25 @@ class _Chunk:
         return [out[k] for k in range(len(self.lines))]
 
     def _followed(self, start: State, progress: Progress | None) -> Iterator[Limit]:
-        paths = follow(self.at, start, np.zeros(len(self.lines)), self.stops, _watched, progress)
-        passed = crossings(self.at, paths, _watched)
-        speed = np.fmin(passed[:, 0], np.where(paths.lost, paths.low, np.nan))
-        by_allowable = passed[:, 0] <= np.where(paths.lost, paths.low, np.inf)
-        again = self._again(np.where(np.isnan(speed), 0.0, speed))
-        over = np.flatnonzero(~paths.failed & ~np.isnan(speed) & (speed > 0) & (_use(again).max(axis=1) > 1 + AGREES))
+        paths = follow(self.at, start.take(self.asked.owner), np.zeros(len(self.states)), self.stops, _watched, progress)
+        passed = np.fmin.reduceat(crossings(self.at, paths, _watched), self.asked.start, axis=0)
+        ends = np.where(paths.lost, paths.low, np.inf)
+        first = [min(self.asked.rows(k), key=lambda row: ends[row]) for k in range(len(self.lines))]
+        lost = ends[first]
+        speed = np.fmin(passed[:, 0], np.where(np.isinf(lost), np.nan, lost))
+        by_allowable = passed[:, 0] <= lost
+        looked = speed if self.asked.plain else np.where(np.isnan(speed), self.stops.most, speed)
+        again = self._again(np.where(np.isnan(looked), 0.0, looked))
+        failed = np.logical_or.reduceat(paths.failed, self.asked.start)
+        over = np.flatnonzero(~failed & (looked > 0) & (_use(again).max(axis=1) > 1 + AGREES))
         if len(over):
             part = _Chunk(self.setting, [self.lines[k] for k in over.tolist()], self.stops.most)
-            speed[over] = part._brought_down(speed[over])
+            speed[over] = part._brought_down(looked[over])
             by_allowable[over] = True
+        if len(over) or looked is not speed:
             again = self._again(np.where(np.isnan(speed), 0.0, speed))
-        for k in range(len(self.lines)):
-            yield self._limit(k, paths, passed[k, 1:], float(speed[k]), bool(by_allowable[k]), again)
+        for k, path in enumerate(first):
+            yield self._limit(k, path, paths, passed[k, 1:], float(speed[k]), bool(by_allowable[k]), again)
 
     def _again(self, speed: Array) -> Batch:
         """Every line solved from the setting at its speed."""
@@ -150,10 +157,12 @@ class _Chunk:
             low, high = np.where(over, low, middle), np.where(over, middle, high)
         return low
 
-    def _limit(self, k: int, paths: Paths, drops: Array, speed: float, by_allowable: bool, again: Batch) -> Limit:
-        line = self.lines[k]
-        lost = float(paths.low[k]) if paths.lost[k] and not paths.failed[k] else math.nan
-        falls = self._falls(k, paths) if paths.lost[k] else ""
+    def _limit(self, k: int, path: int, paths: Paths, drops: Array, speed: float, by_allowable: bool, again: Batch) -> Limit:
+        """The limit of line `k`, whose equilibrium is lost first on `path`, if on any."""
+        line, each = self.lines[k], self.asked.rows(k)
+        failed = bool(paths.failed[each].any())
+        lost = float(paths.low[path]) if paths.lost[path] and not failed else math.nan
+        falls = self._falls(path, paths) if paths.lost[path] else ""
         use = math.nan
         if by_allowable:
             item, use = _governing(again, k)
@@ -166,8 +175,8 @@ class _Chunk:
         else:
             governs, why = LOST, f"equilibrium lost: {falls}"
         return Limit(
-            line.name, line.wind, line.wind_from, speed, governs, why, use, lost, falls, float(paths.branches_at[k]),
-            tuple(float(x) for x in drops), bool(paths.failed[k]),
+            line.name, line.wind, line.wind_from, speed, governs, why, use, lost, falls, float(np.fmin.reduce(paths.branches_at[each])),
+            tuple(float(x) for x in drops), failed,
         )  # fmt: skip
 
     def _falls(self, k: int, paths: Paths) -> str:
@@ -179,7 +188,9 @@ class _Chunk:
         slack = recovery.forces(one, last, one.evaluate(last)).slack[0]
         start = paths.state.take(paths.of(k)[:1])
         soft = stability.least_cost(one, last) < stability.SOFT * stability.least_cost(self.at(np.array([k]), np.zeros(1)), start)
-        return f"{falling_words(one, last, None if soft else paths.beyond.get(k))}{slack_words(one, slack)}"
+        patch = self.states[k].patch
+        where = "" if patch is None else f"{patch.words}: "
+        return f"{where}{falling_words(one, last, None if soft else paths.beyond.get(k))}{slack_words(one, slack)}"
 
 
 def _watched(problem: Problem, state: State) -> Array:
