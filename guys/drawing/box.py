@@ -5,7 +5,7 @@ Rows of a label and its words, broken to the width of the box and never cut: a b
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from math import degrees, isfinite, tan
 
@@ -39,7 +39,7 @@ from guys.drawing.rounding import (
 )
 from guys.drawing.strip import kinds, standing, state_summary
 from guys.results import Finding, Solution
-from guys.scenario.patches import PEAKS
+from guys.scenario.model import Case
 from guys.scenario.standard_wind import averaging_words
 
 SIZE = 8.6
@@ -220,19 +220,28 @@ def _weather(solution: Solution, tongue: Tongue) -> list[Entry]:
             )
         )
     if wind is not None and solution.scenario.gust.method != "plain":
-        rows.append(Entry("Gusts", f"patch by patch: {PEAKS}"))
-    parts = []
-    for case in solution.scenario.case:
-        lost = f", without {', '.join(case.without)}" if case.without else ""
-        lost += f", no ice on {', '.join(case.bare)}" if case.bare else ""
-        factors = f"dead {case.dead:g}, wind {case.wind:g}, ice {case.ice:g}"
-        kind = "" if case.service else f", {case.kind}"
-        parts.append(f"{case.name}: {factors}, {tongue.say(temperature, case.temperature)}{lost}{kind}")
+        rows.append(Entry("Gusts", "patch by patch; loads are each the peak of its own, not of one equilibrium: see the notes"))
+    parts = [*_cases(solution.scenario.case, tongue)]
     if ice is not None:
         glaze = f"ice {tongue.say(thickness, ice.thickness)} all round, {tongue.say(density, ice.density)}" if ice.thickness else "rime"
         parts.append(f"{glaze} (class {ice.class_} of ISO 12494)" if ice.class_ else glaze)
     parts.append("factors on weight, wind pressure and weight of ice; initial tension is in every load, never factored")
     return [*rows, Entry("Cases", "; ".join(parts))]
+
+
+def _cases(cases: Sequence[Case], tongue: Tongue) -> Iterator[str]:
+    """Every case; a temperature that all have, and ice that none has, are not told of each."""
+    alike = len({case.temperature for case in cases}) == 1
+    iced = any(case.ice for case in cases)
+    for case in cases:
+        factors = [f"dead {case.dead:g}", f"wind {case.wind:g}", *([f"ice {case.ice:g}"] if iced else [])]
+        factors += [] if alike else [tongue.say(temperature, case.temperature)]
+        factors += [f"without {', '.join(case.without)}"] if case.without else []
+        factors += [f"no ice on {', '.join(case.bare)}"] if case.bare else []
+        factors += [] if case.service else [case.kind]
+        yield f"{case.name}: {', '.join(factors)}"
+    if alike:
+        yield f"{'all ' if len(cases) > 1 else ''}at {tongue.say(temperature, cases[0].temperature)}"
 
 
 def _height(metres: float, system: str) -> str:
