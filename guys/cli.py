@@ -17,8 +17,13 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("compare", "search", "raise", "record")
+UNAVAILABLE = ("search", "raise", "record")
 """Commands this version knows by name and does not do."""
+
+RANKED_BY = (
+    *("pull", "uplift", "cable", "tension", "thrust", "sideways", "bending", "lean", "headroom", "margin", "use", "mass", "rope", "pieces"),
+)
+"""Measures by which layouts are ranked: the keys of `guys.studies.measures.MEASURES`."""
 
 INTERNAL_FAULT, WRONG_INPUT = 1, 2
 Command = Callable[..., Any]
@@ -49,17 +54,23 @@ def _refusing(name: str) -> click.Command:
     return click.Command(name, callback=refuse, params=[words], context_settings=settings, hidden=True)
 
 
-def computing(files: str, out_required: bool = False) -> Callable[[Command], Command]:
-    """What every command that computes takes: the scenario FILE, --out DIR for its `files`, --json and --units."""
+def computing(files: str, out_required: bool = False, many: bool = False) -> Callable[[Command], Command]:
+    """What every command that computes takes: the scenario FILE, or `many`, --out DIR for its `files`, --json and --units."""
 
     def decorate(command: Command) -> Command:
         systems = click.Choice(["SI", "US", "both"])
         units = click.option("--units", type=systems, default="SI", show_default=True, help="Units of what is shown.")
         as_json = click.option("--json", "as_json", is_flag=True, help="Print the result as JSON in place of the table.")
         out = click.option("--out", required=out_required, metavar="DIR", help=f"Directory for {files}.")
-        return click.argument("file")(out(as_json(units(command))))
+        file = click.argument("files", nargs=-1, required=True) if many else click.argument("file")
+        return file(out(as_json(units(command))))
 
     return decorate
+
+
+in_one_layout = click.option("--layout", metavar="NAME", help="One of the file's layouts; left out: as drawn.")
+_CORES = os.cpu_count() or 1
+side_by_side = click.option("--workers", type=click.IntRange(1), default=_CORES, metavar="N", help="Processes; left out: one a core.")
 
 
 @click.group(cls=Commands, context_settings={"help_option_names": ["-h", "--help"]})
@@ -85,13 +96,13 @@ def validate(file: str) -> None:
     Faults go to the standard error with file, line and key; dimensions are echoed in both unit systems, unusual values warned about.
     """
     from guys.loads.drag import words
-    from guys.scenario import echo, read_scenario
+    from guys.scenario import echo, layouts, read_scenario
     from guys.structure import build
 
     scenario = read_scenario(file)
     for line in (*echo.lines(scenario), *(f"note: {note}" for note in words.notes(build(scenario)))):
         click.echo(line)
-    for warning in scenario.warnings:
+    for warning in (*scenario.warnings, *layouts.warnings(scenario)):
         click.echo(f"warning: {warning}", err=True)
 
 
@@ -99,7 +110,8 @@ def validate(file: str) -> None:
 @computing("result.json, anchors.csv, cables.csv and the sheet", out_required=True)
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
 @click.option("--look", metavar="BEARING", help='Bearing the elevation looks toward, such as "45 deg"; left out: the one that shows most.')
-def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None) -> int:
+@in_one_layout
+def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None, layout: str | None) -> int:
     """Solve a scenario; write the results and the sheet.
 
     Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past its allowable; 4 some case is
@@ -112,33 +124,37 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
         toward = None if look is None else parse(look, "angle")
     except GuysError as error:
         raise click.BadParameter(str(error), param_hint="--look") from error
-    return solve_command(file, out, as_json, units, paper, toward)  # type: ignore[arg-type]
+    return solve_command(file, out, as_json, units, paper, toward, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("plumb.json and plumb.csv")
-def plumb(file: str, out: str | None, as_json: bool, units: str) -> int:
+@in_one_layout
+def plumb(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
     """Find the initial tensions nearest those asked for that leave every spar as drawn.
 
     Exit status: 0 found; 3 one is more than half off what was asked for; 1 and 2 as ever.
     """
     from guys.doors.plumb import plumb_command
 
-    return plumb_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return plumb_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("setout.json, .csv, .geojson, .kml, .dxf and the set-out sheet")
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
 @click.option("--as-built", "surveyed", metavar="FILE.csv", help="Pegs as surveyed: tell how far each is off, and solve again.")
-def setout(file: str, out: str | None, as_json: bool, units: str, paper: str, surveyed: str | None) -> int:
+@in_one_layout
+def setout(
+    file: str, out: str | None, as_json: bool, units: str, paper: str, surveyed: str | None, layout: str | None
+) -> int:
     """Set out the anchors: coordinates, bearings, distances and check distances, as sheet and files.
 
     With --as-built the exit status is that of the solution with the pegs as found.
     """
     from guys.doors.setout import setout_command
 
-    return setout_command(file, out, as_json, units, paper, surveyed)  # type: ignore[arg-type]
+    return setout_command(file, out, as_json, units, paper, surveyed, layout)  # type: ignore[arg-type]
 
 
 @commands.command(name="list")
@@ -158,7 +174,8 @@ def list_(kind: str, words: tuple[str, ...], as_json: bool, units: str) -> int:
 
 @commands.command()
 @computing("lost.json, lost.csv and the figure")
-def lost(file: str, out: str | None, as_json: bool, units: str) -> int:
+@in_one_layout
+def lost(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
     """Take every cable and every anchor away in turn: what stands, and what falls.
 
     Exit status: 0 all stands within the allowables; 3 something falls or passes its allowable when a cable or anchor is lost; 4 the
@@ -166,12 +183,13 @@ def lost(file: str, out: str | None, as_json: bool, units: str) -> int:
     """
     from guys.doors.lost import lost_command
 
-    return lost_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return lost_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("size.json and size.csv")
-def size(file: str, out: str | None, as_json: bool, units: str) -> int:
+@in_one_layout
+def size(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
     """Size the holdfasts of the file for every anchor: mass, length, pattern, depth, torque, whichever of them is on hand.
 
     Exit status: 0 every anchor can be held; 3 none of the holdfasts can be made to hold some anchor; 4 some case has no stable
@@ -179,12 +197,27 @@ def size(file: str, out: str | None, as_json: bool, units: str) -> int:
     """
     from guys.doors.size import size_command
 
-    return size_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return size_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("compare.json, compare.csv and the figure", many=True)
+@click.option("--by", type=click.Choice(RANKED_BY), default="pull", show_default=True, help="The measure layouts are ranked by.")
+@side_by_side
+def compare(files: tuple[str, ...], out: str | None, as_json: bool, units: str, by: str, workers: int) -> int:
+    """Compare every layout of one file or several: loads, factors, base, lean, margins, holdfasts, rope.
+
+    Exit status by the layout ranked first: 0 within all that is judged; 3 past something; 4 none stands; 1 and 2 as ever.
+    """
+    from guys.doors.compare import compare_command
+
+    return compare_command(files, by, workers, out, as_json, units)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("matters.json, matters.csv and the figure")
-def matters(file: str, out: str | None, as_json: bool, units: str) -> int:
+@in_one_layout
+def matters(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
     """Vary what is only roughly known: what moves the worst anchor load and the reserve most.
 
     Exit status: 0 all within the allowables; 3 something falls or passes its allowable at an end of a range; 4 the structure does not
@@ -192,12 +225,13 @@ def matters(file: str, out: str | None, as_json: bool, units: str) -> int:
     """
     from guys.doors.matters import matters_command
 
-    return matters_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return matters_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("limit.json, limit.csv and the polar figure")
-def limit(file: str, out: str | None, as_json: bool, units: str) -> int:
+@in_one_layout
+def limit(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
     """Find the wind from every direction at which something passes its allowable or equilibrium is lost.
 
     Exit status: 0 no limit is below the scenario's own wind; 1 an internal fault; 2 the input is wrong; 3 something passes its allowable
@@ -205,20 +239,21 @@ def limit(file: str, out: str | None, as_json: bool, units: str) -> int:
     """
     from guys.doors.limit import limit_command
 
-    return limit_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return limit_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
 @computing("field.json, field.csv, lengths.csv, readings.csv and the pages")
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A4", show_default=True, help="Paper of the pages.")
-def field(file: str, out: str | None, as_json: bool, units: str, paper: str) -> int:
+@in_one_layout
+def field(file: str, out: str | None, as_json: bool, units: str, paper: str, layout: str | None) -> int:
     """Pages for the crew: rope to cut, tensions by temperature, how to read them without a gauge, what to accept and prove.
 
     Exit status: 0; 4 the structure does not stand in still air; 1 and 2 as ever.
     """
     from guys.doors.field import field_command
 
-    return field_command(file, out, as_json, units, paper)  # type: ignore[arg-type]
+    return field_command(file, out, as_json, units, paper, layout)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -24,15 +24,15 @@ MEANING = {"none": " (no equilibrium: it falls)", "unstable": " (does not hold)"
 
 
 @contextmanager
-def progress(stream: TextIO) -> Iterator[Callable[[int, int], None] | None]:
-    """A bar while cases are solved, on a terminal only."""
+def progress(stream: TextIO, what: str = "cases") -> Iterator[Callable[[int, int], None] | None]:
+    """A bar while cases, or whatever is counted, are solved, on a terminal only."""
     if not stream.isatty():
         yield None
         return
     from rich.console import Console
     from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn
 
-    columns = (TextColumn("solving"), BarColumn(), MofNCompleteColumn(), TextColumn("cases"))
+    columns = (TextColumn("solving"), BarColumn(), MofNCompleteColumn(), TextColumn(what))
     with Progress(*columns, console=Console(file=stream), transient=True) as bar:
         task = bar.add_task("solving", total=None)
         yield lambda done, total: bar.update(task, completed=done, total=total)

@@ -26,10 +26,11 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
+from guys.exchange import comparison, losses, matters, result, tables
 from guys.exchange import field as crew
-from guys.exchange import losses, matters, result, tables
 from guys.scenario import draft, schema, starters
 from guys.studies.cells import WORDS
+from guys.studies.compare import compare
 from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
@@ -190,6 +191,7 @@ TABLES = {
     "Section": "[[spar.section]]`",
     "Fitting": "[[spar.fitting]]`",
     "AnchorEntry": "[[anchor]]`",
+    "LayoutEntry": "[[layout]]`",
     "GuyLevel": "[[guy_level]]`",
     "CableEntry": "[[cable]]`",
     "RopeEntry": "[rope.NAME]`",
@@ -262,6 +264,13 @@ def test_the_guide_names_every_key_and_column_of_the_studies(study: Any, told: A
     known = code_words("docs/user-guide.md")
     assert not sorted(keys_of(told.as_dict(found)) - known - set(WORDS))
     assert not [column for column in told.as_table(found).splitlines()[0].split(",") if column not in known]
+
+
+def test_the_guide_names_every_key_and_column_of_a_comparison() -> None:
+    found = compare([parse_scenario(starters.text("boom"))])
+    known, parts = code_words("docs/user-guide.md"), ("_of", "_case", "_wind_from_deg")
+    columns = [column for column in comparison.as_table(found).splitlines()[0].split(",") if not column.endswith(parts)]
+    assert not sorted({*keys_of(comparison.as_dict(found)), *columns} - known)
 
 
 def test_the_guide_names_every_command_and_option() -> None:

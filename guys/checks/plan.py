@@ -16,7 +16,7 @@ of, since of a fitting only its area is known.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -37,6 +37,8 @@ APART = 0.05
 """[m] between cables that share no end."""
 BESIDE = 0.3
 """[m] between an anchor and the cable of another."""
+OVER = "over "
+"""How the quantity of a headroom begins."""
 
 
 @dataclass(frozen=True)
@@ -147,7 +149,7 @@ def _headrooms(site: Site, hung: Hung) -> Iterator[Finding]:
     )
     for obstacle in site.obstacles:
         for n, cable in enumerate(hung.scenario.cable):
-            thing, quantity = f"cable {cable.name}", f"over {obstacle.name}"
+            thing, quantity = f"cable {cable.name}", f"{OVER}{obstacle.name}"
             low = _lowest(site, hung, obstacle, n)
             if low is None:
                 continue
@@ -159,6 +161,11 @@ def _headrooms(site: Site, hung: Hung) -> Iterator[Finding]:
             elif obstacle.kind in ("road", "path", "crowd", "building"):
                 lacking = "height" if obstacle.kind == "building" else "headroom"
                 yield _not_judged(thing, quantity, low[0], f"the {obstacle.kind} gives no {lacking}")
+
+
+def headrooms(found: Iterable[Finding]) -> list[Finding]:
+    """Of some findings those on the headroom of cables."""
+    return [f for f in found if f.quantity.startswith(OVER)]
 
 
 def _lowest(site: Site, hung: Hung, obstacle: Obstacle, cable: int) -> tuple[float, CaseLine] | None:
@@ -294,7 +301,7 @@ def _near_fitting(hung: Hung, spar: SparLine, fitting: Fitting) -> Iterator[str]
 
 def _piece(hung: Hung, cable: int) -> float:
     """Greatest length of a straight piece of a cable's curve."""
-    return float(np.nanmax(np.linalg.norm(np.diff(hung.curves[:, cable], axis=1), axis=-1)))
+    return float(np.nanmax(np.linalg.norm(np.diff(hung.curves[:, cable], axis=1), axis=-1), initial=0.0))
 
 
 def _nearest_to(found: Sequence[tuple[Array, CaseLine, Array]]) -> tuple[float, CaseLine | None]:
@@ -304,11 +311,13 @@ def _nearest_to(found: Sequence[tuple[Array, CaseLine, Array]]) -> tuple[float, 
 
 
 def _anchors_beside_cables(hung: Hung) -> Iterator[Finding]:
-    for a, anchor in enumerate(hung.scenario.anchor):
+    pieces = [_piece(hung, n) for n in range(len(hung.scenario.cable))]
+    for at, anchor in zip(hung.anchors, hung.scenario.anchor, strict=True):
+        points = np.nanmin(np.linalg.norm(hung.curves - at, axis=-1), axis=(0, 2), initial=math.inf)
         for n, cable in enumerate(hung.scenario.cable):
-            if isinstance(cable.to, AnchorPoint) and cable.to.anchor == anchor.name:
+            own = isinstance(cable.to, AnchorPoint) and cable.to.anchor == anchor.name
+            if own or not points[n] - pieces[n] < BESIDE:
                 continue
-            at = hung.anchors[a]
             near, line = _nearest_to([(hung.curves[k, n], hung.lines[k], at) for k in hung.standing()])
             if near < BESIDE:
                 yield _finding(

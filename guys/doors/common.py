@@ -2,16 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from contextlib import ExitStack
+import signal
+from collections.abc import Iterator, Mapping
+from concurrent.futures import Executor, ProcessPoolExecutor
+from contextlib import ExitStack, contextmanager
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from guys.checks.alarms import BALANCE
 from guys.drawing.files import figure_bytes
-from guys.errors import OutputError
+from guys.errors import OutputError, ScenarioError
 from guys.exchange.files import reason, replaced
 from guys.results import Solution
+from guys.scenario import Scenario, layouts
+from guys.scenario.keys import clipped, nearest
+from guys.scenario.model import AS_DRAWN
+from guys.scenario.reader import fault_at
 from guys.version import __version__
 
 if TYPE_CHECKING:
@@ -36,6 +42,28 @@ def store(directory: Path, contents: Mapping[str, bytes]) -> list[Path]:
 def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
     """A figure as `stem`.pdf, .svg and .png."""
     return {f"{stem}.{kind}": figure_bytes(figure, kind, title, __version__) for kind in ("pdf", "svg", "png")}
+
+
+@contextmanager
+def workers(count: int) -> Iterator[Executor | None]:
+    """So many processes side by side; None for one, which is this one.  An interruption stops them all."""
+    if count <= 1:
+        yield None
+        return
+    executor = ProcessPoolExecutor(count, initializer=signal.signal, initargs=(signal.SIGINT, signal.SIG_IGN))
+    try:
+        yield executor
+    finally:
+        executor.shutdown(cancel_futures=True)
+
+
+def in_layout(scenario: Scenario, name: str | None) -> Scenario:
+    """The scenario in one of its layouts; None: as drawn.  Raises ScenarioError where it has none of that name."""
+    every = {each.layout: each for each in layouts.every(scenario)}
+    if name is None or name in every:
+        return every[name or AS_DRAWN]
+    text = f'no layout is named "{clipped(name)}"{nearest(name, every)}'
+    raise ScenarioError([fault_at(scenario, ("layout",), text)])
 
 
 def exit_status(solution: Solution) -> int:

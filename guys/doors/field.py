@@ -8,7 +8,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import pictures, store
+from guys.doors.common import in_layout, pictures, store
 from guys.drawing import field_words as words
 from guys.drawing import rounding
 from guys.drawing.field import draw_field
@@ -19,12 +19,14 @@ from guys.sounding import TIMED, Way
 from guys.studies.field import Field, acceptance, cycles, field, proof_factor
 
 
-def field_command(file: str, out: str | None, as_json: bool, units: Units = "SI", paper: str = "A4") -> int:
+def field_command(
+    file: str, out: str | None, as_json: bool, units: Units = "SI", paper: str = "A4", layout: str | None = None
+) -> int:
     """The crew's pages; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = field(scenario, tick)
     written = [] if out is None else store(Path(out), _files(found, paper, units))

@@ -12,7 +12,7 @@ from pathlib import Path
 from typing import TextIO
 
 from guys import drawing, terminal
-from guys.doors.common import store
+from guys.doors.common import in_layout, store
 from guys.drawing import rounding
 from guys.drawing.files import figure_bytes
 from guys.exchange import limit as exchange
@@ -22,12 +22,12 @@ from guys.scenario.standard_wind import averaging_words
 from guys.studies.limit import limits
 
 
-def limit_command(file: str, out: str | None, as_json: bool, units: drawing.Units = "SI") -> int:
+def limit_command(file: str, out: str | None, as_json: bool, units: drawing.Units = "SI", layout: str | None = None) -> int:
     """The limiting winds of a scenario, written to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = limits(scenario, progress=tick)
     written = write(found, Path(out), units) if out is not None else []

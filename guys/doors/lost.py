@@ -12,7 +12,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import pictures, store
+from guys.doors.common import in_layout, pictures, store
 from guys.drawing import rounding
 from guys.drawing.losses import draw_losses, load_row
 from guys.drawing.rounding import Units, tongue
@@ -22,12 +22,12 @@ from guys.studies.cells import FALLS, NOT_FOUND, PAST, WORDS
 from guys.studies.lost import Lost, judged_by, lose
 
 
-def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
+def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
     """Take everything away in turn; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = lose(scenario, tick)
     contents = {"lost.json": losses.as_text(found).encode(), "lost.csv": losses.as_table(found).encode()}

@@ -12,7 +12,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import pictures, store
+from guys.doors.common import in_layout, pictures, store
 from guys.drawing import rounding
 from guys.drawing.matters import draw_matters
 from guys.drawing.rounding import Units, tongue
@@ -21,12 +21,12 @@ from guys.scenario import read_scenario
 from guys.studies.matters import Matters, Reading, told, weigh
 
 
-def matters_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
+def matters_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
     """Vary everything in turn; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = weigh(scenario, tick)
     contents = {"matters.json": matters.as_text(found).encode(), "matters.csv": matters.as_table(found).encode()}

@@ -9,7 +9,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import AS_PLUMBED, CAUTIONS
-from guys.doors.common import store
+from guys.doors.common import in_layout, store
 from guys.drawing import rounding
 from guys.drawing.rounding import Units, tongue
 from guys.exchange import plumbing as exchange
@@ -17,12 +17,12 @@ from guys.scenario import read_scenario
 from guys.studies.plumbing import Plumb, plumb
 
 
-def plumb_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
+def plumb_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
     """Find the tensions; exit status 0, 3 where one is more than half off what was asked for.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    found = plumb(read_scenario(file))
+    found = plumb(in_layout(read_scenario(file), layout))
     contents = {"plumb.json": exchange.as_text(found).encode(), "plumb.csv": exchange.as_table(found).encode()}
     written = [] if out is None else store(Path(out), contents)
     if as_json:

@@ -7,7 +7,7 @@ from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
-from guys.doors.common import exit_status, pictures, store
+from guys.doors.common import exit_status, in_layout, pictures, store
 from guys.drawing import rounding
 from guys.drawing.pegs import draw_setout
 from guys.drawing.rounding import Units, tongue
@@ -22,12 +22,20 @@ WITHOUT_DXF = 'no setout.dxf: that needs one package more, pip install "guys[dxf
 WITHOUT_GRID = "no setout.geojson and setout.kml: those are in degrees, and [site] gives no crs"
 
 
-def setout_command(file: str, out: str | None, as_json: bool, units: Units = "SI", paper: str = "A3", surveyed: str | None = None) -> int:
+def setout_command(
+    file: str,
+    out: str | None,
+    as_json: bool,
+    units: Units = "SI",
+    paper: str = "A3",
+    surveyed: str | None = None,
+    layout: str | None = None,
+) -> int:
     """Set out every anchor; `surveyed`: a file of pegs as found, with which the scenario is solved again.
 
     Exit status 0; with `surveyed` that of the solution with the pegs as found.  Raises `GuysError` for what is the user's to mend.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     planned = pegs(scenario)
     if not planned.name:
         raise ScenarioError([Fault(file, None, None, "anchor", "no anchor to set out")])

@@ -12,7 +12,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import store
+from guys.doors.common import in_layout, store
 from guys.drawing import rounding
 from guys.drawing.rounding import Tongue, Units, tongue
 from guys.exchange import sizing as files
@@ -20,12 +20,12 @@ from guys.scenario import Scenario, read_scenario
 from guys.studies.sizing import AnchorNeeds, Need, Sizing, size
 
 
-def size_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
+def size_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
     """Size every holdfast for every anchor; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = size(scenario, tick)
     contents = {"size.json": files.as_text(found).encode(), "size.csv": files.as_table(found).encode()}

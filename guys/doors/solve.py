@@ -7,7 +7,7 @@ from pathlib import Path
 from typing import TextIO
 
 from guys import drawing, terminal
-from guys.doors.common import exit_status, pictures, store
+from guys.doors.common import exit_status, in_layout, pictures, store
 from guys.exchange import result, tables
 from guys.results import Solution
 from guys.scenario import read_scenario
@@ -15,13 +15,19 @@ from guys.studies.standing import solve
 
 
 def solve_command(
-    file: str, out: str, as_json: bool, units: drawing.Units = "SI", paper: drawing.Paper = "A3", look: float | None = None
+    file: str,
+    out: str,
+    as_json: bool,
+    units: drawing.Units = "SI",
+    paper: drawing.Paper = "A3",
+    look: float | None = None,
+    layout: str | None = None,
 ) -> int:
-    """Every case of a scenario, written to the directory `out`.
+    """Every case of a scenario, written to the directory `out`; `layout`: the name of one of its layouts, None: as drawn.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         solution = solve(scenario, progress=tick)
     written = write(solution, Path(out), units, paper, look)

@@ -92,10 +92,10 @@ def draw_plan(page: Page, solution: Solution, zone: Rect, ratio: float, tongue: 
     _heading(page, solution, on, ratio)
     _north(page, on, field)
     _foot_strip(page, on, per_newton, largest * per_newton, tongue)
-    _cables(page, solution, on, field)
-    _spars(page, solution, on, field)
+    draw_cables(page, solution, on, field)
+    draw_spars(page, solution, on, field)
     for worst in solution.worst_anchors:
-        _loads(page, solution, worst, on, field, per_newton)
+        draw_loads(page, solution, worst, on, field, per_newton)
     rings = np.array([ring_radius(worst_of(solution, name), per_newton) for name in solution.anchors.name])
     label_anchors(page, solution, field, on.on_page, rings, tongue)
     _label_spars(page, solution, on, field)
@@ -155,7 +155,8 @@ def _foot_strip(page: Page, on: PlanFrame, per_newton: float, largest: float, to
         load_bar(page, x, y, per_newton, min(1.1 * largest, 26.0), tongue)
 
 
-def _cables(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+def draw_cables(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+    """Guys as lines, dashed where they drop."""
     for points, drops in _lanes(_plan_lines(solution, on)):
         page.line(points, style.INK, style.CABLE, style.DASHED if drops else style.SOLID, name="guy dashed" if drops else "guy solid")
         field.add_line(points)
@@ -202,7 +203,8 @@ def _on_one_line(one: Array, two: Array, gap: float) -> bool:
     return bool(same_way and turned < 0.03 and offset < gap)
 
 
-def _spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+def draw_spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
+    """Feet as squares, what leans or reaches out as a thick line to its head."""
     for spar in solution.spars:
         points = on.on_page(hung_spar(solution, spar))
         foot, head = points[0], points[-1]
@@ -216,7 +218,8 @@ def _spars(page: Page, solution: Solution, on: PlanFrame, field: Field) -> None:
             field.add_box([*(foot - 1.6), *(foot + 1.6)])
 
 
-def _loads(page: Page, solution: Solution, worst: AnchorWorst, on: PlanFrame, field: Field, per_newton: float) -> None:
+def draw_loads(page: Page, solution: Solution, worst: AnchorWorst, on: PlanFrame, field: Field, per_newton: float) -> None:
+    """Bar and ring of one anchor."""
     at = on.on_page(solution.anchors.position[solution.anchors.name.index(worst.name)])
     out, up = greatest(worst.horizontal).value, greatest(worst.uplift).value
     if isfinite(out) and out > 0.0 and per_newton > 0.0:

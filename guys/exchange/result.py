@@ -76,7 +76,7 @@ def _rows(array: Array) -> Any:
 def _case(solution: Solution, k: int) -> dict[str, Any]:
     gone = solution.state[k] == "none"
     out: dict[str, Any] = {
-        "layout": "as drawn",
+        "layout": solution.scenario.layout,
         "case": solution.case[k],
         "wind_from_deg": bearing(float(solution.wind_from[k])),
         "kind": solution.scenario.kind_of(solution.case[k]),

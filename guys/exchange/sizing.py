@@ -29,7 +29,7 @@ def as_dict(found: Sizing) -> dict[str, Any]:
         "scenario_sha256": found.scenario.sha256,
         "factor_required": found.scenario.allowables.anchor,
         "allowable_is_default": "anchor" in found.scenario.allowables.defaulted,
-        "anchors": [_anchor(anchor) for anchor in found.anchors],
+        "anchors": [anchor_needs(anchor) for anchor in found.anchors],
         "warnings": list(found.warnings),
         "notes": list(found.notes),
         "not_checked": list(found.not_checked),
@@ -42,7 +42,8 @@ def as_text(found: Sizing) -> str:
     return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
 
 
-def _anchor(anchor: AnchorNeeds) -> dict[str, Any]:
+def anchor_needs(anchor: AnchorNeeds) -> dict[str, Any]:
+    """What the holdfasts must be at one anchor."""
     return {
         "name": anchor.name,
         "holdfast": anchor.held_by,

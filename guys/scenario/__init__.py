@@ -25,7 +25,7 @@ from guys.scenario.model import (
     Vector,
     Wind,
 )
-from guys.scenario.reader import parse_scenario, read_scenario
+from guys.scenario.reader import parse_scenario, read_scenario, read_scenarios
 
 __all__ = [
     "Allowables",
@@ -54,4 +54,5 @@ __all__ = [
     "Wind",
     "parse_scenario",
     "read_scenario",
+    "read_scenarios",
 ]

@@ -12,6 +12,7 @@ from pydantic import Field
 
 from guys import constants
 from guys.scenario import quantity as q
+from guys.scenario.anchor_entry import AnchorEntry, LayoutEntry
 from guys.scenario.combination_entry import CombinationsEntry, FactoredEntry
 from guys.scenario.field import FieldWork
 from guys.scenario.gust import Gust
@@ -23,34 +24,9 @@ from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar
 from guys.scenario.parts import Part
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import Surface
-from guys.scenario.site_table import Latitude, Longitude, SiteEntry
+from guys.scenario.site_table import SiteEntry
 from guys.scenario.table import Model
 from guys.scenario.wind_entry import WindEntry
-
-
-class AnchorEntry(Model):
-    """A point on the ground that cables run to: bearing and radius from the first spar's foot, or east and north."""
-
-    name: q.Name
-    """Name, unique among anchors."""
-    bearing: q.Angle | None = None
-    """Bearing from the first spar's foot."""
-    radius: q.PositiveLength | None = None
-    """Level distance from the first spar's foot."""
-    east: q.Length | None = None
-    """Distance east of the origin."""
-    north: q.Length | None = None
-    """Distance north of the origin."""
-    lat: Latitude | None = None
-    """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
-    lon: Longitude | None = None
-    """Longitude, degrees east, WGS 84; a bare number."""
-    level: q.Length | None = None
-    """Height above the origin's level; left out: that of the ground there, or of the first spar's foot."""
-    give: q.Spring | None = None
-    """The anchor moves by the sum of its pulls divided by this."""
-    holdfast: q.Name | None = None
-    """A [holdfast.NAME] of the file: what holds it; left out: not judged."""
 
 
 class CableEntry(Model):
@@ -177,6 +153,8 @@ class ScenarioFile(Model):
     """Masts, booms and pylons."""
     anchor: list[AnchorEntry] = []
     """Points on the ground."""
+    layout: list[LayoutEntry] = []
+    """Alternatives: anchors that differ."""
     guy_level: list[GuyLevel] = []
     """Guys to several anchors from one height."""
     cable: list[CableEntry] = []

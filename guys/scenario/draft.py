@@ -15,10 +15,10 @@ from pydantic import TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from guys.scenario import combinations, wording
+from guys.scenario.anchor_entry import AnchorEntry, LayoutEntry
 from guys.scenario.combination_entry import CombinationsEntry
 from guys.scenario.document import (
     AllowablesEntry,
-    AnchorEntry,
     CableEntry,
     CaseEntry,
     GuyLevel,
@@ -53,6 +53,7 @@ class Draft:
     site: SiteEntry | None
     spar: tuple[Spar | None, ...]
     anchor: tuple[AnchorEntry | None, ...]
+    layout: tuple[LayoutEntry | None, ...]
     guy_level: tuple[GuyLevel | None, ...]
     cable: tuple[CableEntry | None, ...]
     rope: dict[str, RopeEntry | None]

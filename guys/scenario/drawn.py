@@ -11,7 +11,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 
-from guys.scenario.document import AnchorEntry
+from guys.scenario.anchor_entry import AnchorEntry
 from guys.scenario.model import Anchor, AnchorPoint, HeelFoot, Scenario, Spar, SparPoint
 
 Point = tuple[float, float, float]

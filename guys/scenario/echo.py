@@ -7,7 +7,7 @@ from collections.abc import Iterator
 
 from guys import units
 from guys.scenario import drawn, ice
-from guys.scenario.model import Cable, Case, HeelFoot, Rope, Scenario, Spar, Wind
+from guys.scenario.model import Anchor, Cable, Case, HeelFoot, Rope, Scenario, Spar, Wind
 from guys.scenario.plausible import section_mass
 from guys.scenario.standard_wind import AS_HIGH, REFERENCE_HEIGHT, averaging_words, beaufort
 
@@ -19,10 +19,7 @@ def lines(scenario: Scenario) -> Iterator[str]:
         yield f'spar "{spar.name}": {_spar(scenario, spar)}'
     foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
     for anchor in scenario.anchor:
-        east, north = anchor.east - foot[0], anchor.north - foot[1]
-        bearing = math.degrees(math.atan2(east, north)) % 360.0
-        radius, level = units.both(math.hypot(east, north), "length"), units.both(anchor.level, "length")
-        yield f'anchor "{anchor.name}": bearing {bearing:.4g} deg, radius {radius}, level {level}'
+        yield f'anchor "{anchor.name}": {_anchor(anchor, foot)}'
     for cable, ends in zip(scenario.cable, drawn.scenario_cable_ends(scenario), strict=True):
         yield f'cable "{cable.name}": {_cable(cable, *ends)}'
     for name, part in scenario.part.items():
@@ -36,8 +33,20 @@ def lines(scenario: Scenario) -> Iterator[str]:
         yield f"ice: {ice.words(scenario.ice)}"
     for case in scenario.case:
         yield f'case "{case.name}": {_case(case)}'
+    for layout in scenario.layouts:
+        for anchor, above in zip(layout.anchor, scenario.anchor, strict=True):
+            if anchor != above:
+                yield f'layout "{layout.layout}", anchor "{anchor.name}": {_anchor(anchor, foot)}'
     for note in scenario.notes:
         yield f"note: {note}"
+
+
+def _anchor(anchor: Anchor, foot: drawn.Point) -> str:
+    east, north = anchor.east - foot[0], anchor.north - foot[1]
+    bearing = math.degrees(math.atan2(east, north)) % 360.0
+    radius, level = units.both(math.hypot(east, north), "length"), units.both(anchor.level, "length")
+    held = "" if anchor.holdfast is None else f", holdfast {anchor.holdfast}"
+    return f"bearing {bearing:.4g} deg, radius {radius}, level {level}{held}"
 
 
 def _spar(scenario: Scenario, spar: Spar) -> str:

@@ -184,9 +184,9 @@ PUBLISHED_PICKETS = {"spacing": (3 * FOOT, 6 * FOOT), "driven": (3 * FOOT, 4 * F
 
 def warnings(scenario: Scenario) -> Iterator[str]:
     """What is unusual about the holdfasts."""
-    used = {anchor.holdfast for anchor in scenario.anchor}
+    used = {anchor.holdfast for layout in (scenario, *scenario.layouts) for anchor in layout.anchor}
     for name, holdfast in scenario.holdfast.items():
-        if name not in used:
+        if name not in used and scenario.is_drawn:
             yield f'holdfast "{name}": no anchor is held by it'
         yield from _unusual(f'holdfast "{name}"', holdfast)
     yield from _crowded(scenario)

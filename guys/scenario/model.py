@@ -428,6 +428,10 @@ class Analysis(Model):
     """catenary: own weight, ice and wind on the cable; straight: weightless, tension only."""
 
 
+AS_DRAWN = "as drawn"
+"""Name of the layout that the anchors of the file make."""
+
+
 class Scenario(Model):
     """A whole scenario.
 
@@ -442,6 +446,10 @@ class Scenario(Model):
     """Boundary, obstacles and ground, with the coordinate grid; None where the file has no [site]."""
     spar: tuple[Spar, ...]
     anchor: tuple[Anchor, ...] = ()
+    layout: str = AS_DRAWN
+    """Name of the layout that its anchors make."""
+    layouts: tuple[Scenario, ...] = ()
+    """The same in each other layout of the file."""
     cable: tuple[Cable, ...] = ()
     rope: dict[str, Rope] = {}
     material: dict[str, Material] = {}
@@ -465,6 +473,11 @@ class Scenario(Model):
     """Values that look like a slip."""
     notes: tuple[str, ...] = ()
     """What was converted, chosen or looked up, each with its source."""
+
+    @property
+    def is_drawn(self) -> bool:
+        """Whether its anchors are those of the file, not of one of its other layouts."""
+        return self.layout == AS_DRAWN
 
     def kind_of(self, case: str) -> CaseKind:
         """The kind of a case, sign forces moved aside or not; still air is a service case."""

@@ -12,7 +12,7 @@ from pathlib import Path
 
 from guys import units
 from guys.scenario import drawn
-from guys.scenario.document import AnchorEntry
+from guys.scenario.anchor_entry import AnchorEntry
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
 from guys.scenario.model import GroundFoot
@@ -30,8 +30,8 @@ def placed(draft: Draft, path: str | None) -> tuple[Draft, Site | None, list[Fin
     """The draft with its anchors in metres from the origin, the site, and every fault of the two."""
     entry = draft.site
     if entry is None:
-        lost = [Finding(("anchor", n), NEEDS_GRID) for n, a in enumerate(draft.anchor) if a is not None and a.lat is not None]
-        return _without_degrees(draft), None, lost
+        draft, lost = anchors_placed(draft, None)
+        return draft, None, lost
     findings = list(_needs(entry))
     grid, more = _grid(entry) if not findings else (None, [])
     findings += more
@@ -39,11 +39,19 @@ def placed(draft: Draft, path: str | None) -> tuple[Draft, Site | None, list[Fin
         return _without_degrees(draft), None, findings
     site, faults = read_site(_asked(entry), grid, Path(path).parent if path else Path())
     findings = [Finding(("site", fault.key), fault.message) for fault in faults]
-    draft, lost = _in_metres(draft, grid)
-    if not findings:
-        draft, more = _on_the_ground(draft, site)
-        findings += [*more, *_outside(draft, site)]
+    if findings:
+        draft, lost = _in_metres(draft, grid)
+        return draft, None, findings + lost
+    findings += _outside(draft, site)
+    draft, lost = anchors_placed(draft, site)
     return draft, site, findings + lost
+
+
+def anchors_placed(draft: Draft, site: Site | None) -> tuple[Draft, list[Finding]]:
+    """The draft with its anchors in metres from the origin and on the ground, and every fault of doing so."""
+    draft, lost = _in_metres(draft, None if site is None else site.grid)
+    draft, more = (draft, []) if site is None else _on_the_ground(draft, site)
+    return draft, lost + more
 
 
 def _asked(entry: SiteEntry) -> Asked:

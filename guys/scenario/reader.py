@@ -18,6 +18,7 @@ from guys.scenario import (
     frame,
     held,
     ice,
+    layouts,
     names,
     parts,
     patches,
@@ -67,6 +68,19 @@ def read_scenario(path: str | PathLike[str]) -> Scenario:
     return _scenario(text, content, name)
 
 
+def read_scenarios(paths: Iterable[str | PathLike[str]]) -> list[Scenario]:
+    """The scenarios of several files.  Raises ScenarioError with the faults of all of them."""
+    found, faults = [], list[Fault]()
+    for path in paths:
+        try:
+            found.append(read_scenario(path))
+        except ScenarioError as error:
+            faults += error.faults
+    if faults:
+        raise ScenarioError(faults)
+    return found
+
+
 def parse_scenario(text: str, path: str | None = None) -> Scenario:
     """The scenario of a text; `path` names it in messages.
 
@@ -100,12 +114,23 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     tables, unfit = draft(document)
     tables, site, misplaced = place.placed(tables, path)
     broken = refused + unfit + misplaced
-    findings = broken + independent(_rules(tables), broken)
+    findings = broken + independent(_rules(tables, site), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))
-    scenario = _resolved(tables, site, hashlib.sha256(content).hexdigest(), path)
-    told = (*scenario.notes, *patches.notes(scenario))
-    return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario)), "notes": told})
+    return _with_layouts(_resolved(tables, site, hashlib.sha256(content).hexdigest(), path), tables)
+
+
+def _with_layouts(scenario: Scenario, tables: Draft) -> Scenario:
+    """The scenario with its other layouts, each with what is to be told of it."""
+    foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
+    others = [layouts.named(scenario, *each) for each in layouts.resolved(tables, scenario.site, foot)]
+    scenario = scenario.model_copy(update={"layouts": tuple(_told(other) for other in others)})
+    return _told(scenario)
+
+
+def _told(scenario: Scenario) -> Scenario:
+    notes = (*scenario.notes, *patches.notes(scenario))
+    return scenario.model_copy(update={"warnings": tuple(plausible.warnings(scenario)), "notes": notes})
 
 
 def _document(text: str, path: str | None) -> dict[str, Any]:
@@ -146,7 +171,7 @@ def _check_format(document: dict[str, Any], text: str, path: str | None) -> None
     raise ScenarioError(_faults([Finding(("format",), message)], text, path))
 
 
-def _rules(tables: Draft) -> Iterator[Finding]:
+def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from names.findings(tables)
     yield from frame.findings(tables)
     yield from rigging.findings(tables)
@@ -156,6 +181,7 @@ def _rules(tables: Draft) -> Iterator[Finding]:
     yield from ice.findings(tables)
     yield from field.findings(tables)
     yield from patches.findings(tables)
+    yield from layouts.findings(tables, site)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:

@@ -10,7 +10,8 @@ from guys import tables
 from guys.catalogue import ropes as stock
 from guys.catalogue.rope import StockRope
 from guys.scenario import drawn, standard_wind
-from guys.scenario.document import AllowablesEntry, AnchorEntry, CableEntry, CaseEntry, GuyLevel, RopeEntry
+from guys.scenario.anchor_entry import AnchorEntry
+from guys.scenario.document import AllowablesEntry, CableEntry, CaseEntry, GuyLevel, RopeEntry
 from guys.scenario.model import (
     Allowables,
     Anchor,

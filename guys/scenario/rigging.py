@@ -7,7 +7,8 @@ from collections.abc import Iterator
 
 from guys import units
 from guys.scenario import drawn, frame
-from guys.scenario.document import AnchorEntry, CableEntry, GuyLevel
+from guys.scenario.anchor_entry import AnchorEntry
+from guys.scenario.document import CableEntry, GuyLevel
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
 from guys.scenario.model import AnchorPoint, HeelFoot, Spar, SparPoint

@@ -12,7 +12,6 @@ NOT_AVAILABLE = "not available in this version"
 _EVERY = "*"
 _PATTERNS: tuple[tuple[tuple[str, ...], str], ...] = (
     (("raise",), ""),
-    (("layout",), ""),
 )
 
 

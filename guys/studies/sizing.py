@@ -153,6 +153,11 @@ def size(scenario: Scenario, progress: Progress | None = None) -> Sizing:
         text = 'missing; nothing to size: give what is at hand, such as a table with kind = "block", mass and friction'
         raise ScenarioError([fault_at(scenario, ("holdfast",), text)])
     _, listed, swept = cases(scenario, progress=progress)
+    return sized(scenario, listed, swept)
+
+
+def sized(scenario: Scenario, listed: Batch, swept: Batch | None) -> Sizing:
+    """The sizes that solved cases ask for; none where the file has no holdfast."""
     batches = [batch for batch in (listed, swept) if batch is not None]
     anchors = tuple(_anchor(scenario, k, _pulls(scenario, k, batches)) for k in range(len(scenario.anchor)))
     settled = [bool(((b.code == stability.STABLE) | b.spins).all()) for b in batches]

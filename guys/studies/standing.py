@@ -6,7 +6,7 @@ structure -> setting -> listed cases -> full circle of winds -> worst values -> 
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -51,7 +51,7 @@ def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = Non
     Returns a `Solution`; a structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets
     the initial tensions asked for.
     """
-    return _solution(*cases(scenario, finer, progress))
+    return solution(*cases(scenario, finer, progress))
 
 
 def cases(scenario: Scenario, finer: int = 1, progress: Progress | None = None) -> tuple[Setting, Batch, Batch | None]:
@@ -124,7 +124,11 @@ def _worst(listed: Batch, swept: Batch | None) -> _Worst:
     return _Worst(*with_mirrors(listed), *with_mirrors(swept if swept is not None else listed))
 
 
-def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
+def solution(setting: Setting, listed: Batch, swept: Batch | None, again: bool = True) -> Solution:
+    """What the cases come to.
+
+    swept : of the full circle of winds, None where it is left out;  again : the governing case is solved again by another method
+    """
     structure = setting.problem.structure
     scenario = structure.scenario
     worst = _worst(listed, swept)
@@ -136,7 +140,7 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
     found = allowables.sorted_findings((*allowables.findings(*_everything_judged(listed, swept)), *rules))
     if not ((listed.code == stability.STABLE) | listed.spins).any():
         found = allowables.unjudged(found)
-    check = _self_check(setting, listed, cables)
+    check = _self_check(setting, listed, cables, again)
     return Solution(
         scenario=scenario,
         version=__version__,
@@ -161,6 +165,7 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         sweep=_sweep(scenario, swept) if swept is not None else None,
         check=check,
         notes=(
+            *_layouts(scenario),
             *scenario.notes,
             *chains.notes(scenario),
             *assumptions(scenario, listed.forces.pull),
@@ -177,6 +182,15 @@ def _solution(setting: Setting, listed: Batch, swept: Batch | None) -> Solution:
         failed=bool((listed.code == stability.FAILED).any()),
         crew=_greatest(structure, worst.of_service(), swept, initial) if alarms.has_crew_loads_apart(scenario) else None,
     )
+
+
+def _layouts(scenario: Scenario) -> Iterator[str]:
+    """Which layout of several this is."""
+    if scenario.layouts:
+        others = ", ".join(f'"{other.layout}"' for other in scenario.layouts)
+        yield f"anchors as drawn; the file's other layouts ({others}) are not in these results: guys compare solves all"
+    elif not scenario.is_drawn:
+        yield f'anchors of the layout "{scenario.layout}", not as drawn'
 
 
 def _greatest(structure: Structure, worst: _Worst, swept: Batch | None, initial: Array) -> Worst:
@@ -270,9 +284,9 @@ def _sweep(scenario: Scenario, swept: Batch) -> Sweep:
     return Sweep(names, bearing, m.tension[order], m.resultant[order], m.horizontal[order], m.uplift[order], swept.forces.slack[order])
 
 
-def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...]) -> SelfCheck:
+def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...], again: bool) -> SelfCheck:
     balance = float(np.nanmax(listed.balance)) if not np.isnan(listed.balance).all() else math.nan
-    k = _governing(listed, cables)
+    k = _governing(listed, cables) if again else None
     if k is None:
         return SelfCheck(balance, "not run", math.nan, "", math.nan)
     line = listed.lines[k]
@@ -281,8 +295,8 @@ def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...])
     else:
         problem = setting.under(line.states()[:1])
         judged = stability.judge(problem, setting.state, setting.loads)
-    again = resolve.resolve(problem, judged.state)
-    return SelfCheck(balance, again.verdict, again.difference, line.name, line.wind_from)
+    other = resolve.resolve(problem, judged.state)
+    return SelfCheck(balance, other.verdict, other.difference, line.name, line.wind_from)
 
 
 def _governing(listed: Batch, cables: tuple[CableWorst, ...]) -> int | None:
