@@ -389,6 +389,7 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     ("no altitude", MAST, ((("wind", "temperature"), "9 degC"),), "wind.altitude", "missing; temperature is given for the air density"),
     ("in space", MAST, ((("wind", "altitude"), "90 km"),), "wind.altitude", "out of range"),
     # not available
+    ("anchors at one place", MAST, ((("anchor", 1, "bearing"), "0 deg"),), "anchor[1]", 'stands where "N" does'),
     ("site", MAST, ((("site",), {"crs": "EPSG:32631"}),), "site.origin", "crs needs the place of the origin"),
     ("part", MAST, ((("part",), {"a": {"strength": "1 kN", "efficiency": 0.8}}),), "part.a", "give one of"),
     ("action level above the limit", MAST, ((("limit",), {"actions": [0.6, 1.2]}),), "limit.actions[1]", "less than 1"),

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
+from itertools import combinations
 
 from guys import units
 from guys.scenario import drawn, frame
@@ -34,7 +35,18 @@ def findings(draft: Draft) -> Iterator[Finding]:
             yield from _part(part, ("part", name))
     yield from _plumb(draft)
     if not frame.loops(draft):
+        yield from _one_place(draft)
         yield from _runs(draft, spars)
+
+
+def _one_place(draft: Draft) -> Iterator[Finding]:
+    """Anchors on top of one another."""
+    places = placed_anchors(draft)
+    index = {anchor.name: k for k, anchor in enumerate(draft.anchor) if anchor is not None}
+    for (one, here), (other, there) in combinations(places.items(), 2):
+        if math.dist(here, there) < SAME_PLACE:
+            text = f'stands where "{clipped(one)}" does; give one of them another place, or run the cables to one anchor'
+            yield Finding(("anchor", index[other]), text)
 
 
 def placed_anchors(draft: Draft) -> dict[str, drawn.Point]:
