@@ -111,7 +111,8 @@ def validate(file: str) -> None:
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
 @click.option("--look", metavar="BEARING", help='Bearing the elevation looks toward, such as "45 deg"; left out: the one that shows most.')
 @in_one_layout
-def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None, layout: str | None) -> int:
+@click.option("--pictures", "with_pictures", is_flag=True, help="Draw tensions, spar forces, sway and anchor loads as well.")
+def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str | None, layout: str | None, with_pictures: bool) -> int:
     """Solve a scenario; write the results and the sheet.
 
     Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past its allowable; 4 some case is
@@ -124,7 +125,7 @@ def solve(file: str, out: str, as_json: bool, units: str, paper: str, look: str 
         toward = None if look is None else parse(look, "angle")
     except GuysError as error:
         raise click.BadParameter(str(error), param_hint="--look") from error
-    return solve_command(file, out, as_json, units, paper, toward, layout)  # type: ignore[arg-type]
+    return solve_command(file, out, as_json, units, paper, toward, layout, with_pictures)  # type: ignore[arg-type]
 
 
 @commands.command()
@@ -145,9 +146,7 @@ def plumb(file: str, out: str | None, as_json: bool, units: str, layout: str | N
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
 @click.option("--as-built", "surveyed", metavar="FILE.csv", help="Pegs as surveyed: tell how far each is off, and solve again.")
 @in_one_layout
-def setout(
-    file: str, out: str | None, as_json: bool, units: str, paper: str, surveyed: str | None, layout: str | None
-) -> int:
+def setout(file: str, out: str | None, as_json: bool, units: str, paper: str, surveyed: str | None, layout: str | None) -> int:
     """Set out the anchors: coordinates, bearings, distances and check distances, as sheet and files.
 
     With --as-built the exit status is that of the solution with the pegs as found.

@@ -22,20 +22,25 @@ def solve_command(
     paper: drawing.Paper = "A3",
     look: float | None = None,
     layout: str | None = None,
+    with_pictures: bool = False,
 ) -> int:
-    """Every case of a scenario, written to the directory `out`; `layout`: the name of one of its layouts, None: as drawn.
+    """Every case of a scenario, written to the directory `out`.
+
+    layout : the name of one of its layouts, None: as drawn;  with_pictures : the page of pictures too
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         solution = solve(scenario, progress=tick)
-    written = write(solution, Path(out), units, paper, look)
+    written = write(solution, Path(out), units, paper, look, with_pictures)
     _show(solution, written, as_json, units, sys.stdout)
     return exit_status(solution)
 
 
-def write(solution: Solution, directory: Path, units: drawing.Units, paper: drawing.Paper, look: float | None) -> list[Path]:
+def write(
+    solution: Solution, directory: Path, units: drawing.Units, paper: drawing.Paper, look: float | None, with_pictures: bool = False
+) -> list[Path]:
     """Every file of a run: all are made before the first is stored."""
     contents = {
         "result.json": result.as_text(solution).encode(),
@@ -44,7 +49,12 @@ def write(solution: Solution, directory: Path, units: drawing.Units, paper: draw
         "cables.csv": tables.cables(solution).encode(),
     }
     figure = drawing.sheet(solution, paper=paper, look_toward=look, units=units)
-    return store(directory, contents | pictures("sheet", figure, solution.scenario.title))
+    contents |= pictures("sheet", figure, solution.scenario.title)
+    if with_pictures:
+        from guys.drawing.pictures import draw_pictures
+
+        contents |= pictures("pictures", draw_pictures(solution, paper, units), solution.scenario.title)
+    return store(directory, contents)
 
 
 def _show(solution: Solution, written: list[Path], as_json: bool, units: drawing.Units, stream: TextIO) -> None:

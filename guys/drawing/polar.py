@@ -38,7 +38,7 @@ def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> No
         return
     unit, name = (1e3, "kN") if tongue.systems[0] == "SI" else (POUND_FORCE, "lbf")
     bearings = np.unique(np.asarray(solution.sweep.bearing))
-    pull = _greatest(solution.sweep, bearings) / unit
+    pull = greatest_over_cases(solution.sweep, solution.sweep.resultant, bearings) / unit
     top = float(np.nanmax(pull))
     if tongue.systems[0] == "SI" and top < 0.1:
         pull, top, name = pull * 1e3, top * 1e3, "N"
@@ -54,14 +54,17 @@ def draw_polar(page: Page, solution: Solution, zone: Rect, tongue: Tongue) -> No
     _rim(page, field, (solution.anchors.name, bearings, pull), centre, radius)
 
 
-def _greatest(sweep: Sweep, bearings: Array) -> Array:
-    """(bearing, anchor) the greatest pull over the cases with wind, between bearings of a case in proportion; NaN where none stands."""
+def greatest_over_cases(sweep: Sweep, values: Array, bearings: Array) -> Array:
+    """(bearing, item) the greatest of values (line, direction, item) over the cases with wind; NaN where none stands.
+
+    Between the bearings of a case its values go in proportion.
+    """
     lines = []
     for line in range(len(sweep.case)):
         own = bearings_of(sweep, line)
         around = np.concatenate([own[-1:] - 2.0 * np.pi, own, own[:1] + 2.0 * np.pi])
-        pull = np.concatenate([sweep.resultant[line, -1:], sweep.resultant[line], sweep.resultant[line, :1]])
-        lines.append(np.column_stack([np.interp(bearings, around, pull[:, i]) for i in range(pull.shape[1])]))
+        ring = np.concatenate([values[line, -1:], values[line], values[line, :1]])
+        lines.append(np.column_stack([np.interp(bearings, around, ring[:, i]) for i in range(ring.shape[1])]))
     return np.asarray(np.fmax.reduce(lines, axis=0))
 
 
