@@ -16,6 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import parse_scenario
+from guys.catalogue import ropes
 from guys.constants import INCH, POUND, STANDARD_GRAVITY
 from guys.loads import as_drawn, assemble, lines_of
 from guys.structure import build
@@ -28,6 +29,9 @@ AIR = 1.25
 EIGHT_PSF = 8 * float(POUND) * STANDARD_GRAVITY / (12 * float(INCH)) ** 2
 """[Pa]"""
 SPAN = 30.0
+PSI = float(POUND) * STANDARD_GRAVITY / float(INCH) ** 2
+"""[Pa]"""
+WIRE = Allowance(0.005, "wire diameters are printed to 0.01 mm, half of which is 0.25 % of 2 mm and twice that of its area", share=True)
 
 Wire = tuple[str, str, tuple[str, str, str, str, str]]
 GALVANIZED: dict[str, Wire] = {
@@ -126,3 +130,17 @@ def test_copper_strand() -> Iterator[Row]:
     print.
     """
     yield from _rows(COPPER, COPPER_BY_HAND)
+
+
+@published("HB C5", "READ")
+def test_stranded_steel_stretches_and_warms() -> Iterator[Row]:
+    """Modulus and expansion of stranded steel wire, as the catalogue's strand of three wires and of seven has them.
+
+    Source: General Order 95, Appendix C, (a)5 and (a)6. A modulus is on the metal area, worked out here from the wires of ASTM A475.
+    """
+    for name, wires, wire in (("strand-1x3-ehs-1/4in", 3, 3.05e-3), ("strand-1x7-ehs-1/4in", 7, 2.03e-3)):
+        strand = ropes.find(name)
+        assert strand is not None
+        area = wires * math.pi / 4 * wire**2
+        yield Row(f"modulus of {name}", "psi", "21000000", strand.stiffness.low / area / PSI, WIRE)
+        yield Row(f"expansion of {name}", "1/°F", "6.5e-6", strand.expansion / 1.8 if strand.expansion is not None else math.nan)
