@@ -244,15 +244,19 @@ def limit(file: str, out: str | None, as_json: bool, units: str, layout: str | N
 @commands.command()
 @computing("field.json, field.csv, lengths.csv, readings.csv and the pages")
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A4", show_default=True, help="Paper of the pages.")
+@click.option("--measured", "readings", metavar="FILE.csv", help="Tensions as read: tell what they are, what to change, and solve again.")
 @in_one_layout
-def field(file: str, out: str | None, as_json: bool, units: str, paper: str, layout: str | None) -> int:
+def field(
+    file: str, out: str | None, as_json: bool, units: str, paper: str, readings: str | None, layout: str | None
+) -> int:
     """Pages for the crew: rope to cut, tensions by temperature, how to read them without a gauge, what to accept and prove.
 
-    Exit status: 0; 4 the structure does not stand in still air; 1 and 2 as ever.
+    Exit status: 0; 4 the structure does not stand in still air; 1 and 2 as ever. With --measured that of the solution as found, and 3
+    where a tension is off by more than is accepted.
     """
     from guys.doors.field import field_command
 
-    return field_command(file, out, as_json, units, paper, layout)  # type: ignore[arg-type]
+    return field_command(file, out, as_json, units, paper, layout, readings)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -8,45 +8,97 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import in_layout, pictures, store
+from guys.doors.common import exit_status, in_layout, pictures, store
 from guys.drawing import field_words as words
 from guys.drawing import rounding
 from guys.drawing.field import draw_field
+from guys.drawing.measured import ALL_AT_ONCE, change_words, draw_measured, past_words, turns_words
 from guys.drawing.rounding import Units, tongue
 from guys.exchange import field as exchange
+from guys.exchange import measured as told
 from guys.scenario import read_scenario
+from guys.scenario.readings import read_readings
 from guys.sounding import TIMED, Way
 from guys.studies.field import Field, acceptance, cycles, field, proof_factor
+from guys.studies.measured import Measured, measured
 
 
 def field_command(
-    file: str, out: str | None, as_json: bool, units: Units = "SI", paper: str = "A4", layout: str | None = None
+    file: str,
+    out: str | None,
+    as_json: bool,
+    units: Units = "SI",
+    paper: str = "A4",
+    layout: str | None = None,
+    readings: str | None = None,
 ) -> int:
-    """The crew's pages; files go to the directory `out` where one is given.
+    """The crew's pages; files go to the directory `out` where one is given; `readings`: a file of tensions as read, to be told of.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
     scenario = in_layout(read_scenario(file), layout)
+    taken = None if readings is None else read_readings(readings, scenario)
     with terminal.progress(sys.stderr) as tick:
-        found = field(scenario, tick)
-    written = [] if out is None else store(Path(out), _files(found, paper, units))
+        plan = field(scenario, tick)
+        found = None if taken is None else measured(plan, taken, tick)
+    written = [] if out is None else store(Path(out), _files(plan, found, paper, units))
     if as_json:
-        sys.stdout.write(exchange.as_text(found))
+        sys.stdout.write(exchange.as_text(plan) if found is None else told.as_text(found))
     else:
-        report(found, units, sys.stdout)
+        report(plan, units, sys.stdout) if found is None else report_measured(found, units, sys.stdout)
         terminal.files(written, sys.stdout)
-    return 1 if found.solution.failed else 4 if found.still.reason[0] is not None else 0
+    return status(plan, found)
 
 
-def _files(found: Field, paper: str, units: Units) -> dict[str, bytes]:
+def status(plan: Field, found: Measured | None) -> int:
+    """The exit status: with readings that of the solution as found, and at least 3 where a tension is off by more than is accepted."""
+    if found is not None:
+        return exit_status(found.after) or (3 if found.off else 0)
+    return 1 if plan.solution.failed else 4 if plan.still.reason[0] is not None else 0
+
+
+def _files(plan: Field, found: Measured | None, paper: str, units: Units) -> dict[str, bytes]:
     contents = {
-        "field.json": exchange.as_text(found),
-        "field.csv": exchange.as_table(found),
-        "lengths.csv": exchange.lengths_table(found),
-        "readings.csv": exchange.form(found),
+        "field.json": exchange.as_text(plan),
+        "field.csv": exchange.as_table(plan),
+        "lengths.csv": exchange.lengths_table(plan),
+        "readings.csv": exchange.form(plan),
     }
-    drawn = [pictures(stem, figure, found.scenario.title) for stem, figure in draw_field(found, paper, units).items()]
+    figures = draw_field(plan, paper, units)
+    if found is not None:
+        contents |= {"measured.json": told.as_text(found), "measured.csv": told.as_table(found)}
+        figures["field-5-as-read"] = draw_measured(found, paper, units)
+    drawn = [pictures(stem, figure, plan.scenario.title) for stem, figure in figures.items()]
     return {name: text.encode() for name, text in contents.items()} | {name: b for each in drawn for name, b in each.items()}
+
+
+def report_measured(found: Measured, units: Units, stream: TextIO) -> None:
+    """What every tension is, what to change, and the loads as found."""
+    say = tongue(units)
+    stream.write(f"{found.plan.scenario.title}\n")
+    rows = []
+    for k, cable in enumerate(found.plan.scenario.cable):
+        if found.read[k] != found.read[k]:
+            rows.append([cable.name, "not read", *["–"] * 5, ""])
+            continue
+        read, wanted, fits = (say.say(rounding.plain_force, float(v[k])) for v in (found.read, found.wanted, found.found))
+        error, near = say.say(rounding.force, float(found.error[k])), say.say(rounding.fine_length, float(found.change_error[k]))
+        change = ", ".join(change_words(found, k, say))
+        rows.append([cable.name, f"{read} ± {error}", wanted, fits, change, f"± {near}", turns_words(found, k), found.verdict(k)])
+    title = f"Tensions read at {say.say(rounding.temperature, found.temperature)}"
+    terminal.table(title, ["cable", "read", "wanted", "balances", "change", "its error", "turns", ""], rows, stream)
+    pulls = [
+        [a.name, say.say(rounding.load, a.resultant.peak), say.say(rounding.load, b.resultant.peak)]
+        for a, b in zip(found.plan.solution.worst_anchors, found.after.worst_anchors, strict=True)
+    ]
+    terminal.table("Greatest pull of each anchor", ["anchor", "as planned", "as found"], pulls, stream)
+    lists = {
+        "As found": past_words(found),
+        "Warnings": [*found.warnings, *found.after.warnings],
+        "Notes": [ALL_AT_ONCE, *words.assumed(found.plan, say)],
+        "Cautions": CAUTIONS,
+    }
+    terminal.listed(lists, stream)
 
 
 def report(found: Field, units: Units, stream: TextIO) -> None:

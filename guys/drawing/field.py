@@ -45,15 +45,17 @@ def draw_field(found: Field, paper: str, units: Units) -> dict[str, Figure]:
         "field-3-readings": ("how to read a tension", _ways(found, speech), words.assumed(found, speech)),
         "field-4-acceptance": ("what to accept, prove and look at", _acceptance(found, speech), words.accepted_words(found)),
     }
-    return {stem: _page(found, paper, *page) for stem, page in pages.items()}
+    warnings = [f"Warning: {warning}" for warning in found.warnings]
+    title = found.scenario.title
+    return {stem: draw_parts(title, paper, shows, parts, [*warnings, *below]) for stem, (shows, parts, below) in pages.items()}
 
 
-def _page(found: Field, paper: str, shows: str, parts: list[Part], below: list[str]) -> Figure:
+def draw_parts(title: str, paper: str, shows: str, parts: Sequence[Part], below: Sequence[str]) -> Figure:
+    """A page of parts, one below the other."""
     room = PAPERS[paper][0] / PAPERS[paper][2] - 2 * MARGIN
     laid = [Part(p.head, p.grid, [line for text in p.lines for line in wrapped(text, room, style.BODY)]) for p in parts]
     needed = sum(_height(part) for part in laid)
-    warnings = [f"Warning: {warning}" for warning in found.warnings]
-    page, zone = leaf(paper, Words(found.scenario.title, shows, [*warnings, *below], CAUTIONS), needed)
+    page, zone = leaf(paper, Words(title, shows, below, CAUTIONS), needed)
     y = zone.top
     for part in laid:
         y = _draw(page, part, zone.left, y, zone.width)

@@ -66,6 +66,7 @@ def assumed(found: Field, speech: Tongue) -> list[str]:
         "time_error": f"a time stopped to {work.time_error:g} s",
         "sag_error": f"a sag read to {speech.say(thickness, work.sag_error)}",
         "sight_error": f"a sight read to {speech.say(thickness, work.sight_error)}",
+        "plumb_error": f"spars known to stand as set to {speech.say(thickness, work.plumb_error)}",
         "gauge_error": f"a gauge {share(work.gauge_error)}",
         "mass_error": f"rope mass {share(work.mass_error)}",
     }

@@ -62,6 +62,8 @@ class FieldWork(Model):
     """Error of a sag; left out: 10 mm, from memory."""
     sight_error: q.PositiveLength = 0.02
     """Error of a tangent sighted on the mast; left out: 20 mm, from memory."""
+    plumb_error: q.PositiveLength = 0.01
+    """How near spars are known to stand as set when tensions are read; left out: 10 mm, from memory."""
     gauge_error: Share = 0.05
     """Error of a gauge, of its reading; left out: 0.05, from memory."""
     mass_error: Share = 0.02
