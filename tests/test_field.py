@@ -19,6 +19,7 @@ from guys.drawing.field import draw_field
 from guys.exchange import field as exchange
 from guys.scenario import Scenario, parse_scenario
 from guys.scenario.field import FieldWork
+from guys.scenario.model import Case
 from guys.studies.field import Field, acceptance, field, order, proof_factor
 from guys.studies.standing import solve
 
@@ -36,8 +37,12 @@ def found(plan: Scenario) -> Field:
     return field(plan)
 
 
+def without_wind(plan: Scenario) -> Scenario:
+    return plan.model_copy(update={"case": (Case(name="still", wind=0.0, temperature=plan.setting.temperature),)})
+
+
 def with_field(plan: Scenario, **keys: Any) -> Scenario:
-    return plan.model_copy(update={"field": FieldWork(**keys)})
+    return without_wind(plan).model_copy(update={"field": FieldWork(**keys)})
 
 
 def test_lengths_add_up_and_are_those_of_statics(found: Field) -> None:
@@ -56,6 +61,7 @@ def test_lengths_add_up_and_are_those_of_statics(found: Field) -> None:
 
 def test_rope_to_cut_with_hardware_of_a_rope_of_its_own(plan: Scenario) -> None:
     rope = plan.cable[0].rope
+    plan = without_wind(plan)
     work = FieldWork.model_validate({"hardware": 0.4, "turn_back": 0.5, "rope": {rope: {"hardware": 0.6, "pitch": 0.002}}})
     changed = plan.model_copy(update={"field": work})
     cut = field(changed).cut

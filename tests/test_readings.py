@@ -66,7 +66,7 @@ def test_all_faults_at_once(tmp_path: Path) -> None:
     (f"# scenario {'0' * 64}\n{HEAD}{NAME},gauge,1 kN,,10 degC\n", "another scenario"),
     (f"# scenario abc\n{HEAD}{NAME},gauge,1 kN,,10 degC\n", "another scenario"),
     (f"{HEAD}{NAME},gauge,1 kN,,10 degC\n{NAME},gauge,1 kN,,18 degC\n", "changed by 8 K"),
-    (f'{HEAD}"{NAME},gauge,1 kN,,10 degC\n', "temperature: missing"),
+    (f'{HEAD}"{NAME},gauge,1 kN,,10 degC\n', "holds no readings"),
     (f'{HEAD}{NAME},gauge,"1\nkN",,10 degC\n', "runs over lines"),
 ])  # fmt: skip
 def test_files_that_will_not_do(tmp_path: Path, text: str, words: str) -> None:

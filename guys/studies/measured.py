@@ -28,6 +28,7 @@ from guys.loads import setting_line
 from guys.results import Solution
 from guys.rotation import Array
 from guys.scenario import Scenario
+from guys.scenario.model import SparPoint
 from guys.scenario.readings import Reading, Readings
 from guys.setting import find
 from guys.sounding import TIMED, Span, Way
@@ -41,6 +42,8 @@ STEP = 1e-6
 CLOSE = 1e-9
 """Change of a length, of itself, at which it is found."""
 ROUNDS = 30
+SLOPES = 2
+"""Rounds in which the slopes are worked out anew: by then lengths are so near that they no longer change."""
 AGREE = 2.0
 """Errors by which readings of one cable, or a reading and what balances, may differ before it is told."""
 
@@ -195,26 +198,22 @@ class _Fit:
 def _fit(problem: Problem, state: State, read: Array, error: Array, readings: Readings) -> _Fit:
     """Lengths nearest the readings with the spars as set."""
     known = np.flatnonzero(np.isfinite(read))
-    node = _held(problem)
-    as_set = state.u[0, node].ravel()
+    as_set = _places(problem, state).ravel()
     off = np.full(len(as_set), problem.structure.scenario.field.plumb_error)
     length, scale = problem.length.copy(), np.concatenate([error[known], off])
     wanted = np.concatenate([read[known], as_set])
-    for _ in range(ROUNDS):
-        now, state = _answer(problem, state, length, known, node, readings)
-        slope = np.empty((len(now), len(known)))
-        for column, k in enumerate(known):
-            moved = length.copy()
-            moved[k] *= 1 + STEP
-            slope[:, column] = (_answer(problem, state, moved, known, node, readings)[0] - now) / (STEP * length[k])
-        a = slope / scale[:, None]
+    for round_ in range(ROUNDS):
+        now, state = _answer(problem, state, length, known, readings)
+        if round_ < SLOPES:
+            slope = _slope(problem, state, length, known, now, readings)
+            a = slope / scale[:, None]
         change = np.linalg.lstsq(a, (wanted - now) / scale, rcond=None)[0]
         length[known] += change
         if np.max(np.abs(change) / length[known]) < CLOSE:
             break
     else:
         raise ScenarioError([readings.fault("no state was found that fits these readings together; read again, one cable after another")])
-    tension, _ = _answer(problem, state, length, known, node, readings)
+    tension, _ = _answer(problem, state, length, known, readings)
     spread = np.linalg.inv(a.T @ a)
     out = np.full((3, len(length)), np.nan)
     out[0, known] = tension[: len(known)]
@@ -224,21 +223,33 @@ def _fit(problem: Problem, state: State, read: Array, error: Array, readings: Re
     return _Fit(length, *out)
 
 
-def _held(problem: Problem) -> Index:
-    """Nodes of spars that cables are made fast to, and heads."""
-    s = problem.structure
-    node = np.unique(np.concatenate([s.cables.a.node, s.cables.b.node, s.head.node]))
-    return np.asarray(node[s.spar[node] >= 0])
+def _slope(problem: Problem, state: State, length: Array, known: Index, now: Array, readings: Readings) -> Array:
+    """(answer, known) change of the answers by length."""
+    out = np.empty((len(now), len(known)))
+    for column, k in enumerate(known):
+        moved = length.copy()
+        moved[k] *= 1 + STEP
+        out[:, column] = (_answer(problem, state, moved, known, readings)[0] - now) / (STEP * length[k])
+    return out
 
 
-def _answer(problem: Problem, state: State, length: Array, known: Index, node: Index, readings: Readings) -> tuple[Array, State]:
+def _places(problem: Problem, state: State) -> Array:
+    """(place, 3) [m] displaced points of spars: heads, and one at every height where cables are made fast."""
+    s, ends = problem.structure, problem.structure.scenario.cable
+    first = {(c.from_.spar, c.from_.at): k for k, c in reversed(list(enumerate(ends)))}
+    to_spar = {(c.to.spar, c.to.at): k for k, c in reversed(list(enumerate(ends))) if isinstance(c.to, SparPoint)}
+    parts = [(s.head, list(range(len(s.length)))), (s.cables.b, list(first.values())), (s.cables.a, list(to_spar.values()))]
+    return np.concatenate([problem.reach(points, state)[1][0, rows] for points, rows in parts])
+
+
+def _answer(problem: Problem, state: State, length: Array, known: Index, readings: Readings) -> tuple[Array, State]:
     """Tensions read and displacements at lengths, and the state."""
     changed = replace(problem, length=length)
     out = solver.solve(changed, state)
     if not out.converged[0]:
         raise ScenarioError([readings.fault("the structure does not stand with the tensions these readings tell; read again")])
     tension = np.linalg.norm(changed.evaluate(out.state).hanging.at_a[0, known], axis=1)
-    return np.concatenate([tension, out.state.u[0, node].ravel()]), out.state
+    return np.concatenate([tension, _places(changed, out.state).ravel()]), out.state
 
 
 def _with_lengths(scenario: Scenario, length: Array) -> Scenario:
