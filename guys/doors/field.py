@@ -14,6 +14,8 @@ from guys.drawing import rounding
 from guys.drawing.field import draw_field
 from guys.drawing.measured import ALL_AT_ONCE, change_words, draw_measured, past_words, turns_words
 from guys.drawing.rounding import Units, tongue
+from guys.drawing.wind_card import draw_card, measured_as, rows_of
+from guys.drawing.wind_card import words as card_words
 from guys.exchange import field as exchange
 from guys.exchange import measured as told
 from guys.scenario import read_scenario
@@ -54,7 +56,8 @@ def status(plan: Field, found: Measured | None) -> int:
     """The exit status: with readings that of the solution as found, and at least 3 where a tension is off by more than is accepted."""
     if found is not None:
         return exit_status(found.after) or (3 if found.off else 0)
-    return 1 if plan.solution.failed else 4 if plan.still.reason[0] is not None else 0
+    failed = plan.solution.failed or (plan.limits is not None and plan.limits.failed)
+    return 1 if failed else 4 if plan.still.reason[0] is not None else 0
 
 
 def _files(plan: Field, found: Measured | None, paper: str, units: Units) -> dict[str, bytes]:
@@ -65,6 +68,8 @@ def _files(plan: Field, found: Measured | None, paper: str, units: Units) -> dic
         "readings.csv": exchange.form(plan),
     }
     figures = draw_field(plan, paper, units)
+    if plan.limits is not None:
+        figures["field-6-wind-card"] = draw_card(plan.limits, paper, units)
     if found is not None:
         contents |= {"measured.json": told.as_text(found), "measured.csv": told.as_table(found)}
         figures["field-5-as-read"] = draw_measured(found, paper, units)
@@ -127,7 +132,12 @@ def report(found: Field, units: Units, stream: TextIO) -> None:
     terminal.table("Off its line and twisted at most", ["at", "off", "twist"], plumb, stream)
     proof = [[a.name, say.say(rounding.force, float(p))] for a, p in zip(found.scenario.anchor, found.proof, strict=True)]
     terminal.table(f"Proof loads, {proof_factor(found.scenario):g} times the greatest pull", ["anchor", "proof load"], proof, stream)
+    card = [] if found.limits is None else card_words(found.limits, say)
+    if found.limits is not None:
+        winds = [[name, say.say(rounding.speed_below, speed)] for name, speed in rows_of(found.limits)]
+        terminal.table(f"Wind to act on, {measured_as(found.limits, say)}", ["act at", "wind"], winds, stream)
     lists = {
+        "Wind card": card,
         "Order of tensioning": words.setting_words(found, say),
         "Warnings": found.warnings,
         "Notes": [*words.assumed(found, say), *words.accepted_words(found)],

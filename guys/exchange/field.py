@@ -8,8 +8,9 @@ from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.constants import ZERO_CELSIUS
-from guys.exchange.result import number
+from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
+from guys.limits import Limits
 from guys.sounding import TIMED, WAYS
 from guys.studies.field import Field, acceptance, cycles, order, proof_factor
 from guys.version import __version__
@@ -86,9 +87,26 @@ def as_dict(found: Field) -> dict[str, Any]:
         ],
         "proof_factor": proof_factor(scenario),
         "proof_loads": [{"anchor": a.name, "proof_load_N": number(p)} for a, p in zip(scenario.anchor, found.proof, strict=True)],
+        "wind_card": None if found.limits is None else wind_card(found.limits),
         "warnings": list(found.warnings),
         "cautions": list(CAUTIONS),
     }  # fmt: skip
+
+
+def wind_card(found: Limits) -> dict[str, Any]:
+    """The lowest limit and the winds to act on."""
+    least, wind = found.acting, found.scenario.wind
+    assert wind is not None
+    return {
+        "limit_m_s": None if least is None else number(least.speed),
+        "why": None if least is None else least.why,
+        "case": None if least is None else least.case,
+        "wind_from_deg": None if least is None else bearing(least.wind_from),
+        "actions": [{"share": share, "speed_m_s": speed} for share, speed in found.actions],
+        "lower_in_s": found.scenario.limit.lower_in,
+        "averaging_s": wind.averaging,
+        "height_m": wind.height,
+    }
 
 
 def as_text(found: Field) -> str:

@@ -23,6 +23,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys import sounding
+from guys.limits import Limits
 from guys.loads import setting_line
 from guys.results import Solution
 from guys.rotation import Array
@@ -33,6 +34,7 @@ from guys.setting import Setting, find
 from guys.sounding import TIMED, WAYS, Span, Way
 from guys.structure import build
 from guys.studies.batch import Batch, Progress, solve_lines
+from guys.studies.limit import limits
 from guys.studies.standing import solve
 
 SAME = 0.01
@@ -94,7 +96,8 @@ class Still:
 class Field:
     """readings way -> (temperature, cable) [s] of all cycles, [m] or [N], NaN where there is nothing to read, as of a slack cable
     errors way -> (cable,) of the tension as set, of itself;  accepted way -> (2, cable) readings with as little and as much tension as
-    is accepted at the setting temperature;  proof (anchor,) [N]
+    is accepted at the setting temperature;  proof (anchor,) [N];  limits : for the wind card, None where [limit] asks for nothing or no
+    case has wind
     """
 
     scenario: Scenario
@@ -105,6 +108,7 @@ class Field:
     errors: Mapping[Way, Array]
     accepted: Mapping[Way, Array]
     proof: Array
+    limits: Limits | None
     warnings: tuple[str, ...]
 
     @property
@@ -136,8 +140,14 @@ def field(scenario: Scenario, progress: Progress | None = None) -> Field:
     accepted = {way: np.array([_read(scenario, still, way, 0, share * taut[0]) for share in (least, most)]) for way in WAYS}
     errors = {way: _errors(scenario, still, way, taut[0]) for way in WAYS}
     proof = np.array([a.resultant.peak for a in solution.for_crew().worst_anchors]) * proof_factor(scenario)
-    found = Field(scenario, solution, cut, still, readings, errors, accepted, proof, ())
+    found = Field(scenario, solution, cut, still, readings, errors, accepted, proof, _limits(scenario, progress), ())
     return replace(found, warnings=tuple(_warnings(found)))
+
+
+def _limits(scenario: Scenario, progress: Progress | None) -> Limits | None:
+    """The limit study, where [limit] says what to act on."""
+    asked = bool(scenario.limit.model_fields_set) and scenario.wind is not None and any(case.wind > 0 for case in scenario.case)
+    return limits(scenario, progress=progress) if asked else None
 
 
 def proof_factor(scenario: Scenario) -> float:
@@ -206,6 +216,9 @@ def share_of_error(work: FieldWork, way: Way, span: Span, pull: Array, count: fl
 def _warnings(found: Field) -> list[str]:
     """What a crew must not overlook."""
     out = []
+    wind, least = found.scenario.wind, None if found.limits is None else found.limits.acting
+    if wind is not None and least is not None and least.speed < wind.speed:
+        out.append(f"the limit, {least.speed:.3g} m/s, is below the scenario's own wind, {wind.speed:.3g} m/s: {least.why}")
     for temperature, reason in zip(found.still.temperature[1:], found.still.reason[1:], strict=True):
         if reason is not None:
             out.append(f"at {temperature - 273.15:.0f} °C in still air: {reason}")
