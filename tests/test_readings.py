@@ -80,3 +80,16 @@ def test_files_that_cannot_be_read(tmp_path: Path) -> None:
     (tmp_path / "odd.csv").write_bytes(b"\xff\xfe\x00")
     with pytest.raises(ScenarioError, match="UTF-8"):
         read_readings(str(tmp_path / "odd.csv"), PLAN)
+
+
+def test_readings_of_another_layout(tmp_path: Path) -> None:
+    row = f"{HEAD}{NAME},gauge,1 kN,,10 degC\n"
+    signed = f"# scenario {PLAN.sha256}\n"
+    assert 'of the layout "by the fence"' in faults(tmp_path, f"{signed}# layout by the fence\n{row}")
+    moved = PLAN.model_copy(update={"layout": "by the fence"})
+    file = tmp_path / "moved.csv"
+    file.write_text(f"{signed}# layout by the fence,,,,\n{row}", encoding="utf-8")
+    assert read_readings(str(file), moved).signed
+    file.write_text(f"{signed}{row}", encoding="utf-8")
+    with pytest.raises(ScenarioError, match="not of"):
+        read_readings(str(file), moved)

@@ -11,15 +11,13 @@ from guys.constants import ZERO_CELSIUS
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.limits import Limits
+from guys.scenario.model import AS_DRAWN
+from guys.scenario.readings import COLUMNS, DIGEST, LAYOUT
 from guys.sounding import TIMED, WAYS
 from guys.studies.field import Field, acceptance, cycles, order, proof_factor
 from guys.version import __version__
 
 FORMAT = "guys-field/1"
-DIGEST = "# scenario "
-"""Begins the line of a form that tells which scenario it was written for."""
-FORM = ("cable", "by", "reading", "cycles", "temperature")
-"""Columns of the form."""
 UNITS = {"pulse": "s", "swing": "s", "sag": "m", "sight": "m", "gauge": "N"}
 
 
@@ -75,6 +73,7 @@ def as_dict(found: Field) -> dict[str, Any]:
         "title": scenario.title,
         "guys_version": __version__,
         "scenario_sha256": scenario.sha256,
+        "layout": scenario.layout,
         "setting_temperature_degC": celsius(scenario.setting.temperature),
         "lengths": lengths(found),
         "order": [{"spar": level.spar, "at_m": level.at, "cables": list(level.cables)} for level in order(scenario)],
@@ -132,4 +131,5 @@ def form(found: Field) -> str:
     """An empty form for readings, to be filled in and given back with --measured."""
     work = found.scenario.field
     rows: list[list[Cell]] = [[cable.name, TIMED[0], None, cycles(work, TIMED[0]), None] for cable in found.scenario.cable]
-    return f"{DIGEST}{found.scenario.sha256}\n{as_csv(FORM, rows)}"
+    layout = "" if found.scenario.layout == AS_DRAWN else f"{LAYOUT}{found.scenario.layout}\n"
+    return f"{DIGEST}{found.scenario.sha256}\n{layout}{as_csv(COLUMNS, rows)}"

@@ -19,10 +19,12 @@ from pathlib import Path
 from guys import units
 from guys.errors import Fault, ScenarioError
 from guys.scenario.keys import clipped, nearest
-from guys.scenario.model import Scenario
+from guys.scenario.model import AS_DRAWN, Scenario
 
 COLUMNS = ("cable", "by", "reading", "cycles", "temperature")
 DIGEST = "# scenario "
+LAYOUT = "# layout "
+"""Begins the line that tells which layout; without it they are of the structure as drawn."""
 SHORTEST_DIGEST = 12
 DIMENSIONS = {"pulse": "time", "swing": "time", "sag": "length", "sight": "length", "gauge": "force"}
 """What is read, by how it is read."""
@@ -115,8 +117,16 @@ def _signed(path: str, lines: Sequence[str], scenario: Scenario) -> bool:
                     f"{scenario.sha256}. Where the cables are the same, write that one, or leave the line out"
                 )
                 raise _whole(path, reason, number)
+            _same_layout(path, lines, scenario)
             return True
     return False
+
+
+def _same_layout(path: str, lines: Sequence[str], scenario: Scenario) -> None:
+    named = {line.removeprefix(LAYOUT).strip(" ,;\t"): number for number, line in enumerate(lines, 1) if line.startswith(LAYOUT)}
+    for name, number in named.items() or {AS_DRAWN: None}.items():
+        if name != scenario.layout:
+            raise _whole(path, f'the readings are of the layout "{clipped(name)}", not of "{clipped(scenario.layout)}"', number)
 
 
 def _places(path: str, line: int, head: Sequence[str]) -> Mapping[str, int]:
