@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 import pytest
 import scenarios_made as made
 from test_holdfasts import EVERY
@@ -25,6 +27,13 @@ SAID = {
 def test_every_kind_in_words(kind: str) -> None:
     holdfast = MODELS[kind].model_validate({"kind": kind, **EVERY[kind]})
     assert install_words(holdfast, tongue("SI")) == SAID[kind]
+
+
+def test_a_deadman_lies_behind_its_anchor_in_line_with_the_pull() -> None:
+    """1.2 m deep under a pull at 45 degrees: 1.2 m behind; a level pull has no place for it."""
+    deadman = MODELS["deadman"].model_validate({"kind": "deadman", **EVERY["deadman"]})
+    assert install_words(deadman, tongue("SI"), math.pi / 4) == SAID["deadman"] + ", 1.20 m behind the anchor"
+    assert install_words(deadman, tongue("SI"), 0.0) == install_words(deadman, tongue("SI"), math.nan) == SAID["deadman"]
 
 
 def test_both_unit_systems_and_a_heavy_block() -> None:

@@ -133,6 +133,18 @@ def test_nothing_will_do_behind_a_weak_rod() -> None:
     assert found.short == ("A", "B", "C")
 
 
+def test_a_deadman_is_told_where_it_lies(sized: Sizing) -> None:
+    """Its trench, the way behind the anchor and its depth make a triangle in the line of the greatest pull."""
+    lies = sized.anchors[0].trench(need(sized, "dead"))
+    assert lies is not None
+    behind, along = lies
+    assert math.hypot(behind, 1.2) == pytest.approx(along)
+    assert 1.2 / behind == pytest.approx(math.tan(sized.anchors[0].angle))
+    told = next(n for n in files.as_dict(sized)["anchors"][0]["needs"] if n["holdfast"] == "dead")
+    assert (told["behind_anchor_m"], told["trench_m"]) == lies
+    assert sized.anchors[0].trench(need(sized, "block")) is None
+
+
 def test_torque_beside_soil_is_sized_too() -> None:
     table = {key: value for key, value in BESIDE.items() if key != "soil"} | {"torque": "1 kN m"}
     found = size(made.scenario(document({"turned": table})))

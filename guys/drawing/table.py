@@ -218,7 +218,8 @@ def _holdfast_row(solution: Solution, anchor: Anchor, tongue: Tongue) -> Row:
     found = next((f for f in solution.findings if f.thing == f"anchor {anchor.name}" and f.quantity == "pull"), None)
     if anchor.holdfast is None or found is None:
         return [name, ("no holdfast given",), ("–",), ("–",), ("not judged",)]
-    words = (install_words(solution.scenario.holdfast[anchor.holdfast], tongue), anchor.holdfast)
+    worst = next(w for w in solution.worst_anchors if w.name == anchor.name)
+    words = (install_words(solution.scenario.holdfast[anchor.holdfast], tongue, pull_angle(solution, worst)), anchor.holdfast)
     governs = (found.governs or "–",)
     if found.verdict == "not judged" or not standing(solution):
         return [name, words, governs, ("–",), ("not judged",)]

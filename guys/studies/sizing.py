@@ -25,6 +25,7 @@ from guys import holdfasts, stability, units
 from guys.checks.anchors import angle, granted, idle, lacking
 from guys.constants import NONZERO
 from guys.errors import ScenarioError
+from guys.holdfasts import deadman
 from guys.holdfasts.picket import combinations
 from guys.loads import CaseLine
 from guys.recovery import join
@@ -112,6 +113,10 @@ class AnchorNeeds:
     case: str
     wind_from: float
     needs: tuple[Need, ...]
+
+    def trench(self, need: Need) -> tuple[float, float] | None:
+        """Of a deadman how far behind the anchor it lies, and the cable in its trench [m], in line with `pull`; None of other kinds."""
+        return deadman.trench(need.holds.depth, self.angle) if isinstance(need.holds, Deadman) and self.angle > 0.0 else None
 
 
 @dataclass(frozen=True)
