@@ -133,6 +133,14 @@ def test_nothing_will_do_behind_a_weak_rod() -> None:
     assert found.short == ("A", "B", "C")
 
 
+def test_a_screw_with_a_shaft_is_told_the_torque_to_reach_beside_its_depth() -> None:
+    found = size(made.scenario(document({"screw": {**SCREW, "shaft": {"square": "38 mm"}}})))
+    torque = need(found, "screw", "torque to reach")
+    assert torque.needed == pytest.approx(1.5 * found.anchors[0].pull * 0.3048 / 10, rel=HALVED)
+    assert math.isnan(torque.given)
+    assert {n.size for n in found.anchors[0].needs} == {"depth", "widest plate", "torque to reach"}
+
+
 def test_a_deadman_is_told_where_it_lies(sized: Sizing) -> None:
     """Its trench, the way behind the anchor and its depth make a triangle in the line of the greatest pull."""
     lies = sized.anchors[0].trench(need(sized, "dead"))

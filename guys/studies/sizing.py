@@ -5,9 +5,9 @@
 T, a are pull and angle of the anchor and n the factor required (allowables.anchor, its own in factored cases) in every case and wind
 solved for: the listed ones and the full circle, refined at the peaks of pull, horizontal, uplift and of every factor judged.  The low
 value of the holdfast counts, along each case's own pull.  One thing is sized at a time, the rest of the table kept: mass of a block,
-length of a deadman, pattern of pickets, depth and plates of a screw (all plates scaled alike), the torque to reach, bond length of a
-bar, the pull to show in a test.  Sizes are looked for from small to large, then narrowed by halving, so that a size is found too where
-more is not always better (a heavier block presses harder on the ground).
+length of a deadman, pattern of pickets, depth and plates of a screw (all plates scaled alike), the torque to reach where its shaft is
+given, bond length of a bar, the pull to show in a test.  Sizes are looked for from small to large, then narrowed by halving, so that a
+size is found too where more is not always better (a heavier block presses harder on the ground).
 
 An anchor of several cables is sized for their resultant; it is a single point of failure, and is told so.
 """
@@ -263,7 +263,12 @@ def _screw_sizes(holdfast: Screw, keyed: Callable[..., Size]) -> Iterator[Size]:
         return holdfast.model_copy(update={"helix": [x / widest * d for d in holdfast.helix]})
 
     yield keyed("depth", "length", widest, 30.0)
+    def by_torque(x: float) -> Holdfast:
+        return holdfast.model_copy(update={"soil": None, "torque": x})
+
     yield Size("widest plate", "length", 0.05, holdfast.depth, widest, wider)
+    if holdfast.shaft is not None:
+        yield Size("torque to reach", "moment", 1.0, 1e6, None, by_torque)
 
 
 def reserve(holdfast: Holdfast, pulls: Pulls) -> float:
