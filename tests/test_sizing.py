@@ -133,6 +133,18 @@ def test_nothing_will_do_behind_a_weak_rod() -> None:
     assert found.short == ("A", "B", "C")
 
 
+def test_what_is_unusual_about_a_holdfast_is_told_when_it_is_sized() -> None:
+    """Neighbours that share ground, too; that a holdfast of the truck holds no anchor yet is no news here."""
+    whole = document({"dead": DEADMAN, "screw": {**SCREW, "depth": "0.5 m"}})
+    whole["anchor"].append({**whole["anchor"][0], "name": "beside", "bearing": "3 deg"})
+    for anchor in whole["anchor"]:
+        anchor["holdfast"] = "dead"
+    told = size(made.scenario(whole)).warnings
+    assert any("their holdfasts" in words and "share ground" in words for words in told)
+    assert any("less than 3 diameters deep" in words for words in told)
+    assert not any("no anchor is held by it" in words for words in told)
+
+
 def test_a_screw_with_a_shaft_is_told_the_torque_to_reach_beside_its_depth() -> None:
     found = size(made.scenario(document({"screw": {**SCREW, "shaft": {"square": "38 mm"}}})))
     torque = need(found, "screw", "torque to reach")

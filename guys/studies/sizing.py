@@ -31,7 +31,7 @@ from guys.loads import CaseLine
 from guys.recovery import join
 from guys.rotation import Array
 from guys.scenario import Scenario
-from guys.scenario.held import FOOT, SLENDEREST
+from guys.scenario.held import FOOT, SLENDEREST, unusual
 from guys.scenario.holding import Block, Deadman, Holdfast, Picket, Rock, Screw, Tested
 from guys.scenario.model import AnchorPoint
 from guys.scenario.reader import fault_at
@@ -340,5 +340,6 @@ def _warnings(scenario: Scenario, anchors: Sequence[AnchorNeeds], stands: bool) 
         if len(anchor.cables) > 1:
             named = f"{len(anchor.cables)} cables ({', '.join(anchor.cables)})"
             yield f"anchor {anchor.name} holds {named}, sized for their resultant: a single point of failure, all go with it"
+    yield from unusual(scenario)
     if "anchor" in scenario.allowables.defaulted:
         yield f"the factor of {scenario.allowables.anchor:g} asked for is the default of allowables.anchor, not yours"
