@@ -52,7 +52,7 @@ def test_effective_area() -> Iterator[Row]:
     plate, push = Plate(length=3.0, width=2.0, bearing=1.0), 600e3
     for e_L, e_W, area in ((0.0, 0.0, "6.00"), (0.5, 0.0, "4.00"), (0.3, 0.2, "3.84"), (1.0, 0.5, "1.00")):
         force = np.array([[0.0, 0.0, -push]])
-        pressure, _ = bases.stand(plate, 0.0, force, np.cross([[e_W, e_L, 0.0]], force))
+        pressure, _ = bases.stand(plate, 0.0, force[:, 2], np.cross([[e_W, e_L, 0.0]], force))
         yield Row(f"A' at e_L {e_L:g} m, e_W {e_W:g} m", "m2", area, push / pressure[0])
         if e_L == 0.5 and e_W == 0.0:
             yield Row("even pressure over the mean at the kern's edge", "-", "1.5", pressure[0] / (push / 6.0), mark="EXACT")
