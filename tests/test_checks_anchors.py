@@ -117,6 +117,8 @@ def test_a_weak_rod_governs_whatever_the_ground_holds() -> None:
     strong, without = finding(held({**heavy, "rod_strength": "9 MN"})), finding(held(heavy))
     assert strong == without
     assert strong.governs == "sliding"
+    between = finding(held({**heavy, "rod_strength": f"{1.5 * without.capacity!r} N"}))
+    assert (between.capacity, between.governs) == (without.capacity, "sliding"), "the low value is judged, whatever the best would break"
 
 
 def test_what_a_rod_is_made_of_is_asked_for_but_of_a_test() -> None:

@@ -133,6 +133,38 @@ def test_nothing_will_do_behind_a_weak_rod() -> None:
     assert found.short == ("A", "B", "C")
 
 
+def test_what_is_unusual_about_a_holdfast_is_told_when_it_is_sized() -> None:
+    """Neighbours that share ground, too; that a holdfast of the truck holds no anchor yet is no news here."""
+    whole = document({"dead": DEADMAN, "screw": {**SCREW, "depth": "0.5 m"}})
+    whole["anchor"].append({**whole["anchor"][0], "name": "beside", "bearing": "3 deg"})
+    for anchor in whole["anchor"]:
+        anchor["holdfast"] = "dead"
+    told = size(made.scenario(whole)).warnings
+    assert any("their holdfasts" in words and "share ground" in words for words in told)
+    assert any("less than 3 diameters deep" in words for words in told)
+    assert not any("no anchor is held by it" in words for words in told)
+
+
+def test_a_screw_with_a_shaft_is_told_the_torque_to_reach_beside_its_depth() -> None:
+    found = size(made.scenario(document({"screw": {**SCREW, "shaft": {"square": "38 mm"}}})))
+    torque = need(found, "screw", "torque to reach")
+    assert torque.needed == pytest.approx(1.5 * found.anchors[0].pull * 0.3048 / 10, rel=HALVED)
+    assert math.isnan(torque.given)
+    assert {n.size for n in found.anchors[0].needs} == {"depth", "widest plate", "torque to reach"}
+
+
+def test_a_deadman_is_told_where_it_lies(sized: Sizing) -> None:
+    """Its trench, the way behind the anchor and its depth make a triangle in the line of the greatest pull."""
+    lies = sized.anchors[0].trench(need(sized, "dead"))
+    assert lies is not None
+    behind, along = lies
+    assert math.hypot(behind, 1.2) == pytest.approx(along)
+    assert 1.2 / behind == pytest.approx(math.tan(sized.anchors[0].angle))
+    told = next(n for n in files.as_dict(sized)["anchors"][0]["needs"] if n["holdfast"] == "dead")
+    assert (told["behind_anchor_m"], told["trench_m"]) == lies
+    assert sized.anchors[0].trench(need(sized, "block")) is None
+
+
 def test_torque_beside_soil_is_sized_too() -> None:
     table = {key: value for key, value in BESIDE.items() if key != "soil"} | {"torque": "1 kN m"}
     found = size(made.scenario(document({"turned": table})))

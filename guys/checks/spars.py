@@ -148,8 +148,7 @@ def _place(station: float) -> str:
 
 def strengths_of(section: Section, materials: Mapping[str, Material]) -> tuple[Strength, ...]:
     """Everything a section is judged by."""
-    outright = section.capacity_axial is not None
-    if outright or section.lattice is None or section.material is None:
+    if section.capacity_axial is not None or section.lattice is None or section.material is None:
         return (_strength_of(section, materials),)
     material = materials[section.material]
     if material.yield_ is None:
@@ -201,8 +200,6 @@ def _strength_of(section: Section, materials: Mapping[str, Material]) -> Strengt
     """What a section other than a lattice is judged by."""
     if section.capacity_axial is not None and section.capacity_bending is not None:
         return _outright(section.capacity_axial, section.capacity_bending, section)
-    if section.lattice is not None:
-        return _not_judged("legs and lacing of a lattice are not judged in this version; give capacity_axial and capacity_bending")
     if section.tube is None or section.material is None:
         return _not_judged("given outright without capacity_axial and capacity_bending")
     material = materials[section.material]

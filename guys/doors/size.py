@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import math
 import sys
+from collections.abc import Iterator
 from pathlib import Path
 from typing import TextIO
 
@@ -51,6 +52,7 @@ def report(found: Sizing, units: Units, stream: TextIO) -> None:
     head = ["holdfast", "size", "needed", "given", "holds low", "best", "high", "governs", "case", "wind from"]
     for anchor in found.anchors:
         terminal.table(_title(anchor, said), head, [_row(need, said) for need in anchor.needs if need.holds is not None], stream)
+        stream.write("".join(f"  {words}\n" for words in _trenches(anchor, said)))
     nothing = [f"{a.name}, {n.holdfast}, {n.size}: {n.reason}" for a in found.anchors for n in a.needs if n.holds is None]
     for title, lines in (
         ("Nothing will do", nothing),
@@ -76,6 +78,14 @@ def _title(anchor: AnchorNeeds, said: Tongue) -> str:
     pull = f"pull {said.say(rounding.load, anchor.pull)} at {rounding.angle(anchor.angle)} from the ground"
     count = f"{len(anchor.cables)} cable{'' if len(anchor.cables) == 1 else 's'}"
     return f"Anchor {anchor.name}: {pull}, {count}; proof load {said.say(rounding.load, anchor.proof)}"
+
+
+def _trenches(anchor: AnchorNeeds, said: Tongue) -> Iterator[str]:
+    """Where deadmen lie."""
+    for need in anchor.needs:
+        if lies := anchor.trench(need):
+            behind, along = (said.say(rounding.length, value) for value in lies)
+            yield f"{need.holdfast}: its middle {behind} behind the anchor, {along} of cable in the trench, in line with the pull"
 
 
 def _row(need: Need, said: Tongue) -> list[str]:

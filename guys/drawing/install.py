@@ -2,17 +2,20 @@
 
 from __future__ import annotations
 
+from math import nan
+
 from guys.drawing.rounding import Tongue, angle, capacity, length, mass, moment, thickness
+from guys.holdfasts.deadman import trench
 from guys.scenario.holding import Block, Deadman, Holdfast, Picket, Rock, Screw, Tested
 
 
-def install_words(holdfast: Holdfast, tongue: Tongue) -> str:
-    """One line, such as "block of 2000 kg"."""
+def install_words(holdfast: Holdfast, tongue: Tongue, pull: float = nan) -> str:
+    """One line, such as "block of 2000 kg"; pull : angle of the greatest pull above the horizontal [rad], NaN where there is none."""
     if isinstance(holdfast, Block):
         return f"block of {tongue.say(mass, holdfast.mass)}{_sides(holdfast, tongue)}"
     if isinstance(holdfast, Deadman):
         face = f"{tongue.say(length, holdfast.length)} long, {tongue.say(length, holdfast.height)} high"
-        return f"{holdfast.form}, {face}, its middle {tongue.say(length, holdfast.depth)} deep"
+        return f"{holdfast.form}, {face}, its middle {tongue.say(length, holdfast.depth)} deep{_behind(holdfast, tongue, pull)}"
     if isinstance(holdfast, Picket):
         return f"{holdfast.pattern} pickets" if "-" in holdfast.pattern else "one picket"
     if isinstance(holdfast, Screw):
@@ -21,6 +24,10 @@ def install_words(holdfast: Holdfast, tongue: Tongue) -> str:
         return f"bar of {tongue.say(thickness, holdfast.bar)}, {tongue.say(length, holdfast.bond_length)} bonded{_lean(holdfast.rod)}"
     assert isinstance(holdfast, Tested)
     return f"as tested with {tongue.say(capacity, holdfast.pull)}"
+
+
+def _behind(deadman: Deadman, tongue: Tongue, pull: float) -> str:
+    return f", {tongue.say(length, trench(deadman.depth, pull)[0])} behind the anchor" if pull > 0.0 else ""
 
 
 def _sides(block: Block, tongue: Tongue) -> str:

@@ -35,16 +35,19 @@ from guys.scenario.model import Anchor
 ROW, HEAD_ROW = 4.2, 5.0
 PAD = 2.2
 LONGEST_NAME = 32.0
+LONGEST_WORDS, LONGEST_WAY = 95.0, 42.0
+"""Greatest width [mm] of a line that says what to install, and of one that says how it gives way."""
 SMALLEST = 0.9
 
 
 @dataclass(frozen=True)
 class Column:
-    """A head, how cells are ranged, and how readily the column is given up (0: never)."""
+    """A head, how cells are ranged, how readily the column is given up (0: never), and that only the last line of a cell is an aside."""
 
     head: str
     align: Align = "left"
     spare: int = 0
+    flowing: bool = False
 
 
 Cell = tuple[str, ...]
@@ -120,7 +123,8 @@ def _draw_row(page: Page, grid: Grid, row: Row, across: tuple[list[float], list[
         for k, line in enumerate(cell):
             bold = _bold(i, line)
             text = fitted(plain(line, bold), w + 0.1, size, bold)
-            ink = style.INK if k == 0 or i == 0 else style.GREY
+            aside = k > 0 and i > 0 and (not column.flowing or k == len(cell) - 1)
+            ink = style.GREY if aside else style.INK
             page.text(x + (w if column.align == "right" else 0.0), top - 3.4 - ROW * k, text, size, bold, ink, column.align)
 
 
@@ -209,7 +213,8 @@ def _over(demand: str, capacity: str) -> str:
 
 def holdfast_grid(solution: Solution, tongue: Tongue) -> Grid:
     """What to install at each anchor, and whether it holds: its low value over the pull of the case that governs."""
-    columns = (Column("anchor"), Column("install"), Column("gives way by", spare=1), Column("pull /\nholding", "right"), Column("factor"))
+    what = (Column("anchor"), Column("install", flowing=True), Column("gives way by", spare=1))
+    columns = (*what, Column("pull /\nholding", "right"), Column("factor"))
     return Grid(columns, tuple(_holdfast_row(solution, anchor, tongue) for anchor in solution.scenario.anchor))
 
 
@@ -218,8 +223,10 @@ def _holdfast_row(solution: Solution, anchor: Anchor, tongue: Tongue) -> Row:
     found = next((f for f in solution.findings if f.thing == f"anchor {anchor.name}" and f.quantity == "pull"), None)
     if anchor.holdfast is None or found is None:
         return [name, ("no holdfast given",), ("–",), ("–",), ("not judged",)]
-    words = (install_words(solution.scenario.holdfast[anchor.holdfast], tongue), anchor.holdfast)
-    governs = (found.governs or "–",)
+    worst = next(w for w in solution.worst_anchors if w.name == anchor.name)
+    said = install_words(solution.scenario.holdfast[anchor.holdfast], tongue, pull_angle(solution, worst))
+    words = tuple(line for text in (said, anchor.holdfast) for line in wrapped(text, LONGEST_WORDS, style.BODY))
+    governs = tuple(wrapped(found.governs or "–", LONGEST_WAY, style.BODY))
     if found.verdict == "not judged" or not standing(solution):
         return [name, words, governs, ("–",), ("not judged",)]
     stacked = tuple(_over(a, b) for a, b in zip(tongue.each(force, found.demand), tongue.each(capacity, found.capacity), strict=True))

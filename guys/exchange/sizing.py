@@ -53,11 +53,11 @@ def anchor_needs(anchor: AnchorNeeds) -> dict[str, Any]:
         "proof_load_N": number(anchor.proof),
         "case": anchor.case,
         "wind_from_deg": bearing(anchor.wind_from),
-        "needs": [_need(need) for need in anchor.needs],
+        "needs": [_need(anchor, need) for need in anchor.needs],
     }
 
 
-def _need(need: Need) -> dict[str, Any]:
+def _need(anchor: AnchorNeeds, need: Need) -> dict[str, Any]:
     out: dict[str, Any] = {
         "holdfast": need.holdfast,
         "kind": need.kind,
@@ -70,6 +70,8 @@ def _need(need: Need) -> dict[str, Any]:
         out["pattern"] = need.pattern
     if need.holds is None:
         return {**out, "reason": need.reason}
+    if lies := anchor.trench(need):
+        out["behind_anchor_m"], out["trench_m"] = lies
     return out | {
         "low_N": number(need.low),
         "best_N": number(need.best),

@@ -6,6 +6,10 @@
     trench   one foot of the face that the cable's trench takes away
     f        factor for the ground
 
+The cable goes on through its trench in the line of the pull, so that the middle of the face lies depth / tan a behind the anchor, away from
+what pulls, at the end of depth / sin a of cable.  From a tower of height H, whose cable runs to it straight, that is the source's
+C = (H + depth) / slope.
+
 Between the depths and slopes of the table p is interpolated linearly (slopes by their angle); outside its depths nothing is said.  The
 flattest slope of the table is 1 in 4; a flatter pull is taken at that slope, since every row of the table holds the more the flatter the
 pull.  The column for a vertical pull is from memory (FM 5-125): what is steeper than 1 in 1 rests on it and says so.
@@ -53,6 +57,11 @@ def power(depth: float, angle: Array) -> Array:
     depths, angles, values = table()
     column = np.array([np.interp(depth, depths, values[:, k], left=np.nan, right=np.nan) for k in range(len(angles))])
     return np.where(np.asarray(angle) < 0.0, np.nan, np.interp(angle, angles, column))
+
+
+def trench(depth: float, angle: float) -> tuple[float, float]:
+    """How far behind the anchor, level, the middle of the face lies, and the length of cable in the trench [m]."""
+    return depth / math.tan(angle), depth / math.sin(angle)
 
 
 def holding(

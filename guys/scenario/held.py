@@ -183,11 +183,17 @@ PUBLISHED_PICKETS = {"spacing": (3 * FOOT, 6 * FOOT), "driven": (3 * FOOT, 4 * F
 
 
 def warnings(scenario: Scenario) -> Iterator[str]:
-    """What is unusual about the holdfasts."""
+    """What is unusual about the holdfasts, those that hold nothing among them."""
     used = {anchor.holdfast for layout in (scenario, *scenario.layouts) for anchor in layout.anchor}
-    for name, holdfast in scenario.holdfast.items():
+    for name in scenario.holdfast:
         if name not in used and scenario.is_drawn:
             yield f'holdfast "{name}": no anchor is held by it'
+    yield from unusual(scenario)
+
+
+def unusual(scenario: Scenario) -> Iterator[str]:
+    """What is unusual about the holdfasts, whether they hold an anchor or not."""
+    for name, holdfast in scenario.holdfast.items():
         yield from _unusual(f'holdfast "{name}"', holdfast)
     yield from _crowded(scenario)
 

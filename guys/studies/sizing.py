@@ -5,9 +5,9 @@
 T, a are pull and angle of the anchor and n the factor required (allowables.anchor, its own in factored cases) in every case and wind
 solved for: the listed ones and the full circle, refined at the peaks of pull, horizontal, uplift and of every factor judged.  The low
 value of the holdfast counts, along each case's own pull.  One thing is sized at a time, the rest of the table kept: mass of a block,
-length of a deadman, pattern of pickets, depth and plates of a screw (all plates scaled alike), the torque to reach, bond length of a
-bar, the pull to show in a test.  Sizes are looked for from small to large, then narrowed by halving, so that a size is found too where
-more is not always better (a heavier block presses harder on the ground).
+length of a deadman, pattern of pickets, depth and plates of a screw (all plates scaled alike), the torque to reach where its shaft is
+given, bond length of a bar, the pull to show in a test.  Sizes are looked for from small to large, then narrowed by halving, so that a
+size is found too where more is not always better (a heavier block presses harder on the ground).
 
 An anchor of several cables is sized for their resultant; it is a single point of failure, and is told so.
 """
@@ -25,12 +25,13 @@ from guys import holdfasts, stability, units
 from guys.checks.anchors import angle, granted, idle, lacking
 from guys.constants import NONZERO
 from guys.errors import ScenarioError
+from guys.holdfasts import deadman
 from guys.holdfasts.picket import combinations
 from guys.loads import CaseLine
 from guys.recovery import join
 from guys.rotation import Array
 from guys.scenario import Scenario
-from guys.scenario.held import FOOT, SLENDEREST
+from guys.scenario.held import FOOT, SLENDEREST, unusual
 from guys.scenario.holding import Block, Deadman, Holdfast, Picket, Rock, Screw, Tested
 from guys.scenario.model import AnchorPoint
 from guys.scenario.reader import fault_at
@@ -112,6 +113,10 @@ class AnchorNeeds:
     case: str
     wind_from: float
     needs: tuple[Need, ...]
+
+    def trench(self, need: Need) -> tuple[float, float] | None:
+        """Of a deadman how far behind the anchor it lies, and the cable in its trench [m], in line with `pull`; None of other kinds."""
+        return deadman.trench(need.holds.depth, self.angle) if isinstance(need.holds, Deadman) and self.angle > 0.0 else None
 
 
 @dataclass(frozen=True)
@@ -258,7 +263,12 @@ def _screw_sizes(holdfast: Screw, keyed: Callable[..., Size]) -> Iterator[Size]:
         return holdfast.model_copy(update={"helix": [x / widest * d for d in holdfast.helix]})
 
     yield keyed("depth", "length", widest, 30.0)
+    def by_torque(x: float) -> Holdfast:
+        return holdfast.model_copy(update={"soil": None, "torque": x})
+
     yield Size("widest plate", "length", 0.05, holdfast.depth, widest, wider)
+    if holdfast.shaft is not None:
+        yield Size("torque to reach", "moment", 1.0, 1e6, None, by_torque)
 
 
 def reserve(holdfast: Holdfast, pulls: Pulls) -> float:
@@ -330,5 +340,6 @@ def _warnings(scenario: Scenario, anchors: Sequence[AnchorNeeds], stands: bool) 
         if len(anchor.cables) > 1:
             named = f"{len(anchor.cables)} cables ({', '.join(anchor.cables)})"
             yield f"anchor {anchor.name} holds {named}, sized for their resultant: a single point of failure, all go with it"
+    yield from unusual(scenario)
     if "anchor" in scenario.allowables.defaulted:
         yield f"the factor of {scenario.allowables.anchor:g} asked for is the default of allowables.anchor, not yours"

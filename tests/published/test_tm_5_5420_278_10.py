@@ -74,6 +74,23 @@ def test_deadman_length() -> Iterator[Row]:
         yield Row(f"greatest length over thickness, {form}", "-", most, max(judged))
 
 
+@published("HB B3 place", "READ")
+def test_where_a_deadman_lies() -> Iterator[Row]:
+    """Distance of a deadman from a tower, C = (H + DD)/slope: radius of the anchor and what it lies behind it, on level ground.
+
+    Source: TM 5-5420-278-10, p. 0035 00-22, formula and its range, H + DD to 4 (H + DD) for slopes 1 in 1 to 1 in 4, read in a public
+    transcription; the example, a tower of 36 ft 2 1/4 in and a deadman 5 ft deep, is ours.
+    """
+    height, depth = (36 + 2.25 / 12) * FOOT, 5 * FOOT
+    for slope in SLOPES:
+        behind, along = deadman.trench(depth, math.atan(1 / slope))
+        yield Row(f"C, 1 in {slope}", "ft", f"{slope * (height + depth) / FOOT:.4f}", (slope * height + behind) / FOOT, mark="EXACT")
+        yield Row(f"trench, 1 in {slope}", "ft", f"{5 * math.hypot(1, slope):.4f}", along / FOOT, mark="EXACT")
+    for share, slope in (("1", 1), ("4", 4)):
+        behind, _ = deadman.trench(depth, math.atan(1 / slope))
+        yield Row(f"C/(H + DD), 1 in {slope}", "-", share, (slope * height + behind) / (height + depth))
+
+
 @published("HB A26", "READ")
 def test_tower_heights() -> Iterator[Row]:
     """Height of a tower: a base of 3 ft 8 1/4 in and so many sections of 10 ft 10 in.
