@@ -242,6 +242,19 @@ def limit(file: str, out: str | None, as_json: bool, units: str, layout: str | N
 
 
 @commands.command()
+@computing("reserve.json, reserve.csv, paths.csv and the figure")
+def reserve(file: str, out: str | None, as_json: bool, units: str) -> int:
+    """Find how many times its wind, and all its loads, every case takes before equilibrium is lost, and in which motion.
+
+    Exit status: 0 every case has a stable equilibrium, conditionally or not; 4 some case is unstable, neutral or without an equilibrium;
+    1 and 2 as ever. With 4 every file is still written.
+    """
+    from guys.doors.reserve import reserve_command
+
+    return reserve_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
 @computing("field.json, field.csv, lengths.csv, readings.csv and the pages")
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A4", show_default=True, help="Paper of the pages.")
 @click.option("--measured", "readings", metavar="FILE.csv", help="Tensions as read: tell what they are, what to change, and solve again.")

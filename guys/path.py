@@ -50,6 +50,8 @@ At = Callable[[Index, Array], Problem]
 Measure = Callable[[Problem, State], Array]
 """(row, measure) what is watched, NaN where there is nothing to watch."""
 Tick = Callable[[int, int], None]
+Taken = tuple[Index, Array, Array, State]
+"""States taken at once: their rows, parameters, what is watched, and they themselves."""
 
 
 @dataclass(frozen=True)
@@ -104,6 +106,7 @@ class _Walk:
     stuck: NDArray[np.bool_]
     open_: NDArray[np.bool_]
     branches_at: Array
+    beyond: dict[int, State] = field(default_factory=dict)
 
 
 def follow(at: At, start: State, x0: Array, stops: Stops, measure: Measure, tick: Tick | None = None) -> Paths:
@@ -113,29 +116,35 @@ def follow(at: At, start: State, x0: Array, stops: Stops, measure: Measure, tick
     first = np.full(len(x0), stops.first)
     walk = _Walk(start.take(rows), x0.copy(), np.full(len(x0), np.inf), first, no.copy(), no.copy(), ~no, np.full(len(x0), np.nan))
     taken = [(rows, x0.copy(), measure(at(rows, x0), start), start.take(rows))]
-    beyond: dict[int, State] = {}
     while len(open_ := np.flatnonzero(walk.open_)):
         x = _next(walk, open_, stops.most)
-        problem = at(open_, x)
-        before = walk.last.take(open_)
         close = x - walk.low[open_] <= 1.001 * CLOSE * x
-        found = stability.settle(problem, before, stability.PATH_ROUNDS if close.any() else SHORT_ROUNDS, close)
-        near = stability.turn_between(problem, found.state, before) < SAME_WAY
-        good = (found.code <= stability.NEUTRAL) & near
-        for k in np.flatnonzero(~good & ~near):
-            beyond[int(open_[k])] = found.state.take(np.array([k]))
-        _note(walk, open_, x, good, close, found, near, stops)
-        if good.any():
-            kept = np.flatnonzero(good)
-            walk.last.put(open_[kept], found.state.take(kept))
-            state = found.state.take(kept)
-            taken.append((open_[kept], x[kept], measure(problem.take(kept), state), state))
+        for group, is_close in ((~close, False), (close, True)):
+            if group.any():
+                taken += _step(at, walk, open_[group], x[group], is_close, stops, measure)
         if tick is not None:
             tick(int((~walk.open_).sum()), len(rows))
     row, x, value = (np.concatenate([part[k] for part in taken]) for k in range(3))
-    paths = Paths(row, x, value, State.join([part[3] for part in taken]), walk.low, walk.high, walk.branches_at, no.copy(), beyond)
+    paths = Paths(row, x, value, State.join([part[3] for part in taken]), walk.low, walk.high, walk.branches_at, no.copy(), walk.beyond)
     paths.failed[:] = _still_stiff(at, start, x0, walk)
     return paths
+
+
+def _step(at: At, walk: _Walk, rows: Index, x: Array, close: bool, stops: Stops, measure: Measure) -> list[Taken]:
+    """Try the next parameter of some paths and give what was taken; those close to their end in more rounds, and pushed if unstable."""
+    problem, before = at(rows, x), walk.last.take(rows)
+    all_close = np.full(len(rows), close)
+    found = stability.settle(problem, before, stability.PATH_ROUNDS if close else SHORT_ROUNDS, all_close)
+    near = stability.turn_between(problem, found.state, before) < SAME_WAY
+    good = (found.code <= stability.NEUTRAL) & near
+    walk.beyond |= {int(rows[k]): found.state.take(np.array([k])) for k in np.flatnonzero(~good & ~near)}
+    _note(walk, rows, x, good, all_close, found, near, stops)
+    kept = np.flatnonzero(good)
+    if len(kept) == 0:
+        return []
+    state = found.state.take(kept)
+    walk.last.put(rows[kept], state)
+    return [(rows[kept], x[kept], measure(problem.take(kept), state), state)]
 
 
 def _next(walk: _Walk, open_: Index, most: float) -> Array:

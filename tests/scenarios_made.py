@@ -260,6 +260,20 @@ def pylon(load: float = 0.0, length: float = 10.0, lean: float = 15.0, **tables:
     return document([leaning], anchors(7.0, 240.0, 300.0), stays, **{"still": True, "straight": True, **tables})
 
 
+def tipping() -> Document:
+    """A leaning hinged pylon with a flat panel, two weightless backstays of given length; it tips over them in a wind from the front."""
+    panel = fitting("panel", 15.0, mass=0.0, area=6.0, drag=1.3, shape="flat", face=90.0, load=vector(0.0, 0.0, -1200.0))
+    section = tube(15.0, 0.1683, 0.005, "ref")
+    leaning = spar("pylon", lean=30.0, toward=90.0, base="hinged", section=[section], fitting=[panel])
+    ring = [{"name": n, "east": -8.0, "north": north, "level": 0.0} for n, north in (("BN", 4.0), ("BS", -4.0))]
+    stays = [cable(f"backstay {n}", 15.0, n, spar="pylon", length=20.605226) for n in ("BN", "BS")]
+    return document(
+        [leaning], ring, stays, straight=True, rope={"rope": rope(diameter=0.01, mass=0.4, stiffness=4e6, strength=5e5)},
+        material={"ref": {"density": 7850.0, "modulus": 210e9, "shear_modulus": 81e9, "yield": 50e9}},
+        wind=wind(90.0, speed=160.0**0.5), allowables={"cable": 1.0, "sliding": 1.0, "lean": 85.0},
+    )  # fmt: skip
+
+
 # ---------------------------------------------------------------- the same on another site
 
 

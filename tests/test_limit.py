@@ -64,25 +64,9 @@ def again(document: made.Document, rows: list[Limit], speed: list[float]) -> tup
 # ---------------------------------------------------------------- against others
 
 
-def tipping() -> made.Document:
-    """A leaning hinged pylon with a flat panel, two weightless backstays of given length; it tips over them in a wind from the front."""
-    panel = made.fitting(
-        "panel", 15.0, mass=0.0, area=6.0, drag=1.3, shape="flat", face=90.0, load=made.vector(0.0, 0.0, -1200.0)
-    )
-    tube = made.tube(15.0, 0.1683, 0.005, "ref")
-    pylon = made.spar("pylon", lean=30.0, toward=90.0, base="hinged", section=[tube], fitting=[panel])
-    ring = [{"name": n, "east": -8.0, "north": north, "level": 0.0} for n, north in (("BN", 4.0), ("BS", -4.0))]
-    stays = [made.cable(f"backstay {n}", 15.0, n, spar="pylon", length=20.605226) for n in ("BN", "BS")]
-    return made.document(
-        [pylon], ring, stays, straight=True, rope={"rope": made.rope(diameter=0.01, mass=0.4, stiffness=4e6, strength=5e5)},
-        material={"ref": {"density": 7850.0, "modulus": 210e9, "shear_modulus": 81e9, "yield": 50e9}},
-        wind=made.wind(90.0, speed=160.0**0.5), allowables={"cable": 1.0, "sliding": 1.0, "lean": 85.0},
-    )  # fmt: skip
-
-
 def test_a_pylon_tips_where_an_independent_calculation_says() -> None:
     """16.463786 m/s: independent reference calculation, this project (an exact rod by shooting)."""
-    study = limits_of(tipping())
+    study = limits_of(made.tipping())
     (limit,) = (study.circle[k] for k in study.listed)
     assert limit.speed == pytest.approx(16.463786, rel=INDEPENDENT)
     assert (limit.governs, limit.lost) == (LOST, limit.speed)
@@ -95,7 +79,7 @@ def test_it_tips_where_moments_about_the_hinge_vanish() -> None:
     up = math.cos(math.radians(30.0))
     blown = 1.3 * 6.0 * 15.0 * up + 1.2 * 0.1683 * up**2 * 15.0 * 7.5
     speed = math.sqrt(2 * weight / blown / 1.25)
-    assert limits_of(tipping()).circle[limits_of(tipping()).listed[0]].speed == pytest.approx(speed, rel=INDEPENDENT)
+    assert limits_of(made.tipping()).circle[limits_of(made.tipping()).listed[0]].speed == pytest.approx(speed, rel=INDEPENDENT)
 
 
 # ---------------------------------------------------------------- against itself
@@ -145,7 +129,7 @@ def test_cables_drop_where_it_is_said() -> None:
 def test_a_wind_factor_of_four_halves_the_speed_and_gives_no_action_level() -> None:
     """Pressure goes with the square of the speed for this profile and drag; every speed is solved, so both answers must agree."""
     acting = {"actions": [0.8, 0.5], "lower_in": "20 min"}
-    plain, heavy = (limits_of({**tipping(), "limit": acting, "case": [{"name": "one", "wind": factor}]}) for factor in (1.0, 4.0))
+    plain, heavy = (limits_of({**made.tipping(), "limit": acting, "case": [{"name": "one", "wind": factor}]}) for factor in (1.0, 4.0))
     for name in ("speed", "lost"):
         one, four = ([getattr(study.circle[k], name) for k in study.listed] for study in (plain, heavy))
         assert [2 * speed for speed in four] == pytest.approx(one, rel=2 * CLOSE)
@@ -157,7 +141,7 @@ def test_a_wind_factor_of_four_halves_the_speed_and_gives_no_action_level() -> N
 @pytest.mark.parametrize("way", ["turned", "mirrored"])
 def test_limits_turn_and_mirror_with_the_site(way: str) -> None:
     """Listed bearings; those of the circle stay where they are.  What is lost may be told a step of `CLOSE` apart."""
-    original = tipping() if way == "turned" else mast(20.0, 70.0)
+    original = made.tipping() if way == "turned" else mast(20.0, 70.0)
     moved = made.turned(original, 40.0) if way == "turned" else made.mirrored(original)
     one, two = limits_of(original), limits_of(moved)
     others = {round(math.degrees(two.circle[k].wind_from)): two.circle[k] for k in two.listed}
@@ -183,7 +167,7 @@ def test_the_worst_is_no_better_than_any_bearing_and_is_narrowed_down() -> None:
 
 def test_past_already_in_still_air_is_no_wind_at_all() -> None:
     """No cable is 5000 times as strong as the pull of the pylon in still air."""
-    study = limits_of({**tipping(), "allowables": {"cable": 5000.0, "lean": 85.0}})
+    study = limits_of({**made.tipping(), "allowables": {"cable": 5000.0, "lean": 85.0}})
     assert {limit.speed for limit in study.circle} == {0.0}
     assert all("is past its allowable in still air" in limit.why for limit in study.circle)
     assert study.circle[study.listed[0]].lost == pytest.approx(16.463786, rel=INDEPENDENT)
@@ -224,7 +208,7 @@ def pole(speed: float) -> made.Document:
 
 @pytest.mark.parametrize(
     ("document", "status"),
-    [(pole(10.0), 0), (pole(70.0), 3), ({**tipping(), "wind": made.wind(90.0, speed=20.0)}, 4)],
+    [(pole(10.0), 0), (pole(70.0), 3), ({**made.tipping(), "wind": made.wind(90.0, speed=20.0)}, 4)],
     ids=["within", "past", "falls"],
 )
 def test_exit_status_tells_whether_the_scenarios_wind_is_past_the_limit(
@@ -270,7 +254,7 @@ def test_the_figure_names_what_governs_and_keeps_words_apart(units: str) -> None
 
 
 def test_the_result_says_the_same_as_the_study() -> None:
-    study = limits_of(tipping())
+    study = limits_of(made.tipping())
     told = exchange.as_dict(study)
     assert told["format"] == "guys-limit/1"
     assert told["limits"][0]["equilibrium_lost_m_s"] == study.circle[study.listed[0]].lost

@@ -270,6 +270,14 @@ def factor(value: float) -> str:
     return f"{floor(value * 100.0 + 1e-9) / 100.0:.2f}" if isfinite(value) else ABSENT
 
 
+def reserve(lost_at: float, stands_to: float, failed: bool) -> str:
+    """A factor at which equilibrium is lost, to three figures rounded down, or how far it was looked."""
+    if isfinite(lost_at):
+        return written(round_down(lost_at), 3)
+    reached = written(round_down(stands_to), 3)
+    return f"not known beyond {reached}" if failed else f"not lost up to {reached}"
+
+
 def _unsigned_zero(value: float, decimals: int) -> str:
     text = f"{value:.{decimals}f}"
     return text.lstrip("-") if float(text) == 0.0 else text.replace("-", "−")

@@ -31,6 +31,10 @@ LEVEL = 1e-6
 POINTS = 16
 """Gauss points in a part of a stretch: means of every profile are then right to 1e-8."""
 GRADING = 4
+_X, _W = np.polynomial.legendre.leggauss(POINTS)
+_T = 0.5 * (1 + _X)
+ALONG, WEIGHT = _T**GRADING, 0.5 * _W * GRADING * _T ** (GRADING - 1)
+"""Of a stretch: where its Gauss points lie, and what each counts."""
 PEAK = 7.0
 """Peak over mean pressure is 1 + PEAK I_v: twice the peak factor 3.5 of EN 1991-1-4 (4.8)."""
 
@@ -57,9 +61,6 @@ def mean_pressure(wind: Wind, low: Array, high: Array, share: Share | None = Non
     """Mean of q [Pa] over straight lines from height `low` to `high` (line,) [m], in either order; `share` gives the share of q that blows
     at heights (line, point), and jumps at heights `jumps`, each (line,)."""
     bottom, top = np.minimum(low, high), np.maximum(low, high)
-    x, w = np.polynomial.legendre.leggauss(POINTS)
-    t = 0.5 * (1 + x)
-    along, weight = t**GRADING, 0.5 * w * GRADING * t ** (GRADING - 1)
 
     def blows(z: Array) -> Array:
         return _shape(wind, z) if share is None else _shape(wind, z) * share(z)
@@ -70,7 +71,7 @@ def mean_pressure(wind: Wind, low: Array, high: Array, share: Share | None = Non
     for a, b in pairwise(edges):
         part = b - a
         if part.any():
-            total += part * (blows(a[..., None] + part[..., None] * along) @ weight)
+            total += part * (blows(a[..., None] + part[..., None] * ALONG) @ WEIGHT)
     rise = top - bottom
     level = rise < LEVEL
     mean = np.where(level, blows(0.5 * (bottom + top)[..., None])[..., 0], total / np.where(level, 1.0, rise))

@@ -267,7 +267,7 @@ def _reason(problem: Problem, judged: stability.Judged, forces: recovery.Forces,
 
 def falling_words(one: Problem, before: State, after: State | None, how: str = "falls") -> str:
     """Which spar falls toward which bearing, from one state to the next; None: along the lowest mode."""
-    spar, bearing = stability.falling_part(one, before, after or _along_lowest_mode(one, before))
+    spar, bearing = stability.falling_part(one, before, after or along_lowest_mode(one, before))
     return f"{one.structure.scenario.spar[spar].name} {how} toward {bearing_words(bearing)}"
 
 
@@ -297,9 +297,11 @@ def _share_words(problem: Problem, judged: stability.Judged, k: int) -> str:
     return f" at {max(math.floor(100 * share) / 100, 0.01):.2f} of {whole}"
 
 
-def _along_lowest_mode(one: Problem, state: State) -> State:
-    """A state a little along the lowest mode, in the sense of the moves made so far."""
-    shape = stability.modes(one, state, 1).shape
+def along_lowest_mode(one: Problem, state: State) -> State:
+    """A state a little along the lowest mode that is no free motion, in the sense of the moves made so far."""
+    found = stability.modes(one, state)
+    costs = np.flatnonzero(np.abs(found.value) > stability.ZERO)
+    shape = found.shape[costs[:1] if len(costs) else [0]]
     if np.sum(shape[0, :, :2] * state.u[0, :, :2]) < 0:
         shape = -shape
     step = band.pick(one.pattern, 0.01 * one.structure.height * shape)

@@ -31,8 +31,8 @@ from guys.rotation import Array
 from guys.scenario import Scenario
 from guys.setting import Setting, find
 from guys.structure import build
-from guys.studies import peaks
-from guys.studies.batch import CHUNK, Batch, Progress, falling_words, recover, slack_words, solve_lines
+from guys.studies import ending, peaks
+from guys.studies.batch import CHUNK, Batch, Progress, recover, solve_lines
 from guys.studies.directions import COARSE, between, near
 from guys.version import __version__
 
@@ -182,15 +182,9 @@ class _Chunk:
     def _falls(self, k: int, paths: Paths) -> str:
         """How equilibrium is lost at the end of a path."""
         if paths.failed[k]:
-            return "the solver failed here; this is a fault of the program, not a statement about the structure"
-        one = self.at(np.array([k]), paths.low[[k]])
-        last = paths.state.take(paths.of(k)[-1:])
-        slack = recovery.forces(one, last, one.evaluate(last)).slack[0]
-        start = paths.state.take(paths.of(k)[:1])
-        soft = stability.least_cost(one, last) < stability.SOFT * stability.least_cost(self.at(np.array([k]), np.zeros(1)), start)
-        patch = self.states[k].patch
-        where = "" if patch is None else f"{patch.words}: "
-        return f"{where}{falling_words(one, last, None if soft else paths.beyond.get(k))}{slack_words(one, slack)}"
+            return ending.FAULT
+        start = stability.least_cost(self.at(np.array([k]), np.zeros(1)), paths.state.take(paths.of(k)[:1]))
+        return ending.falls(ending.ending(self.at, paths, k, start))
 
 
 def _watched(problem: Problem, state: State) -> Array:
