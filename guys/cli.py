@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("search", "raise", "record")
+UNAVAILABLE = ("search", "record")
 """Commands this version knows by name and does not do."""
 
 RANKED_BY = (
@@ -183,6 +183,20 @@ def lost(file: str, out: str | None, as_json: bool, units: str, layout: str | No
     from guys.doors.lost import lost_command
 
     return lost_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
+
+
+@commands.command("raise")
+@computing("raise.json, raise.csv and the figure", out_required=False)
+@click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
+def raise_(file: str, out: str | None, as_json: bool, units: str, paper: str) -> int:
+    """Raise a spar: every line, the gin pole and the hinge at every angle.
+
+    The file's [raise] says how. Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past
+    its allowable; 4 nothing holds the spar at some angle or in some wind. With 3 and 4 every file is still written.
+    """
+    from guys.doors.raising import raise_command
+
+    return raise_command(file, out, as_json, units, paper)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -25,11 +25,13 @@ from sybil import Example, Sybil
 from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
-from guys import cli, parse_scenario, solve
+from guys import cli, parse_scenario, read_scenario, solve
 from guys.exchange import comparison, losses, matters, result, stages, tables
 from guys.exchange import field as crew
+from guys.exchange import raising as exchange_raising
 from guys.scenario import Scenario, draft, schema, starters
 from guys.scenario.stage import Stage
+from guys.studies import hoisting, raising
 from guys.studies.cells import WORDS
 from guys.studies.compare import compare
 from guys.studies.field import field
@@ -214,6 +216,10 @@ TABLES = {
     "FieldWork": "[field]`",
     "Rigged": "[field]`",
     "Stage": "[[stage]]`",
+    "Raising": "[raise]`",
+    "GinPole": "[raise]`",
+    "Holding": "[raise]`",
+    "Winch": "[raise]`",
 }
 
 
@@ -281,6 +287,16 @@ def test_the_guide_names_every_key_and_column_of_a_comparison() -> None:
     known, parts = code_words("docs/user-guide.md"), ("_of", "_case", "_wind_from_deg")
     columns = [column for column in comparison.as_table(found).splitlines()[0].split(",") if not column.endswith(parts)]
     assert not sorted({*keys_of(comparison.as_dict(found)), *columns} - known)
+
+
+
+
+def test_the_guide_names_every_key_and_column_of_a_raising() -> None:
+    raised = raising.solve(read_scenario(REPOSITORY / "scenarios/tilt-up-mast.toml"))
+    known = code_words("docs/user-guide.md")
+    told = keys_of(exchange_raising.as_dict(raised, hoisting.findings(raised)))
+    columns = {name for name in exchange_raising.table(raised).splitlines()[0].split(",") if not name.startswith("side_guy_")}
+    assert not sorted((told | columns) - known)
 
 
 def test_the_guide_names_every_command_and_option() -> None:

@@ -21,7 +21,7 @@ LONGEST_MODULE = 500
 FLOORS: dict[str, int] = {
     **dict.fromkeys(("errors", "constants", "units", "version"), 0),
     **dict.fromkeys(("tables", "catalogue", "lattice", "scenario", "site"), 1),
-    **dict.fromkeys(("rotation", "columns", "beam", "cable", "joint", "band", "sounding"), 2),
+    **dict.fromkeys(("rotation", "columns", "beam", "cable", "joint", "tilting", "band", "sounding"), 2),
     **dict.fromkeys(("icing", "mesh", "sections", "structure"), 3),
     **dict.fromkeys(("loads",), 4),
     **dict.fromkeys(("results", "solver", "equilibrium", "recovery", "setting", "stability", "path", "limits", "reserves"), 5),

@@ -394,7 +394,6 @@ ONE_FAULT: list[tuple[str, dict[str, Any], tuple[Change, ...], str, str]] = [
     ("part", MAST, ((("part",), {"a": {"strength": "1 kN", "efficiency": 0.8}}),), "part.a", "give one of"),
     ("action level above the limit", MAST, ((("limit",), {"actions": [0.6, 1.2]}),), "limit.actions[1]", "less than 1"),
     ("time to lower without a unit", MAST, ((("limit",), {"lower_in": 20}),), "limit.lower_in", "has no unit"),
-    ("raise", MAST, ((("raise",), {"spar": "mast"}),), "raise", "not available in this version"),
     ("plate", MAST, (((*SPAR, "plate"), {"length": "1 m"}),), "spar[0].plate.width", "missing"),
     ("ends", MAST, (((*LEVEL, "ends"), ["clips"]),), "guy_level[0].ends[0]", "no part is named"),
     ("ends of a cable", BOOM, ((("cable", 0, "ends"), ["clips"]),), "cable[0].ends[0]", "no part is named"),

@@ -45,7 +45,7 @@ CAUTIONS = (
 NOT_CHECKED = (
     "lugs, terminations and turnbuckles that are not among a cable's ends",
     "the ground under bases without a plate, bolts of bases; joints and welds of spars, horizontals of lattices; spars bent as made",
-    "raising, fatigue, vibration, loss of a cable unless listed as a case (guys lost takes each away)",
+    "raising (`guys raise`), fatigue, vibration, loss of a cable unless listed as a case (guys lost takes each away)",
 )
 
 
@@ -72,6 +72,7 @@ def warnings(
     """Everything alarming about a run, the gravest first; `gaps`: swept directions without a stable equilibrium, with the reason."""
     out = [
         *_no_service(structure.scenario),
+        *_only_raised(structure),
         *_not_standing(lines, verdicts),
         *_between_directions(lines, gaps),
         *_checks(check),
@@ -98,6 +99,15 @@ def _no_service(scenario: Scenario) -> list[str]:
         return []
     lacks = "no service case holds wind" if windy else "no case is a service case"
     return [f'{lacks}: LOADS TOLD ARE FACTORED, not what a crew meets; add "service" to combinations.sets, or a [[case]] of kind service']
+
+
+def _only_raised(structure: Structure) -> list[str]:
+    """A spar that nothing but the lines of its raising would hold."""
+    scenario = structure.scenario
+    spar = next((s for s in scenario.spar if scenario.raising is not None and s.name == scenario.raising.spar), None)
+    if spar is None or any(spar.name in (c.from_.spar, getattr(c.to, "spar", None)) for c in scenario.cable):
+        return []
+    return [f"no cable holds {spar.name}; the lines of [raise] do not count here: `guys raise` solves the raising"]
 
 
 def place(line_name: str, wind_from: float) -> str:

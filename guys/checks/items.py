@@ -71,6 +71,11 @@ class Demands:
         """The cases `rows`."""
         return Demands(self.items, self.demand[rows], self.capacity[rows], self.required[rows], self.mode[rows])
 
+    def pick(self, columns: Sequence[int]) -> Demands:
+        """The items `columns`."""
+        kept = list(columns)
+        return Demands(tuple(self.items[k] for k in kept), *(getattr(self, name)[:, kept] for name in COLUMNS))
+
     def blank(self, rows: NDArray[np.int64]) -> Demands:
         """Without demand in the cases `rows`."""
         demand = self.demand.copy()

@@ -38,7 +38,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
             "spars": [_worst_spar(solution, k) for k in range(len(solution.spars))],
         },
         "service_worst": _service_worst(solution),
-        "findings": [_finding(f) for f in solution.findings],
+        "findings": [finding(f) for f in solution.findings],
         "sweep": None if solution.sweep is None else _sweep(solution, solution.sweep),
         "self_check": {
             "balance": number(solution.check.balance),
@@ -234,7 +234,7 @@ def _worst_spar(solution: Solution, k: int) -> dict[str, Any]:
         "case": "" if worst is None else solution.case[worst],
         "wind_from_deg": None if worst is None else bearing(float(solution.wind_from[worst])),
         "lean": next(iter(_findings_of(solution, f"spar {spar.name}", "lean")), None),
-        "sections": [_finding(f) for f in solution.findings if f.thing in _section_things(solution, k) and f.quantity != "lean"],
+        "sections": [finding(f) for f in solution.findings if f.thing in _section_things(solution, k) and f.quantity != "lean"],
     }
 
 
@@ -244,10 +244,11 @@ def _section_things(solution: Solution, k: int) -> set[str]:
 
 
 def _findings_of(solution: Solution, thing: str, quantity: str) -> list[dict[str, Any]]:
-    return [_finding(f) for f in solution.findings if (f.thing, f.quantity) == (thing, quantity)]
+    return [finding(f) for f in solution.findings if (f.thing, f.quantity) == (thing, quantity)]
 
 
-def _finding(f: Finding) -> dict[str, Any]:
+def finding(f: Finding) -> dict[str, Any]:
+    """One thing judged."""
     return {
         "thing": f.thing,
         "quantity": f.quantity,

@@ -22,6 +22,7 @@ from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar, SparPoint
 from guys.scenario.parts import Part
+from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import SiteEntry
@@ -168,16 +169,19 @@ class ScenarioFile(Model):
     """Parts in the load path of cables, by name."""
     holdfast: dict[q.Name, Holdfast] = {}
     """What holds anchors, by name."""
+    raising: Annotated[Raising | None, Field(alias="raise")] = None
+    """How a spar is tilted up about its foot; for `guys raise`."""
     setting: Setting = Setting()
     """The state in which the cables are tensioned."""
     wind: WindEntry | None = None
-    """The reference wind; may be left out when no case has wind."""
+    """The reference wind; may be left out when no case has wind, and in a file that is only for raising."""
     gust: Gust = Gust()
     """How the gusts of the wind come; left out: the peak on everything at once."""
     ice: Ice | None = None
     """Ice; may be left out when no case has ice."""
     case: list[CaseEntry] = []
-    """Load cases; left out: one named "design" with dead 1, wind 1, ice 0, unless there are combinations."""
+    """Load cases; left out: one named "design" with dead 1, wind 1, ice 0, unless there are combinations;
+    without wind where the file has [raise] and no [wind]."""
     combinations: CombinationsEntry | None = None
     """Named sets of load cases."""
     allowables: AllowablesEntry = AllowablesEntry()

@@ -29,18 +29,21 @@ from guys.scenario.field import FieldWork
 from guys.scenario.gust import Gust
 from guys.scenario.holding import Holdfast
 from guys.scenario.ice import Ice
-from guys.scenario.keys import Finding, Key, nearest
+from guys.scenario.keys import Finding, Key, nearest, without
 from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.model import Analysis, Material, Setting, Spar
 from guys.scenario.parts import Part
 from guys.scenario.quantity import FROM_FILE, shown
+from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.stage import Stage
-from guys.scenario.unavailable import without
 from guys.scenario.wind_entry import WindEntry
+
+FIELDS = {field.alias or name: name for name, field in ScenarioFile.model_fields.items()}
+"""The field of every key at the top of a file."""
 
 
 @dataclass(frozen=True)
@@ -61,6 +64,7 @@ class Draft:
     material: dict[str, Material | None]
     part: dict[str, Part | None]
     holdfast: dict[str, Holdfast | None]
+    raising: Raising | None
     setting: Setting | None
     wind: WindEntry | None
     gust: Gust | None
@@ -83,10 +87,16 @@ class Draft:
                 found.setdefault(spar.name, (index, spar))
         return found
 
-    def cases(self) -> list[CaseEntry]:
-        """Readable cases and those of combinations, or the default one where the file has none."""
-        written = [case for case in self.case if case is not None] + self.combined()
-        return written if written or "case" in self.document or "combinations" in self.document else [CaseEntry(name=DEFAULT_CASE)]
+    def cases(self, cables: Sequence[str] = ("a cable",)) -> list[CaseEntry]:
+        """Readable cases and those of combinations, or the default one where the file has none.
+
+        The default case is without wind in a file for raising that has no wind.  `cables`: names for combinations that lose one each.
+        """
+        written = [case for case in self.case if case is not None] + self.combined(cables)
+        if written or self.document.get("case") or "combinations" in self.document:
+            return written
+        still = "raise" in self.document and "wind" not in self.document
+        return [CaseEntry(name=DEFAULT_CASE, wind=0.0 if still else 1.0)]
 
     def combined(self, cables: Sequence[str] = ("a cable",)) -> list[CaseEntry]:
         """The cases of the combinations."""
@@ -96,8 +106,8 @@ class Draft:
 def draft(document: dict[str, Any]) -> tuple[Draft, list[Finding]]:
     """The tables of a document and what is wrong inside them."""
     findings: list[Finding] = []
-    parts = {name: _field(document, name, findings) for name in ScenarioFile.model_fields}
-    known = tuple(ScenarioFile.model_fields)
+    parts = {field: _field(document, key, findings) for key, field in FIELDS.items()}
+    known = tuple(FIELDS)
     findings += [Finding((name,), "unknown key" + nearest(name, known)) for name in document if name not in known]
     return Draft(document=document, **parts), findings
 
@@ -106,7 +116,7 @@ _SHAPES = {"title": 'title = "..."', "spar": "at least one [[spar]]"}
 
 
 def _field(document: dict[str, Any], name: str, findings: list[Finding]) -> Any:
-    field = ScenarioFile.model_fields[name]
+    field = ScenarioFile.model_fields[FIELDS[name]]
     kind = get_origin(field.annotation)
     if name not in document:
         if field.is_required():
@@ -167,7 +177,7 @@ def _removable(errors: list[ErrorDetails]) -> Iterator[Key]:
 @cache
 def _adapter(name: str) -> tuple[Any, TypeAdapter[Any]]:
     """The type of a top-level key, or of one of its items, and its validator."""
-    found = ScenarioFile.model_fields[name]
+    found = ScenarioFile.model_fields[FIELDS[name]]
     if get_origin(found.annotation) in (list, dict):
         annotation = get_args(found.annotation)[-1]
     else:

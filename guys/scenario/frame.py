@@ -218,8 +218,8 @@ def _size(fitting: Fitting, key: Key) -> Iterator[Finding]:
 def _standing(draft: Draft) -> Iterator[Finding]:
     spars = [spar for spar in draft.spar if spar is not None]
     ground = [spar for spar in spars if not isinstance(spar.foot, HeelFoot)]
-    cables = draft.document.get("cable") or draft.document.get("guy_level")
-    if not cables and spars and len(spars) == len(draft.spar) and all(spar.base not in ("fixed", "sprung") for spar in ground):
+    held = any(draft.document.get(kind) for kind in ("cable", "guy_level", "raise"))
+    if not held and spars and len(spars) == len(draft.spar) and all(spar.base not in ("fixed", "sprung") for spar in ground):
         causes = tuple(("spar", index, "base") for index in range(len(spars)))
         yield Finding(("spar", 0, "base"), "no cable, and no base that is fixed or sprung: nothing holds the structure up", causes)
     if spars and len(spars) == len(draft.spar) and not ground and not loops(draft):

@@ -69,6 +69,18 @@ def nearest(name: str, known: Iterable[str]) -> str:
     return ""
 
 
+def without(node: Any, key: Key) -> Any:
+    """A copy of nested tables and lists in which the last part of the key is gone."""
+    head, rest = key[0], key[1:]
+    if isinstance(node, list) and isinstance(head, int):
+        return [without(item, rest) if index == head else item for index, item in enumerate(node)]
+    if isinstance(node, dict) and head in node:
+        if not rest:
+            return {name: value for name, value in node.items() if name != head}
+        return {name: without(value, rest) if name == head else value for name, value in node.items()}
+    return node
+
+
 def items(document: Mapping[str, Any], kind: str) -> Iterator[tuple[int, Mapping[str, Any]]]:
     """The tables of an array of tables as read, with their index; whatever else stands there is passed over."""
     found = document.get(kind)

@@ -25,9 +25,11 @@ from guys.scenario.limit import Limit
 from guys.scenario.lost import Lost
 from guys.scenario.parts import Part
 from guys.scenario.plate import Plate
+from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.stage import Stage
+from guys.scenario.table import GroundFoot as GroundFoot
 from guys.scenario.table import Model
 from guys.site import Site
 
@@ -56,17 +58,6 @@ class ForceVector(Model):
     """Toward the north."""
     up: q.Force = 0.0
     """Upward; a weight is negative."""
-
-
-class GroundFoot(Model):
-    """A foot on the ground."""
-
-    east: q.Length
-    """Distance east of the origin."""
-    north: q.Length
-    """Distance north of the origin."""
-    level: q.Length = 0.0
-    """Height above the origin's level."""
 
 
 class HeelFoot(Model):
@@ -456,6 +447,8 @@ class Scenario(Model):
     material: dict[str, Material] = {}
     part: dict[str, Part] = {}
     holdfast: dict[str, Holdfast] = {}
+    raising: Raising | None = None
+    """How a spar is raised, the table `[raise]`."""
     setting: Setting = Setting()
     wind: Wind | None = None
     gust: Gust = Gust()

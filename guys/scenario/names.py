@@ -139,11 +139,20 @@ def _ends(document: Mapping[str, Any], spars: Known, anchors: Known) -> Iterator
 def _ropes(document: Mapping[str, Any]) -> Iterator[Finding]:
     ropes = document.get("rope")
     own = ropes if isinstance(ropes, dict) else None if ropes else {}
+    for key, name in _rope_names(document):
+        if isinstance(name, str) and own is not None and name not in own and stock.find(name) is None:
+            yield Finding(key, f'no rope is named "{clipped(name)}"{_near_rope(name, own)}')
+
+
+def _rope_names(document: Mapping[str, Any]) -> Iterator[tuple[Key, object]]:
     for kind in ("guy_level", "cable"):
-        for index, item in items(document, kind):
-            name = item.get("rope")
-            if isinstance(name, str) and own is not None and name not in own and stock.find(name) is None:
-                yield Finding((kind, index, "rope"), f'no rope is named "{clipped(name)}"{_near_rope(name, own)}')
+        yield from (((kind, index, "rope"), item.get("rope")) for index, item in items(document, kind))
+    table = document.get("raise")
+    if isinstance(table, dict):
+        yield ("raise", "rope"), table.get("rope")
+        holding = table.get("holding")
+        if isinstance(holding, dict):
+            yield ("raise", "holding", "rope"), holding.get("rope")
 
 
 def _near_rope(name: str, own: Collection[str]) -> str:

@@ -206,7 +206,7 @@ def _parts(scenario: Scenario) -> Iterator[str]:
 
 
 def _ropes(scenario: Scenario) -> Iterator[str]:
-    used = {cable.rope for cable in scenario.cable}
+    used = {cable.rope for cable in scenario.cable} | set(scenario.raising.ropes if scenario.raising is not None else ())
     for name, rope in scenario.rope.items():
         what = f'rope "{name}"'
         area = math.pi / 4 * rope.diameter**2

@@ -10,7 +10,16 @@ import math
 from dataclasses import dataclass
 from typing import Annotated, Any, Final, Literal
 
-from pydantic import Field, GetCoreSchemaHandler, GetJsonSchemaHandler, StringConstraints, ValidationInfo
+from pydantic import (
+    BeforeValidator,
+    Discriminator,
+    Field,
+    GetCoreSchemaHandler,
+    GetJsonSchemaHandler,
+    StringConstraints,
+    ValidationInfo,
+    WithJsonSchema,
+)
 from pydantic.json_schema import JsonSchemaValue
 from pydantic_core import CoreSchema, PydanticCustomError, core_schema
 
@@ -90,6 +99,22 @@ def shown(value: object) -> str:
         return "a table" if isinstance(value, dict) else "a list"
     return clipped(str(value))
 
+
+def every(what: str, step: str) -> tuple[BeforeValidator, WithJsonSchema]:
+    """What lets a step of an angle be written ``every 30 deg``; `what` it is a step of and an example `step`, for messages."""
+
+    def read(value: Any) -> Any:
+        head, _, given = value.strip().partition(" ") if isinstance(value, str) else ("", "", "")
+        if head != "every" or not given.strip():
+            raise fault(f'{shown(value)} is not {what}; write "every {step}" or a list such as ["0 deg", "45 deg"]')
+        return given.strip()
+
+    pattern = rf"^ *every +{units.json_pattern('angle')[1:]}"
+    return BeforeValidator(read), WithJsonSchema({"type": "string", "pattern": pattern, "examples": [f"every {step}"]})
+
+
+LIST_OR_STEP = Discriminator(lambda value: "<list>" if isinstance(value, (list, tuple)) else "<step>")
+"""Tells a list of angles from a step, in a union of types tagged so."""
 
 Length = Annotated[float, Quantity("length")]
 PositiveLength = Annotated[float, Quantity("length", "positive")]

@@ -17,6 +17,7 @@ from guys.scenario import (
     field,
     frame,
     held,
+    hoisting,
     ice,
     layouts,
     names,
@@ -27,7 +28,6 @@ from guys.scenario import (
     resolve,
     rigging,
     staged,
-    unavailable,
     weather,
 )  # fmt: skip
 from guys.scenario.draft import Draft, draft
@@ -111,10 +111,9 @@ def _whole(path: str | None, message: str, line: int | None = None, column: int 
 def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     document = _document(text, path)
     _check_format(document, text, path)
-    document, refused = unavailable.sweep(document)
     tables, unfit = draft(document)
     tables, site, misplaced = place.placed(tables, path)
-    broken = refused + unfit + misplaced
+    broken = unfit + misplaced
     findings = broken + independent(_rules(tables, site), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))
@@ -184,6 +183,7 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from patches.findings(tables)
     yield from layouts.findings(tables, site)
     yield from staged.findings(tables)
+    yield from hoisting.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -228,7 +228,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
     wind = None if tables.wind is None else resolve.wind(tables.wind)
     cables = (*guys, *(resolve.cable(index, entry) for index, entry in enumerate(_present(tables.cable))))
     ropes = {name: resolve.rope(entry) for name, entry in tables.rope.items() if entry is not None}
-    combined = tables.combined([cable.name for cable in cables])
+    used = [*(cable.rope for cable in cables), *(tables.raising.ropes if tables.raising is not None else ())]
     setting, allowables, analysis = tables.setting, tables.allowables, tables.analysis
     assert setting is not None
     assert allowables is not None
@@ -241,15 +241,16 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         spar=tuple(spars.values()),
         anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
         cable=cables,
-        rope={**ropes, **resolve.stock_ropes(cables, ropes)},
+        rope={**ropes, **resolve.stock_ropes(used, ropes)},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
         part=parts.used([end for each in cables for end in each.ends], _given(tables.part)),
         holdfast={name: entry for name, entry in tables.holdfast.items() if entry is not None},
+        raising=tables.raising,
         setting=setting,
         wind=wind,
         gust=_there(tables.gust),
         ice=None if tables.ice is None else ice.resolved(tables.ice),
-        case=resolve.cases(_present(tables.case) + combined, setting),
+        case=resolve.cases(tables.cases([cable.name for cable in cables]), setting),
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         lost=_there(tables.lost),

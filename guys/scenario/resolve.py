@@ -106,9 +106,9 @@ def rope(entry: RopeEntry) -> Rope:
     return Rope(stiffness=stiffness, **given)
 
 
-def stock_ropes(cables: Iterable[Cable], own: Collection[str]) -> dict[str, Rope]:
-    """The catalogue ropes that cables are made of, where the file has none of that name."""
-    wanted = dict.fromkeys(cable.rope for cable in cables if cable.rope not in own)
+def stock_ropes(used: Iterable[str], own: Collection[str]) -> dict[str, Rope]:
+    """The catalogue ropes among those used, where the file has none of that name."""
+    wanted = dict.fromkeys(name for name in used if name not in own)
     return {name: _stocked(found) for name in wanted if (found := stock.find(name)) is not None}
 
 
@@ -137,7 +137,7 @@ def wind(entry: WindEntry) -> Wind:
 
 
 def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
-    """The load cases; the default one where the file gives none."""
+    """The load cases."""
     return tuple(
         Case(
             name=entry.name,
@@ -149,7 +149,7 @@ def cases(entries: list[CaseEntry], setting: Setting) -> tuple[Case, ...]:
             bare=tuple(entry.bare),
             kind=entry.kind,
         )
-        for entry in entries or [CaseEntry(name=DEFAULT_CASE)]
+        for entry in entries
     )
 
 

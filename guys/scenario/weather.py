@@ -16,7 +16,7 @@ NO_SHAPE = "it cannot be chosen, since the shape is not known"
 
 def findings(draft: Draft) -> Iterator[Finding]:
     """Every lack of wind, ice and temperature."""
-    windy = _first(draft, "wind")
+    windy = _first(draft, "wind") or _raised(draft)
     icy = _first(draft, "ice")
     if windy and "wind" not in draft.document:
         yield Finding(("wind",), f'missing; case "{clipped(windy.name)}" has wind = {windy.wind:g}; give [wind], or wind = 0 in every case')
@@ -47,6 +47,11 @@ def warmed(draft: Draft) -> CaseEntry | None:
 
 def _first(draft: Draft, factor: str) -> CaseEntry | None:
     return next((case for case in draft.cases() if getattr(case, factor) > 0.0), None)
+
+
+def _raised(draft: Draft) -> CaseEntry | None:
+    """The raising, which is in the wind wherever the file has one."""
+    return CaseEntry(name="raise") if "wind" in draft.document and draft.raising is not None else None
 
 
 def _section(section: Section, key: Key, windy: CaseEntry | None, icy: CaseEntry | None) -> Iterator[Finding]:

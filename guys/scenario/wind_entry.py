@@ -8,24 +8,13 @@ from __future__ import annotations
 import math
 from typing import Annotated, Any, Literal
 
-from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag, WithJsonSchema
+from pydantic import AfterValidator, BeforeValidator, Discriminator, Field, Tag
 
-from guys import units
 from guys.scenario import quantity as q
 from guys.scenario.shapes import Rules
 from guys.scenario.table import Model
 
 MOST_DIRECTIONS = 3600
-
-
-def _sweep(value: Any) -> Any:
-    """``every 30 deg`` → the step's text; a list passes as it is."""
-    if isinstance(value, str):
-        head, _, step = value.strip().partition(" ")
-        if head != "every" or not step.strip():
-            raise q.fault(f'"{value}" is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
-        return step.strip()
-    raise q.fault(f'{q.shown(value)} is not a set of directions; write "every 30 deg" or a list such as ["0 deg", "45 deg"]')
 
 
 def _whole_step(step: float) -> float:
@@ -37,15 +26,10 @@ def _whole_step(step: float) -> float:
     return step
 
 
-Step = Annotated[
-    q.PositiveAngle,
-    BeforeValidator(_sweep),
-    AfterValidator(_whole_step),
-    WithJsonSchema({"type": "string", "pattern": rf"^ *every +{units.json_pattern('angle')[1:]}", "examples": ["every 30 deg"]}),
-]
+Step = Annotated[q.PositiveAngle, *q.every("a set of directions", "30 deg"), AfterValidator(_whole_step)]
 Directions = Annotated[
     Annotated[Annotated[list[q.Angle], Field(min_length=1, max_length=MOST_DIRECTIONS)], Tag("<list>")] | Annotated[Step, Tag("<step>")],
-    Discriminator(lambda value: "<list>" if isinstance(value, (list, tuple)) else "<step>"),
+    q.LIST_OR_STEP,
 ]
 
 
