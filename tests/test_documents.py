@@ -26,7 +26,7 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
-from guys.exchange import comparison, losses, matters, result, tables
+from guys.exchange import comparison, losses, matters, recording, result, tables
 from guys.exchange import field as crew
 from guys.scenario import draft, schema, starters
 from guys.studies.cells import WORDS
@@ -34,6 +34,7 @@ from guys.studies.compare import compare
 from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
+from guys.studies.recording import record
 
 REPOSITORY = Path(__file__).parent.parent
 PAGES = [REPOSITORY / "README.md", REPOSITORY / "DEVELOPERS.md", *sorted((REPOSITORY / "docs").glob("*.md"))]
@@ -271,6 +272,13 @@ def test_the_guide_names_every_key_and_column_of_a_comparison() -> None:
     known, parts = code_words("docs/user-guide.md"), ("_of", "_case", "_wind_from_deg")
     columns = [column for column in comparison.as_table(found).splitlines()[0].split(",") if not column.endswith(parts)]
     assert not sorted({*keys_of(comparison.as_dict(found)), *columns} - known)
+
+
+def test_the_guide_names_every_key_of_the_record() -> None:
+    found = record(parse_scenario(starters.text("boom")))
+    known = code_words("docs/user-guide.md")
+    told = {name: part for name, part in recording.as_dict(found).items() if name != "result"}
+    assert not sorted(keys_of(told) - known)
 
 
 def test_the_guide_names_every_command_and_option() -> None:
