@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("search", "record")
+UNAVAILABLE = ("search",)
 """Commands this version knows by name and does not do."""
 
 RANKED_BY = (
@@ -297,6 +297,20 @@ def stages(file: str, out: str | None, as_json: bool, units: str) -> int:
     from guys.doors.stages import stages_command
 
     return stages_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("record.html, record.json and result.json", out_required=True)
+@in_one_layout
+@click.option("--pdf", "with_pdf", is_flag=True, help='Also record.pdf; needs the extra "pdf".')
+def record(file: str, out: str, as_json: bool, units: str, layout: str | None, with_pdf: bool) -> int:
+    """Write the calculation record: one page that a checking engineer can follow, repeat and sign.
+
+    Exit status as of solve; with 3 and 4 the record is written and says what it knows and why it stops.
+    """
+    from guys.doors.record import record_command
+
+    return record_command(file, out, as_json, units, with_pdf, layout)  # type: ignore[arg-type]
 
 
 @commands.command()

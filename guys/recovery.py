@@ -274,7 +274,7 @@ def whole_balance(problem: Problem, state: State, found: Evaluation, given: Forc
     at = s.position + state.u
     force, moment = problem.loads.force.sum(axis=1), np.cross(at, problem.loads.force).sum(axis=1)
     moment += _turning_of_levers(problem, state)
-    carried, where = _cable_loads(problem, state, found)
+    carried, where = cable_loads(problem, state, found)
     force += carried.sum(axis=1)
     moment += np.cross(where, carried).sum(axis=1)
     force -= given.pull.sum(axis=1)
@@ -300,7 +300,7 @@ def _turning_of_levers(problem: Problem, state: State) -> Array:
     return total
 
 
-def _cable_loads(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:
+def cable_loads(problem: Problem, state: State, found: Evaluation) -> tuple[Array, Array]:
     """Whole load of every cable in place (case, cable, 3) [N] and where it acts (case, cable, 3) [m]."""
     load = problem.cable_total * problem.loads.present[..., None]
     start, hung = _hanging(problem, state, found)

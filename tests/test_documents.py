@@ -26,7 +26,7 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, read_scenario, solve
-from guys.exchange import comparison, losses, matters, result, stages, tables
+from guys.exchange import comparison, losses, matters, recording, result, stages, tables
 from guys.exchange import field as crew
 from guys.exchange import raising as exchange_raising
 from guys.scenario import Scenario, draft, schema, starters
@@ -37,6 +37,7 @@ from guys.studies.compare import compare
 from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
+from guys.studies.recording import record
 from guys.studies.stages import Stages, build_up
 
 REPOSITORY = Path(__file__).parent.parent
@@ -289,14 +290,19 @@ def test_the_guide_names_every_key_and_column_of_a_comparison() -> None:
     assert not sorted({*keys_of(comparison.as_dict(found)), *columns} - known)
 
 
-
-
 def test_the_guide_names_every_key_and_column_of_a_raising() -> None:
     raised = raising.solve(read_scenario(REPOSITORY / "scenarios/tilt-up-mast.toml"))
     known = code_words("docs/user-guide.md")
     told = keys_of(exchange_raising.as_dict(raised, hoisting.findings(raised)))
     columns = {name for name in exchange_raising.table(raised).splitlines()[0].split(",") if not name.startswith("side_guy_")}
     assert not sorted((told | columns) - known)
+
+
+def test_the_guide_names_every_key_of_the_record() -> None:
+    found = record(parse_scenario(starters.text("boom")))
+    known = code_words("docs/user-guide.md")
+    told = {name: part for name, part in recording.as_dict(found).items() if name != "result"}
+    assert not sorted(keys_of(told) - known)
 
 
 def test_the_guide_names_every_command_and_option() -> None:

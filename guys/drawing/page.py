@@ -170,6 +170,12 @@ def new_page(paper: str, taller: float = 0.0) -> Page:
     return Page(paper, width_mm, height_mm, shrink, figure, transform)
 
 
+def figure_page(wide: float, high: float, paper: str = "A4") -> Page:
+    """An empty page of so many millimetres, for a figure set at its full size in a text on that paper."""
+    figure = Figure(figsize=(wide / 25.4, high / 25.4), facecolor=style.WHITE)
+    return Page(paper, wide, high, 1.0, figure, Affine2D().scale(1.0 / 25.4) + figure.dpi_scale_trans)
+
+
 def arc(centre: ArrayLike, radius: float, count: int = 181) -> NDArray[np.float64]:
     """Points (count, 2) around a circle, closed."""
     turn = np.linspace(0.0, 2.0 * np.pi, count)

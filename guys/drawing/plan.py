@@ -136,7 +136,7 @@ def _heading(page: Page, solution: Solution, on: PlanFrame, ratio: float) -> Non
     page.text(x + wide + 3.0, y, f"{ratio_text(ratio)} on {page.paper}", style.BODY, colour=style.GREY)
     words = "bar the way it pulls: greatest horizontal · ring: greatest uplift · one scale"
     page.text(on.zone.right, y + 0.2, words, style.SMALL, colour=style.LOAD, align="right")
-    kinds = "guy solid: taut in every case and wind · dashed: drops in some, see the box"
+    kinds = "guy solid: taut in every case and wind · dashed: drops in some of them"
     page.text(on.zone.right, y - 4.0, kinds, style.SMALL, align="right")
 
 

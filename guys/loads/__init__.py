@@ -4,6 +4,6 @@ Loads are dead loads: computed once, on the setting position, and not followed. 
 `guys.rotation`), so that loads on rigid arms and the end moments of distributed loads keep their potential when nodes turn.
 """
 
-from guys.loads.cases import CaseLine, LoadCases, Placed, as_drawn, assemble, lines_of, setting_line
+from guys.loads.cases import CaseLine, LoadCases, Placed, as_drawn, assemble, joined, lines_of, setting_line
 
-__all__ = ["CaseLine", "LoadCases", "Placed", "as_drawn", "assemble", "lines_of", "setting_line"]
+__all__ = ["CaseLine", "LoadCases", "Placed", "as_drawn", "assemble", "joined", "lines_of", "setting_line"]

@@ -106,6 +106,12 @@ class LoadCases:
         return self._each(mix, self.lines)
 
 
+def joined(parts: Sequence[LoadCases]) -> LoadCases:
+    """Cases one after another."""
+    arrays = {f.name: np.concatenate([getattr(p, f.name) for p in parts]) for f in fields(LoadCases) if f.name != "lines"}
+    return LoadCases(**arrays, lines=tuple(line for p in parts for line in p.lines))
+
+
 def setting_line(scenario: Scenario) -> CaseLine:
     """Still air, dead load and initial tensions alone."""
     return CaseLine("setting", math.nan, 1.0, 0.0, 0.0, scenario.setting.temperature)
@@ -211,7 +217,7 @@ class _There:
 def _there(structure: Structure, placed: Placed, lines: Sequence[CaseLine]) -> _There:
     pieces, cables = structure.pieces, structure.cables
     foot = structure.position[structure.foot] + placed.u[structure.foot]
-    start, end = (_on_axis(structure, placed, k) for k in (0, 1))
+    start, end = (on_axis(structure, placed, k) for k in (0, 1))
     along = end - start
     w = weights(pieces, _cuts(structure, lines, start[:, 2], along[:, 2], foot[:, 2]))
     fraction = (w.station - pieces.station[:, :1]) / (pieces.station[:, 1:] - pieces.station[:, :1])
@@ -274,7 +280,7 @@ def where(structure: Structure, placed: Placed, points: Points) -> Array:
     return structure.position[points.node] + placed.u[points.node] + turned(placed.psi[points.node], points.arm)
 
 
-def _on_axis(structure: Structure, placed: Placed, end: int) -> Array:
+def on_axis(structure: Structure, placed: Placed, end: int) -> Array:
     """Start (0) or end (1) of every piece of spar: a node of an elastic spar, a point on the arm of a rigid one."""
     pieces = structure.pieces
     node = pieces.low if end == 0 else pieces.high

@@ -464,6 +464,8 @@ class Scenario(Model):
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None
+    text: str = ""
+    """What was read."""
     warnings: tuple[str, ...] = ()
     """Values that look like a slip."""
     notes: tuple[str, ...] = ()

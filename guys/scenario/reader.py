@@ -117,7 +117,7 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     findings = broken + independent(_rules(tables, site), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))
-    return _with_layouts(_resolved(tables, site, hashlib.sha256(content).hexdigest(), path), tables)
+    return _with_layouts(_resolved(tables, site, hashlib.sha256(content).hexdigest(), path).model_copy(update={"text": text}), tables)
 
 
 def _with_layouts(scenario: Scenario, tables: Draft) -> Scenario:

@@ -132,9 +132,7 @@ def _set_again(scenario: Scenario, point: Reading, progress: Progress | None) ->
     ranges = scenario.ranges
 
     def tensions(side: float) -> Scenario:
-        factor = 1 + side * ranges.tension
-        cables = [c if c.tension is None else c.model_copy(update={"tension": factor * c.tension}) for c in scenario.cable]
-        return scenario.model_copy(update={"cable": tuple(cables)})
+        return with_tensions(scenario, 1 + side * ranges.tension)
 
     def stiffness(side: float) -> Scenario:
         factor = 1 + side * ranges.stiffness
@@ -147,6 +145,12 @@ def _set_again(scenario: Scenario, point: Reading, progress: Progress | None) ->
         _span("initial tension", _percent(ranges.tension), "tension", tensions, (ranges.tension, none), scenario, point, progress),
         _span("rope stiffness", _percent(ranges.stiffness), "stiffness", stiffness, (ranges.stiffness, bare), scenario, point, progress),
     ]
+
+
+def with_tensions(scenario: Scenario, factor: float) -> Scenario:
+    """The scenario with every initial tension that is given times a factor."""
+    cables = [c if c.tension is None else c.model_copy(update={"tension": factor * c.tension}) for c in scenario.cable]
+    return scenario.model_copy(update={"cable": tuple(cables)})
 
 
 def _span(

@@ -57,11 +57,11 @@ def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = Non
 def cases(scenario: Scenario, finer: int = 1, progress: Progress | None = None) -> tuple[Setting, Batch, Batch | None]:
     """The setting, the listed cases, and those of the full circle of winds, None where no case has wind or still air does not stand."""
     setting = find(build(scenario, finer))
-    listed = _listed(setting, progress)
+    listed = listed_cases(setting, progress)
     return setting, listed, _swept(setting, listed, progress)
 
 
-def _listed(setting: Setting, progress: Progress | None) -> Batch:
+def listed_cases(setting: Setting, progress: Progress | None = None) -> Batch:
     """The setting case, then every listed case."""
     first = recover(setting.problem, setting.judged, detail=True)
     lines = lines_of(setting.problem.structure.scenario)
