@@ -37,6 +37,7 @@ from guys.scenario.parts import Part
 from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
+from guys.scenario.search import Search
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.unavailable import without
 from guys.scenario.wind_entry import WindEntry
@@ -69,6 +70,7 @@ class Draft:
     allowables: AllowablesEntry | None
     analysis: Analysis | None
     lost: Lost | None
+    search: Search | None
     ranges: Ranges | None
     limit: Limit | None
     field: FieldWork | None

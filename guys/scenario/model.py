@@ -26,6 +26,7 @@ from guys.scenario.lost import Lost
 from guys.scenario.parts import Part
 from guys.scenario.plate import Plate
 from guys.scenario.ranges import Ranges
+from guys.scenario.search import Search
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.table import Model
 from guys.site import Site
@@ -463,6 +464,7 @@ class Scenario(Model):
     allowables: Allowables = Allowables()
     analysis: Analysis = Analysis()
     lost: Lost = Lost()
+    search: Search | None = None
     ranges: Ranges = Ranges()
     limit: Limit = Limit()
     field: FieldWork = FieldWork()

@@ -26,6 +26,7 @@ from guys.scenario import (
     plausible,
     resolve,
     rigging,
+    search,
     unavailable,
     weather,
 )  # fmt: skip
@@ -182,6 +183,7 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from field.findings(tables)
     yield from patches.findings(tables)
     yield from layouts.findings(tables, site)
+    yield from search.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -251,6 +253,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         lost=_there(tables.lost),
+        search=tables.search,
         ranges=_there(tables.ranges),
         limit=_there(tables.limit),
         field=_there(tables.field),
