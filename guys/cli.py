@@ -17,7 +17,7 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE = ("search",)
+UNAVAILABLE: tuple[str, ...] = ()
 """Commands this version knows by name and does not do."""
 
 RANKED_BY = (
@@ -311,6 +311,21 @@ def record(file: str, out: str, as_json: bool, units: str, layout: str | None, w
     from guys.doors.record import record_command
 
     return record_command(file, out, as_json, units, with_pdf, layout)  # type: ignore[arg-type]
+
+
+@commands.command()
+@computing("search.json, search.csv, layouts.toml and the figures")
+@in_one_layout
+@side_by_side
+def search(file: str, out: str | None, as_json: bool, units: str, layout: str | None, workers: int) -> int:
+    """Search for the best places of anchors within what the file's [search] and [site] allow.
+
+    Exit status: 0 found; 3 no layout tried holds every rule, or what was found is past something in other winds; 4 none stands; 1 and 2
+    as ever. Interrupted, it ends with the best so far.
+    """
+    from guys.doors.search import search_command
+
+    return search_command(file, workers, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -197,6 +197,8 @@ TABLES = {
     "Fitting": "[[spar.fitting]]`",
     "AnchorEntry": "[[anchor]]`",
     "LayoutEntry": "[[layout]]`",
+    "Search": "[search]`",
+    "SearchMove": "[[search.move]]`",
     "GuyLevel": "[[guy_level]]`",
     "CableEntry": "[[cable]]`",
     "RopeEntry": "[rope.NAME]`",

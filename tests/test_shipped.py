@@ -11,6 +11,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from shapely import LineString
 
 from guys import Solution, parse_scenario, read_scenario, solve
 from guys.scenario import drawn, starters
@@ -40,7 +41,7 @@ def test_starters_solve_within_their_allowables(kind: str) -> None:
 
 
 def test_shipped_scenarios_solve_within_their_allowables(solved: dict[str, Solution]) -> None:
-    assert len(solved) >= 3
+    assert len(solved) >= 4
     for solution in solved.values():
         settled(solution)
 
@@ -78,6 +79,29 @@ def test_quarry_mast_is_plumb_and_its_guys_balance_level_by_level(solved: dict[s
         sideways = sum(tension(found, f"{level} {a}") * direction(found, f"{level} {a}")[1][:2] for a in "NESW")
         greatest = max(tension(found, f"{level} {a}") for a in "NESW")
         assert np.linalg.norm(sideways) < STRAIGHT * greatest
+
+
+def test_bench_mast_stands_clear_of_the_parking_by_hand(solved: dict[str, Solution]) -> None:
+    """SE stands 12 m out at 125 deg, so 12 cos 125 deg north: that far above the parking's north edge at 8.5 m south."""
+    clear = next(f for f in solved["bench-mast"].findings if (f.thing, f.quantity) == ("anchor SE", "clear of parking"))
+    assert clear.capacity == pytest.approx(8.5 + 12 * math.cos(math.radians(125)))
+    assert clear.margin == pytest.approx(clear.capacity - 1.0)
+
+
+def test_bench_mast_guys_over_the_haul_road_hang_near_their_chord() -> None:
+    """Over the road's far edge, 30 m out, the low guy SE is lowest: the height of its chord there above the ground, less its sag."""
+    over = next(each for each in read_scenario(SCENARIOS / "bench-mast.toml").layouts if each.layout == "over the haul road")
+    solution = solve(over)
+    top, along = direction(solution, "low SE")
+    road = next(o for o in over.site.obstacles if o.name == "haul road").shape  # type: ignore[union-attr]
+    line = LineString([top[:2], (top + along * 40)[:2]])
+    far = max(LineString([top[:2], point]).length for point in road.intersection(line).coords)
+    out = math.hypot(*along[:2])
+    at = top + along * far / out
+    height = at[2] - float(over.site.ground.level(at[0], at[1]))  # type: ignore[union-attr]
+    found = next(f for f in solution.findings if (f.thing, f.quantity) == ("cable low SE", "over haul road"))
+    assert height - 0.25 < found.capacity < height
+    assert found.verdict == "past"
 
 
 def test_sign_pylon_backstays_hold_the_overturning(solved: dict[str, Solution]) -> None:

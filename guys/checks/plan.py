@@ -73,7 +73,8 @@ def findings(site: Site | None, hung: Hung) -> tuple[Finding, ...]:
     """A finding for every rule that the site or the trade makes."""
     out = [*_crossings(hung), *_anchors_beside_cables(hung)]
     if site is not None:
-        out += [*_boundary(site, hung), *_clearances(site, hung), *_headrooms(site, hung), *_overhead(site, hung)]
+        places = [(a.name, float(at[0]), float(at[1])) for a, at in zip(hung.scenario.anchor, hung.anchors, strict=True)]
+        out += [*placing(site, places), *_headrooms(site, hung), *_overhead(site, hung)]
     return tuple(out)
 
 
@@ -100,22 +101,28 @@ def _inside(shape: BaseGeometry, east: float, north: float) -> float:
     return float(shape.boundary.distance(point)) if away == 0.0 and shape.area > 0 else -away
 
 
-def _boundary(site: Site, hung: Hung) -> Iterator[Finding]:
+def placing(site: Site, anchors: Sequence[tuple[str, float, float]]) -> Iterator[Finding]:
+    """The rules on where anchors stand, given by name, east and north: boundary and obstacles."""
+    yield from _boundary(site, anchors)
+    yield from _clearances(site, anchors)
+
+
+def _boundary(site: Site, anchors: Sequence[tuple[str, float, float]]) -> Iterator[Finding]:
     if site.boundary is None:
         return
-    for anchor, (east, north, _) in zip(hung.scenario.anchor, hung.anchors, strict=True):
-        yield _finding(f"anchor {anchor.name}", "inside the boundary", site.setback, _inside(site.boundary, east, north), "setback")
+    for name, east, north in anchors:
+        yield _finding(f"anchor {name}", "inside the boundary", site.setback, _inside(site.boundary, east, north), "setback")
 
 
-def _clearances(site: Site, hung: Hung) -> Iterator[Finding]:
+def _clearances(site: Site, anchors: Sequence[tuple[str, float, float]]) -> Iterator[Finding]:
     """Anchors stand in no obstacle but under a line, and clear of it where it says so."""
     for obstacle in site.obstacles:
         if obstacle.kind == "line" and obstacle.clearance is None:
             continue
-        for anchor, (east, north, _) in zip(hung.scenario.anchor, hung.anchors, strict=True):
+        for name, east, north in anchors:
             clear = -_inside(obstacle.shape, east, north)
             yield _finding(
-                f"anchor {anchor.name}", f"clear of {obstacle.name}", obstacle.clearance or 0.0, clear, f"clearance of a {obstacle.kind}"
+                f"anchor {name}", f"clear of {obstacle.name}", obstacle.clearance or 0.0, clear, f"clearance of a {obstacle.kind}"
             )
 
 
@@ -170,7 +177,12 @@ def headrooms(found: Iterable[Finding]) -> list[Finding]:
 
 def _lowest(site: Site, hung: Hung, obstacle: Obstacle, cable: int) -> tuple[float, CaseLine] | None:
     """Least height of a cable above the ground over an obstacle, and the case; None where it passes beside it."""
+    import shapely
+
     found: list[tuple[float, CaseLine]] = []
+    low, high = (f(hung.curves[:, cable, :, :2], axis=(0, 1)) for f in (np.nanmin, np.nanmax))
+    if not shapely.intersects(shapely.box(*low, *high), obstacle.shape):
+        return None
     for k in hung.standing():
         curve = hung.curves[k, cable]
         if np.isnan(curve).any():

@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 import signal
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from concurrent.futures import Executor, ProcessPoolExecutor
 from contextlib import ExitStack, contextmanager
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TextIO
 
 from guys.checks.alarms import BALANCE
 from guys.drawing.files import figure_bytes
@@ -55,6 +55,13 @@ def workers(count: int) -> Iterator[Executor | None]:
         yield executor
     finally:
         executor.shutdown(cancel_futures=True)
+
+
+def told(groups: Iterable[tuple[str, Sequence[str]]], stream: TextIO) -> None:
+    """Lists under their headings, empty ones left out."""
+    for heading, lines in groups:
+        if lines:
+            stream.write(f"\n{heading}\n" + "".join(f"  - {line}\n" for line in lines))
 
 
 def in_layout(scenario: Scenario, name: str | None) -> Scenario:

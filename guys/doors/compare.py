@@ -13,7 +13,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import pictures, store, workers
+from guys.doors.common import pictures, store, told, workers
 from guys.doors.size import amount
 from guys.drawing import rounding
 from guys.drawing.comparison import draw_comparison, said, title
@@ -39,7 +39,7 @@ def compare_command(files: Sequence[str], by: str, side_by_side: int, out: str |
     else:
         report(found, units, sys.stdout)
         warnings = [text for scenario in scenarios for text in layouts.warnings(scenario)]
-        _told((("Warnings", warnings), ("Cautions", CAUTIONS)), sys.stdout)
+        told((("Warnings", warnings), ("Cautions", CAUTIONS)), sys.stdout)
         terminal.files(written, sys.stdout)
     return status(found)
 
@@ -67,12 +67,6 @@ def report(found: Comparison, units: Units, stream: TextIO) -> None:
     terminal.table("Measures", ["layout", *(MEASURES[key].words for key in keys)], rows, stream)
     needs = [row for each in found.layouts for row in _needs(each, speech)]
     terminal.table("What the holdfasts must be", ["layout", "anchor", "pull", "holdfast", "size", "needed", "given"], needs, stream)
-
-
-def _told(groups: Sequence[tuple[str, Sequence[str]]], stream: TextIO) -> None:
-    for heading, lines in groups:
-        if lines:
-            stream.write(f"\n{heading}\n" + "".join(f"  - {line}\n" for line in lines))
 
 
 def _wind(wind_from: float) -> str:

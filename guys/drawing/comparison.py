@@ -149,7 +149,7 @@ def _plan(page: Page, each: Compared, by: str, on: plan.PlanFrame, per_newton: f
         field.add_place(spot)
         blocks.draw_placed(page, spot, at, lines)
     if solution.scenario.site is not None:
-        draw_site(page, solution.scenario.site, field, on.on_page, speech)
+        draw_site(page, solution.scenario.site, field, on.on_page, speech, asks=False)
 
 
 def _grid(found: Comparison, speech: Tongue) -> Grid:

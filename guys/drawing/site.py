@@ -30,14 +30,14 @@ STEP = 0.4
 OnPage = Callable[[Array], Array]
 
 
-def draw_site(page: Page, site: Site, field: Field, on_page: OnPage, tongue: Tongue) -> None:
-    """Names where there is room, then areas and lines round all words."""
+def draw_site(page: Page, site: Site, field: Field, on_page: OnPage, tongue: Tongue, asks: bool = True) -> None:
+    """Names where there is room, with what each asks, or without; then areas and lines round all words."""
     for obstacle in site.obstacles:
         shown = [points for points, _ in pieces(obstacle.shape, field.room, on_page)]
         name = Line(shortened(obstacle.name, 44.0, style.BODY), colour=style.GREY)
-        _label(page, field, [name, *_asks(obstacle, tongue)], shown, [points.mean(axis=0) for points in shown[:1]])
+        _label(page, field, [name, *(_asks(obstacle, tongue) if asks else [])], shown, [points.mean(axis=0) for points in shown[:1]])
     if site.boundary is not None:
-        setback = f", setback {tongue.say(length, site.setback)}" if site.setback > 0 else ""
+        setback = f", setback {tongue.say(length, site.setback)}" if asks and site.setback > 0 else ""
         shown = [points for points, _ in pieces(site.boundary.boundary, field.room, on_page)]
         _label(page, field, [Line(f"boundary{setback}", colour=style.GREY)], shown, [])
     for obstacle in site.obstacles:

@@ -24,7 +24,7 @@ def as_dict(found: Comparison) -> dict[str, Any]:
         "format": FORMAT,
         "guys_version": found.version,
         "by": found.by,
-        "layouts": [_layout(each) for each in found.layouts],
+        "layouts": [layout_entry(each) for each in found.layouts],
         "cautions": list(CAUTIONS),
     }
 
@@ -34,7 +34,8 @@ def as_text(found: Comparison) -> str:
     return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
 
 
-def _layout(each: Compared) -> dict[str, Any]:
+def layout_entry(each: Compared) -> dict[str, Any]:
+    """One layout with all its measures."""
     solution, first = each.solution, each.decides
     return {
         "rank": each.rank,

@@ -24,6 +24,7 @@ from guys.scenario.model import Analysis, CaseKind, End, Material, Setting, Spar
 from guys.scenario.parts import Part
 from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
+from guys.scenario.search import Search
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.stage import Stage
@@ -188,6 +189,8 @@ class ScenarioFile(Model):
     """Least factors asked for."""
     analysis: Analysis = Analysis()
     """How things are modelled."""
+    search: Search | None = None
+    """For `guys search`."""
     lost: Lost = Lost()
     """For `guys lost`."""
     ranges: Ranges = Ranges()

@@ -38,6 +38,7 @@ from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
+from guys.scenario.search import Search
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.stage import Stage
 from guys.scenario.wind_entry import WindEntry
@@ -74,6 +75,7 @@ class Draft:
     allowables: AllowablesEntry | None
     analysis: Analysis | None
     lost: Lost | None
+    search: Search | None
     ranges: Ranges | None
     limit: Limit | None
     field: FieldWork | None

@@ -27,6 +27,7 @@ from guys.scenario.parts import Part
 from guys.scenario.plate import Plate
 from guys.scenario.raising import Raising
 from guys.scenario.ranges import Ranges
+from guys.scenario.search import Search
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.stage import Stage
 from guys.scenario.table import GroundFoot as GroundFoot
@@ -457,6 +458,7 @@ class Scenario(Model):
     allowables: Allowables = Allowables()
     analysis: Analysis = Analysis()
     lost: Lost = Lost()
+    search: Search | None = None
     ranges: Ranges = Ranges()
     limit: Limit = Limit()
     field: FieldWork = FieldWork()

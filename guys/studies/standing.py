@@ -54,11 +54,16 @@ def solve(scenario: Scenario, *, finer: int = 1, progress: Progress | None = Non
     return solution(*cases(scenario, finer, progress))
 
 
-def cases(scenario: Scenario, finer: int = 1, progress: Progress | None = None) -> tuple[Setting, Batch, Batch | None]:
-    """The setting, the listed cases, and those of the full circle of winds, None where no case has wind or still air does not stand."""
+def cases(
+    scenario: Scenario, finer: int = 1, progress: Progress | None = None, circle: bool = True
+) -> tuple[Setting, Batch, Batch | None]:
+    """The setting, the listed cases, and those of the full circle of winds, None where no case has wind or still air does not stand.
+
+    circle : False leaves the full circle out
+    """
     setting = find(build(scenario, finer))
     listed = listed_cases(setting, progress)
-    return setting, listed, _swept(setting, listed, progress)
+    return setting, listed, _swept(setting, listed, progress) if circle else None
 
 
 def listed_cases(setting: Setting, progress: Progress | None = None) -> Batch:

@@ -1,0 +1,205 @@
+"""The best anchors among what is allowed, by differential evolution over the numbers of `[search]`.
+
+    trial vector  v = x_best + F (x_a - x_b)   crossed with x; kept where its grade is no worse
+
+(R. Storn, K. Price: Differential Evolution, J. of Global Optimization 11 (1997) 341-359; the scheme "best/1/bin" of scipy.)  A generation
+is a batch: its layouts are tried side by side by any `concurrent.futures.Executor`, and the next one depends on their grades alone, so
+that a seed gives the same layouts, to the last bit, however many processes try them.  No layout is tried twice.
+
+Trade-off of two measures: the least of each by itself, then the first made least with the second held under limits between those two, one
+limit at a time; of all layouts tried that hold every rule, those are kept that no other betters in both.  What is found is solved again
+in every listed direction and round the circle.
+"""
+
+from __future__ import annotations
+
+import math
+from collections import Counter
+from collections.abc import Callable, Sequence
+from concurrent.futures import Executor
+from dataclasses import dataclass, field
+from functools import partial
+from itertools import product
+from typing import Any
+
+import numpy as np
+
+from guys.errors import ScenarioError
+from guys.rotation import Array
+from guys.scenario import Scenario, layouts
+from guys.scenario.reader import fault_at
+from guys.studies.batch import Progress
+from guys.studies.compare import Comparison, compare
+from guys.studies.trial import HOLDS, Span, Trial, spans, tried
+from guys.version import __version__
+
+AMONG = 24
+"""Layouts of a generation at the most."""
+LIMITS = 4
+"""Limits on the second measure between the least of both."""
+SHARE = 0.4
+"""Of all tries, those that look for the least of the first measure, where a trade-off is traced."""
+FOUND = 6
+"""Layouts of a trade-off that are solved again in full and handed back."""
+ALIKE = 1e-4
+"""Relative difference of grades in a generation at which it has settled."""
+
+
+@dataclass(frozen=True)
+class Found:
+    """What the search found.
+
+    scenario : its start;  keys : of the measures;  numbers : what was moved;  trials : every layout tried, in order
+    best : of those that hold every rule the least by the first measure, None where none does
+    front : those that no other betters in both measures, by the first;  compared : the found ones in full, None where there is none
+    interrupted : stopped before its end
+    """
+
+    scenario: Scenario
+    version: str
+    keys: tuple[str, ...]
+    numbers: tuple[Span, ...]
+    trials: tuple[Trial, ...]
+    best: Trial | None
+    front: tuple[Trial, ...]
+    compared: Comparison | None
+    interrupted: bool
+
+    @property
+    def excluded(self) -> list[tuple[str, int]]:
+        """Rules broken first, with how many layouts each excluded, the most first."""
+        return Counter(trial.rule for trial in self.trials if trial.rule).most_common()
+
+
+@dataclass
+class _Tries:
+    """Tries layouts side by side and remembers them."""
+
+    scenario: Scenario
+    keys: tuple[str, ...]
+    most: int
+    executor: Executor | None
+    progress: Progress | None
+    known: dict[tuple[float, ...], Trial] = field(default_factory=dict)
+
+    def __call__(self, points: Sequence[tuple[float, ...]]) -> list[Trial]:
+        fresh = [p for p in dict.fromkeys(points) if p not in self.known]
+        each = partial(tried, self.scenario, self.keys)
+        for trial in map(each, fresh) if self.executor is None else self.executor.map(each, fresh):
+            self.known[trial.at] = trial
+            if self.progress is not None:
+                self.progress(min(len(self.known), self.most), self.most)
+        return [self.known[p] for p in points]
+
+
+def search(scenario: Scenario, executor: Executor | None = None, progress: Progress | None = None) -> Found:
+    """Look for the best layout.
+
+    executor : tries layouts side by side, None: one after another;  progress : called with layouts tried and at the most
+
+    An interruption ends the search with the best so far.  Raises ScenarioError where the file has no [search].
+    """
+    asked = scenario.search
+    if asked is None:
+        text = 'missing; say what may move, such as [search] with least = "pull" and [[search.move]]'
+        raise ScenarioError([fault_at(scenario, ("search",), text)])
+    keys = (asked.least,) if asked.against is None else (asked.least, asked.against)
+    start = _in_few_directions(scenario)
+    tries = _Tries(start, keys, asked.tries, executor, progress)
+    numbers = spans(asked.move)
+    interrupted = False
+    try:
+        _explore(tries, numbers, asked.tries, asked.seed)
+    except KeyboardInterrupt:
+        interrupted = True
+    trials = tuple(tries.known.values())
+    holding = sorted((t for t in trials if t.outcome == HOLDS), key=lambda t: t.values)
+    front = not_bettered(holding)
+    compared = compare([_with_found(scenario, front)], asked.least, executor) if front else None
+    return Found(scenario, __version__, keys, numbers, trials, holding[0] if holding else None, front, compared, interrupted)
+
+
+def _in_few_directions(scenario: Scenario) -> Scenario:
+    assert scenario.search is not None
+    if scenario.wind is None:
+        return scenario
+    few = tuple(float(b) for b in np.arange(scenario.search.directions) * math.tau / scenario.search.directions)
+    return scenario.model_copy(update={"wind": scenario.wind.model_copy(update={"directions": few}), "layouts": ()})
+
+
+def _explore(tries: _Tries, numbers: Sequence[Span], most: int, seed: int) -> None:
+    """The least of the first measure; then, with a second one, along the trade-off."""
+    whole = _choices(numbers)
+    if whole is not None and len(whole) <= most:
+        tries(whole)
+        return
+    if len(tries.keys) == 1:
+        _least(tries, numbers, lambda t: t.grade(0), most, seed)
+        return
+    _least(tries, numbers, lambda t: t.grade(0), int(SHARE * most), seed)
+    rest = (most - int(SHARE * most)) // (LIMITS + 1)
+    _least(tries, numbers, lambda t: t.grade(1), rest, seed + 1)
+    holding = [t for t in tries.known.values() if t.outcome == HOLDS]
+    if not holding:
+        return
+    low, high = min(t.values[1] for t in holding), min(holding, key=lambda t: t.values).values[1]
+    for k, limit in enumerate(np.linspace(low, high, LIMITS + 2)[1:-1]):
+        _least(tries, numbers, partial(Trial.grade, measure=0, limit=float(limit)), rest, seed + 2 + k)
+
+
+def _choices(numbers: Sequence[Span]) -> list[tuple[float, ...]] | None:
+    """Every layout there is, where all anchors that move choose among listed places."""
+    if not all(span.whole for span in numbers):
+        return None
+    return [tuple(map(float, each)) for each in product(*(range(int(span.most) + 1) for span in numbers))]
+
+
+def _least(tries: _Tries, numbers: Sequence[Span], grade: Callable[[Trial], float], most: int, seed: int) -> None:
+    """Differential evolution of about `most` tries."""
+    from scipy.optimize import Bounds, differential_evolution
+
+    many = max(6, min(AMONG, most // 6))
+
+    def graded(x: Array, /) -> Any:  # (layout,) of (number, layout), as `vectorized` has it; scipy's types know a single point alone
+        points = [tuple(float(v) for v in column) for column in np.atleast_2d(x.T)]
+        return np.array([grade(trial) for trial in tries(points)])
+
+    first = _spread(numbers, many, seed)
+    differential_evolution(
+        graded, Bounds(*_bounds(numbers)), maxiter=max(most // many - 1, 1), init=first, rng=seed, polish=False, vectorized=True,
+        updating="deferred", integrality=np.array([span.whole for span in numbers]), tol=ALIKE, atol=0.0,
+    )  # fmt: skip
+
+
+def _bounds(numbers: Sequence[Span]) -> tuple[Array, Array]:
+    return np.array([span.least for span in numbers]), np.array([span.most for span in numbers])
+
+
+def _spread(numbers: Sequence[Span], many: int, seed: int) -> Array:
+    """(layout, number) a first generation spread evenly over the bounds (Latin hypercube)."""
+    from scipy.stats import qmc
+
+    low, high = _bounds(numbers)
+    return np.asarray(low + qmc.LatinHypercube(len(numbers), rng=seed).random(many) * (high - low))
+
+
+def not_bettered(holding: Sequence[Trial]) -> tuple[Trial, ...]:
+    """Of layouts in order of their values those that none betters in every measure, thinned out to `FOUND` of them."""
+    out: list[Trial] = []
+    for trial in holding:
+        if not out or (trial.values[-1] < out[-1].values[-1] and len(trial.values) > 1):
+            out.append(trial)
+    if len(out) <= FOUND:
+        return tuple(out)
+    return tuple(out[k] for k in dict.fromkeys(round(k) for k in np.linspace(0, len(out) - 1, FOUND)))
+
+
+def name_of(place: int) -> str:
+    """The name a found layout is handed back under."""
+    return f"found {place + 1}"
+
+
+def _with_found(scenario: Scenario, front: Sequence[Trial]) -> Scenario:
+    """The scenario with the found layouts in place of its own."""
+    found = tuple(layouts.named(scenario, name_of(k), trial.anchors) for k, trial in enumerate(front))
+    return scenario.model_copy(update={"layouts": found})

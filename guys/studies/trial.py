@@ -1,0 +1,181 @@
+"""One layout of a search: anchors put where the numbers say, the site's rules on them, then the line in a few directions.
+
+Rules in order, since each costs more than the one before: a place that is on the surveyed ground, clear of the mast and of other anchors;
+boundary and obstacles in plan; equilibrium in every case; everything judged within its allowable, cables over roads and lines included.
+A layout that breaks one is not solved further.  `grade` orders layouts: one that holds all rules by its measure, any other behind it by how
+far it went and how much it breaks.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from guys.checks import plan
+from guys.errors import ScenarioError
+from guys.results import Finding, Solution
+from guys.scenario import Scenario, drawn
+from guys.scenario.model import Anchor
+from guys.scenario.search import SearchMove, SearchPlace
+from guys.studies import sizing, standing
+from guys.studies.measures import MEASURES, measured
+
+HOLDS, PAST, FALLS, MISPLACED = range(4)
+"""How far a layout went, the worse the greater."""
+NEAREST = 0.5
+"""[m] from the axis of the first spar, and from each other, that anchors keep in a search: less is no layout (common practice)."""
+PEGGED = 2
+"""Decimals of a metre to which places are rounded, so that what is handed back is what was tried: a crew pegs to a centimetre."""
+STEP = 1e15
+"""Between grades of layouts that go to different rules: more than any measure in SI."""
+
+
+@dataclass(frozen=True)
+class Span:
+    """One number of a search: of which move, what it is, its bounds; whole: a place of a list, by its index."""
+
+    move: int
+    what: str
+    least: float
+    most: float
+    whole: bool
+
+
+@dataclass(frozen=True)
+class Trial:
+    """What became of one layout.
+
+    at : its numbers;  anchors : as placed;  outcome : HOLDS, PAST, ...;  amount : how much it breaks what it breaks
+    rule : the first it breaks, empty where it holds all;  values : of the measures asked for, NaN where it was not solved
+    """
+
+    at: tuple[float, ...]
+    anchors: tuple[Anchor, ...]
+    outcome: int
+    amount: float
+    rule: str
+    values: tuple[float, ...]
+
+    def grade(self, measure: int, limit: float = math.inf) -> float:
+        """The less the better: the value of one measure; behind all that hold, those with the other measure past `limit`, then the rest."""
+        if self.outcome == HOLDS:
+            over = self.values[1 - measure] - limit if math.isfinite(limit) else 0.0
+            return self.values[measure] if over <= 0 else STEP + over
+        return STEP * (1 + self.outcome) + min(self.amount, STEP / 2)
+
+
+def spans(moves: Sequence[SearchMove]) -> tuple[Span, ...]:
+    """The numbers of a search."""
+    out = []
+    for n, move in enumerate(moves):
+        if move.places is not None:
+            out.append(Span(n, "places", 0, len(move.places) - 1, True))
+        if move.radius is not None:
+            out.append(Span(n, "radius", move.radius[0], move.radius[1], False))
+        if move.bearing is not None:
+            first, last = move.bearing
+            out.append(Span(n, "bearing", first, first + (last - first) % math.tau, False))
+        if move.turn is not None:
+            out.append(Span(n, "turn", move.turn[0], move.turn[1], False))
+    return tuple(out)
+
+
+def placed(scenario: Scenario, at: Sequence[float]) -> tuple[Anchor, ...]:
+    """The anchors where the numbers say, on the surveyed ground (level NaN outside it), or at the level they are drawn at without one."""
+    search = scenario.search
+    assert search is not None
+    foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
+    moved = {anchor.name: anchor for anchor in scenario.anchor}
+    given: dict[int, dict[str, float]] = {}
+    for span, value in zip(spans(search.move), at, strict=True):
+        given.setdefault(span.move, {})[span.what] = value
+    for n, numbers in given.items():
+        for name in search.move[n].anchors:
+            east, north = (round(x, PEGGED) for x in _place(search.move[n], numbers, moved[name], foot))
+            ground = None if scenario.site is None else scenario.site.ground
+            level = moved[name].level if ground is None else round(float(ground.level(east, north)), PEGGED)
+            moved[name] = moved[name].model_copy(update={"east": east, "north": north, "level": level})
+    return tuple(moved.values())
+
+
+def _place(move: SearchMove, numbers: dict[str, float], anchor: Anchor, foot: drawn.Point) -> tuple[float, float]:
+    if move.places is not None:
+        return _listed(move.places[round(numbers["places"])], foot)
+    out = anchor.east - foot[0], anchor.north - foot[1]
+    radius = numbers.get("radius", math.hypot(*out))
+    bearing = numbers.get("bearing", math.atan2(*out) + numbers.get("turn", 0.0))
+    return foot[0] + radius * math.sin(bearing), foot[1] + radius * math.cos(bearing)
+
+
+def _listed(place: SearchPlace, foot: drawn.Point) -> tuple[float, float]:
+    if place.bearing is not None and place.radius is not None:
+        return foot[0] + place.radius * math.sin(place.bearing), foot[1] + place.radius * math.cos(place.bearing)
+    return place.east or 0.0, place.north or 0.0
+
+
+def tried(scenario: Scenario, keys: tuple[str, ...], at: tuple[float, ...]) -> Trial:
+    """One layout through the rules, and as far through the line as it holds them."""
+    anchors = placed(scenario, at)
+    nothing = (math.nan,) * len(keys)
+    rule, amount = _misplaced(scenario, anchors)
+    if rule:
+        return Trial(at, anchors, MISPLACED, amount, rule, nothing)
+    layout = scenario.model_copy(update={"anchor": anchors, "layouts": ()})
+    try:
+        setting, listed, _ = standing.cases(layout, circle=False)
+    except ScenarioError:
+        return Trial(at, anchors, FALLS, 1.0, "initial tensions that no still-air state meets", nothing)
+    solution = standing.solution(setting, listed, None, again=False)
+    if any(solution.unsettled) or solution.failed:
+        share = sum(solution.unsettled) / len(solution.unsettled)
+        return Trial(at, anchors, FALLS, share, "no stable equilibrium in some case", nothing)
+    needs = sizing.sized(_own_holdfasts(layout), listed, None).anchors if "mass" in keys and layout.holdfast else ()
+    values = tuple(measured(solution, needs, keys)[key].value for key in keys)
+    rule, amount = _past(solution, keys)
+    if not rule and any(math.isnan(value) for value in values):
+        unknown = MEASURES[keys[[math.isnan(value) for value in values].index(True)]].words
+        return Trial(at, anchors, PAST, 1.0, f"{unknown} not known", nothing)
+    return Trial(at, anchors, PAST if rule else HOLDS, amount, rule, values)
+
+
+def _own_holdfasts(layout: Scenario) -> Scenario:
+    """Without the holdfasts that no anchor has, where every one has its own: they need not be sized."""
+    held = {anchor.holdfast for anchor in layout.anchor}
+    own = {name: holdfast for name, holdfast in layout.holdfast.items() if name in held or None in held}
+    return layout.model_copy(update={"holdfast": own})
+
+
+def _past(solution: Solution, keys: tuple[str, ...]) -> tuple[str, float]:
+    """The worst of what is past, and by how much all of it is together.
+
+    What a holdfast of the given size holds does not count where its size is what is made least.
+    """
+    past = [f for f in solution.past if not ("mass" in keys and f.thing.startswith("anchor ") and math.isnan(f.margin))]
+    if not past:
+        return "", 0.0
+    return f"{past[0].thing}, {past[0].quantity}", math.fsum(_lack(f) for f in past)
+
+
+def _lack(finding: Finding) -> float:
+    """How far one thing is past, without a unit: of rules of the site in metres, of factors in shares of what is required."""
+    if not math.isnan(finding.margin):
+        return -finding.margin
+    return 1.0 - finding.factor / finding.required
+
+
+def _misplaced(scenario: Scenario, anchors: Sequence[Anchor]) -> tuple[str, float]:
+    """The first rule on places that is broken, and by how many metres all of them are."""
+    foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
+    broken: list[tuple[str, float]] = []
+    for n, anchor in enumerate(anchors):
+        if math.isnan(anchor.level):
+            broken.append((f"anchor {anchor.name}, outside the surveyed ground", 1e3))
+        for name, east, north in [("the first spar", foot[0], foot[1]), *((f"anchor {a.name}", a.east, a.north) for a in anchors[:n])]:
+            apart = math.hypot(anchor.east - east, anchor.north - north)
+            if apart < NEAREST:
+                broken.append((f"anchor {anchor.name}, apart from {name}", NEAREST - apart))
+    if scenario.site is not None:
+        places = [(anchor.name, anchor.east, anchor.north) for anchor in anchors]
+        broken += [(f"{f.thing}, {f.quantity}", -f.margin) for f in plan.placing(scenario.site, places) if f.verdict == "past"]
+    return (broken[0][0], math.fsum(amount for _, amount in broken)) if broken else ("", 0.0)
