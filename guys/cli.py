@@ -17,9 +17,6 @@ import click
 from guys.errors import GuysError, ScenarioError
 from guys.version import __version__
 
-UNAVAILABLE: tuple[str, ...] = ()
-"""Commands this version knows by name and does not do."""
-
 RANKED_BY = (
     *("pull", "uplift", "cable", "tension", "thrust", "sideways", "bending", "lean", "headroom", "margin", "use", "mass", "rope", "pieces"),
 )
@@ -31,27 +28,21 @@ TRACEBACK = "GUYS_TRACEBACK"
 """Environment variable: set to anything, an internal fault shows where it happened."""
 
 
+ORDER = (
+    *("new", "validate", "schema", "list"),
+    *("solve", "plumb", "size", "setout", "compare", "search"),
+    *("limit", "reserve", "lost", "matters", "stages", "raise"),
+    *("field", "record"),
+)
+"""Commands as help lists them: the file, the structure and its site, what it takes, what goes on paper."""
+
+
 class Commands(click.Group):
-    """Commands in the order of use; those not available are refused by name and not listed."""
+    """Commands in the order of use."""
 
     def list_commands(self, ctx: click.Context) -> list[str]:
-        """Names in the order of definition."""
-        return list(self.commands)
-
-    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
-        """The command, or one that refuses where the name is known and not available."""
-        return super().get_command(ctx, cmd_name) or (_refusing(cmd_name) if cmd_name in UNAVAILABLE else None)
-
-
-def _refusing(name: str) -> click.Command:
-    def refuse(words: tuple[str, ...]) -> None:
-        from guys.errors import UnavailableError
-
-        raise UnavailableError(f"'{name}'")
-
-    words = click.Argument(["words"], nargs=-1, type=click.UNPROCESSED)
-    settings = {"ignore_unknown_options": True, "help_option_names": []}
-    return click.Command(name, callback=refuse, params=[words], context_settings=settings, hidden=True)
+        """Their names."""
+        return list(ORDER)
 
 
 def computing(files: str, out_required: bool = False, many: bool = False) -> Callable[[Command], Command]:

@@ -312,4 +312,3 @@ def test_the_guide_names_every_command_and_option() -> None:
     for name, command in cli.commands.commands.items():
         assert f"`guys {name}" in text
         assert not [opt for param in command.params for opt in param.opts if opt.startswith("--") and f"`{opt}" not in text]
-    assert not [name for name in cli.UNAVAILABLE if f"`{name}`" not in text]
