@@ -260,6 +260,19 @@ def field(
 
 
 @commands.command()
+@computing("stages.json, stages.csv and the figure")
+def stages(file: str, out: str | None, as_json: bool, units: str) -> int:
+    """Solve every stage of the building up: what stands, and the wind each may see.
+
+    Exit status: 0 every stage is within the allowables in its wind; 3 something is past its allowable at some stage; 4 some stage falls;
+    1 and 2 as ever.
+    """
+    from guys.doors.stages import stages_command
+
+    return stages_command(file, out, as_json, units)  # type: ignore[arg-type]
+
+
+@commands.command()
 def schema() -> None:
     """Print the JSON Schema of a scenario, for editors."""
     import json

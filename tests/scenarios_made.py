@@ -65,6 +65,7 @@ UNITS: dict[str, dict[str, str]] = {
     "case": {"temperature": "degC"},
     "allowables": {"lean": "deg"},
     "lost": {"lean": "deg"},
+    "stage": {"up_to": "m", "wind": "m/s", "temperature": "degC"},
     "ranges": {"level": "m", "temperature": "K"},
 }  # fmt: skip
 """Table: unit of each of its keys that is a quantity."""

@@ -26,14 +26,16 @@ from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
 from guys import cli, parse_scenario, solve
-from guys.exchange import comparison, losses, matters, result, tables
+from guys.exchange import comparison, losses, matters, result, stages, tables
 from guys.exchange import field as crew
-from guys.scenario import draft, schema, starters
+from guys.scenario import Scenario, draft, schema, starters
+from guys.scenario.stage import Stage
 from guys.studies.cells import WORDS
 from guys.studies.compare import compare
 from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
+from guys.studies.stages import Stages, build_up
 
 REPOSITORY = Path(__file__).parent.parent
 PAGES = [REPOSITORY / "README.md", REPOSITORY / "DEVELOPERS.md", *sorted((REPOSITORY / "docs").glob("*.md"))]
@@ -211,6 +213,7 @@ TABLES = {
     "Limit": "[limit]`",
     "FieldWork": "[field]`",
     "Rigged": "[field]`",
+    "Stage": "[[stage]]`",
 }
 
 
@@ -258,7 +261,14 @@ def test_the_guide_names_every_key_and_column_of_the_results() -> None:
     assert not [column for head in heads for column in head if column not in known]
 
 
-@pytest.mark.parametrize(("study", "told"), [(field, crew), (lose, losses), (weigh, matters)], ids=["field", "lost", "matters"])
+def built_up(scenario: Scenario) -> Stages:
+    return build_up(scenario.model_copy(update={"stage": (Stage(name="whole"),)}))
+
+
+STUDIES = {"field": (field, crew), "lost": (lose, losses), "matters": (weigh, matters), "stages": (built_up, stages)}
+
+
+@pytest.mark.parametrize(("study", "told"), STUDIES.values(), ids=STUDIES)
 def test_the_guide_names_every_key_and_column_of_the_studies(study: Any, told: Any) -> None:
     found = study(parse_scenario(starters.text("boom")))
     known = code_words("docs/user-guide.md")

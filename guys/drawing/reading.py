@@ -6,6 +6,7 @@ Nothing here computes mechanics; a number is picked, compared or put into words.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from itertools import pairwise
 from math import isfinite, nan
@@ -226,14 +227,17 @@ def _run(solution: Solution, spar: SparLine) -> Array:
 
 
 def look_bearing(solution: Solution) -> float:
-    """Bearing [rad] the elevation looks toward to show most: anchors and spars spread out, none hidden behind another.
+    """Bearing [rad] the elevation looks toward to show most."""
+    return most_shown(base_point(solution)[:2], solution.anchors.position[:, :2], [_run(solution, spar) for spar in solution.spars])
+
+
+def most_shown(foot: Array, anchors: Sequence[Array] | Array, runs: Sequence[Array]) -> float:
+    """Bearing [rad] to look toward that shows most: anchors and spars spread out, none hidden behind another; all in plan, (2,) each.
 
     Of bearings every 5°, the one with the least sum over pairs of anchors (the base among them) of exp(-gap / 0.1), gap their distance
     on the paper in widths of the site: it parts what would coincide.  Spars that lean or reach out add their length on the paper.
     """
-    foot = base_point(solution)[:2]
-    ends = [p[:2] - foot for p in solution.anchors.position]
-    runs = [_run(solution, spar) for spar in solution.spars]
+    ends = [place - foot for place in anchors]
     size = max([float(np.hypot(*p)) for p in [*ends, *runs]] + [1e-9])
     points = np.array([np.zeros(2), *ends])
     turns = np.deg2rad(np.arange(-90.0, 90.0, 5.0))

@@ -25,6 +25,7 @@ from guys.scenario.parts import Part
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import Surface
 from guys.scenario.site_table import SiteEntry
+from guys.scenario.stage import Stage
 from guys.scenario.table import Model
 from guys.scenario.wind_entry import WindEntry
 
@@ -191,3 +192,5 @@ class ScenarioFile(Model):
     """What the limit study is asked."""
     field: FieldWork = FieldWork()
     """For `guys field`."""
+    stage: list[Stage] = []
+    """States on the way up, in the order they are built."""

@@ -38,6 +38,7 @@ from guys.scenario.quantity import FROM_FILE, shown
 from guys.scenario.ranges import Ranges
 from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.site_table import SiteEntry
+from guys.scenario.stage import Stage
 from guys.scenario.unavailable import without
 from guys.scenario.wind_entry import WindEntry
 
@@ -72,6 +73,7 @@ class Draft:
     ranges: Ranges | None
     limit: Limit | None
     field: FieldWork | None
+    stage: tuple[Stage | None, ...]
 
     def spars(self) -> dict[str, tuple[int, Spar]]:
         """Readable spars by name, with their index; of two with one name the first."""

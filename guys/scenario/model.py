@@ -27,6 +27,7 @@ from guys.scenario.parts import Part
 from guys.scenario.plate import Plate
 from guys.scenario.ranges import Ranges
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
+from guys.scenario.stage import Stage
 from guys.scenario.table import Model
 from guys.site import Site
 
@@ -466,6 +467,7 @@ class Scenario(Model):
     ranges: Ranges = Ranges()
     limit: Limit = Limit()
     field: FieldWork = FieldWork()
+    stage: tuple[Stage, ...] = ()
     sha256: str
     """Digest of the file's bytes."""
     path: str | None = None

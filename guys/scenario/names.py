@@ -23,21 +23,24 @@ Known = Collection[str] | None
 def findings(draft: Draft) -> Iterator[Finding]:
     """Every name given twice and every reference that leads nowhere."""
     document = draft.document
-    cable_names = dict(_cable_names(document))
+    named = dict(cable_names(document))
     spars, anchors = _known(document, "spar"), _known(document, "anchor")
     levels = all(_text(level, "name") or _text(level, "at") for _, level in items(document, "guy_level"))
-    cables = dict.fromkeys(cable_names.values()) if levels and _known(document, "cable") is not None else None
+    cables = dict.fromkeys(named.values()) if levels and _known(document, "cable") is not None else None
     yield from _twice("spar", _names(document, "spar"))
     yield from _twice("anchor", _names(document, "anchor"))
     yield from _twice("case", _names(document, "case"))
+    yield from _twice("stage", _names(document, "stage"))
     yield from _twice("fitting", _fitting_names(document))
-    yield from _twice("cable", cable_names, "; give the guy level a name")
+    yield from _twice("cable", named, "; give the guy level a name")
     yield from _reserved(document)
     yield from _feet(document, spars)
     yield from _ends(document, spars, anchors)
     yield from _ropes(document)
     yield from _materials(document)
-    yield from _taken_away(document, cables)
+    for table, key in (("case", "without"), ("case", "bare"), ("stage", "cables")):
+        yield from _chosen(document, table, key, cables)
+    yield from _raised(document, spars)
     yield from _holdfasts(document)
     yield from _combined(draft, list(cables or ()))
     yield from _parts(document)
@@ -62,7 +65,8 @@ def _fitting_names(document: Mapping[str, Any]) -> dict[Key, str]:
     return {("spar", index, *key): name for index, spar in items(document, "spar") for key, name in _names(spar, "fitting").items()}
 
 
-def _cable_names(document: Mapping[str, Any]) -> Iterator[tuple[Key, str]]:
+def cable_names(document: Mapping[str, Any]) -> Iterator[tuple[Key, str]]:
+    """Every cable's name, with the key it stands at or comes from."""
     for index, level in items(document, "guy_level"):
         name, at, anchors = _text(level, "name"), _text(level, "at"), level.get("to")
         prefix = name or (" ".join(at.split()) if at else None)
@@ -182,13 +186,20 @@ def _holdfasts(document: Mapping[str, Any]) -> Iterator[Finding]:
         yield from _unknown(("anchor", index, "holdfast"), "holdfast", anchor.get("holdfast"), known, "; give [holdfast.NAME]")
 
 
-def _taken_away(document: Mapping[str, Any], cables: Known) -> Iterator[Finding]:
-    for index, case in items(document, "case"):
-        for kind in ("without", "bare"):
-            named, seen = case.get(kind), set[str]()
-            for place, name in enumerate(named if isinstance(named, list) else ()):
-                key = ("case", index, kind, place)
-                yield from _unknown(key, "cable", name, cables)
-                if isinstance(name, str) and name in seen:
-                    yield Finding(key, f'cable "{clipped(name)}" is named twice')
-                seen.add(name if isinstance(name, str) else "")
+def _chosen(document: Mapping[str, Any], table: str, kind: str, cables: Known) -> Iterator[Finding]:
+    """Cables picked out by a list of a table."""
+    for index, entry in items(document, table):
+        named, seen = entry.get(kind), set[str]()
+        for place, name in enumerate(named if isinstance(named, list) else ()):
+            key = (table, index, kind, place)
+            yield from _unknown(key, "cable", name, cables)
+            if isinstance(name, str) and name in seen:
+                yield Finding(key, f'cable "{clipped(name)}" is named twice')
+            seen.add(name if isinstance(name, str) else "")
+
+
+def _raised(document: Mapping[str, Any], spars: Known) -> Iterator[Finding]:
+    for index, stage in items(document, "stage"):
+        up_to = stage.get("up_to")
+        for name in up_to if isinstance(up_to, dict) else ():
+            yield from _unknown(("stage", index, "up_to", name), "spar", name, spars)

@@ -26,6 +26,7 @@ from guys.scenario import (
     plausible,
     resolve,
     rigging,
+    staged,
     unavailable,
     weather,
 )  # fmt: skip
@@ -182,6 +183,7 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from field.findings(tables)
     yield from patches.findings(tables)
     yield from layouts.findings(tables, site)
+    yield from staged.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -254,6 +256,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         ranges=_there(tables.ranges),
         limit=_there(tables.limit),
         field=_there(tables.field),
+        stage=tuple(_present(tables.stage)),
         sha256=digest,
         path=path,
         notes=(*(() if wind is None else wind.notes), *combinations.notes(tables.combinations, tables.ice is not None)),

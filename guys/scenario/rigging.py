@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from itertools import combinations
 
 from guys import units
-from guys.scenario import drawn, frame
+from guys.scenario import drawn, frame, names
 from guys.scenario.anchor_entry import AnchorEntry
 from guys.scenario.document import CableEntry, GuyLevel
 from guys.scenario.draft import Draft
@@ -84,6 +84,13 @@ def _points(entry: GuyLevel | CableEntry) -> Iterator[tuple[Key, SparPoint]]:
     yield ("from",), entry.from_
     if isinstance(entry.to, SparPoint):
         yield ("to",), entry.to
+
+
+def cable_points(draft: Draft) -> dict[str, list[SparPoint]]:
+    """The points of spars that cables are made fast to, by the name of the cable."""
+    entries = dict(_entries(draft))
+    known = [(name, entries[key[:2]]) for key, name in names.cable_names(draft.document) if key[:2] in entries]
+    return {name: [point for _, point in _points(entry)] for name, entry in known}
 
 
 def _position(anchor: AnchorEntry, key: Key) -> Iterator[Finding]:

@@ -104,7 +104,6 @@ class _Worst:
         a, b = getattr(self.listed, group)[:, item], getattr(self.swept, group)[:, item]
         return extremes.extreme(a, self.listed_lines, b, self.swept_lines)
 
-
     def of_service(self) -> _Worst:
         """Those of service cases, still air among them."""
         return _Worst(*_service(self.listed, self.listed_lines), *_service(self.swept, self.swept_lines))
