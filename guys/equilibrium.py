@@ -28,6 +28,8 @@ from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, turn, 
 from guys.structure import Points, Structure
 
 Index = NDArray[np.int64]
+UPSIDE_DOWN = 1e-15
+"""Least 1 + cos of a foot's tilt that is more than rounding: turned over by 180° there is no spin to undo (`Problem.spin_of_tilts`)."""
 
 
 @dataclass(frozen=True)
@@ -350,7 +352,8 @@ class Problem:
             tilts, first = s.tilts[row], 3 * row
             turned_x, turned_y = turned(state.psi[:, s.foot[k]], x), turned(state.psi[:, s.foot[k]], y)
             c[:, :, first] = flat[s.spin_columns[row]].T
-            a[:, tilts, first] = -np.stack([turned_x @ t, turned_y @ t], axis=-1) / (turned_x @ x + turned_y @ y)[:, None]
+            upright = np.maximum(turned_x @ x + turned_y @ y, UPSIDE_DOWN)
+            a[:, tilts, first] = -np.stack([turned_x @ t, turned_y @ t], axis=-1) / upright[:, None]
             half = 0.5 * (whole[:, s.foot[k], 3:] @ t)
             c[:, tilts[0], first + 1] = c[:, tilts[1], first + 2] = 1.0
             a[:, tilts[1], first + 1], a[:, tilts[0], first + 2] = -half, half

@@ -70,7 +70,7 @@ PLUMB_TURN = 0.01
 """[rad] greatest turn in one round of a plumb setting, which stays close to the drawing."""
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Setting:
     """length (cable,) [m] unstressed at the setting temperature; judged: the setting case alone; loads; problem of that one case."""
 

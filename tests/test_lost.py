@@ -250,3 +250,29 @@ def test_json_and_csv_hold_every_loss_case_and_wind() -> None:
     assert len(losses.as_table(found).splitlines()) == 1 + 10 * 38
     least = min((c for c in told["losses"][1]["cells"] if c.get("factor")), key=lambda c: c["factor"] / c["factor_required"])
     assert told["losses"][1]["least_factor"]["factor"] == least["factor"]
+
+
+# ---------------------------------------------------------------- a case without a cable
+
+
+def test_a_case_without_a_cable_has_its_path_from_still_air_without_it() -> None:
+    """The mast of the far lean, solved as a case in a batch that is not told where to start: what `guys lost` finds, and not a fall."""
+    document = made.ring_mast(4, 0.0, level=2.0, tension=300.0, wind=made.wind(0.0, speed=45.0))
+    setting = made.setting(document)
+    lines = [replace(line, without=("guy A",)) for line in lines_of(setting.problem.structure.scenario)]
+    batch = solve_lines(setting, [*lines, *lines_of(setting.problem.structure.scenario)], False)
+    assert batch.code.tolist() == [stability.STABLE] * 2
+    found = lose(document)
+    here = found.cells[row(found, "guy A")]
+    pull = np.linalg.norm(batch.forces.pull[0], axis=-1)
+    assert pull == pytest.approx(here.pull[at(found, 0.0)], rel=1e-9)  # two searches for one state
+
+
+def test_where_still_air_without_a_cable_does_not_stand_the_wind_may_still_hold_it_up() -> None:
+    """A pinned mast on guys to north, southeast and southwest: without the north one it falls in still air, and a wind from the south
+    that presses it north stands against the other two (statics); the case is asked in that wind."""
+    document = made.ring_mast(3, 180.0, wind=made.wind(180.0, speed=30.0))
+    setting = made.setting(document)
+    line = replace(lines_of(setting.problem.structure.scenario)[0], without=("guy A",))
+    batch = solve_lines(setting, [line, replace(line, wind=0.0, wind_from=math.nan)], False)
+    assert batch.code.tolist() == [stability.STABLE, stability.NONE]

@@ -288,3 +288,10 @@ def test_first_lengths_start_on_the_drawn_geometry() -> None:
     s = structure.build(made.scenario(hung(200.0)))
     found = initial.find(s)
     assert anchor_end(found.length) == pytest.approx(200.0, rel=MET)
+
+
+def test_a_mast_that_the_search_turns_upside_down_falls_and_does_not_crash() -> None:
+    """A pinned mast pulled over by its one guy: at just 180° no spin about the drawn axis undoes one of the tilt."""
+    section = made.weightless(10.0) | {"mass": 20.0}
+    document = made.stayed(made.spar(length=10.0, rigid=True, section=[section]), 0.0, tension=300.0, straight=True)
+    assert not made.setting(document).stands

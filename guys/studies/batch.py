@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, fields, replace
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
@@ -14,7 +15,7 @@ from guys import band, recovery, stability
 from guys.checks import demands, spars
 from guys.checks.demands import Demands
 from guys.equilibrium import Problem, State
-from guys.loads import CaseLine, LoadCases
+from guys.loads import CaseLine, LoadCases, setting_line
 from guys.results import SparLine
 from guys.rotation import Array, turned
 from guys.setting import Setting
@@ -97,7 +98,8 @@ def solve_lines(
     start: Start | None = None,
 ) -> Batch:
     """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads;
-    `start`: of each line's path, where that is not the setting."""
+    `start`: of each line's path, where that is not the one of `starts`."""
+    start = starts(setting, lines) if start is None else start
     parts = []
     step = max(1, CHUNK // max((len(line.states()) for line in lines), default=1))
     for first in range(0, len(lines), step):
@@ -105,14 +107,40 @@ def solve_lines(
         problem = setting.under(states)
         if change is not None:
             problem = replace(problem, loads=change(problem.loads, first + asked.owner))
-        state, loads = setting.state, setting.loads
-        if start is not None:
-            state, loads = start[0].take(first + asked.owner), start[1].take(first + asked.owner)
+        state, loads = start[0].take(first + asked.owner), start[1].take(first + asked.owner)
         judged = stability.judge(problem, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
         parts.append(recover(problem, judged, detail, asked))
         if progress is not None:
             progress(min(first + step, len(lines)), len(lines))
     return join(parts)
+
+
+def as_set(setting: Setting, lines: int) -> Start:
+    """The setting as the start of so many lines."""
+    rows = np.zeros(lines, dtype=np.int64)
+    return setting.state.take(rows), setting.loads.take(rows)
+
+
+def starts(setting: Setting, lines: Sequence[CaseLine]) -> Start:
+    """Where the path of every line goes out from: the setting; without cables, still air without them, where that stands.
+
+    So a cable that is away has faded before the wind rises, and its fading is followed once, finely, for all winds.
+    """
+    sets = tuple(dict.fromkeys(((), *(line.without for line in lines))))
+    if len(sets) == 1:
+        return as_set(setting, len(lines))
+    calm, judged = at_rest(setting, sets)
+    row = {s: k if judged.code[k] <= stability.NEUTRAL else 0 for k, s in enumerate(sets)}
+    rows = np.array([row[line.without] for line in lines], dtype=np.int64)
+    return judged.state.take(rows), calm.loads.take(rows)
+
+
+@lru_cache(maxsize=8)
+def at_rest(setting: Setting, sets: tuple[tuple[str, ...], ...]) -> tuple[Problem, stability.Judged]:
+    """Still air, dead load alone, without each set of cables."""
+    still = setting_line(setting.problem.structure.scenario)
+    calm = setting.under([replace(still, without=s) for s in sets])
+    return calm, stability.judge(calm, setting.state, setting.loads)
 
 
 def recover(problem: Problem, judged: stability.Judged, detail: bool, asked: Asked | None = None) -> Batch:

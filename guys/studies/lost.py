@@ -30,7 +30,7 @@ from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint
 from guys.setting import Setting, find
 from guys.structure import build
-from guys.studies.batch import Batch, Change, Progress, Start, recover, solve_lines
+from guys.studies.batch import Batch, Change, Progress, Start, as_set, at_rest, recover, solve_lines
 from guys.studies.cells import FALLS, Cells, cells_of, joined, without_loads
 from guys.studies.directions import round_lines
 from guys.version import __version__
@@ -86,11 +86,9 @@ def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
         return _nothing_stands(setting, losses, lines)
     whole = solve_lines(setting, lines, False, progress)
     sets = list(dict.fromkeys(loss.cables for loss in losses[1:]))
-    calm = setting.under([replace(lines[0], without=s) for s in sets])
-    judged = stability.judge(calm, setting.state, setting.loads)
-    at_rest = cells_of(recover(calm, judged, detail=False))
+    calm, judged = at_rest(setting, tuple(sets))
     study = _Study(setting, whole, judged.state, calm.loads, progress)
-    first = study.swung(sets, list(range(len(sets))), slice(0, 1), at_rest)
+    first = study.swung(sets, list(range(len(sets))), slice(0, 1), cells_of(recover(calm, judged, detail=False)))
     standing = [k for k, s in enumerate(sets) if first[s].verdict[0] < FALLS]
     rest = study.solved(sets, standing)
     found = {s: joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
@@ -152,11 +150,13 @@ class _Study:
         cells = cells_of(batch)
         lost = np.flatnonzero(batch.code == stability.FAILED)
         if len(lost):
-            cells = cells.put(lost, cells_of(solve_lines(self.setting, [wanted[k] for k in lost], False, self.progress)))
+            start = as_set(self.setting, len(lost))
+            again = solve_lines(self.setting, [wanted[k] for k in lost], False, self.progress, start=start)
+            cells = cells.put(lost, cells_of(again))
         return self.swung(sets, some, slice(1, None), cells)
 
     def swung(
-        self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice, at_rest: Cells
+        self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice, rest: Cells
     ) -> dict[tuple[str, ...], Cells]:
         """The cells at rest of some sets in some lines, or the worse of rest and the far point of the swing where that is asked for."""
         n, sudden = len(self.whole.lines[lines]), self.setting.problem.structure.scenario.lost.sudden
@@ -164,8 +164,8 @@ class _Study:
             wanted, start = self._without(sets, some, lines)
             rows = np.tile(np.arange(len(self.whole.lines))[lines], len(some))
             swing = swing_of(self.setting, self.whole, rows, sudden)
-            at_rest = _worse(at_rest, cells_of(solve_lines(self.setting, wanted, False, self.progress, swing, start)))
-        return {sets[s]: at_rest.take(range(k * n, (k + 1) * n)) for k, s in enumerate(some)}
+            rest = _worse(rest, cells_of(solve_lines(self.setting, wanted, False, self.progress, swing, start)))
+        return {sets[s]: rest.take(range(k * n, (k + 1) * n)) for k, s in enumerate(some)}
 
     def _without(self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice) -> tuple[list[CaseLine], Start]:
         """Lines without each of some sets, and where their paths go out from."""

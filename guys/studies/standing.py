@@ -36,7 +36,7 @@ from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
 from guys.setting import Setting, find
 from guys.structure import Structure, build
 from guys.studies import directions
-from guys.studies.batch import Batch, Progress, join, recover, solve_lines
+from guys.studies.batch import Batch, Progress, join, recover, solve_lines, starts
 from guys.version import __version__
 
 STATES: tuple[State, ...] = ("stable", "neutral", "unstable", "none", "none")
@@ -293,7 +293,7 @@ def _self_check(setting: Setting, listed: Batch, cables: tuple[CableWorst, ...],
         problem, judged = setting.problem, setting.judged
     else:
         problem = setting.under(line.states()[:1])
-        judged = stability.judge(problem, setting.state, setting.loads)
+        judged = stability.judge(problem, *starts(setting, [line]))
     other = resolve.resolve(problem, judged.state)
     return SelfCheck(balance, other.verdict, other.difference, line.name, line.wind_from)
 
