@@ -164,8 +164,9 @@ def list_(kind: str, words: tuple[str, ...], as_json: bool, units: str) -> int:
 
 @commands.command()
 @computing("lost.json, lost.csv and the figure")
+@click.option("--winds", is_flag=True, help="Find the wind still stood after every loss too; takes ten times as long.")
 @in_one_layout
-def lost(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
+def lost(file: str, out: str | None, as_json: bool, units: str, winds: bool, layout: str | None) -> int:
     """Take every cable and every anchor away in turn: what stands, and what falls.
 
     Exit status: 0 all stands within the allowables; 3 something falls or passes its allowable when a cable or anchor is lost; 4 the
@@ -173,7 +174,7 @@ def lost(file: str, out: str | None, as_json: bool, units: str, layout: str | No
     """
     from guys.doors.lost import lost_command
 
-    return lost_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
+    return lost_command(file, out, as_json, units, layout, winds)  # type: ignore[arg-type]
 
 
 @commands.command("raise")
@@ -279,7 +280,12 @@ def field(
 
 @commands.command()
 @computing("stages.json, stages.csv and the figure")
+<<<<<<< HEAD
 def stages(file: str, out: str | None, as_json: bool, units: str) -> int:
+=======
+@in_one_layout
+def stages(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
+>>>>>>> main
     """Solve every stage of the building up: what stands, and the wind each may see.
 
     Exit status: 0 every stage is within the allowables in its wind; 3 something is past its allowable at some stage; 4 some stage falls;
@@ -287,6 +293,7 @@ def stages(file: str, out: str | None, as_json: bool, units: str) -> int:
     """
     from guys.doors.stages import stages_command
 
+<<<<<<< HEAD
     return stages_command(file, out, as_json, units)  # type: ignore[arg-type]
 
 
@@ -317,6 +324,9 @@ def search(file: str, out: str | None, as_json: bool, units: str, layout: str | 
     from guys.doors.search import search_command
 
     return search_command(file, workers, out, as_json, units, layout)  # type: ignore[arg-type]
+=======
+    return stages_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
+>>>>>>> main
 
 
 @commands.command()

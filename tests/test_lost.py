@@ -14,9 +14,10 @@ from hypothesis import strategies as some
 
 from guys import cli, stability
 from guys.exchange import losses
-from guys.loads import lines_of
+from guys.loads import lines_of, setting_line
 from guys.studies import cells, lost
 from guys.studies.batch import solve_lines
+from guys.studies.limit import limits
 
 
 def lose(document: made.Document) -> lost.Lost:
@@ -276,3 +277,29 @@ def test_where_still_air_without_a_cable_does_not_stand_the_wind_may_still_hold_
     line = replace(lines_of(setting.problem.structure.scenario)[0], without=("guy A",))
     batch = solve_lines(setting, [line, replace(line, wind=0.0, wind_from=math.nan)], False)
     assert batch.code.tolist() == [stability.STABLE, stability.NONE]
+
+
+# ---------------------------------------------------------------- the wind still stood
+
+
+def test_the_wind_still_stood_is_the_limit_of_a_case_without_the_cable(
+    monkeypatch: pytest.MonkeyPatch, tmp_path: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    """The same as `guys limit` of a file whose one case has the guy away; nothing where it falls in still air."""
+    monkeypatch.setattr(lost, "round_lines", lambda scenario: (setting_line(scenario), *lines_of(scenario)))
+    document = made.ring_mast(4, 0.0, 200.0, level=2.0, tension=300.0, allowables={"lean": 20.0})
+    found = lost.lose(made.scenario(document), winds=True)
+    alone = limits(made.scenario({**document, "case": [{"name": "design", "without": ["guy A"]}]}), apart=2 * math.pi)
+    mine = found.winds[row(found, "guy A")]
+    for a, b in zip(mine, [alone.circle[k] for k in alone.listed], strict=True):
+        assert (a.governs, a.wind_from) == (b.governs, b.wind_from)
+        assert a.speed == pytest.approx(b.speed, rel=1e-4, nan_ok=True)  # to which a limit is found
+    least = found.least_wind(row(found, "guy A"))
+    assert least is not None
+    assert least.known == min(limit.known for limit in mine)
+    assert len(losses.as_dict(found)["losses"][1]["limits"]) == 2
+    file = tmp_path / "a.toml"
+    file.write_text(made.text(made.ring_mast(3, 0.0)))
+    assert cli.run(["lost", str(file), "--winds"]) == 3
+    told = capsys.readouterr().out.split("The wind still stood", 1)[1]
+    assert "no wind" in next(line for line in told.splitlines() if "cable guy A" in line)

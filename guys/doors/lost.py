@@ -6,6 +6,7 @@ anchor is lost.
 
 from __future__ import annotations
 
+import math
 import sys
 from pathlib import Path
 from typing import TextIO
@@ -15,21 +16,21 @@ from guys.checks.alarms import CAUTIONS
 from guys.doors.common import in_layout, pictures, store
 from guys.drawing import rounding
 from guys.drawing.losses import draw_losses, load_row
-from guys.drawing.rounding import Units, tongue
+from guys.drawing.rounding import Tongue, Units, tongue
 from guys.exchange import losses
 from guys.scenario import read_scenario
 from guys.studies.cells import FALLS, NOT_FOUND, PAST, WORDS
 from guys.studies.lost import Lost, judged_by, lose
 
 
-def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
-    """Take everything away in turn; files go to the directory `out` where one is given.
+def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None, winds: bool = False) -> int:
+    """Take everything away in turn, `winds`: with the wind still stood; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
-        found = lose(scenario, tick)
+        found = lose(scenario, tick, winds)
     contents = {"lost.json": losses.as_text(found).encode(), "lost.csv": losses.as_table(found).encode()}
     written = [] if out is None else store(Path(out), contents | pictures("lost", draw_losses(found, "A3", units), found.scenario.title))
     if as_json:
@@ -48,6 +49,23 @@ def status(found: Lost) -> int:
     return 4 if (verdict[0] >= FALLS).any() else 3 if (verdict >= PAST).any() else 0
 
 
+def _winds(found: Lost, speech: Tongue, stream: TextIO) -> None:
+    """The lowest wind after every loss at which something passes its allowable, and at which equilibrium is lost."""
+    head = ["lost", "limit", "wind from", "governed by", "equilibrium lost", "wind from"]
+    rows = []
+    for k, loss in enumerate(found.losses):
+        least, falls = found.least_wind(k), found.least_lost(k)
+        first = ["no wind", "", "falls in still air"] if found.still[k] else [rounding.ABSENT, "", ""]
+        if least is not None:
+            speed = rounding.ABSENT if math.isnan(least.speed) else speech.say(rounding.speed_below, least.speed)
+            first = [speed, rounding.bearing(least.wind_from), least.why]
+        second = [rounding.ABSENT, ""]
+        if falls is not None:
+            second = [speech.say(rounding.speed_below, falls.lost), rounding.bearing(falls.wind_from)]
+        rows.append([loss.words, *first, *second])
+    terminal.table("The wind still stood, from the worst direction", head, rows, stream)
+
+
 def report(found: Lost, units: Units, stream: TextIO) -> None:
     """One line a loss: in how many cases and winds it falls, and the worst of those in which it stands."""
     stream.write(f"{found.scenario.title}\n{len(found.losses) - 1} losses, {len(found.lines)} cases and winds each\n")
@@ -58,5 +76,7 @@ def report(found: Lost, units: Units, stream: TextIO) -> None:
         counts = ["all" if found.still[k] else str(int((verdict >= FALLS).sum())), str(int((verdict == PAST).sum()))]
         rows.append([loss.words, WORDS[verdict[0]], *counts, *load_row(found, k, tongue(units), rounding.load)])
     terminal.table("What is lost, and what stands", head, rows, stream)
+    if found.winds:
+        _winds(found, tongue(units), stream)
     falls = [f"{loss.words}: {cells.reason[0]}" for loss, cells in zip(found.losses, found.cells, strict=True) if cells.reason[0]]
     terminal.listed({"Falls in still air when lost": falls, "How": judged_by(found), "Cautions": CAUTIONS}, stream)

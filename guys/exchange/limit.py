@@ -26,15 +26,15 @@ def as_dict(limits: Limits) -> dict[str, Any]:
         "scenario_sha256": scenario.sha256,
         "wind": {"speed_m_s": wind.speed, "averaging_s": wind.averaging, "height_m": wind.height},
         "looked_up_to_m_s": limits.most,
-        "limits": [_limit(limits.circle[k], cables) for k in limits.listed],
-        "worst": [_limit(limit, cables) for limit in limits.worst],
+        "limits": [limit_as_dict(limits.circle[k], cables) for k in limits.listed],
+        "worst": [limit_as_dict(limit, cables) for limit in limits.worst],
         "actions": [{"share": share, "speed_m_s": speed} for share, speed in limits.actions],
         "lower_in_s": scenario.limit.lower_in,
         "first_drops": [
             {"case": case, "cable": cable, "drops_m_s": number(speed), "wind_from_deg": bearing(toward)}
             for case, cable, speed, toward in limits.first_drops
         ],
-        "circle": [_limit(limit, cables) for limit in limits.circle],
+        "circle": [limit_as_dict(limit, cables) for limit in limits.circle],
         "not_judged": list(limits.not_judged),
         "notes": list(limits.notes),
         "cautions": list(limits.cautions),
@@ -46,7 +46,8 @@ def as_text(limits: Limits) -> str:
     return json.dumps(as_dict(limits), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
 
 
-def _limit(limit: Limit, cables: list[str]) -> dict[str, Any]:
+def limit_as_dict(limit: Limit, cables: list[str]) -> dict[str, Any]:
+    """One limit as plain numbers."""
     return {
         "case": limit.case,
         "wind_factor": limit.wind_factor,

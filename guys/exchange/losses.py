@@ -9,6 +9,7 @@ from typing import Any
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.limit import limit_as_dict
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.rotation import Array
@@ -51,7 +52,19 @@ def _loss(found: Lost, k: int) -> dict[str, Any]:
         "least_factor": None if worst is None else {**_where(found, worst), **_governing(found, cells, worst)},
         "greatest_tension": _greatest(found, cells.tension, "cable", [c.name for c in found.scenario.cable], "tension_N"),
         "greatest_pull": _greatest(found, cells.pull, "anchor", [a.name for a in found.scenario.anchor], "resultant_N"),
+        **_winds(found, k),
         "cells": [_cell(found, k, line) for line in range(len(found.lines))],
+    }
+
+
+def _winds(found: Lost, k: int) -> dict[str, Any]:
+    """The limits of a loss, the lowest apart; nothing where they were not asked for."""
+    if not found.winds:
+        return {}
+    cables, least = [c.name for c in found.scenario.cable], found.least_wind(k)
+    return {
+        "least_limit": None if least is None else limit_as_dict(least, cables),
+        "limits": [limit_as_dict(limit, cables) for limit in found.winds[k]],
     }
 
 
@@ -88,7 +101,7 @@ def as_table(found: Lost) -> str:
     """The text of `lost.csv`: a row a loss, case and direction."""
     head = [
         "lost", "name", "case", "wind_from_deg", "verdict", "solved", "governs", "factor", "factor_required", "greatest_tension_N", "cable",
-        "greatest_pull_N", "anchor", "reason",
+        "greatest_pull_N", "anchor", "speed_m_s", "equilibrium_lost_m_s", "reason",
     ]  # fmt: skip
     names = [c.name for c in found.scenario.cable], [a.name for a in found.scenario.anchor]
     rows = []
@@ -100,5 +113,7 @@ def as_table(found: Lost) -> str:
             for loads, some in zip((cells.tension[line], cells.pull[line]), names, strict=True):
                 most = None if len(loads) == 0 or np.isnan(loads).all() else int(np.nanargmax(loads))
                 row += [None, None] if most is None else [float(loads[most]), some[most]]
+            limit = found.limit_at(k, line)
+            row += [None, None] if limit is None else [number(limit.speed), number(limit.lost)]
             rows.append([*row, cell.get("reason", "")])
     return as_csv(head, rows)

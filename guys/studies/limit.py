@@ -29,6 +29,7 @@ from guys.loads import CaseLine, lines_of
 from guys.path import Paths, Stops, crossings, follow
 from guys.rotation import Array
 from guys.scenario import Scenario
+from guys.scenario.model import Wind
 from guys.setting import Setting, find
 from guys.structure import build
 from guys.studies import ending, peaks
@@ -60,11 +61,11 @@ def limits(scenario: Scenario, *, apart: float = COARSE, progress: Progress | No
         fault = Fault(scenario.path, None, None, "case", "no case has wind, so there is no limit to find; give [wind] and a case with wind")
         raise ScenarioError([fault])
     setting = find(build(scenario))
-    most = max(MOST, MOST_TIMES * scenario.wind.speed)
+    most = most_of(scenario.wind)
     given = scenario.wind.directions
     bearings = sorted([*given, *between(given, apart)])
     templates = [line for line in lines_of(scenario, [0.0]) if line.wind > 0]
-    circle = _solved(setting, [replace(t, wind_from=b) for t in templates for b in bearings], most, progress)
+    circle = solved(setting, [replace(t, wind_from=b) for t in templates for b in bearings], most, progress)
     listed = tuple(k for k, limit in enumerate(circle) if any(limit.wind_from == b for b in given))
     worst = _worst(setting, templates, circle, most, progress)
     table = recover(setting.problem, setting.judged, detail=False).demands
@@ -73,7 +74,13 @@ def limits(scenario: Scenario, *, apart: float = COARSE, progress: Progress | No
     return Limits(scenario, __version__, tuple(circle), listed, worst, most, not_judged, CAUTIONS)
 
 
-def _solved(setting: Setting, lines: Sequence[CaseLine], most: float, progress: Progress | None) -> list[Limit]:
+def most_of(wind: Wind) -> float:
+    """Greatest speed looked at [m/s]."""
+    return max(MOST, MOST_TIMES * wind.speed)
+
+
+def solved(setting: Setting, lines: Sequence[CaseLine], most: float, progress: Progress | None) -> list[Limit]:
+    """The limit of every line with wind, each looked for up to the speed `most`."""
     if not setting.stands:
         reason = recover(setting.problem, setting.judged, detail=False).reason[0] or ""
         failed = bool(setting.judged.code[0] == stability.FAILED)
@@ -105,7 +112,7 @@ class _Chunk:
 
     def limits(self, progress: Progress | None) -> list[Limit]:
         """The limit of every line; where no wind blows, a case is the same from every bearing."""
-        names = [line.name for line in self.lines]
+        names = [(line.name, line.without) for line in self.lines]
         first = np.array([names.index(name) for name in dict.fromkeys(names)])
         still = self.at(self.asked.start[first], np.zeros(len(first)))
         judged = stability.judge(still, self.setting.state, self.setting.loads)
@@ -220,7 +227,7 @@ def _worst(
     """The lowest limit of every case, narrowed down between the bearings of the circle."""
     known = {t.name: [limit for limit in circle if limit.case == t.name] for t in templates}
     lines = [replace(t, wind_from=b) for t in templates for b in _between_neighbours(known[t.name])]
-    for limit in _solved(setting, lines, most, progress):
+    for limit in solved(setting, lines, most, progress):
         known[limit.case].append(limit)
     return tuple(min(known[t.name], key=lambda limit: limit.known) for t in templates)
 

@@ -14,6 +14,7 @@ degrees round the circle; peaks between them are not narrowed down.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from itertools import combinations
@@ -24,6 +25,7 @@ from numpy.typing import NDArray
 
 from guys import stability
 from guys.equilibrium import State
+from guys.limits import Limit
 from guys.loads import CaseLine, LoadCases
 from guys.loads.parting import parted
 from guys.scenario import Scenario
@@ -33,6 +35,7 @@ from guys.structure import build
 from guys.studies.batch import Batch, Change, Progress, Start, as_set, at_rest, recover, solve_lines
 from guys.studies.cells import FALLS, Cells, cells_of, joined, without_loads
 from guys.studies.directions import round_lines
+from guys.studies.limit import most_of, solved
 from guys.version import __version__
 
 Kind = Literal["nothing", "cable", "anchor", "two cables", "two anchors"]
@@ -59,6 +62,7 @@ class Lost:
 
     losses : the first is nothing;  lines : the first is still air;  cells : (loss,) of the lines each;
     still : (loss,) falls in still air, so that its other lines were not solved
+    winds : (loss,) the limit of every line with wind, in their order; nothing where not asked for, or where it falls in still air
     """
 
     scenario: Scenario
@@ -67,6 +71,21 @@ class Lost:
     lines: tuple[CaseLine, ...]
     cells: tuple[Cells, ...]
     still: tuple[bool, ...]
+    winds: tuple[tuple[Limit, ...], ...] = ()
+
+    def limit_at(self, k: int, line: int) -> Limit | None:
+        """The limit of one loss in the case and from the bearing of a line; None where there is none."""
+        at = self.lines[line].name, self.lines[line].wind_from
+        return next((limit for limit in self.winds[k] if (limit.case, limit.wind_from) == at), None) if self.winds else None
+
+    def least_wind(self, k: int) -> Limit | None:
+        """The lowest limit of one loss; None where none was looked for."""
+        return min(self.winds[k], key=lambda limit: limit.known, default=None) if self.winds else None
+
+    def least_lost(self, k: int) -> Limit | None:
+        """That of the wind at which equilibrium is lost first; None where it is lost in none looked at."""
+        known = [limit for limit in self.winds[k] if not math.isnan(limit.lost)] if self.winds else []
+        return min(known, key=lambda limit: limit.lost, default=None)
 
     @property
     def verdict(self) -> NDArray[np.int64]:
@@ -74,8 +93,8 @@ class Lost:
         return np.array([c.verdict for c in self.cells])
 
 
-def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
-    """Take everything away in turn.
+def lose(scenario: Scenario, progress: Progress | None = None, winds: bool = False) -> Lost:
+    """Take everything away in turn; `winds`: and find how much wind is still stood, from every direction, as `guys limit` does.
 
     A structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets the initial tensions.
     """
@@ -94,7 +113,27 @@ def lose(scenario: Scenario, progress: Progress | None = None) -> Lost:
     found = {s: joined(first[s], rest[s]) if s in rest else _fallen(first[s], len(lines)) for s in sets}
     cells = (cells_of(whole), *(found[loss.cables] for loss in losses[1:]))
     still = tuple(len(loss.cables) > 0 and loss.cables not in rest for loss in losses)
-    return Lost(scenario, __version__, losses, lines, cells, still)
+    blown = _winds(setting, whole.lines, losses, still, progress) if winds else ()
+    return Lost(scenario, __version__, losses, lines, cells, still, blown)
+
+
+def _winds(
+    setting: Setting, lines: Sequence[CaseLine], losses: Sequence[Loss], still: Sequence[bool], progress: Progress | None
+) -> tuple[tuple[Limit, ...], ...]:
+    """The limits of every loss that stands in still air, each set of cables once, all together."""
+    wind = setting.problem.structure.scenario.wind
+    blowing = [line for line in lines if line.wind > 0 and not math.isnan(line.wind_from)]
+    sets = list(dict.fromkeys(loss.cables for loss, falls in zip(losses, still, strict=True) if not falls))
+    if wind is None or not blowing or not sets:
+        return ((),) * len(losses)
+    wanted = [_away(line, cables) for cables in sets for line in blowing]
+    each = solved(setting, wanted, most_of(wind), progress)
+    of = {cables: tuple(each[k * len(blowing) : (k + 1) * len(blowing)]) for k, cables in enumerate(sets)}
+    return tuple(() if falls else of[loss.cables] for loss, falls in zip(losses, still, strict=True))
+
+
+def _away(line: CaseLine, cables: tuple[str, ...]) -> CaseLine:
+    return replace(line, without=tuple(dict.fromkeys((*line.without, *cables))))
 
 
 def after_a_loss(scenario: Scenario) -> Scenario:
@@ -169,7 +208,7 @@ class _Study:
 
     def _without(self, sets: Sequence[tuple[str, ...]], some: Sequence[int], lines: slice) -> tuple[list[CaseLine], Start]:
         """Lines without each of some sets, and where their paths go out from."""
-        wanted = [replace(x, without=tuple(dict.fromkeys((*x.without, *sets[k])))) for k in some for x in self.whole.lines[lines]]
+        wanted = [_away(x, sets[k]) for k in some for x in self.whole.lines[lines]]
         rows = np.repeat(np.array(some, dtype=np.int64), len(self.whole.lines[lines]))
         return wanted, (self.state.take(rows), self.loads.take(rows))
 
