@@ -280,12 +280,8 @@ def field(
 
 @commands.command()
 @computing("stages.json, stages.csv and the figure")
-<<<<<<< HEAD
-def stages(file: str, out: str | None, as_json: bool, units: str) -> int:
-=======
 @in_one_layout
 def stages(file: str, out: str | None, as_json: bool, units: str, layout: str | None) -> int:
->>>>>>> main
     """Solve every stage of the building up: what stands, and the wind each may see.
 
     Exit status: 0 every stage is within the allowables in its wind; 3 something is past its allowable at some stage; 4 some stage falls;
@@ -293,8 +289,7 @@ def stages(file: str, out: str | None, as_json: bool, units: str, layout: str | 
     """
     from guys.doors.stages import stages_command
 
-<<<<<<< HEAD
-    return stages_command(file, out, as_json, units)  # type: ignore[arg-type]
+    return stages_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()
@@ -324,9 +319,6 @@ def search(file: str, out: str | None, as_json: bool, units: str, layout: str | 
     from guys.doors.search import search_command
 
     return search_command(file, workers, out, as_json, units, layout)  # type: ignore[arg-type]
-=======
-    return stages_command(file, out, as_json, units, layout)  # type: ignore[arg-type]
->>>>>>> main
 
 
 @commands.command()

@@ -50,38 +50,10 @@ def test_version(capsys: pytest.CaptureFixture[str]) -> None:
     assert capsys.readouterr().out == f"guys {__version__}\n"
 
 
-<<<<<<< HEAD
 def test_every_command_of_the_format_is_there() -> None:
     wanted = {"new", "validate", "schema", "solve", "plumb", "size", "setout", "compare", "search", "limit", "lost", "raise", "field"}
     ours = {"matters", "reserve", "stages"}
     assert wanted | {"record", "list"} | ours == set(cli.commands.commands)
-=======
-@pytest.mark.parametrize("name", cli.UNAVAILABLE)
-def test_commands_not_available_are_refused_by_name(name: str, capsys: pytest.CaptureFixture[str]) -> None:
-    assert cli.run([name, "file.toml", "--json", "--out", "x"]) == 2
-    assert capsys.readouterr().err == f"guys: '{name}' is not available in this version\n"
-
-
-def test_every_command_of_the_format_is_known() -> None:
-    wanted = {
-        "new",
-        "validate",
-        "schema",
-        "solve",
-        "plumb",
-        "size",
-        "setout",
-        "compare",
-        "search",
-        "limit",
-        "lost",
-        "raise",
-        "field",
-        "record",
-    }
-    ours = {"matters", "stages"}
-    assert wanted | {"list"} | ours == set(cli.UNAVAILABLE) | set(cli.commands.commands)
->>>>>>> main
 
 
 @pytest.mark.parametrize(

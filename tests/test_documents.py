@@ -25,7 +25,6 @@ from sybil import Example, Sybil
 from sybil.parsers.markdown import CodeBlockParser
 from toml_text import MAST
 
-<<<<<<< HEAD
 from guys import cli, parse_scenario, read_scenario, solve
 from guys.exchange import comparison, losses, matters, recording, result, stages, tables
 from guys.exchange import field as crew
@@ -33,22 +32,12 @@ from guys.exchange import raising as exchange_raising
 from guys.scenario import Scenario, draft, schema, starters
 from guys.scenario.stage import Stage
 from guys.studies import hoisting, raising
-=======
-from guys import cli, parse_scenario, solve
-from guys.exchange import comparison, losses, matters, result, stages, tables
-from guys.exchange import field as crew
-from guys.scenario import Scenario, draft, schema, starters
-from guys.scenario.stage import Stage
->>>>>>> main
 from guys.studies.cells import WORDS
 from guys.studies.compare import compare
 from guys.studies.field import field
 from guys.studies.lost import lose
 from guys.studies.matters import weigh
-<<<<<<< HEAD
 from guys.studies.recording import record
-=======
->>>>>>> main
 from guys.studies.stages import Stages, build_up
 
 REPOSITORY = Path(__file__).parent.parent
@@ -230,13 +219,10 @@ TABLES = {
     "FieldWork": "[field]`",
     "Rigged": "[field]`",
     "Stage": "[[stage]]`",
-<<<<<<< HEAD
     "Raising": "[raise]`",
     "GinPole": "[raise]`",
     "Holding": "[raise]`",
     "Winch": "[raise]`",
-=======
->>>>>>> main
 }
 
 

@@ -10,11 +10,7 @@ from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
-<<<<<<< HEAD
-from guys.doors.common import exit_status, pictures, store
-=======
 from guys.doors.common import exit_status, in_layout, pictures, store
->>>>>>> main
 from guys.drawing import rounding
 from guys.drawing.rounding import Units, tongue
 from guys.drawing.stages import draw_stages, least_words, may_see_words, stands_words, wind_words
@@ -24,20 +20,12 @@ from guys.studies.cells import FALLS, NOT_FOUND, PAST, WORDS
 from guys.studies.stages import Stages, build_up
 
 
-<<<<<<< HEAD
-def stages_command(file: str, out: str | None, as_json: bool, units: Units = "SI") -> int:
-=======
 def stages_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
->>>>>>> main
     """Solve every stage; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-<<<<<<< HEAD
-    scenario = read_scenario(file)
-=======
     scenario = in_layout(read_scenario(file), layout)
->>>>>>> main
     with terminal.progress(sys.stderr) as tick:
         found = build_up(scenario, tick)
     contents = {"stages.json": stages.as_text(found).encode(), "stages.csv": stages.as_table(found).encode()}

@@ -41,10 +41,6 @@ from guys.scenario.resolve import DEFAULT_CASE
 from guys.scenario.search import Search
 from guys.scenario.site_table import SiteEntry
 from guys.scenario.stage import Stage
-<<<<<<< HEAD
-=======
-from guys.scenario.unavailable import without
->>>>>>> main
 from guys.scenario.wind_entry import WindEntry
 
 FIELDS = {field.alias or name: name for name, field in ScenarioFile.model_fields.items()}

@@ -30,10 +30,7 @@ from guys.scenario.ranges import Ranges
 from guys.scenario.search import Search
 from guys.scenario.shapes import FittingShape, Rules, SectionShape, Surface
 from guys.scenario.stage import Stage
-<<<<<<< HEAD
 from guys.scenario.table import GroundFoot as GroundFoot
-=======
->>>>>>> main
 from guys.scenario.table import Model
 from guys.site import Site
 

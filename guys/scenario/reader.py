@@ -27,13 +27,8 @@ from guys.scenario import (
     plausible,
     resolve,
     rigging,
-<<<<<<< HEAD
     search,
     staged,
-=======
-    staged,
-    unavailable,
->>>>>>> main
     weather,
 )  # fmt: skip
 from guys.scenario.draft import Draft, draft
@@ -189,11 +184,8 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from patches.findings(tables)
     yield from layouts.findings(tables, site)
     yield from staged.findings(tables)
-<<<<<<< HEAD
     yield from hoisting.findings(tables)
     yield from search.findings(tables)
-=======
->>>>>>> main
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
