@@ -23,7 +23,7 @@ from guys.path import CLOSE, ROOT
 from guys.reserves import ALL, CONDITIONALLY, NEUTRAL, NONE, STABLE, WIND, Reserve, Reserves
 from guys.rotation import Array
 from guys.studies.batch import solve_lines
-from guys.studies.reserve import MOST, RAISED, reserves
+from guys.studies.reserve import MOST, RAISED, gravest, reserves
 
 INDEPENDENT = 5e-3
 """Of a speed against the independent reference calculation."""
@@ -198,6 +198,16 @@ def test_a_direction_alone_has_the_reserve_it_has_in_company() -> None:
     both = {**made.tipping(), "wind": {**made.tipping()["wind"], "directions": [120.0, 90.0]}}
     for loads in (WIND, ALL):
         assert reserves_of(both).every[1].of(loads).factor == pytest.approx(only(made.tipping(), loads).factor, rel=1e-9)  # type: ignore[union-attr]
+
+
+def test_of_the_states_of_a_line_thegravest_is_told() -> None:
+    """A line with patches of gust: its path that ends first, its gravest verdict, and nothing to raise where one state falls."""
+    (early,) = reserves_of(made.tipping()).every
+    late = replace(early, verdict=STABLE, reserves=tuple(replace(r, stands_to=2 * r.stands_to, lost=False) for r in early.reserves))
+    for states in ([early, late], [late, early]):
+        assert gravest(states) == early
+    falls = replace(early, verdict=NONE, reserves=())
+    assert gravest([late, falls, early]) == falls
 
 
 def test_the_mode_goes_where_the_words_say() -> None:

@@ -56,12 +56,12 @@ def reserves(scenario: Scenario, progress: Progress | None = None) -> Reserves:
         standing, batch = _standing(setting, states[first : first + CHUNK], progress)
         every += standing
         settled += ((batch.code == stability.STABLE) | batch.spins).tolist()
-    of_lines = tuple(_gravest([every[row] for row in asked.rows(k)]) for k in range(len(lines)))
+    of_lines = tuple(gravest([every[row] for row in asked.rows(k)]) for k in range(len(lines)))
     all_settled = tuple(all(settled[row] for row in asked.rows(k)) for k in range(len(lines)))
     return Reserves(scenario, __version__, of_lines, all_settled, ending.outline(setting.problem, setting.state), MOST, CAUTIONS)
 
 
-def _gravest(states: Sequence[Standing]) -> Standing:
+def gravest(states: Sequence[Standing]) -> Standing:
     """What is told of a line with patches of gust: the gravest verdict, and of either kind of loads the path that ends first."""
     order = list(MEANING)
     worst = max(states, key=lambda s: order.index(s.verdict))

@@ -88,7 +88,8 @@ def unbuckled(text: str, finer: int = 1) -> tuple[Problem, State]:
 
 def critical(text_of: Callable[[float], str], low: float, high: float, finer: int = FINE) -> float:
     """The load between two at which the least eigenvalue of a scenario's still-air tangent vanishes."""
-    return float(brentq(lambda p: stability.modes(*unbuckled(text_of(p), finer), 1).value[0], low, high, rtol=1e-10, xtol=1e-10 * high))
+    near = 1e-10 * max(abs(low), abs(high))
+    return float(brentq(lambda p: stability.modes(*unbuckled(text_of(p), finer), 1).value[0], low, high, rtol=1e-10, xtol=near))
 
 
 def cross_stays(level: str, stiffness: float, reach: float = 10.0) -> str:
