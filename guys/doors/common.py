@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import signal
-from collections.abc import Iterable, Iterator, Mapping, Sequence
+import sys
+from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from concurrent.futures import Executor, ProcessPoolExecutor
 from contextlib import ExitStack, contextmanager
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
+from guys import terminal
 from guys.checks.alarms import BALANCE
 from guys.drawing.files import figure_bytes
 from guys.errors import OutputError, ScenarioError
@@ -71,6 +73,22 @@ def in_layout(scenario: Scenario, name: str | None) -> Scenario:
         return every[name or AS_DRAWN]
     text = f'no layout is named "{clipped(name)}"{nearest(name, every)}'
     raise ScenarioError([fault_at(scenario, ("layout",), text)])
+
+
+def deliver(
+    out: str | None,
+    contents: Callable[[], Mapping[str, bytes]],
+    as_json: bool,
+    text: Callable[[], str],
+    report: Callable[[TextIO], None],
+) -> None:
+    """Store the files in the directory `out` where one is given, then print: the JSON text, or a report and where the files are."""
+    written = [] if out is None else store(Path(out), contents())
+    if as_json:
+        sys.stdout.write(text())
+        return
+    report(sys.stdout)
+    terminal.files(written, sys.stdout)
 
 
 def exit_status(solution: Solution) -> int:

@@ -1,20 +1,18 @@
 """`guys limit`: the limiting wind of every direction, with files, table and polar figure.
 
-    0 no limit is below the scenario's own wind      3 something passes its allowable below it      4 equilibrium is lost below it
-    1 an internal fault, or the solver failed        2 the input is wrong
+0 no limit is below the scenario's own wind      3 something passes its allowable below it      4 equilibrium is lost below it
+1 an internal fault, or the solver failed        2 the input is wrong
 """
 
 from __future__ import annotations
 
 import math
 import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import drawing, terminal
-from guys.doors.common import in_layout, store
+from guys.doors.common import deliver, in_layout, pictures
 from guys.drawing import rounding
-from guys.drawing.files import figure_bytes
 from guys.exchange import limit as exchange
 from guys.limits import Limit, Limits
 from guys.scenario import read_scenario
@@ -30,23 +28,14 @@ def limit_command(file: str, out: str | None, as_json: bool, units: drawing.Unit
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = limits(scenario, progress=tick)
-    written = write(found, Path(out), units) if out is not None else []
-    if as_json:
-        sys.stdout.write(exchange.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        if written:
-            terminal.files(written, sys.stdout)
+    deliver(out, lambda: contents(found, units), as_json, lambda: exchange.as_text(found), lambda stream: report(found, units, stream))
     return exit_status(found)
 
 
-def write(found: Limits, directory: Path, units: drawing.Units) -> list[Path]:
-    """Every file of a run: all are made before the first is stored."""
-    contents = {"limit.json": exchange.as_text(found).encode(), "limit.csv": exchange.as_table(found).encode()}
-    figure = drawing.limit_page(found, units=units)
-    for kind in ("pdf", "svg", "png"):
-        contents[f"limit.{kind}"] = figure_bytes(figure, kind, found.scenario.title, found.version)
-    return store(directory, contents)
+def contents(found: Limits, units: drawing.Units) -> dict[str, bytes]:
+    """Every file of a run."""
+    texts = {"limit.json": exchange.as_text(found).encode(), "limit.csv": exchange.as_table(found).encode()}
+    return texts | pictures("limit", drawing.limit_page(found, units=units), found.scenario.title)
 
 
 def exit_status(found: Limits) -> int:

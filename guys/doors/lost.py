@@ -8,12 +8,11 @@ from __future__ import annotations
 
 import math
 import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import in_layout, pictures, store
+from guys.doors.common import deliver, in_layout, pictures
 from guys.drawing import rounding
 from guys.drawing.losses import draw_losses, load_row
 from guys.drawing.rounding import Tongue, Units, tongue
@@ -31,13 +30,12 @@ def lost_command(file: str, out: str | None, as_json: bool, units: Units = "SI",
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = lose(scenario, tick, winds)
-    contents = {"lost.json": losses.as_text(found).encode(), "lost.csv": losses.as_table(found).encode()}
-    written = [] if out is None else store(Path(out), contents | pictures("lost", draw_losses(found, "A3", units), found.scenario.title))
-    if as_json:
-        sys.stdout.write(losses.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        drawn = pictures("lost", draw_losses(found, "A3", units), scenario.title)
+        return {"lost.json": losses.as_text(found).encode(), "lost.csv": losses.as_table(found).encode()} | drawn
+
+    deliver(out, contents, as_json, lambda: losses.as_text(found), lambda stream: report(found, units, stream))
     return status(found)
 
 

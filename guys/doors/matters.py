@@ -7,12 +7,11 @@ of a range.
 from __future__ import annotations
 
 import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import in_layout, pictures, store
+from guys.doors.common import deliver, in_layout, pictures
 from guys.drawing import rounding
 from guys.drawing.matters import draw_matters
 from guys.drawing.rounding import Units, tongue
@@ -29,13 +28,12 @@ def matters_command(file: str, out: str | None, as_json: bool, units: Units = "S
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = weigh(scenario, tick)
-    contents = {"matters.json": matters.as_text(found).encode(), "matters.csv": matters.as_table(found).encode()}
-    written = [] if out is None else store(Path(out), contents | pictures("matters", draw_matters(found, "A3", units), scenario.title))
-    if as_json:
-        sys.stdout.write(matters.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        drawn = pictures("matters", draw_matters(found, "A3", units), scenario.title)
+        return {"matters.json": matters.as_text(found).encode(), "matters.csv": matters.as_table(found).encode()} | drawn
+
+    deliver(out, contents, as_json, lambda: matters.as_text(found), lambda stream: report(found, units, stream))
     return status(found)
 
 

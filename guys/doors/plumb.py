@@ -3,13 +3,11 @@
 from __future__ import annotations
 
 import math
-import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import AS_PLUMBED, CAUTIONS
-from guys.doors.common import in_layout, store
+from guys.doors.common import deliver, in_layout
 from guys.drawing import rounding
 from guys.drawing.rounding import Units, tongue
 from guys.exchange import plumbing as exchange
@@ -23,13 +21,11 @@ def plumb_command(file: str, out: str | None, as_json: bool, units: Units = "SI"
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
     found = plumb(in_layout(read_scenario(file), layout))
-    contents = {"plumb.json": exchange.as_text(found).encode(), "plumb.csv": exchange.as_table(found).encode()}
-    written = [] if out is None else store(Path(out), contents)
-    if as_json:
-        sys.stdout.write(exchange.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        return {"plumb.json": exchange.as_text(found).encode(), "plumb.csv": exchange.as_table(found).encode()}
+
+    deliver(out, contents, as_json, lambda: exchange.as_text(found), lambda stream: report(found, units, stream))
     return 3 if (abs(found.change) > AS_PLUMBED).any() else 0
 
 

@@ -5,13 +5,12 @@ from __future__ import annotations
 import math
 import sys
 from collections.abc import Callable
-from pathlib import Path
 from typing import TextIO
 
 import numpy as np
 
 from guys import terminal
-from guys.doors.common import pictures, store
+from guys.doors.common import deliver, pictures
 from guys.drawing import Paper, Units, rounding
 from guys.drawing.raising import draw_raising
 from guys.drawing.rounding import System
@@ -34,13 +33,13 @@ def raise_command(file: str, out: str | None, as_json: bool, units: Units = "SI"
     with terminal.progress(sys.stderr) as tick:
         raised = solve(scenario, tick)
     findings = hoisting.findings(raised)
-    written = [] if out is None else store(Path(out), contents(raised, findings, units, paper))
-    if as_json:
-        sys.stdout.write(exchange.as_text(raised, findings))
-    else:
-        report(raised, findings, units, sys.stdout)
-        if written:
-            terminal.files(written, sys.stdout)
+    deliver(
+        out,
+        lambda: contents(raised, findings, units, paper),
+        as_json,
+        lambda: exchange.as_text(raised, findings),
+        lambda stream: report(raised, findings, units, stream),
+    )
     return exit_status(raised, findings)
 
 

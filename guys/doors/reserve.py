@@ -1,17 +1,16 @@
 """`guys reserve`: how much more every case takes before equilibrium is lost, with files, table and figure.
 
-    0 every case has a stable equilibrium      4 some case has none, or one that is unstable or neutral
-    1 an internal fault, or the solver failed  2 the input is wrong
+0 every case has a stable equilibrium      4 some case has none, or one that is unstable or neutral
+1 an internal fault, or the solver failed  2 the input is wrong
 """
 
 from __future__ import annotations
 
 import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
-from guys.doors.common import pictures, store
+from guys.doors.common import deliver, pictures
 from guys.drawing import rounding
 from guys.drawing.reserve import draw_reserves
 from guys.drawing.rounding import Units
@@ -29,17 +28,13 @@ def reserve_command(file: str, out: str | None, as_json: bool, units: Units = "S
     scenario = read_scenario(file)
     with terminal.progress(sys.stderr) as tick:
         found = reserves(scenario, tick)
-    contents = {
-        "reserve.json": exchange.as_text(found).encode(),
-        "reserve.csv": exchange.as_table(found).encode(),
-        "paths.csv": exchange.paths_table(found).encode(),
-    }
-    written = [] if out is None else store(Path(out), contents | pictures("reserve", draw_reserves(found, "A3", units), scenario.title))
-    if as_json:
-        sys.stdout.write(contents["reserve.json"].decode())
-    else:
-        report(found, sys.stdout)
-        terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        texts = {"reserve.json": exchange.as_text(found), "reserve.csv": exchange.as_table(found), "paths.csv": exchange.paths_table(found)}
+        drawn = pictures("reserve", draw_reserves(found, "A3", units), scenario.title)
+        return {name: text.encode() for name, text in texts.items()} | drawn
+
+    deliver(out, contents, as_json, lambda: exchange.as_text(found), lambda stream: report(found, stream))
     return exit_status(found)
 
 

@@ -8,12 +8,11 @@ from __future__ import annotations
 import math
 import sys
 from collections.abc import Iterator
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import in_layout, store
+from guys.doors.common import deliver, in_layout
 from guys.drawing import rounding
 from guys.drawing.rounding import Tongue, Units, tongue
 from guys.exchange import sizing as files
@@ -29,14 +28,11 @@ def size_command(file: str, out: str | None, as_json: bool, units: Units = "SI",
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = size(scenario, tick)
-    contents = {"size.json": files.as_text(found).encode(), "size.csv": files.as_table(found).encode()}
-    written = [] if out is None else store(Path(out), contents)
-    if as_json:
-        sys.stdout.write(files.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        if written:
-            terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        return {"size.json": files.as_text(found).encode(), "size.csv": files.as_table(found).encode()}
+
+    deliver(out, contents, as_json, lambda: files.as_text(found), lambda stream: report(found, units, stream))
     return status(found)
 
 

@@ -6,11 +6,10 @@ Exit status 4 where a stage falls in its wind, 3 where something is past its all
 from __future__ import annotations
 
 import sys
-from pathlib import Path
 from typing import TextIO
 
 from guys import terminal
-from guys.doors.common import exit_status, in_layout, pictures, store
+from guys.doors.common import deliver, exit_status, in_layout, pictures
 from guys.drawing import rounding
 from guys.drawing.rounding import Units, tongue
 from guys.drawing.stages import draw_stages, least_words, may_see_words, stands_words, wind_words
@@ -28,13 +27,12 @@ def stages_command(file: str, out: str | None, as_json: bool, units: Units = "SI
     scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr) as tick:
         found = build_up(scenario, tick)
-    contents = {"stages.json": stages.as_text(found).encode(), "stages.csv": stages.as_table(found).encode()}
-    written = [] if out is None else store(Path(out), contents | pictures("stages", draw_stages(found, "A3", units), scenario.title))
-    if as_json:
-        sys.stdout.write(stages.as_text(found))
-    else:
-        report(found, units, sys.stdout)
-        terminal.files(written, sys.stdout)
+
+    def contents() -> dict[str, bytes]:
+        drawn = pictures("stages", draw_stages(found, "A3", units), scenario.title)
+        return {"stages.json": stages.as_text(found).encode(), "stages.csv": stages.as_table(found).encode()} | drawn
+
+    deliver(out, contents, as_json, lambda: stages.as_text(found), lambda stream: report(found, units, stream))
     return status(found)
 
 

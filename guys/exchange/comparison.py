@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.sizing import anchor_needs
 from guys.exchange.tables import Cell, as_csv
@@ -31,7 +31,7 @@ def as_dict(found: Comparison) -> dict[str, Any]:
 
 def as_text(found: Comparison) -> str:
     """The text of `compare.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def layout_entry(each: Compared) -> dict[str, Any]:

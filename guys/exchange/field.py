@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.constants import ZERO_CELSIUS
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.limits import Limits
@@ -110,7 +110,7 @@ def wind_card(found: Limits) -> dict[str, Any]:
 
 def as_text(found: Field) -> str:
     """The text of `field.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _table(rows: list[dict[str, Any]], head: list[str]) -> str:

@@ -1,4 +1,4 @@
-"""Files replaced whole or not at all.
+"""Files replaced whole or not at all, and the text of JSON.
 
 A result is written under a temporary name in the same directory, flushed to the disk, and renamed over the old file (POSIX rename is
 atomic within a file system).  Whatever goes wrong before that, an interruption included, leaves the old file as it was and no
@@ -8,11 +8,13 @@ temporary one behind.
 from __future__ import annotations
 
 import errno
+import json
 import os
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from contextlib import contextmanager, suppress
 from pathlib import Path
 from tempfile import NamedTemporaryFile
+from typing import Any
 
 from guys.errors import OutputError
 
@@ -83,3 +85,8 @@ def _flush_directory(directory: Path) -> None:
             os.fsync(handle)
         finally:
             os.close(handle)
+
+
+def json_text(content: Mapping[str, Any]) -> str:
+    """The text of a JSON file: on one line, with no number that JSON cannot hold."""
+    return json.dumps(content, ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.limits import Limit, Limits
@@ -43,7 +43,7 @@ def as_dict(limits: Limits) -> dict[str, Any]:
 
 def as_text(limits: Limits) -> str:
     """The file's text."""
-    return json.dumps(as_dict(limits), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(limits))
 
 
 def limit_as_dict(limit: Limit, cables: list[str]) -> dict[str, Any]:

@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import json
 from collections.abc import Sequence
 from typing import Any
 
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.files import json_text
 from guys.exchange.limit import limit_as_dict
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
@@ -35,7 +35,7 @@ def as_dict(found: Lost) -> dict[str, Any]:
 
 def as_text(found: Lost) -> str:
     """The text of `lost.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _loss(found: Lost, k: int) -> dict[str, Any]:

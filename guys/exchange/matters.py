@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.loads import CaseLine
@@ -30,7 +30,7 @@ def as_dict(found: Matters) -> dict[str, Any]:
 
 def as_text(found: Matters) -> str:
     """The text of `matters.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _place(line: CaseLine | None) -> dict[str, Any]:

@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.exchange.field import celsius
+from guys.exchange.files import json_text
 from guys.exchange.result import number
 from guys.exchange.tables import as_csv
 from guys.studies.measured import Measured
@@ -65,7 +65,7 @@ def as_dict(found: Measured) -> dict[str, Any]:
 
 def as_text(found: Measured) -> str:
     """The text of `measured.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def as_table(found: Measured) -> str:

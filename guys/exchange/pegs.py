@@ -17,6 +17,7 @@ import numpy as np
 
 from guys.checks.alarms import CAUTIONS
 from guys.errors import UnavailableError
+from guys.exchange.files import json_text
 from guys.exchange.result import number
 from guys.exchange.tables import Cell, as_csv
 from guys.site import Grid
@@ -103,7 +104,7 @@ def as_dict(pegs: Pegs, built: AsBuilt | None = None) -> dict[str, Any]:
 
 def as_text(pegs: Pegs, built: AsBuilt | None = None) -> str:
     """The text of `setout.json`."""
-    return json.dumps(as_dict(pegs, built), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(pegs, built))
 
 
 def as_table(pegs: Pegs) -> str:

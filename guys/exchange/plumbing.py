@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.files import json_text
 from guys.exchange.result import number
 from guys.exchange.tables import as_csv
 from guys.studies.plumbing import Plumb
@@ -50,7 +50,7 @@ def as_dict(found: Plumb) -> dict[str, Any]:
 
 def as_text(found: Plumb) -> str:
     """The text of `plumb.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def as_table(found: Plumb) -> str:

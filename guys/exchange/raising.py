@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
 import numpy as np
 
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, finding, number
 from guys.exchange.tables import Cell, as_csv
 from guys.results import Finding
@@ -47,7 +47,7 @@ def as_dict(raised: Raised, findings: tuple[Finding, ...]) -> dict[str, Any]:
 
 def as_text(raised: Raised, findings: tuple[Finding, ...]) -> str:
     """The text of `raise.json`."""
-    return json.dumps(as_dict(raised, findings), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(raised, findings))
 
 
 def measures(raised: Raised) -> dict[str, Array]:

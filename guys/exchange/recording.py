@@ -5,7 +5,6 @@
 
 from __future__ import annotations
 
-import json
 import math
 from dataclasses import asdict
 from typing import Any
@@ -14,6 +13,7 @@ import numpy as np
 
 from guys.checks.free_body import FreeBody
 from guys.exchange import result
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.loads.worked import Worked
 from guys.rotation import Array
@@ -40,7 +40,7 @@ def as_dict(found: Recorded) -> dict[str, Any]:
 
 def as_text(found: Recorded) -> str:
     """The file's text."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _row(values: Array) -> list[float | None]:

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.reserves import Mode, Path, Reserve, Reserves, Standing
@@ -37,7 +37,7 @@ def as_dict(found: Reserves) -> dict[str, Any]:
 
 def as_text(found: Reserves) -> str:
     """The text of `reserve.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _standing(found: Reserves, standing: Standing) -> dict[str, Any]:

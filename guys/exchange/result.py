@@ -6,7 +6,6 @@ without an equilibrium has empty lists and a `reason`.
 
 from __future__ import annotations
 
-import json
 import math
 from collections.abc import Sequence
 from typing import Any
@@ -14,6 +13,7 @@ from typing import Any
 import numpy as np
 
 from guys.checks.spars import section_thing
+from guys.exchange.files import json_text
 from guys.results import CableWorst, Extreme, Finding, FootForces, FootWorst, Solution, SparLine, Sweep
 from guys.rotation import Array
 from guys.scenario import Scenario, patches
@@ -56,7 +56,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
 
 def as_text(solution: Solution) -> str:
     """The result file's text."""
-    return json.dumps(as_dict(solution), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(solution))
 
 
 def number(value: float) -> float | None:

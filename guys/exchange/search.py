@@ -8,6 +8,7 @@ from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.exchange.comparison import in_file, layout_entry
+from guys.exchange.files import json_text
 from guys.exchange.result import number
 from guys.exchange.tables import Cell, as_csv
 from guys.scenario import drawn
@@ -46,7 +47,7 @@ def as_dict(found: Found) -> dict[str, Any]:
 
 def as_text(found: Found) -> str:
     """The text of `search.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _found(found: Found, k: int, trial: Trial) -> dict[str, Any]:

@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.studies.sizing import AnchorNeeds, Need, Sizing
@@ -39,7 +39,7 @@ def as_dict(found: Sizing) -> dict[str, Any]:
 
 def as_text(found: Sizing) -> str:
     """The text of `size.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def anchor_needs(anchor: AnchorNeeds) -> dict[str, Any]:

@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
+from guys.exchange.files import json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.studies.cells import WORDS
@@ -28,7 +28,7 @@ def as_dict(found: Stages) -> dict[str, Any]:
 
 def as_text(found: Stages) -> str:
     """The text of `stages.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _stage(built: Built) -> dict[str, Any]:
