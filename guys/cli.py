@@ -30,7 +30,7 @@ TRACEBACK = "GUYS_TRACEBACK"
 
 ORDER = (
     *("new", "validate", "schema", "list"),
-    *("solve", "plumb", "size", "setout", "compare", "search"),
+    *("solve", "plumb", "size", "setout", "compare", "search", "ring"),
     *("limit", "reserve", "lost", "matters", "stages", "raise"),
     *("field", "record"),
 )
@@ -319,6 +319,47 @@ def search(file: str, out: str | None, as_json: bool, units: str, layout: str | 
     from guys.doors.search import search_command
 
     return search_command(file, workers, out, as_json, units, layout)  # type: ignore[arg-type]
+
+
+def _ways(_: click.Context, __: click.Parameter, value: str) -> tuple[int, ...]:
+    from guys.studies.ring import FEWEST, MOST
+
+    numbers = [part.strip() for part in value.split(",")]
+    if not all(n.isdigit() and FEWEST <= int(n) <= MOST for n in numbers):
+        raise click.BadParameter(f"{value}: give numbers from {FEWEST} to {MOST}, such as 3,4")
+    return tuple(dict.fromkeys(int(n) for n in numbers))
+
+
+@commands.command()
+@computing("ring.json, ring.csv and the curves")
+@click.option("--ways", default="3,4", show_default=True, callback=_ways, metavar="N,N", help="Numbers of anchors, evenly spaced.")
+@click.option("--radius", nargs=2, metavar="FROM TO", help='Least and greatest radius, such as "6 m" "18 m".')
+@click.option("--steps", type=click.IntRange(2, 60), default=9, show_default=True, help="Radii from the one to the other.")
+@side_by_side
+def ring(
+    file: str,
+    out: str | None,
+    as_json: bool,
+    units: str,
+    ways: tuple[int, ...],
+    radius: tuple[str, str] | None,
+    steps: int,
+    workers: int,
+) -> int:
+    """Chart one mast on rings of anchors over radius and number of ways: tension, uplift, thrust, lean, rope, ground.
+
+    Exit status: 0; 4 no ring stands; 1 and 2 as ever.
+    """
+    from guys.doors.ring import ring_command
+    from guys.units import parse
+
+    try:
+        far = None if radius is None else (parse(radius[0], "length"), parse(radius[1], "length"))
+    except GuysError as error:
+        raise click.BadParameter(str(error), param_hint="--radius") from error
+    if far is not None and not 0 < far[0] < far[1]:
+        raise click.BadParameter("the first is not less than the second, or not more than zero", param_hint="--radius")
+    return ring_command(file, ways, far, steps, workers, out, as_json, units)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -52,7 +52,7 @@ def test_version(capsys: pytest.CaptureFixture[str]) -> None:
 
 def test_every_command_of_the_format_is_there() -> None:
     wanted = {"new", "validate", "schema", "solve", "plumb", "size", "setout", "compare", "search", "limit", "lost", "raise", "field"}
-    ours = {"matters", "reserve", "stages"}
+    ours = {"matters", "reserve", "stages", "ring"}
     assert wanted | {"record", "list"} | ours == set(cli.commands.commands)
 
 

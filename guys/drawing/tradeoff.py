@@ -32,7 +32,7 @@ def draw_tradeoff(found: Found, paper: str, system: Units) -> Figure:
     speech = tongue(system).systems[0]
     holding = np.array([t.values for t in found.trials if t.outcome == HOLDS]).reshape(-1, 2)
     front = np.array([t.values for t in found.front]).reshape(-1, 2)
-    holding, front = (np.column_stack([_shown(k, v[:, n], speech) for n, k in enumerate(found.keys)]) for v in (holding, front))
+    holding, front = (np.column_stack([shown(k, v[:, n], speech) for n, k in enumerate(found.keys)]) for v in (holding, front))
     x, y = _axis(found.keys[1], holding[:, 1], speech), _axis(found.keys[0], holding[:, 0], speech)
     panel = draw_panel(page, zone, y.name, x, y)
     field = Field(zone)
@@ -58,7 +58,8 @@ def unit_of(key: str, system: System) -> str:
     return "" if not dimension else own.get(dimension, units.DIMENSIONS.get(dimension, ("", "")))[0 if system == "SI" else 1]
 
 
-def _shown(key: str, values: Array, system: System) -> Array:
+def shown(key: str, values: Array, system: System) -> Array:
+    """Values in that unit."""
     unit = unit_of(key, system)
     return values if not unit else np.array([units.convert(float(v), unit) for v in values])
 
