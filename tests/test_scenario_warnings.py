@@ -56,7 +56,6 @@ UNUSUAL: list[tuple[str, dict[str, Any], list[tuple[tuple[str | int, ...], Any]]
         [(("spar", 0, "lean"), "85 deg"), (("spar", 0, "toward"), "180 deg")],
         ['spar "mast", lean: 85 deg from the vertical', "is flat", "flat", "flat"],
     ),
-    ("same place", MAST, [(("anchor", 1), {"name": "SE", "bearing": "0 deg", "radius": "8 m"})], ['anchor "SE": stands where "N" stands']),
     ("factor", MAST, [(("allowables",), {"cable": 0.5})], ["allowables.cable: 0.5 is less than 1"]),
     ("case", MAST, [(("case",), [{"name": "a", "wind": 4}])], ['case "a", wind: a factor of 4 is more than 3']),
     (

@@ -161,14 +161,9 @@ def _drag(what: str, drag: float | None) -> Iterator[str]:
 
 def _anchors(scenario: Scenario) -> Iterator[str]:
     used = {cable.to.anchor for cable in scenario.cable if isinstance(cable.to, AnchorPoint)}
-    places: dict[tuple[float, float, float], str] = {}
     for anchor in scenario.anchor:
         if anchor.name not in used:
             yield f'anchor "{anchor.name}": no cable runs to it'
-        place = (round(anchor.east, 3), round(anchor.north, 3), round(anchor.level, 3))
-        if place in places:
-            yield f'anchor "{anchor.name}": stands where "{places[place]}" stands'
-        places.setdefault(place, anchor.name)
 
 
 def _cables(scenario: Scenario) -> Iterator[str]:
