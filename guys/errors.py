@@ -2,7 +2,6 @@
 
     GuysError
     ├── ScenarioError          what the user wrote is wrong; holds every `Fault` found            exit status 2
-    ├── UnavailableError       asked for something this version does not do                       exit status 2
     └── OutputError            a result could not be written                                      exit status 1
 
 A structure that falls is not an exception: it is a result whose state is "none" or "unstable".  Nor is a case on which the solver
@@ -49,16 +48,6 @@ class ScenarioError(GuysError):
     def __init__(self, faults: Iterable[Fault]) -> None:
         self.faults = tuple(faults)
         super().__init__("\n".join(str(fault) for fault in self.faults))
-
-
-class UnavailableError(GuysError):
-    """Something the program knows of and does not do yet; `what` names it."""
-
-    exit_status = 2
-
-    def __init__(self, what: str) -> None:
-        self.what = what
-        super().__init__(f"{what} is not available in this version")
 
 
 class OutputError(GuysError):

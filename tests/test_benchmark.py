@@ -40,7 +40,7 @@ def test_shipped_scenario_gets_36_directions_and_two_cases():
         text = path.read_text(encoding="utf-8")
         if "[wind]" not in text:
             continue
-        scenario = parse_scenario(doors.with_36_directions_and_two_cases(text))
+        scenario = parse_scenario(doors.with_36_directions_and_two_cases(text), str(path))
         assert scenario.wind is not None
         assert len(scenario.wind.directions) == 36, path.name
         assert [case.wind for case in scenario.case] == [1.0, 0.5], path.name

@@ -11,7 +11,6 @@ from guys import errors
     ("error", "status", "text"),
     [
         (errors.ScenarioError([errors.Fault("a.toml", 3, 1, "wind.speed", "missing")]), 2, "a.toml:3:1: wind.speed: missing"),
-        (errors.UnavailableError("'limit'"), 2, "'limit' is not available in this version"),
         (errors.OutputError("out/result.json", "no space left"), 1, "out/result.json: cannot be written: no space left"),
     ],
 )

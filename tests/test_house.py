@@ -104,13 +104,17 @@ def test_each_module_imports_alone() -> None:
     program = f"""
 import importlib, sys
 floors = {floors!r}
+done = set()
 for name in sorted(floors, key=floors.get):
+    if name in done:
+        continue
     for loaded in [each for each in sys.modules if floors.get(each, -1) >= floors[name] or each == "guys"]:
         del sys.modules[loaded]
     try:
         importlib.import_module(name)
     except Exception as error:
         print(name, repr(error))
+    done |= {{each for each in sys.modules if each.startswith(name + ".")}}  # loaded by their package, which always comes first
 """
     done = subprocess.run([sys.executable, "-W", "error", "-c", program], capture_output=True, text=True, check=True)
     assert done.stdout == ""

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 from xml.etree import ElementTree
@@ -20,7 +21,7 @@ from guys.scenario import Scenario
 from guys.site import Site
 from guys.site.grid import grid_at_degrees
 from guys.site.surveyed import SurveyError, read_pegs
-from guys.studies.pegs import as_built, pegs
+from guys.studies.pegs import Pegs, as_built, pegs
 
 MILLIMETRE = 1e-3
 SYSTEMS = {"EPSG:32631": (51.0, 3.2), "EPSG:27700": (52.6, 1.6), "EPSG:2225": (40.1, -121.7)}
@@ -127,6 +128,12 @@ def test_geojson_kml_and_dxf_read_back(tmp_path: Path, crs: str) -> None:
             east, north = grid.from_degrees(latitude, longitude)
             assert (float(east), float(north), level - grid.level) == pytest.approx(place, abs=MILLIMETRE)
     assert not drawing.audit().has_errors
+
+
+@pytest.mark.parametrize("write", [exchange.geojson, exchange.kml])
+def test_degrees_need_a_coordinate_system(write: Callable[[Pegs], str]) -> None:
+    with pytest.raises(ValueError, match="no coordinate system"):
+        write(pegs(ring(3)))
 
 
 # ---------------------------------------------------------------- pegs as surveyed

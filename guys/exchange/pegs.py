@@ -16,7 +16,6 @@ from xml.etree import ElementTree
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
-from guys.errors import UnavailableError
 from guys.exchange.files import json_text
 from guys.exchange.result import number
 from guys.exchange.tables import Cell, as_csv
@@ -176,7 +175,7 @@ def kml(pegs: Pegs) -> str:
 def _needed(pegs: Pegs, what: str) -> Grid:
     grid = _grid(pegs)
     if grid is None:
-        raise UnavailableError(f"{what} of a site without a coordinate system")
+        raise ValueError(f"{what} is in degrees; the scenario has no coordinate system")
     return grid
 
 
