@@ -176,7 +176,7 @@ class Reserves:
         return (
             *kinds,
             "on the way everything is elastic and unbroken: nothing yields, slips or parts; a factor is no allowable, "
-            "and other things may go first (`guys solve` and `guys limit` judge those)",
+            "and other things may go first (guys solve and guys limit judge those)",
             f"wind alone: the case's wind times the factor, the rest kept; all loads: dead, wind and ice; up to {self.most:g} times",
             "stiffness: least eigenvalue of the tangent over that in still air, 1 as erected, toward 0 where equilibrium is lost",
             *self.scenario.notes,

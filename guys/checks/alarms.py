@@ -45,7 +45,7 @@ CAUTIONS = (
 NOT_CHECKED = (
     "lugs, terminations and turnbuckles that are not among a cable's ends",
     "the ground under bases without a plate, bolts of bases; joints and welds of spars, horizontals of lattices; spars bent as made",
-    "raising (`guys raise`), fatigue, vibration, loss of a cable unless listed as a case (guys lost takes each away)",
+    "raising (guys raise), fatigue, vibration, loss of a cable unless listed as a case (guys lost takes each away)",
 )
 
 
@@ -107,7 +107,7 @@ def _only_raised(structure: Structure) -> list[str]:
     spar = next((s for s in scenario.spar if scenario.raising is not None and s.name == scenario.raising.spar), None)
     if spar is None or any(spar.name in (c.from_.spar, getattr(c.to, "spar", None)) for c in scenario.cable):
         return []
-    return [f"no cable holds {spar.name}; the lines of [raise] do not count here: `guys raise` solves the raising"]
+    return [f"no cable holds {spar.name}; the lines of [raise] do not count here: guys raise solves the raising"]
 
 
 def place(line_name: str, wind_from: float) -> str:

@@ -108,7 +108,8 @@ def pieces(found: Field, speech: Tongue) -> list[tuple[str, str, str]]:
     held = Counter(anchor.holdfast for anchor in scenario.anchor)
     out += [(f"holdfast {name}" if name else "anchors without a holdfast named", str(count), "") for name, count in held.items()]
     for spar in scenario.spar:
-        out.append((f"spar {spar.name}", f"{len(spar.section)} sections", f"{speech.say(fine_length, spar.length)}, base {spar.base}"))
+        count = "1 section" if len(spar.section) == 1 else f"{len(spar.section)} sections"
+        out.append((f"spar {spar.name}", count, f"{speech.say(fine_length, spar.length)}, base {spar.base}"))
         out += [(fitting.name, "1", f"on {spar.name}, {speech.say(mass, fitting.mass)}") for fitting in spar.fitting]
     return [*out, *_tools(scenario)]
 

@@ -68,8 +68,8 @@ def sensitivity(source: Source) -> Section:
         "The greatest values over the listed cases, solved again with initial tensions a tenth lower and higher (only those that the "
         "scenario gives), with twice the elements in every span, and with the loads of every case worked out once more on its own "
         "deformed position. Per cent: change from the run. What else matters, drag, stiffness, anchors that move, is solved by "
-        "`guys matters`; a cable or anchor lost, by `guys lost`."
-    ).replace("`", "")
+        "guys matters; a cable or anchor lost, by guys lost."
+    )
     blocks: list[Block] = [text(words), Table("Sensitivity: greatest values over the listed cases", heads, tuple(rows), 2)]
     if lacking:
         blocks.append(Items(tuple(lacking)))
