@@ -51,9 +51,9 @@ def test_units_and_order_of_columns_come_from_the_header() -> None:
         ("east,easting,north,level\n", "two columns for east"),
         ("east [furlong],north,level\n", "furlong is not a unit"),
         ("east,north,level\n0,0,1\n1,0\n2,x,3\n", "line 3: the point has no level"),
-        ("east,north,level\n0,0,1\n1,0\n2,x,3\n", 'line 4: "x" is not a north'),
+        ("east,north,level\n0,0,1\n1,0\n2,x,3\n", 'line 4: "x" is not a number for the north'),
         ("east,north,level\n0,0,1\n0,0,2\n", "line 3: the same place as line 2"),
-        ("east,north,level\n0,0,1\n1,1,nan\n", 'line 3: "nan" is not a level'),
+        ("east,north,level\n0,0,1\n1,1,nan\n", 'line 3: "nan" is not a number for the level'),
     ],
 )
 def test_faulty_lines_are_named(text: str, told: str) -> None:

@@ -101,7 +101,7 @@ def _feature(item: Any, number: int, reasons: list[str]) -> Feature | None:
         found = shape(geometry)
         flat = found if not found.has_z else _flat(found)
     except Exception as error:
-        reasons.append(f"{place} is not a shape: {type(error).__name__}: {error}")
+        reasons.append(f"{place} is not a shape: {error}")
         return None
     if flat.is_empty:
         reasons.append(f"{place} is empty")

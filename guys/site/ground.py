@@ -171,7 +171,7 @@ def _point(
         except ValueError:
             value = math.nan
         if not math.isfinite(value):
-            reasons.append(f"line {number}: " + (f'"{cell}" is not a {meaning}' if cell else f"the point has no {meaning}"))
+            reasons.append(f"line {number}: " + (f'"{cell}" is not a number for the {meaning}' if cell else f"the point has no {meaning}"))
             return None
         out.append(value * (factor[meaning] or 1.0))
     return number, out[0], out[1], out[2]
