@@ -7,7 +7,7 @@ from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.constants import ZERO_CELSIUS
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.limits import Limits
@@ -15,7 +15,6 @@ from guys.scenario.model import AS_DRAWN
 from guys.scenario.readings import COLUMNS, DIGEST, LAYOUT
 from guys.sounding import TIMED, WAYS
 from guys.studies.field import Field, acceptance, cycles, order, proof_factor
-from guys.version import __version__
 
 FORMAT = "guys-field/1"
 UNITS = {"pulse": "s", "swing": "s", "sag": "m", "sight": "m", "gauge": "N"}
@@ -69,10 +68,7 @@ def as_dict(found: Field) -> dict[str, Any]:
     scenario = found.scenario
     names = [cable.name for cable in scenario.cable]
     return {
-        "format": FORMAT,
-        "title": scenario.title,
-        "guys_version": __version__,
-        "scenario_sha256": scenario.sha256,
+        **heading(FORMAT, scenario),
         "layout": scenario.layout,
         "setting_temperature_degC": celsius(scenario.setting.temperature),
         "lengths": lengths(found),

@@ -1,4 +1,4 @@
-"""Files replaced whole or not at all, and the text of JSON.
+"""Files replaced whole or not at all, and how every JSON file begins and is written.
 
 A result is written under a temporary name in the same directory, flushed to the disk, and renamed over the old file (POSIX rename is
 atomic within a file system).  Whatever goes wrong before that, an interruption included, leaves the old file as it was and no
@@ -17,6 +17,8 @@ from tempfile import NamedTemporaryFile
 from typing import Any
 
 from guys.errors import OutputError
+from guys.scenario import Scenario
+from guys.version import __version__
 
 _REASONS = {
     errno.ENOSPC: "the disk is full; what was there before is untouched",
@@ -90,3 +92,8 @@ def _flush_directory(directory: Path) -> None:
 def json_text(content: Mapping[str, Any]) -> str:
     """The text of a JSON file: on one line, with no number that JSON cannot hold."""
     return json.dumps(content, ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+
+
+def heading(form: str, scenario: Scenario) -> dict[str, str]:
+    """What every result file says first: its format, and of what, by which version, from which input it is."""
+    return {"format": form, "title": scenario.title, "guys_version": __version__, "scenario_sha256": scenario.sha256}

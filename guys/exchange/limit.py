@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import Any
 
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.limits import Limit, Limits
@@ -20,10 +20,7 @@ def as_dict(limits: Limits) -> dict[str, Any]:
     assert wind is not None
     cables = [cable.name for cable in scenario.cable]
     return {
-        "format": FORMAT,
-        "title": scenario.title,
-        "guys_version": limits.version,
-        "scenario_sha256": scenario.sha256,
+        **heading(FORMAT, scenario),
         "wind": {"speed_m_s": wind.speed, "averaging_s": wind.averaging, "height_m": wind.height},
         "looked_up_to_m_s": limits.most,
         "limits": [limit_as_dict(limits.circle[k], cables) for k in limits.listed],

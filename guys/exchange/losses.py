@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.limit import limit_as_dict
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
@@ -22,10 +22,7 @@ FORMAT = "guys-lost/1"
 def as_dict(found: Lost) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "sudden": found.scenario.lost.sudden,
         "losses": [_loss(found, k) for k in range(len(found.losses))],
         "judged_by": list(judged_by(found)),

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.loads import CaseLine
@@ -17,10 +17,7 @@ FORMAT = "guys-matters/1"
 def as_dict(found: Matters) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "point": _reading(found.point),
         "ranges": [_span(s) for s in found.spans],
         "judged_by": list(told(found)),

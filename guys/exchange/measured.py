@@ -6,11 +6,10 @@ from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.exchange.field import celsius
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import number
 from guys.exchange.tables import as_csv
 from guys.studies.measured import Measured
-from guys.version import __version__
 
 FORMAT = "guys-measured/1"
 
@@ -46,10 +45,7 @@ def anchors(found: Measured) -> list[dict[str, Any]]:
 def as_dict(found: Measured) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.plan.scenario.title,
-        "guys_version": __version__,
-        "scenario_sha256": found.plan.scenario.sha256,
+        **heading(FORMAT, found.plan.scenario),
         "temperature_degC": celsius(found.temperature),
         "readings": [
             {"cable": t.reading.cable, "by": t.reading.by, "line": t.reading.line, "tension_N": t.tension, "error_N": t.error}

@@ -6,11 +6,10 @@ import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import number
 from guys.exchange.tables import as_csv
 from guys.studies.plumbing import Plumb
-from guys.version import __version__
 
 FORMAT = "guys-plumb/1"
 
@@ -31,10 +30,7 @@ def rows(found: Plumb) -> list[dict[str, Any]]:
 def as_dict(found: Plumb) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": __version__,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "cables": rows(found),
         "spars": [
             {

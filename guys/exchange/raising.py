@@ -7,14 +7,13 @@ from typing import Any
 
 import numpy as np
 
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, finding, number
 from guys.exchange.tables import Cell, as_csv
 from guys.results import Finding
 from guys.rotation import Array
 from guys.studies import hoisting
 from guys.studies.raising import Raised
-from guys.version import __version__
 
 FORMAT = "guys-raise/1"
 MEASURES = {"hoist_N": "hoist", "winch_N": "winch", "lift_line_N": "lift_line", "gin_pole_N": "gin_pole", "holding_N": "holding"}
@@ -25,10 +24,7 @@ def as_dict(raised: Raised, findings: tuple[Finding, ...]) -> dict[str, Any]:
     """The whole raising as plain lists and numbers."""
     lift = raised.lift
     return {
-        "format": FORMAT,
-        "title": lift.scenario.title,
-        "guys_version": __version__,
-        "scenario_sha256": lift.scenario.sha256,
+        **heading(FORMAT, lift.scenario),
         "spar": lift.spar.name,
         "toward_deg": bearing(lift.raising.toward),
         "gin_pole_kind": lift.raising.gin_pole.kind,

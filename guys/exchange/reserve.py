@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import Any
 
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.reserves import Mode, Path, Reserve, Reserves, Standing
@@ -16,10 +16,7 @@ FORMAT = "guys-reserve/1"
 def as_dict(found: Reserves) -> dict[str, Any]:
     """The whole study as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "looked_up_to": found.most,
         "cases": [_standing(found, standing) for standing in found.every],
         "lowest": [

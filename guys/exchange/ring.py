@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.exchange.comparison import in_file
+from guys.exchange.files import heading, json_text
 from guys.exchange.tables import as_csv
 from guys.studies.measures import MEASURES
 from guys.studies.ring import KEYS, Rings
@@ -18,10 +18,7 @@ HEAD = ("ways", "radius_m", "stands", "footprint_m2", *(MEASURES[key].column for
 def as_dict(found: Rings) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "height_m": found.height,
         "rings": [_ring(found, w, r) for w in range(len(found.ways)) for r in range(len(found.radius))],
         "notes": list(found.notes),
@@ -31,7 +28,7 @@ def as_dict(found: Rings) -> dict[str, Any]:
 
 def as_text(found: Rings) -> str:
     """The text of `ring.json`."""
-    return json.dumps(as_dict(found), ensure_ascii=False, allow_nan=False, separators=(",", ":")) + "\n"
+    return json_text(as_dict(found))
 
 
 def _ring(found: Rings, w: int, r: int) -> dict[str, Any]:

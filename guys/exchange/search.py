@@ -8,7 +8,7 @@ from typing import Any
 
 from guys.checks.alarms import CAUTIONS
 from guys.exchange.comparison import in_file, layout_entry
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import number
 from guys.exchange.tables import Cell, as_csv
 from guys.scenario import drawn
@@ -27,10 +27,7 @@ def as_dict(found: Found) -> dict[str, Any]:
     asked = found.scenario.search
     assert asked is not None
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "least": asked.least,
         "against": asked.against,
         "seed": asked.seed,

@@ -6,7 +6,7 @@ import math
 from typing import Any
 
 from guys.checks.alarms import CAUTIONS
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.studies.sizing import AnchorNeeds, Need, Sizing
@@ -23,10 +23,7 @@ HEAD = (
 def as_dict(found: Sizing) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "factor_required": found.scenario.allowables.anchor,
         "allowable_is_default": "anchor" in found.scenario.allowables.defaulted,
         "anchors": [anchor_needs(anchor) for anchor in found.anchors],

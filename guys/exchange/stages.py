@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
-from guys.exchange.files import json_text
+from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.studies.cells import WORDS
@@ -16,10 +16,7 @@ FORMAT = "guys-stages/1"
 def as_dict(found: Stages) -> dict[str, Any]:
     """The whole result as plain lists and numbers."""
     return {
-        "format": FORMAT,
-        "title": found.scenario.title,
-        "guys_version": found.version,
-        "scenario_sha256": found.scenario.sha256,
+        **heading(FORMAT, found.scenario),
         "stages": [_stage(built) for built in found.built],
         "judged_by": list(found.how),
         "cautions": list(found.cautions),
