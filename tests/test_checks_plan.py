@@ -8,11 +8,8 @@ from dataclasses import replace
 import numpy as np
 import pytest
 import scenarios_made as made
-from hypothesis import given, settings
-from hypothesis import strategies as st
 from shapely import LineString, Point, box
 
-from guys.checks import plan
 from guys.results import Finding, Solution
 from guys.scenario.model import Scenario
 from guys.site import Obstacle, Site
@@ -43,44 +40,6 @@ def mast() -> Scenario:
 
 def found(solution: Solution, thing: str, quantity: str) -> Finding:
     return next(f for f in solution.findings if (f.thing, f.quantity) == (thing, quantity))
-
-
-# ---------------------------------------------------------------- distances
-
-
-def brute(a: np.ndarray, b: np.ndarray, parts: int = 60) -> float:
-    """Least distance over many points of both chains."""
-
-    def spread(c: np.ndarray) -> np.ndarray:
-        s = np.linspace(0, len(c) - 1, (len(c) - 1) * parts + 1)
-        return np.column_stack([np.interp(s, np.arange(len(c)), c[:, i]) for i in range(3)])
-
-    return float(np.linalg.norm(spread(a)[:, None] - spread(b)[None], axis=-1).min())
-
-
-@settings(max_examples=60, deadline=None)
-@given(st.lists(st.tuples(*[st.floats(-5, 5)] * 3), min_size=5, max_size=5))
-def test_distance_of_chains_against_many_points(points: list[tuple[float, float, float]]) -> None:
-    a, b = np.array(points[:3]), np.array(points[3:])
-    near, sampled = plan.apart(a, b), brute(a, b)
-    coarse = max(np.linalg.norm(np.diff(c, axis=0), axis=1).max() for c in (a, b)) / 60
-    assert sampled - coarse - ROUNDING <= near <= sampled + ROUNDING
-
-
-def test_distance_by_hand() -> None:
-    across = plan.apart(np.array([[0, 0, 0], [2, 0, 0.0]]), np.array([[1, -1, 3], [1, 1, 3.0]]))
-    assert across == pytest.approx(3.0, abs=ROUNDING)
-    point = np.array([[0, 0, 0], [0, 0, 0.0]])
-    assert plan.apart(point, np.array([[3, 4, 0], [9, 4, 0.0]])) == pytest.approx(5.0, abs=ROUNDING)
-
-
-def test_places_over_an_area_hold_its_edges_and_the_curve_between() -> None:
-    curve = np.array([[0, 0, 4], [1, 0, 1], [2, 0, 4.0]])
-    places = plan.over(curve, box(0.5, -1, 1.5, 1))
-    assert places[:, 2].min() == pytest.approx(1.0)
-    assert places[:, 2].max() == pytest.approx(2.5)
-    assert len(plan.over(curve, box(5, 5, 6, 6))) == 0
-    assert len(plan.over(np.array([[1, 0, 1], [1, 0, 2.0]]), box(0, -1, 2, 1))) == 2
 
 
 # ---------------------------------------------------------------- anchors in plan

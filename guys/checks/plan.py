@@ -21,11 +21,13 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
 from guys.checks.allowables import judge
+from guys.checks.distances import apart, over
 from guys.loads import CaseLine
 from guys.results import Finding, SparLine
-from guys.rotation import Array
+from guys.rotation import Array, dot
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint, Fitting, GroundFoot, HeelFoot, SparPoint
 from guys.site import Obstacle, Site
@@ -55,18 +57,19 @@ class Hung:
     anchors: Array
     spars: tuple[SparLine, ...]
 
-    def standing(self) -> list[int]:
-        """Cases with an equilibrium."""
-        return [k for k in range(len(self.lines)) if not np.isnan(self.spars[0].displacement[k]).any()]
-
     @property
     def carried_by(self) -> dict[str, str]:
         """Spars that stand on others, and on which."""
         return {s.name: s.foot.spar for s in self.scenario.spar if isinstance(s.foot, HeelFoot)}
 
-    def spar_at(self, k: int, case: int) -> Array:
-        """(station, 3) the axis of spar `k` in a case."""
-        return np.asarray(self.spars[k].drawn + self.spars[k].displacement[case])
+    def spar(self, k: int) -> Array:
+        """(case, station, 3) the axis of spar `k`."""
+        return np.asarray(self.spars[k].drawn + self.spars[k].displacement)
+
+
+def _known(chains: Array) -> NDArray[np.int64]:
+    """Cases in which chains (case, point, 3) are known: there is an equilibrium, and the cable is in place."""
+    return np.flatnonzero(~np.isnan(chains).any(axis=(1, 2)))
 
 
 def findings(site: Site | None, hung: Hung) -> tuple[Finding, ...]:
@@ -137,19 +140,6 @@ def _ground(site: Site, hung: Hung, east: Array, north: Array) -> Array:
     return np.full(np.shape(east), feet[0])
 
 
-def over(curve: Array, shape: BaseGeometry) -> Array:
-    """(place, 3) where a curve (point, 3) is over a shape in plan: ends of each stretch and the points between; none where it is not."""
-    import shapely
-
-    level = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(curve[:, :2], axis=0).T))])
-    if level[-1] < 1e-9:
-        above = shapely.intersects_xy(shape, *curve[0, :2])
-        return curve if above else np.zeros((0, 3))
-    met = shapely.get_coordinates(shapely.intersection(shapely.LineString(curve[:, :2]), shape))
-    along = np.array([shapely.line_locate_point(shapely.LineString(curve[:, :2]), shapely.Point(p)) for p in met])
-    return np.column_stack([np.interp(along, level, curve[:, i]) for i in range(3)]) if len(met) else np.zeros((0, 3))
-
-
 def _headrooms(site: Site, hung: Hung) -> Iterator[Finding]:
     why = "lowest over it, all listed cases, above " + (
         "the surveyed ground" if site.ground is not None else "level ground at the first spar's foot"
@@ -179,21 +169,16 @@ def _lowest(site: Site, hung: Hung, obstacle: Obstacle, cable: int) -> tuple[flo
     """Least height of a cable above the ground over an obstacle, and the case; None where it passes beside it."""
     import shapely
 
-    found: list[tuple[float, CaseLine]] = []
-    low, high = (f(hung.curves[:, cable, :, :2], axis=(0, 1)) for f in (np.nanmin, np.nanmax))
+    curves, rows = hung.curves[:, cable], _known(hung.curves[:, cable])
+    low, high = (f(curves[..., :2], axis=(0, 1)) for f in (np.nanmin, np.nanmax))
     if not shapely.intersects(shapely.box(*low, *high), obstacle.shape):
         return None
-    for k in hung.standing():
-        curve = hung.curves[k, cable]
-        if np.isnan(curve).any():
-            continue
-        places = over(curve, obstacle.shape)
-        if len(places):
-            height = places[:, 2] - _ground(site, hung, places[:, 0], places[:, 1])
-            found.append((float(np.min(height)), hung.lines[k]))
-    if not found:
+    case, places = over(curves[rows], obstacle.shape)
+    if len(places) == 0:
         return None
-    return next((f for f in found if math.isnan(f[0])), min(found, key=lambda f: f[0]))
+    height = places[:, 2] - _ground(site, hung, places[:, 0], places[:, 1])
+    k = int(np.argmin(height))  # of what is not known, the first
+    return float(height[k]), hung.lines[rows[case[k]]]
 
 
 # ---------------------------------------------------------------- overhead lines
@@ -208,17 +193,17 @@ def _overhead(site: Site, hung: Hung) -> Iterator[Finding]:
             yield _not_judged("all", f"from {obstacle.name}", obstacle.distance, "the line runs over ground that is not surveyed")
             continue
         for n, cable in enumerate(hung.scenario.cable):
-            near, line = _nearest([(hung.curves[k, n], hung.lines[k]) for k in hung.standing()], wire)
+            near, line = _nearest(hung.lines, hung.curves[:, n], wire)
             yield _finding(
                 f"cable {cable.name}", f"from {obstacle.name}", obstacle.distance, near, "in space, standing and in its swing", line
             )
         for n, spar in enumerate(hung.spars):
-            near, line = _nearest([(hung.spar_at(n, k), hung.lines[k]) for k in hung.standing()], wire)
+            near, line = _nearest(hung.lines, hung.spar(n), wire)
             yield _finding(
                 f"spar {spar.name}", f"from {obstacle.name}", obstacle.distance, near, "in space, standing and in its swing", line
             )
         for name, foot, reach in fall_circles(hung.spars, hung.carried_by):
-            left = apart(np.stack([foot, foot]), wire) - reach
+            left = float(apart(np.stack([foot, foot]), wire)) - reach
             why = f"in the fall it may come anywhere within {reach:.1f} m of its foot; cables it drags may come farther"
             yield _finding(f"spar {name}", f"from {obstacle.name} in the fall", obstacle.distance, left, why)
 
@@ -231,31 +216,14 @@ def _wire(site: Site, hung: Hung, obstacle: Obstacle) -> Array:
     return np.column_stack([plan, _ground(site, hung, plan[:, 0], plan[:, 1]) + (obstacle.height or 0.0)])
 
 
-def _nearest(curves: Sequence[tuple[Array, CaseLine]], wire: Array) -> tuple[float, CaseLine | None]:
-    found = [(float(apart(curve, wire)), line) for curve, line in curves if not np.isnan(curve).any()]
-    return min(found, key=lambda f: f[0]) if found else (math.nan, None)
-
-
-def apart(a: Array, b: Array) -> float:
-    """Least distance [m] between two chains of straight pieces (point, 3) and (point, 3).
-
-    Of two pieces p + s u and q + t v the nearest points lie inside both, or at an end of one: all are tried, and the least taken.
-    """
-    p, u = a[:-1, None], np.diff(a, axis=0)[:, None]
-    q, v = b[None, :-1], np.diff(b, axis=0)[None]
-    r = p - q
-    uu, vv, uv, ur, vr = ((x * y).sum(-1) for x, y in ((u, u), (v, v), (u, v), (u, r), (v, r)))
-    room = uu * vv - uv**2
-    s = np.clip(np.where(room > 1e-12 * uu * vv, (uv * vr - vv * ur) / np.where(room > 0, room, 1.0), 0.0), 0.0, 1.0)
-    candidates = []
-    for s_try in (s, np.zeros_like(s), np.ones_like(s)):
-        t = np.clip(np.where(vv > 0, (uv * s_try + vr) / np.where(vv > 0, vv, 1.0), 0.0), 0.0, 1.0)
-        s_best = np.clip(np.where(uu > 0, (uv * t - ur) / np.where(uu > 0, uu, 1.0), 0.0), 0.0, 1.0)
-        candidates.append(np.linalg.norm(r + s_best[..., None] * u - t[..., None] * v, axis=-1))
-    for t_end in (np.zeros_like(s), np.ones_like(s)):
-        s_best = np.clip(np.where(uu > 0, (uv * t_end - ur) / np.where(uu > 0, uu, 1.0), 0.0), 0.0, 1.0)
-        candidates.append(np.linalg.norm(r + s_best[..., None] * u - t_end[..., None] * v, axis=-1))
-    return float(np.min(candidates))
+def _nearest(lines: Sequence[CaseLine], chains: Array, others: Array) -> tuple[float, CaseLine | None]:
+    """Least distance of chains (case, point, 3) from others (case, point, 3), or from one (point, 3), and its case."""
+    rows = _known(chains)
+    if len(rows) == 0:
+        return math.inf, None
+    found = apart(chains[rows], others[rows] if others.ndim == chains.ndim else others)
+    k = int(np.nanargmin(found))
+    return float(found[k]), lines[rows[k]]
 
 
 # ---------------------------------------------------------------- things in each other's way
@@ -282,15 +250,19 @@ def _meet(hung: Hung, i: int, j: int) -> bool:
 
 
 def _nearest_pair(hung: Hung, i: int, j: int) -> tuple[float, CaseLine | None]:
-    """Least distance of two cables over the cases; of cables that cannot come near, that of the first case less what they move."""
+    """Least distance of two cables over the cases; of cables that cannot come near, a bound that tells so.
+
+    That is the distance in the first case less what they move, or that of their points less half a piece of each.
+    """
     first = hung.curves[0, [i, j]]
     moves = float(np.nansum(np.nanmax(np.linalg.norm(hung.curves[:, [i, j]] - first, axis=-1), axis=(0, 2), initial=0.0)))
-    still = apart(*first)
+    still = float(apart(*first))
     if still - moves > APART:
         return still - moves, None
-    found = [(apart(hung.curves[k, i], hung.curves[k, j]), hung.lines[k]) for k in hung.standing()]
-    good = [(d, line) for d, line in found if not math.isnan(d)]
-    return min(good, key=lambda f: f[0]) if good else (math.inf, None)
+    between = hung.curves[:, i, :, None] - hung.curves[:, j, None]
+    points = np.sqrt(dot(between, between).min(axis=(1, 2))) - 0.5 * (_piece(hung, i) + _piece(hung, j))
+    near = np.flatnonzero(points < APART)
+    return _nearest([hung.lines[k] for k in near], hung.curves[near, i], hung.curves[near, j])
 
 
 def _near_fitting(hung: Hung, spar: SparLine, fitting: Fitting) -> Iterator[str]:
@@ -305,7 +277,7 @@ def _near_fitting(hung: Hung, spar: SparLine, fitting: Fitting) -> Iterator[str]
         beside = any(p.spar == spar.name and abs(p.at - fitting.at) < 2 * (radius + APART) for p in ends)
         if beside or np.isnan(away[:, n]).all() or np.nanmin(away[:, n]) > radius + _piece(hung, n):
             continue
-        near, line = _nearest_to([(hung.curves[k, n], hung.lines[k], places[k]) for k in hung.standing()])
+        near, line = _nearest(hung.lines, hung.curves[:, n], np.stack([places, places], axis=1))
         if near < radius and line is not None:
             disc = f"whose area is a disc of {radius:.2f} m"
             yield f"cable {cable.name} passes {near:.2f} m from the middle of {fitting.name}, {disc}, in {line.name}"
@@ -316,12 +288,6 @@ def _piece(hung: Hung, cable: int) -> float:
     return float(np.nanmax(np.linalg.norm(np.diff(hung.curves[:, cable], axis=1), axis=-1), initial=0.0))
 
 
-def _nearest_to(found: Sequence[tuple[Array, CaseLine, Array]]) -> tuple[float, CaseLine | None]:
-    """Least distance of curves (point, 3) from a place (3,) each, and its case."""
-    near = [(apart(np.stack([place, place]), curve), line) for curve, line, place in found if not np.isnan(curve).any()]
-    return min(near, key=lambda f: f[0]) if near else (math.inf, None)
-
-
 def _anchors_beside_cables(hung: Hung) -> Iterator[Finding]:
     pieces = [_piece(hung, n) for n in range(len(hung.scenario.cable))]
     for at, anchor in zip(hung.anchors, hung.scenario.anchor, strict=True):
@@ -330,7 +296,7 @@ def _anchors_beside_cables(hung: Hung) -> Iterator[Finding]:
             own = isinstance(cable.to, AnchorPoint) and cable.to.anchor == anchor.name
             if own or not points[n] - pieces[n] < BESIDE:
                 continue
-            near, line = _nearest_to([(hung.curves[k, n], hung.lines[k], at) for k in hung.standing()])
+            near, line = _nearest(hung.lines, hung.curves[:, n], np.stack([at, at]))
             if near < BESIDE:
                 yield _finding(
                     f"anchor {anchor.name}", f"from cable {cable.name}", BESIDE, near, "another anchor's cable (common practice)", line
