@@ -26,7 +26,7 @@ FINE = -(-12 // mesh.ELEMENTS)
 TWELVE = Allowance(6e-5, "twelve elements to a span", share=True)
 STILL = '[[case]]\nname = "still"\nwind = 0.0\n'
 TAUT = 1e-5
-"""Strain of the stays below."""
+"""Strain of the stays below, unless they are to move by more."""
 STRAIGHT = '[analysis]\ncable = "straight"\n'
 
 
@@ -53,9 +53,9 @@ def anchor_ring(bearings: dict[str, float], radius: str, level: str = "0 m") -> 
     return "".join(f'[[anchor]]\nname = "{n}"\nbearing = "{b} deg"\nradius = "{radius}"\nlevel = "{level}"\n' for n, b in bearings.items())
 
 
-def guy(name: str, at: str, to: str, how: str, rope: str = "line") -> str:
-    """A cable from the mast to an anchor; how: its tension, length or tight line."""
-    return f'[[cable]]\nname = "{name}"\nfrom = {{ spar = "mast", at = "{at}" }}\nto = {{ anchor = "{to}" }}\nrope = "{rope}"\n{how}\n'
+def guy(name: str, at: str, to: str, how: str, rope: str = "line", of: str = "mast") -> str:
+    """A cable from a spar to an anchor; how: its tension, length or tight line."""
+    return f'[[cable]]\nname = "{name}"\nfrom = {{ spar = "{of}", at = "{at}" }}\nto = {{ anchor = "{to}" }}\nrope = "{rope}"\n{how}\n'
 
 
 def rope(stiffness: str, *, name: str = "line", diameter: str = "10 mm", mass: str = "0.1 kg/m", drag: float = 0.0, more: str = "") -> str:
@@ -92,14 +92,18 @@ def critical(text_of: Callable[[float], str], low: float, high: float, finer: in
     return float(brentq(lambda p: stability.modes(*unbuckled(text_of(p), finer), 1).value[0], low, high, rtol=1e-10, xtol=near))
 
 
-def cross_stays(level: str, stiffness: float, reach: float = 10.0) -> str:
-    """Four straight level stays that hold the mast at its height `level` [m] sideways with so many N/m and leave it free to sink.
+def cross_stays(
+    level: str, stiffness: float, reach: float = 10.0, *, taut: float = TAUT, middle: float = 0.0, of: str = "mast", at: str = ""
+) -> str:
+    """Four straight level stays that hold a spar at a level [m] sideways with so many N/m and leave it free to sink.
 
-    Along a stay EA/L0 = (EA + T)/c with T its tension and c its length, across it T/c: together (2 EA + 4 T)/c.  T is a hundred thousandth
-    of EA: more than the stays slacken by here, and little enough not to carry what the mast sinks onto them.
+    Along a stay EA/L0 = (EA + T)/c with T its tension and c its length, across it T/c: together (2 EA + 4 T)/c.  T, `taut` of EA, is more
+    than the stays slacken by, and little enough not to carry what the mast sinks onto them.
+    middle : [m] east of the origin where the spar is there;  of, at : the spar and the place along it, the mast's at that height without
     """
-    EA = stiffness * reach / (2 + 4 * TAUT)
-    bearings = {"n": 0.0, "e": 90.0, "s": 180.0, "w": 270.0}
-    unstressed = f'length = "{reach / (1 + TAUT)!r} m"'
-    stays = "".join(guy(n, level, n, unstressed, "stay") for n in bearings)
-    return anchor_ring(bearings, f"{reach} m", level) + stays + rope(f"{EA!r} N", name="stay", mass="0 kg/m") + STRAIGHT
+    EA = stiffness * reach / (2 + 4 * taut)
+    ends = {"n": (middle, reach), "e": (middle + reach, 0.0), "s": (middle, -reach), "w": (middle - reach, 0.0)}
+    unstressed = f'length = "{reach / (1 + taut)!r} m"'
+    stays = "".join(guy(n, at or level, n, unstressed, "stay", of) for n in ends)
+    anchors = "".join(anchor(n, f"{east!r} m", f"{north!r} m", level) for n, (east, north) in ends.items())
+    return anchors + stays + rope(f"{EA!r} N", name="stay", mass="0 kg/m") + STRAIGHT
