@@ -13,6 +13,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as some
 
 from guys import cli, stability
+from guys.checks.items import Item
+from guys.drawing.losses import load_row
+from guys.drawing.rounding import force, tongue
 from guys.exchange import losses
 from guys.loads import lines_of, setting_line
 from guys.studies import cells, lost
@@ -251,6 +254,35 @@ def test_json_and_csv_hold_every_loss_case_and_wind() -> None:
     assert len(losses.as_table(found).splitlines()) == 1 + 10 * 38
     least = min((c for c in told["losses"][1]["cells"] if c.get("factor")), key=lambda c: c["factor"] / c["factor_required"])
     assert told["losses"][1]["least_factor"]["factor"] == least["factor"]
+
+
+def test_the_way_of_failing_goes_with_what_governs() -> None:
+    """Of rest and swing, and of several cases, each keeps the item and the mode of its own greater use; what falls has none."""
+    item = Item("anchor A", "pull", "N", "", modes=("sliding", "lifting"))
+    bare = (np.array([1.0]), np.zeros((1, 0)), np.zeros((1, 0)), ("",), (item,))
+
+    def of(use: float, governs: int, mode: int) -> cells.Cells:
+        code = np.array([cells.PAST if use > 1 else cells.WITHIN])
+        return cells.Cells(code, np.array([use]), np.array([governs]), np.array([mode]), *bare)
+
+    rest, swing, none = of(0.5, 0, 0), of(1.5, 0, 1), of(math.nan, -1, -1)
+    assert [x.how(0) for x in (rest, swing, none)] == ["sliding", "lifting", ""]
+    assert [lost._worse(*pair).how(0) for pair in ((rest, swing), (swing, rest), (none, swing))] == ["lifting", "lifting", "lifting"]
+    both = cells.joined(rest, swing)
+    assert [both.how(k) for k in (0, 1)] == ["sliding", "lifting"]
+    assert both.put(np.array([0]), swing).how(0) == both.take([1]).how(0) == "lifting"
+    assert cells.without_loads(replace(swing, verdict=np.array([cells.FALLS]))).how(0) == ""
+
+
+def test_way_of_failing_stands_in_file_and_on_the_page() -> None:
+    document = made.ring_mast(4, 0.0, holdfast={"h": {"kind": "block", "mass": "900 kg", "friction": 0.5}})
+    document["anchor"] = [{**a, "holdfast": "h"} for a in document["anchor"]]
+    found = lose(document)
+    told = losses.as_dict(found)["losses"][0]
+    assert (told["least_factor"]["quantity"], told["least_factor"]["how"]) == ("pull", "sliding")
+    assert {c["how"] for c in told["cells"] if c["governs"].startswith("anchor")} == {"sliding"}
+    assert "quantity,how,factor" in losses.as_table(found).splitlines()[0]
+    assert load_row(found, 0, tongue("SI"), force)[1].endswith(", sliding")
 
 
 # ---------------------------------------------------------------- a case without a cable

@@ -19,14 +19,15 @@ from guys.drawing.lettering import fitted, shortened, width
 from guys.drawing.page import Page, Rect
 from guys.drawing.rounding import ABSENT, Say, Tongue, Units, bearing, factor, force, tongue
 from guys.drawing.table import Column, Grid, draw_grid
-from guys.studies.cells import FALLS, NOT_JUDGED, PAST, worst_use
+from guys.studies.cells import FALLS, NOT_JUDGED, PAST, Cells, worst_use
 from guys.studies.lost import Lost, judged_by
 
 SQUARE = 5.3
 NAMES, STILL = 62.0, 16.0
 ABOVE = 13.0
 KEY = 11.0
-"""Millimetres: side of a square at the most, room for the losses' names and for still air, heads above, the key below."""
+FAILS = 54.0
+"""Millimetres: side of a square at the most, room for the losses' names and for still air, heads above, the key below, for what governs."""
 
 
 def draw_losses(found: Lost, paper: str, units: Units) -> Figure:
@@ -122,10 +123,9 @@ def load_row(found: Lost, k: int, speech: Tongue, how: Say) -> list[str]:
     out = [ABSENT] * 3
     least = worst_use(cells)
     if least is not None:
-        item = int(cells.governs[least])
         out = [
             f"{factor(cells.required[least] / cells.use[least])}{' past' if cells.use[least] > 1 else ''}",
-            shortened(cells.items[item].thing, 32.0, style.BODY),
+            _fails(cells, least),
             bearing(found.lines[least].wind_from),
         ]
     names = ([c.name for c in found.scenario.cable], [a.name for a in found.scenario.anchor])
@@ -136,3 +136,10 @@ def load_row(found: Lost, k: int, speech: Tongue, how: Say) -> list[str]:
         column = int(np.nanargmax(loads)) % loads.shape[1]
         out += [speech.say(how, float(np.nanmax(loads))), shortened(some[column], 26.0, style.BODY)]
     return out
+
+
+def _fails(cells: Cells, line: int) -> str:
+    """What governs a line, and in which of its ways of failing; by what it is judged where it has but one, or there is no room."""
+    item = cells.items[int(cells.governs[line])]
+    every = [f"{item.thing}, {words}" for words in (cells.how(line), item.quantity) if words]
+    return next((words for words in every if width(words, style.BODY) < FAILS), shortened(every[-1], FAILS, style.BODY))

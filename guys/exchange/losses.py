@@ -17,6 +17,8 @@ from guys.studies.cells import FALLS, WORDS, Cells, worst_first, worst_use
 from guys.studies.lost import Lost, judged_by
 
 FORMAT = "guys-lost/1"
+JUDGED = ("governs", "quantity", "how", "factor", "factor_required")
+"""Keys and columns of what governs."""
 
 
 def as_dict(found: Lost) -> dict[str, Any]:
@@ -76,7 +78,8 @@ def _governing(found: Lost, cells: Cells, line: int) -> dict[str, Any]:
     required, use = float(cells.required[line]), float(cells.use[line])
     factor = number(required / use if use > 0 else float("inf"))
     thing = cells.items[item]
-    return {"governs": thing.thing, "quantity": thing.quantity, "factor": factor, "factor_required": required}
+    how = {"how": cells.how(line)} if cells.how(line) else {}
+    return {"governs": thing.thing, "quantity": thing.quantity, **how, "factor": factor, "factor_required": required}
 
 
 def _greatest(found: Lost, loads: Array, kind: str, names: Sequence[str], key: str) -> dict[str, Any] | None:
@@ -97,8 +100,8 @@ def _cell(found: Lost, k: int, line: int) -> dict[str, Any]:
 def as_table(found: Lost) -> str:
     """The text of `lost.csv`: a row a loss, case and direction."""
     head = [
-        "lost", "name", "case", "wind_from_deg", "verdict", "solved", "governs", "factor", "factor_required", "greatest_tension_N", "cable",
-        "greatest_pull_N", "anchor", "speed_m_s", "equilibrium_lost_m_s", "reason",
+        "lost", "name", "case", "wind_from_deg", "verdict", "solved", *JUDGED, "greatest_tension_N", "cable", "greatest_pull_N", "anchor",
+        "speed_m_s", "equilibrium_lost_m_s", "reason",
     ]  # fmt: skip
     names = [c.name for c in found.scenario.cable], [a.name for a in found.scenario.anchor]
     rows = []
@@ -106,7 +109,7 @@ def as_table(found: Lost) -> str:
         for line in range(len(found.lines)):
             cell = _cell(found, k, line)
             row: list[Cell] = [loss.kind, " and ".join(loss.name), cell["case"], cell["wind_from_deg"], cell["verdict"]]
-            row += ["yes" if cell["solved"] else "no", *(cell.get(key) for key in ("governs", "factor", "factor_required"))]
+            row += ["yes" if cell["solved"] else "no", *(cell.get(key) for key in JUDGED)]
             for loads, some in zip((cells.tension[line], cells.pull[line]), names, strict=True):
                 most = None if len(loads) == 0 or np.isnan(loads).all() else int(np.nanargmax(loads))
                 row += [None, None] if most is None else [float(loads[most]), some[most]]

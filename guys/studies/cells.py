@@ -23,7 +23,7 @@ from guys.studies.batch import Batch
 WORDS = ("within", "not judged", "past", "falls", "not found")
 WITHIN, NOT_JUDGED, PAST, FALLS, NOT_FOUND = range(5)
 """Verdicts, the graver the greater; NOT_FOUND: the solver failed, a fault of the program."""
-_ARRAYS = ("verdict", "use", "governs", "required", "tension", "pull")
+_ARRAYS = ("verdict", "use", "governs", "mode", "required", "tension", "pull")
 
 
 @dataclass(frozen=True)
@@ -31,13 +31,15 @@ class Cells:
     """What became of some cases (case,), the worse of what is held together.
 
     verdict : code;  reason : why it falls
-    use, governs, required : greatest use of anything judged, its item and the factor required (NaN, -1, NaN: nothing)
+    use, governs, mode, required : greatest use of anything judged, its item, which of the item's modes governs there, and the factor
+        required (NaN, -1, -1, NaN: nothing)
     tension : (case, cable) greater end [N];  pull : (case, anchor) resultant [N];  items : everything judged
     """
 
     verdict: NDArray[np.int64]
     use: Array
     governs: NDArray[np.int64]
+    mode: NDArray[np.int64]
     required: Array
     tension: Array
     pull: Array
@@ -58,6 +60,11 @@ class Cells:
             reason[row] = other.reason[k]
         return Cells(**some, reason=tuple(reason), items=self.items)
 
+    def how(self, row: int) -> str:
+        """In words the way of failing, part or place of what governs a case; empty where there is none to tell."""
+        item, mode = int(self.governs[row]), int(self.mode[row])
+        return self.items[item].modes[mode] if item >= 0 and mode >= 0 else ""
+
 
 def _written(into: NDArray[Any], rows: NDArray[np.int64], values: NDArray[Any]) -> NDArray[Any]:
     out = into.copy()
@@ -74,11 +81,11 @@ def cells_of(batch: Batch) -> Cells:
         row = {line: k for k, line in enumerate(batch.lines)}
         for k, line in enumerate(batch.mirror_lines):
             _put_worse(plain, row[line], beside, k)
-    use, required, governs, tension, pull = plain
+    use, required, governs, mode, tension, pull = plain
     judged = np.where(np.isnan(use), NOT_JUDGED, np.where(use > 1, PAST, WITHIN))
     verdict = np.where(stands, judged, np.where(batch.code == stability.FAILED, NOT_FOUND, FALLS))
     reason = tuple("" if ok else (why or note or "") for ok, why, note in zip(stands, batch.reason, batch.note, strict=True))
-    return without_loads(Cells(verdict, use, governs, required, tension, pull, reason, batch.demands.items))
+    return without_loads(Cells(verdict, use, governs, mode, required, tension, pull, reason, batch.demands.items))
 
 
 def without_loads(cells: Cells) -> Cells:
@@ -86,27 +93,31 @@ def without_loads(cells: Cells) -> Cells:
     gone = cells.verdict >= FALLS
     use, required = np.where(gone, np.nan, cells.use), np.where(gone, np.nan, cells.required)
     tension, pull = np.where(gone[:, None], np.nan, cells.tension), np.where(gone[:, None], np.nan, cells.pull)
-    return Cells(cells.verdict, use, np.where(gone, -1, cells.governs), required, tension, pull, cells.reason, cells.items)
+    governs, mode = np.where(gone, -1, cells.governs), np.where(gone, -1, cells.mode)
+    return Cells(cells.verdict, use, governs, mode, required, tension, pull, cells.reason, cells.items)
 
 
-_Plain = tuple[Array, Array, NDArray[np.int64], Array, Array]
+_Plain = tuple[Array, Array, NDArray[np.int64], NDArray[np.int64], Array, Array]
+_OF_ITEM = 4
+"""How many of these are of the item that governs: the rest are loads."""
 
 
 def _read(judged: Demands, forces: Forces) -> _Plain:
-    """Greatest use with the factor required and its item, tensions and pulls."""
+    """Greatest use with the factor required, its item and the item's mode, tensions and pulls."""
     known, each = np.where(np.isnan(judged.use), -1.0, judged.use), np.arange(len(judged.use))
     best = known.argmax(axis=1)
     none = known[each, best] < 0
     use, required = (np.where(none, np.nan, a[each, best]) for a in (known, judged.required))
     found = measures(forces)
-    return use, required, np.where(none, -1, best), found.tension, found.resultant
+    governs, mode = (np.where(none, -1, a) for a in (best, judged.mode[each, best]))
+    return use, required, governs, mode, found.tension, found.resultant
 
 
 def _put_worse(mine: _Plain, k: int, other: _Plain, j: int) -> None:
     if other[0][j] > mine[0][k]:
-        for a, b in zip(mine[:3], other[:3], strict=True):
+        for a, b in zip(mine[:_OF_ITEM], other[:_OF_ITEM], strict=True):
             a[k] = b[j]
-    for a, b in zip(mine[3:], other[3:], strict=True):
+    for a, b in zip(mine[_OF_ITEM:], other[_OF_ITEM:], strict=True):
         a[k] = np.fmax(a[k], b[j])
 
 

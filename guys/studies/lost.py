@@ -227,10 +227,10 @@ def swing_of(setting: Setting, whole: Batch, rows: NDArray[np.int64], sudden: fl
 def _worse(a: Cells, b: Cells) -> Cells:
     """Line by line the graver verdict, the greater use and the greater loads; none of these where it falls in either."""
     swings = (b.use > a.use) | np.isnan(a.use)
-    governs, required = np.where(swings, b.governs, a.governs), np.where(swings, b.required, a.required)
+    governs, mode, required = (np.where(swings, getattr(b, n), getattr(a, n)) for n in ("governs", "mode", "required"))
     reason = tuple(x or (f"as it swings: {y}" if y else "") for x, y in zip(a.reason, b.reason, strict=True))
     use, tension, pull = (np.fmax(getattr(a, n), getattr(b, n)) for n in ("use", "tension", "pull"))
-    return without_loads(Cells(np.maximum(a.verdict, b.verdict), use, governs, required, tension, pull, reason, a.items))
+    return without_loads(Cells(np.maximum(a.verdict, b.verdict), use, governs, mode, required, tension, pull, reason, a.items))
 
 
 def _fallen(still: Cells, lines: int) -> Cells:
