@@ -322,7 +322,7 @@ def search(file: str, out: str | None, as_json: bool, units: str, layout: str | 
 
 
 def _ways(_: click.Context, __: click.Parameter, value: str) -> tuple[int, ...]:
-    from guys.studies.ring import FEWEST, MOST
+    from guys.scenario.search import FEWEST, MOST
 
     numbers = [part.strip() for part in value.split(",")]
     if not all(n.isdigit() and FEWEST <= int(n) <= MOST for n in numbers):

@@ -13,7 +13,8 @@ from guys import cli, parse_scenario
 from guys.errors import ScenarioError
 from guys.exchange import ring as files
 from guys.scenario import Scenario
-from guys.studies.ring import KEYS, ring, rings
+from guys.scenario.ring import ring
+from guys.studies.ring import KEYS, rings
 
 HEIGHT = 10.0
 SLOPE = 5e-3
@@ -50,7 +51,7 @@ def test_thrust_is_the_uplift_of_all_guys() -> None:
 
 
 def test_a_ring_as_drawn_is_the_drawing() -> None:
-    again = ring(rigid(), 8.0, 3)
+    again = ring(rigid(), 3, 8.0)
     for one, other in zip(again.anchor, rigid().anchor, strict=True):
         assert (one.east, one.north, one.level) == pytest.approx((other.east, other.north, other.level))
     assert [c.name for c in again.cable] == ["10 m 1", "10 m 2", "10 m 3"]

@@ -6,6 +6,7 @@ import json
 import math
 from collections.abc import Iterable, Iterator
 from concurrent.futures import Executor, Future, ProcessPoolExecutor
+from copy import deepcopy
 from dataclasses import replace
 from pathlib import Path
 from typing import Any
@@ -18,17 +19,24 @@ from guys import cli, parse_scenario
 from guys.errors import ScenarioError
 from guys.exchange import search as files
 from guys.scenario import Scenario
+from guys.scenario.ring import ring
 from guys.site import Obstacle, Site
-from guys.studies.measures import MEASURES
-from guys.studies.search import Found, not_bettered, search
+from guys.studies import standing
+from guys.studies.compare import solved
+from guys.studies.measures import MEASURES, measured
+from guys.studies.search import Found, not_bettered, rigged, search
 from guys.studies.trial import HOLDS, MISPLACED, PAST, Trial, placed, spans, tried
 
 TABLE = '\n[search]\nleast = "{least}"\ntries = {tries}\ndirections = 2\n{more}'
+SPOTS = ", ".join(f'{{ bearing = "{b} deg", radius = "{r} m" }}' for b, r in ((200, 9), (0, 8), (60, 11), (130, 10), (300, 12)))
 FLAT = 1e-3
 """Relative: beside its least the pull of a ring changes by less than this over the grid's step of 0.4 m, and the search ends as near."""
 DRAWN = made.mast(0.0, setting={"plumb": True})
 """Tensions that leave the mast upright wherever its anchors stand: with the same targets everywhere it would lean."""
+RIGID = made.ring_mast(3, 0.0, setting={"plumb": True})
+"""Quick to solve."""
 ALL = '[[search.move]]\nanchors = ["A", "B", "C"]\nradius = ["4 m", "14 m"]\n'
+ALONE = '[[search.move]]\nradius = ["4 m", "14 m"]\n'
 ONE = '[[search.move]]\nanchors = ["A"]\nbearing = ["-30 deg", "30 deg"]\nradius = ["5 m", "12 m"]\n'
 
 
@@ -83,6 +91,105 @@ def test_grades_put_rules_before_measures() -> None:
     assert grades == sorted(set(grades))
     assert trial.grade(0, limit=90.0) > replace(trial, values=(7.0, 80.0)).grade(0, limit=90.0)
     assert not_bettered([trial, replace(trial, values=(6.0, 120.0)), order[1]]) == (trial, order[1])
+
+
+# ---------------------------------------------------------------- how many anchors
+
+
+def test_so_many_ways_are_the_ring_of_that_number_by_brute_force() -> None:
+    """Four ways, radius and turn: as good as the best of a grid of rings that `guys ring` would solve, put there by another function."""
+    move = '[[search.move]]\nradius = ["7 m", "13 m"]\nturn = ["0 deg", "45 deg"]\n'
+    result = search(parse_scenario(made.text(RIGID) + TABLE.format(least="uplift", tries=60, more="ways = 4\n") + move))
+    assert result.best is not None
+    grid = [_uplift(ring(_turned(result.scenario, turn), 4, radius)) for radius in (7.0, 9.0, 11.0, 13.0) for turn in (0.0, 22.5, 45.0)]
+    assert result.best.values[0] <= min(grid) * (1 + FLAT)
+    assert math.hypot(result.best.anchors[0].east, result.best.anchors[0].north) == pytest.approx(13.0, abs=0.5)
+    assert [a.name for a in result.best.anchors] == ["1", "2", "3", "4"]
+    assert len(result.start.cable) == 4
+
+
+def _turned(scenario: Scenario, degrees: float) -> Scenario:
+    """The first anchor at another bearing, wind from few directions."""
+    first, turn = scenario.anchor[0], math.radians(degrees)
+    east = first.east * math.cos(turn) + first.north * math.sin(turn)
+    north = first.north * math.cos(turn) - first.east * math.sin(turn)
+    moved = first.model_copy(update={"east": east, "north": north})
+    assert scenario.wind is not None
+    wind = scenario.wind.model_copy(update={"directions": (0.0, math.pi)})
+    return scenario.model_copy(update={"anchor": (moved, *scenario.anchor[1:]), "wind": wind})
+
+
+def _uplift(scenario: Scenario) -> float:
+    return measured(standing.solution(*standing.cases(scenario, circle=False), again=False), (), ("uplift",))["uplift"].value
+
+
+def test_each_anchor_moves_in_its_own_sector() -> None:
+    move = '[[search.move]]\nradius = ["5 m", "12 m"]\nbearing = ["0 deg", "360 deg"]\n'
+    start = rigged(mast(move=move, more="ways = 4\n"))
+    numbers = spans(start.search.move)  # type: ignore[union-attr]
+    assert [s.what for s in numbers] == ["radius", "bearing"] * 4
+    sectors = [(s.least, s.most) for s in numbers if s.what == "bearing"]
+    assert sectors == [pytest.approx((math.pi / 2 * k, math.pi / 2 * (k + 1))) for k in range(4)]
+    bearings = (10.0, 100.0, 260.0, 300.0)
+    at = placed(start, [x for k, b in enumerate(bearings) for x in (6.0 + k, math.radians(b))])
+    assert [math.hypot(a.east, a.north) for a in at] == pytest.approx([6.0, 7.0, 8.0, 9.0], abs=0.01)
+    assert [math.degrees(math.atan2(a.east, a.north)) % 360 for a in at] == pytest.approx(bearings, abs=0.1)
+
+
+def test_so_many_places_of_a_list_are_tried_in_every_choice_once() -> None:
+    """Three of five: ten layouts (five over three), each of three different places, the best of them found."""
+    text = made.text(RIGID) + TABLE.format(least="pull", tries=20, more="ways = 3\n")
+    result = search(parse_scenario(text + f"[[search.move]]\nplaces = [{SPOTS}]\n"))
+    chosen = [frozenset((a.east, a.north) for a in trial.anchors) for trial in result.trials]
+    assert len(chosen) == len(set(chosen)) == math.comb(5, 3)
+    assert all(len(each) == 3 for each in chosen)
+    assert result.best is not None
+    assert result.best.values[0] == min(t.values[0] for t in result.trials if t.outcome == HOLDS)
+
+
+def test_anchors_take_places_in_their_order_round_the_foot() -> None:
+    """Drawn at 10, 130 and 250 deg: whatever is chosen, the order stays clockwise and all turn least together."""
+    scenario = mast(move=f"[[search.move]]\nplaces = [{SPOTS}]\n")
+    for numbers, bearings in (((0, 0, 0), (0, 60, 130)), ((0, 1, 2), (0, 130, 300)), ((1, 2, 1), (60, 130, 200 + 100))):
+        at = placed(scenario, numbers)
+        found = [round(math.degrees(math.atan2(a.east, a.north)) % 360) for a in at]
+        assert sorted(found) == sorted(bearings)
+        turns = [sum(abs((b - d + 180) % 360 - 180) for b, d in zip(each, (10, 130, 250), strict=True)) for each in _orders(sorted(found))]
+        assert sum(abs((b - d + 180) % 360 - 180) for b, d in zip(found, (10, 130, 250), strict=True)) == min(turns)
+
+
+def _orders(bearings: list[int]) -> list[list[int]]:
+    """The clockwise orders."""
+    return [bearings[k:] + bearings[:k] for k in range(len(bearings))]
+
+
+def test_what_a_ring_search_hands_back_is_read_as_what_was_solved() -> None:
+    """Whole tables in place of the file's own: the same anchors, held as they were, and the same greatest pull to the last digits."""
+    document = deepcopy(RIGID)
+    document["anchor"][0]["give"] = 3.1e5
+    document["cable"][0]["from"]["arm"] = 0.123
+    more = 'ways = 4\nagainst = "rope"\n'
+    scenario = parse_scenario(made.text(document) + TABLE.format(least="pull", tries=30, more=more) + ALONE)
+    result = search(scenario)
+    assert result.compared is not None
+    assert len(result.front) > 1
+    kept = {key: value for key, value in document.items() if key not in ("anchor", "cable")}
+    pasted = parse_scenario(made.text(kept) + "\n" + files.as_layouts(result))
+    assert pasted.anchor == result.front[0].anchors
+    assert [layout.anchor for layout in pasted.layouts] == [trial.anchors for trial in result.front[1:]]
+    again = measured(solved(pasted)[0], ())["pull"]
+    found = next(each for each in result.compared.layouts if each.name == "found 1")
+    assert again.value == pytest.approx(found.values["pull"].value, rel=1e-12)
+
+
+@pytest.mark.parametrize(("key", "words"), [("length", "fits one radius"), ("spar", "a second spar")])
+def test_what_forms_no_ring_is_refused_when_read(key: str, words: str) -> None:
+    document = made.boom() if key == "spar" else made.mast(0.0)
+    if key == "length":
+        document["cable"][0] = made.cable("cut", 9.0, "A", length=14.0)
+    with pytest.raises(ScenarioError, match=words) as caught:
+        parse_scenario(made.text(document) + TABLE.format(least="pull", tries=20, more="ways = 4\n") + ALONE)
+    assert [fault.key for fault in caught.value.faults] == ["search.ways"]
 
 
 # ---------------------------------------------------------------- rules
@@ -198,7 +305,11 @@ def test_the_command_writes_its_files(tmp_path: Path, capsys: pytest.CaptureFixt
         ('[[search.move]]\nanchors = ["Q"]\nradius = ["4 m", "9 m"]\n', "", "search.move[0].anchors[0]", "no anchor is named"),
         ('[[search.move]]\nanchors = ["A"]\n', "", "search.move[0]", "nothing says where"),
         ('[[search.move]]\nanchors = ["A"]\nradius = ["9 m", "4 m"]\n', "", "search.move[0].radius", "not less than"),
-        ('[[search.move]]\nanchors = ["A", "B"]\nbearing = ["9 deg", "14 deg"]\n', "", "search.move[0].bearing", "for one anchor"),
+        (ONE + '[[search.move]]\nradius = ["4 m", "9 m"]\n', "", "search.move[1]", "all of them"),
+        ('[[search.move]]\nplaces = [{ east = "1 m", north = "1 m" }, { east = "2 m", north = "1 m" }]\n', "",
+         "search.move[0].places", "leave no choice"),
+        (ONE, "ways = 4\n", "search.move[0].anchors[0]", "known: 1, 2, 3, 4"),
+        (ALONE, "ways = 2\n", "search.ways", "3"),
         (ONE + ONE, "", "search.move[1].anchors[0]", "moves already"),
         (ONE, 'against = "pull"\n', "search.against", "the same as least"),
         (ONE, 'against = "pieces"\n', "search.against", ""),

@@ -27,7 +27,7 @@ from guys.scenario import (
     plausible,
     resolve,
     rigging,
-    search,
+    searched,
     staged,
     weather,
 )  # fmt: skip
@@ -185,7 +185,7 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from layouts.findings(tables, site)
     yield from staged.findings(tables)
     yield from hoisting.findings(tables)
-    yield from search.findings(tables)
+    yield from searched.findings(tables)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -256,7 +256,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         lost=_there(tables.lost),
-        search=tables.search,
+        search=None if tables.search is None else searched.resolved(tables.search, [each.name for each in _present(tables.anchor)]),
         ranges=_there(tables.ranges),
         limit=_there(tables.limit),
         field=_there(tables.field),

@@ -1,7 +1,6 @@
 """How far out, and how many ways: one mast on rings of evenly spaced anchors, over radius and number of ways.
 
-Every level of guys (a guy level, or single cables from one height) keeps the height, lug, rope and initial tension of its first guy and has
-one to each anchor of the ring; the first anchor keeps the bearing it is drawn at.  The site is left out: it is a first look.
+How a mast is put on a ring: `guys.scenario.ring`.  The site is left out: it is a first look.
 
     straight guys of one level at height h, stiffness EA, angle a from the ground: against the head's sway  k = n/2 EA/h sin a cos^2 a,
     greatest at tan^2 a = 1/2 (35.3 deg, radius 1.414 h);  pull for a given horizontal H/cos a, uplift H tan a
@@ -19,8 +18,7 @@ import numpy as np
 from guys.errors import ScenarioError
 from guys.results import Solution
 from guys.rotation import Array
-from guys.scenario import Scenario, drawn
-from guys.scenario.model import Anchor, AnchorPoint, Cable
+from guys.scenario import Scenario, ring
 from guys.scenario.reader import fault_at
 from guys.studies import standing
 from guys.studies.batch import Progress
@@ -28,8 +26,6 @@ from guys.studies.measures import measured
 from guys.version import __version__
 
 KEYS = ("pull", "tension", "uplift", "thrust", "lean", "rope")
-FEWEST, MOST = 3, 12
-"""Ways of a ring."""
 SPAN = (0.4, 1.6)
 """Radii looked at where none are given, as shares of the height of the highest guys."""
 
@@ -71,7 +67,8 @@ def rings(
     height = max(cable.from_.at for cable in scenario.cable)
     least, most = radius or (SPAN[0] * height, SPAN[1] * height)
     out = np.linspace(least, most, steps)
-    every = [ring(scenario, float(r), n) for n in ways for r in out]
+    bare = scenario.model_copy(update={"site": None, "search": None})
+    every = [ring.ring(bare, n, float(r)) for n in ways for r in out]
     solved, found = map if executor is None else executor.map, list[tuple[float, ...]]()
     for one in solved(_values, every):
         found.append(one)
@@ -87,42 +84,10 @@ def rings(
 
 def _fit(scenario: Scenario) -> None:
     """One mast, whose guys can be drawn to any anchor."""
-    faults = []
-    for cable in scenario.cable:
-        if cable.length is not None:
-            faults.append(fault_at(scenario, cable.key, "given by length, which fits one radius; give tension or tight = true"))
-    if len(scenario.spar) > 1:
-        faults.append(fault_at(scenario, ("spar", 1), "a second spar: rings are of one mast"))
-    elif not scenario.cable:
-        faults.append(fault_at(scenario, ("guy_level",), "missing; rings need guys"))
+    found = ring.unfit(len(scenario.spar), [(cable.key, cable.length is not None) for cable in scenario.cable])
+    faults = [fault_at(scenario, each.key, each.message) for each in found]
     if faults:
-        raise ScenarioError(dict.fromkeys(faults))
-
-
-def ring(scenario: Scenario, radius: float, ways: int) -> Scenario:
-    """The mast on one ring of anchors named 1, 2, ... clockwise."""
-    east, north, level = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
-    first = scenario.anchor[0]
-    start = math.atan2(first.east - east, first.north - north)
-    turns = [start + math.tau * k / ways for k in range(ways)]
-    anchors = tuple(
-        Anchor(name=str(k + 1), east=east + radius * math.sin(t), north=north + radius * math.cos(t), level=level, give=first.give)
-        for k, t in enumerate(turns)
-    )
-    templates = {_level(cable): cable for cable in reversed(scenario.cable)}
-    cables = tuple(_guy(cable, anchor.name) for cable in reversed(templates.values()) for anchor in anchors)
-    whole = tuple(case.model_copy(update={"bare": ()}) for case in scenario.case if not case.without)
-    changed = {"anchor": anchors, "cable": cables, "case": whole, "site": None, "layouts": (), "search": None}
-    return scenario.model_copy(update=changed)
-
-
-def _level(cable: Cable) -> str:
-    """The name of its level: that of the file, or its height."""
-    return cable.level or f"{cable.from_.at:g} m"
-
-
-def _guy(cable: Cable, anchor: str) -> Cable:
-    return cable.model_copy(update={"name": f"{_level(cable)} {anchor}", "to": AnchorPoint(anchor=anchor)})
+        raise ScenarioError(faults)
 
 
 def _values(scenario: Scenario) -> tuple[float, ...]:
@@ -141,7 +106,5 @@ def _falls(solution: Solution) -> bool:
 
 
 def _notes(scenario: Scenario) -> Iterator[str]:
-    yield "guys of every level to each anchor, at the initial tension of its first guy; anchors at the level of the foot; no site"
-    left = [case.name for case in scenario.case if case.without]
-    if left:
-        yield f"cases that take cables away are left out: {', '.join(left)}"
+    yield from ring.notes(scenario)
+    yield "anchors at the level of the foot; no site"

@@ -19,18 +19,18 @@ from collections.abc import Callable, Sequence
 from concurrent.futures import Executor
 from dataclasses import dataclass, field
 from functools import partial
-from itertools import product
+from itertools import combinations_with_replacement, groupby, product
 from typing import Any
 
 import numpy as np
 
 from guys.errors import ScenarioError
 from guys.rotation import Array
-from guys.scenario import Scenario, layouts
+from guys.scenario import Scenario, layouts, ring
 from guys.scenario.reader import fault_at
 from guys.studies.batch import Progress
 from guys.studies.compare import Comparison, compare
-from guys.studies.trial import HOLDS, Span, Trial, spans, tried
+from guys.studies.trial import HOLDS, Span, Trial, pegged, spans, tried
 from guys.version import __version__
 
 AMONG = 24
@@ -49,13 +49,15 @@ ALIKE = 1e-4
 class Found:
     """What the search found.
 
-    scenario : its start;  keys : of the measures;  numbers : what was moved;  trials : every layout tried, in order
+    scenario : as read;  start : with the anchors and cables of the search;  keys : of the measures;  numbers : what was moved
+    trials : every layout tried, in order
     best : of those that hold every rule the least by the first measure, None where none does
     front : those that no other betters in both measures, by the first;  compared : the found ones in full, None where there is none
-    interrupted : stopped before its end
+    interrupted : stopped before its end;  notes : what was made of the file
     """
 
     scenario: Scenario
+    start: Scenario
     version: str
     keys: tuple[str, ...]
     numbers: tuple[Span, ...]
@@ -64,6 +66,7 @@ class Found:
     front: tuple[Trial, ...]
     compared: Comparison | None
     interrupted: bool
+    notes: tuple[str, ...]
 
     @property
     def excluded(self) -> list[tuple[str, int]]:
@@ -104,8 +107,8 @@ def search(scenario: Scenario, executor: Executor | None = None, progress: Progr
         text = 'missing; say what may move, such as [search] with least = "pull" and [[search.move]]'
         raise ScenarioError([fault_at(scenario, ("search",), text)])
     keys = (asked.least,) if asked.against is None else (asked.least, asked.against)
-    start = _in_few_directions(scenario)
-    tries = _Tries(start, keys, asked.tries, executor, progress)
+    start = rigged(scenario)
+    tries = _Tries(_in_few_directions(start), keys, asked.tries, executor, progress)
     numbers = spans(asked.move)
     interrupted = False
     try:
@@ -115,8 +118,10 @@ def search(scenario: Scenario, executor: Executor | None = None, progress: Progr
     trials = tuple(tries.known.values())
     holding = sorted((t for t in trials if t.outcome == HOLDS), key=lambda t: t.values)
     front = not_bettered(holding)
-    compared = compare([_with_found(scenario, front)], asked.least, executor) if front else None
-    return Found(scenario, __version__, keys, numbers, trials, holding[0] if holding else None, front, compared, interrupted)
+    compared = compare([_with_found(scenario, start, front)], asked.least, executor) if front else None
+    notes = () if asked.ways is None else tuple(ring.notes(scenario))
+    best = holding[0] if holding else None
+    return Found(scenario, start, __version__, keys, numbers, trials, best, front, compared, interrupted, notes)
 
 
 def _in_few_directions(scenario: Scenario) -> Scenario:
@@ -129,8 +134,8 @@ def _in_few_directions(scenario: Scenario) -> Scenario:
 
 def _explore(tries: _Tries, numbers: Sequence[Span], most: int, seed: int) -> None:
     """The least of the first measure; then, with a second one, along the trade-off."""
-    whole = _choices(numbers)
-    if whole is not None and len(whole) <= most:
+    whole = _choices(numbers, most)
+    if whole is not None:
         tries(whole)
         return
     if len(tries.keys) == 1:
@@ -147,11 +152,21 @@ def _explore(tries: _Tries, numbers: Sequence[Span], most: int, seed: int) -> No
         _least(tries, numbers, partial(Trial.grade, measure=0, limit=float(limit)), rest, seed + 2 + k)
 
 
-def _choices(numbers: Sequence[Span]) -> list[tuple[float, ...]] | None:
-    """Every layout there is, where all anchors that move choose among listed places."""
+def _choices(numbers: Sequence[Span], most: int) -> list[tuple[float, ...]] | None:
+    """Every layout there is, where all anchors that move choose among listed places; None where not, or where they are too many."""
     if not all(span.whole for span in numbers):
         return None
-    return [tuple(map(float, each)) for each in product(*(range(int(span.most) + 1) for span in numbers))]
+    moves = [list(each) for _, each in groupby(numbers, key=lambda span: span.move)]
+    if math.prod(math.comb(int(move[0].most) + len(move), len(move)) for move in moves) > most:
+        return None
+    rows = product(*(combinations_with_replacement(range(int(move[0].most) + 1), len(move)) for move in moves))
+    return [tuple(float(n) for move in row for n in move) for row in rows]
+
+
+def _in_one_order(numbers: Sequence[Span], point: Array) -> tuple[float, ...]:
+    """A layout's numbers, those that choose places for one move in ascending order: the same choice is then the same layout."""
+    rows = groupby(zip(numbers, point.tolist(), strict=True), key=lambda row: (row[0].move, row[0].whole))
+    return tuple(float(n) for (_, whole), row in rows for n in (sorted(v for _, v in row) if whole else (v for _, v in row)))
 
 
 def _least(tries: _Tries, numbers: Sequence[Span], grade: Callable[[Trial], float], most: int, seed: int) -> None:
@@ -161,7 +176,7 @@ def _least(tries: _Tries, numbers: Sequence[Span], grade: Callable[[Trial], floa
     many = max(6, min(AMONG, most // 6))
 
     def graded(x: Array, /) -> Any:  # (layout,) of (number, layout), as `vectorized` has it; scipy's types know a single point alone
-        points = [tuple(float(v) for v in column) for column in np.atleast_2d(x.T)]
+        points = [_in_one_order(numbers, column) for column in np.atleast_2d(x.T)]
         return np.array([grade(trial) for trial in tries(points)])
 
     first = _spread(numbers, many, seed)
@@ -199,7 +214,19 @@ def name_of(place: int) -> str:
     return f"found {place + 1}"
 
 
-def _with_found(scenario: Scenario, front: Sequence[Trial]) -> Scenario:
-    """The scenario with the found layouts in place of its own."""
-    found = tuple(layouts.named(scenario, name_of(k), trial.anchors) for k, trial in enumerate(front))
+def rigged(scenario: Scenario) -> Scenario:
+    """The scenario with as many anchors as its search asks for, pegged on the ring of the first guy's anchor; as drawn where it asks none.
+
+    The first spar's cables are checked to form a ring when the file is read.
+    """
+    ways = None if scenario.search is None else scenario.search.ways
+    if ways is None:
+        return scenario
+    whole = ring.ring(scenario, ways)
+    return whole.model_copy(update={"anchor": tuple(pegged(whole, anchor, anchor.east, anchor.north) for anchor in whole.anchor)})
+
+
+def _with_found(scenario: Scenario, start: Scenario, front: Sequence[Trial]) -> Scenario:
+    """The scenario with the found layouts in place of its own; `start`: with the anchors and cables of the search."""
+    found = tuple(layouts.named(start, name_of(k), trial.anchors) for k, trial in enumerate(front))
     return scenario.model_copy(update={"layouts": found})

@@ -9,7 +9,7 @@ far it went and how much it breaks.
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 from guys.checks import plan
@@ -18,6 +18,7 @@ from guys.results import Finding, Solution
 from guys.scenario import Scenario, drawn
 from guys.scenario.model import Anchor
 from guys.scenario.search import SearchMove, SearchPlace
+from guys.scenario.searched import clockwise
 from guys.studies import sizing, standing
 from guys.studies.measures import MEASURES, measured
 
@@ -33,7 +34,7 @@ STEP = 1e15
 
 @dataclass(frozen=True)
 class Span:
-    """One number of a search: of which move, what it is, its bounds; whole: a place of a list, by its index."""
+    """One number of a search: of which move, what it is, its bounds; whole: it chooses among the places of a list."""
 
     move: int
     what: str
@@ -70,12 +71,12 @@ def spans(moves: Sequence[SearchMove]) -> tuple[Span, ...]:
     out = []
     for n, move in enumerate(moves):
         if move.places is not None:
-            out.append(Span(n, "places", 0, len(move.places) - 1, True))
+            many = len(move.anchors or ())
+            out += [Span(n, "places", 0, len(move.places) - many, True)] * many
         if move.radius is not None:
             out.append(Span(n, "radius", move.radius[0], move.radius[1], False))
         if move.bearing is not None:
-            first, last = move.bearing
-            out.append(Span(n, "bearing", first, first + (last - first) % math.tau, False))
+            out.append(Span(n, "bearing", move.bearing[0], move.bearing[0] + clockwise(*move.bearing), False))
         if move.turn is not None:
             out.append(Span(n, "turn", move.turn[0], move.turn[1], False))
     return tuple(out)
@@ -87,25 +88,66 @@ def placed(scenario: Scenario, at: Sequence[float]) -> tuple[Anchor, ...]:
     assert search is not None
     foot = drawn.foot({spar.name: spar for spar in scenario.spar}, scenario.spar[0].name)
     moved = {anchor.name: anchor for anchor in scenario.anchor}
-    given: dict[int, dict[str, float]] = {}
+    given: dict[int, dict[str, list[float]]] = {}
     for span, value in zip(spans(search.move), at, strict=True):
-        given.setdefault(span.move, {})[span.what] = value
+        given.setdefault(span.move, {}).setdefault(span.what, []).append(value)
     for n, numbers in given.items():
-        for name in search.move[n].anchors:
-            east, north = (round(x, PEGGED) for x in _place(search.move[n], numbers, moved[name], foot))
-            ground = None if scenario.site is None else scenario.site.ground
-            level = moved[name].level if ground is None else round(float(ground.level(east, north)), PEGGED)
-            moved[name] = moved[name].model_copy(update={"east": east, "north": north, "level": level})
+        anchors = [moved[name] for name in search.move[n].anchors or ()]
+        for anchor, place in zip(anchors, _placed(search.move[n], numbers, anchors, foot), strict=True):
+            moved[anchor.name] = pegged(scenario, anchor, *place)
     return tuple(moved.values())
 
 
-def _place(move: SearchMove, numbers: dict[str, float], anchor: Anchor, foot: drawn.Point) -> tuple[float, float]:
+def pegged(scenario: Scenario, anchor: Anchor, east: float, north: float) -> Anchor:
+    """The anchor at a place, as near as a crew pegs it, on the surveyed ground or at the level it is drawn at without one."""
+    east, north = round(east, PEGGED), round(north, PEGGED)
+    ground = None if scenario.site is None else scenario.site.ground
+    level = anchor.level if ground is None else round(float(ground.level(east, north)), PEGGED)
+    return anchor.model_copy(update={"east": east, "north": north, "level": level})
+
+
+def _placed(
+    move: SearchMove, numbers: dict[str, list[float]], anchors: Sequence[Anchor], foot: drawn.Point
+) -> Iterator[tuple[float, float]]:
+    """East and north of each anchor of a move."""
     if move.places is not None:
-        return _listed(move.places[round(numbers["places"])], foot)
-    out = anchor.east - foot[0], anchor.north - foot[1]
-    radius = numbers.get("radius", math.hypot(*out))
-    bearing = numbers.get("bearing", math.atan2(*out) + numbers.get("turn", 0.0))
-    return foot[0] + radius * math.sin(bearing), foot[1] + radius * math.cos(bearing)
+        places = [_listed(place, foot) for place in move.places]
+        yield from _in_order(places_chosen(places, numbers["places"], foot), anchors, foot)
+        return
+    for anchor in anchors:
+        out = anchor.east - foot[0], anchor.north - foot[1]
+        radius = numbers.get("radius", [math.hypot(*out)])[0]
+        bearing = numbers["bearing"][0] if "bearing" in numbers else math.atan2(*out) + numbers.get("turn", [0.0])[0]
+        yield foot[0] + radius * math.sin(bearing), foot[1] + radius * math.cos(bearing)
+
+
+def _round(place: tuple[float, float], foot: drawn.Point) -> float:
+    """Bearing of a place from the foot, in [0, 2 pi)."""
+    return math.atan2(place[0] - foot[0], place[1] - foot[1]) % math.tau
+
+
+def places_chosen(places: Sequence[tuple[float, float]], numbers: Sequence[float], foot: drawn.Point) -> list[tuple[float, float]]:
+    """Of places listed as many different ones as there are numbers, clockwise from north.
+
+    The numbers in ascending order, the k-th raised by k, are indices of the places clockwise: every choice comes of one such row, and
+    numbers that are near choose places that are.
+    """
+    clockwise_ones = sorted(places, key=lambda place: _round(place, foot)) if len(numbers) > 1 else places
+    return [clockwise_ones[round(number) + k] for k, number in enumerate(sorted(numbers))]
+
+
+def _in_order(places: Sequence[tuple[float, float]], anchors: Sequence[Anchor], foot: drawn.Point) -> Iterator[tuple[float, float]]:
+    """A place for each anchor, so that anchors keep their order round the foot and turn least from where they are drawn."""
+    many, drawn_at = len(anchors), [_round((anchor.east, anchor.north), foot) for anchor in anchors]
+    order = sorted(range(many), key=drawn_at.__getitem__)
+
+    def turned(first: int) -> float:
+        turns = (_round(places[(k + first) % many], foot) - drawn_at[n] for k, n in enumerate(order))
+        return math.fsum(abs((turn + math.pi) % math.tau - math.pi) for turn in turns)
+
+    first = min(range(many), key=turned)
+    for n in range(many):
+        yield places[(order.index(n) + first) % many]
 
 
 def _listed(place: SearchPlace, foot: drawn.Point) -> tuple[float, float]:
