@@ -13,6 +13,7 @@ from guys import tables, units
 from guys.catalogue import parts, ropes, tubes
 from guys.catalogue.known import FROM_MEMORY, READ
 from guys.scenario import holding
+from guys.scenario.table import descriptions
 
 Cell = str | float | None
 
@@ -152,7 +153,8 @@ def _holdfasts() -> Listing:
     rows, known, source = [], [], []
     for kind, model in holding.MODELS.items():
         fields = {field.alias or name: field for name, field in model.model_fields.items() if name not in ("kind", "source")}
-        needed = [key for key, field in fields.items() if field.is_required() or (field.description or "").endswith("needed.")]
+        described = descriptions(model)
+        needed = [key for key, field in fields.items() if field.is_required() or described.get(key, "").endswith("needed.")]
         what = (model.__doc__ or "").split(".")[0].lower()
         rows.append((kind, what, ", ".join(needed), ", ".join(key for key in fields if key not in needed)))
         figures = [row["source"] for table in _FIGURES.get(kind, ()) for row in tables.rows(table) if row.get("kind", kind) == kind]

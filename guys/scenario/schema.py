@@ -7,12 +7,19 @@ from typing import Any
 from pydantic.json_schema import GenerateJsonSchema
 
 from guys.scenario.document import ScenarioFile
+from guys.scenario.table import descriptions
 
 DIALECT = "https://json-schema.org/draft/2020-12/schema"
 
 
 class _Generator(GenerateJsonSchema):
-    """Leaves out what would mislead in a file: SI defaults of quantities, which a file writes with their unit."""
+    """Describes fields by their docstrings; leaves out what would mislead in a file: SI defaults of quantities, which it writes with a unit."""
+
+    def model_schema(self, schema: Any) -> dict[str, Any]:
+        found = super().model_schema(schema)
+        for key, text in descriptions(schema["cls"]).items():
+            found["properties"][key]["description"] = text
+        return found
 
     def default_schema(self, schema: Any) -> dict[str, Any]:
         found = dict(super().default_schema(schema))
