@@ -45,6 +45,18 @@ def test_help_loads_nothing_heavy(arguments: list[str]) -> None:
     assert done.stdout.splitlines()[-1] == "[]"
 
 
+def test_commands_load_what_they_use_when_they_use_it() -> None:
+    program = """
+import importlib, pkgutil, sys
+from guys import doors
+for door in pkgutil.iter_modules(doors.__path__):
+    importlib.import_module("guys.doors." + door.name)
+print([name for name in ("matplotlib", "scipy.optimize", "shapely", "pyproj", "rich") if name in sys.modules])
+"""
+    done = subprocess.run([sys.executable, "-c", program], capture_output=True, text=True, check=True)
+    assert done.stdout == "[]\n"
+
+
 def test_version(capsys: pytest.CaptureFixture[str]) -> None:
     assert cli.run(["--version"]) == 0
     assert capsys.readouterr().out == f"guys {__version__}\n"

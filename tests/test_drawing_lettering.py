@@ -25,11 +25,6 @@ def test_width_agrees_with_the_library(text: str, bold: bool) -> None:
     assert ink * (1.0 - KERNING) <= ours <= ink * (1.0 + KERNING) + bearings
 
 
-def test_outline_is_where_the_width_says() -> None:
-    path = t.outline("mast", False)
-    assert path.vertices[:, 0].max() <= t.width("mast", 1.0) / POINT_MM
-
-
 @given(st.text(st.characters(codec="utf-8", exclude_categories=["Cs"]), max_size=60), st.floats(5.0, 60.0))
 def test_wrapping_loses_nothing_and_fits(text: str, room: float) -> None:
     lines = t.wrapped(text, room, 9.0)

@@ -13,8 +13,8 @@ from matplotlib.transforms import Bbox
 
 from guys.drawing.compose import draw_page
 from guys.drawing.labels import crossing, overlapping
-from guys.drawing.lettering import TextLine
 from guys.drawing.page import Page
+from guys.drawing.text_line import TextLine
 from guys.results import Solution
 
 PAGE_EDGE = 5.0

@@ -8,9 +8,9 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import blocks, plan, style
@@ -26,6 +26,9 @@ from guys.drawing.site import draw_site
 from guys.drawing.table import Column, Grid, draw_grid
 from guys.studies.compare import Compared, Comparison
 from guys.studies.measures import MEASURES, Value
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 MOST_ACROSS = 4
 FRAME_HEIGHT = 92.0

@@ -8,8 +8,7 @@ below its printed size.
 from __future__ import annotations
 
 from dataclasses import dataclass
-
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING
 
 from guys.drawing import box, elevation, plan, polar, strip, style, table
 from guys.drawing.key import draw_key, lay_key
@@ -19,6 +18,9 @@ from guys.drawing.reading import View, look_bearing
 from guys.drawing.rounding import Tongue, Units, tongue
 from guys.drawing.scales import together
 from guys.results import Solution
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 MARGIN = 12.0
 GUTTER = 9.0

@@ -7,8 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import field_words as words
@@ -20,6 +19,9 @@ from guys.drawing.rounding import ABSENT, Tongue, Units, fine_length, force, pla
 from guys.drawing.table import Column, Grid, Row, draw_grid
 from guys.sounding import TIMED, Way
 from guys.studies.field import Field, acceptance, cycles, proof_factor
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 MARGIN, GAP = 12.0, 6.0
 ACROSS = 8

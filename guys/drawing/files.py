@@ -5,15 +5,18 @@ from __future__ import annotations
 from contextlib import ExitStack
 from io import BytesIO
 from pathlib import Path
-
-import matplotlib
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING, Any
 
 from guys.drawing.style import DRAWING_RULES
 from guys.exchange.files import replaced
 
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
+
 PIXELS_ACROSS = 2150.0
 """Of the picture; 130 to the inch on A3, at which 9 pt is legible on a screen."""
+PACKED = 3
+"""How hard a picture is compressed, 1 to 9: line drawings come out no larger than at 6, in two thirds of the time."""
 
 
 def _metadata(kind: str, title: str, version: str) -> dict[str, str | None]:
@@ -26,10 +29,13 @@ def _metadata(kind: str, title: str, version: str) -> dict[str, str | None]:
 
 def figure_bytes(figure: Figure, kind: str, title: str, version: str) -> bytes:
     """The figure as a PDF, SVG or PNG."""
+    import matplotlib
+
     into = BytesIO()
     dots = PIXELS_ACROSS / float(figure.get_size_inches()[0]) if kind == "png" else 72.0
     with matplotlib.rc_context(dict(DRAWING_RULES)):  # type: ignore[arg-type]
-        figure.savefig(into, format=kind, dpi=dots, metadata=_metadata(kind, title, version))
+        packing: dict[str, Any] = {"pil_kwargs": {"compress_level": PACKED}} if kind == "png" else {}
+        figure.savefig(into, format=kind, dpi=dots, metadata=_metadata(kind, title, version), **packing)
     return into.getvalue()
 
 

@@ -7,9 +7,9 @@ within the rim; the circle in the colour of wind is the scenario's own wind, nam
 from __future__ import annotations
 
 from math import ceil, isnan
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.drawing import rounding, style
 from guys.drawing.labels import Array, Field
@@ -20,6 +20,9 @@ from guys.drawing.rounding import MILE_PER_HOUR, Tongue, Units, tongue
 from guys.drawing.scales import round_below
 from guys.limits import Limit, Limits
 from guys.scenario.standard_wind import averaging_words
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 MARGIN = 12.0
 RIM = 26.0

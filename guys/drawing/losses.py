@@ -8,9 +8,9 @@ A loss after which the structure falls in still air is one bar across the row: i
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import style
@@ -21,6 +21,9 @@ from guys.drawing.rounding import ABSENT, Say, Tongue, Units, bearing, factor, f
 from guys.drawing.table import Column, Grid, draw_grid
 from guys.studies.cells import FALLS, NOT_JUDGED, PAST, Cells, worst_use
 from guys.studies.lost import Lost, judged_by
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 SQUARE = 5.3
 NAMES, STILL = 62.0, 16.0

@@ -9,8 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import style
@@ -19,6 +18,9 @@ from guys.drawing.lettering import shortened, width
 from guys.drawing.page import Page, Rect
 from guys.drawing.rounding import ABSENT, MOST_FACTOR, Units, factor, load, tongue
 from guys.studies.matters import Matters, Reading, Span, told
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 ROW, ABOVE, KEY = 7.0, 17.0, 9.0
 NAMES, ENDS, GAP = 54.0, 62.0, 10.0

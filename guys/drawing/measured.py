@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING
 
 from guys.drawing.field import Part, draw_parts
 from guys.drawing.field_words import assumed
 from guys.drawing.rounding import ABSENT, Tongue, Units, factor, fine_length, force, plain_force, temperature, tongue
 from guys.drawing.table import Column, Grid, Row
 from guys.studies.measured import Measured
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 EIGHTH = 8
 """Turns are told to an eighth."""

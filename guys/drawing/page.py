@@ -7,18 +7,20 @@ millimetres; true scale is kept by asking `scaled` for the design millimetres of
 from __future__ import annotations
 
 from dataclasses import dataclass, field
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 import numpy as np
-from matplotlib.artist import Artist
-from matplotlib.figure import Figure
-from matplotlib.lines import Line2D
-from matplotlib.patches import Circle, Polygon
-from matplotlib.transforms import Affine2D, Transform
 from numpy.typing import ArrayLike, NDArray
 
 from guys.drawing import style
-from guys.drawing.lettering import TextLine, plain, width
+from guys.drawing.lettering import plain, width
+
+if TYPE_CHECKING:
+    from matplotlib.artist import Artist
+    from matplotlib.figure import Figure
+    from matplotlib.transforms import Transform
+
+    from guys.drawing.text_line import TextLine
 
 Paper = Literal["A3", "A4", "letter", "tabloid"]
 Align = Literal["left", "right", "centre"]
@@ -90,6 +92,8 @@ class Page:
         butt: bool = False,
     ) -> None:
         """A polyline through points (point, 2); NaN breaks it."""
+        from matplotlib.lines import Line2D
+
         x, y = np.asarray(points, dtype=float).T
         cap: Literal["butt", "round"] = "butt" if butt or dash != style.SOLID else "round"
         stroke = Line2D(
@@ -104,6 +108,8 @@ class Page:
         self, points: ArrayLike, fill: str | None = None, edge: str | None = None, weight: float = style.THIN, order: float = 2.0
     ) -> None:
         """A closed polygon."""
+        from matplotlib.patches import Polygon
+
         self.add(
             Polygon(
                 np.asarray(points, dtype=float), closed=True, facecolor=fill or "none", edgecolor=edge or "none",
@@ -123,6 +129,8 @@ class Page:
         name: str = "",
     ) -> None:
         """A circle or disc."""
+        from matplotlib.patches import Circle
+
         x, y = np.asarray(centre, dtype=float)
         disc = Circle(
             (float(x), float(y)), radius, facecolor=fill or "none", edgecolor=edge or "none",
@@ -143,6 +151,8 @@ class Page:
         align: Align = "left",
     ) -> float:
         """One line with its baseline at y; returns its width [mm]."""
+        from guys.drawing.text_line import TextLine
+
         text = plain(text, bold)
         wide = width(text, size, bold)
         start = x - {"left": 0.0, "right": wide, "centre": wide / 2.0}[align]
@@ -164,16 +174,20 @@ class Page:
 def new_page(paper: str, taller: float = 0.0) -> Page:
     """An empty page, made `taller` by so many design millimetres where the words need more than the paper has."""
     wide, high, shrink = PAPERS[paper]
-    width_mm, height_mm = wide / shrink, high / shrink + taller
-    figure = Figure(figsize=(wide / 25.4, height_mm * shrink / 25.4), facecolor=style.WHITE)
-    transform = Affine2D().scale(shrink / 25.4) + figure.dpi_scale_trans
-    return Page(paper, width_mm, height_mm, shrink, figure, transform)
+    return _empty(paper, wide / shrink, high / shrink + taller, shrink)
 
 
 def figure_page(wide: float, high: float, paper: str = "A4") -> Page:
     """An empty page of so many millimetres, for a figure set at its full size in a text on that paper."""
-    figure = Figure(figsize=(wide / 25.4, high / 25.4), facecolor=style.WHITE)
-    return Page(paper, wide, high, 1.0, figure, Affine2D().scale(1.0 / 25.4) + figure.dpi_scale_trans)
+    return _empty(paper, wide, high, 1.0)
+
+
+def _empty(paper: str, wide: float, high: float, shrink: float) -> Page:
+    from matplotlib.figure import Figure
+    from matplotlib.transforms import Affine2D
+
+    figure = Figure(figsize=(wide * shrink / 25.4, high * shrink / 25.4), facecolor=style.WHITE)
+    return Page(paper, wide, high, shrink, figure, Affine2D().scale(shrink / 25.4) + figure.dpi_scale_trans)
 
 
 def arc(centre: ArrayLike, radius: float, count: int = 181) -> NDArray[np.float64]:

@@ -6,9 +6,9 @@ Where pegs were surveyed, the table under it tells how far each was found off, a
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import blocks, style
@@ -22,6 +22,9 @@ from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
 from guys.drawing.site import draw_site
 from guys.drawing.table import Column, Grid, Row, draw_grid
 from guys.studies.pegs import AsBuilt, Pegs
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 PLAN = 150.0
 """[mm] height of the plan."""

@@ -8,9 +8,9 @@ listed cases as an arrow, in parallel projection.  No figure is here that is not
 from __future__ import annotations
 
 from math import ceil, cos, isfinite, radians, sin
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.checks.alarms import CAUTIONS
 from guys.drawing import blocks, style
@@ -24,6 +24,9 @@ from guys.drawing.reading import hung_cable, hung_spar, stands
 from guys.drawing.rounding import POUND_FORCE, Say, Tongue, Units, bearing, force, length, load, moment, tongue
 from guys.drawing.scales import round_below
 from guys.results import Solution, SparLine
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 ROSE = 34.0
 """[mm] a rose with its name."""

@@ -12,9 +12,9 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.drawing import style
 from guys.drawing.leaf import Words, leaf
@@ -26,6 +26,9 @@ from guys.rotation import Array
 from guys.scenario import tilted
 from guys.studies import hoisting
 from guys.studies.raising import Raised
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 SHOWN = 5
 """Side views, spread over the angles."""

@@ -7,9 +7,9 @@ colour of loads: the motion it goes in, its size chosen.  Rings mark where a cab
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.drawing import rounding, style
 from guys.drawing.graph import Curve, Graph, draw_graph
@@ -20,6 +20,9 @@ from guys.drawing.reading import View
 from guys.drawing.rounding import INCH, POUND_FORCE, Tongue, Units, tongue
 from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
 from guys.reserves import WORDS, Outline, Reserve, Reserves, Standing
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 ROWS = 6
 """Paths drawn, those with the least factor."""

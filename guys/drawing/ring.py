@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys import units
 from guys.checks.alarms import CAUTIONS
@@ -15,6 +16,9 @@ from guys.drawing.rounding import System, Units, tongue
 from guys.drawing.tradeoff import shown, unit_of
 from guys.studies.measures import MEASURES
 from guys.studies.ring import Rings
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 PANELS = ("tension", "uplift", "thrust", "lean", "rope", "footprint")
 ACROSS, HIGH, BETWEEN, KEY = 3, 82.0, 8.0, 8.0

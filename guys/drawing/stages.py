@@ -7,9 +7,9 @@ Straight lines, as drawn: no stage is shown as it hangs.  All look toward the be
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys.drawing import rounding, style
 from guys.drawing.leaf import Words, leaf
@@ -24,6 +24,9 @@ from guys.scenario.model import GroundFoot
 from guys.scenario.standard_wind import averaging_words
 from guys.studies.cells import FALLS, NOT_FOUND, PAST, WORDS
 from guys.studies.stages import Built, Stages
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 MOST_ACROSS = 5
 GAP = 8.0

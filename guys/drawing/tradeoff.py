@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
-from matplotlib.figure import Figure
 
 from guys import units
 from guys.checks.alarms import CAUTIONS
@@ -16,6 +17,9 @@ from guys.drawing.rounding import System, Units, tongue
 from guys.studies.measures import MEASURES
 from guys.studies.search import Found, name_of
 from guys.studies.trial import HOLDS
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 HEIGHT = 150.0
 

@@ -6,14 +6,16 @@ Rows go from the first action to the limit; what is to be done and who decides i
 from __future__ import annotations
 
 import math
-
-from matplotlib.figure import Figure
+from typing import TYPE_CHECKING
 
 from guys.drawing.field import Part, draw_parts
 from guys.drawing.rounding import Tongue, Units, bearing, length, speed_below, tongue
 from guys.drawing.table import Column, Grid, Row
 from guys.limits import Limits
 from guys.scenario.standard_wind import averaging_words
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
 
 DOWN = "The structure is down, or everybody is out of the fall circle, before the wind reaches the limit: gusts come before a mean rises."
 WHERE = "Read the wind where nothing shelters it, at that height and over that time, or correct it; a hand at eye level reads less."

@@ -7,9 +7,8 @@ its parts with a prefix of the figure, since those of all figures live in one pa
 from __future__ import annotations
 
 import re
+from typing import TYPE_CHECKING
 from xml.etree import ElementTree
-
-from matplotlib.figure import Figure as Drawing
 
 from guys.drawing import elevation, plan, polar
 from guys.drawing.files import svg_text
@@ -20,6 +19,9 @@ from guys.drawing.rounding import bearing
 from guys.drawing.style import ROW
 from guys.record.blocks import Figure
 from guys.record.source import Source
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure as Drawing
 
 WIDE = 180.0
 """[mm] width of a figure on A4 between margins of 15 mm."""

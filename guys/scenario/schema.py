@@ -13,7 +13,7 @@ DIALECT = "https://json-schema.org/draft/2020-12/schema"
 
 
 class _Generator(GenerateJsonSchema):
-    """Describes fields by their docstrings; leaves out what would mislead in a file: SI defaults of quantities, which it writes with a unit."""
+    """Describes keys by the docstrings of the models; leaves out SI defaults of quantities, which a file writes with a unit."""
 
     def model_schema(self, schema: Any) -> dict[str, Any]:
         found = super().model_schema(schema)
