@@ -473,10 +473,10 @@ def test_everything_is_reported_at_once_in_the_order_of_the_file() -> None:
 
 
 def test_each_fault_names_file_line_and_column_of_its_key() -> None:
-    text = 'title = "x"\n\n[[spar]]\nname = "m"\nfoot = { east = "0 m", nort = "0 m" }\n  [[spar.section]]\n  length = 3\n'
+    text = 'title = "x"\n\n[[spar]]\nname = "m"\nfoot = { spar = "q", att = "0 m" }\n  [[spar.section]]\n  length = 3\n'
     found = {fault.key: (fault.path, fault.line, fault.column) for fault in faults_of(text)}
-    assert found["spar[0].foot.nort"] == ("test.toml", 5, 24)
-    assert found["spar[0].foot.north"] == ("test.toml", 5, 1)
+    assert found["spar[0].foot.att"] == ("test.toml", 5, 22)
+    assert found["spar[0].foot.at"] == ("test.toml", 5, 1)
     assert found["spar[0].section[0].length"] == ("test.toml", 7, 3)
     assert found["wind"] == ("test.toml", 1, 1)
 

@@ -7,7 +7,6 @@ from typing import Annotated
 from pydantic import Field
 
 from guys.scenario import quantity as q
-from guys.scenario.site_table import Latitude, Longitude
 from guys.scenario.table import Model
 
 
@@ -24,9 +23,9 @@ class AnchorEntry(Model):
     """Distance east of the origin."""
     north: q.Length | None = None
     """Distance north of the origin."""
-    lat: Latitude | None = None
+    lat: q.Latitude | None = None
     """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
-    lon: Longitude | None = None
+    lon: q.Longitude | None = None
     """Longitude, degrees east, WGS 84; a bare number."""
     level: q.Length | None = None
     """Height above the origin's level; left out: that of the ground there, or of the first spar's foot."""

@@ -6,8 +6,8 @@ import math
 from collections.abc import Iterator
 
 from guys import units
-from guys.scenario import drawn, ice
-from guys.scenario.model import Anchor, Cable, Case, HeelFoot, Rope, Scenario, Spar, Wind
+from guys.scenario import drawn, feet, ice
+from guys.scenario.model import Anchor, Cable, Case, GroundFoot, HeelFoot, Rope, Scenario, Spar, Wind
 from guys.scenario.plausible import section_mass
 from guys.scenario.standard_wind import AS_HIGH, REFERENCE_HEIGHT, averaging_words, beaufort
 
@@ -49,11 +49,17 @@ def _anchor(anchor: Anchor, foot: drawn.Point) -> str:
     return f"bearing {bearing:.4g} deg, radius {radius}, level {level}{held}"
 
 
+def _ground(foot: GroundFoot) -> str:
+    if (foot.east, foot.north, foot.level) == (0.0, 0.0, 0.0):
+        return "on the ground"
+    return f"on the ground {feet.where(foot.east, foot.north)}, level {units.both(foot.level, 'length')}"
+
+
 def _spar(scenario: Scenario, spar: Spar) -> str:
     masses = [section_mass(section, scenario.material) or 0.0 for section in spar.section]
     mass = math.fsum(each * section.length for each, section in zip(masses, spar.section, strict=True))
     mass += math.fsum(fitting.mass for fitting in spar.fitting)
-    stands = f'on spar "{spar.foot.spar}" at {units.both(spar.foot.at, "length")}' if isinstance(spar.foot, HeelFoot) else "on the ground"
+    stands = f'on spar "{spar.foot.spar}" at {units.both(spar.foot.at, "length")}' if isinstance(spar.foot, HeelFoot) else _ground(spar.foot)
     lean = f", lean {math.degrees(spar.lean):.4g} deg toward {math.degrees(spar.toward):.4g} deg" if spar.lean else ""
     carried = " with its fittings" if spar.fitting else ""
     return f"{units.both(spar.length, 'length')} long, {spar.base} {stands}{lean}, {units.both(mass, 'mass')}{carried}"

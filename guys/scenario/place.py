@@ -1,4 +1,4 @@
-"""The table [site], and what it does to the rest of a file: anchors by latitude and longitude, levels from the ground.
+"""The table [site], and what it does to the rest of a file: feet and anchors by latitude and longitude, levels from the ground.
 
 Once the site is read everything is in metres from its origin, and the other rules need not know of it.
 """
@@ -11,40 +11,47 @@ from dataclasses import replace
 from pathlib import Path
 
 from guys import units
-from guys.scenario import drawn
+from guys.scenario import drawn, feet
 from guys.scenario.anchor_entry import AnchorEntry
+from guys.scenario.degrees import SAID, from_degrees
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped
 from guys.scenario.model import GroundFoot
-from guys.scenario.site_table import DegreesOrigin, SiteEntry
+from guys.scenario.site_table import GridOrigin, SiteEntry
 from guys.site import Grid, Site, read_site
 from guys.site.grid import GridError, grid_at, grid_at_degrees, unit
-from guys.site.read import FAR, Asked
+from guys.site.read import Asked
 
 FOLLOWED = 0.15
 """[m] a foot this near the surveyed ground stands on it."""
-NEEDS_GRID = "lat and lon need [site] with crs and origin; give bearing and radius, or east and north"
 
 
 def placed(draft: Draft, path: str | None) -> tuple[Draft, Site | None, list[Finding]]:
-    """The draft with its anchors in metres from the origin, the site, and every fault of the two."""
+    """The draft with its feet and anchors in metres from the origin, the site, and every fault of them."""
     entry = draft.site
     if entry is None:
-        draft, lost = anchors_placed(draft, None)
-        return draft, None, lost
-    findings = list(_needs(entry))
-    grid, more = _grid(entry) if not findings else (None, [])
+        return _placed(draft, None, None)
+    first = feet.by_degrees(draft)
+    findings = list(_needs(entry, first))
+    grid, more = _grid(entry, first) if not findings else (None, [])
     findings += more
     if findings:
-        return _without_degrees(draft), None, findings
+        draft, lost = feet.in_metres(_without_degrees(draft), None, None)
+        return draft, None, findings + lost
     site, faults = read_site(_asked(entry), grid, Path(path).parent if path else Path())
     findings = [Finding(("site", fault.key), fault.message) for fault in faults]
     if findings:
-        draft, lost = _in_metres(draft, grid)
-        return draft, None, findings + lost
-    findings += _outside(draft, site)
-    draft, lost = anchors_placed(draft, site)
-    return draft, site, findings + lost
+        draft, lost = feet.in_metres(draft, grid, None)
+        draft, more = _in_metres(draft, grid)
+        return draft, None, findings + lost + more
+    return _placed(draft, site, grid)
+
+
+def _placed(draft: Draft, site: Site | None, grid: Grid | None) -> tuple[Draft, Site | None, list[Finding]]:
+    draft, lost = feet.in_metres(draft, grid, None if site is None else site.ground)
+    outside = [] if site is None else list(_outside(draft, site))
+    draft, more = anchors_placed(draft, site)
+    return draft, site, lost + outside + more
 
 
 def anchors_placed(draft: Draft, site: Site | None) -> tuple[Draft, list[Finding]]:
@@ -59,35 +66,40 @@ def _asked(entry: SiteEntry) -> Asked:
     return Asked(entry.boundary, entry.obstacles, entry.ground, entry.setback, entry.declination, drawing_unit)
 
 
-def _needs(entry: SiteEntry) -> Iterator[Finding]:
-    if entry.crs is not None and entry.origin is None:
-        yield Finding(
-            ("site", "origin"), 'missing; crs needs the place of the origin, such as origin = { lat = 51.0, lon = 3.0, level = "32 m" }'
-        )
+def _needs(entry: SiteEntry, first: GroundFoot | None) -> Iterator[Finding]:
+    if entry.crs is not None and entry.origin is None and first is None:
+        text = 'missing; crs needs the place of the origin, such as origin = { lat = 51.0, lon = 3.0, level = "32 m" }'
+        yield Finding(("site", "origin"), f"{text}, or the first spar's foot by lat and lon")
     if entry.crs is None and entry.origin is not None:
         yield Finding(("site", "crs"), 'missing; origin needs it, such as crs = "EPSG:32631"; leave both out for local metres')
     if entry.setback and entry.boundary is None:
         yield Finding(("site", "setback"), "needs a boundary; give boundary, or leave setback out")
 
 
-def _grid(entry: SiteEntry) -> tuple[Grid | None, list[Finding]]:
-    if entry.crs is None or entry.origin is None:
+def _grid(entry: SiteEntry, first: GroundFoot | None) -> tuple[Grid | None, list[Finding]]:
+    """The grid through the origin, or where there is none through the first spar's foot, at the level of the sea."""
+    if entry.crs is None:
         return None, []
     try:
         metres = unit(entry.crs)
     except GridError as error:
         return None, [Finding(("site", "crs"), str(error))]
     try:
-        if isinstance(entry.origin, DegreesOrigin):
+        if isinstance(entry.origin, GridOrigin):
+            return grid_at(entry.crs, entry.origin.east / metres, entry.origin.north / metres, entry.origin.level), []
+        if entry.origin is not None:
             return grid_at_degrees(entry.crs, entry.origin.lat, entry.origin.lon, entry.origin.level), []
-        return grid_at(entry.crs, entry.origin.east / metres, entry.origin.north / metres, entry.origin.level), []
+        return (None if first is None else grid_at_degrees(entry.crs, first.lat or 0.0, first.lon or 0.0, 0.0)), []
     except GridError as error:
-        return None, [Finding(("site", "origin"), str(error))]
+        return None, [Finding(("site", "origin") if entry.origin is not None else ("spar", 0, "foot"), str(error))]
 
 
 def _without_degrees(draft: Draft) -> Draft:
-    """Anchors given by latitude and longitude left out, so that the other rules still run."""
-    return replace(draft, anchor=tuple(None if a is None or a.lat is not None or a.lon is not None else a for a in draft.anchor))
+    """What is given by latitude and longitude left out, so that the other rules still run."""
+    spars = tuple(None if s is None or getattr(s.foot, "lat", None) is not None else s for s in draft.spar)
+    anchors = tuple(None if a is None or a.lat is not None or a.lon is not None else a for a in draft.anchor)
+    pole = None if draft.raising is None else draft.raising.gin_pole.foot
+    return replace(draft, spar=spars, anchor=anchors, raising=None if pole is not None and pole.lat is not None else draft.raising)
 
 
 def _in_metres(draft: Draft, grid: Grid | None) -> tuple[Draft, list[Finding]]:
@@ -109,24 +121,11 @@ def _from_degrees(entry: AnchorEntry, grid: Grid | None) -> tuple[AnchorEntry | 
     others = [name for name in ("bearing", "radius", "east", "north") if getattr(entry, name) is not None]
     if entry.lat is None or entry.lon is None or others:
         given = [*others, *(name for name in ("lat", "lon") if getattr(entry, name) is not None)]
-        return None, f"has {' and '.join(given)}; give bearing and radius, east and north, or lat and lon"
-    if grid is None:
-        return None, NEEDS_GRID
-    try:
-        east, north = (float(x) for x in grid.from_degrees(entry.lat, entry.lon))
-    except GridError as error:
-        return None, str(error)
-    if math.hypot(east, north) > FAR:
-        swapped = "; are lat and lon swapped?" if abs(entry.lon) <= 90 and _near_swapped(entry, grid) else ""
-        return None, f"lies {math.hypot(east, north) / 1000:,.0f} km from the site's origin{swapped}"
-    return entry.model_copy(update={"east": east, "north": north, "lat": None, "lon": None}), None
-
-
-def _near_swapped(entry: AnchorEntry, grid: Grid) -> bool:
-    try:
-        return math.hypot(*(float(x) for x in grid.from_degrees(entry.lon or 0.0, entry.lat or 0.0))) <= FAR
-    except GridError:
-        return False
+        return None, f"has {' and '.join(given)}; give {SAID}"
+    place = from_degrees(entry.lat, entry.lon, grid)
+    if isinstance(place, str):
+        return None, place
+    return entry.model_copy(update={"east": place[0], "north": place[1], "lat": None, "lon": None}), None
 
 
 def _first_foot(draft: Draft) -> GroundFoot | None:
@@ -153,15 +152,9 @@ def _on_the_ground(draft: Draft, site: Site) -> tuple[Draft, list[Finding]]:
         east, north, _ = drawn.anchor_place(a, (foot.east, foot.north, foot.level))
         level = float(site.ground.level(east, north))
         if math.isnan(level):
-            findings.append(
-                Finding(("anchor", n), f"{_where(east, north)}, is outside the surveyed ground; give its level, or survey farther")
-            )
+            findings.append(Finding(("anchor", n), f"{feet.where(east, north)}, {feet.SURVEY}"))
         out.append(a if math.isnan(level) else a.model_copy(update={"level": level}))
     return replace(draft, anchor=tuple(out)), findings
-
-
-def _where(east: float, north: float) -> str:
-    return f"{units.both(east, 'length')} east, {units.both(north, 'length')} north of the origin"
 
 
 def _outside(draft: Draft, site: Site) -> Iterator[Finding]:

@@ -140,6 +140,8 @@ Expansion = Annotated[float, Quantity("expansion", "not negative")]
 Ratio = Annotated[float, Field(strict=True, gt=0.0, allow_inf_nan=False)]
 Share = Annotated[float, Field(strict=True, gt=0.0, le=1.0, allow_inf_nan=False)]
 Factor = Annotated[float, Field(strict=True, ge=0.0, allow_inf_nan=False)]
+Latitude = Annotated[float, Field(strict=True, ge=-90.0, le=90.0, allow_inf_nan=False)]
+Longitude = Annotated[float, Field(strict=True, ge=-180.0, le=180.0, allow_inf_nan=False)]
 Flag = Annotated[bool, Field(strict=True)]
 _CHARACTER = r"[^\x00-\x1f\x7f]"
 _INK = r"[^\s\x00-\x1f\x7f]"

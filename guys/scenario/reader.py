@@ -114,7 +114,7 @@ def _scenario(text: str, content: bytes, path: str | None) -> Scenario:
     _check_format(document, text, path)
     tables, unfit = draft(document)
     tables, site, misplaced = place.placed(tables, path)
-    broken = unfit + misplaced
+    broken = unfit + independent(misplaced, unfit)
     findings = broken + independent(_rules(tables, site), broken)
     if findings:
         raise ScenarioError(_faults(findings, text, path))

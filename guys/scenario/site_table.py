@@ -4,21 +4,18 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import Discriminator, Field, Tag
+from pydantic import Discriminator, Tag
 
 from guys.scenario import quantity as q
 from guys.scenario.table import Model
-
-Latitude = Annotated[float, Field(ge=-90.0, le=90.0, allow_inf_nan=False, strict=True)]
-Longitude = Annotated[float, Field(ge=-180.0, le=180.0, allow_inf_nan=False, strict=True)]
 
 
 class DegreesOrigin(Model):
     """The origin by latitude and longitude."""
 
-    lat: Latitude
+    lat: q.Latitude
     """Latitude, degrees north, WGS 84; a bare number."""
-    lon: Longitude
+    lon: q.Longitude
     """Longitude, degrees east, WGS 84; a bare number."""
     level: q.Length = 0.0
     """Level above the sea."""
@@ -47,7 +44,7 @@ class SiteEntry(Model):
     crs: q.Line | None = None
     """Projected coordinate system, such as "EPSG:32631"; left out: local metres."""
     origin: Origin | None = None
-    """Where the origin of east, north and level lies, with crs."""
+    """Where the origin of east, north and level lies, with crs; left out: at the first spar's foot, given by lat and lon."""
     boundary: q.Line | None = None
     """File with the polygons that anchors must lie inside (GeoJSON or DXF)."""
     obstacles: q.Line | None = None

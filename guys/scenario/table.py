@@ -44,11 +44,19 @@ def _own_descriptions(model: type[BaseModel]) -> dict[str, str]:
 
 
 class GroundFoot(Model):
-    """A foot on the ground."""
+    """A foot on the ground: east and north, bearing and radius, or latitude and longitude; once read, east, north and level."""
 
-    east: q.Length
+    east: q.Length = 0.0
     """Distance east of the origin."""
-    north: q.Length
+    north: q.Length = 0.0
     """Distance north of the origin."""
+    bearing: q.Angle | None = None
+    """Bearing from the origin; of a gin pole from the foot of the spar raised."""
+    radius: q.PositiveLength | None = None
+    """Level distance from there."""
+    lat: q.Latitude | None = None
+    """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
+    lon: q.Longitude | None = None
+    """Longitude, degrees east, WGS 84; a bare number."""
     level: q.Length = 0.0
-    """Height above the origin's level."""
+    """Height above the origin's level; left out: that of the surveyed ground, or without one the origin's."""

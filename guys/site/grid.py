@@ -28,6 +28,8 @@ EARTH_RADIUS = 6_371_000.0
 """[m] mean radius, for the level's part of the scale."""
 CONFORMAL = 1e-4
 """Difference of scale north-south and east-west above which a grid is refused: bearings on it are not bearings on the ground."""
+STRAY = 3.0
+"""[deg] an origin may lie outside the area its system is for: half a zone of six degrees, as sites across a zone's edge need."""
 
 
 class GridError(ValueError):
@@ -131,6 +133,23 @@ def grid_at_degrees(crs: str, latitude: float, longitude: float, level: float) -
     return grid_at(crs, float(east), float(north), level)
 
 
+def _in_reach(crs: str, latitude: float, longitude: float) -> None:
+    """Raises GridError for a place far outside the area the system is for."""
+    area = _system(crs).area_of_use
+    if area is None or _stray(area, latitude, longitude) <= STRAY:
+        return
+    swapped = "; are lat and lon swapped?" if _stray(area, longitude, latitude) <= STRAY else ""
+    within = f"latitude {area.south:g} to {area.north:g}, longitude {area.west:g} to {area.east:g}"
+    raise GridError(f"latitude {latitude:.6g}, longitude {longitude:.6g} is far outside the area {crs} is for, {within}{swapped}")
+
+
+def _stray(area: Any, latitude: float, longitude: float) -> float:
+    """How far a place is outside an area of use [deg]."""
+    width = (area.east - area.west) % 360 or 360.0
+    past = (longitude - area.west) % 360
+    return float(max(area.south - latitude, latitude - area.north, 0.0 if past <= width else min(past - width, 360 - past)))
+
+
 def grid_at(crs: str, east: float, north: float, level: float) -> Grid:
     """The grid through a place given in the grid itself [grid unit]; raises GridError."""
     from pyproj import Proj
@@ -140,6 +159,7 @@ def grid_at(crs: str, east: float, north: float, level: float) -> Grid:
     longitude, latitude = to_grid.transform(east, north, direction="INVERSE")
     if not (math.isfinite(longitude) and math.isfinite(latitude)):
         raise GridError(f"{east:.10g}, {north:.10g} is not a place on {crs}")
+    _in_reach(crs, latitude, longitude)
     own = Proj(system)
     factors = own.get_factors(*own(east, north, inverse=True))
     k, other = float(factors.meridional_scale), float(factors.parallel_scale)
