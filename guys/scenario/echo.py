@@ -49,7 +49,9 @@ def _anchor(anchor: Anchor, foot: drawn.Point) -> str:
     return f"bearing {bearing:.4g} deg, radius {radius}, level {level}{held}"
 
 
-def _ground(foot: GroundFoot) -> str:
+def _stands(foot: GroundFoot | HeelFoot) -> str:
+    if isinstance(foot, HeelFoot):
+        return f'on spar "{foot.spar}" at {units.both(foot.at, "length")}'
     if (foot.east, foot.north, foot.level) == (0.0, 0.0, 0.0):
         return "on the ground"
     return f"on the ground {feet.where(foot.east, foot.north)}, level {units.both(foot.level, 'length')}"
@@ -59,7 +61,7 @@ def _spar(scenario: Scenario, spar: Spar) -> str:
     masses = [section_mass(section, scenario.material) or 0.0 for section in spar.section]
     mass = math.fsum(each * section.length for each, section in zip(masses, spar.section, strict=True))
     mass += math.fsum(fitting.mass for fitting in spar.fitting)
-    stands = f'on spar "{spar.foot.spar}" at {units.both(spar.foot.at, "length")}' if isinstance(spar.foot, HeelFoot) else _ground(spar.foot)
+    stands = _stands(spar.foot)
     lean = f", lean {math.degrees(spar.lean):.4g} deg toward {math.degrees(spar.toward):.4g} deg" if spar.lean else ""
     carried = " with its fittings" if spar.fitting else ""
     return f"{units.both(spar.length, 'length')} long, {spar.base} {stands}{lean}, {units.both(mass, 'mass')}{carried}"

@@ -69,7 +69,7 @@ def _asked(entry: SiteEntry) -> Asked:
 def _needs(entry: SiteEntry, first: GroundFoot | None) -> Iterator[Finding]:
     if entry.crs is not None and entry.origin is None and first is None:
         text = 'missing; crs needs the place of the origin, such as origin = { lat = 51.0, lon = 3.0, level = "32 m" }'
-        yield Finding(("site", "origin"), f"{text}, or the first spar's foot by lat and lon")
+        yield Finding(("site", "origin"), f"{text}, or the first spar's foot by lat and lon", (("spar", 0, "foot"),))
     if entry.crs is None and entry.origin is not None:
         yield Finding(("site", "crs"), 'missing; origin needs it, such as crs = "EPSG:32631"; leave both out for local metres')
     if entry.setback and entry.boundary is None:
