@@ -41,8 +41,8 @@ from guys.version import __version__
 
 STEPS = 60
 """Sizes tried from least to greatest, evenly by their logarithm."""
-HALVINGS = 40
-"""Halvings between two sizes tried: to rounding."""
+FOUND = 1e-10
+"""Relative distance to which the least size between two tried is found."""
 
 
 @dataclass(frozen=True)
@@ -161,10 +161,13 @@ def size(scenario: Scenario, progress: Progress | None = None) -> Sizing:
     return sized(scenario, listed, swept)
 
 
-def sized(scenario: Scenario, listed: Batch, swept: Batch | None) -> Sizing:
-    """The sizes that solved cases ask for; none where the file has no holdfast."""
+def sized(scenario: Scenario, listed: Batch, swept: Batch | None, own: bool = False) -> Sizing:
+    """The sizes that solved cases ask for; none where the file has no holdfast.
+
+    own : of an anchor that names its holdfast, of that alone
+    """
     batches = [batch for batch in (listed, swept) if batch is not None]
-    anchors = tuple(_anchor(scenario, k, _pulls(scenario, k, batches)) for k in range(len(scenario.anchor)))
+    anchors = tuple(_anchor(scenario, k, _pulls(scenario, k, batches), own) for k in range(len(scenario.anchor)))
     settled = [bool(((b.code == stability.STABLE) | b.spins).all()) for b in batches]
     failed = any(bool((b.code == stability.FAILED).any()) for b in batches)
     told = tuple(_warnings(scenario, anchors, all(settled)))
@@ -186,12 +189,13 @@ def _pulls(scenario: Scenario, k: int, batches: Sequence[Batch]) -> Pulls:
     return Pulls(strength, angle(pull[rows]), required[rows], idle(scenario, forces)[rows, k], tuple(flat[r] for r in rows))
 
 
-def _anchor(scenario: Scenario, k: int, pulls: Pulls) -> AnchorNeeds:
+def _anchor(scenario: Scenario, k: int, pulls: Pulls, own: bool) -> AnchorNeeds:
     anchor = scenario.anchor[k]
     cables = tuple(c.name for c in scenario.cable if isinstance(c.to, AnchorPoint) and c.to.anchor == anchor.name)
     if len(pulls.force) == 0:
         return AnchorNeeds(anchor.name, anchor.holdfast, cables, math.nan, math.nan, math.nan, "", math.nan, ())
-    needs = [need for name, holdfast in scenario.holdfast.items() for need in _needs(name, holdfast, pulls)]
+    tried = [anchor.holdfast] if own and anchor.holdfast is not None else scenario.holdfast
+    needs = [need for name in tried for need in _needs(name, scenario.holdfast[name], pulls)]
     worst = int(np.argmax(pulls.required * pulls.force))
     line, force, required = pulls.lines[worst], float(pulls.force[worst]), float(pulls.required[worst])
     return AnchorNeeds(
@@ -281,24 +285,24 @@ def reserve(holdfast: Holdfast, pulls: Pulls) -> float:
 def least(size: Size, pulls: Pulls) -> float | None:
     """The least size that holds, None where none within the bounds does."""
 
-    def holds(x: float) -> bool:
-        return reserve(size.put(x), pulls) >= 1.0
+    def spare(logarithm: float) -> float:
+        kept = reserve(size.put(math.exp(logarithm)), pulls)
+        return -1.0 if math.isnan(kept) else min(kept, 2.0) - 1.0
 
-    before, steps = None, np.geomspace(size.least, max(size.most, size.least), STEPS)
-    for x in (float(s) for s in steps):
-        if holds(x):
-            if before is None:
-                return x
-            return _narrowed(before, x, holds)
+    before = None
+    for x in (float(s) for s in np.linspace(math.log(size.least), math.log(max(size.most, size.least)), STEPS)):
+        if spare(x) >= 0.0:
+            return math.exp(x if before is None else _narrowed(before, x, spare))
         before = x
     return None
 
 
-def _narrowed(short: float, enough: float, holds: Callable[[float], bool]) -> float:
-    for _ in range(HALVINGS):
-        middle = math.sqrt(short * enough)
-        short, enough = (short, middle) if holds(middle) else (middle, enough)
-    return enough
+def _narrowed(short: float, enough: float, spare: Callable[[float], float]) -> float:
+    """The root between, or just above it where it falls short by rounding or `spare` jumps there."""
+    from scipy.optimize import brentq
+
+    root = float(brentq(spare, short, enough, xtol=FOUND))
+    return next((x for x in (root, root + 2 * FOUND) if spare(x) >= 0.0), enough)
 
 
 def _governing(holdfast: Holdfast, pulls: Pulls) -> dict[str, Any]:

@@ -172,20 +172,13 @@ def tried(scenario: Scenario, keys: tuple[str, ...], at: tuple[float, ...]) -> T
     if any(solution.unsettled) or solution.failed:
         share = sum(solution.unsettled) / len(solution.unsettled)
         return Trial(at, anchors, FALLS, share, "no stable equilibrium in some case", nothing)
-    needs = sizing.sized(_own_holdfasts(layout), listed, None).anchors if "mass" in keys and layout.holdfast else ()
+    needs = sizing.sized(layout, listed, None, own=True).anchors if "mass" in keys and layout.holdfast else ()
     values = tuple(measured(solution, needs, keys)[key].value for key in keys)
     rule, amount = _past(solution, keys)
     if not rule and any(math.isnan(value) for value in values):
         unknown = MEASURES[keys[[math.isnan(value) for value in values].index(True)]].words
         return Trial(at, anchors, PAST, 1.0, f"{unknown} not known", nothing)
     return Trial(at, anchors, PAST if rule else HOLDS, amount, rule, values)
-
-
-def _own_holdfasts(layout: Scenario) -> Scenario:
-    """Without the holdfasts that no anchor has, where every one has its own: they need not be sized."""
-    held = {anchor.holdfast for anchor in layout.anchor}
-    own = {name: holdfast for name, holdfast in layout.holdfast.items() if name in held or None in held}
-    return layout.model_copy(update={"holdfast": own})
 
 
 def _past(solution: Solution, keys: tuple[str, ...]) -> tuple[str, float]:
