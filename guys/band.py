@@ -327,10 +327,10 @@ def solve(factors: Array, right: Array) -> Array:
 
 
 def dense(band: Array) -> Array:
-    """One case's band (unknown, width) as a full symmetric matrix."""
-    n, width = band.shape
-    out = np.zeros((n, n))
+    """Bands (..., unknown, width) as full symmetric matrices (..., unknown, unknown)."""
+    n, width = band.shape[-2:]
+    out = np.zeros((*band.shape[:-2], n, n))
     for d in range(min(width, n)):
         k = np.arange(n - d)
-        out[k + d, k] = out[k, k + d] = band[: n - d, d]
+        out[..., k + d, k] = out[..., k, k + d] = band[..., : n - d, d]
     return out

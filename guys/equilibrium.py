@@ -14,7 +14,7 @@ greater; the reference force is the largest of total weight, total wind, greates
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -23,7 +23,7 @@ from numpy.typing import NDArray
 
 from guys import band, beam, cable, columns, joint
 from guys.constants import NONZERO
-from guys.loads import LoadCases
+from guys.loads import LoadCases, joined
 from guys.rotation import Array, cross, dot, dyad_curvature, dyad_moment, turn, turned
 from guys.structure import Points, Structure
 
@@ -78,12 +78,37 @@ class Evaluation:
 
 
 @dataclass(frozen=True)
+class Runs:
+    """Where cables run as drawn, a row for every case or one for all: apart (row, cable, 3) [m] from the node of end A to that of end B;
+    arm_a, arm_b (row, cable, 3) [m] from these nodes to the ends."""
+
+    apart: Array
+    arm_a: Array
+    arm_b: Array
+
+    @staticmethod
+    def of(structure: Structure) -> Runs:
+        """Those of one structure."""
+        a, b = structure.cables.a, structure.cables.b
+        return Runs((structure.position[b.node] - structure.position[a.node])[None], a.arm[None], b.arm[None])
+
+    def take(self, rows: Index) -> Runs:
+        """Those of the cases `rows`."""
+        return Runs(self.apart[rows], self.arm_a[rows], self.arm_b[rows])
+
+
+@dataclass(frozen=True)
 class Problem:
-    """A structure under load cases with given unstressed lengths (cable,) [m] at the setting temperature."""
+    """A structure under load cases with given unstressed lengths [m] at the setting temperature.
+
+    length : (cable,), or (case, cable) where cases differ in it
+    moved : where the cables of every case run, where that is not as the structure has them: see `side_by_side`
+    """
 
     structure: Structure
     loads: LoadCases
     length: Array
+    moved: Runs | None = None
 
     @property
     def cases(self) -> int:
@@ -94,6 +119,11 @@ class Problem:
     def pattern(self) -> band.Pattern:
         """Where the tangent's blocks go."""
         return self.structure.pattern
+
+    @cached_property
+    def runs(self) -> Runs:
+        """Where cables run."""
+        return Runs.of(self.structure) if self.moved is None else self.moved
 
     @cached_property
     def natural(self) -> Array:
@@ -122,7 +152,8 @@ class Problem:
 
     def take(self, rows: Index) -> Problem:
         """The cases `rows`."""
-        return replace(self, loads=self.loads.take(rows))
+        length = self.length if self.length.ndim == 1 else self.length[rows]
+        return Problem(self.structure, self.loads.take(rows), length, None if self.moved is None else self.moved.take(rows))
 
     def drawn(self) -> State:
         """The unloaded geometry, for every case."""
@@ -144,19 +175,19 @@ class Problem:
         carriers = np.array(self.structure.rides.carrier, dtype=np.int64)
         return turned(state.psi[:, carriers], self.structure.ride_arm + self.ride_growth)
 
-    def reach(self, points: Points, state: State) -> tuple[Array, Array]:
-        """Turned arms (case, point, 3) and displacement from the drawn node position (case, point, 3) of points."""
-        arm = points.arm + self.loads.warming[:, None, None] * points.growth
+    def reach(self, points: Points, state: State, arm: Array | None = None) -> tuple[Array, Array]:
+        """Turned arms (case, point, 3) and displacement from the drawn node position (case, point, 3) of points; `arm` in place of
+        theirs."""
+        arm = (points.arm if arm is None else arm) + self.loads.warming[:, None, None] * points.growth
         a = turned(state.psi[:, points.node], arm)
         return a, state.u[:, points.node] + a
 
     def chords(self, state: State) -> tuple[Array, Array, Array]:
         """Turned arms at ends A and B, and chord vectors B - A (case, cable, 3)."""
-        s = self.structure
-        arm_a, at_a = self.reach(s.cables.a, state)
-        arm_b, at_b = self.reach(s.cables.b, state)
-        apart = s.position[s.cables.b.node] - s.position[s.cables.a.node]
-        return arm_a, arm_b, apart + (at_b - at_a)
+        cables, runs = self.structure.cables, self.runs
+        arm_a, at_a = self.reach(cables.a, state, runs.arm_a)
+        arm_b, at_b = self.reach(cables.b, state, runs.arm_b)
+        return arm_a, arm_b, runs.apart + (at_b - at_a)
 
     def pull(self, chord: Array, warm: Array) -> cable.Hanging:
         """Cables of all cases at given chords (case, cable, 3)."""
@@ -176,7 +207,7 @@ class Problem:
     @cached_property
     def cable_total(self) -> Array:
         """(case, cable, 3) [N] whole load of every cable."""
-        return self.loads.cable_load * self.length[:, None]
+        return self.loads.cable_load * self.length[..., None]
 
     def evaluate(self, state: State) -> Evaluation:
         """Net forces and moments of every case."""
@@ -376,6 +407,20 @@ class Problem:
         _, reached = self.reach(s.head, state)
         line = s.position[s.head.node] - s.position[s.foot] + reached - state.u[:, s.foot]
         return np.asarray(line / np.sqrt(dot(line, line))[..., None])
+
+
+def side_by_side(problems: Sequence[Problem]) -> Problem:
+    """The cases of several problems in one, whose structures differ only in where anchors stand."""
+    if len(problems) == 1:
+        return problems[0]
+
+    def each(of: Callable[[Problem], Array]) -> Array:
+        """(case, cable, ...) from rows of one problem for all its cases, or a row for each."""
+        return np.concatenate([np.broadcast_to(of(p), (p.cases, *of(p).shape[1:])) for p in problems])
+
+    runs = Runs(each(lambda p: p.runs.apart), each(lambda p: p.runs.arm_a), each(lambda p: p.runs.arm_b))
+    length = each(lambda p: p.length.reshape(-1, p.length.shape[-1]))
+    return Problem(problems[0].structure, joined([p.loads for p in problems]), length, runs)
 
 
 def _passed_on(k: Array, arm: Array, force: Array) -> Array:

@@ -21,7 +21,8 @@ Source: Thompson & Hunt, A General Theory of Elastic Stability (1973), for the m
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -87,6 +88,13 @@ class Judged:
     drifts: NDArray[np.bool_]
     mirror: dict[int, State]
     beyond: dict[int, State]
+
+    def take(self, rows: Index) -> Judged:
+        """The cases `rows`."""
+        kept: dict[str, Any] = {f.name: getattr(self, f.name)[rows] for f in fields(self) if f.name not in ("state", "mirror", "beyond")}
+        place = {int(row): k for k, row in enumerate(rows)}
+        mirror, beyond = ({place[case]: s for case, s in states.items() if case in place} for states in (self.mirror, self.beyond))
+        return Judged(self.state.take(rows), **kept, mirror=mirror, beyond=beyond)
 
 
 def classify(problem: Problem, state: State) -> Index:

@@ -404,11 +404,11 @@ class _Builder:
         return Fittings(_points(points), spar, np.array([f.at for _, _, f, _ in rows]), tuple((k, n) for k, n, _, _ in rows), side)
 
     def _weight(self, pieces: Pieces, cables: Cables) -> float:
-        """Dead weight and fixed loads of the whole [N], for scales."""
+        """Dead weight and fixed loads of the whole [N], for scales; a cable's as if as long as its spar, wherever its anchor stands."""
         spans = pieces.station[:, 1] - pieces.station[:, 0]
         fittings = [f for spar in self.scenario.spar for f in spar.fitting]
-        chords = [float(np.linalg.norm(self.drawn(c.from_) - self.drawn(c.to))) for c in self.scenario.cable]
-        kilos = float(pieces.mass @ spans) + sum(f.mass for f in fittings) + float(cables.mass @ np.array(chords))
+        lengths = np.array([self.scenario.spar[k].length for k in cables.spar])
+        kilos = float(pieces.mass @ spans) + sum(f.mass for f in fittings) + float(cables.mass @ lengths)
         return STANDARD_GRAVITY * kilos + sum(math.hypot(f.load.east, f.load.north, f.load.up) for f in fittings)
 
     def _supports(self, weight: float, cables: Cables) -> tuple[NDArray[np.bool_], Rides, Array, Array, Joints]:

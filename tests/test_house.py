@@ -24,7 +24,7 @@ FLOORS: dict[str, int] = {
     **dict.fromkeys(("rotation", "columns", "beam", "cable", "joint", "tilting", "band", "sounding"), 2),
     **dict.fromkeys(("icing", "mesh", "sections", "structure"), 3),
     **dict.fromkeys(("loads",), 4),
-    **dict.fromkeys(("results", "solver", "equilibrium", "recovery", "setting", "stability", "path", "limits", "reserves"), 5),
+    **dict.fromkeys(("results", "solver", "equilibrium", "recovery", "lengths", "setting", "stability", "path", "limits", "reserves"), 5),
     **dict.fromkeys(("holdfasts", "checks"), 6),
     **dict.fromkeys(("studies",), 7),
     **dict.fromkeys(("drawing", "record", "exchange"), 8),

@@ -25,7 +25,7 @@ from guys.studies import standing
 from guys.studies.compare import solved
 from guys.studies.measures import MEASURES, measured
 from guys.studies.search import Found, not_bettered, rigged, search
-from guys.studies.trial import HOLDS, MISPLACED, PAST, Trial, placed, spans, tried
+from guys.studies.trial import FALLS, HOLDS, MISPLACED, PAST, Trial, placed, spans, tried
 
 TABLE = '\n[search]\nleast = "{least}"\ntries = {tries}\ndirections = 2\n{more}'
 SPOTS = ", ".join(f'{{ bearing = "{b} deg", radius = "{r} m" }}' for b, r in ((200, 9), (0, 8), (60, 11), (130, 10), (300, 12)))
@@ -56,7 +56,7 @@ def test_the_least_pull_is_that_of_brute_force_on_a_grid() -> None:
     """Anchors on a ring: what is found is as good as the best of 26 radii 0.4 m apart, and lies beside it."""
     scenario = mast()
     radii = [4.0 + 0.4 * k for k in range(26)]
-    grid = [tried(scenario, ("pull",), (r,)) for r in radii]
+    grid = [tried(scenario, ("pull",), [(r,)])[0] for r in radii]
     best = search(scenario).best
     assert best is not None
     least = min((t for t in grid if t.outcome == HOLDS), key=lambda t: t.values)
@@ -239,7 +239,7 @@ def test_a_seed_gives_the_same_bytes_however_many_processes_try(found: Found) ->
 
 
 class Stopping(Executor):
-    """Stops as a user would, after so many tries."""
+    """Stops as a user would, after so many lots of tries."""
 
     def __init__(self, after: int) -> None:
         self.left = after
@@ -257,11 +257,35 @@ class Stopping(Executor):
 
 
 def test_an_interruption_keeps_the_best_so_far() -> None:
-    whole, cut = search(mast()), search(mast(), Stopping(20))
+    whole, cut = search(mast()), search(mast(), Stopping(2))
     assert cut.interrupted
-    assert cut.trials == whole.trials[:20]
+    assert 0 < len(cut.trials) < len(whole.trials)
+    assert cut.trials == whole.trials[: len(cut.trials)]
     assert cut.best == min((t for t in cut.trials if t.outcome == HOLDS), key=lambda t: t.values)
     assert cut.compared is not None
+
+
+def test_layouts_come_to_the_same_in_company_and_alone() -> None:
+    """On one case axis, to the last bit; among them one that no still-air state meets and one on the foot of the mast."""
+    scenario = mast(move=ONE)
+    points = [(r, b) for b in (-0.4, 0.0, 0.4) for r in (5.0, 12.0)]
+    places = [(0.1, 0.2), *points, (6.0, 0.3)]
+    together = tried(scenario, ("pull", "rope"), places)
+    assert together == [tried(scenario, ("pull", "rope"), [at])[0] for at in places]
+    assert [trial.outcome for trial in together] == [MISPLACED, *[HOLDS] * (len(places) - 1)]
+
+
+def test_layouts_whose_tensions_do_not_balance_are_told_apart_in_company() -> None:
+    """Without `plumb` tensions near those of slack cables are met or not, each by itself."""
+    document = made.mast(0.0)
+    for guy in document["cable"]:
+        guy["tension"] = 60.0 if guy["to"]["anchor"] == "A" else 20.0
+    move = '[[search.move]]\nanchors = ["A"]\nradius = ["4 m", "60 m"]\n'
+    scenario = parse_scenario(made.text(document) + TABLE.format(least="pull", tries=36, more="") + move)
+    places = [(4.0,), (10.0,), (59.0,)]
+    together = tried(scenario, ("pull",), places)
+    assert together == [tried(scenario, ("pull",), [at])[0] for at in places]
+    assert together[0].outcome != FALLS == together[-1].outcome
 
 
 # ---------------------------------------------------------------- what is handed back

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 import scenarios_made as made
 
-from guys import cable, solver, stability, structure
+from guys import cable, lengths, solver, stability, structure
 from guys import setting as initial
 from guys.errors import ScenarioError
 
@@ -250,25 +250,25 @@ def test_rates_are_the_differences_of_solved_settings(document: made.Document) -
     Straight cables that are just tight have a kink there, so their lengths are first made a little shorter.
     """
     found = made.setting(document)
-    asked = initial._asked(found.problem.structure.scenario)
+    asked = lengths.asked_of(found.problem.structure.scenario)
     if "tight" in document["cable"][0]:
-        shorter = initial._with_change(found.problem, np.full(len(asked.index), -1e-3), asked)
+        shorter = lengths.changed(found.problem, np.full((1, len(asked.index)), -1e-3), asked)
         start = solver.solve(shorter, found.state)
         problem, state = shorter, start.state
     else:
         problem, state = found.problem, found.state
-    rates = initial._rates(problem, state, asked)
+    rates = lengths.rates(problem, state, asked)
 
     def measured(k: int, change: float) -> np.ndarray:
-        step = np.zeros(len(asked.index))
-        step[k] = change
-        other = initial._with_change(problem, step, asked)
+        step = np.zeros((1, len(asked.index)))
+        step[0, k] = change
+        other = lengths.changed(problem, step, asked)
         out = solver.solve(other, state)
-        return initial._measures(other, out.state, other.evaluate(out.state), asked)
+        return lengths.measures(other, out.state, other.evaluate(out.state), asked)[0]
 
     for k in range(len(asked.index)):
         numeric = (measured(k, 1e-6) - measured(k, -1e-6)) / 2e-6
-        assert np.abs(numeric - rates.rate[:, k]).max() < 10 * DIFFERENCES * np.abs(rates.rate).max()
+        assert np.abs(numeric - rates.rate[0, :, k]).max() < 10 * DIFFERENCES * np.abs(rates.rate).max()
 
 
 def test_setting_is_found_once_and_holds_for_every_case() -> None:

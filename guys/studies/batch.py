@@ -14,8 +14,8 @@ from numpy.typing import NDArray
 from guys import band, recovery, stability
 from guys.checks import demands, spars
 from guys.checks.demands import Demands
-from guys.equilibrium import Problem, State
-from guys.loads import CaseLine, LoadCases, setting_line
+from guys.equilibrium import Problem, State, side_by_side
+from guys.loads import CaseLine, LoadCases, joined, setting_line
 from guys.results import SparLine
 from guys.rotation import Array, turned
 from guys.setting import Setting
@@ -103,16 +103,52 @@ def solve_lines(
     parts = []
     step = max(1, CHUNK // max((len(line.states()) for line in lines), default=1))
     for first in range(0, len(lines), step):
-        asked, states = peaks.asked(lines[first : first + step])
-        problem = setting.under(states)
+        share = _share(setting, lines[first : first + step], start, first)
         if change is not None:
-            problem = replace(problem, loads=change(problem.loads, first + asked.owner))
-        state, loads = start[0].take(first + asked.owner), start[1].take(first + asked.owner)
-        judged = stability.judge(problem, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
-        parts.append(recover(problem, judged, detail, asked))
+            loads = change(share.problem.loads, first + share.asked.owner)
+            share = replace(share, problem=replace(share.problem, loads=loads))
+        parts += _solved([share], detail)
         if progress is not None:
             progress(min(first + step, len(lines)), len(lines))
     return join(parts)
+
+
+def solve_each(settings: Sequence[Setting], lines: Sequence[CaseLine], detail: bool) -> list[Batch]:
+    """The same few lines on settings that stand of layouts side by side (`setting.find_each`), as many at once as fill a chunk."""
+    out: list[Batch] = []
+    waiting: list[_Share] = []
+    for setting in settings:
+        waiting.append(_share(setting, lines, starts(setting, lines)))
+        if sum(share.problem.cases for share in waiting) + waiting[-1].problem.cases > CHUNK:
+            out, waiting = out + _solved(waiting, detail), []
+    return out + _solved(waiting, detail)
+
+
+@dataclass(frozen=True)
+class _Share:
+    """Lines of one setting: what they ask, the problem of their states, and where the paths of these go out from."""
+
+    asked: Asked
+    problem: Problem
+    start: Start
+
+
+def _share(setting: Setting, lines: Sequence[CaseLine], start: Start, first: int = 0) -> _Share:
+    """first : place of the first line in `start`"""
+    asked, states = peaks.asked(lines)
+    rows = first + asked.owner
+    return _Share(asked, setting.under(states), (start[0].take(rows), start[1].take(rows)))
+
+
+def _solved(shares: Sequence[_Share], detail: bool) -> list[Batch]:
+    """Every share judged, all at once, and recovered by itself."""
+    if not shares:
+        return []
+    state, loads = State.join([s.start[0] for s in shares]), joined([s.start[1] for s in shares])
+    whole = side_by_side([s.problem for s in shares])
+    judged = stability.judge(whole, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
+    rows = np.split(np.arange(whole.cases), np.cumsum([s.problem.cases for s in shares])[:-1])
+    return [recover(s.problem, judged.take(own), detail, s.asked) for s, own in zip(shares, rows, strict=True)]
 
 
 def as_set(setting: Setting, lines: int) -> Start:

@@ -3,8 +3,9 @@
     trial vector  v = x_best + F (x_a - x_b)   crossed with x; kept where its grade is no worse
 
 (R. Storn, K. Price: Differential Evolution, J. of Global Optimization 11 (1997) 341-359; the scheme "best/1/bin" of scipy.)  A generation
-is a batch: its layouts are tried side by side by any `concurrent.futures.Executor`, and the next one depends on their grades alone, so
-that a seed gives the same layouts, to the last bit, however many processes try them.  No layout is tried twice.
+is a batch: its layouts are tried `TOGETHER` at a time on the solver's case axis, such lots side by side by any
+`concurrent.futures.Executor`, and the next generation depends on their grades alone, so that a seed gives the same layouts, to the last
+bit, however many processes try them.  No layout is tried twice.
 
 Trade-off of two measures: the least of each by itself, then the first made least with the second held under limits between those two, one
 limit at a time; of all layouts tried that hold every rule, those are kept that no other betters in both.  What is found is solved again
@@ -35,6 +36,8 @@ from guys.version import __version__
 
 AMONG = 24
 """Layouts of a generation at the most."""
+TOGETHER = 12
+"""Layouts solved on one case axis, by one process."""
 LIMITS = 4
 """Limits on the second measure between the least of both."""
 SHARE = 0.4
@@ -87,9 +90,10 @@ class _Tries:
 
     def __call__(self, points: Sequence[tuple[float, ...]]) -> list[Trial]:
         fresh = [p for p in dict.fromkeys(points) if p not in self.known]
+        together = [fresh[k : k + TOGETHER] for k in range(0, len(fresh), TOGETHER)]
         each = partial(tried, self.scenario, self.keys)
-        for trial in map(each, fresh) if self.executor is None else self.executor.map(each, fresh):
-            self.known[trial.at] = trial
+        for trials in map(each, together) if self.executor is None else self.executor.map(each, together):
+            self.known |= {trial.at: trial for trial in trials}
             if self.progress is not None:
                 self.progress(min(len(self.known), self.most), self.most)
         return [self.known[p] for p in points]

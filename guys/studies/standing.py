@@ -36,7 +36,7 @@ from guys.scenario.model import AnchorPoint, GroundFoot, HeelFoot
 from guys.setting import Setting, find
 from guys.structure import Structure, build
 from guys.studies import directions
-from guys.studies.batch import Batch, Progress, join, recover, solve_lines, starts
+from guys.studies.batch import Batch, Progress, join, recover, solve_each, solve_lines, starts
 from guys.version import __version__
 
 STATES: tuple[State, ...] = ("stable", "neutral", "unstable", "none", "none")
@@ -68,11 +68,21 @@ def cases(
 
 def listed_cases(setting: Setting, progress: Progress | None = None) -> Batch:
     """The setting case, then every listed case."""
-    first = recover(setting.problem, setting.judged, detail=True)
     lines = lines_of(setting.problem.structure.scenario)
-    if setting.stands:
-        return join([first, solve_lines(setting, lines, True, progress)])
-    return join([first, _none(setting, lines, first.reason[0])])
+    return _listed(setting, lines, solve_lines(setting, lines, True, progress) if setting.stands else None)
+
+
+def listed_of_each(settings: Sequence[Setting]) -> list[Batch]:
+    """The same of layouts side by side (`setting.find_each`)."""
+    lines = lines_of(settings[0].problem.structure.scenario) if settings else ()
+    solved = iter(solve_each([setting for setting in settings if setting.stands], lines, detail=True))
+    return [_listed(setting, lines, next(solved) if setting.stands else None) for setting in settings]
+
+
+def _listed(setting: Setting, lines: Sequence[CaseLine], solved: Batch | None) -> Batch:
+    """The setting case and the solved ones, none where still air does not stand."""
+    first = recover(setting.problem, setting.judged, detail=True)
+    return join([first, solved or _none(setting, lines, first.reason[0])])
 
 
 def _none(setting: Setting, lines: Sequence[CaseLine], reason: str | None) -> Batch:

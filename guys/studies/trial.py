@@ -1,8 +1,9 @@
-"""One layout of a search: anchors put where the numbers say, the site's rules on them, then the line in a few directions.
+"""Layouts of a search: anchors put where the numbers say, the site's rules on them, then the line in a few directions.
 
 Rules in order, since each costs more than the one before: a place that is on the surveyed ground, clear of the mast and of other anchors;
 boundary and obstacles in plan; equilibrium in every case; everything judged within its allowable, cables over roads and lines included.
-A layout that breaks one is not solved further.  `grade` orders layouts: one that holds all rules by its measure, any other behind it by how
+A layout that breaks one is not solved further.  Layouts tried together are set and solved side by side; each comes to what it comes to
+alone.  `grade` orders layouts: one that holds all rules by its measure, any other behind it by how
 far it went and how much it breaks.
 """
 
@@ -10,16 +11,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from guys.checks import plan
-from guys.errors import ScenarioError
 from guys.results import Finding, Solution
 from guys.scenario import Scenario, drawn
 from guys.scenario.model import Anchor
 from guys.scenario.search import SearchMove, SearchPlace
 from guys.scenario.searched import clockwise
+from guys.setting import Setting, find_each
+from guys.structure import build
 from guys.studies import sizing, standing
+from guys.studies.batch import Batch
 from guys.studies.measures import MEASURES, measured
 
 HOLDS, PAST, FALLS, MISPLACED = range(4)
@@ -156,29 +159,38 @@ def _listed(place: SearchPlace, foot: drawn.Point) -> tuple[float, float]:
     return place.east or 0.0, place.north or 0.0
 
 
-def tried(scenario: Scenario, keys: tuple[str, ...], at: tuple[float, ...]) -> Trial:
-    """One layout through the rules, and as far through the line as it holds them."""
-    anchors = placed(scenario, at)
-    nothing = (math.nan,) * len(keys)
-    rule, amount = _misplaced(scenario, anchors)
-    if rule:
-        return Trial(at, anchors, MISPLACED, amount, rule, nothing)
-    layout = scenario.model_copy(update={"anchor": anchors, "layouts": ()})
-    try:
-        setting, listed, _ = standing.cases(layout, circle=False)
-    except ScenarioError:
-        return Trial(at, anchors, FALLS, 1.0, "initial tensions that no still-air state meets", nothing)
+def tried(scenario: Scenario, keys: tuple[str, ...], points: Sequence[tuple[float, ...]]) -> list[Trial]:
+    """Layouts through the rules, and as far through the line as each holds them; all on the solver's case axis."""
+    found: dict[tuple[float, ...], Trial] = {}
+    layouts: dict[tuple[float, ...], Scenario] = {}
+    for at in points:
+        anchors = placed(scenario, at)
+        rule, amount = _misplaced(scenario, anchors)
+        found[at] = Trial(at, anchors, MISPLACED, amount, rule, (math.nan,) * len(keys))
+        if not rule:
+            layouts[at] = scenario.model_copy(update={"anchor": anchors, "layouts": ()})
+    settings = dict(zip(layouts, find_each([build(layout) for layout in layouts.values()]), strict=True)) if layouts else {}
+    met = {at: setting for at, setting in settings.items() if isinstance(setting, Setting)}
+    for at in settings.keys() - met.keys():
+        found[at] = replace(found[at], outcome=FALLS, amount=1.0, rule="initial tensions that no still-air state meets")
+    for (at, setting), listed in zip(met.items(), standing.listed_of_each(list(met.values())), strict=True):
+        found[at] = _judged(found[at], layouts[at], keys, setting, listed)
+    return [found[at] for at in points]
+
+
+def _judged(trial: Trial, layout: Scenario, keys: tuple[str, ...], setting: Setting, listed: Batch) -> Trial:
+    """A layout that was solved."""
     solution = standing.solution(setting, listed, None, again=False)
     if any(solution.unsettled) or solution.failed:
         share = sum(solution.unsettled) / len(solution.unsettled)
-        return Trial(at, anchors, FALLS, share, "no stable equilibrium in some case", nothing)
+        return replace(trial, outcome=FALLS, amount=share, rule="no stable equilibrium in some case")
     needs = sizing.sized(layout, listed, None, own=True).anchors if "mass" in keys and layout.holdfast else ()
     values = tuple(measured(solution, needs, keys)[key].value for key in keys)
     rule, amount = _past(solution, keys)
     if not rule and any(math.isnan(value) for value in values):
         unknown = MEASURES[keys[[math.isnan(value) for value in values].index(True)]].words
-        return Trial(at, anchors, PAST, 1.0, f"{unknown} not known", nothing)
-    return Trial(at, anchors, PAST if rule else HOLDS, amount, rule, values)
+        rule, amount = f"{unknown} not known", 1.0
+    return replace(trial, outcome=PAST if rule else HOLDS, amount=amount, rule=rule, values=values)
 
 
 def _past(solution: Solution, keys: tuple[str, ...]) -> tuple[str, float]:
