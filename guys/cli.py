@@ -180,7 +180,8 @@ def lost(file: str, out: str | None, as_json: bool, units: str, winds: bool, lay
 @commands.command("raise")
 @computing("raise.json, raise.csv and the figure", out_required=False)
 @click.option("--paper", type=click.Choice(["A3", "A4", "letter", "tabloid"]), default="A3", show_default=True, help="Paper of the sheet.")
-def raise_(file: str, out: str | None, as_json: bool, units: str, paper: str) -> int:
+@click.option("--workers", type=click.IntRange(1), metavar="N", help="Processes; left out: one a core where they are started at no cost.")
+def raise_(file: str, out: str | None, as_json: bool, units: str, paper: str, workers: int | None) -> int:
     """Raise a spar: every line, the gin pole and the hinge at every angle.
 
     The file's [raise] says how. Exit status: 0 within the allowables; 1 an internal fault; 2 the input is wrong; 3 something is past
@@ -188,7 +189,7 @@ def raise_(file: str, out: str | None, as_json: bool, units: str, paper: str) ->
     """
     from guys.doors.raising import raise_command
 
-    return raise_command(file, out, as_json, units, paper)  # type: ignore[arg-type]
+    return raise_command(file, workers, out, as_json, units, paper)  # type: ignore[arg-type]
 
 
 @commands.command()

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+from concurrent.futures import ThreadPoolExecutor
 from pathlib import Path
 
 import numpy as np
@@ -41,6 +42,13 @@ def test_a_rigid_spar_against_an_independent_calculation() -> None:
     hinge = np.array(list(EXPECTED["hinge_force_on_ground_N"].values()))
     assert found.on_hinge[1:-1, 0] == pytest.approx(hinge, abs=THREADS * 3.5e3)
     assert found.stands.all()
+
+
+def test_angles_side_by_side_give_the_same_bytes() -> None:
+    scenario = parse_scenario(dumps_tables(changed(MAST, COARSE, (("wind",), WIND))))
+    with ThreadPoolExecutor(2) as threads:
+        texts = [exchange.as_text(found, hoisting.findings(found)) for found in (solve(scenario), solve(scenario, threads))]
+    assert texts[0] == texts[1]
 
 
 def test_gin_pole_and_lifting_line_are_those_of_rigid_statics() -> None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import multiprocessing
+import os
 import signal
 import sys
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
@@ -47,8 +49,13 @@ def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
 
 
 @contextmanager
-def workers(count: int) -> Iterator[Executor | None]:
-    """So many processes side by side; None for one, which is this one.  An interruption stops them all."""
+def workers(count: int | None) -> Iterator[Executor | None]:
+    """So many processes side by side; None for one, which is this one.  An interruption stops them all.
+
+    count : None for short work: one a core where processes are forked, and so there at once; where each would first load everything, one
+    """
+    if count is None:
+        count = (os.cpu_count() or 1) if multiprocessing.get_start_method() == "fork" else 1
     if count <= 1:
         yield None
         return

@@ -10,7 +10,7 @@ from typing import TextIO
 import numpy as np
 
 from guys import terminal
-from guys.doors.common import deliver, pictures
+from guys.doors.common import deliver, pictures, workers
 from guys.drawing import Paper, Units, rounding
 from guys.drawing.raising import draw_raising
 from guys.drawing.rounding import System
@@ -23,15 +23,15 @@ from guys.studies import hoisting
 from guys.studies.raising import Raised, solve
 
 
-def raise_command(file: str, out: str | None, as_json: bool, units: Units = "SI", paper: Paper = "A3") -> int:
-    """Every stage of a raising, written to the directory `out` where one is given.
+def raise_command(file: str, side_by_side: int | None, out: str | None, as_json: bool, units: Units = "SI", paper: Paper = "A3") -> int:
+    """Every stage of a raising, so many `side_by_side`, written to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
     scenario = read_scenario(file)
     _refuse(scenario)
-    with terminal.progress(sys.stderr) as tick:
-        raised = solve(scenario, tick)
+    with terminal.progress(sys.stderr, "angles") as tick, workers(side_by_side) as executor:
+        raised = solve(scenario, executor, tick)
     findings = hoisting.findings(raised)
     deliver(
         out,

@@ -10,7 +10,9 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from concurrent.futures import Executor
 from dataclasses import dataclass, replace
+from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -27,7 +29,7 @@ from guys.scenario import Scenario, tilted
 from guys.setting import Setting, find
 from guys.structure import Structure, build
 from guys.studies import part_raised
-from guys.studies.batch import Batch, join, recover, solve_lines
+from guys.studies.batch import Batch, as_set, recover, solve_lines
 from guys.studies.part_raised import Lift, lift_of
 
 Progress = Callable[[int, int], None]
@@ -95,18 +97,23 @@ class Raised:
         return np.array([[s == STATES[stability.STABLE] for s in row] for row in self.state])
 
 
-def solve(scenario: Scenario, progress: Progress | None = None) -> Raised:
-    """Raise the spar of a scenario that has `[raise]`.  Raises `ScenarioError` where a side guy's tension cannot be met."""
+def solve(scenario: Scenario, executor: Executor | None = None, progress: Progress | None = None) -> Raised:
+    """Raise the spar of a scenario that has `[raise]`.
+
+    executor : solves angles side by side, None: one after another;  progress : called with angles done and in all
+
+    Raises `ScenarioError` where a side guy's tension cannot be met.
+    """
     assert scenario.raising is not None
     lift = lift_of(scenario, scenario.raising)
     lines = _case_lines(lift)
     built = [_built(lift, k, lines) for k in range(len(lift.angle))]
     rigid = tilting.pulls(lift.rig, np.array([b.force for b in built]), np.array([b.moment for b in built]))
-    batches = []
-    for k, one in enumerate(built):
-        batches.append(_solved(lift, k, one, rigid, lines))
+    every, batches = map if executor is None else executor.map, list[Batch]()
+    for batch in every(partial(_solved, lift, rigid, lines), range(len(built)), [b.structure for b in built]):
+        batches.append(batch)
         if progress is not None:
-            progress(k + 1, len(built))
+            progress(len(batches), len(built))
     return _gathered(lift, lines, rigid, batches)
 
 
@@ -159,16 +166,15 @@ def _guys(lift: Lift, k: int) -> tuple[Array, Array]:
     return force.sum(axis=0), cross(tops[k] - lift.rig.hinge, force).sum(axis=0)
 
 
-def _solved(lift: Lift, k: int, one: _Built, rigid: tilting.Pulls, lines: list[CaseLine]) -> Batch:
+def _solved(lift: Lift, rigid: tilting.Pulls, lines: list[CaseLine], k: int, structure: Structure) -> Batch:
     """The stage in every case; the setting is its still air."""
-    setting = _setting(lift, k, one, rigid)
-    still = recover(setting.problem, setting.judged, detail=True)
-    if len(lines) == 1 or not setting.stands:
-        return still
-    return join([still, solve_lines(setting, _in_wind(lift, k, rigid, lines), True)])
+    setting = _setting(lift, rigid, k, structure)
+    if not setting.stands:
+        return recover(setting.problem, setting.judged, detail=True)
+    return solve_lines(setting, _without_slack(lift, k, rigid, lines), True, start=as_set(setting, len(lines)))
 
 
-def _setting(lift: Lift, k: int, one: _Built, rigid: tilting.Pulls) -> Setting:
+def _setting(lift: Lift, rigid: tilting.Pulls, k: int, structure: Structure) -> Setting:
     """The stage in still air.
 
     A spar that does not stand has no position to make the other line tight in: that line is then as long as for a rigid spar.
@@ -177,9 +183,9 @@ def _setting(lift: Lift, k: int, one: _Built, rigid: tilting.Pulls) -> Setting:
     chords = _chords(lift, k)
     lengths = {c: chords[c] / (1.0 + tension / lift.stiffness[c == len(chords) - 1]) for c, tension in carrying.items()}
     try:
-        return find(_strung(one.structure, lengths))
+        return find(_strung(structure, lengths))
     except ScenarioError:
-        return find(_strung(one.structure, {**dict(enumerate(chords)), **lengths}))
+        return find(_strung(structure, {**dict(enumerate(chords)), **lengths}))
 
 
 def _strung(structure: Structure, lengths: dict[int, float]) -> Structure:
@@ -190,12 +196,12 @@ def _strung(structure: Structure, lengths: dict[int, float]) -> Structure:
     return replace(structure, scenario=structure.scenario.model_copy(update={"cable": tuple(cables)}))
 
 
-def _in_wind(lift: Lift, k: int, rigid: tilting.Pulls, lines: list[CaseLine]) -> list[CaseLine]:
-    """The wind cases of stage k, without the holding line where the load is well on the side of the hoist line: it is slack then."""
+def _without_slack(lift: Lift, k: int, rigid: tilting.Pulls, lines: list[CaseLine]) -> list[CaseLine]:
+    """The cases of stage k, in wind without the holding line where the load is well on the side of the hoist line: it is slack then."""
     pull = np.nan_to_num(rigid.lifting)
     slack = (pull[k] > WELL * pull[:, 0].max()) & (rigid.holding[k, 0] == 0)
     away = (part_raised.names(lift)[2 if lift.rig.turning else 1],)
-    return [replace(line, without=away) if slack[c] else line for c, line in enumerate(lines)][1:]
+    return [replace(line, without=away) if c and slack[c] else line for c, line in enumerate(lines)]
 
 
 def _carrying(lift: Lift, k: int, rigid: tilting.Pulls) -> dict[int, float]:
