@@ -26,9 +26,9 @@ def on_site(scenario: Scenario, site: Site) -> Solution:
     return solve(scenario.model_copy(update={"site": site}))
 
 
-def guyed() -> made.Document:
-    """An 18 m mast in still air; anchors A north, B, C at 10 m round it, guys at 9 m and 17 m to each."""
-    document = made.mast()
+def guyed(*directions: float) -> made.Document:
+    """An 18 m mast, in still air unless wind comes; anchors A north, B, C at 10 m round it, guys at 9 m and 17 m to each."""
+    document = made.mast(*directions)
     for anchor, bearing in zip(document["anchor"], (0.0, 120.0, 240.0), strict=True):
         anchor |= {"bearing": bearing, "radius": 10.0}
     return document
@@ -99,6 +99,27 @@ def test_headroom_closed_form() -> None:
     f = found(solution, "cable 9 m A", "over lane")
     assert sag > 5 * CHORDS
     assert f.capacity == pytest.approx(chord - sag, abs=CHORDS)
+
+
+def test_the_lowest_curve_is_that_of_the_worst_wind_round_the_circle() -> None:
+    """Wind listed from the south alone.  From the north it presses on a guy that rises to the south and bows it down, over the road, and
+    leans the mast toward a line in the south: both are found, as low as when that very wind is listed."""
+    site = Site(
+        obstacles=(
+            Obstacle("lane", "road", box(-1, 4, 1, 6), headroom=3.0),
+            Obstacle("supply", "line", LineString([(-50, -30), (50, -30)]), height=12.0, distance=15.0),
+        )
+    )
+    listed = on_site(made.scenario(guyed(180.0)), site)
+    f = found(listed, "cable 9 m A", "over lane")
+    assert abs(math.remainder(f.wind_from, math.tau)) < math.radians(60)
+    again = on_site(made.scenario(guyed(math.degrees(f.wind_from))), site)
+    curve = again.cables.curve[1:, again.cables.name.index("9 m A")]
+    assert f.capacity == pytest.approx(min(float(np.interp(6.0, c[::-1, 1], c[::-1, 2])) for c in curve), abs=CHORDS)
+    assert f.capacity < min(float(np.interp(6.0, c[::-1, 1], c[::-1, 2])) for c in listed.cables.curve[:, 0]) - 5 * CHORDS
+    near = found(listed, "spar mast", "from supply")
+    assert abs(math.remainder(near.wind_from, math.tau)) < math.radians(60)
+    assert near.capacity < 30.0 - CHORDS
 
 
 def test_headroom_is_above_the_surveyed_ground() -> None:

@@ -1,8 +1,8 @@
 """The site's rules, each with a signed margin: found less needed, in metres.
 
     anchor    inside the boundary by the setback; clear of every obstacle by its clearance; clear of other anchors' cables
-    cable     above every road, path or crowd that asks headroom, along its true curve in every listed case; clear of each other
-    line      every cable and spar clear of an overhead line by its distance, in space: as it stands, in its swing over all listed cases,
+    cable     above every road, path or crowd that asks headroom, along its true curve in every case; clear of each other
+    line      every cable and spar clear of an overhead line by its distance, in space: as it stands, in its swing over all cases,
               and in the fall, when a spar may come anywhere within its length of its foot
 
 The ground under a cable or line is the surveyed one, or where there is none level ground at the first spar's foot.  A line hangs at its
@@ -45,7 +45,7 @@ OVER = "over "
 
 @dataclass(frozen=True)
 class Hung:
-    """Where everything is in the listed cases.
+    """Where everything is in the cases listed and in those of the full circle of winds.
 
     lines : (case,);  curves : (case, cable, point, 3) [m] from the `to` end, NaN where a case takes the cable away
     anchors : (anchor, 3) [m];  spars : as solved, in detail
@@ -141,7 +141,7 @@ def _ground(site: Site, hung: Hung, east: Array, north: Array) -> Array:
 
 
 def _headrooms(site: Site, hung: Hung) -> Iterator[Finding]:
-    why = "lowest over it, all listed cases, above " + (
+    why = "lowest over it, all cases and winds, above " + (
         "the surveyed ground" if site.ground is not None else "level ground at the first spar's foot"
     )
     for obstacle in site.obstacles:

@@ -28,6 +28,8 @@ SWEPT_STEP = 1 / 32
 """Steps of the load to which the end of a path is found where only standing or falling is asked."""
 CURVE_POINTS = 41
 """Points of a drawn cable: chords between them leave the curve of a cable that sags a tenth of its length by 1/16,000 of that."""
+ALONG = ("displacement", "axial", "bending", "torsion", "shear")
+"""What a `SparLine` holds by case."""
 PURE = 1e-2
 """Share of the greatest turn in a mode below which a spar counts as not taking part."""
 Progress = Callable[[int, int], None]
@@ -80,13 +82,14 @@ class Batch:
         return self.lines + self.mirror_lines, demands.join([self.demands, self.mirror_demands])
 
     def take(self, rows: NDArray[np.int64]) -> Batch:
-        """The cases `rows` without detail; mirror states stay, all of them."""
+        """The cases `rows`; mirror states stay, all of them."""
         kept: dict[str, Any] = {
             n: getattr(self, n)[rows] for n in ("code", "error", "reference", "rounds", "lost_at", "balance", "branched", "spins")
         }
         kept |= {n: tuple(getattr(self, n)[k] for k in rows) for n in ("lines", "reason", "note")}
         forces = recovery.Forces(**{f.name: getattr(self.forces, f.name)[rows] for f in fields(recovery.Forces)})
-        return replace(self, **kept, forces=forces, demands=self.demands.take(rows), spars=(), curves=np.zeros((len(rows), 0, 0, 3)))
+        spars = tuple(replace(s, **{n: getattr(s, n)[rows] for n in ALONG}) for s in self.spars)
+        return replace(self, **kept, forces=forces, demands=self.demands.take(rows), spars=spars, curves=self.curves[rows])
 
 
 def solve_lines(
@@ -96,9 +99,10 @@ def solve_lines(
     progress: Progress | None = None,
     change: Change | None = None,
     start: Start | None = None,
+    finely: bool = True,
 ) -> Batch:
-    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and falls found finely; `change`: of the loads;
-    `start`: of each line's path, where that is not the one of `starts`."""
+    """Solve every line on a setting that stands; `detail`: with spar lines, curves, and, if `finely`, the load at which a case falls;
+    `change`: of the loads; `start`: of each line's path, where that is not the one of `starts`."""
     start = starts(setting, lines) if start is None else start
     parts = []
     step = max(1, CHUNK // max((len(line.states()) for line in lines), default=1))
@@ -107,7 +111,7 @@ def solve_lines(
         if change is not None:
             loads = change(share.problem.loads, first + share.asked.owner)
             share = replace(share, problem=replace(share.problem, loads=loads))
-        parts += _solved([share], detail)
+        parts += _solved([share], detail, detail and finely)
         if progress is not None:
             progress(min(first + step, len(lines)), len(lines))
     return join(parts)
@@ -120,8 +124,8 @@ def solve_each(settings: Sequence[Setting], lines: Sequence[CaseLine], detail: b
     for setting in settings:
         waiting.append(_share(setting, lines, starts(setting, lines)))
         if sum(share.problem.cases for share in waiting) + waiting[-1].problem.cases > CHUNK:
-            out, waiting = out + _solved(waiting, detail), []
-    return out + _solved(waiting, detail)
+            out, waiting = out + _solved(waiting, detail, detail), []
+    return out + _solved(waiting, detail, detail)
 
 
 @dataclass(frozen=True)
@@ -140,13 +144,13 @@ def _share(setting: Setting, lines: Sequence[CaseLine], start: Start, first: int
     return _Share(asked, setting.under(states), (start[0].take(rows), start[1].take(rows)))
 
 
-def _solved(shares: Sequence[_Share], detail: bool) -> list[Batch]:
+def _solved(shares: Sequence[_Share], detail: bool, finely: bool) -> list[Batch]:
     """Every share judged, all at once, and recovered by itself."""
     if not shares:
         return []
     state, loads = State.join([s.start[0] for s in shares]), joined([s.start[1] for s in shares])
     whole = side_by_side([s.problem for s in shares])
-    judged = stability.judge(whole, state, loads, stability.LEAST_STEP if detail else SWEPT_STEP)
+    judged = stability.judge(whole, state, loads, stability.LEAST_STEP if finely else SWEPT_STEP)
     rows = np.split(np.arange(whole.cases), np.cumsum([s.problem.cases for s in shares])[:-1])
     return [recover(s.problem, judged.take(own), detail, s.asked) for s, own in zip(shares, rows, strict=True)]
 
@@ -263,8 +267,8 @@ def _in_patch(problem: Problem, asked: Asked, words: str | None, row: int) -> st
 
 
 def _blank(spar: SparLine, gone: NDArray[np.int64]) -> SparLine:
-    for value in (spar.displacement, spar.axial, spar.bending, spar.torsion, spar.shear):
-        value[gone] = np.nan
+    for name in ALONG:
+        getattr(spar, name)[gone] = np.nan
     return spar
 
 
@@ -275,9 +279,7 @@ def join(parts: Sequence[Batch]) -> Batch:
 
     def spar(k: int) -> SparLine:
         first = parts[0].spars[k]
-        each = {
-            n: np.concatenate([getattr(p.spars[k], n) for p in parts]) for n in ("displacement", "axial", "bending", "torsion", "shear")
-        }
+        each = {n: np.concatenate([getattr(p.spars[k], n) for p in parts]) for n in ALONG}
         return SparLine(first.name, first.station, first.drawn, first.axes, **each)
 
     def together(name: str) -> NDArray[Any]:

@@ -102,7 +102,7 @@ def _swept(setting: Setting, listed: Batch, progress: Progress | None) -> Batch 
     templates = {line.name: line for line in listed.lines if not math.isnan(line.wind_from)}
     if not setting.stands or not templates:
         return None
-    return directions.sweep(tuple(templates.values()), listed, lambda lines: solve_lines(setting, lines, False, progress))
+    return directions.sweep(tuple(templates.values()), listed, lambda lines: solve_lines(setting, lines, True, progress, finely=False))
 
 
 @dataclass(frozen=True)
@@ -149,7 +149,7 @@ def solution(setting: Setting, listed: Batch, swept: Batch | None, again: bool =
     initial = chains.initial(scenario, listed.forces.tension_anchor[0])
     greatest = _greatest(structure, worst, swept, initial)
     cables, feet = greatest.cables, greatest.feet
-    hung = _hung(structure, listed)
+    hung = _hung(structure, listed if swept is None else join([listed, _fresh(listed, swept)]))
     rules = plan.findings(scenario.site, hung) if setting.stands else ()
     found = allowables.sorted_findings((*allowables.findings(*_everything_judged(listed, swept)), *rules))
     if not ((listed.code == stability.STABLE) | listed.spins).any():
@@ -221,9 +221,15 @@ def _greatest(structure: Structure, worst: _Worst, swept: Batch | None, initial:
     )
 
 
-def _hung(structure: Structure, listed: Batch) -> plan.Hung:
-    curves = np.where(listed.forces.present[:, :, None, None], listed.curves, np.nan)
-    return plan.Hung(structure.scenario, listed.lines, curves, structure.position[structure.anchor], listed.spars)
+def _fresh(listed: Batch, swept: Batch) -> Batch:
+    """The cases of the full circle that are not listed."""
+    known = {(line.name, line.wind_from) for line in listed.lines}
+    return swept.take(np.array([k for k, line in enumerate(swept.lines) if (line.name, line.wind_from) not in known], dtype=np.int64))
+
+
+def _hung(structure: Structure, cases: Batch) -> plan.Hung:
+    curves = np.where(cases.forces.present[:, :, None, None], cases.curves, np.nan)
+    return plan.Hung(structure.scenario, cases.lines, curves, structure.position[structure.anchor], cases.spars)
 
 
 def _everything_judged(listed: Batch, swept: Batch | None) -> tuple[demands.Demands, tuple[CaseLine, ...]]:
