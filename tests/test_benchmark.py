@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from guys import cli
 from guys.scenario import parse_scenario
 from tests.benchmark import doors, masts, measure
 
@@ -44,3 +45,8 @@ def test_shipped_scenario_gets_36_directions_and_two_cases():
         assert scenario.wind is not None
         assert len(scenario.wind.directions) == 36, path.name
         assert [case.wind for case in scenario.case] == [1.0, 0.5], path.name
+
+
+def test_studies_timed_are_commands_of_shipped_scenarios():
+    assert set(doors.STUDIES) <= set(cli.commands.commands)
+    assert all((doors.SCENARIOS / name).exists() for name in doors.STUDIES.values())

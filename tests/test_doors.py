@@ -10,10 +10,13 @@ from pathlib import Path
 
 import pytest
 import scenarios_made as made
+from matplotlib.figure import Figure
 
-from guys import cli
+from guys import __version__, cli
 from guys.doors import common
 from guys.doors import solve as door
+from guys.drawing import sheet
+from guys.drawing.files import figure_bytes
 from guys.errors import OutputError, ScenarioError
 from guys.exchange import files
 
@@ -156,7 +159,7 @@ def test_a_fault_while_the_sheet_is_drawn_writes_nothing(tmp_path: Path, monkeyp
     def broken(*_: object, **__: object) -> bytes:
         raise RuntimeError("no such luck")
 
-    monkeypatch.setattr(common, "figure_bytes", broken)
+    monkeypatch.setattr(Figure, "savefig", broken)
     with pytest.raises(RuntimeError, match="no such luck"):
         door.write(made.solved(made.mast()), tmp_path / "out", "SI", "A4", None)
     assert left_in(tmp_path / "out") == []
@@ -176,6 +179,13 @@ def test_files_are_the_same_bytes_each_time(tmp_path: Path) -> None:
         door.write(made.solved(made.mast()), tmp_path / folder, "both", "letter", 0.5)
     for name in FILES:
         assert (tmp_path / "one" / name).read_bytes() == (tmp_path / "two" / name).read_bytes(), name
+
+
+def test_figures_made_side_by_side_are_those_made_alone() -> None:
+    solution = made.solved(made.mast())
+    found = common.pictures("sheet", sheet(solution), "title")
+    alone = {f"sheet.{kind}": figure_bytes(sheet(solution), kind, "title", __version__) for kind in ("pdf", "svg", "png")}
+    assert found == alone
 
 
 def test_replaced_is_the_way_every_file_goes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:

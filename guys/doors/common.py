@@ -6,9 +6,11 @@ import multiprocessing
 import os
 import signal
 import sys
+import warnings
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from concurrent.futures import Executor, ProcessPoolExecutor
 from contextlib import ExitStack, contextmanager
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
@@ -28,6 +30,10 @@ if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 
+SHORT = 4
+"""Most processes for work of a second or two: to start more costs what they save."""
+
+
 def store(directory: Path, contents: Mapping[str, bytes]) -> list[Path]:
     """Write the files `contents` to the directory, made where missing: all are stored before the first takes its name.
 
@@ -43,11 +49,6 @@ def store(directory: Path, contents: Mapping[str, bytes]) -> list[Path]:
     return [directory / name for name in contents]
 
 
-def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
-    """A figure as `stem`.pdf, .svg and .png."""
-    return {f"{stem}.{kind}": figure_bytes(figure, kind, title, __version__) for kind in ("pdf", "svg", "png")}
-
-
 @contextmanager
 def workers(count: int | None) -> Iterator[Executor | None]:
     """So many processes side by side; None for one, which is this one.  An interruption stops them all.
@@ -55,15 +56,27 @@ def workers(count: int | None) -> Iterator[Executor | None]:
     count : None for short work: one a core where processes are forked, and so there at once; where each would first load everything, one
     """
     if count is None:
-        count = (os.cpu_count() or 1) if multiprocessing.get_start_method() == "fork" else 1
+        count = min(os.cpu_count() or 1, SHORT) if multiprocessing.get_start_method() == "fork" else 1
     if count <= 1:
         yield None
         return
     executor = ProcessPoolExecutor(count, initializer=signal.signal, initargs=(signal.SIGINT, signal.SIG_IGN))
+    with warnings.catch_warnings():
+        warnings.simplefilter("ignore", DeprecationWarning)  # of forking beside threads: numpy's alone are there, which are made for it
+        executor.submit(int)
     try:
         yield executor
     finally:
         executor.shutdown(cancel_futures=True)
+
+
+def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
+    """A figure as `stem`.pdf, .svg and .png, side by side."""
+    kinds = ("pdf", "svg", "png")
+    with workers(None) as executor:
+        every = map if executor is None else executor.map
+        contents = list(every(partial(figure_bytes, figure, title=title, version=__version__), kinds))
+    return {f"{stem}.{kind}": content for kind, content in zip(kinds, contents, strict=True)}
 
 
 def told(groups: Iterable[tuple[str, Sequence[str]]], stream: TextIO) -> None:

@@ -35,6 +35,8 @@ COARSE = 2
 SOLVED = (0, 3, 4)
 """Exit statuses of a run that solved and wrote everything."""
 SHIPPED = "quarry-relay-mast.toml"
+STUDY_GOALS = {"raise": 2.0}
+"""Seconds by the clock, for studies that have a goal."""
 
 
 def main() -> None:
@@ -60,6 +62,7 @@ def page(repeats: int) -> Iterator[str]:
     yield from _growth(repeats)
     yield from _side_by_side(next(iter(found.values())), repeats)
     yield from _doors(repeats)
+    yield from _studies(repeats)
 
 
 def _head() -> Iterator[str]:
@@ -204,6 +207,22 @@ def _doors(repeats: int) -> Iterator[str]:
         f"| `guys solve` of `{SHIPPED}` with 36 directions x 2 cases, sheet included | {solved.seconds:.2f} | {solved.busy:.2f}"
         f" | {solved.megabytes:.0f} | {solved.status} | 3 s, 400 MB {met} |"
     )
+
+
+def _studies(repeats: int) -> Iterator[str]:
+    yield ""
+    yield "## The studies"
+    yield ""
+    yield "As a user starts them, of scenarios as shipped, with every file they write. `compare`, `search` and `raise`, and what writes"
+    yield "figures, use a process a core, so processor time may be more than wall time; memory is that of the largest process."
+    yield ""
+    yield "| command | scenario | wall, s | processor, s | peak memory, MB | exit | goal |"
+    yield "|---|---|---|---|---|---|---|"
+    for command, scenario in doors.STUDIES.items():
+        once = doors.study_run(command, max(2, repeats // 4))
+        goal = STUDY_GOALS.get(command)
+        met = "" if goal is None else f"{goal:g} s {_goal(once.status in SOLVED and once.seconds < goal)}"
+        yield f"| `guys {command}` | `{scenario}` | {once.seconds:.2f} | {once.busy:.2f} | {once.megabytes:.0f} | {once.status} | {met} |"
 
 
 if __name__ == "__main__":

@@ -1,4 +1,4 @@
-"""Wall time and peak memory of the program as a user starts it: `guys --help`, and `guys solve` of a shipped scenario."""
+"""Wall time and peak memory of the program as a user starts it: `guys --help`, `guys solve` and the studies of shipped scenarios."""
 
 from __future__ import annotations
 
@@ -22,6 +22,18 @@ busy = used.ru_utime + used.ru_stime
 print(json.dumps({"seconds": seconds, "busy": busy, "megabytes": used.ru_maxrss / 1024, "status": child.returncode}))
 """
 """Starts the program from a small process: a child's peak memory counts what its parent held when it was started."""
+STUDIES = {
+    "compare": "bench-mast.toml",
+    "search": "bench-mast.toml",
+    "limit": "quarry-relay-mast.toml",
+    "reserve": "quarry-relay-mast.toml",
+    "lost": "quarry-relay-mast.toml",
+    "matters": "quarry-relay-mast.toml",
+    "raise": "tilt-up-mast.toml",
+    "field": "quarry-relay-mast.toml",
+    "record": "quarry-relay-mast.toml",
+}
+"""Commands timed, each with the shipped scenario it is asked of as it stands."""
 TWO_CASES = '\n[[case]]\nname = "full wind"\nwind = 1.0\n\n[[case]]\nname = "half wind"\nwind = 0.5\n'
 
 
@@ -57,6 +69,12 @@ def solve_run(name: str, repeats: int) -> Run:
         path = Path(folder) / name
         path.write_text(with_36_directions_and_two_cases((SCENARIOS / name).read_text(encoding="utf-8")), encoding="utf-8")
         return run(["solve", str(path), "--out", str(Path(folder) / "out")], repeats)
+
+
+def study_run(command: str, repeats: int) -> Run:
+    """One of `STUDIES` with every file it writes."""
+    with tempfile.TemporaryDirectory() as folder:
+        return run([command, str(SCENARIOS / STUDIES[command]), "--out", str(Path(folder) / "out")], repeats)
 
 
 def with_36_directions_and_two_cases(text: str) -> str:
