@@ -333,6 +333,7 @@ def _ways(_: click.Context, __: click.Parameter, value: str) -> tuple[int, ...]:
 
 @commands.command()
 @computing("ring.json, ring.csv and the curves")
+@in_one_layout
 @click.option("--ways", default="3,4", show_default=True, callback=_ways, metavar="N,N", help="Numbers of anchors, evenly spaced.")
 @click.option("--radius", nargs=2, metavar="FROM TO", help='Least and greatest radius, such as "6 m" "18 m".')
 @click.option("--steps", type=click.IntRange(2, 60), default=9, show_default=True, help="Radii from the one to the other.")
@@ -342,6 +343,7 @@ def ring(
     out: str | None,
     as_json: bool,
     units: str,
+    layout: str | None,
     ways: tuple[int, ...],
     radius: tuple[str, str] | None,
     steps: int,
@@ -360,7 +362,7 @@ def ring(
         raise click.BadParameter(str(error), param_hint="--radius") from error
     if far is not None and not 0 < far[0] < far[1]:
         raise click.BadParameter("the first is not less than the second, or not more than zero", param_hint="--radius")
-    return ring_command(file, ways, far, steps, workers, out, as_json, units)  # type: ignore[arg-type]
+    return ring_command(file, ways, far, steps, workers, out, as_json, units, layout)  # type: ignore[arg-type]
 
 
 @commands.command()

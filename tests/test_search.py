@@ -183,6 +183,27 @@ def test_what_forms_no_ring_is_refused_when_read(key: str, words: str) -> None:
     assert [fault.key for fault in caught.value.faults] == ["search.ways"]
 
 
+# ---------------------------------------------------------------- tensions that do not balance
+
+
+def test_tensions_that_pull_the_mast_over_are_warned_of() -> None:
+    """Without plumb = true as many layouts are said to lean as `guys solve` warns of by itself; with it none."""
+    spots = ", ".join(f'{{ bearing = "0 deg", radius = "{r} m" }}' for r in (6, 8, 12))
+    move = f'[search]\ntries = 20\n[[search.move]]\nanchors = ["A"]\nplaces = [{spots}]\n'
+    text = made.text(RIGID | {"setting": {}})
+    result = search(parse_scenario(text + move))
+    solved_alone = [standing.solve(result.scenario.model_copy(update={"anchor": t.anchors})) for t in result.trials]
+    leaning = [s for s in solved_alone if any("leans 1/" in w for w in s.warnings)]
+    assert len(leaning) == 2
+    (warning,) = result.warnings
+    assert warning.startswith(f"of 3 layouts tried 2 lean in still air, by up to 1/{1 / max(s.head_lean[0, 0] for s in leaning):.0f}")
+    assert "setting.plumb = true" in warning
+    assert files.as_dict(result)["warnings"] == [warning]
+    assert files.as_layouts(result).startswith(f"# {warning}\n")
+    assert [t.still_lean for t in result.trials] == pytest.approx([s.head_lean[0, 0] for s in solved_alone], abs=1e-12)
+    assert search(parse_scenario(made.text(RIGID) + move)).warnings == ()
+
+
 # ---------------------------------------------------------------- rules
 
 

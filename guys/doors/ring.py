@@ -9,7 +9,7 @@ from typing import TextIO
 
 from guys import terminal
 from guys.checks.alarms import CAUTIONS
-from guys.doors.common import pictures, store, told, workers
+from guys.doors.common import in_layout, pictures, store, told, workers
 from guys.drawing import rounding
 from guys.drawing.comparison import said
 from guys.drawing.ring import draw_rings
@@ -29,12 +29,13 @@ def ring_command(
     out: str | None,
     as_json: bool,
     units: Units = "SI",
+    layout: str | None = None,
 ) -> int:
     """Solve every ring; files go to the directory `out` where one is given.
 
     Raises `GuysError` for what is the user's to mend; nothing is written then.
     """
-    scenario = read_scenario(file)
+    scenario = in_layout(read_scenario(file), layout)
     with terminal.progress(sys.stderr, "rings") as tick, workers(side_by_side) as executor:
         found = rings(scenario, ways, radius, steps, executor, tick)
     contents = {"ring.json": files.as_text(found).encode(), "ring.csv": files.as_table(found).encode()}

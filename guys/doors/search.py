@@ -73,4 +73,4 @@ def report(found: Found, units: Units, stream: TextIO) -> None:
         compared(found.compared, units, stream)
         stream.write(f"\nTo paste into the scenario\n\n{files.as_layouts(found)}")
     terminal.table("Excluded by", ["rule", "layouts"], [[rule, str(count)] for rule, count in found.excluded], stream)
-    told((("Notes", found.notes), ("Cautions", CAUTIONS)), stream)
+    told((("Warnings", found.warnings), ("Notes", found.notes), ("Cautions", CAUTIONS)), stream)

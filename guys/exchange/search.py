@@ -23,7 +23,7 @@ from guys.studies.trial import FALLS, HOLDS, MISPLACED, PAST, Trial
 
 FORMAT = "guys-search/1"
 OUTCOMES = {HOLDS: "holds", PAST: "past", FALLS: "falls", MISPLACED: "misplaced"}
-HEAD = ("try", "outcome", "rule", "lacking")
+HEAD = ("try", "outcome", "rule", "lacking", "still_lean_deg")
 
 
 def as_dict(found: Found) -> dict[str, Any]:
@@ -42,6 +42,7 @@ def as_dict(found: Found) -> dict[str, Any]:
         "interrupted": found.interrupted,
         "excluded": [{"rule": rule, "count": count} for rule, count in found.excluded],
         "found": [_found(found, k, trial) for k, trial in enumerate(found.front)],
+        "warnings": list(found.warnings),
         "notes": list(found.notes),
         "layouts": [] if found.compared is None else [layout_entry(each) for each in found.compared.layouts],
         "cautions": list(CAUTIONS),
@@ -81,6 +82,7 @@ def moved(found: Found) -> list[str]:
 
 def _row(found: Found, n: int, trial: Trial, names: list[str]) -> list[Cell]:
     cells: list[Cell] = [n + 1, OUTCOMES[trial.outcome], trial.rule, number(trial.amount) if trial.rule else None]
+    cells += [number(math.degrees(trial.still_lean))]
     cells += [in_file(MEASURES[key], value) for key, value in zip(found.keys, trial.values, strict=True)]
     at = {anchor.name: anchor for anchor in trial.anchors}
     return [*cells, *(x for name in names for x in (at[name].east, at[name].north, number(at[name].level)))]
@@ -90,9 +92,10 @@ def as_layouts(found: Found) -> str:
     """The text of `layouts.toml`: a [[layout]] for every one found; with so many ways asked for, the first as whole tables."""
     asked = found.scenario.search
     assert asked is not None
+    told = [f"# {warning}\n" for warning in found.warnings]
     if asked.ways is None or not found.front:
-        return "\n".join(_layout(found, k) for k in range(len(found.front)))
-    head = f"# {name_of(0)}: in place of the file's tables anchor, guy_level, cable and layout\n"
+        return "\n".join([*told, *(_layout(found, k) for k in range(len(found.front)))])
+    head = "".join([*told, f"# {name_of(0)}: in place of the file's tables anchor, guy_level, cable and layout\n"])
     anchors = [f"[[anchor]]  # {_seen(found, anchor)}\n{_lines(_anchor(anchor))}\n" for anchor in found.front[0].anchors]
     guys = [f"[[guy_level]]\n{_lines(_guys(found, name, cable))}\n" for name, cable in ring.levels(found.start).items()]
     return "\n".join([head, *anchors, *guys, *(_layout(found, k) for k in range(1, len(found.front)))])

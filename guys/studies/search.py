@@ -25,13 +25,14 @@ from typing import Any
 
 import numpy as np
 
+from guys.checks.alarms import STILL_LEAN
 from guys.errors import ScenarioError
 from guys.rotation import Array
 from guys.scenario import Scenario, layouts, ring
 from guys.scenario.reader import fault_at
 from guys.studies.batch import Progress
 from guys.studies.compare import Comparison, compare
-from guys.studies.trial import HOLDS, Span, Trial, pegged, spans, tried
+from guys.studies.trial import HOLDS, UNMET, Span, Trial, pegged, spans, tried
 from guys.version import __version__
 
 AMONG = 24
@@ -75,6 +76,20 @@ class Found:
     def excluded(self) -> list[tuple[str, int]]:
         """Rules broken first, with how many layouts each excluded, the most first."""
         return Counter(trial.rule for trial in self.trials if trial.rule).most_common()
+
+    @property
+    def warnings(self) -> tuple[str, ...]:
+        """Layouts that initial tensions pull over, which then compare badly for their tensions, not for their places."""
+        if self.scenario.setting.plumb:
+            return ()
+        leaning = [trial.still_lean for trial in self.trials if trial.still_lean > STILL_LEAN]
+        unmet = sum(trial.rule == UNMET for trial in self.trials)
+        said = [f"{len(leaning)} lean in still air, by up to 1/{1 / max(leaning):.0f}"] if leaning else []
+        said += [f"{unmet} have no still-air state at these tensions"] if unmet else []
+        if not said:
+            return ()
+        why = "the initial tensions of the file do not balance there, and good places may be passed over"
+        return (f"of {len(self.trials)} layouts tried {' and '.join(said)}: {why}; setting.plumb = true finds tensions that do",)
 
 
 @dataclass

@@ -31,6 +31,7 @@ NEAREST = 0.5
 """[m] from the axis of the first spar, and from each other, that anchors keep in a search: less is no layout (common practice)."""
 PEGGED = 2
 """Decimals of a metre to which places are rounded, so that what is handed back is what was tried: a crew pegs to a centimetre."""
+UNMET = "initial tensions that no still-air state meets"
 STEP = 1e15
 """Between grades of layouts that go to different rules: more than any measure in SI."""
 
@@ -52,6 +53,7 @@ class Trial:
 
     at : its numbers;  anchors : as placed;  outcome : HOLDS, PAST, ...;  amount : how much it breaks what it breaks
     rule : the first it breaks, empty where it holds all;  values : of the measures asked for, NaN where it was not solved
+    still_lean : [rad] of the head that leans most in still air, NaN where it was not solved
     """
 
     at: tuple[float, ...]
@@ -60,6 +62,7 @@ class Trial:
     amount: float
     rule: str
     values: tuple[float, ...]
+    still_lean: float = math.nan
 
     def grade(self, measure: int, limit: float = math.inf) -> float:
         """The less the better: the value of one measure; behind all that hold, those with the other measure past `limit`, then the rest."""
@@ -172,7 +175,7 @@ def tried(scenario: Scenario, keys: tuple[str, ...], points: Sequence[tuple[floa
     settings = dict(zip(layouts, find_each([build(layout) for layout in layouts.values()]), strict=True)) if layouts else {}
     met = {at: setting for at, setting in settings.items() if isinstance(setting, Setting)}
     for at in settings.keys() - met.keys():
-        found[at] = replace(found[at], outcome=FALLS, amount=1.0, rule="initial tensions that no still-air state meets")
+        found[at] = replace(found[at], outcome=FALLS, amount=1.0, rule=UNMET)
     for (at, setting), listed in zip(met.items(), standing.listed_of_each(list(met.values())), strict=True):
         found[at] = _judged(found[at], layouts[at], keys, setting, listed)
     return [found[at] for at in points]
@@ -181,6 +184,7 @@ def tried(scenario: Scenario, keys: tuple[str, ...], points: Sequence[tuple[floa
 def _judged(trial: Trial, layout: Scenario, keys: tuple[str, ...], setting: Setting, listed: Batch) -> Trial:
     """A layout that was solved."""
     solution = standing.solution(setting, listed, None, again=False)
+    trial = replace(trial, still_lean=float(solution.head_lean[0].max()))
     if any(solution.unsettled) or solution.failed:
         share = sum(solution.unsettled) / len(solution.unsettled)
         return replace(trial, outcome=FALLS, amount=share, rule="no stable equilibrium in some case")
