@@ -36,7 +36,7 @@ CLOSE = 5e-4
 GROWTH = 2.0
 """Of a step after one that was taken."""
 FIRST_AFTER = 4
-"""First step on from where a longer one did not stand, in `CLOSE`."""
+"""First step on from what did not stand from further off, in `CLOSE`; where that left it unknown, as long as the one that reached it."""
 ROOT = 5e-5
 """Relative distance of the parameter between which a crossing is found, or ..."""
 MET = 5e-5
@@ -96,13 +96,19 @@ class Paths:
 
 @dataclass
 class _Walk:
-    """Where every path stands while it is followed."""
+    """Where every path stands while it is followed.
+
+    low, high : greatest parameter that stands, least that did not;  ahead : high was not tried from close by;  unknown : nor does it say
+    that nothing stands there, the search ran out of rounds or came to a stable state too far;  again : high is tried next
+    """
 
     last: State
     low: Array
     high: Array
     step: Array
     ahead: NDArray[np.bool_]
+    unknown: NDArray[np.bool_]
+    again: NDArray[np.bool_]
     stuck: NDArray[np.bool_]
     open_: NDArray[np.bool_]
     branches_at: Array
@@ -114,14 +120,13 @@ def follow(at: At, start: State, x0: Array, stops: Stops, measure: Measure, tick
     rows = np.arange(len(x0))
     no = np.zeros(len(x0), bool)
     first = np.full(len(x0), stops.first)
-    walk = _Walk(start.take(rows), x0.copy(), np.full(len(x0), np.inf), first, no.copy(), no.copy(), ~no, np.full(len(x0), np.nan))
+    ahead, unknown, again, stuck = np.zeros((4, len(x0)), bool)
+    nowhere = np.full(len(x0), np.nan)
+    walk = _Walk(start.take(rows), x0.copy(), np.full(len(x0), np.inf), first, ahead, unknown, again, stuck, ~no, nowhere)
     taken = [(rows, x0.copy(), measure(at(rows, x0), start), start.take(rows))]
     while len(open_ := np.flatnonzero(walk.open_)):
         x = _next(walk, open_, stops.most)
-        close = x - walk.low[open_] <= 1.001 * CLOSE * x
-        for group, is_close in ((~close, False), (close, True)):
-            if group.any():
-                taken += _step(at, walk, open_[group], x[group], is_close, stops, measure)
+        taken += _step(at, walk, open_, x, stops, measure)
         if tick is not None:
             tick(int((~walk.open_).sum()), len(rows))
     row, x, value = (np.concatenate([part[k] for part in taken]) for k in range(3))
@@ -130,15 +135,15 @@ def follow(at: At, start: State, x0: Array, stops: Stops, measure: Measure, tick
     return paths
 
 
-def _step(at: At, walk: _Walk, rows: Index, x: Array, close: bool, stops: Stops, measure: Measure) -> list[Taken]:
+def _step(at: At, walk: _Walk, rows: Index, x: Array, stops: Stops, measure: Measure) -> list[Taken]:
     """Try the next parameter of some paths and give what was taken; those close to their end in more rounds, and pushed if unstable."""
     problem, before = at(rows, x), walk.last.take(rows)
-    all_close = np.full(len(rows), close)
-    found = stability.settle(problem, before, stability.PATH_ROUNDS if close else SHORT_ROUNDS, all_close)
+    close = x - walk.low[rows] <= 1.001 * CLOSE * x
+    found = stability.step_on(problem, before, np.where(close, stability.PATH_ROUNDS, SHORT_ROUNDS), close)
     near = stability.turn_between(problem, found.state, before) < SAME_WAY
     good = (found.code <= stability.NEUTRAL) & near
     walk.beyond |= {int(rows[k]): found.state.take(np.array([k])) for k in np.flatnonzero(~good & ~near)}
-    _note(walk, rows, x, good, all_close, found, near, stops)
+    _note(walk, rows, x, good, close, found, near, stops)
     kept = np.flatnonzero(good)
     if len(kept) == 0:
         return []
@@ -148,9 +153,9 @@ def _step(at: At, walk: _Walk, rows: Index, x: Array, close: bool, stops: Stops,
 
 
 def _next(walk: _Walk, open_: Index, most: float) -> Array:
-    """The parameter to try: a step on, halfway to what does not stand, or that once more where it is now close."""
+    """The parameter to try: a step on, halfway to what does not stand, or that once more where it is now close or was left unknown."""
     low, high = walk.low[open_], walk.high[open_]
-    between = np.where(low >= (1 - CLOSE) * high, high, 0.5 * (low + high))
+    between = np.where((low >= (1 - CLOSE) * high) | walk.again[open_], high, 0.5 * (low + high))
     return np.minimum(np.where(np.isfinite(high), between, low + walk.step[open_]), most)
 
 
@@ -164,16 +169,22 @@ def _note(
     near: NDArray[np.bool_],
     stops: Stops,
 ) -> None:
-    """Write what a round of steps came to.  What did not stand is tried once more from close by before it counts as the end."""
+    """Write what a round of steps came to.
+
+    What did not stand is tried once more from close by before it counts as the end; what was left unknown, from where a path next stands.
+    """
     first = good & found.branched & np.isnan(walk.branches_at[open_])
     walk.branches_at[open_[first]] = x[first]
+    stride = x - walk.low[open_]
+    bad = open_[~good]
     walk.low[open_[good]] = x[good]
-    walk.high[open_[~good]] = x[~good]
-    walk.ahead[open_[~good]] = ~close[~good]
+    walk.high[bad], walk.ahead[bad] = x[~good], ~close[~good]
+    walk.unknown[bad] = (found.stuck | (found.code <= stability.NEUTRAL))[~good]
     walk.stuck[open_] = ~good & found.stuck & near
     over = good & (x >= walk.high[open_])
+    walk.again[open_] = good & ~over & walk.unknown[open_]
     walk.high[open_[over]] = np.inf
-    walk.step[open_[over]] = FIRST_AFTER * CLOSE * x[over]
+    walk.step[open_[over]] = np.where(walk.unknown[open_[over]], stride[over], FIRST_AFTER * CLOSE * x[over])
     onward = open_[good & ~over]
     walk.step[onward] = np.minimum(GROWTH * walk.step[onward], np.maximum(stops.first, stops.share * x[good & ~over]))
     ended = walk.low[open_] >= (1 - CLOSE) * walk.high[open_]
@@ -183,10 +194,10 @@ def _note(
 def _still_stiff(at: At, start: State, x0: Array, walk: _Walk) -> NDArray[np.bool_]:
     """(row,) paths that ended where the solver ran out of rounds although the structure had not softened."""
     failed = np.zeros(len(x0), bool)
-    for row in np.flatnonzero(walk.stuck & np.isfinite(walk.high)):
-        one = np.array([row])
-        here = stability.least_cost(at(one, walk.low[one]), walk.last.take(one))
-        failed[row] = here > stability.SOFT * stability.least_cost(at(one, x0[one]), start.take(one))
+    ended = np.flatnonzero(walk.stuck & np.isfinite(walk.high))
+    if len(ended):
+        here = stability.least_costs(at(ended, walk.low[ended]), walk.last.take(ended))
+        failed[ended] = here > stability.SOFT * stability.least_costs(at(ended, x0[ended]), start.take(ended))
     return failed
 
 
@@ -230,7 +241,7 @@ def _between(at: At, paths: Paths, measure: Measure, left: Index, right: Index, 
         x = np.where(np.isfinite(go), ao - fo * (bo - ao) / np.where(np.isfinite(go), go - fo, 1.0), 0.5 * (ao + bo))
         x = np.clip(x, ao + 0.01 * (bo - ao), bo - 0.01 * (bo - ao))
         problem = at(row[open_], x)
-        found = stability.settle(problem, state.take(open_), stability.PATH_ROUNDS)
+        found = stability.step_on(problem, state.take(open_))
         value = measure(problem, found.state)[np.arange(len(open_)), column[open_]]
         value = np.where(found.code <= stability.NEUTRAL, value, np.inf)
         under = ~(value > 0)

@@ -10,8 +10,8 @@ step that turns a nearly inextensible member stretches it in second order, so an
 geometric stiffness takes the axial force predicted from the step (`State.axial`), steps are capped, and the end of the iteration is
 judged (see `guys.stability`).
 
-Feet that do not spin have no potential; from round `SPIN_AFTER` on the step is that of the exact, unsymmetric tangent K - sum c a^T
-(`Problem.spin_of_tilts`), by Woodbury's formula from the same factor.
+Feet that do not spin have no potential; from round `SPIN_AFTER` on, along a path from the first, the step is that of the exact,
+unsymmetric tangent K - sum c a^T (`Problem.spin_of_tilts`), by Woodbury's formula from the same factor.
 
 Every case runs for itself: it leaves the batch when its out-of-balance is below `TARGET` or no longer falls near it, and so gives
 the same numbers alone or in company.
@@ -53,13 +53,15 @@ FALLS = 0.9
 LEAST_REACH = 1 / 8
 """Share of the caps to which reversing steps halve them at the most: with less a swinging boom was held where it was."""
 SPIN_AFTER = 4
-"""Rounds after which the step knows that a pinned foot turns back when it tilts: most cases have ended by then, twisted ones need it."""
+"""Rounds after which the step knows that a pinned foot turns back when it tilts: most cases have ended by then, twisted ones need it.
+States of a path are near each other, and from one it knows at once: without, they took twice the rounds, and ends were missed by 1 %."""
 NEAR_SINGULAR = 0.1
 """Determinant of Woodbury's small matrix below which its correction is not trusted."""
 STALLED = 3
 """Rounds without a fall of the out-of-balance, once below ENOUGH, after which rounding has been reached."""
 
-Stop = Callable[[Problem, State], NDArray[np.bool_]]
+Stop = Callable[[Problem, State, Index], NDArray[np.bool_]]
+"""Which to give up of the cases still open: their problem and state, and their rows among all."""
 
 
 @dataclass(frozen=True)
@@ -86,20 +88,27 @@ class _Progress:
     last: Array
 
 
-def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int = ROUNDS) -> Outcome:
-    """Bring every case to equilibrium from `start`; `stop` tells which cases to give up (a spar that has turned over)."""
+def solve(
+    problem: Problem, start: State, stop: Stop | None = None, rounds: int | Index = ROUNDS, spin_after: int = SPIN_AFTER
+) -> Outcome:
+    """Bring every case to equilibrium from `start`.
+
+    stop : tells which cases to give up (a spar that has turned over);  rounds : after so many too, one number or (case,)
+    spin_after : round from which on feet that do not spin are in the tangent
+    """
     cases = problem.cases
+    most = np.broadcast_to(rounds, cases)
     state = problem.seated(start.take(np.arange(cases)))
     seen = _Progress(
         np.full(cases, np.inf), np.zeros(cases, np.int64), np.zeros(cases, bool), np.full(cases, LEAST_DAMPING), np.zeros(cases, np.int64),
         np.ones(cases), np.zeros((cases, problem.pattern.unknowns)),
     )  # fmt: skip
     open_, part, here = np.arange(cases), problem, state
-    for round_ in range(rounds):
+    for round_ in range(int(most.max(initial=0))):
         found = part.evaluate(here)
         done = _judge(seen, open_, found.error)
         if stop is not None:
-            over = stop(part, here)
+            over = stop(part, here, open_)
             seen.stopped[open_[over]] = True
             done |= over
         if done.any():
@@ -108,15 +117,18 @@ def solve(problem: Problem, start: State, stop: Stop | None = None, rounds: int 
             break
         tangent = part.tangent(here, found)
         step, seen.damping[open_] = damped_step(tangent, found.residual, part.mass, seen.damping[open_], part.room.factors)
-        if round_ >= SPIN_AFTER and part.structure.unspun:
+        if round_ >= spin_after and part.structure.unspun:
             step = with_spins(part.room.factors, step, *part.spin_of_tilts(here, found))
         here = part.advance(here, found, _capped(part, here, step, seen, open_))
         seen.rounds[open_[~done]] += 1
-        if done.any():
-            keep = np.flatnonzero(~done)
+        spent = ~done & (most[open_] == round_ + 1)
+        if spent.any():
+            state.put(open_[spent], here.take(np.flatnonzero(spent)))
+        if (done | spent).any():
+            keep = np.flatnonzero(~(done | spent))
             open_, part, here = open_[keep], part.take(keep), here.take(keep)
-    else:
-        state.put(open_, here)
+        if len(open_) == 0:
+            break
     return Outcome(state, seen.error, seen.rounds, seen.error < ENOUGH, seen.stopped)
 
 

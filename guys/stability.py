@@ -39,6 +39,8 @@ OVERTURNED = math.radians(60)
 FAR = math.radians(10)
 NEXT = math.radians(12)
 """Greatest turn of a foot-head line between two neighbouring states of a path."""
+AWAY = math.radians(15)
+"""Turn of a foot-head line past which a search for the next state of a path has left it."""
 PUSHES = (0.003, 0.02, 0.08)
 """Amplitudes of a push along the lowest mode, of the height, tried in turn."""
 FIRST_STEP = 0.25
@@ -122,21 +124,34 @@ def tangent(problem: Problem, state: State) -> Array:
 
 def modes(problem: Problem, state: State, count: int | None = None) -> Mode:
     """The `count` lowest modes of a problem of one case; None: as many as show every free motion and one more."""
-    count = FREE * len(problem.structure.scenario.spar) + 1 if count is None else count
-    k_band = tangent(problem, state)[0]
-    n, width = k_band.shape
+    count = _enough(problem) if count is None else count
     root = np.sqrt(problem.mass)
-    scaled = np.zeros((width, n))
-    for d in range(min(width, n)):
-        scaled[d, : n - d] = k_band[: n - d, d] / (root[: n - d] * root[d:])
-    value, vector = eig_banded(scaled, lower=True, select="i", select_range=(0, min(count, n) - 1))
+    value, vector = eig_banded(_scaled(tangent(problem, state)[0], root), lower=True, select="i", select_range=_lowest(root, count))
     shapes = np.array([problem.whole_step(state, (v / root)[None])[0] for v in vector.T])
     moves = np.concatenate([shapes[..., :3], shapes[..., 3:] * problem.structure.height], axis=-1).reshape(len(shapes), -1)
     greatest = np.take_along_axis(moves, np.argmax(np.abs(moves), axis=1)[:, None], axis=1)
     return Mode(np.asarray(value), shapes / greatest[:, :, None])
 
 
-def turned_over(problem: Problem, state: State) -> NDArray[np.bool_]:
+def _enough(problem: Problem) -> int:
+    """Modes among which is every free motion and one more."""
+    return FREE * len(problem.structure.scenario.spar) + 1
+
+
+def _scaled(k_band: Array, root: Array) -> Array:
+    """Lower band of M^-1/2 K M^-1/2, diagonals first, from the rows of K's."""
+    n, width = k_band.shape
+    scaled = np.zeros((width, n))
+    for d in range(min(width, n)):
+        scaled[d, : n - d] = k_band[: n - d, d] / (root[: n - d] * root[d:])
+    return scaled
+
+
+def _lowest(root: Array, count: int) -> tuple[int, int]:
+    return 0, min(count, len(root)) - 1
+
+
+def turned_over(problem: Problem, state: State, _: Index | None = None) -> NDArray[np.bool_]:
     """Cases in which some foot-head line has turned past OVERTURNED from the drawing."""
     drawn = problem.structure.axes[:, 2]
     return np.asarray((dot(problem.heading(state), drawn) < math.cos(OVERTURNED)).any(axis=1))
@@ -165,12 +180,27 @@ def judge(problem: Problem, setting: State, loads_at_setting: LoadCases, least_s
     return judged
 
 
-def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS, pushed: NDArray[np.bool_] | None = None) -> Judged:
-    """Solve from `start`, classify, and push what is unstable; cases that turn over are NONE, those not found otherwise FAILED.
+def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS) -> Judged:
+    """Solve from `start`, classify, and push what is unstable; cases that turn over are NONE, those not found otherwise FAILED."""
+    return _settled(problem, solver.solve(problem, start, turned_over, rounds), np.full(problem.cases, True))
 
-    pushed : (case,) which to push if unstable; None: all
+
+def step_on(problem: Problem, last: State, rounds: int | Index = PATH_ROUNDS, pushed: NDArray[np.bool_] | bool = True) -> Judged:
+    """The same for the next states of paths, from the last ones.
+
+    rounds : of the solver, one number or (case,);  pushed : (case,) which to push if unstable
+    A search that turns a foot-head line by more than `AWAY` has left its path and is given up: NONE.
     """
-    out = solver.solve(problem, start, turned_over, rounds)
+    out = solver.solve(problem, last, _gone_from(last, AWAY), rounds, spin_after=0)
+    return _settled(problem, out, np.broadcast_to(pushed, problem.cases))
+
+
+def _gone_from(start: State, angle: float) -> solver.Stop:
+    """Tells which cases have turned over, or a foot-head line by more than an angle from `start`."""
+    return lambda part, here, rows: turned_over(part, here) | (turn_between(part, here, start.take(rows)) > angle)
+
+
+def _settled(problem: Problem, out: solver.Outcome, pushed: NDArray[np.bool_]) -> Judged:
     code = np.full(problem.cases, NONE)
     found = np.flatnonzero(out.converged & ~out.stopped)
     if len(found):
@@ -179,28 +209,31 @@ def settle(problem: Problem, start: State, rounds: int = solver.ROUNDS, pushed: 
     stuck = ~out.converged & ~out.stopped
     code[stuck] = FAILED
     judged = Judged(out.state, code, out.error, out.rounds, nowhere, no, stuck, no.copy(), {}, {})
-    _push(problem, judged, np.flatnonzero((code == UNSTABLE) & (True if pushed is None else pushed)))
+    _push(problem, judged, np.flatnonzero((code == UNSTABLE) & pushed))
     return judged
 
 
 def _push(problem: Problem, judged: Judged, cases: Index) -> None:
-    """Push unstable cases along their lowest modes both ways; write the stable states they come to, if near, and the mirrors."""
-    shape = {int(c): modes(problem.take(np.array([c])), judged.state.take(np.array([c])), 1).shape[0] for c in cases}
-    for amplitude in PUSHES:
-        if len(cases) == 0:
-            return
-        pairs = np.repeat(cases, 2)
-        both, there = problem.take(pairs), judged.state.take(pairs)
-        way = np.tile([amplitude, -amplitude], len(cases))[:, None, None] * problem.structure.height
-        step = band.pick(both.pattern, way * np.array([shape[int(c)] for c in pairs]))
-        out = solver.solve(both, both.advance(there, both.evaluate(there), step), turned_over, CASE_ROUNDS)
-        good = out.converged & ~out.stopped & (turn_between(both, out.state, there) < 2 * FAR)
-        held = np.flatnonzero(good)
-        if len(held):
-            good[held] = classify(both.take(held), out.state.take(held)) <= NEUTRAL
-        for k in np.flatnonzero(good.reshape(-1, 2).any(axis=1)):
-            _stand_aside(judged, int(cases[k]), out, 2 * int(k), good)
-        cases = cases[~good.reshape(-1, 2).any(axis=1)]
+    """Push unstable cases along their lowest modes both ways; write the stable states they come to, if near, and the mirrors.
+
+    All amplitudes at once; the first that comes to rest nearby counts.
+    """
+    if len(cases) == 0:
+        return
+    each = 2 * len(PUSHES)
+    rows = np.repeat(cases, each)
+    many, there = problem.take(rows), judged.state.take(rows)
+    shape = np.array([modes(problem.take(c), judged.state.take(c), 1).shape[0] for c in cases[:, None]])
+    way = np.tile(np.outer(PUSHES, (1.0, -1.0)).ravel(), len(cases))[:, None, None] * problem.structure.height
+    step = band.pick(many.pattern, way * np.repeat(shape, each, axis=0))
+    out = solver.solve(many, many.advance(there, many.evaluate(there), step), _gone_from(there, 3 * FAR), CASE_ROUNDS)
+    good = out.converged & ~out.stopped & (turn_between(many, out.state, there) < 2 * FAR)
+    held = np.flatnonzero(good)
+    if len(held):
+        good[held] = classify(many.take(held), out.state.take(held)) <= NEUTRAL
+    rests = np.logical_or(*good.reshape(len(cases), len(PUSHES), 2).transpose(2, 0, 1))
+    for k in np.flatnonzero(rests.any(axis=1)):
+        _stand_aside(judged, int(cases[k]), out, each * int(k) + 2 * int(np.argmax(rests[k])), good)
 
 
 def _stand_aside(judged: Judged, case: int, out: solver.Outcome, first: int, good: NDArray[np.bool_]) -> None:
@@ -263,20 +296,21 @@ def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) 
         return ended
     part = whole.take(ended)
     there = replace(part, loads=part.loads.between(start.take(ended), path.reached[ended]))
-    drifts = np.array([classify(there.take(np.array([k])), path.state.take(ended[k : k + 1]))[0] == NEUTRAL for k in range(len(ended))])
+    drifts = classify(there, path.state.take(ended)) == NEUTRAL
     path.drifts[ended[drifts]] = True
     still = replace(part, loads=start.take(ended))
-    least, at_start = (
-        np.array([least_cost(p.take(np.array([k])), states.take(ended[k : k + 1])) for k in range(len(ended))])
-        for p, states in ((there, path.state), (still, setting))
-    )
+    least, at_start = least_costs(there, path.state.take(ended)), least_costs(still, setting.take(ended))
     return np.asarray(ended[(least > SOFT * at_start) & ~drifts])
 
 
-def least_cost(one: Problem, state: State) -> float:
-    """Least eigenvalue of one case that is not a free motion's; infinite where there is none such among the lowest."""
-    value = modes(one, state).value
-    return float(np.min(value[value > ZERO], initial=np.inf))
+def least_costs(problem: Problem, state: State) -> Array:
+    """(case,) least eigenvalue that is not a free motion's; infinite where there is none such among the lowest."""
+    root, out = np.sqrt(problem.mass), np.full(problem.cases, np.inf)
+    some = _lowest(root, _enough(problem))
+    for k, k_band in enumerate(tangent(problem, state)):
+        value = eig_banded(_scaled(k_band, root), lower=True, eigvals_only=True, select="i", select_range=some)
+        out[k] = np.min(value[value > ZERO], initial=np.inf)
+    return out
 
 
 def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near: bool) -> None:
@@ -307,7 +341,7 @@ def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> No
     part = whole.take(open_)
     there = replace(part, loads=part.loads.between(start.take(open_), share))
     before = path.state.take(open_)
-    found = settle(there, before, PATH_ROUNDS)
+    found = step_on(there, before)
     near = turn_between(there, found.state, before) < NEXT
     good = (found.code <= NEUTRAL) & near
     path.state.put(open_[good], found.state.take(np.flatnonzero(good)))

@@ -11,6 +11,7 @@ import scenarios_made as made
 
 from guys import path, stability
 from guys.equilibrium import Index, Problem, State
+from guys.loads import lines_of
 from guys.path import CLOSE, Paths, Stops, crossings, follow
 from guys.rotation import Array
 
@@ -70,6 +71,26 @@ def test_a_rigid_mast_on_springs_is_lost_at_their_stiffness() -> None:
     _, found = along(document, 1e4, first=1.0)
     first = found.low[0] if math.isnan(found.branches_at[0]) else found.branches_at[0]
     assert 100.0 * first == pytest.approx(stiff * held**2 / high, rel=END)
+
+
+def test_a_step_that_took_too_many_rounds_does_not_bound_its_path(monkeypatch: pytest.MonkeyPatch) -> None:
+    """With five rounds a step most long ones are given up; the path comes to the same end by shorter ones, not by creeping on from each."""
+    document = made.mast(20.0, wind=made.wind(20.0, speed=25.0))
+    setting = made.setting(document)
+    line = lines_of(setting.problem.structure.scenario)[0]
+
+    def at(rows: Index, x: Array) -> Problem:
+        return setting.under([replace(line, wind=float(v)) for v in x])
+
+    def walked() -> Paths:
+        start = stability.judge(at(np.array([0]), np.ones(1)), setting.state, setting.loads)
+        return follow(at, start.state, np.ones(1), Stops(0.25, 0.25, 100.0), head)
+
+    plain = walked()
+    monkeypatch.setattr(path, "SHORT_ROUNDS", 5)
+    short = walked()
+    assert short.low[0] == pytest.approx(plain.low[0], rel=2 * CLOSE)
+    assert len(short.x) < 2 * len(plain.x)
 
 
 def head(problem: Problem, state: State) -> Array:

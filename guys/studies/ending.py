@@ -8,11 +8,12 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
 from guys import recovery, stability
-from guys.equilibrium import Problem, State
+from guys.equilibrium import Index, Problem, State
 from guys.path import At, Paths
 from guys.reserves import Mode, Outline
 from guys.rotation import Array
@@ -23,22 +24,33 @@ DRAWN = 0.08
 FAULT = "the solver failed here; this is a fault of the program, not a statement about the structure"
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Ending:
-    """The end of one path: problem and last stable state there, its least eigenvalue, and where it goes if equilibrium is lost there."""
+    """The end of one path: problem and last stable state there, its least eigenvalue, and the state it jumps to, None where it softened."""
 
     one: Problem
     last: State
     least: float
-    after: State
+    jump: State | None
+
+    @cached_property
+    def after(self) -> State:
+        """Where it goes if equilibrium is lost there."""
+        return self.jump or along_lowest_mode(self.one, self.last)
+
+    @cached_property
+    def here(self) -> Outline:
+        """The last stable state."""
+        return outline(self.one, self.last)
 
 
-def ending(at: At, paths: Paths, k: int, at_start: float) -> Ending:
-    """The end of path `k`, whose least eigenvalue was `at_start` where it set out."""
-    one, last = at(np.array([k]), paths.low[[k]]), paths.state.take(paths.of(k)[-1:])
-    least = stability.least_cost(one, last)
-    jump = None if least < stability.SOFT * at_start else paths.beyond.get(k)
-    return Ending(one, last, least, jump or along_lowest_mode(one, last))
+def endings(at: At, paths: Paths, rows: Index, at_start: Array) -> list[Ending]:
+    """The ends of some paths, whose least eigenvalues were `at_start` (row,) where they set out."""
+    problem, last = at(rows, paths.low[rows]), paths.state.take(np.array([paths.of(int(k))[-1] for k in rows], dtype=np.int64))
+    least = stability.least_costs(problem, last)
+    jumps = [None if a < stability.SOFT * b else paths.beyond.get(int(k)) for k, a, b in zip(rows, least, at_start, strict=True)]
+    one = np.arange(len(rows))[:, None]
+    return [Ending(problem.take(k), last.take(k), float(a), jump) for k, a, jump in zip(one, least, jumps, strict=True)]
 
 
 def falls(end: Ending) -> str:
@@ -52,7 +64,7 @@ def falls(end: Ending) -> str:
 def mode(end: Ending) -> Mode:
     """The motion in which a path loses its equilibrium."""
     spar, bearing = stability.falling_part(end.one, end.last, end.after)
-    here, there = outline(end.one, end.last), outline(end.one, end.after)
+    here, there = end.here, outline(end.one, end.after)
     whole = here.apart(there)
     moves = tuple((b - a) / whole for a, b in zip(here.spars, there.spars, strict=True))
     structure = end.one.structure

@@ -190,8 +190,9 @@ class _Chunk:
         """How equilibrium is lost at the end of a path."""
         if paths.failed[k]:
             return ending.FAULT
-        start = stability.least_cost(self.at(np.array([k]), np.zeros(1)), paths.state.take(paths.of(k)[:1]))
-        return ending.falls(ending.ending(self.at, paths, k, start))
+        one = np.array([k])
+        start = stability.least_costs(self.at(one, np.zeros(1)), paths.state.take(paths.of(k)[:1]))
+        return ending.falls(*ending.endings(self.at, paths, one, start))
 
 
 def _watched(problem: Problem, state: State) -> Array:

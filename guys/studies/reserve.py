@@ -85,8 +85,8 @@ def _standing(setting: Setting, lines: Sequence[CaseLine], progress: Progress | 
     stand = np.flatnonzero(batch.code <= stability.NEUTRAL).tolist()
     runs = [(k, loads) for k in stand for loads in RAISED if loads == ALL or lines[k].wind]
     least = np.full(len(lines), math.nan)
-    for k in stand:
-        least[k] = stability.least_cost(problem.take(np.array([k])), judged.state.take(np.array([k])))
+    if stand:
+        least[stand] = stability.least_costs(problem.take(np.array(stand)), judged.state.take(np.array(stand)))
     found: dict[int, list[Reserve]] = {k: [] for k in range(len(lines))}
     as_erected = math.nan
     if runs:
@@ -123,7 +123,7 @@ class _Raised:
     def __init__(self, setting: Setting, rows: Sequence[tuple[CaseLine, str]], least: Array) -> None:
         """least : (row,) least eigenvalue of each under its own loads."""
         self.setting, self.rows, self.least = setting, rows, least
-        self.as_erected = stability.least_cost(setting.problem, setting.state)
+        self.as_erected = float(stability.least_costs(setting.problem, setting.state)[0])
         self.still = _heads(setting.problem, setting.state)[0]
 
     def at(self, rows: Index, factor: Array) -> Problem:
@@ -135,7 +135,8 @@ class _Raised:
         paths = follow(self.at, start, np.ones(len(self.rows)), STOPS, self._seen, progress)
         cables = len(self.setting.length)
         drops = crossings(self.at, replace(paths, value=paths.value[:, :cables]), _loose)
-        return [self._reserve(k, paths, drops[k]) for k in range(len(self.rows))]
+        ends = ending.endings(self.at, paths, np.arange(len(self.rows)), self.least)
+        return [self._reserve(k, paths, drops[k], end) for k, end in enumerate(ends)]
 
     def _seen(self, problem: Problem, state: State) -> Array:
         """(row, 2 cable + 3 spar) looseness and tension of every cable, and moves of the heads from still air."""
@@ -144,17 +145,16 @@ class _Raised:
         moves = (_heads(problem, state) - self.still).reshape(problem.cases, -1)
         return np.hstack([_loose(problem, state), np.where(forces.present, tension, np.nan), moves])
 
-    def _reserve(self, k: int, paths: Paths, drops: Array) -> Reserve:
+    def _reserve(self, k: int, paths: Paths, drops: Array, end: ending.Ending) -> Reserve:
         lost, failed = bool(paths.lost[k]), bool(paths.failed[k])
         own = paths.of(k)
         cables = len(self.setting.length)
         loose, tension, moves = np.split(paths.value[own], [cables, 2 * cables], axis=1)
-        end = ending.ending(self.at, paths, k, float(self.least[k]))
         falls = ending.FAULT if failed else ending.falls(end) if lost else ""
         return Reserve(
             self.rows[k][1], float(paths.low[k]), lost, failed, falls, ending.mode(end) if lost and not failed else None,
             _over(end.least, self.as_erected), float(paths.branches_at[k]), tuple(float(x) for x in drops),
-            Path(paths.x[own], moves.reshape(len(own), -1, 3), tension, loose > 0), ending.outline(end.one, end.last),
+            Path(paths.x[own], moves.reshape(len(own), -1, 3), tension, loose > 0), end.here,
         )  # fmt: skip
 
 
