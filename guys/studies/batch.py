@@ -26,6 +26,8 @@ CHUNK = 144
 """Cases in a chunk: large enough for numpy, small enough for the cache (measured best between 72 and 250)."""
 SWEPT_STEP = 1 / 32
 """Steps of the load to which the end of a path is found where only standing or falling is asked."""
+AT_ONCE = 1.0
+"""The same where no path is followed."""
 CURVE_POINTS = 41
 """Points of a drawn cable: chords between them leave the curve of a cable that sags a tenth of its length by 1/16,000 of that."""
 ALONG = ("displacement", "axial", "bending", "torsion", "shear")
@@ -111,21 +113,25 @@ def solve_lines(
         if change is not None:
             loads = change(share.problem.loads, first + share.asked.owner)
             share = replace(share, problem=replace(share.problem, loads=loads))
-        parts += _solved([share], detail, detail and finely)
+        parts += _solved([share], detail, stability.LEAST_STEP if detail and finely else SWEPT_STEP)
         if progress is not None:
             progress(min(first + step, len(lines)), len(lines))
     return join(parts)
 
 
-def solve_each(settings: Sequence[Setting], lines: Sequence[CaseLine], detail: bool) -> list[Batch]:
-    """The same few lines on settings that stand of layouts side by side (`setting.find_each`), as many at once as fill a chunk."""
+def solve_each(settings: Sequence[Setting], lines: Sequence[CaseLine]) -> list[Batch]:
+    """The same few lines on settings that stand of layouts side by side (`setting.find_each`), as many at once as fill a chunk.
+
+    With spar lines and curves.  Paths are not followed: a case whose stable state is not found from the setting at once, within the swing
+    that `stability.judge` takes without doubt, counts as one that falls.
+    """
     out: list[Batch] = []
     waiting: list[_Share] = []
     for setting in settings:
         waiting.append(_share(setting, lines, starts(setting, lines)))
         if sum(share.problem.cases for share in waiting) + waiting[-1].problem.cases > CHUNK:
-            out, waiting = out + _solved(waiting, detail, detail), []
-    return out + _solved(waiting, detail, detail)
+            out, waiting = out + _solved(waiting, True, AT_ONCE), []
+    return out + _solved(waiting, True, AT_ONCE)
 
 
 @dataclass(frozen=True)
@@ -144,13 +150,13 @@ def _share(setting: Setting, lines: Sequence[CaseLine], start: Start, first: int
     return _Share(asked, setting.under(states), (start[0].take(rows), start[1].take(rows)))
 
 
-def _solved(shares: Sequence[_Share], detail: bool, finely: bool) -> list[Batch]:
+def _solved(shares: Sequence[_Share], detail: bool, least_step: float) -> list[Batch]:
     """Every share judged, all at once, and recovered by itself."""
     if not shares:
         return []
     state, loads = State.join([s.start[0] for s in shares]), joined([s.start[1] for s in shares])
     whole = side_by_side([s.problem for s in shares])
-    judged = stability.judge(whole, state, loads, stability.LEAST_STEP if finely else SWEPT_STEP)
+    judged = stability.judge(whole, state, loads, least_step)
     rows = np.split(np.arange(whole.cases), np.cumsum([s.problem.cases for s in shares])[:-1])
     return [recover(s.problem, judged.take(own), detail, s.asked) for s, own in zip(shares, rows, strict=True)]
 

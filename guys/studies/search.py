@@ -211,10 +211,10 @@ def _bounds(numbers: Sequence[Span]) -> tuple[Array, Array]:
 
 def _spread(numbers: Sequence[Span], many: int, seed: int) -> Array:
     """(layout, number) a first generation spread evenly over the bounds (Latin hypercube)."""
-    from scipy.stats import qmc
-
+    rng = np.random.default_rng(seed)
     low, high = _bounds(numbers)
-    return np.asarray(low + qmc.LatinHypercube(len(numbers), rng=seed).random(many) * (high - low))
+    rows = rng.permuted(np.tile(np.arange(many), (len(numbers), 1)), axis=1).T  # scipy.stats has this too, and takes a second to load
+    return np.asarray(low + (rows + rng.random(rows.shape)) / many * (high - low))
 
 
 def not_bettered(holding: Sequence[Trial]) -> tuple[Trial, ...]:

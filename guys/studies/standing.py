@@ -75,7 +75,7 @@ def listed_cases(setting: Setting, progress: Progress | None = None) -> Batch:
 def listed_of_each(settings: Sequence[Setting]) -> list[Batch]:
     """The same of layouts side by side (`setting.find_each`)."""
     lines = lines_of(settings[0].problem.structure.scenario) if settings else ()
-    solved = iter(solve_each([setting for setting in settings if setting.stands], lines, detail=True))
+    solved = iter(solve_each([setting for setting in settings if setting.stands], lines))
     return [_listed(setting, lines, next(solved) if setting.stands else None) for setting in settings]
 
 

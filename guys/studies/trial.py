@@ -1,10 +1,10 @@
 """Layouts of a search: anchors put where the numbers say, the site's rules on them, then the line in a few directions.
 
 Rules in order, since each costs more than the one before: a place that is on the surveyed ground, clear of the mast and of other anchors;
-boundary and obstacles in plan; equilibrium in every case; everything judged within its allowable, cables over roads and lines included.
-A layout that breaks one is not solved further.  Layouts tried together are set and solved side by side; each comes to what it comes to
-alone.  `grade` orders layouts: one that holds all rules by its measure, any other behind it by how
-far it went and how much it breaks.
+boundary and obstacles in plan; equilibrium in every case, found from still air at once (`batch.solve_each`); everything judged within its
+allowable, cables over roads and lines included.  A layout that breaks one is not solved further.  Layouts tried together are set and
+solved side by side; each comes to what it comes to alone.  `grade` orders layouts: one that holds all rules by its measure, any other
+behind it by how far it went and how much it breaks.
 """
 
 from __future__ import annotations
@@ -187,7 +187,7 @@ def _judged(trial: Trial, layout: Scenario, keys: tuple[str, ...], setting: Sett
     trial = replace(trial, still_lean=float(solution.head_lean[0].max()))
     if any(solution.unsettled) or solution.failed:
         share = sum(solution.unsettled) / len(solution.unsettled)
-        return replace(trial, outcome=FALLS, amount=share, rule="no stable equilibrium in some case")
+        return replace(trial, outcome=FALLS, amount=share, rule="no stable equilibrium found from still air in some case")
     needs = sizing.sized(layout, listed, None, own=True).anchors if "mass" in keys and layout.holdfast else ()
     values = tuple(measured(solution, needs, keys)[key].value for key in keys)
     rule, amount = _past(solution, keys)
