@@ -210,11 +210,13 @@ def _bounds(numbers: Sequence[Span]) -> tuple[Array, Array]:
 
 
 def _spread(numbers: Sequence[Span], many: int, seed: int) -> Array:
-    """(layout, number) a first generation spread evenly over the bounds (Latin hypercube)."""
-    rng = np.random.default_rng(seed)
+    """(layout, number) a first generation that takes each number once at each of so many even steps from bound to bound.
+
+    A Latin hypercube with its edges, since the least often lies at a bound, where evolution alone comes to only by and by.
+    """
     low, high = _bounds(numbers)
-    rows = rng.permuted(np.tile(np.arange(many), (len(numbers), 1)), axis=1).T  # scipy.stats has this too, and takes a second to load
-    return np.asarray(low + (rows + rng.random(rows.shape)) / many * (high - low))
+    steps = np.tile(np.arange(many), (len(numbers), 1))
+    return np.asarray(low + np.random.default_rng(seed).permuted(steps, axis=1).T / (many - 1) * (high - low))
 
 
 def not_bettered(holding: Sequence[Trial]) -> tuple[Trial, ...]:
