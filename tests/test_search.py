@@ -76,6 +76,7 @@ def test_listed_places_are_all_tried() -> None:
 def test_the_trade_off_holds_nothing_that_another_betters(found: Found) -> None:
     holding = [t for t in found.trials if t.outcome == HOLDS]
     assert len(found.front) >= 2
+    assert len(found.trials) <= 50
     for one in found.front:
         assert not [t for t in holding if t.values[0] < one.values[0] and t.values[1] < one.values[1]]
     firsts, seconds = ([t.values[n] for t in found.front] for n in (0, 1))

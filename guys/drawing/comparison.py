@@ -88,8 +88,8 @@ def title(found: Comparison) -> str:
 
 def _below(found: Comparison) -> list[str]:
     return [
-        "First what is within all that is judged, then what is past something, then what falls; loads are greatest of all cases and the "
-        "full circle of winds, bending, lean and margins those of the listed cases. Each layout once more by itself before it is built: "
+        "First what is within all that is judged, then what is past something, then what falls; loads and margins are those of all cases "
+        "and the full circle of winds, bending and lean those of the listed cases. Each layout once more by itself before it is built: "
         "guys solve --layout."
     ]
 

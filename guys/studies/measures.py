@@ -1,7 +1,7 @@
 """Measures by which layouts are compared: one figure each of a solved layout, with what it is of and the case and wind that decide it.
 
 Loads are those a crew is to see: of service cases where the file has others beside them.  Whatever comes from the refined circle of winds
-is its peak; bending, and margins of the site, are of the listed cases and directions.
+is its peak; margins of the site are the least of the same winds; bending is of the listed cases and directions.
 """
 
 from __future__ import annotations

@@ -39,8 +39,10 @@ AMONG = 24
 """Layouts of a generation at the most."""
 TOGETHER = 12
 """Layouts solved on one case axis, by one process."""
+FEWEST = 6
+"""Layouts of a generation at the least."""
 LIMITS = 4
-"""Limits on the second measure between the least of both."""
+"""Limits on the second measure between the least of both; fewer where two generations for each would be more than all tries."""
 SHARE = 0.4
 """Of all tries, those that look for the least of the first measure, where a trade-off is traced."""
 FOUND = 6
@@ -161,13 +163,15 @@ def _explore(tries: _Tries, numbers: Sequence[Span], most: int, seed: int) -> No
         _least(tries, numbers, lambda t: t.grade(0), most, seed)
         return
     _least(tries, numbers, lambda t: t.grade(0), int(SHARE * most), seed)
-    rest = (most - int(SHARE * most)) // (LIMITS + 1)
+    left = most - int(SHARE * most)
+    limits = min(LIMITS, max(left // (2 * FEWEST) - 1, 0))
+    rest = left // (limits + 1)
     _least(tries, numbers, lambda t: t.grade(1), rest, seed + 1)
     holding = [t for t in tries.known.values() if t.outcome == HOLDS]
     if not holding:
         return
     low, high = min(t.values[1] for t in holding), min(holding, key=lambda t: t.values).values[1]
-    for k, limit in enumerate(np.linspace(low, high, LIMITS + 2)[1:-1]):
+    for k, limit in enumerate(np.linspace(low, high, limits + 2)[1:-1]):
         _least(tries, numbers, partial(Trial.grade, measure=0, limit=float(limit)), rest, seed + 2 + k)
 
 
@@ -189,10 +193,10 @@ def _in_one_order(numbers: Sequence[Span], point: Array) -> tuple[float, ...]:
 
 
 def _least(tries: _Tries, numbers: Sequence[Span], grade: Callable[[Trial], float], most: int, seed: int) -> None:
-    """Differential evolution of about `most` tries."""
+    """Differential evolution of `most` tries at the most, `FEWEST` at the least."""
     from scipy.optimize import Bounds, differential_evolution
 
-    many = max(6, min(AMONG, most // 6))
+    many = max(FEWEST, min(AMONG, most // 6))
 
     def graded(x: Array, /) -> Any:  # (layout,) of (number, layout), as `vectorized` has it; scipy's types know a single point alone
         points = [_in_one_order(numbers, column) for column in np.atleast_2d(x.T)]
@@ -200,7 +204,7 @@ def _least(tries: _Tries, numbers: Sequence[Span], grade: Callable[[Trial], floa
 
     first = _spread(numbers, many, seed)
     differential_evolution(
-        graded, Bounds(*_bounds(numbers)), maxiter=max(most // many - 1, 1), init=first, rng=seed, polish=False, vectorized=True,
+        graded, Bounds(*_bounds(numbers)), maxiter=max(most // many - 1, 0), init=first, rng=seed, polish=False, vectorized=True,
         updating="deferred", integrality=np.array([span.whole for span in numbers]), tol=ALIKE, atol=0.0,
     )  # fmt: skip
 
