@@ -21,7 +21,7 @@ from guys.equilibrium import Evaluation, Problem, State
 from guys.loads import CaseLine, lines_of
 from guys.results import Solution
 from guys.scenario import Scenario
-from guys.studies.standing import solve
+from guys.studies import standing
 
 Document = dict[str, Any]
 
@@ -358,10 +358,15 @@ def cases(made: Document, lines: Sequence[CaseLine] | None = None, finer: int = 
 
 
 @cache
-def _solved(written: str, finer: int) -> Solution:
-    return solve(parse_scenario(written), finer=finer)
+def _solved(written: str, finer: int, circle: bool) -> Solution:
+    return standing.solution(*standing.cases(parse_scenario(written), finer, circle=circle), again=circle)
 
 
 def solved(made: Document, finer: int = 1, us: bool = False) -> Solution:
     """The whole result of a document (kept: it is frozen)."""
-    return _solved(text(made, us), finer)
+    return _solved(text(made, us), finer, True)
+
+
+def listed(made: Document) -> Solution:
+    """The result of its listed cases alone, without the full circle of winds and the second solution (kept)."""
+    return _solved(text(made), 1, False)

@@ -25,7 +25,7 @@ def wind_cantilever(rigid: bool = False) -> Solution:
     """A fixed 8 m column, wind of 390.625 Pa x 1.2 x 0.1 m toward the east along it, 20 kg/m, 50 kg at its head."""
     section = made.bar(8.0, mass=20.0, EI=STIFF, drag=1.2)
     spar = made.spar(base="fixed", section=[section], rigid=rigid, fitting=[made.fitting(at=8.0, mass=50.0)])
-    return made.solved(made.document([spar], wind=made.wind(270.0)))
+    return made.listed(made.document([spar], wind=made.wind(270.0)))
 
 
 @pytest.mark.parametrize("rigid", [False, True])
@@ -43,7 +43,7 @@ def test_sections_of_a_cantilever_in_closed_form(rigid: bool) -> None:
 
 
 def test_stations_repeat_on_both_sides_of_every_node() -> None:
-    line = made.solved(made.mast(30.0)).spars[0]
+    line = made.listed(made.mast(30.0)).spars[0]
     assert line.station[0] == 0.0
     assert line.station[-1] == pytest.approx(18.0)
     assert np.array_equal(line.station[1:-1:2], line.station[2::2])
@@ -61,7 +61,7 @@ def forces_at(s: Solution, at: float, case: int) -> np.ndarray:
 @pytest.mark.parametrize("at", [9.0, 17.0])
 def test_section_force_jumps_at_guy_levels_by_what_the_guys_pull(at: float) -> None:
     """The size of the jump of (shear, axial) is that of the guys' pull on the mast; without lugs the moment does not jump."""
-    s = made.solved(made.mast(30.0))
+    s = made.listed(made.mast(30.0))
     line = s.spars[0]
     below, above = np.flatnonzero(np.abs(line.station - at) < 1e-9)
     jump = np.concatenate([line.shear[1, above] - line.shear[1, below], [line.axial[1, above] - line.axial[1, below]]])
@@ -73,7 +73,7 @@ def test_section_force_jumps_at_guy_levels_by_what_the_guys_pull(at: float) -> N
 
 def test_head_and_pinned_foot_carry_what_is_there() -> None:
     """At the head the panel of 12 kg and its wind, at the foot the base reaction; no bending at either."""
-    s = made.solved(made.mast(30.0))
+    s = made.listed(made.mast(30.0))
     line = s.spars[0]
     head = np.array([*line.shear[1, -1], line.axial[1, -1]])
     assert np.linalg.norm(head) == pytest.approx(math.hypot(12.0 * G, 390.625 * 1.3 * 0.5), rel=1e-9)
@@ -88,7 +88,7 @@ def test_every_element_is_in_equilibrium() -> None:
     """On a stiff mast, nearly straight: forces of the ends and the load between, moments about the lower end."""
     document = made.mast(30.0)
     document["spar"][0]["section"] = [made.bar(18.0, mass=20.0, EI=STIFF, drag=1.2)]
-    line = made.solved(document).spars[0]
+    line = made.listed(document).spars[0]
     b = math.radians(30.0)
     load = np.array([-390.625 * 0.12 * math.sin(b), -390.625 * 0.12 * math.cos(b), -20.0 * G])
     force = np.concatenate([line.shear[1], line.axial[1][:, None]], axis=1)
@@ -113,9 +113,9 @@ def test_rigid_spars_have_the_sections_of_very_stiff_ones() -> None:
         guy["from"]["arm"], guy["length"] = 0.15, 14.087 if guy["from"]["at"] == 9.0 else 20.152
     document["spar"][0]["fitting"].append(made.fitting("box", at=5.0, mass=30.0, offset=made.vector(0.4, 0.2, 0.0)))
     document["spar"][0]["section"] = [{**made.bar(18.0, mass=20.0, EI=3e9, drag=1.2), "EA": 1e11}]
-    elastic = made.solved(document).spars[0]
+    elastic = made.listed(document).spars[0]
     document["spar"][0]["rigid"] = True
-    rigid = made.solved(document).spars[0]
+    rigid = made.listed(document).spars[0]
     for name in ("shear", "axial", "bending", "torsion"):
         stiff, rig = getattr(elastic, name)[1], getattr(rigid, name)[1]
         scale = np.abs(elastic.axial[1]).max() if name in ("shear", "axial") else np.abs(elastic.bending[1]).max()
@@ -128,7 +128,7 @@ def test_a_level_lug_on_a_leaning_rigid_spar_acts_at_its_station(bearing: float)
     """Weightless, stayed at 6 m from a lug 0.3 m off, which on a spar leaning 50 degrees lies 0.23 m further up or down along the axis: the
     sections below 6 m carry the stay's pull, those above nothing."""
     spar = made.spar(base="fixed", rigid=True, lean=50.0, toward=90.0, section=[made.weightless(10.0)])
-    s = made.solved(made.stayed(spar, bearing, at=6.0, arm=0.3, radius=14.0, tension=900.0, straight=True))
+    s = made.listed(made.stayed(spar, bearing, at=6.0, arm=0.3, radius=14.0, tension=900.0, straight=True))
     line, pull = s.spars[0], s.cables.force_on_spar[0, 0]
     lean = math.radians(50.0)
     along = pull @ np.array([math.sin(lean), 0.0, math.cos(lean)])
@@ -141,7 +141,7 @@ def test_a_level_lug_on_a_leaning_rigid_spar_acts_at_its_station(bearing: float)
 def test_a_couple_at_the_head_twists_the_whole_column() -> None:
     """60 N north at 0.5 m east of the axis: 30 N m all the way down and on the ground."""
     aside = made.fitting(at=4.0, load=made.vector(0.0, 60.0, 0.0), offset=made.vector(0.5, 0.0, 0.0))
-    s = made.solved(made.document([made.spar(base="fixed", section=[made.bar(4.0, EI=STIFF)], fitting=[aside])], still=True))
+    s = made.listed(made.document([made.spar(base="fixed", section=[made.bar(4.0, EI=STIFF)], fitting=[aside])], still=True))
     assert s.spars[0].torsion[1] == pytest.approx(30.0, rel=BENT)
     assert s.bases.moment[1, 0] == pytest.approx([-240.0, 0.0, 30.0], rel=BENT, abs=1e-3)
 
@@ -178,7 +178,7 @@ SAGGED = 1e-4
 @pytest.mark.parametrize("rigid", [(True, True), (False, False)])
 def test_heel_forces_are_what_the_boom_needs(base: str, rigid: tuple[bool, bool]) -> None:
     """Free body of the boom: the heel passes on the sum of its loads and pulls, and their moment about the heel."""
-    s = made.solved(made.boom(base, rigid=rigid))
+    s = made.listed(made.boom(base, rigid=rigid))
     force, moment = boom_loads(s)
     reference = s.reference_force[1]
     assert s.heels.spar == ("boom",)
@@ -193,7 +193,7 @@ def test_heel_forces_are_what_the_boom_needs(base: str, rigid: tuple[bool, bool]
 @pytest.mark.parametrize("base", ["hinged", "fixed"])
 def test_the_base_of_the_mast_carries_mast_boom_and_all(base: str) -> None:
     """Downward: both spars, the load and the cables, less the anchors' pulls."""
-    s = made.solved(made.boom(base))
+    s = made.listed(made.boom(base))
     tubes = math.pi * 7850 * ((0.089 - 0.0032) * 0.0032 * 8.0 + (0.14 - 0.005) * 0.005 * 12.0)
     weight = G * (tubes + 0.15 * s.cables.unstressed_length[1].sum()) + 1500.0
     total = s.anchors.pull[1].sum(axis=0) + s.bases.force[1, 0]
@@ -205,7 +205,7 @@ def test_the_base_of_the_mast_carries_mast_boom_and_all(base: str) -> None:
 
 
 def test_anchor_pulls_are_the_sums_of_their_cables() -> None:
-    s = made.solved(made.mast(30.0))
+    s = made.listed(made.mast(30.0))
     for a, name in enumerate(s.anchors.name):
         mine = [k for k, to in enumerate(s.cables.to_anchor) if to == name]
         assert s.anchors.pull[1, a] == pytest.approx(s.cables.force_on_anchor[1, mine].sum(axis=0), rel=1e-12)
@@ -216,7 +216,7 @@ def test_anchor_pulls_are_the_sums_of_their_cables() -> None:
 
 def test_cables_carry_their_own_weight_and_wind_between_their_ends() -> None:
     """Pull on the anchor plus pull on the spar is the cable's load: its weight in still air."""
-    s = made.solved(made.mast(30.0))
+    s = made.listed(made.mast(30.0))
     both = s.cables.force_on_anchor[0] + s.cables.force_on_spar[0]
     weight = 0.15 * G * s.cables.unstressed_length[0]
     assert both[:, 2] == pytest.approx(-weight, rel=1e-9)
@@ -226,7 +226,7 @@ def test_cables_carry_their_own_weight_and_wind_between_their_ends() -> None:
 
 @pytest.mark.parametrize("straight", [False, True])
 def test_curves_run_from_the_to_end_to_the_from_end_as_displaced(straight: bool) -> None:
-    s = made.solved(made.mast(30.0, straight=straight))
+    s = made.listed(made.mast(30.0, straight=straight))
     line = s.spars[0]
     for k, name in enumerate(s.cables.name):
         at = 9.0 if name.startswith("9") else 17.0
@@ -244,7 +244,7 @@ def test_a_hanging_cable_is_slack_below_its_own_weight_at_mid_length() -> None:
     spar = made.spar(base="fixed", rigid=True, section=[made.weightless(10.0)])
     tight = made.setting(made.stayed(spar, 0.0, 120.0, 240.0, tight=True)).length[0]
     for share, slack in ((0.999, False), (1.0 - 1e-9, False), (1.001, True)):
-        s = made.solved(made.stayed(spar, 0.0, 120.0, 240.0, length=float(tight * share)))
+        s = made.listed(made.stayed(spar, 0.0, 120.0, 240.0, length=float(tight * share)))
         weight = 0.15 * G * s.cables.unstressed_length[0, 0]
         middle = np.linalg.norm(0.5 * (s.cables.force_on_anchor[0, 0] - s.cables.force_on_spar[0, 0]))
         assert (middle < weight) == slack
@@ -255,7 +255,7 @@ def test_a_straight_cable_is_slack_when_longer_than_its_chord() -> None:
     chord = math.hypot(8.0, 10.0)
     spar = made.spar(base="fixed", rigid=True, section=[made.weightless(10.0)])
     for length, slack in ((chord * (1 + 1e-6), True), (chord * (1 - 1e-6), False)):
-        s = made.solved(made.stayed(spar, 0.0, 120.0, 240.0, length=length, straight=True))
+        s = made.listed(made.stayed(spar, 0.0, 120.0, 240.0, length=length, straight=True))
         assert s.cables.slack[0].tolist() == [slack] * 3
         assert (s.cables.tension_anchor[0] > 0).tolist() == [not slack] * 3
 

@@ -143,7 +143,7 @@ def test_a_solver_that_does_not_get_there_is_not_a_structure_that_falls() -> Non
     solved = made.cases(document)
     assert solved.judged.code.tolist() == [stability.FAILED]
     assert solved.judged.stuck.tolist() == [True]
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.failed
     assert s.reason[1] == "the solver failed on this case; this is a fault of the program, not a statement about the structure"
 
