@@ -161,7 +161,7 @@ def test_every_equilibrium_balances(name: str) -> None:
 
 def test_reactions_carry_the_weight_counted_by_hand() -> None:
     """Still air: tube, panel and the unstressed lengths of the guys, against the upward pull on anchors and the push on the base."""
-    s = made.solved(made.mast())
+    s = made.listed(made.mast())
     tube = math.pi * (0.089 - 0.0032) * 0.0032 * 7850 * 18.0
     weight = G * (tube + 12.0 + 0.15 * s.cables.unstressed_length[1].sum())
     on_ground = s.anchors.pull[1].sum(axis=0) + s.bases.force[1, 0]
@@ -173,7 +173,7 @@ def test_reactions_balance_a_windy_mast_in_force_and_moment() -> None:
     with every force where it stands after the displacement."""
     document = made.mast(30.0, straight=True)
     document["spar"][0]["rigid"] = True
-    s = made.solved(document)
+    s = made.listed(document)
     q = 0.5 * 1.25 * 25.0**2
     u = -np.array([math.sin(math.radians(30.0)), math.cos(math.radians(30.0)), 0.0])
     weight = np.array([0.0, 0.0, -G])
@@ -207,7 +207,7 @@ def test_cantilever_under_a_tip_load() -> None:
     head = solved.structure.head.node[0]
     assert solved.state.u[0, head, 0] == pytest.approx(20.0 * 4.0**3 / (3 * 2e5), rel=CLOSED)
     assert solved.state.psi[0, head, 0, 2] == pytest.approx(20.0 * 4.0**2 / (2 * 2e5), rel=CLOSED)
-    s = made.solved(cantilever((20.0, 0.0, 0.0)))
+    s = made.listed(cantilever((20.0, 0.0, 0.0)))
     assert s.bases.force[1, 0] == pytest.approx([20.0, 0.0, 0.0], abs=1e-9)
     assert s.bases.moment[1, 0] == pytest.approx([0.0, 80.0, 0.0], rel=CLOSED, abs=1e-9)
 
@@ -257,7 +257,7 @@ def test_rigid_spars_grow_with_heat_too() -> None:
     spar = made.spar(base="fixed", rigid=True, section=[made.tube(12.0)])
     document = made.stayed(spar, 0.0, 120.0, 240.0, at=12.0, length=14.6, straight=True)
     document["case"] = [{"name": "hot", "wind": 0.0, "temperature": 45.0}]
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.spars[0].displacement[1, -1, 2] == pytest.approx(12e-6 * 30 * 12.0, rel=1e-9)
 
 
@@ -267,7 +267,7 @@ def test_a_rigid_spar_that_grows_tightens_its_guys() -> None:
     spar = made.spar(base="fixed", rigid=True, section=[made.tube(12.0)])
     document = made.stayed(spar, 90.0, radius=9.0, at=12.0, length=14.99, straight=True, rope=steady)
     document["case"] = [{"name": "hot", "wind": 0.0, "temperature": 45.0}]
-    s = made.solved(document)
+    s = made.listed(document)
     chord = math.hypot(9.0, 12.0 * (1 + 12e-6 * 30.0))
     assert s.cables.tension_anchor[1, 0] == pytest.approx(1.4e6 * (chord / 14.99 - 1), rel=1e-9)
 
@@ -278,7 +278,7 @@ def test_tension_of_a_restrained_cable_against_temperature(change: float) -> Non
     spar = made.spar(base="fixed", rigid=True, section=[made.weightless(12.0)])
     document = made.stayed(spar, 90.0, radius=9.0, length=14.985, straight=True)
     document["case"] = [{"name": "other", "wind": 0.0, "temperature": 15.0 + change}]
-    s = made.solved(document)
+    s = made.listed(document)
     expected = 1.4e6 * (15.0 / (14.985 * (1 + 11.5e-6 * change)) - 1)
     assert s.cables.tension_anchor[1, 0] == pytest.approx(expected, rel=1e-9)
     assert s.cables.tension_anchor[1, 0] - s.cables.tension_anchor[0, 0] == pytest.approx(-1.4e6 * 11.5e-6 * change, rel=0.01)
@@ -291,7 +291,7 @@ def test_a_rigid_spar_grows_section_by_section(change: float) -> None:
     steel, cold = made.tube(6.0, drag=0.0), made.weightless(6.0)
     document = made.stayed(made.spar(base="fixed", rigid=True, section=[steel, cold]), 90.0, at=6.0, length=9.99, straight=True)
     document["case"] = [{"name": "other", "wind": 0.0, "temperature": 15.0 + change}]
-    s = made.solved(document)
+    s = made.listed(document)
     chord = math.hypot(8.0, 6.0 * (1 + 12e-6 * change))
     expected = 1.4e6 * (chord / (9.99 * (1 + 11.5e-6 * change)) - 1)
     assert s.cables.tension_anchor[1, 0] == pytest.approx(expected, rel=1e-9)
@@ -309,7 +309,7 @@ def test_a_heel_on_a_rigid_spar_rises_as_that_grows(base: str, change: float) ->
     stays = [made.cable(f"stay {a['name']}", 3.0, a["name"], spar="pole", length=14.98) for a in ring]
     document = made.document([mast, pole], ring, stays, straight=True)
     document["case"] = [{"name": "other", "wind": 0.0, "temperature": 15.0 + change}]
-    s = made.solved(document)
+    s = made.listed(document)
     chord = math.hypot(12.0, 9.0 + 6.0 * 12e-6 * change)
     expected = 1.4e6 * (chord / (14.98 * (1 + 11.5e-6 * change)) - 1)
     assert s.cables.tension_anchor[1] == pytest.approx([expected] * 3, rel=1e-9)
@@ -321,7 +321,7 @@ def test_sprung_base_resists_with_stiffness_times_its_angle(rigid: bool) -> None
     section = [made.weightless(4.0)] if rigid else [made.bar(4.0)]
     hung = [made.fitting(at=4.0, load=made.vector(30.0, 40.0, -100.0))]
     document = made.document([made.spar(base="sprung", base_stiffness=3e3, rigid=rigid, section=section, fitting=hung)], still=True)
-    solved, s = made.cases(document), made.solved(document)
+    solved, s = made.cases(document), made.listed(document)
     axis = turned(solved.state.psi[0, solved.structure.foot[0]], np.array([0.0, 0.0, 1.0]))
     angle = math.acos(axis[2])
     assert angle > 0.05
@@ -335,7 +335,7 @@ def test_hinged_base_turns_about_its_axis_alone() -> None:
     load = made.fitting(at=10.0, load=made.vector(0.0, 300.0, -2000.0))
     rigid = made.spar(base="hinged", rigid=True, lean=10.0, toward=90.0, section=[made.weightless(10.0)], fitting=[load])
     document = made.stayed(rigid, 250.0, 290.0, length=13.77)
-    s = made.solved(document)
+    s = made.listed(document)
     move = s.spars[0].displacement[1, -1]
     assert np.hypot(move[0], move[2]) > 1e-3
     assert abs(move[1]) < 1e-12
@@ -345,14 +345,14 @@ def test_hinged_base_turns_about_its_axis_alone() -> None:
 
 
 def test_pinned_base_passes_no_moment_but_about_its_own_axis() -> None:
-    s = made.solved(lugged())
+    s = made.listed(lugged())
     assert np.abs(s.bases.moment[1, 0, :2]).max() < BALANCE * s.reference_force[1] * 18.0
     assert abs(s.bases.moment[1, 0, 2]) > 1.0
 
 
 def test_giving_anchors_move_by_their_pull_over_their_give() -> None:
     solved = made.cases(giving())
-    s = made.solved(giving())
+    s = made.listed(giving())
     for row, give in ((0, 1e6), (2, 4e5)):
         node = solved.structure.anchor[row]
         assert solved.state.u[0, node] == pytest.approx(s.anchors.pull[1, row] / give, rel=1e-8, abs=1e-12)
@@ -360,7 +360,7 @@ def test_giving_anchors_move_by_their_pull_over_their_give() -> None:
 
 
 def test_initial_tensions_are_met_with_the_anchors_movement_in() -> None:
-    s = made.solved(giving())
+    s = made.listed(giving())
     assert s.cables.tension_anchor[0] == pytest.approx([1000.0] * 3 + [1500.0] * 3, rel=1e-9)
 
 
@@ -370,7 +370,7 @@ def test_lugs_twist_the_mast_as_their_arms_say(end: str) -> None:
     aside = made.fitting(at=9.0, load=made.vector(0.0, 60.0, 0.0), offset=made.vector(0.4, 0.0, 0.0))
     spar = made.spar(base="ball", section=[made.tube(9.0)], fitting=[aside])
     document = made.stayed(spar, 0.0, 120.0, 240.0, at=9.0, arm=0.15, tension=1000.0)
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.state[1] == "stable"
     ends = s.cables.curve[1][:, 0 if end == "foot" else -1]
     pull = s.cables.force_on_anchor[1] if end == "foot" else -s.cables.force_on_spar[1]
@@ -411,8 +411,8 @@ def test_a_cable_taken_away_leaves_what_never_had_it() -> None:
         del guy["tension"]
         guy["length"] = float(length)
     without = {**document, "case": [{"name": "lost", "without": ["9 m B"]}]}
-    lost = made.solved(without)
-    never = made.solved({**document, "cable": [c for c in document["cable"] if c["name"] != "9 m B"]})
+    lost = made.listed(without)
+    never = made.listed({**document, "cable": [c for c in document["cable"] if c["name"] != "9 m B"]})
     rest = [k for k, name in enumerate(lost.cables.name) if name != "9 m B"]
     assert lost.state[1] == "stable"
     assert lost.cables.tension_anchor[1, 1] == 0.0

@@ -96,10 +96,10 @@ def test_lengths_found_give_the_tensions_back() -> None:
 
 
 def test_targets_that_do_not_balance_pull_the_head_over_and_say_so() -> None:
-    s = made.solved(uneven())
+    s = made.listed(uneven())
     assert np.degrees(s.head_lean[0, 0]) > 0.5
     assert any("leans 1/" in w and "in still air" in w and "plumb" in w for w in s.warnings)
-    assert not any("in still air" in w for w in made.solved(made.mast(0.0)).warnings)
+    assert not any("in still air" in w for w in made.listed(made.mast(0.0)).warnings)
 
 
 def test_targets_that_no_state_meets_are_refused() -> None:
@@ -149,7 +149,7 @@ def test_plumb_leaves_balanced_tensions_alone() -> None:
 @pytest.mark.parametrize("rigid", [(False, False), (True, True)])
 def test_plumb_boom_and_mast_stand_as_drawn(rigid: tuple[bool, bool]) -> None:
     """Bending spars sag between and beside their cables, which tensions cannot undo: a twentieth of a degree is left of that."""
-    s = made.solved(made.boom(rigid=rigid, setting={"plumb": True}))
+    s = made.listed(made.boom(rigid=rigid, setting={"plumb": True}))
     assert s.state[0] == "stable"
     assert np.degrees(s.head_lean[0]).max() < (1e-6 if rigid[0] else 0.05)
     targets = np.array([guy["tension"] for guy in made.boom()["cable"]])
@@ -172,7 +172,7 @@ def test_tight_catenaries_carry_their_own_weight_at_mid_length() -> None:
     found = made.setting(tight(straight=False))
     middle = np.linalg.norm(found.problem.evaluate(found.state).hanging.tension[0], axis=-1)
     assert middle == pytest.approx(0.15 * 9.80665 * found.length, rel=MET)
-    assert not made.solved(tight(straight=False)).cables.slack[0].any()
+    assert not made.listed(tight(straight=False)).cables.slack[0].any()
 
 
 def test_tight_straight_cables_are_as_long_as_their_chords_under_dead_load() -> None:
@@ -274,7 +274,7 @@ def test_rates_are_the_differences_of_solved_settings(document: made.Document) -
 def test_setting_is_found_once_and_holds_for_every_case() -> None:
     """Initial tension is never factored: dead = 1.5 and frost change tensions, not the lengths at the setting temperature."""
     document = {**made.mast(), "case": [{"name": "heavy", "dead": 1.5, "wind": 0.0}, {"name": "frost", "wind": 0.0, "temperature": -15.0}]}
-    s = made.solved(document)
+    s = made.listed(document)
     found = made.setting(made.mast())
     assert s.cables.unstressed_length[0] == pytest.approx(found.length, rel=1e-12)
     assert s.cables.unstressed_length[1] == pytest.approx(found.length, rel=1e-12)

@@ -77,7 +77,7 @@ def test_a_column_beyond_eulers_load_bends_aside_and_one_far_beyond_falls() -> N
     """At 1.01 of it the bent column stands close by, both ways; at twice none does, and the straight one is called what it is."""
     shares = (("below", 0.99), ("above", 1.01), ("far", 2.0))
     case = [{"name": name, "wind": 0.0, "dead": share / 0.9} for name, share in shares]
-    s = made.solved({**column(0.9 * EULER, rounder=1.5), "case": case})
+    s = made.listed({**column(0.9 * EULER, rounder=1.5), "case": case})
     assert s.state == ("stable", "stable", "stable", "unstable")
     assert s.note[1] is None
     assert s.note[2] is not None
@@ -94,18 +94,18 @@ def test_a_column_beyond_eulers_load_bends_aside_and_one_far_beyond_falls() -> N
 
 
 def test_ball_base_spins_freely_and_is_only_noted() -> None:
-    s = made.solved(made.mast(40.0, base="ball"))
+    s = made.listed(made.mast(40.0, base="ball"))
     assert set(s.state) == {"neutral"}
     assert set(s.note) == {"mast may spin freely about its own axis"}
     assert not any(s.unsettled)
-    pinned = made.solved(made.mast(40.0))
+    pinned = made.listed(made.mast(40.0))
     assert s.cables.tension_anchor[1] == pytest.approx(pinned.cables.tension_anchor[1], rel=1e-6)
 
 
 def test_a_spar_that_may_sway_freely_is_neutral_and_counts() -> None:
     """A weightless rigid mast on slack straight guys: nothing holds it anywhere near upright."""
     document = made.stayed(made.spar(rigid=True, section=[made.weightless(10.0)]), 0.0, 120.0, 240.0, length=13.0, straight=True)
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.state[0] == "neutral"
     assert s.note[0] == "a motion costs nothing: mast may turn or sway freely"
     assert all(s.unsettled)
@@ -118,7 +118,7 @@ def test_a_spar_that_may_sway_freely_is_neutral_and_counts() -> None:
 def test_a_mast_on_three_guys_falls_when_one_is_lost(lost: str, toward: int) -> None:
     """In still air, away from the lost guy: the two others pull it over.  Anchors at 10, 130 and 250 degrees."""
     document = {**made.mast(), "case": [{"name": "lost", "wind": 0.0, "without": [f"9 m {lost}", f"17 m {lost}"]}]}
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.state == ("stable", "none")
     assert s.reason[1] is not None
     assert f"mast falls toward {toward}°" in s.reason[1]
@@ -129,7 +129,7 @@ def test_a_spar_that_hangs_where_the_search_left_it_does_not_stand() -> None:
     """A jib pinned to a boom without a stay swings down to hang below: turned over, so it falls, in the setting already."""
     document = made.boom()
     jib = made.spar("jib", foot={"spar": "boom", "at": 5.0}, section=[made.tube(3.0, 0.05, 0.003)], lean=80.0, toward=60.0)
-    s = made.solved({**document, "spar": [*document["spar"], jib]})
+    s = made.listed({**document, "spar": [*document["spar"], jib]})
     assert set(s.state) == {"none"}
     assert "jib falls" in str(s.reason[0])
     assert str(s.reason[1]).startswith("the structure does not stand in still air: ")
@@ -177,7 +177,7 @@ def test_a_leaning_pylon_tips_where_moments_about_its_hinge_say(times: float) ->
     solved = made.cases(windy_pylon(area))
     assert solved.judged.code.tolist() == [stability.NONE]
     assert solved.judged.lost_at[0] <= 1 / times <= solved.judged.lost_at[0] + FOUND_WITHIN
-    s = made.solved(windy_pylon(area))
+    s = made.listed(windy_pylon(area))
     share = math.floor(100 * solved.judged.lost_at[0]) / 100
     assert s.reason[1] is not None
     assert f"pylon falls toward 270° at {share:.2f} of the load" in s.reason[1]
@@ -185,7 +185,7 @@ def test_a_leaning_pylon_tips_where_moments_about_its_hinge_say(times: float) ->
 
 def test_a_leaning_pylon_stands_just_below_its_tipping_wind() -> None:
     force = tipping_force(windy_pylon(1.0))
-    s = made.solved(windy_pylon(0.99 * force / (0.5 * 1.25 * 20.0**2)))
+    s = made.listed(windy_pylon(0.99 * force / (0.5 * 1.25 * 20.0**2)))
     assert s.state[1] == "stable"
     assert s.cables.tension_anchor[1].max() < 0.02 * s.cables.tension_anchor[0].max()
 
@@ -202,7 +202,7 @@ def in_line(**tables: object) -> made.Document:
 
 def test_a_mast_on_one_taut_guy_in_line_with_the_wind_stands_on_a_neighbour() -> None:
     """Alone the windward guy does not hold it sideways (its weight tips it); pushed aside it comes to rest on the next guy, either way."""
-    s = made.solved(in_line())
+    s = made.listed(in_line())
     assert s.state == ("stable", "stable")
     assert s.note[1] is not None
     assert s.note[1].startswith("the straight equilibrium is unstable")
@@ -214,7 +214,7 @@ def test_a_mast_on_one_taut_guy_in_line_with_the_wind_stands_on_a_neighbour() ->
 
 
 def test_both_mirror_states_count_in_the_worst_loads() -> None:
-    s = made.solved(in_line())
+    s = made.listed(in_line())
     listed = [c.tension.value for c in s.worst_cables]
     assert listed[1] == pytest.approx(listed[2], rel=1e-6)
     assert listed[1] == pytest.approx(s.cables.tension_anchor[1, 1:].max(), rel=1e-6)
@@ -226,7 +226,7 @@ def test_guys_too_loose_to_hold_a_mast_upright_let_it_lean_until_they_do() -> No
     for guy in document["cable"]:
         del guy["tension"]
         guy["tight"] = True
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.state[0] == "stable"
     assert str(s.note[0]).startswith("the straight equilibrium is unstable")
     assert np.degrees(s.head_lean[0, 0]) > 0.01
@@ -256,7 +256,7 @@ def test_a_path_reaches_states_far_from_the_setting() -> None:
     document = windy_pylon(4.0)
     document["wind"]["directions"] = [270.0]
     document["rope"]["rope"]["stiffness"] = 4.5e4
-    s = made.solved(document)
+    s = made.listed(document)
     assert s.state == ("stable", "stable")
     assert math.degrees(s.head_lean[1, 0] - s.head_lean[0, 0]) > 10.0
     head = s.spars[0].drawn[-1] + s.spars[0].displacement[1, -1]
