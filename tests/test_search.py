@@ -21,6 +21,7 @@ from guys.exchange import search as files
 from guys.scenario import Scenario
 from guys.scenario.ring import ring
 from guys.site import Obstacle, Site
+from guys.site.grid import grid_at_degrees
 from guys.studies import standing
 from guys.studies.compare import solved
 from guys.studies.measures import MEASURES, measured
@@ -172,6 +173,24 @@ def test_what_a_ring_search_hands_back_is_read_as_what_was_solved() -> None:
     again = measured(solved(pasted)[0], ())["pull"]
     found = next(each for each in result.compared.layouts if each.name == "found 1")
     assert again.value == pytest.approx(found.values["pull"].value, rel=1e-12)
+
+
+def test_places_by_latitude_and_longitude_are_those_by_east_and_north() -> None:
+    """Listed in degrees by the grid of the site, they are pegged to the same centimetre."""
+    grid = grid_at_degrees("EPSG:32631", 51.0, 3.2, 0.0)
+    metres = [(4.0, 7.5), (-3.0, 9.25), (1.0, 8.0)]
+    degrees = [tuple(float(x) for x in grid.to_degrees(*at)) for at in metres]
+    site = '[site]\ncrs = "EPSG:32631"\norigin = { lat = 51.0, lon = 3.2 }\n'
+    listed = ", ".join(f"{{ lat = {lat!r}, lon = {lon!r} }}" for lat, lon in degrees)
+    text = made.text(RIGID) + TABLE.format(least="pull", tries=20, more="")
+    move = f'[[search.move]]\nanchors = ["A"]\nplaces = [{listed}]\n'
+    scenario = parse_scenario(text + move + site)
+    at = [placed(scenario, (k,))[0] for k in range(3)]
+    assert [(a.east, a.north) for a in at] == metres
+    with pytest.raises(ScenarioError) as caught:
+        parse_scenario(text + move)
+    assert [fault.key for fault in caught.value.faults] == [f"search.move[0].places[{k}]" for k in range(3)]
+    assert all("lat and lon need [site]" in fault.message for fault in caught.value.faults)
 
 
 @pytest.mark.parametrize(("key", "words"), [("length", "fits one radius"), ("spar", "a second spar")])

@@ -185,7 +185,7 @@ def _rules(tables: Draft, site: Site | None) -> Iterator[Finding]:
     yield from layouts.findings(tables, site)
     yield from staged.findings(tables)
     yield from hoisting.findings(tables)
-    yield from searched.findings(tables)
+    yield from searched.findings(tables, None if site is None else site.grid)
 
 
 def _faults(findings: Iterable[Finding], text: str, path: str | None) -> list[Fault]:
@@ -224,6 +224,8 @@ def _given(tables: Mapping[str, _Table | None]) -> dict[str, _Table]:
 def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -> Scenario:
     spars: dict[str, Spar] = {entry.name: resolve.spar(entry) for entry in _present(tables.spar)}
     foot = drawn.foot(spars, next(iter(spars)))
+    anchors = tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor))
+    grid = None if site is None else site.grid
     heights = [level["at"] for level in tables.document.get("guy_level", [])]
     levels = zip(_present(tables.guy_level), heights, strict=True)
     guys = [guy for index, (entry, at) in enumerate(levels) for guy in resolve.guys_of(index, entry, at)]
@@ -241,7 +243,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         note=tables.note,
         site=site,
         spar=tuple(spars.values()),
-        anchor=tuple(resolve.anchor(entry, foot) for entry in _present(tables.anchor)),
+        anchor=anchors,
         cable=cables,
         rope={**ropes, **resolve.stock_ropes(used, ropes)},
         material={**resolve.built_in_materials(), **{name: entry for name, entry in tables.material.items() if entry is not None}},
@@ -256,7 +258,7 @@ def _resolved(tables: Draft, site: Site | None, digest: str, path: str | None) -
         allowables=resolve.allowables(allowables),
         analysis=analysis,
         lost=_there(tables.lost),
-        search=None if tables.search is None else searched.resolved(tables.search, [each.name for each in _present(tables.anchor)]),
+        search=None if tables.search is None else searched.resolved(tables.search, [each.name for each in anchors], grid),
         ranges=_there(tables.ranges),
         limit=_there(tables.limit),
         field=_there(tables.field),

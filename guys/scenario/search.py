@@ -17,7 +17,7 @@ FEWEST, MOST = 3, 12
 
 
 class SearchPlace(Model):
-    """A place an anchor may stand: bearing and radius from the first spar's foot, or east and north."""
+    """A place an anchor may stand: bearing and radius from the first spar's foot, east and north, or latitude and longitude."""
 
     bearing: q.Angle | None = None
     """Bearing from the first spar's foot."""
@@ -27,6 +27,10 @@ class SearchPlace(Model):
     """Distance east of the origin."""
     north: q.Length | None = None
     """Distance north of the origin."""
+    lat: q.Latitude | None = None
+    """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
+    lon: q.Longitude | None = None
+    """Longitude, degrees east, WGS 84; a bare number."""
 
 
 class SearchMove(Model):

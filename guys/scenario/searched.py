@@ -1,4 +1,4 @@
-"""Rules on `[search]`, and its moves spelled out: which anchors each moves, and through which bearings."""
+"""Rules on `[search]`, and its moves spelled out: which anchors each moves, through which bearings, to which places."""
 
 from __future__ import annotations
 
@@ -6,13 +6,15 @@ import math
 from collections.abc import Iterator, Sequence
 
 from guys.scenario import ring
+from guys.scenario.degrees import SAID, WAYS, from_degrees
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, nearest, written
-from guys.scenario.search import Search, SearchMove
+from guys.scenario.search import Search, SearchMove, SearchPlace
+from guys.site import Grid
 
 
-def findings(draft: Draft) -> Iterator[Finding]:
-    """Every fault of the search."""
+def findings(draft: Draft, grid: Grid | None) -> Iterator[Finding]:
+    """Every fault of the search; `grid`: of the site."""
     search = draft.search
     if search is None:
         return
@@ -25,6 +27,8 @@ def findings(draft: Draft) -> Iterator[Finding]:
     for n, move in enumerate(search.move):
         yield from _move(move, ("search", "move", n), len(move.anchors or anchors))
         yield from _moved(move, n, anchors, first)
+        for k, place in enumerate(move.places or ()):
+            yield from _place(place, ("search", "move", n, "places", k), grid)
 
 
 def _names(search: Search, drawn: Sequence[str]) -> list[str]:
@@ -69,16 +73,26 @@ def _move(move: SearchMove, key: Key, many: int) -> Iterator[Finding]:
             yield Finding((*key, name), "the first is not less than the second; give the least, then the greatest")
     if move.bearing is not None and math.isclose(*move.bearing):
         yield Finding((*key, "bearing"), "both are the same; give the first and the last bearing, clockwise")
-    for k, place in enumerate(move.places or ()):
-        where = [name for name in ("bearing", "radius", "east", "north") if getattr(place, name) is not None]
-        if where not in (["bearing", "radius"], ["east", "north"]):
-            yield Finding((*key, "places", k), "give bearing and radius, or east and north")
 
 
-def resolved(search: Search, drawn: Sequence[str]) -> Search:
-    """The search with the anchors of every move named, and ranges of bearing shared out among several; `drawn`: names of the anchors."""
+def _place(place: SearchPlace, key: Key, grid: Grid | None) -> Iterator[Finding]:
+    given = [name for way in WAYS for name in way if getattr(place, name) is not None]
+    if tuple(given) not in WAYS:
+        yield Finding(key, f"give {SAID}")
+    elif place.lat is not None and place.lon is not None:
+        found = from_degrees(place.lat, place.lon, grid)
+        if isinstance(found, str):
+            yield Finding(key, found, (("site",),))
+
+
+def resolved(search: Search, drawn: Sequence[str], grid: Grid | None) -> Search:
+    """The search with the anchors of every move named, ranges of bearing shared out among several, and places in metres.
+
+    drawn : names of the anchors;  grid : of the site
+    """
     names = _names(search, drawn)
-    return search.model_copy(update={"move": [each for move in search.move for each in _each(move, move.anchors or names)]})
+    moves = [each for move in search.move for each in _each(move, move.anchors or names)]
+    return search.model_copy(update={"move": [_in_metres(move, grid) for move in moves]})
 
 
 def _each(move: SearchMove, anchors: Sequence[str]) -> Iterator[SearchMove]:
@@ -88,6 +102,15 @@ def _each(move: SearchMove, anchors: Sequence[str]) -> Iterator[SearchMove]:
     first, part = move.bearing[0], clockwise(*move.bearing) / len(anchors)
     for k, name in enumerate(anchors):
         yield move.model_copy(update={"anchors": [name], "bearing": [first + k * part, first + (k + 1) * part]})
+
+
+def _in_metres(move: SearchMove, grid: Grid | None) -> SearchMove:
+    """The move with places by latitude and longitude turned into east and north."""
+    if move.places is None:
+        return move
+    found = [None if p.lat is None or p.lon is None else from_degrees(p.lat, p.lon, grid) for p in move.places]
+    pairs = zip(move.places, found, strict=True)
+    return move.model_copy(update={"places": [SearchPlace(east=at[0], north=at[1]) if isinstance(at, tuple) else p for p, at in pairs]})
 
 
 def clockwise(first: float, last: float) -> float:
