@@ -69,7 +69,12 @@ def join(parts: list[Forces]) -> Forces:
 
 
 def forces(problem: Problem, state: State, found: Evaluation) -> Forces:
-    """End forces of every case of an equilibrium."""
+    """End forces of every case of an equilibrium.
+
+    Raises ValueError for layouts side by side, since anchors stand where the structure has them: each is recovered by itself.
+    """
+    if problem.moved is not None:
+        raise ValueError("layouts side by side are recovered one by one")
     s = problem.structure
     present = problem.loads.present > 0
     at_a, at_b = found.hanging.at_a * present[..., None], found.hanging.at_b * present[..., None]
