@@ -87,7 +87,7 @@ def test_fittings_weigh_at_their_offset_and_fixed_loads_join_the_dead_load() -> 
 def test_cables_weigh_along_their_unstressed_length() -> None:
     s, found = loads(made.mast(), replace(LINE, dead=1.5))
     assert found.cable_load[0] == pytest.approx(np.tile([0.0, 0.0, -1.5 * 0.15 * G], (6, 1)), rel=SUMMED)
-    rest = 1.5 * (s.weight - 0.15 * G * 3 * (math.hypot(11, 9) + math.hypot(11, 17)))
+    rest = 1.5 * (s.weight - 0.15 * G * 6 * 18.0)  # in `weight` each cable is as if as long as the mast
     assert found.weight[0] == pytest.approx(rest + 6 * 20.0 * 1.5 * 0.15 * G, rel=SUMMED)
 
 
