@@ -18,6 +18,7 @@ from guys.drawing.rounding import Units, tongue
 from guys.exchange import matters
 from guys.scenario import read_scenario
 from guys.studies.matters import Matters, Reading, told, weigh
+from guys.studies.reserve import MOST
 
 
 def matters_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:
@@ -53,16 +54,18 @@ def report(found: Matters, units: Units, stream: TextIO) -> None:
 
     def said(r: Reading) -> list[str]:
         pull = speech.say(rounding.load, r.pull)
-        return [f"{pull} {r.anchor}", f"falls in {r.falls}" if r.falls else f"{rounding.factor(r.reserve)} {r.thing}"]
+        judged = f"falls in {r.falls}" if r.falls else f"{rounding.factor(r.reserve)} {r.thing}"
+        return [f"{pull} {r.anchor}", judged, rounding.stability(r.stands_to, MOST)]
 
-    rows = [["as drawn", "", *said(found.point), "", ""]]
+    rows = [["as drawn", "", *said(found.point), "", "", ""]]
     for s in found.spans:
         ends = [*said(s.less), *said(s.more)]
         both = " / ".join(s.ends) + ("" if s.given else ", default")
-        rows.append([s.what, both, *(["not solved: " + s.lacking, "", "", ""] if s.lacking else ends)])
+        rows.append([s.what, both, *(["not solved: " + s.lacking, *[""] * 5] if s.lacking else ends)])
     stream.write(f"{found.scenario.title}\n")
-    head = ["range", "from / to", "pull, less", "reserve, less", "pull, more", "reserve, more"]
-    terminal.table("What matters most: greatest anchor pull, and least factor over the one required", head, rows, stream)
+    head = ["range", "from / to", *(f"{of}, {end}" for end in ("less", "more") for of in ("pull", "reserve", "lost at"))]
+    title = "What matters most: greatest anchor pull, least factor over the one required, times the loads at which equilibrium is lost"
+    terminal.table(title, head, rows, stream)
     falls = [f"{name}: {r.reason}" for name, r in _all(found) if r.reason]
     terminal.listed({"Falls": falls, "How": told(found), "Cautions": CAUTIONS}, stream)
 

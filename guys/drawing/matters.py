@@ -1,4 +1,4 @@
-"""How far each range moves the greatest anchor pull and the reserve: one row a range, what moves most on top.
+"""How far each range moves the greatest anchor pull, the reserve and the stability reserve: one row a range, what moves most on top.
 
 Through each panel goes an upright line at the value as drawn.  A row runs from the value with less (ring) to that with more (dot), both
 written at its ends; one that does not stand says so.
@@ -16,15 +16,17 @@ from guys.drawing import style
 from guys.drawing.leaf import Words, leaf
 from guys.drawing.lettering import shortened, width
 from guys.drawing.page import Page, Rect
-from guys.drawing.rounding import ABSENT, MOST_FACTOR, Units, factor, load, tongue
+from guys.drawing.rounding import ABSENT, MOST_FACTOR, Units, bearing, factor, load, stability, tongue
+from guys.reserves import WORDS
 from guys.studies.matters import Matters, Reading, Span, told
+from guys.studies.reserve import MOST
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 ROW, ABOVE, KEY = 7.0, 17.0, 9.0
-NAMES, ENDS, GAP = 54.0, 62.0, 10.0
-ROOM = 24.0
+NAMES, ENDS, GAP = 50.0, 62.0, 8.0
+ROOM = 19.0
 """Millimetres: height of a row, of heads above and the key below; width of names, of ends in words, between panels, of a value."""
 RING = 1.25
 
@@ -44,7 +46,7 @@ def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
     rows = max(len(found.spans), 1)
     page, zone = leaf(paper, Words(found.scenario.title, "what matters most", told(found), CAUTIONS), ABOVE + ROW * rows + KEY)
     speech = tongue(units)
-    wide = (zone.width - NAMES - ENDS - 2 * GAP) / 2
+    wide = (zone.width - NAMES - ENDS - 3 * GAP) / 3
     left = zone.left + NAMES + ENDS + GAP
     body = (zone.top - ABOVE - ROW * rows, zone.top)
     point = found.point
@@ -52,23 +54,30 @@ def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
         page.text(zone.left, zone.top - ABOVE, f"Nothing was varied: {point.reason}", style.BODY, bold=True)
         return page.figure
     pull = speech.say(load, point.pull)
-    panels = (
-        Panel(
-            Rect(left, body[0], left + wide, body[1]), ("greatest anchor pull", f"as drawn {pull} {point.anchor}"),
-            lambda r: r.pull, lambda v: speech.say(load, v),
-        ),
-        Panel(
-            Rect(left + wide + GAP, body[0], zone.right, body[1]),
-            ("reserve: least factor over the one required", f"as drawn {factor(point.reserve)} {point.thing}"),
-            lambda r: r.reserve, factor,
-        ),
+    measures = (
+        (("greatest anchor pull", f"as drawn {pull} {point.anchor}"), lambda r: r.pull, lambda v: speech.say(load, v)),
+        (("reserve: least factor over required", f"as drawn {factor(point.reserve)} {point.thing}"), lambda r: r.reserve, factor),
+        (_stability_head(point), lambda r: r.stands_to, lambda v: stability(v, MOST)),
     )  # fmt: skip
+    panels = [
+        Panel(Rect(left + k * (wide + GAP), body[0], left + k * (wide + GAP) + wide, body[1]), *measure)
+        for k, measure in enumerate(measures)
+    ]
     for panel in panels:
         _panel(page, panel, found)
     for k, span in enumerate(found.spans):
         _name(page, span, zone, zone.top - ABOVE - ROW * (k + 0.5))
     _key(page, zone)
     return page.figure
+
+
+def _stability_head(point: Reading) -> tuple[str, str]:
+    """What the stability reserve is of."""
+    m = point.margin
+    if m is None:
+        return "stability reserve", ""
+    wind = "" if math.isnan(m.line.wind_from) else f" {bearing(m.line.wind_from)}"
+    return f"stability reserve: lost at, times {WORDS[m.loads]}", f"as drawn {stability(point.stands_to, MOST)} {m.line.name}{wind}"
 
 
 def _name(page: Page, span: Span, zone: Rect, y: float) -> None:

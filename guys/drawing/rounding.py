@@ -270,6 +270,13 @@ def factor(value: float) -> str:
     return f"{floor(value * 100.0 + 1e-9) / 100.0:.2f}" if isfinite(value) else ABSENT
 
 
+def stability(stands_to: float, most: float) -> str:
+    """The factor at which equilibrium is lost, to three figures rounded down; above the greatest looked at where it is not."""
+    if not isfinite(stands_to):
+        return ABSENT
+    return f"above {most:g}" if stands_to >= most else written(round_down(stands_to), 3)
+
+
 def reserve(lost_at: float, stands_to: float, failed: bool) -> str:
     """A factor at which equilibrium is lost, to three figures rounded down, or how far it was looked."""
     if isfinite(lost_at):

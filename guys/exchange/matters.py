@@ -9,9 +9,12 @@ from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, number
 from guys.exchange.tables import Cell, as_csv
 from guys.loads import CaseLine
+from guys.studies.margin import Margin
 from guys.studies.matters import Matters, Reading, Span, told
 
 FORMAT = "guys-matters/1"
+STABILITY = ("lost_at_factor", "stands_to", "lost")
+"""Columns of the stability reserve."""
 
 
 def as_dict(found: Matters) -> dict[str, Any]:
@@ -38,9 +41,18 @@ def _reading(r: Reading) -> dict[str, Any]:
     return {
         "greatest_pull": {"anchor": r.anchor, "resultant_N": number(r.pull), **_place(r.pull_line)},
         "reserve": {"governs": r.thing, "factor_over_required": number(r.reserve), **_place(r.reserve_line)},
+        "stability": _stability(r.margin),
         "falls": r.falls,
         **({"reason": r.reason} if r.reason else {}),
     }
+
+
+def _stability(m: Margin | None) -> dict[str, Any] | None:
+    """The stability reserve; no factor where equilibrium is not lost up to `stands_to`, or the solver failed."""
+    if m is None:
+        return None
+    lost = None if m.failed else m.lost
+    return {"loads": m.loads, "factor": m.stands_to if lost else None, "stands_to": m.stands_to, "lost": lost, **_place(m.line)}
 
 
 def _span(s: Span) -> dict[str, Any]:
@@ -50,16 +62,21 @@ def _span(s: Span) -> dict[str, Any]:
 
 def as_table(found: Matters) -> str:
     """The text of `matters.csv`: the point, then both ends of every range."""
-    head = ["of", "end", "default", "greatest_pull_N", "anchor", "factor_over_required", "governs", "falls", "not_solved"]
+    head = ["of", "end", "default", "greatest_pull_N", "anchor", "factor_over_required", "governs", *STABILITY, "falls", "not_solved"]
+
+    def lost_at(r: Reading) -> list[Cell]:
+        told = _stability(r.margin) or {}
+        lost = told.get("lost")
+        return [told.get("factor"), told.get("stands_to"), None if lost is None else "yes" if lost else "no"]
 
     def row(of: str, end: str, default: str, r: Reading) -> list[Cell]:
-        return [of, end, default, r.pull, r.anchor, number(r.reserve), r.thing, r.falls, None]
+        return [of, end, default, r.pull, r.anchor, number(r.reserve), r.thing, *lost_at(r), r.falls, None]
 
     rows = [row("as drawn", "", "", found.point)]
     for s in found.spans:
         default = "no" if s.given else "yes"
         if s.lacking:
-            rows.append([s.what, "", default, None, None, None, None, None, s.lacking])
+            rows.append([s.what, "", default, *[None] * (len(head) - 4), s.lacking])
         else:
             rows += [row(s.what, end, default, r) for end, r in zip(s.ends, (s.less, s.more), strict=True)]
     return as_csv(head, rows)

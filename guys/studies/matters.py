@@ -9,18 +9,22 @@
 Each is solved, one at a time, none is extrapolated.  Read off are the greatest resultant on any anchor and the reserve, the least factor of
 anything judged over the factor required (1: at its allowable), over all cases, the windy ones in the listed directions and every 10
 degrees.  Drag and temperature leave the structure as it is and go in one batch with the point itself.  A range of 0 gives the point.
+
+And the stability reserve: of the listed cases and directions, the one whose equilibrium is lost at the least factor on its wind (on all its
+loads where no case has wind) is followed to that loss again with every end (`guys.studies.margin`).
 """
 
 from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
 from guys.errors import ScenarioError
-from guys.loads import CaseLine
+from guys.loads import CaseLine, lines_of
+from guys.reserves import WORDS
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint
 from guys.setting import Setting, find
@@ -28,6 +32,8 @@ from guys.structure import build
 from guys.studies.batch import Progress, recover, solve_lines
 from guys.studies.cells import FALLS, NOT_FOUND, Cells, cells_of
 from guys.studies.directions import round_lines
+from guys.studies.margin import Asked, Margin, least, margins
+from guys.studies.reserve import MOST
 from guys.version import __version__
 
 MINUS, PLUS = -1.0, 1.0
@@ -40,6 +46,7 @@ class Reading:
 
     pull : greatest on any anchor [N], of `anchor`;  reserve : least factor over the one required, of `thing`;  each with its line
     falls : lines without a stable equilibrium, with the first `reason`;  fault : the solver failed on some
+    margin : the stability reserve, of one line under every end;  asked : that line, and the setting here
     NaN and None: there is none
     """
 
@@ -52,6 +59,13 @@ class Reading:
     falls: int
     reason: str
     fault: bool
+    asked: Asked | None = field(default=None, compare=False, repr=False)
+    margin: Margin | None = None
+
+    @property
+    def stands_to(self) -> float:
+        """The greatest factor of the stability reserve; NaN where there is none, or it is not known."""
+        return math.nan if self.margin is None or self.margin.failed else self.margin.stands_to
 
 
 @dataclass(frozen=True)
@@ -66,12 +80,12 @@ class Span:
     lacking: str = ""
 
     def moves(self, point: Reading) -> float:
-        """Greatest share by which an end moves pull or reserve; infinite where it makes something fall that stands."""
+        """Greatest share by which an end moves pull or a reserve; infinite where it makes something fall that stands."""
         if self.lacking:
             return -1.0
         if max(self.less.falls, self.more.falls) > point.falls:
             return math.inf
-        pairs = [(e.pull, point.pull) for e in (self.less, self.more)] + [(e.reserve, point.reserve) for e in (self.less, self.more)]
+        pairs = [(getattr(e, of), getattr(point, of)) for of in ("pull", "reserve", "stands_to") for e in (self.less, self.more)]
         return max((abs(a / b - 1) for a, b in pairs if math.isfinite(a) and math.isfinite(b) and b != 0), default=0.0)
 
 
@@ -95,17 +109,38 @@ def weigh(scenario: Scenario, progress: Progress | None = None) -> Matters:
     if not setting.stands:
         point = _read(setting, cells_of(recover(setting.problem, setting.judged, detail=False)), setting.loads.lines)
         return Matters(scenario, __version__, point, (), False)
-    point, batched = _in_one_batch(setting, progress)
-    spans = [*batched, *_set_again(scenario, point, progress), *_levels(setting, point, progress)]
+    margin = _weakest(setting, progress)
+    point, batched = _in_one_batch(setting, margin, progress)
+    varied = [*batched, *_set_again(scenario, point, progress), *_levels(setting, point, progress)]
+    spans = _with_margins(varied, point, progress)
     return Matters(scenario, __version__, point, tuple(sorted(spans, key=lambda s: -s.moves(point))), True)
 
 
-def _in_one_batch(setting: Setting, progress: Progress | None) -> tuple[Reading, list[Span]]:
+def _weakest(setting: Setting, progress: Progress | None) -> Margin | None:
+    """The listed case and direction whose equilibrium is lost first; of all its loads only where none has wind."""
+    lines = lines_of(setting.problem.structure.scenario)
+    windy = [line for line in lines if line.wind > 0]
+    return least(margins([Asked(setting, line) for line in windy or lines], progress))
+
+
+def _with_margins(spans: Sequence[Span], point: Reading, progress: Progress | None) -> list[Span]:
+    """The spans with the stability reserve at either end, all followed together."""
+    ends = [r for s in spans for r in (s.less, s.more) if r is not point and r.asked is not None]
+    found = margins([r.asked for r in ends if r.asked is not None], progress)
+    known = {id(r): replace(r, margin=m) for r, m in zip(ends, found, strict=True)}
+    return [replace(s, less=known.get(id(s.less), s.less), more=known.get(id(s.more), s.more)) for s in spans]
+
+
+def _in_one_batch(setting: Setting, margin: Margin | None, progress: Progress | None) -> tuple[Reading, list[Span]]:
     """The point, and what changes loads alone."""
     scenario = setting.problem.structure.scenario
     ranges, lines = scenario.ranges, round_lines(scenario)
-    blown = [[replace(x, drag=1 + side * ranges.drag) for x in lines] for side in (MINUS, PLUS)]
-    warmed = [[lines[0], *(replace(x, temperature=x.temperature + side * ranges.temperature) for x in lines[1:])] for side in (MINUS, PLUS)]
+    raised = () if margin is None else (margin.line,)
+    blown, warmed = [], []
+    for side in (MINUS, PLUS):
+        blown.append([replace(x, drag=1 + side * ranges.drag) for x in (*lines, *raised)])
+        warm = (replace(x, temperature=x.temperature + side * ranges.temperature) for x in (*lines[1:], *raised))
+        warmed.append([lines[0], *warm])
     no_wind = "" if any(not math.isnan(x.wind_from) for x in lines) else "no case has wind"
     stiff = [name for name, rope in scenario.rope.items() if rope.expansion is None and any(c.rope == name for c in scenario.cable)]
     no_growth = f"no expansion given for rope {', '.join(stiff)}" if stiff else ""
@@ -115,11 +150,11 @@ def _in_one_batch(setting: Setting, progress: Progress | None) -> tuple[Reading,
         ("temperature", (kelvin[0], kelvin[1]), "temperature", warmed, no_growth),
     ]
     some = [w for w in wanted if not w[4] and getattr(ranges, w[2]) > 0]
-    batch = solve_lines(setting, [x for group in (lines, *(g for w in some for g in w[3])) for x in group], False, progress)
-    cells, n = cells_of(batch), len(lines)
-    read = [_read(setting, cells.take(range(k, k + n)), lines) for k in range(0, len(batch.lines), n)]
+    n, groups = len(lines), [[*lines, *raised], *(g for w in some for g in w[3])]
+    cells = cells_of(solve_lines(setting, [x for group in groups for x in group[:n]], False, progress))
+    read = [_read(setting, cells.take(range(k * n, k * n + n)), lines, group[n:]) for k, group in enumerate(groups)]
     ends = {w[0]: (read[1 + 2 * k], read[2 + 2 * k]) for k, w in enumerate(some)}
-    point = read[0]
+    point = replace(read[0], margin=margin)
     return point, [Span(w[0], w[1], w[2] in ranges.model_fields_set, *ends.get(w[0], (point, point)), w[4]) for w in wanted]
 
 
@@ -162,7 +197,7 @@ def _span(
     if size[0] == 0 or size[1]:
         return Span(what, ends, given, point, point, size[1])
     try:
-        less, more = (_solved(change(side), progress) for side in (MINUS, PLUS))
+        less, more = (_solved(change(side), point, progress) for side in (MINUS, PLUS))
     except ScenarioError as error:
         return Span(what, ends, given, point, point, error.faults[0].message)
     return Span(what, ends, given, less, more)
@@ -193,17 +228,17 @@ def _levels(setting: Setting, point: Reading, progress: Progress | None) -> list
     ]
 
 
-def _solved(scenario: Scenario, progress: Progress | None) -> Reading:
-    """A changed scenario, set and solved anew."""
+def _solved(scenario: Scenario, point: Reading, progress: Progress | None) -> Reading:
+    """A changed scenario, set and solved anew; the line of the stability reserve is the point's."""
     setting = find(build(scenario))
     if not setting.stands:
         return _read(setting, cells_of(recover(setting.problem, setting.judged, detail=False)), setting.loads.lines)
-    lines = round_lines(scenario)
-    return _read(setting, cells_of(solve_lines(setting, lines, False, progress)), lines)
+    lines, raised = round_lines(scenario), [] if point.asked is None else [point.asked.line]
+    return _read(setting, cells_of(solve_lines(setting, lines, False, progress)), lines, raised)
 
 
-def _read(setting: Setting, cells: Cells, lines: Sequence[CaseLine]) -> Reading:
-    """The greatest pull and the least reserve of the lines that stand."""
+def _read(setting: Setting, cells: Cells, lines: Sequence[CaseLine], raised: Sequence[CaseLine] = ()) -> Reading:
+    """The greatest pull and the least reserve of the lines that stand; `raised`: the line of the stability reserve, if there is one."""
     scenario = setting.problem.structure.scenario
     fallen = np.flatnonzero(cells.verdict >= FALLS)
     pull, anchor, pull_line = math.nan, "", None
@@ -217,7 +252,8 @@ def _read(setting: Setting, cells: Cells, lines: Sequence[CaseLine]) -> Reading:
         thing, reserve_line = cells.items[int(cells.governs[row])].thing, lines[row]
     reason = cells.reason[int(fallen[0])] if len(fallen) else ""
     fault = bool((cells.verdict == NOT_FOUND).any())
-    return Reading(pull, anchor, pull_line, reserve, thing, reserve_line, len(fallen), reason, fault)
+    asked = next((Asked(setting, line) for line in raised), None)
+    return Reading(pull, anchor, pull_line, reserve, thing, reserve_line, len(fallen), reason, fault, asked)
 
 
 def told(found: Matters) -> tuple[str, ...]:
@@ -228,5 +264,19 @@ def told(found: Matters) -> tuple[str, ...]:
         "Each range is solved at both ends, one at a time; several at once may add up. Drag scales all wind; stiffness and tension are set "
         "anew, the levels of anchors move after the cables were set.",
         "Wind from the listed directions and every 10°; peaks between them are not narrowed down.",
+        *_stability(found.point.margin),
         *([f"Not given, and assumed from memory: {', '.join(taken)}."] if taken else []),
+    )
+
+
+def _stability(margin: Margin | None) -> tuple[str, ...]:
+    """Which case is followed to the loss of its equilibrium."""
+    if margin is None:
+        return ()
+    what, line = WORDS[margin.loads], margin.line
+    wind = "" if math.isnan(line.wind_from) else f", wind from {math.degrees(line.wind_from):g}°"
+    first = "the first of the listed cases and directions to be lost" if margin.lost else "no listed case is lost sooner"
+    return (
+        f"Stability: {what} of case {line.name}{wind}, times the factor at which equilibrium is lost (within 0.1 %): {first}, and followed "
+        f"to its loss at every end anew, up to {MOST:g} times.",
     )
