@@ -21,7 +21,8 @@ from guys.exchange import matters as files
 from guys.path import CLOSE
 from guys.reserves import ALL, WIND
 from guys.studies import matters
-from guys.studies.reserve import MOST, reserves
+from guys.studies.margin import MOST
+from guys.studies.reserve import reserves
 
 SAME = 1e-8
 """Of a load: every case stops at an out-of-balance of 1e-9 of the reference force."""
@@ -151,8 +152,8 @@ def test_what_is_not_lost_is_above_the_greatest_factor_looked_at() -> None:
     found = weigh(stump, drag=0.2)
     told = files.as_dict(found)["point"]["stability"]
     assert told == {"loads": WIND, "factor": None, "stands_to": MOST, "lost": False, "case": "design", "wind_from_deg": 0.0}
-    assert stability(found.point.stands_to, MOST) == "above 1000"
-    assert files.as_table(found).splitlines()[1].split(",")[7:10] == ["", "1000.0", "no"]
+    assert stability(found.point.stands_to, MOST) == "above 20"
+    assert files.as_table(found).splitlines()[1].split(",")[7:10] == ["", "20.0", "no"]
 
 
 @pytest.mark.usefixtures("unraised")

@@ -17,8 +17,8 @@ from guys.drawing.matters import draw_matters
 from guys.drawing.rounding import Units, tongue
 from guys.exchange import matters
 from guys.scenario import read_scenario
+from guys.studies.margin import MOST
 from guys.studies.matters import Matters, Reading, told, weigh
-from guys.studies.reserve import MOST
 
 
 def matters_command(file: str, out: str | None, as_json: bool, units: Units = "SI", layout: str | None = None) -> int:

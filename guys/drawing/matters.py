@@ -18,8 +18,8 @@ from guys.drawing.lettering import shortened, width
 from guys.drawing.page import Page, Rect
 from guys.drawing.rounding import ABSENT, MOST_FACTOR, Units, bearing, factor, load, stability, tongue
 from guys.reserves import WORDS
+from guys.studies.margin import MOST
 from guys.studies.matters import Matters, Reading, Span, told
-from guys.studies.reserve import MOST
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure

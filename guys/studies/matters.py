@@ -32,8 +32,7 @@ from guys.structure import build
 from guys.studies.batch import Progress, recover, solve_lines
 from guys.studies.cells import FALLS, NOT_FOUND, Cells, cells_of
 from guys.studies.directions import round_lines
-from guys.studies.margin import Asked, Margin, least, margins
-from guys.studies.reserve import MOST
+from guys.studies.margin import MOST, Asked, Margin, least, margins
 from guys.version import __version__
 
 MINUS, PLUS = -1.0, 1.0
