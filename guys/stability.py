@@ -50,6 +50,8 @@ CASE_ROUNDS = 60
 """Rounds for a case from the setting, or pushed aside: what takes longer is found quicker along its path."""
 PATH_ROUNDS = 25
 """Rounds of the solver for a step of a path, which starts close to its answer."""
+LAST_ROUNDS = 100
+"""Rounds of its last step: a structure that snaps from a stiff state takes so many to show that it falls."""
 FINER = 1 / 16
 """A path on which the solver fails while the structure is still stiff is followed this much finer before that is called a fault."""
 SOFT = 0.3
@@ -283,7 +285,7 @@ def _follow(problem: Problem, setting: State, start: LoadCases, judged: Judged, 
 def _walk(whole: Problem, start: LoadCases, path: _Path, rows: Index, least_step: float) -> None:
     """Step the paths `rows` on until they arrive or their steps fall below the least."""
     while len(open_ := rows[(path.reached[rows] < 1) & (path.step[rows] >= least_step)]):
-        _one_step(whole, start, path, open_)
+        _one_step(whole, start, path, open_, path.step[open_] < 2 * least_step)
 
 
 def _still_stiff(whole: Problem, setting: State, start: LoadCases, path: _Path) -> Index:
@@ -335,13 +337,13 @@ def _arrive(whole: Problem, judged: Judged, path: _Path, k: int, case: int, near
             judged.mirror[case] = path.mirror[k]
 
 
-def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index) -> None:
-    """Try the next share of every open path from its last state."""
+def _one_step(whole: Problem, start: LoadCases, path: _Path, open_: Index, last: NDArray[np.bool_]) -> None:
+    """Try the next share of every open path from its last state; `last`: the path ends where this step fails."""
     share = np.minimum(1.0, path.reached[open_] + path.step[open_])
     part = whole.take(open_)
     there = replace(part, loads=part.loads.between(start.take(open_), share))
     before = path.state.take(open_)
-    found = step_on(there, before)
+    found = step_on(there, before, np.where(last, LAST_ROUNDS, PATH_ROUNDS))
     near = turn_between(there, found.state, before) < NEXT
     good = (found.code <= NEUTRAL) & near
     path.state.put(open_[good], found.state.take(np.flatnonzero(good)))

@@ -11,8 +11,13 @@ import scenarios_made as made
 from scipy.linalg import eigh
 from scipy.optimize import brentq
 
-from guys import band, solver, stability
+from guys import band, parse_scenario, solver, stability
 from guys.equilibrium import Problem, State
+from guys.loads import lines_of
+from guys.setting import find
+from guys.structure import build
+from guys.studies.batch import at_rest
+from tests.benchmark.masts import lattice_45m_toml
 
 SAME = 1e-6
 """Relative: eigenvalues of the scaled band and of the full pencil."""
@@ -88,6 +93,26 @@ def test_a_column_beyond_eulers_load_bends_aside_and_one_far_beyond_falls() -> N
     assert s.reason[3] is not None
     assert s.reason[3].startswith("column is in an equilibrium that does not hold: it goes toward")
     assert s.unsettled == (False, False, False, True)
+
+
+def test_a_snap_from_a_stiff_state_is_a_fall_and_no_fault_of_the_solver() -> None:
+    """The lattice mast of 45 m in a wind straight on its lost low guy: its least eigenvalue stays what it is in still air until it snaps.
+
+    The same whether the end of the path is found within a 64th or a 1024th of the load, and never the solver's fault.
+    """
+    scenario = parse_scenario(lattice_45m_toml())
+    assert scenario.wind is not None
+    setting = find(build(scenario.model_copy(update={"wind": scenario.wind.model_copy(update={"speed": 40.0})})))
+    lost = ("15.0 m ring N",)
+    line = replace(next(x for x in lines_of(scenario, [0.0]) if x.wind > 0), without=lost)
+    calm, still = at_rest(setting, (lost,))
+    row = np.array([len(still.code) - 1])
+    start, loads = still.state.take(row), calm.loads.take(row)
+    for least in (1 / 64, 1 / 1024):
+        judged = stability.judge(setting.under([line]), start, loads, least)
+        assert (judged.code.tolist(), judged.stuck.tolist()) == ([stability.NONE], [False])
+        assert judged.lost_at[0] == pytest.approx(0.168, abs=1.5 * least)
+        assert 0 in judged.beyond
 
 
 # ---------------------------------------------------------------- free spin

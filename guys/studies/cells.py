@@ -8,7 +8,6 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -52,24 +51,10 @@ class Cells:
         some = {name: getattr(self, name)[k] for name in _ARRAYS}
         return Cells(**some, reason=tuple(self.reason[r] for r in rows), items=self.items)
 
-    def put(self, rows: NDArray[np.int64], other: Cells) -> Cells:
-        """With the cases of `other` at `rows`."""
-        some = {name: _written(getattr(self, name), rows, getattr(other, name)) for name in _ARRAYS}
-        reason = list(self.reason)
-        for k, row in enumerate(rows):
-            reason[row] = other.reason[k]
-        return Cells(**some, reason=tuple(reason), items=self.items)
-
     def how(self, row: int) -> str:
         """In words the way of failing, part or place of what governs a case; empty where there is none to tell."""
         item, mode = int(self.governs[row]), int(self.mode[row])
         return self.items[item].modes[mode] if item >= 0 and mode >= 0 else ""
-
-
-def _written(into: NDArray[Any], rows: NDArray[np.int64], values: NDArray[Any]) -> NDArray[Any]:
-    out = into.copy()
-    out[rows] = values
-    return out
 
 
 def cells_of(batch: Batch) -> Cells:

@@ -23,7 +23,6 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-from guys import stability
 from guys.equilibrium import State
 from guys.limits import Limit
 from guys.loads import CaseLine, LoadCases
@@ -32,7 +31,7 @@ from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint
 from guys.setting import Setting, find
 from guys.structure import build
-from guys.studies.batch import Batch, Change, Progress, Start, as_set, at_rest, recover, solve_lines
+from guys.studies.batch import Batch, Change, Progress, Start, at_rest, recover, solve_lines
 from guys.studies.cells import FALLS, Cells, cells_of, joined, without_loads
 from guys.studies.directions import round_lines
 from guys.studies.limit import most_of, solved
@@ -185,13 +184,7 @@ class _Study:
         if not some or len(self.whole.lines) == 1:
             return {sets[k]: _none_of(self.whole) for k in some}
         wanted, start = self._without(sets, some, slice(1, None))
-        batch = solve_lines(self.setting, wanted, False, self.progress, start=start)
-        cells = cells_of(batch)
-        lost = np.flatnonzero(batch.code == stability.FAILED)
-        if len(lost):
-            start = as_set(self.setting, len(lost))
-            again = solve_lines(self.setting, [wanted[k] for k in lost], False, self.progress, start=start)
-            cells = cells.put(lost, cells_of(again))
+        cells = cells_of(solve_lines(self.setting, wanted, False, self.progress, start=start))
         return self.swung(sets, some, slice(1, None), cells)
 
     def swung(
