@@ -9,7 +9,7 @@ import numpy as np
 import pytest
 import scenarios_made as made
 
-from guys import path, stability
+from guys import path, recovery, stability
 from guys.equilibrium import Index, Problem, State
 from guys.loads import lines_of
 from guys.path import CLOSE, Paths, Stops, crossings, follow
@@ -91,6 +91,38 @@ def test_a_step_that_took_too_many_rounds_does_not_bound_its_path(monkeypatch: p
     short = walked()
     assert short.low[0] == pytest.approx(plain.low[0], rel=2 * CLOSE)
     assert len(short.x) < 2 * len(plain.x)
+
+
+def test_both_leeward_guys_drop_at_once_and_the_path_stands_aside() -> None:
+    """Wind straight on one of three guys: when the other two drop, one alone can hold the rigid mast sideways: many rounds.
+
+    The wind at which they drop is where moments about the foot vanish, the leeward chords as long as the unstressed guys.
+    """
+    arm, head, radius, pull, EA, weight = 9.0, 12.0, 9.0, 8e3, 2e5, 2000 * 9.80665
+    top = made.fitting(at=head, mass=2000.0, area=2.0, drag=1.2)
+    mast = made.spar(length=head, rigid=True, section=[made.weightless(head)], fitting=[top])
+    rope = {"rope": made.rope(stiffness=EA, drag=0.0)}
+    blown = made.wind(0.0, profile="uniform")
+    setting = made.setting(
+        made.stayed(mast, 0.0, 120.0, 240.0, at=arm, radius=radius, tension=pull, rope=rope, wind=blown, straight=True)
+    )
+    line = lines_of(setting.problem.structure.scenario)[0]
+
+    def at(rows: Index, x: Array) -> Problem:
+        return setting.under([replace(line, speed=float(v)) for v in x])
+
+    def loose(problem: Problem, state: State) -> Array:
+        return recovery.looseness(problem, state, problem.evaluate(state))
+
+    found = follow(at, setting.state, np.zeros(1), Stops(10.0, 0.2, 150.0), loose)
+    unstressed = math.hypot(arm, radius) / (1 + pull / EA)
+    sine = (arm**2 + radius**2 - unstressed**2) / (arm * radius)
+    cosine, chord = math.sqrt(1 - sine**2), math.sqrt(arm**2 + radius**2 + 2 * arm * radius * sine)
+    held = EA * (chord / unstressed - 1) * arm * radius * cosine / chord - weight * head * sine
+    drops = math.sqrt(held / (0.5 * 1.25 * 1.2 * 2.0 * head * cosine))
+    assert np.nanmin(crossings(at, found, loose)) == pytest.approx(drops, rel=1e-4)
+    assert not found.failed[0]
+    assert found.low[0] > 1.01 * drops
 
 
 def head(problem: Problem, state: State) -> Array:
