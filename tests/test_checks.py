@@ -237,6 +237,16 @@ def test_the_first_falls_are_told_and_the_others_named() -> None:
     assert warned(s, f"lost, wind from {', '.join(falls[alarms.SAID :])}: no stable equilibrium either")
 
 
+def test_of_ties_the_first_is_named() -> None:
+    """Mirror winds come to the same but for rounding and the end of the iteration; a greater one is greater all the same."""
+    rising = 1.0 + np.arange(4) * 1e-10
+    assert [extremes.first_greatest(v) for v in (rising, -rising, rising[::-1], 1e9 * rising)] == [0, 0, 0, 0]
+    assert extremes.first_greatest(np.array([math.nan, 1.0, 1.0 + 1e-6])) == 2
+    assert extremes.first_greatest(np.array([math.nan, 1.0, math.inf, math.inf])) == 2
+    table = np.array([[math.nan, 2.0], [2.0 + 1e-9, 1.0]])
+    assert np.unravel_index(extremes.first_greatest(table), table.shape) == (0, 1)
+
+
 def test_failed_self_checks_are_warned_about() -> None:
     bad = SelfCheck(2e-9, "other stable state", 0.2, "storm", math.radians(40))
     words = alarms._checks(bad)

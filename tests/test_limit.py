@@ -15,6 +15,7 @@ import pytest
 import scenarios_made as made
 
 from guys import cli, parse_scenario, stability
+from guys.checks.items import Demands, Item
 from guys.doors import limit as door
 from guys.drawing.limit import draw_limit_page, lowest
 from guys.errors import ScenarioError
@@ -23,6 +24,7 @@ from guys.limits import LOST, NOTHING, Limit, Limits
 from guys.loads import CaseLine
 from guys.path import CLOSE
 from guys.setting import Setting
+from guys.studies import limit as limit_study
 from guys.studies.batch import Batch, solve_lines
 from guys.studies.limit import limits
 
@@ -125,6 +127,22 @@ def test_cables_drop_where_it_is_said() -> None:
     first = {cable: at for _, cable, at, _ in study.first_drops}
     assert first["9 m C"] == min(limit.drops[2] for limit in (*study.circle, *study.worst) if not math.isnan(limit.drops[2]))
     assert math.isnan(first["9 m A"])
+
+
+def test_the_way_of_failing_is_that_of_the_state_that_governs() -> None:
+    """Of a branching whose other state is used more, what governs and its way of failing are told of that one, not of the first."""
+    items = (Item("anchor A", "pull", "N", "", modes=("sliding", "lifting")), Item("cable", "tension", "N", ""))
+
+    def state(pull: float, mode: int) -> Demands:
+        ones = np.ones((1, 2))
+        return Demands(items, np.array([[pull, 0.6]]), ones, ones, np.array([[mode, -1]]))
+
+    _, batch = again(mast(20.0), [limits_of(mast(20.0, 70.0)).circle[0]], [10.0])
+    whole = replace(batch, demands=state(0.5, 0), mirror_demands=state(1.5, 1), mirror_lines=batch.lines)
+    assert limit_study._governing(whole, 0) == (items[0], "lifting", 1.5)
+    tie = replace(whole, mirror_demands=state(0.6 * (1 + 1e-12), 1))
+    assert limit_study._governing(tie, 0) == (items[1], "", 0.6), "the first of two alike but for rounding"
+    assert limit_study._use(whole).tolist() == [1.5]
 
 
 def test_a_wind_factor_of_four_halves_the_speed_and_gives_no_action_level() -> None:

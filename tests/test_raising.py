@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import math
 from concurrent.futures import ThreadPoolExecutor
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -242,6 +243,14 @@ def test_fittings_turn_with_the_spar() -> None:
 
 
 # ---------------------------------------------------------------- what is judged and told
+
+
+def test_of_mirror_winds_the_first_is_named(shipped: Raised) -> None:
+    """Winds from either side of the plane of raising pull alike but for rounding; the greatest is told of the one that comes first."""
+    last = np.where(np.isclose(shipped.wind_from, math.radians(150.0)), 1e-9, 0.0)
+    for hoist in (shipped.hoist, shipped.hoist * (1 + last)):
+        told = exchange.as_dict(replace(shipped, hoist=hoist), ())["greatest"]["hoist_N"]
+        assert (told["angle_deg"], told["wind_from_deg"]) == (0.0, 30.0)
 
 
 def test_capacities_are_judged() -> None:

@@ -13,7 +13,7 @@ from dataclasses import replace
 import numpy as np
 
 from guys.checks.demands import Demands, Item
-from guys.checks.extremes import TIE
+from guys.checks.extremes import first_greatest
 from guys.checks.items import gravity
 from guys.loads import CaseLine
 from guys.results import Finding, Verdict
@@ -59,21 +59,13 @@ def _finding(item: Item, demands: Demands, use: Array, k: int, lines: Sequence[C
             item.thing, item.quantity, math.nan, float(capacity[0]), item.unit, float(required[0]), math.nan,
             "not judged", "", math.nan, item.lacking if lacking else NO_LOAD, item.default, item.source,
         )  # fmt: skip
-    row, first = governing(score)
-    factor, line = float(demands.factor[row, k]), lines[first]
+    row = first_greatest(score)
+    factor, line = float(demands.factor[row, k]), lines[row]
     return Finding(
         item.thing, item.quantity, float(demand[row]), float(capacity[row]), item.unit, float(required[row]), factor,
         judge(factor, float(required[row])), line.name, line.wind_from, item.lacking if math.isnan(factor) else item.why,
         item.default, item.source, item.modes[int(mode[row])] if mode[row] >= 0 else "",
     )  # fmt: skip
-
-
-def governing(score: Array) -> tuple[int, int]:
-    """The case (case,) of the greatest score, and the first in order that is alike but for rounding."""
-    row = int(np.nanargmax(score))
-    greatest = float(score[row])
-    alike = np.flatnonzero(score >= greatest - TIE * abs(greatest)) if math.isfinite(greatest) else [row]
-    return row, int(alike[0])
 
 
 def judge(factor: float, required: float) -> Verdict:

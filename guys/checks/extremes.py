@@ -13,8 +13,8 @@ from guys.recovery import Forces
 from guys.results import Extreme
 from guys.rotation import Array
 
-TIE = 1e-9
-"""Values nearer than this to the greatest, relative, are alike but for rounding: the first of them in the order of the file is named."""
+TIE = 1e-8
+"""Values nearer than this to the greatest, relative, are alike but for rounding and the solver's end: the first of them is named."""
 GROUPS = ("tension", "resultant", "horizontal", "uplift", "down", "lift", "sideways", "whole", "turning", "slide", "lean")
 
 
@@ -79,6 +79,10 @@ def extreme(listed: Array, lines: Sequence[CaseLine], swept: Array, swept_lines:
 def _greatest(values: Array, lines: Sequence[CaseLine]) -> tuple[float, CaseLine | None]:
     if len(values) == 0 or np.isnan(values).all():
         return math.nan, None
+    return float(np.nanmax(values)), lines[first_greatest(values)]
+
+
+def first_greatest(values: Array) -> int:
+    """Flat index of the first value that is the greatest, ties decided by order and not by rounding; some value is not NaN."""
     greatest = float(np.nanmax(values))
-    alike = np.flatnonzero(values >= greatest - TIE * abs(greatest)) if math.isfinite(greatest) else [np.nanargmax(values)]
-    return greatest, lines[int(alike[0])]
+    return int(np.argmax(values >= (greatest - TIE * abs(greatest) if math.isfinite(greatest) else greatest)))

@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
+from guys.checks.extremes import first_greatest
 from guys.drawing import style
 from guys.drawing.leaf import Words, leaf
 from guys.drawing.lettering import fitted, shortened, width
@@ -136,7 +137,7 @@ def load_row(found: Lost, k: int, speech: Tongue, how: Say) -> list[str]:
         if loads.size == 0 or np.isnan(loads).all():
             out += [ABSENT, ABSENT]
             continue
-        column = int(np.nanargmax(loads)) % loads.shape[1]
+        column = first_greatest(loads) % loads.shape[1]
         out += [speech.say(how, float(np.nanmax(loads))), shortened(some[column], 26.0, style.BODY)]
     return out
 

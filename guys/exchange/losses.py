@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from guys.checks.alarms import CAUTIONS
+from guys.checks.extremes import first_greatest
 from guys.exchange.files import heading, json_text
 from guys.exchange.limit import limit_as_dict
 from guys.exchange.result import bearing, number
@@ -85,7 +86,7 @@ def _governing(found: Lost, cells: Cells, line: int) -> dict[str, Any]:
 def _greatest(found: Lost, loads: Array, kind: str, names: Sequence[str], key: str) -> dict[str, Any] | None:
     if loads.size == 0 or np.isnan(loads).all():
         return None
-    line, item = (int(k) for k in np.unravel_index(np.nanargmax(loads), loads.shape))
+    line, item = (int(k) for k in np.unravel_index(first_greatest(loads), loads.shape))
     return {kind: names[item], key: float(loads[line, item]), **_where(found, line)}
 
 
@@ -111,7 +112,7 @@ def as_table(found: Lost) -> str:
             row: list[Cell] = [loss.kind, " and ".join(loss.name), cell["case"], cell["wind_from_deg"], cell["verdict"]]
             row += ["yes" if cell["solved"] else "no", *(cell.get(key) for key in JUDGED)]
             for loads, some in zip((cells.tension[line], cells.pull[line]), names, strict=True):
-                most = None if len(loads) == 0 or np.isnan(loads).all() else int(np.nanargmax(loads))
+                most = None if len(loads) == 0 or np.isnan(loads).all() else first_greatest(loads)
                 row += [None, None] if most is None else [float(loads[most]), some[most]]
             limit = found.limit_at(k, line)
             row += [None, None] if limit is None else [number(limit.speed), number(limit.lost)]

@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 
+from guys.checks.extremes import first_greatest
 from guys.exchange.files import heading, json_text
 from guys.exchange.result import bearing, finding, number
 from guys.exchange.tables import Cell, as_csv
@@ -93,10 +94,10 @@ def _vector(value: Array) -> list[float | None]:
 
 
 def _greatest(raised: Raised, key: str, value: Array) -> dict[str, Any]:
-    """The greatest of a measure over stages and winds, and in still air."""
+    """The greatest of a measure over stages and winds, the first of mirror winds, and in still air."""
     if np.isnan(value).all():
         return {"value": None, "angle_deg": None, "wind_from_deg": None, "still_air": None}
-    stage, case = np.unravel_index(int(np.nanargmax(value)), value.shape)
+    stage, case = np.unravel_index(first_greatest(value), value.shape)
     still = value[:, 0]
     return {
         "value": number(value[stage, case]),

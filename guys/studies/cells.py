@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from guys import stability
 from guys.checks.demands import Demands, Item
-from guys.checks.extremes import measures
+from guys.checks.extremes import first_greatest, measures
 from guys.recovery import Forces
 from guys.rotation import Array
 from guys.studies.batch import Batch
@@ -119,4 +119,4 @@ def worst_first(cells: Cells) -> int:
 
 def worst_use(cells: Cells) -> int | None:
     """The line of the greatest use; None where nothing is judged or nothing stands."""
-    return None if np.isnan(cells.use).all() else int(np.nanargmax(cells.use))
+    return None if np.isnan(cells.use).all() else first_greatest(cells.use)

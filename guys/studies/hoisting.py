@@ -16,6 +16,7 @@ import numpy as np
 from guys import tilting, units
 from guys.checks import allowables
 from guys.checks.demands import Demands, Item, beside, group
+from guys.checks.extremes import first_greatest
 from guys.loads import CaseLine
 from guys.results import Finding
 from guys.rotation import Array
@@ -195,7 +196,7 @@ def _backstay(raised: Raised) -> Iterator[str]:
 def _hinge_lifted(raised: Raised) -> Iterator[str]:
     up = raised.on_hinge[..., 2]
     if np.nanmax(up, initial=0.0) > SHOWN * largest(raised):
-        stage, case = np.unravel_index(int(np.nanargmax(up)), up.shape)
+        stage, case = np.unravel_index(first_greatest(up), up.shape)
         yield f"the hinge is pulled upward by {_newtons(float(up[stage, case]))} at {_place(raised, int(stage), int(case))}: hold it down"
 
 

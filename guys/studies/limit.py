@@ -22,6 +22,8 @@ import numpy as np
 from guys import recovery, stability
 from guys.checks import demands, spars
 from guys.checks.alarms import CAUTIONS
+from guys.checks.demands import Item
+from guys.checks.extremes import first_greatest
 from guys.equilibrium import Index, Problem, State
 from guys.errors import Fault, ScenarioError
 from guys.limits import LOST, NOTHING, Limit, Limits
@@ -140,7 +142,7 @@ class _Chunk:
         looked = speed if self.asked.plain else np.where(np.isnan(speed), self.stops.most, speed)
         again = self._again(np.where(np.isnan(looked), 0.0, looked))
         failed = np.logical_or.reduceat(paths.failed, self.asked.start)
-        over = np.flatnonzero(~failed & (looked > 0) & (_use(again).max(axis=1) > 1 + AGREES))
+        over = np.flatnonzero(~failed & (looked > 0) & (_use(again) > 1 + AGREES))
         if len(over):
             part = _Chunk(self.setting, [self.lines[k] for k in over.tolist()], self.stops.most)
             speed[over] = part._brought_down(looked[over])
@@ -160,7 +162,7 @@ class _Chunk:
         low, high = np.zeros_like(speed), speed.copy()
         for _ in range(ANSWER_ROUNDS):
             middle = 0.5 * (low + high)
-            over = _use(self._again(middle)).max(axis=1) > 1
+            over = _use(self._again(middle)) > 1
             low, high = np.where(over, low, middle), np.where(over, middle, high)
         return low
 
@@ -172,9 +174,8 @@ class _Chunk:
         falls = self._falls(path, paths) if paths.lost[path] else ""
         use = math.nan
         if by_allowable:
-            item, use = _governing(again, k)
-            judged = again.demands.items[item]
-            governs, how = f"{judged.thing}: {judged.quantity}", judged.modes[m] if (m := int(again.demands.mode[k, item])) >= 0 else ""
+            judged, how, use = _governing(again, k)
+            governs = f"{judged.thing}: {judged.quantity}"
             meets = "reaches its allowable" if speed > 0 else "is past its allowable in still air"
             why = f"{judged.quantity} of {judged.thing} {meets}{f' ({how})' if how else ''}"
         elif math.isnan(speed):
@@ -207,19 +208,20 @@ def _watched(problem: Problem, state: State) -> Array:
 
 
 def _use(batch: Batch) -> Array:
-    """(line, item) use of everything judged, the greater of both states of a branching; 0 where not judged."""
-    use = np.nan_to_num(batch.demands.use, nan=0.0)
+    """(line,) greatest use of anything judged, of both states of a branching; 0 where nothing is judged."""
+    return np.array([_governing(batch, k)[2] for k in range(len(batch.lines))])
+
+
+def _governing(batch: Batch, k: int) -> tuple[Item, str, float]:
+    """What governs a line in the worse of its states: the item, its way of failing, empty where it has but one, and its use."""
+    states = [(batch.demands, k)]
     if batch.mirror_demands is not None:
-        for other, line in zip(np.nan_to_num(batch.mirror_demands.use, nan=0.0), batch.mirror_lines, strict=True):
-            k = batch.lines.index(line)
-            use[k] = np.maximum(use[k], other)
-    return use
-
-
-def _governing(batch: Batch, k: int) -> tuple[int, float]:
-    use = _use(batch)[k]
-    item = int(np.argmax(use))
-    return item, float(use[item])
+        states += [(batch.mirror_demands, row) for row, line in enumerate(batch.mirror_lines) if line == batch.lines[k]]
+    uses = np.nan_to_num([table.use[row] for table, row in states], nan=0.0)
+    state, item = np.unravel_index(first_greatest(uses), uses.shape)
+    table, row = states[state]
+    mode = int(table.mode[row, item])
+    return table.items[item], table.items[item].modes[mode] if mode >= 0 else "", float(uses[state, item])
 
 
 def _worst(

@@ -22,6 +22,7 @@ from dataclasses import dataclass, field, replace
 
 import numpy as np
 
+from guys.checks.extremes import first_greatest
 from guys.errors import ScenarioError
 from guys.loads import CaseLine, lines_of
 from guys.reserves import WORDS
@@ -242,11 +243,11 @@ def _read(setting: Setting, cells: Cells, lines: Sequence[CaseLine], raised: Seq
     fallen = np.flatnonzero(cells.verdict >= FALLS)
     pull, anchor, pull_line = math.nan, "", None
     if cells.pull.size and not np.isnan(cells.pull).all():
-        row, k = divmod(int(np.nanargmax(cells.pull)), cells.pull.shape[1])
+        row, k = divmod(first_greatest(cells.pull), cells.pull.shape[1])
         pull, anchor, pull_line = float(cells.pull[row, k]), scenario.anchor[k].name, lines[row]
     reserve, thing, reserve_line = math.nan, "", None
     if not np.isnan(cells.use).all():
-        row = int(np.nanargmax(cells.use))
+        row = first_greatest(cells.use)
         reserve = 1 / float(cells.use[row]) if cells.use[row] > 0 else math.inf
         thing, reserve_line = cells.items[int(cells.governs[row])].thing, lines[row]
     reason = cells.reason[int(fallen[0])] if len(fallen) else ""
