@@ -36,7 +36,7 @@ TARGET = 5e-11
 """Out-of-balance at which a case is done."""
 ENOUGH = 1e-9
 """Out-of-balance a case must reach to count as converged."""
-ROUNDS = 400
+ROUNDS = 1000
 """Rounds unless the caller says fewer: a single still-air state may swing far before it rests, or turns over."""
 LEAST_DAMPING = 1e-9
 """mu never falls below this: a free spin then gets no wild step, and any other direction is slowed by less than 1e-9."""
