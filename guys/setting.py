@@ -50,6 +50,9 @@ STEP = 0.7
 """Greatest change of ln T aimed at in one round."""
 PLACED = 1e-10
 """Change of ln L0 at which a plumb setting is found: the move it makes is below a micrometre."""
+PATIENCE, ASTRAY = 10, 1.0
+"""Rounds after which a plumb setting still out of balance by that share of the reference force is given up: no tensions hold it there, as
+where the anchors stand on one side."""
 LEAST_SHARE = 0.1
 """Least tension of a plumb setting, of its target."""
 AS_DRAWN = 1e-5
@@ -277,13 +280,14 @@ def _held_nodes(structure: Structure) -> list[tuple[int, int]]:
 def _plumb(problem: Problem, way: _Way, asked: Asked) -> Flags:
     """Bring the tensions to those nearest the targets that leave the spars as drawn; all are found."""
     height, open_ = problem.structure.height, np.arange(problem.cases)
-    for _ in range(ROUNDS):
+    for round_ in range(ROUNDS):
         part, here = way.at(problem, open_)
         now = rates(part, here, asked)
         away, slope, settled = _away(part, here, now)
         asked_for = zip(now.measure + now.drift, now.rate, (away + settled) / height, slope / height, strict=True)
         change = np.array([_nearest(*each) for each in asked_for])
         on = (np.abs(change).max(axis=1) >= PLACED) | (now.error >= solver.ENOUGH)
+        on &= (round_ < PATIENCE) | (now.error < ASTRAY)
         open_ = _step(way, open_, part, here, now, change, asked, on, (PLUMB_TURN, PLUMB_TURN, math.inf))
         if len(open_) == 0:
             break
@@ -318,22 +322,22 @@ def _nearest(now: Array, rate: Array, away: Array, slope: Array) -> Array:
 
 
 def _bounded(a: Array, wanted: Array, g: Array, least: Array) -> Array:
-    """Least squares |a x - wanted| with g x >= least."""
-    x = np.linalg.lstsq(a, wanted, rcond=RANK)[0]
-    if (g @ x >= least - AT_BOUND).all():
-        return np.asarray(x)
-    from scipy.optimize import LinearConstraint, minimize
+    """Least squares |a x - wanted| with g x >= least.
 
-    scale = np.linalg.norm(a, axis=0)
-    a, g, size = a / scale, g / scale, 1 / max(float(wanted @ wanted), NONZERO)
+    With a = U S V^T and x = x0 + V S^-1 z about the unbounded answer x0 it is the least |z| with h z >= least - g x0, which non-negative
+    least squares finds (Lawson & Hanson, Solving Least Squares Problems, 1974, ch. 23, problem LDP).  x0 where no x keeps the bounds.
+    """
+    u, s, vt = np.linalg.svd(a, full_matrices=False)
+    kept = s > RANK * s[0]
+    back = vt[kept].T / s[kept]
+    x0 = back @ (u[:, kept].T @ wanted)
+    short = least - g @ x0
+    if (short <= AT_BOUND).all():
+        return np.asarray(x0)
+    from scipy.optimize import nnls
 
-    def miss(y: Array) -> float:
-        return float(0.5 * size * np.sum((a @ y - wanted) ** 2))
-
-    def slope(y: Array) -> Array:
-        return np.asarray(size * (a.T @ (a @ y - wanted)))
-
-    out = minimize(
-        miss, x * scale, jac=slope, method="SLSQP", constraints=LinearConstraint(g, least, np.inf), options={"ftol": 1e-15, "maxiter": 300}
-    )
-    return np.asarray(out.x / scale)
+    h = g @ back
+    rows = np.vstack([h.T, short])
+    goal = np.append(np.zeros(len(h.T)), 1.0)
+    rest = rows @ nnls(rows, goal)[0] - goal
+    return np.asarray(x0 if rest[-1] > -NONZERO else x0 - back @ (rest[:-1] / rest[-1]))

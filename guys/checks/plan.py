@@ -27,7 +27,7 @@ from guys.checks.allowables import judge
 from guys.checks.distances import apart, over
 from guys.loads import CaseLine
 from guys.results import Finding, SparLine
-from guys.rotation import Array, dot
+from guys.rotation import Array
 from guys.scenario import Scenario
 from guys.scenario.model import AnchorPoint, Fitting, GroundFoot, HeelFoot, SparPoint
 from guys.site import Obstacle, Site
@@ -259,8 +259,9 @@ def _nearest_pair(hung: Hung, i: int, j: int) -> tuple[float, CaseLine | None]:
     still = float(apart(*first))
     if still - moves > APART:
         return still - moves, None
-    between = hung.curves[:, i, :, None] - hung.curves[:, j, None]
-    points = np.sqrt(dot(between, between).min(axis=(1, 2))) - 0.5 * (_piece(hung, i) + _piece(hung, j))
+    one, other = hung.curves[:, i], hung.curves[:, j]
+    squared = sum((one[:, :, None, axis] - other[:, None, :, axis]) ** 2 for axis in range(3))
+    points = np.sqrt(np.min(squared, axis=(1, 2))) - 0.5 * (_piece(hung, i) + _piece(hung, j))
     near = np.flatnonzero(points < APART)
     return _nearest([hung.lines[k] for k in near], hung.curves[near, i], hung.curves[near, j])
 

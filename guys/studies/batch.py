@@ -120,18 +120,15 @@ def solve_lines(
 
 
 def solve_each(settings: Sequence[Setting], lines: Sequence[CaseLine]) -> list[Batch]:
-    """The same few lines on settings that stand of layouts side by side (`setting.find_each`), as many at once as fill a chunk.
+    """The same few lines on settings that stand of layouts side by side (`setting.find_each`), in even lots of about a chunk.
 
     With spar lines and curves.  Paths are not followed: a case whose stable state is not found from the setting at once, within the swing
     that `stability.judge` takes without doubt, counts as one that falls.
     """
-    out: list[Batch] = []
-    waiting: list[_Share] = []
-    for setting in settings:
-        waiting.append(_share(setting, lines, starts(setting, lines)))
-        if sum(share.problem.cases for share in waiting) + waiting[-1].problem.cases > CHUNK:
-            out, waiting = out + _solved(waiting, True, AT_ONCE), []
-    return out + _solved(waiting, True, AT_ONCE)
+    shares = [_share(setting, lines, starts(setting, lines)) for setting in settings]
+    lots = math.ceil(sum(share.problem.cases for share in shares) / CHUNK)
+    rows = np.array_split(np.arange(len(shares)), max(lots, 1))
+    return [batch for lot in rows for batch in _solved([shares[k] for k in lot], True, AT_ONCE)]
 
 
 @dataclass(frozen=True)
