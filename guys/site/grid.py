@@ -10,7 +10,10 @@ satellite receivers and GeoJSON (RFC 7946) give them; where the grid's datum is 
 
 A change of datum forgets the height on the way, so the step back from degrees misses by a millimetre or two; `to_degrees` makes that good.
 
-Source of the two factors: common practice of land surveying (combined scale factor); k and g from PROJ's `proj_factors`.
+Both k and g are measured: `STEP` along each axis of the grid, as a geodesic on the grid's own ellipsoid.  So a grid is found out whose
+axes are stretched, askew, or do not count to the east and to the north.
+
+Source of the two factors: common practice of land surveying (combined scale factor).
 """
 
 from __future__ import annotations
@@ -27,7 +30,11 @@ Array = NDArray[np.float64]
 EARTH_RADIUS = 6_371_000.0
 """[m] mean radius, for the level's part of the scale."""
 CONFORMAL = 1e-4
-"""Difference of scale north-south and east-west above which a grid is refused: bearings on it are not bearings on the ground."""
+"""Difference of scale along both axes above which a grid is refused: bearings on it are not bearings on the ground."""
+ASKEW = "bearings on it are not those on the ground; give another system, such as UTM"
+"""What is wrong with a grid that does not keep angles."""
+STEP = 50.0
+"""[m] to either side over which scale and convergence are measured; both err by its square over that of the earth's radius, 1e-10."""
 STRAY = 3.0
 """[deg] an origin may lie outside the area its system is for: half a zone of six degrees, as sites across a zone's edge need."""
 
@@ -50,6 +57,10 @@ def _system(name: str) -> Any:
         system = system.sub_crs_list[0]
     if not system.is_projected:
         raise GridError(f'"{name}" ({system.name}) is not a projected system: it has degrees, not metres or feet')
+    if any(axis.direction == "west" for axis in system.axis_info):
+        counts = " and ".join(axis.direction for axis in system.axis_info[:2])
+        cure = "give one that counts to the east and north, such as UTM, and files in degrees"
+        raise GridError(f'"{name}" ({system.name}) counts to the {counts}, and would turn the site round; {cure}')
     return system
 
 
@@ -150,25 +161,36 @@ def _stray(area: Any, latitude: float, longitude: float) -> float:
     return float(max(area.south - latitude, latitude - area.north, 0.0 if past <= width else min(past - width, 360 - past)))
 
 
+def _measured(system: Any, east: float, north: float, metres: float) -> tuple[float, float, float]:
+    """Scale along the north axis and along the east axis, and convergence [rad]; raises GridError where the axes are askew."""
+    from pyproj import Transformer
+
+    ellipsoid = system.get_geod()
+    back = Transformer.from_crs(system, system.geodetic_crs, always_xy=True)
+    scales, bearings = [], []
+    for toward in ((0.0, STEP / metres), (STEP / metres, 0.0)):
+        longitudes, latitudes = back.transform([east - toward[0], east + toward[0]], [north - toward[1], north + toward[1]])
+        out, back_in, length = ellipsoid.inv(longitudes[0], latitudes[0], longitudes[1], latitudes[1])
+        scales.append(2 * STEP / length)
+        bearings.append(math.radians(out + 0.5 * math.remainder(back_in + 180 - out, 360)))  # halfway, that is at the place
+    if abs(math.remainder(bearings[1] - bearings[0] - math.pi / 2, math.tau)) > CONFORMAL:
+        raise GridError(f"the axes of {system.name} are not square to each other, east to the right of north, here: {ASKEW}")
+    return scales[0], scales[1], bearings[0]
+
+
 def grid_at(crs: str, east: float, north: float, level: float) -> Grid:
     """The grid through a place given in the grid itself [grid unit]; raises GridError."""
-    from pyproj import Proj
-
     system = _system(crs)
     to_grid = _to_grid(crs)
     longitude, latitude = to_grid.transform(east, north, direction="INVERSE")
     if not (math.isfinite(longitude) and math.isfinite(latitude)):
         raise GridError(f"{east:.10g}, {north:.10g} is not a place on {crs}")
     _in_reach(crs, latitude, longitude)
-    own = Proj(system)
-    factors = own.get_factors(*own(east, north, inverse=True))
-    k, other = float(factors.meridional_scale), float(factors.parallel_scale)
+    k, other, convergence = _measured(system, east, north, unit(crs))
     if abs(k - other) > CONFORMAL * k:
-        raise GridError(
-            f"{crs} stretches north-south by {k:.5f} and east-west by {other:.5f} here: bearings on it are not those on the ground"
-        )
+        raise GridError(f"{crs} stretches its north axis by {k:.5f} and its east axis by {other:.5f} here: {ASKEW}")
     return Grid(
         crs=crs, name=str(system.name), east=east, north=north, unit=unit(crs), level=level, latitude=float(latitude),
-        longitude=float(longitude), point_scale=math.sqrt(k * other), convergence=math.radians(float(factors.meridian_convergence)),
+        longitude=float(longitude), point_scale=math.sqrt(k * other), convergence=convergence,
         accuracy=math.nan if to_grid.accuracy is None or to_grid.accuracy < 0 else float(to_grid.accuracy),
     )  # fmt: skip
