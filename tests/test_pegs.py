@@ -172,6 +172,7 @@ def test_pegs_by_grid_and_by_degrees_are_one(tmp_path: Path) -> None:
         ("name,east,north\nA,2000,0\n", "are the columns or the units swapped"),
         ("name,lat,lon\nA,51,3\n", "need [site]"),
         ("name,east [furlong],north\nA,0,1\n", "furlong is not a unit"),
+        ('name,east,north\n"' + 200_000 * "a" + '",1,1\n', "is not CSV: field larger"),
     ],
 )
 def test_faulty_surveys(tmp_path: Path, text: str, told: str) -> None:

@@ -54,6 +54,8 @@ def test_units_and_order_of_columns_come_from_the_header() -> None:
         ("east,north,level\n0,0,1\n1,0\n2,x,3\n", 'line 4: "x" is not a number for the north'),
         ("east,north,level\n0,0,1\n0,0,2\n", "line 3: the same place as line 2"),
         ("east,north,level\n0,0,1\n1,1,nan\n", 'line 3: "nan" is not a number for the level'),
+        ('east,north,level\n"' + 200_000 * "a" + '",1,1\n', "is not CSV: field larger"),
+        ("east;north;level\n0,5;1,5;0,2\n", "parted by commas"),
     ],
 )
 def test_faulty_lines_are_named(text: str, told: str) -> None:
@@ -94,6 +96,11 @@ def test_gaps_of_a_grid_are_not_bridged() -> None:
         (("6\n", "6 7\n"), "holds 7 heights"),
         (("4 5 6", "4 five 6"), "not a number"),
         (("cellsize 10", "cellsize ten"), "not a number"),
+        (("cellsize 10", "cellsize 0"), "says cellsize 0"),
+        (("ncols 3", "ncols nan"), "says ncols nan"),
+        (("ncols 3", "ncols 2.5"), "says ncols 2.5"),
+        (("nrows 2", "nrows inf"), "says nrows inf"),
+        (("xllcorner -15", "xllcorner nan"), "says xllcorner nan"),
         (("1 2 3\n4 5 6", "1 -9999 3\n4 5 6"), "no four neighbouring"),
     ],
 )

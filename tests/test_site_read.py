@@ -125,6 +125,41 @@ def test_faulty_boundaries(tmp_path: Path, content: Any, told: str) -> None:
     assert told in faults(tmp_path, {**PLACED, "boundary": "b.json"}, {"b.json": content})
 
 
+@pytest.mark.parametrize(
+    ("coordinates", "told"),
+    [("[NaN, 10]", "no place's"), ("[1e300, 10]", "no place's"), ("[30]", "make no Point"), ('["a", 1]', "make no Point")],
+)
+def test_coordinates_that_are_none(tmp_path: Path, coordinates: str, told: str) -> None:
+    shape = json.dumps(feature("Point", "here", kind="mast")).replace('"here"', coordinates)
+    assert told in faults(tmp_path, {"obstacles": "o.json"}, {"o.json": shape})
+
+
+def test_a_lone_point_may_be_in_metres(tmp_path: Path) -> None:
+    """A file that spans nothing is not therefore in degrees, unless its numbers are finer than anybody sets out."""
+    tap = {"kind": "service", "name": "tap", "clearance": "1 m"}
+    site = read(tmp_path, {"obstacles": "o.json"}, {"o.json": collection(feature("Point", [5.25, -3.125], **tap))}).site
+    assert site is not None
+    assert site.obstacles[0].shape.bounds == (5.25, -3.125, 5.25, -3.125)
+    there = collection(feature("Point", degrees([(5.25, -3.125)])[0], **tap))
+    assert "degrees taken for metres" in faults(tmp_path, {"obstacles": "o.json"}, {"o.json": there})
+
+
+def test_numbers_of_the_site_in_place_of_the_systems(tmp_path: Path) -> None:
+    local = collection(feature("Polygon", [SQUARE]))
+    assert "metres from the origin?" in faults(tmp_path, {**PLACED, "boundary": "b.json"}, {"b.json": local})
+    local["crs"] = {"type": "name", "properties": {"name": CRS}}
+    assert "look like metres from the origin" in faults(tmp_path, {**PLACED, "boundary": "b.json"}, {"b.json": local})
+    assert "degrees taken for metres" in faults(
+        tmp_path, {"ground": "g.csv"}, {"g.csv": "east,north,level\n3.2,51,1\n3.2001,51,1\n3.2,51.0001,2\n"}
+    )
+
+
+def test_shapes_far_from_the_rest_are_told(tmp_path: Path) -> None:
+    mixed = collection(feature("Point", [30.0, 10.0], kind="mast"), feature("Point", [30_000.0, 10_000.0], kind="mast"))
+    warned = read(tmp_path, {"obstacles": "o.json"}, {"o.json": mixed}).warnings
+    assert any("1 of 2 shapes lie beyond 5 km from the origin, such as feature 2, 32 km away" in w for w in warned)
+
+
 def test_a_file_too_large_or_missing(tmp_path: Path) -> None:
     assert "no such file" in faults(tmp_path, {"boundary": "b.json"}, {})
     with open(tmp_path / "b.json", "wb") as file:
@@ -207,3 +242,30 @@ def test_layers_of_a_drawing_are_obstacles(tmp_path: Path) -> None:
     site = read(tmp_path, {"obstacles": "o.dxf"}, {}).site
     assert site is not None
     assert [(o.name, o.kind, o.height) for o in site.obstacles] == [("store", "building", 4.0)]
+
+
+def test_millimetres_taken_for_metres(tmp_path: Path) -> None:
+    drawn(tmp_path / "b.dxf", 6, 1000.0, "boundary")
+    assert "millimetres taken for metres" in faults(tmp_path, {"boundary": "b.dxf"}, {})
+
+
+def test_blocks_of_a_drawing_are_taken_apart(tmp_path: Path) -> None:
+    """On layer 0 of a block is on the layer of its insert (DXF reference); moved and turned by it."""
+    drawing = ezdxf.new()
+    drawing.header["$INSUNITS"] = 6
+    store = drawing.blocks.new("store")
+    store.add_lwpolyline([(0, 0), (4, 0), (4, 2), (0, 2)], close=True)
+    drawing.modelspace().add_blockref("store", (20, 5), dxfattribs={"layer": "building - height 4 m - name store", "rotation": 90})
+    drawing.saveas(tmp_path / "o.dxf")
+    site = read(tmp_path, {"obstacles": "o.dxf"}, {}).site
+    assert site is not None
+    assert [(o.name, o.height) for o in site.obstacles] == [("store", 4.0)]
+    assert site.obstacles[0].shape.bounds == pytest.approx((18.0, 5.0, 20.0, 9.0))
+
+
+def test_a_drawing_cut_short_is_a_fault_of_the_file(tmp_path: Path) -> None:
+    drawn(tmp_path / "b.dxf", 6, 1.0, "boundary")
+    whole = (tmp_path / "b.dxf").read_text(encoding="utf-8")
+    for kept in (0.1, 0.5, 0.9):
+        (tmp_path / "b.dxf").write_text(whole[: int(kept * len(whole))], encoding="utf-8")
+        assert "is not readable as DXF" in faults(tmp_path, {"boundary": "b.dxf"}, {})

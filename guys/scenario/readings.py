@@ -70,7 +70,10 @@ def read_readings(path: str, scenario: Scenario) -> Readings:
     lines = text.splitlines()
     signed = _signed(path, lines, scenario)
     table = [(number, line) for number, line in enumerate(lines, 1) if line.strip(", \t") and not line.startswith("#")]
-    rows = list(csv.reader(io.StringIO("\n".join(line for _, line in table))))
+    try:
+        rows = list(csv.reader(io.StringIO("\n".join(line for _, line in table))))
+    except csv.Error as error:
+        raise _whole(path, f"is not CSV: {error}") from None
     if not rows or len(rows) != len(table):
         raise _whole(path, "is empty" if not rows else "a quoted cell runs over lines; write each reading on one line")
     place = _places(path, table[0][0], rows[0])

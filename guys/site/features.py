@@ -1,21 +1,27 @@
 """Shapes and their properties from GeoJSON and DXF, still in the file's coordinates.
 
 GeoJSON (RFC 7946) is longitude first, in degrees.  A file that holds a grid's own numbers says so by the older member `crs`.  In DXF every
-layer is of one kind: closed curves are polygons, open ones lines, points points, and what is no shape (text, hatching) is counted in
-`passed_over`; `$INSUNITS` tells the unit.  A layer carries its properties in its name, such as `road - headroom 5.5 m - name haul road`.
+layer is of one kind: closed curves are polygons, open ones lines, points points; blocks are taken apart, and what is no shape (text,
+dimensions) is counted in `passed_over`; `$INSUNITS` tells the unit.  A layer carries its properties in its name, such as
+`road - headroom 5.5 m - name haul road`.
 """
 
 from __future__ import annotations
 
 import json
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
+
+import numpy as np
 
 if TYPE_CHECKING:
     from shapely.geometry.base import BaseGeometry
 
 NEARNESS = 1e-3
 """[m] curves of a drawing are followed within this."""
+ANYWHERE = 1e9
+"""Coordinates on Earth are less, in metres, feet or millimetres of a site."""
 INSUNITS = {1: 0.0254, 2: 0.3048, 4: 0.001, 5: 0.01, 6: 1.0, 7: 1000.0, 10: 0.9144, 14: 0.1, 21: 1200 / 3937}
 """Metres in the drawing unit of each $INSUNITS code (DXF reference): inch, foot, mm, cm, m, km, yard, dm, US survey foot."""
 
@@ -88,6 +94,7 @@ def _items(content: dict[str, Any]) -> list[Any]:
 
 
 def _feature(item: Any, number: int, reasons: list[str]) -> Feature | None:
+    from shapely import get_coordinates
     from shapely.geometry import shape
 
     properties = item.get("properties") if isinstance(item, dict) else None
@@ -100,8 +107,11 @@ def _feature(item: Any, number: int, reasons: list[str]) -> Feature | None:
     try:
         found = shape(geometry)
         flat = found if not found.has_z else _flat(found)
-    except Exception as error:
-        reasons.append(f"{place} is not a shape: {error}")
+    except Exception:
+        reasons.append(f"{place} is not a shape: its coordinates make no {geometry.get('type')}")
+        return None
+    if not (np.abs(get_coordinates(flat)) < ANYWHERE).all():
+        reasons.append(f"{place} has a coordinate that is no place's")
         return None
     if flat.is_empty:
         reasons.append(f"{place} is empty")
@@ -126,6 +136,8 @@ def dxf(path: str, unit: float | None) -> Layer:
         drawing = readfile(path)
     except (OSError, DXFError) as error:
         raise FeatureError(f"is not readable as DXF: {error}") from None
+    except Exception as error:  # whatever else a broken drawing makes the library stumble on
+        raise FeatureError(f"is not readable as DXF: {type(error).__name__}; is it cut short? save it anew") from None
     code = int(drawing.header.get("$INSUNITS", 0))
     own = INSUNITS.get(code)
     if own is None and unit is None:
@@ -141,7 +153,7 @@ def dxf(path: str, unit: float | None) -> Layer:
 def _entities(space: Any, nearness: float) -> tuple[tuple[Feature, ...], tuple[str, ...]]:
     features: list[Feature] = []
     passed_over: set[str] = set()
-    for number, entity in enumerate(space):
+    for number, entity in enumerate(_drawn(space)):
         shape, kind = _shape(entity, nearness), entity.dxftype().lower()
         if shape is None:
             passed_over.add(kind)
@@ -149,6 +161,17 @@ def _entities(space: Any, nearness: float) -> tuple[tuple[Feature, ...], tuple[s
         layer = str(entity.dxf.layer)
         features.append(Feature(shape, _layer_properties(layer), f'{kind} {number + 1} on layer "{layer}"'))
     return tuple(features), tuple(sorted(passed_over))
+
+
+def _drawn(space: Iterable[Any], on: str | None = None) -> Iterator[Any]:
+    """Everything drawn, blocks taken apart; what a block holds on layer 0 is on the layer the block is inserted on (DXF reference)."""
+    for entity in space:
+        if on is not None and entity.dxf.layer == "0":
+            entity.dxf.layer = on
+        if entity.dxftype() == "INSERT":
+            yield from _drawn((part for one in entity.multi_insert() for part in one.virtual_entities()), str(entity.dxf.layer))
+        else:
+            yield entity
 
 
 def _layer_properties(layer: str) -> dict[str, str]:

@@ -37,6 +37,7 @@ MOST_FAULTS = 10
 """Faulty lines of one file told one by one."""
 ON_EDGE = 1e-6
 """[m] a place this near outside an edge is on it."""
+FITTING = "a grid has two or more columns and rows, cells of some size, and a corner"
 FLAT = 1e-9
 """Spread of spot heights across a line, relative to that along it, below which they make no ground."""
 
@@ -115,9 +116,7 @@ class Heights:
 
 def spot_heights(text: str) -> Heights:
     """The points of a spot-height file; raises GroundError with every faulty line."""
-    rows = list(csv.reader(io.StringIO(text)))
-    if not rows:
-        raise GroundError("is empty")
+    rows = table_of(text)
     columns, factor = _header(rows[0])
     reasons: list[str] = []
     found = [p for number, row in enumerate(rows[1:], 2) if (p := _point(row, number, columns, factor, reasons)) is not None]
@@ -127,6 +126,19 @@ def spot_heights(text: str) -> Heights:
         raise GroundError(*reasons[:MOST_FAULTS], *more)
     points = np.array([p[1:] for p in found]).reshape(-1, 3)
     return Heights(points, plain=all(f is None for f in factor.values()))
+
+
+def table_of(text: str) -> list[list[str]]:
+    """Rows of a CSV text; raises GroundError where it is none or has no header."""
+    try:
+        rows = list(csv.reader(io.StringIO(text)))
+    except csv.Error as error:
+        raise GroundError(f"is not CSV: {error}") from None
+    if not rows:
+        raise GroundError("is empty")
+    if len(rows[0]) == 1 and ";" in rows[0][0]:
+        raise GroundError("line 1: columns are parted by commas, not semicolons, and decimals by a point")
+    return rows
 
 
 def _header(cells: list[str]) -> tuple[dict[str, int], dict[str, float | None]]:
@@ -199,6 +211,9 @@ def grid_of_heights(text: str) -> Heights:
     corner = [next((k for k in (f"{a}llcorner", f"{a}llcenter") if k in head), None) for a in "xy"]
     if lacking or None in corner:
         raise GroundError(f"its header lacks {' and '.join(lacking or ['xllcorner or xllcenter, yllcorner or yllcenter'])}")
+    unfit = [k for k, value in head.items() if not (k == "nodata_value" or _fits(k, value))]
+    if unfit:
+        raise GroundError(f"its header says {unfit[0]} {head[unfit[0]]:g}; {FITTING}")
     columns, rows, size = int(head["ncols"]), int(head["nrows"]), head["cellsize"]
     try:
         values = np.array(words[2 * len(head) :], dtype=float)
@@ -213,6 +228,13 @@ def grid_of_heights(text: str) -> Heights:
     if not len(triangles):
         raise GroundError("holds no four neighbouring heights; ground needs them")
     return Heights(np.column_stack([east.ravel(), north.ravel(), values]), True, triangles)
+
+
+def _fits(key: str, value: float) -> bool:
+    """Whether a number of the header can be what it says."""
+    if key in ("ncols", "nrows"):
+        return value >= 2 and value % 1 == 0
+    return math.isfinite(value) and (key != "cellsize" or value > 0)
 
 
 def _between_cells(known: NDArray[np.bool_]) -> NDArray[np.int64]:

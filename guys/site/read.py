@@ -29,10 +29,14 @@ if TYPE_CHECKING:
 Array = NDArray[np.float64]
 LARGEST = 20_000_000
 """Bytes a site file may have."""
-FAR = 20_000.0
-"""[m] from the origin, beyond which nothing of a site can be meant."""
+FAR = 5_000.0
+"""[m] from the origin, beyond which nothing of a site can be meant: millimetres of a fence 5 m away taken for metres."""
 TINY = 0.05
 """[m] or degrees: a whole file within this is in degrees (5 km), or no site."""
+FINE = 4
+"""Decimals of a metre that a place may have; one with more is in degrees."""
+PLAIN = 180.0
+"""Numbers of a grid are greater: those within are degrees, or metres from the origin."""
 LENGTHS = ("clearance", "headroom", "height", "distance")
 KNOWN = ("name", "kind", *LENGTHS)
 AREAS = ("Polygon", "MultiPolygon")
@@ -83,7 +87,9 @@ def read_site(asked: Asked, grid: Grid | None, folder: Path) -> tuple[Site, list
         layer = _layer(path, content, asked.drawing_unit)
         if layer.passed_over:
             notes.append(f"{path.name}: passed over what is no shape: {', '.join(layer.passed_over)}")
-        return _placed(layer, grid)
+        found = _placed(layer, grid)
+        notes.extend(f"{path.name}: {text}" for text in _strays(found))
+        return found
 
     boundary = read("boundary", lambda path, content: _boundary(shapes(path, content)))
     obstacles = read("obstacles", lambda path, content: _obstacles(shapes(path, content)))
@@ -112,7 +118,8 @@ def _text(content: bytes) -> str:
 def _layer(path: Path, content: bytes, drawing_unit: float | None) -> Layer:
     layer = features.dxf(str(path), drawing_unit) if path.suffix.lower() == ".dxf" else features.geojson(_text(content))
     if not layer.features:
-        raise FeatureError("holds no shapes; leave the key out where there are none")
+        passed = f", only {', '.join(layer.passed_over)}" if layer.passed_over else ""
+        raise FeatureError(f"holds no shapes{passed}; leave the key out where there are none")
     return layer
 
 
@@ -139,14 +146,34 @@ def _placing(layer: Layer, grid: Grid | None, everything: Array) -> Callable[[Ar
         ours = "the scenario gives none" if grid is None else f"the scenario's is {grid.crs}"
         raise FeatureError(f"is in {layer.crs}; {ours}: give the file in that system, or in degrees without the member crs")
     if grid is None:
-        if layer.unit is None and np.ptp(everything, axis=0).max() < TINY:
+        if layer.unit is None and _like_degrees(everything):
             raise FeatureError(f"spans {_span(everything)}: degrees taken for metres? GeoJSON is in degrees; give crs and origin in [site]")
         metres = layer.unit or 1.0
         return _near(lambda points: metres * points, everything, "metres from the origin")
-    if layer.crs is not None and np.abs(everything).max() <= 180:
-        raise FeatureError(f"names {layer.crs}, but its numbers look like degrees ({_span(everything)} wide); leave its member crs out")
+    if layer.crs is not None and np.abs(everything).max() <= PLAIN:
+        like = (
+            "degrees; leave its member crs out" if _like_degrees(everything) else "metres from the origin; give coordinates of that system"
+        )
+        raise FeatureError(f"names {layer.crs}, but its numbers ({_first(everything)}) look like {like}")
     factor = layer.unit / grid.unit if layer.unit is not None else 1.0
     return _near(lambda points: np.column_stack(grid.from_grid(*(factor * points).T)), everything, f"coordinates of {grid.crs}")
+
+
+def _strays(placed: Sequence[Feature]) -> Iterator[str]:
+    """Features that lie nowhere near while others do: perhaps not in the coordinates of the rest."""
+    from shapely import Point, distance
+
+    away = [(float(distance(f.shape, Point(0.0, 0.0))), f.place) for f in placed]
+    far = [(at, name) for at, name in away if at > FAR]
+    if far:
+        at, name = far[0]
+        yield f"{len(far)} of {len(placed)} shapes lie beyond {FAR / 1000:g} km from the origin, such as {name}, {_far(at)} away"
+
+
+def _like_degrees(everything: Array) -> bool:
+    """Whether a whole file is so small that it must be in degrees; a lone point of a site in metres is given to a tenth of a millimetre."""
+    span = float(np.ptp(everything, axis=0).max())
+    return 0 < span < TINY or (span == 0 and bool((everything != everything.round(FINE)).any()))
 
 
 def _from_degrees(grid: Grid, everything: Array) -> Callable[[Array], Array]:
@@ -165,12 +192,13 @@ def _near(place: Callable[[Array], Array], everything: Array, meant: str) -> Cal
         raise FeatureError(
             f"read as {meant} it lies {_far(away)} from the site's origin, with the two swapped it lies near: the axes are swapped"
         )
-    for name, factor in (("feet", 0.3048), ("millimetres", 1e-3)):
-        if _distance(place, factor * everything) <= FAR:
-            raise FeatureError(
-                f"read as {meant} it lies {_far(away)} from the site's origin, read as {name} it lies near: {name} taken for metres?"
-            )
-    raise FeatureError(f"read as {meant} ({_first(everything)}) it lies {_far(away)} from the site's origin")
+    taken, factor = min((("feet", 0.3048), ("millimetres", 1e-3)), key=lambda unit: _distance(place, unit[1] * everything))
+    if _distance(place, factor * everything) <= FAR:
+        raise FeatureError(
+            f"read as {meant} it lies {_far(away)} from the site's origin, read as {taken} it lies near: {taken} taken for metres?"
+        )
+    plain = "; metres from the origin? with crs a file is in degrees or in that system" if np.abs(everything).max() <= PLAIN else ""
+    raise FeatureError(f"read as {meant} ({_first(everything)}) it lies {_far(away)} from the site's origin{plain}")
 
 
 def _distance(place: Callable[[Array], Array], points: Array) -> float:
@@ -223,7 +251,11 @@ def _invalid(feature: Feature, place: Callable[[Array], Array]) -> str | None:
 def _boundary(found: Sequence[Feature]) -> BaseGeometry:
     from shapely import union_all
 
-    lines = [f"{f.place} is no polygon; the boundary is the ground anchors must lie in" for f in found if f.shape.geom_type not in AREAS]
+    lines = [
+        f"{f.place} is no polygon; draw the boundary as one closed outline, the ground anchors must lie in"
+        for f in found
+        if f.shape.geom_type not in AREAS
+    ]
     if lines:
         raise FeatureError(*lines)
     return union_all([f.shape for f in found])
@@ -278,6 +310,10 @@ def _ground(path: Path, content: bytes, grid: Grid | None) -> Ground:
     text = _text(content)
     heights = ground.grid_of_heights(text) if path.suffix.lower() == ".asc" else ground.spot_heights(text)
     plan, level = heights.points[:, :2], heights.points[:, 2]
+    if len(plan) > 1 and _like_degrees(plan):
+        raise GroundError(
+            f"spans {_span(plan)}: degrees taken for metres? give east and north from the origin, or in the coordinate system"
+        )
 
     def as_local(points: Array) -> Array:
         return points

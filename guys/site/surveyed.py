@@ -8,14 +8,12 @@ sea.  A level may be left out, cell or column: the planned one stands.
 
 from __future__ import annotations
 
-import csv
-import io
 import math
 from collections.abc import Mapping
 from pathlib import Path
 
 from guys.site.grid import Grid, GridError
-from guys.site.ground import COLUMN, MEANINGS, GroundError, unit_of
+from guys.site.ground import COLUMN, MEANINGS, GroundError, table_of, unit_of
 
 FAR = 100.0
 """[m] from where it was planned, beyond which a peg is a slip, not a peg."""
@@ -32,12 +30,11 @@ class SurveyError(ValueError):
 def read_pegs(path: Path, grid: Grid | None, planned: Mapping[str, tuple[float, float, float]]) -> dict[str, tuple[float, float, float]]:
     """Places (east, north, level) [m] from the origin by name; raises SurveyError with every fault found."""
     try:
-        rows = list(csv.reader(io.StringIO(path.read_text(encoding="utf-8-sig"))))
+        text = path.read_text(encoding="utf-8-sig")
     except (OSError, UnicodeDecodeError) as error:
         raise SurveyError("no such file" if isinstance(error, FileNotFoundError) else f"cannot be read: {error}") from None
-    if not rows:
-        raise SurveyError("is empty")
     try:
+        rows = table_of(text)
         columns, factor = _header(rows[0])
     except GroundError as error:
         raise SurveyError(*error.reasons) from None
