@@ -42,7 +42,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
     """The worst load of every anchor and cable, what dropped, the base, what is past its allowable, and every warning."""
     systems: tuple[System, ...] = ("SI", "US") if units == "both" else (units,)
     scenario = solution.scenario
-    stream.write(f"{scenario.title}\n{_states(solution)}\n")
+    stream.write(f"{scenario.title}\n{states(solution)}\n")
     solution = solution.for_crew()
     of = {"": "", "service": " in service cases", "FACTORED": ", FACTORED"}[solution.loads_are]
 
@@ -86,7 +86,7 @@ def report(solution: Solution, units: Units, stream: TextIO) -> None:
         for f in solution.worst_feet
     ]
     table(f"Feet{of}", ["spar", "on", "down", "up", "sideways", "resultant", "turning"], feet, stream)
-    _findings(solution, systems, stream)
+    against(solution, systems, stream)
     lists = {
         "Warnings": solution.warnings,
         "Notes": [note for note in solution.notes if not any(note in warning for warning in solution.warnings)],
@@ -107,7 +107,8 @@ def _in_each(how: rounding.Say, value: float, systems: Sequence[System]) -> str:
     return " / ".join(how(value, s) for s in systems) if math.isfinite(value) else rounding.ABSENT
 
 
-def _states(solution: Solution) -> str:
+def states(solution: Solution) -> str:
+    """How the cases ended, in words."""
     count = {state: solution.state.count(state) for state in ("stable", "neutral", "unstable", "none")}
     words = ", ".join(f"{n} {state}{MEANING.get(state, '')}" for state, n in count.items() if n)
     check = solution.check
@@ -120,7 +121,7 @@ def _place(extreme: Extreme) -> tuple[str, str]:
     return extreme.peak_case, wind
 
 
-def _findings(solution: Solution, systems: tuple[System, ...], stream: TextIO) -> None:
+def against(solution: Solution, systems: tuple[System, ...], stream: TextIO) -> None:
     """What is past, then of what is within every anchor and the nearest of each other quantity."""
     findings = solution.findings
     if not standing(solution):

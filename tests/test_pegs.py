@@ -181,6 +181,40 @@ def test_faulty_surveys(tmp_path: Path, text: str, told: str) -> None:
     assert told in str(caught.value)
 
 
+@pytest.mark.parametrize(
+    ("head", "told"),
+    [
+        ("name,north,east,level", "read with the columns swapped within 0.01 m; in the header, swap them"),
+        ("name,east [ft],north [ft],level [m]", "read in metres within 0.01 m; in the header, write east [m]"),
+    ],
+)
+def test_columns_and_units_taken_for_others(tmp_path: Path, head: str, told: str) -> None:
+    scenario = made.scenario(made.mast())
+    pegs_found = "".join(f"{name},{east},{north},{level}\n" for name, (east, north, level) in places(scenario).items())
+    with pytest.raises(SurveyError) as caught:
+        surveyed(tmp_path, f"{head}\n{pegs_found}", scenario)
+    assert told in str(caught.value)
+
+
+def test_feet_and_survey_feet_are_told_apart(tmp_path: Path) -> None:
+    """They differ by two millionths: 4 m at a false easting of 2,000 km."""
+    scenario = on_site(ring(3), "EPSG:2225")
+    grid = scenario.site.grid  # type: ignore[union-attr]
+    assert grid is not None
+    rows = "".join("{},{},{}\n".format(name, *grid.to_grid(at[0], at[1] + 0.1)) for name, at in places(scenario).items())
+    with pytest.raises(SurveyError, match=r"read in US survey feet within 0\.10 m; in the header, leave the unit out"):
+        surveyed(tmp_path, f"name,east [ft],north [ft]\n{rows}", scenario)
+    assert surveyed(tmp_path, f"name,east,north\n{rows}", scenario)["A"][1] == pytest.approx(places(scenario)["A"][1] + 0.1, abs=MILLIMETRE)
+
+
+def test_a_peg_really_metres_off_is_taken_as_found(tmp_path: Path) -> None:
+    scenario = made.scenario(made.mast())
+    east, north, level = places(scenario)["A"]
+    assert surveyed(tmp_path, f"name,east,north,level\nA,{east + 3},{north},{level}\n", scenario)["A"] == (east + 3, north, level)
+    with pytest.raises(SurveyError, match="lies 212 m above where it was planned; levels count from the origin"):
+        surveyed(tmp_path, f"name,east,north,level\nA,{east},{north},{level + 212}\n", scenario)
+
+
 def test_pegs_as_planned_change_nothing() -> None:
     scenario = ring(3)
     same = as_built(scenario, places(scenario))
@@ -218,6 +252,14 @@ def test_the_command_writes_every_file(tmp_path: Path, capsys: pytest.CaptureFix
     assert cli.run(arguments) in (0, 3)
     content = json.loads(capsys.readouterr().out)
     assert [row["surveyed"] for row in content["as_built"]] == [True, False, False]
+    (tmp_path / "pegs.csv").write_text("name,east,north\nA,0.5,3.0\n", encoding="utf-8")
+    assert cli.run(arguments) == 3
+    past = json.loads(capsys.readouterr().out)["as_built_past"]
+    assert past
+    assert cli.run([a for a in arguments if a != "--json"]) == 3
+    told = capsys.readouterr().out
+    assert "As found: " in told
+    assert past[0]["quantity"] in told[told.index("Against the allowables") :]
     (tmp_path / "pegs.csv").write_text("name,east,north\nX,1,1\n", encoding="utf-8")
     assert cli.run(arguments) == 2
 

@@ -102,10 +102,12 @@ def report(planned: Pegs, built: AsBuilt | None, units: Units, stream: TextIO) -
     terminal.table("Check distances between pegs", ["pegs", "level", "slope"], ring, stream)
     if built is not None:
         found = [
-            [row["name"], *(f"{1000 * row[k]:+.0f} mm" for k in ("east_off_m", "north_off_m", "level_off_m")),
+            [row["name"], *(say.say(rounding.offset, row[k]) for k in ("east_off_m", "north_off_m", "level_off_m")),
              *(say.say(rounding.load, row[f"resultant_{how}_N"] or float("nan")) for how in ("planned", "as_built"))]
             for row in exchange.as_built_rows(built)
         ]  # fmt: skip
         terminal.table("Pegs as surveyed", ["peg", "east", "north", "level", "pull as planned", "pull as found"], found, stream)
+        stream.write(f"\nAs found: {terminal.states(built.after)}\n")
+        terminal.against(built.after, say.systems, stream)
         for warning in built.after.warnings:
             stream.write(f"warning: {warning}\n")

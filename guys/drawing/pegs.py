@@ -17,10 +17,12 @@ from guys.drawing.labels import Array, Field, all_over, around, place
 from guys.drawing.leaf import Words, leaf
 from guys.drawing.lettering import wrapped
 from guys.drawing.page import Page, Rect
-from guys.drawing.rounding import ABSENT, Tongue, Units, length, level, load, tongue
+from guys.drawing.rounding import ABSENT, Tongue, Units, length, level, load, offset, tongue
 from guys.drawing.scales import length_bar, ratio_text, ratio_to_fit
 from guys.drawing.site import draw_site
+from guys.drawing.strip import state_summary, verdict
 from guys.drawing.table import Column, Grid, Row, draw_grid
+from guys.results import Solution
 from guys.studies.pegs import AsBuilt, Pegs
 
 if TYPE_CHECKING:
@@ -32,6 +34,8 @@ SIDE = 96.0
 """[mm] width of the words beside it."""
 NORTH = 17.0
 """[mm] length of an arrow to the north."""
+NAMED = 3
+"""Things past their allowable that are named beside the plan."""
 FINE = 2
 """Decimals of a bearing: PRINTED_TURN of the study."""
 
@@ -44,7 +48,7 @@ def draw_setout(pegs: Pegs, built: AsBuilt | None, paper: str, units: Units) -> 
     page, zone = leaf(paper, Words(pegs.scenario.title, "set-out of anchors", _small_print(pegs), CAUTIONS), needed)
     top = zone.top - PLAN
     _plan(page, pegs, Rect(zone.left, top, zone.right - SIDE, zone.top), say)
-    _beside(page, pegs, Rect(zone.right - SIDE + 6.0, top, zone.right, zone.top), say)
+    _beside(page, pegs, built, Rect(zone.right - SIDE + 6.0, top, zone.right, zone.top), say)
     for grid in grids:
         top = draw_grid(page, grid, zone.left, top, zone.width) - 4.0
     return page.figure
@@ -110,10 +114,10 @@ def _turn(bearing: float) -> str:
 # ---------------------------------------------------------------- beside the plan
 
 
-def _beside(page: Page, pegs: Pegs, room: Rect, say: Tongue) -> None:
+def _beside(page: Page, pegs: Pegs, built: AsBuilt | None, room: Rect, say: Tongue) -> None:
     _norths(page, pegs, np.array([room.left + 20.0, room.top - 24.0]))
     y = room.top - 44.0
-    for head, text in _facts(pegs, say):
+    for head, text in [*_facts(pegs, say), *([] if built is None else [("As surveyed", _outcome(built.after))])]:
         page.text(room.left, y, head, style.BODY, bold=True, colour=style.GREY)
         for line in wrapped(text, room.width - 26.0, style.BODY):
             page.text(room.left + 26.0, y, line, style.BODY)
@@ -166,6 +170,13 @@ def _facts(pegs: Pegs, say: Tongue) -> list[tuple[str, str]]:
     return facts
 
 
+def _outcome(solution: Solution) -> str:
+    """What becomes of the structure with the pegs as surveyed."""
+    past = [f"{f.thing}, {f.quantity}" for f in solution.past]
+    named = past[:NAMED] + ([f"{len(past) - NAMED} more"] if len(past) > NAMED else [])
+    return "; ".join([state_summary(solution), verdict(solution) + (": " + ", ".join(named) if named else "")])
+
+
 # ---------------------------------------------------------------- tables
 
 
@@ -212,6 +223,6 @@ def _as_built(built: AsBuilt, say: Tongue) -> Grid:
         off = [float(v) for v in built.off[k]]
         words = name if name in built.surveyed else f"{name} (as planned)"
         rows.append(
-            [(words,), *(say.each(level, v) for v in off), say.each(length, math.hypot(*off[:2])), *(say.each(load, p) for p in pulls)]
+            [(words,), *(say.each(offset, v) for v in off), say.each(length, math.hypot(*off[:2])), *(say.each(load, p) for p in pulls)]
         )
     return Grid(heads, tuple(rows))

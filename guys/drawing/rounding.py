@@ -191,6 +191,12 @@ def level(metres: float, system: System) -> str:
     return text if text.startswith(("−", ABSENT)) else f"+{text}"
 
 
+def offset(metres: float, system: System) -> str:
+    """A difference of place with its sign, to 1 mm or 1/10 in."""
+    text = fine_length(metres, system)
+    return text if text.startswith(("−", ABSENT)) else f"+{text}"
+
+
 def thickness(metres: float, system: System) -> str:
     """A diameter, wall or ice thickness."""
     return f"{metres * 1e3:.4g} mm" if system == "SI" else f"{metres / INCH:.3g} in"

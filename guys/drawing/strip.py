@@ -37,10 +37,10 @@ def strip_words(solution: Solution) -> list[tuple[str, bool]]:
     """State, verdict and warnings in words, each with whether it alarms."""
     alarming = solution.failed or not {"none", "unstable", "neutral"}.isdisjoint(kinds(solution))
     state = state_summary(solution) + _of_which(solution)
-    past, verdict = len(solution.past), _verdict(solution)
+    past, judged = len(solution.past), verdict(solution)
     count = len(dict.fromkeys([*solution.warnings, *solution.scenario.warnings]))
     warned = f"{count} WARNING{'S' if count > 1 else ''}, in the box" if count else "no warnings"
-    return [(_raised(state), alarming), (_raised(verdict), past > 0), (warned, count > 0)]
+    return [(_raised(state), alarming), (_raised(judged), past > 0), (warned, count > 0)]
 
 
 def _of_which(solution: Solution) -> str:
@@ -56,7 +56,8 @@ def standing(solution: Solution) -> bool:
     return not {"stable", "spins"}.isdisjoint(kinds(solution))
 
 
-def _verdict(solution: Solution) -> str:
+def verdict(solution: Solution) -> str:
+    """How many checks are within, past, not judged, in words."""
     if not standing(solution):
         return "nothing judged: nothing stands"
     judged = sum(f.verdict != "not judged" for f in solution.findings)

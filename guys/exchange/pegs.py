@@ -98,7 +98,10 @@ def as_dict(pegs: Pegs, built: AsBuilt | None = None) -> dict[str, Any]:
         "ring_m": number(round_),
         "cautions": list(CAUTIONS),
     }  # fmt: skip
-    return out if built is None else {**out, "as_built": as_built_rows(built), "as_built_warnings": list(built.after.warnings)}
+    if built is None:
+        return out
+    past = [{"thing": f.thing, "quantity": f.quantity, "factor": number(f.factor)} for f in built.after.past]
+    return {**out, "as_built": as_built_rows(built), "as_built_past": past, "as_built_warnings": list(built.after.warnings)}
 
 
 def as_text(pegs: Pegs, built: AsBuilt | None = None) -> str:

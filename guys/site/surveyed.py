@@ -9,7 +9,7 @@ sea.  A level may be left out, cell or column: the planned one stands.
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from pathlib import Path
 
 from guys.site.grid import Grid, GridError
@@ -17,6 +17,20 @@ from guys.site.ground import COLUMN, MEANINGS, GroundError, table_of, unit_of
 
 FAR = 100.0
 """[m] from where it was planned, beyond which a peg is a slip, not a peg."""
+RISE = 30.0
+"""[m] above or below where it was planned, likewise."""
+LEVELS = "levels count from the origin beside metres from it, from the sea beside coordinates of a system"
+OFF = 1.0
+"""[m] from where it was planned, beyond which another reading of the file is tried."""
+NEARER = 10.0
+"""So many times nearer another reading brings all pegs that is taken for the right one."""
+UNITS = (
+    ("metres", 1.0, "write east [m]"),
+    ("feet", 0.3048, "write east [ft]"),
+    ("US survey feet", 1200 / 3937, "leave the unit out: plain numbers are in the unit of the coordinate system"),
+)
+"""Name, metres and what to do in the header."""
+Place = tuple[float, float, float]
 
 
 class SurveyError(ValueError):
@@ -27,7 +41,7 @@ class SurveyError(ValueError):
         super().__init__("; ".join(reasons))
 
 
-def read_pegs(path: Path, grid: Grid | None, planned: Mapping[str, tuple[float, float, float]]) -> dict[str, tuple[float, float, float]]:
+def read_pegs(path: Path, grid: Grid | None, planned: Mapping[str, Place]) -> dict[str, Place]:
     """Places (east, north, level) [m] from the origin by name; raises SurveyError with every fault found."""
     try:
         text = path.read_text(encoding="utf-8-sig")
@@ -38,7 +52,23 @@ def read_pegs(path: Path, grid: Grid | None, planned: Mapping[str, tuple[float, 
         columns, factor = _header(rows[0])
     except GroundError as error:
         raise SurveyError(*error.reasons) from None
-    found: dict[str, tuple[float, float, float]] = {}
+    found, reasons = _pegs(rows, columns, factor, grid, planned)
+    if reasons:
+        raise SurveyError(*reasons)
+    if not found:
+        raise SurveyError("holds no pegs")
+    slip = _slip(rows, columns, factor, grid, planned, _most_off(found, planned))
+    reasons = [slip] if slip else list(_astray(found, planned))
+    if reasons:
+        raise SurveyError(*reasons)
+    return found
+
+
+def _pegs(
+    rows: Sequence[list[str]], columns: Mapping[str, int], factor: Mapping[str, float], grid: Grid | None, planned: Mapping[str, Place]
+) -> tuple[dict[str, Place], list[str]]:
+    """Every peg of the table, and what is wrong with it."""
+    found: dict[str, Place] = {}
     reasons: list[str] = []
     for number, row in enumerate(rows[1:], 2):
         if any(cell.strip() for cell in row):
@@ -49,11 +79,45 @@ def read_pegs(path: Path, grid: Grid | None, planned: Mapping[str, tuple[float, 
                 found[name] = place
             except (SurveyError, GridError) as error:
                 reasons.append(f"line {number}: {error}")
-    if reasons:
-        raise SurveyError(*reasons)
-    if not found:
-        raise SurveyError("holds no pegs")
-    return found
+    return found, reasons
+
+
+def _most_off(found: Mapping[str, Place], planned: Mapping[str, Place]) -> float:
+    """[m] in plan, of the peg that is off most."""
+    return max(math.dist(place[:2], planned[name][:2]) for name, place in found.items())
+
+
+def _slip(
+    rows: Sequence[list[str]],
+    columns: Mapping[str, int],
+    factor: Mapping[str, float],
+    grid: Grid | None,
+    planned: Mapping[str, Place],
+    off: float,
+) -> str:
+    """How pegs that are far off would all be where they were planned: columns or units taken for others; empty where no way."""
+    if off <= OFF:
+        return ""
+    swap = {"east": "north", "north": "east", "lat": "lon", "lon": "lat"}
+    swapped = {swap.get(meaning, meaning): k for meaning, k in columns.items()}
+    read_as = [("with the columns swapped", swapped, dict(factor), "swap them")]
+    read_as += [(f"in {unit}", dict(columns), {**factor, "east": metres, "north": metres}, cure) for unit, metres, cure in UNITS]
+    for words, as_columns, as_factor, cure in read_as:
+        found, reasons = _pegs(rows, as_columns, as_factor, grid, planned)
+        if not reasons and (left := _most_off(found, planned)) < off / NEARER:
+            read = f"pegs lie up to {off:,.1f} m from where they were planned, read {words} within {max(left, 0.01):.2f} m"
+            return f"{read}; in the header, {cure}"
+    return ""
+
+
+def _astray(found: Mapping[str, Place], planned: Mapping[str, Place]) -> Iterator[str]:
+    """Pegs that are too far off to be pegs."""
+    for name, place in found.items():
+        off, rise = math.dist(place[:2], planned[name][:2]), place[2] - planned[name][2]
+        if off > FAR:
+            yield f'"{name}" lies {off:,.0f} m from where it was planned; are the columns or the units swapped?'
+        elif abs(rise) > RISE:
+            yield f'"{name}" lies {abs(rise):,.0f} m {"above" if rise > 0 else "below"} where it was planned; {LEVELS}'
 
 
 def _header(cells: list[str]) -> tuple[dict[str, int], dict[str, float]]:
@@ -81,8 +145,8 @@ def _peg(
     columns: Mapping[str, int],
     factor: Mapping[str, float],
     grid: Grid | None,
-    planned: Mapping[str, tuple[float, float, float]],
-) -> tuple[str, tuple[float, float, float]]:
+    planned: Mapping[str, Place],
+) -> tuple[str, Place]:
     cells = {meaning: row[place].strip() if place < len(row) else "" for meaning, place in columns.items()}
     name = cells["name"]
     if name not in planned:
@@ -106,8 +170,6 @@ def _peg(
     here = planned[name]
     off = [math.hypot(e - here[0], n - here[1]) for e, n in places]
     k = off.index(min(off))
-    if off[k] > FAR:
-        raise SurveyError(f'"{name}" lies {off[k]:,.0f} m from where it was planned; are the columns or the units swapped?')
     found = heights[k]
     return name, (*places[k], here[2] if found is None else found)
 
