@@ -13,7 +13,8 @@ Sources: Cuthill & McKee (1969), reversed after George (1971), from scipy; LAPAC
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -75,17 +76,24 @@ def lay_out(rows: Sequence[Index], columns: Sequence[Index], held: NDArray[np.bo
 
     held : (node, 6) directions without unknown, rotations about the node's frame
     """
-    nodes = len(held)
-    ends = [np.stack([r, c], axis=1) for r, c in zip(rows, columns, strict=True)]
-    filled = _with_folds({(int(r), int(c)) for part in ends for r, c in part}, nodes, rides)
+    ends = tuple(tuple(zip(r.tolist(), c.tolist(), strict=True)) for r, c in zip(rows, columns, strict=True))
+    return replace(_laid_out(ends, held.tobytes(), rides), frames=frames)
+
+
+@lru_cache(maxsize=8)
+def _laid_out(ends: tuple[tuple[tuple[int, int], ...], ...], held: bytes, rides: Rides) -> Pattern:
+    """The pattern but for its frames: the same for all layouts of a structure, all angles of a raising, so it is worked out once."""
+    taken = np.frombuffer(held, dtype=bool).reshape(-1, 6)
+    nodes = len(taken)
+    filled = _with_folds({pair for part in ends for pair in part}, nodes, rides)
     pair = np.array([(n, n) for n in range(nodes)] + sorted((r, c) for r, c in filled if r != c), dtype=np.int64)
     of = {(int(r), int(c)): k for k, (r, c) in enumerate(pair)}
-    plan = tuple(_rounds(np.array([of[int(r), int(c)] for r, c in part], dtype=np.int64)) for part in ends)
-    fixed = held.copy()
+    plan = tuple(_rounds(np.array([of[end] for end in part], dtype=np.int64)) for part in ends)
+    fixed = taken.copy()
     for node, welded in zip(rides.node, rides.welded, strict=True):
         fixed[node, : 6 if welded else 3] = True
     free = _number(pair, ~fixed)
-    return Pattern(nodes, pair, of, plan, rides, frames, free, _sources(pair, of, free))
+    return Pattern(nodes, pair, of, plan, rides, Frames((), np.zeros((0, 3, 3))), free, _sources(pair, of, free))
 
 
 def _rounds(targets: Index) -> tuple[tuple[Selection, Selection], ...]:

@@ -31,7 +31,7 @@ TIGHT = 1e-3
 """Stretch by which the measure of a straight cable that is to be just tight is scaled."""
 FIRST_GRID = np.concatenate([np.linspace(0, 1, 60) ** 4 * 1e-2, np.geomspace(1.1e-2, 1.0, 90)])
 """Where a first length is looked for between the tautest it may be (0) and twice that (1): closest where tension falls fast."""
-ZOOMS = 5
+ZOOMS = 3
 """Times a first length is looked for, each time but the first between neighbours of the last, twenty times finer."""
 
 

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from guys.icing import coat
-from guys.loads.spread import GAUSS
+from guys.loads.spread import GAUSS, GAUSS_WEIGHTS
 from guys.rotation import Array
 from guys.sections import coated
 from guys.structure import Structure
@@ -35,8 +35,7 @@ def ice_at(structure: Structure, z: Array, low: Array, high: Array) -> Ice:
             lattice = structure.scenario.spar[spar].section[place].lattice
             if lattice is not None:
                 mass[n], width[n] = coated(lattice, ice, z[n])
-    x, w = np.polynomial.legendre.leggauss(GAUSS)
-    heights = low[:, None] + 0.5 * (1 + x) * (high - low)[:, None]
+    heights = low[:, None] + 0.5 * (1 + GAUSS) * (high - low)[:, None]
     around = coat(np.broadcast_to(structure.cables.diameter[:, None], heights.shape), ice, heights)
-    cable_mass, cable_width = (each @ (0.5 * w) for each in around)
+    cable_mass, cable_width = (each @ (0.5 * GAUSS_WEIGHTS) for each in around)
     return Ice(mass, width, cable_mass, cable_width)

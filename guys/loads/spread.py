@@ -16,7 +16,7 @@ import numpy as np
 from guys.rotation import Array
 from guys.structure import Pieces
 
-GAUSS = 16
+GAUSS, GAUSS_WEIGHTS = np.polynomial.legendre.leggauss(16)
 """Points between two cuts: a profile z^0.3 from z = 0 is then integrated within 1e-4, any other far closer."""
 
 
@@ -34,12 +34,11 @@ class Weights:
 def weights(pieces: Pieces, cuts: Array) -> Weights:
     """Weights with which a load at the Gauss points of every stretch acts on the nodes of its ends; cuts (piece, any) are the shares of a
     stretch at which the load may jump or bend, those outside 0 to 1 being none."""
-    x, w = np.polynomial.legendre.leggauss(GAUSS)
     h = (pieces.station[:, 1] - pieces.station[:, 0])[:, None]
     bounds = _bounds(cuts)
     part = np.diff(bounds, axis=1)[..., None]
-    f = (bounds[:, :-1, None] + part * (0.5 * (1 + x))).reshape(len(h), -1)
-    dw = (part * (0.5 * w)).reshape(len(h), -1) * h
+    f = (bounds[:, :-1, None] + part * (0.5 * (1 + GAUSS))).reshape(len(h), -1)
+    dw = (part * (0.5 * GAUSS_WEIGHTS)).reshape(len(h), -1) * h
     station = pieces.station[:, :1] + f * h
     rigid = pieces.rigid[:, None]
     return Weights(
