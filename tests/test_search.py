@@ -369,6 +369,7 @@ def test_the_command_writes_its_files(tmp_path: Path, capsys: pytest.CaptureFixt
         (ONE + ONE, "", "search.move[1].anchors[0]", "moves already"),
         (ONE, 'against = "pull"\n', "search.against", "the same as least"),
         (ONE, 'against = "pieces"\n', "search.against", ""),
+        (ONE, 'against = "mass"\n', "search.against", "no holdfast is a block"),
         ('[[search.move]]\nanchors = ["A"]\nplaces = [{ east = "1 m" }, { bearing = "1 deg", radius = "5 m" }]\n', "",
          "search.move[0].places[0]", "give bearing and radius"),
     ],

@@ -202,6 +202,15 @@ def test_ground_in_the_grid_carries_levels_above_the_sea(tmp_path: Path) -> None
     assert "the axes are swapped" in faults(tmp_path, {**PLACED, "ground": "g.csv"}, {"g.csv": "east,north,level\n" + swapped})
 
 
+def test_levels_above_the_sea_without_a_system_are_warned_of(tmp_path: Path) -> None:
+    high = "east,north,level\n-40,-40,212\n40,-40,212\n40,40,212\n-40,40,212\n"
+    warned = read(tmp_path, {"ground": "g.csv"}, {"g.csv": high}).warnings
+    assert any("the surveyed ground lies at 212 m" in w and "levels count from the origin, not from the sea" in w for w in warned)
+    above = [w for w in warned if "above where it is made fast to the spar" in w]
+    assert len(above) == len(MAST["guy_level"]) * len(MAST["anchor"])
+    assert not any("is flat for" in w for w in warned)
+
+
 def test_an_anchor_off_the_survey_is_a_fault_not_a_guess(tmp_path: Path) -> None:
     small = "east,north,level\n-5,-5,0\n5,-5,0\n0,9,0\n"
     told = faults(tmp_path, {"ground": "g.csv"}, {"g.csv": small})

@@ -24,6 +24,8 @@ from guys.site.read import Asked
 
 FOLLOWED = 0.15
 """[m] a foot this near the surveyed ground stands on it."""
+MIXED = 20.0
+"""[m] a foot this far off it: levels above the sea among levels from the origin, rather than a roof or a pit."""
 
 
 def placed(draft: Draft, path: str | None) -> tuple[Draft, Site | None, list[Finding]]:
@@ -177,7 +179,8 @@ def warnings(feet: Sequence[tuple[str, GroundFoot]], site: Site) -> Iterator[str
             yield f"spar {name}: its foot is outside the surveyed ground"
         elif abs(level - foot.level) > FOLLOWED:
             found, given = units.both(level, "length"), units.both(foot.level, "length")
-            yield f"spar {name}: the surveyed ground lies at {found} where its foot stands at {given}"
+            mixed = "; levels count from the origin, not from the sea" if abs(level - foot.level) > MIXED else ""
+            yield f"spar {name}: the surveyed ground lies at {found} where its foot stands at {given}{mixed}"
     if site.grid is not None and site.grid.accuracy > 0.5:
         within = f"within {site.grid.accuracy:g} m only, as PROJ states for this change of datum"
         yield f"{site.grid.crs}: places by latitude and longitude are {within}"

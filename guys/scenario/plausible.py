@@ -181,7 +181,9 @@ def _cables(scenario: Scenario) -> Iterator[str]:
             yield f"{what}, length: {units.both(cable.length, 'length')} for a chord of {units.both(chord, 'length')}"
         if isinstance(cable.to, AnchorPoint):
             angle = math.asin((top[2] - bottom[2]) / chord)
-            if not SHALLOW <= angle <= STEEP:
+            if angle < 0:
+                yield f"{what}: its anchor lies {units.both(bottom[2] - top[2], 'length')} above where it is made fast to the spar"
+            elif not SHALLOW <= angle <= STEEP:
                 yield f"{what}: {units.show(angle, 'deg', 3)} from the ground is {'steep' if angle > STEEP else 'flat'} for a guy or stay"
 
 

@@ -20,6 +20,7 @@ def findings(draft: Draft, grid: Grid | None) -> Iterator[Finding]:
         return
     if search.against == search.least:
         yield Finding(("search", "against"), "the same as least; give another measure, or leave it out", (("search", "least"),))
+    yield from _no_blocks(draft, search)
     if search.ways is not None:
         yield from _unfit(draft)
     anchors = _names(search, [anchor.name for anchor in draft.anchor if anchor is not None])
@@ -29,6 +30,16 @@ def findings(draft: Draft, grid: Grid | None) -> Iterator[Finding]:
         yield from _moved(move, n, anchors, first)
         for k, place in enumerate(move.places or ()):
             yield from _place(place, ("search", "move", n, "places", k), grid)
+
+
+def _no_blocks(draft: Draft, search: Search) -> Iterator[Finding]:
+    """The mass of blocks, where the file has none to be sized."""
+    if any(holdfast is None or holdfast.kind == "block" for holdfast in draft.holdfast.values()):
+        return
+    for key in ("least", "against"):
+        if getattr(search, key) == "mass":
+            text = 'no holdfast is a block, whose mass could be sized; give a [holdfast.NAME] of kind = "block", or another measure'
+            yield Finding(("search", key), text, (("holdfast",),))
 
 
 def _names(search: Search, drawn: Sequence[str]) -> list[str]:
