@@ -118,7 +118,7 @@ def _lost(page: Page, centre: Array, bearings: Array, reach: Array) -> None:
 def _key(page: Page, zone: Rect) -> None:
     rows: tuple[tuple[str, float, Dash, str], ...] = (
         (style.LOAD, 1.8, style.SOLID, "limit: the first thing passes its allowable, or equilibrium is lost"),
-        (style.INK, style.CABLE, style.DASHED, "equilibrium lost"),
+        (style.INK, style.CABLE, style.DASHED, "equilibrium lost; beyond the rim, or not known, where it is not drawn"),
         (style.WIND, style.RING, style.SOLID, "the scenario's own wind"),
     )
     for i, (colour, weight, dash, words) in enumerate(rows):

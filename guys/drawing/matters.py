@@ -112,7 +112,7 @@ def _row(page: Page, panel: Panel, span: Span, point: Reading, across: Callable[
     zone = panel.zone
     if span.lacking:
         words = shortened(f"not solved: {span.lacking}", zone.width, style.SMALL)
-        page.text(zone.left, y - 1.1, words, style.SMALL, colour=style.GREY)
+        _clear(page, zone.left, y, words, colour=style.GREY)
         return
     readings = ((span.less, False), (span.more, True))
     reached = [(panel.value(r), r, more) for r, more in readings if math.isfinite(panel.value(r)) and r.falls <= point.falls]
@@ -124,8 +124,7 @@ def _row(page: Page, panel: Panel, span: Span, point: Reading, across: Callable[
     for reading, more in readings:
         if reading.falls > point.falls:
             words = f"{span.ends[more]}: falls in {reading.falls}"
-            side = zone.right if more else zone.left
-            page.text(side, y - 1.1, words, style.SMALL, True, align="right" if more else "left")
+            _clear(page, zone.right - width(words, style.SMALL, True) if more else zone.left, y, words, bold=True)
 
 
 def _values(
@@ -137,9 +136,14 @@ def _values(
         last = k == len(reached) - 1
         x = across(value) + (RING + 1.5 if last else -RING - 1.5)
         start = x if last else x - width(words, style.SMALL)
-        box = (start - 0.5, start + width(words, style.SMALL) + 0.5)
-        page.shape([(box[0], y - 1.6), (box[1], y - 1.6), (box[1], y + 2.0), (box[0], y + 2.0)], fill=style.WHITE, order=2.2)
-        page.text(start, y - 1.1, words, style.SMALL)
+        _clear(page, start, y, words)
+
+
+def _clear(page: Page, start: float, y: float, words: str, colour: str = style.INK, bold: bool = False) -> None:
+    """Words on white, so that the upright line does not run through them."""
+    left, right = start - 0.5, start + width(words, style.SMALL, bold) + 0.5
+    page.shape([(left, y - 1.6), (right, y - 1.6), (right, y + 2.0), (left, y + 2.0)], fill=style.WHITE, order=2.2)
+    page.text(start, y - 1.1, words, style.SMALL, bold, colour=colour)
 
 
 def _key(page: Page, zone: Rect) -> None:

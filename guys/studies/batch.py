@@ -358,11 +358,12 @@ def _share_words(problem: Problem, judged: stability.Judged, k: int) -> str:
     if math.isnan(share):
         return ""
     line = problem.loads.lines[k]
-    whole = (
-        "the way from still air to this case"
-        if line.without or line.dead != 1 or line.ice > 0 or problem.loads.warming[k] != 0
-        else "the load"
-    )
+    other = line.dead != 1 or line.ice > 0 or problem.loads.warming[k] != 0
+    whole = "the load"
+    if line.without and line.wind == 0 and not other:
+        whole = f"the way to being without {' and '.join(line.without)}"
+    elif line.without or other:
+        whole = "the way from still air to this case"
     return f" at {max(math.floor(100 * share) / 100, 0.01):.2f} of {whole}"
 
 

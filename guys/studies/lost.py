@@ -24,6 +24,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from guys.equilibrium import State
+from guys.errors import Fault, ScenarioError
 from guys.limits import Limit
 from guys.loads import CaseLine, LoadCases
 from guys.loads.parting import parted
@@ -95,8 +96,12 @@ class Lost:
 def lose(scenario: Scenario, progress: Progress | None = None, winds: bool = False) -> Lost:
     """Take everything away in turn; `winds`: and find how much wind is still stood, from every direction, as `guys limit` does.
 
-    A structure that falls is a result, not an exception.  Raises `ScenarioError` where no still-air state meets the initial tensions.
+    A structure that falls is a result, not an exception.  Raises `ScenarioError` where there is no cable, or no still-air state
+    meets the initial tensions.
     """
+    if not scenario.cable:
+        fault = Fault(scenario.path, None, None, "cable", "the file has none, so nothing can be lost; give [[cable]] or [[guy_level]]")
+        raise ScenarioError([fault])
     scenario = after_a_loss(scenario)
     setting = find(build(scenario))
     losses, lines = losses_of(scenario), round_lines(scenario)
