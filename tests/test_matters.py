@@ -6,6 +6,7 @@ import csv
 import json
 import math
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -14,8 +15,10 @@ import pytest
 import scenarios_made as made
 from hypothesis import given, settings
 from hypothesis import strategies as some
+from test_drawing_pictures import assert_apart
 
 from guys import cli
+from guys.drawing.matters import draw_matters_page
 from guys.drawing.rounding import stability
 from guys.exchange import matters as files
 from guys.path import CLOSE
@@ -195,6 +198,11 @@ def test_a_range_in_which_it_falls_says_so_and_comes_first() -> None:
     assert (found.point.falls, first.less.falls) == (0, 0)
     assert first.more.falls > 0
     assert "falls toward" in first.more.reason
+    crowded = replace(first, less=replace(first.less, pull=2 * found.point.pull))
+    for spans in (found.spans, (crowded, *found.spans[1:])):
+        page = draw_matters_page(replace(found, spans=spans), "A3", "SI")
+        assert f"{first.ends[1]}: falls in {first.more.falls}" in {text.text for text in page.texts}
+        assert_apart(page)
 
 
 @pytest.mark.parametrize(("key", "words"), [("tension = 1.0", "less than 1"), ('temperature = "20 degC"', 'such as "20 K"')])

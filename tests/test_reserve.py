@@ -248,6 +248,14 @@ def test_what_comes_to_rest_lying_down_is_said_to_fall() -> None:
         assert "No case stands" in " ".join(text.text for text in draw_reserve_page(found, "A4", "SI").texts)
 
 
+def test_the_figure_tells_cases_without_a_reserve_once_with_their_winds() -> None:
+    """A hinged pylon that does not stand in two of three winds: one line for both."""
+    found = reserves_of(made.tipping())
+    alike = [replace(found.every[0], wind_from=math.radians(w), verdict=NONE, words="it falls", reserves=()) for w in (30.0, 60.0)]
+    page = draw_reserve_page(replace(found, every=(*found.every, *alike)), "A3", "SI")
+    assert f"{alike[0].case}, wind from 30°, 60°: {NONE}: from 30°: it falls" in " ".join(text.text for text in page.texts)
+
+
 def swaying() -> made.Document:
     """A weightless rigid mast on slack straight guys: nothing holds it anywhere near upright."""
     return made.stayed(made.spar(rigid=True, section=[made.weightless(10.0)]), 0.0, 120.0, 240.0, length=13.0, straight=True)

@@ -29,6 +29,8 @@ NAMES, ENDS, GAP = 50.0, 62.0, 8.0
 ROOM = 19.0
 """Millimetres: height of a row, of heads above and the key below; width of names, of ends in words, between panels, of a value."""
 RING = 1.25
+Reach = tuple[float, float]
+"""From left to right [mm]."""
 
 
 @dataclass(frozen=True)
@@ -42,7 +44,12 @@ class Panel:
 
 
 def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
-    """The page."""
+    """The page as a figure."""
+    return draw_matters_page(found, paper, units).figure
+
+
+def draw_matters_page(found: Matters, paper: str, units: Units) -> Page:
+    """The page with what was placed on it."""
     rows = max(len(found.spans), 1)
     page, zone = leaf(paper, Words(found.scenario.title, "what matters most", told(found), CAUTIONS), ABOVE + ROW * rows + KEY)
     speech = tongue(units)
@@ -52,7 +59,7 @@ def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
     point = found.point
     if not found.stands:
         page.text(zone.left, zone.top - ABOVE, f"Nothing was varied: {point.reason}", style.BODY, bold=True)
-        return page.figure
+        return page
     pull = speech.say(load, point.pull)
     measures = (
         (("greatest anchor pull", f"as drawn {pull} {point.anchor}"), lambda r: r.pull, lambda v: speech.say(load, v)),
@@ -68,7 +75,7 @@ def draw_matters(found: Matters, paper: str, units: Units) -> Figure:
     for k, span in enumerate(found.spans):
         _name(page, span, zone, zone.top - ABOVE - ROW * (k + 0.5))
     _key(page, zone)
-    return page.figure
+    return page
 
 
 def _stability_head(point: Reading) -> tuple[str, str]:
@@ -94,7 +101,8 @@ def _panel(page: Page, panel: Panel, found: Matters) -> None:
     ends = [panel.value(e) for s in found.spans if not s.lacking for e in (s.less, s.more)]
     known = [v for v in (point, *ends) if math.isfinite(v)]
     if not math.isfinite(point) or point > MOST_FACTOR * max(1.0, min(known)):
-        page.text(zone.left, zone.top - ABOVE - 4.0, "not judged", style.BODY, colour=style.GREY)
+        words = "not judged" if math.isnan(point) else "hardly loaded: not drawn"
+        page.text(zone.left, zone.top - ABOVE - 4.0, words, style.BODY, colour=style.GREY)
         return
     low, high = min(known), max(known)
     scale = (zone.width - 2 * ROOM) / (high - low) if high - low > 1e-9 * abs(high) else 0.0
@@ -120,23 +128,37 @@ def _row(page: Page, panel: Panel, span: Span, point: Reading, across: Callable[
         page.line([(across(reached[0][0]), y), (across(reached[1][0]), y)], style.LOAD, 1.6, order=2.5, butt=True)
     for value, _, more in reached:
         page.circle((across(value), y), RING, fill=style.LOAD if more else style.WHITE, edge=style.LOAD, weight=1.2, order=3.0)
-    _values(page, panel, reached, across, y)
+    taken = _values(page, panel, reached, across, y)
     for reading, more in readings:
         if reading.falls > point.falls:
-            words = f"{span.ends[more]}: falls in {reading.falls}"
-            _clear(page, zone.right - width(words, style.SMALL, True) if more else zone.left, y, words, bold=True)
+            taken.append(_falls(page, zone, f"{span.ends[more]}: ", f"falls in {reading.falls}", more, taken, y))
+
+
+def _falls(page: Page, zone: Rect, end: str, falls: str, more: bool, taken: Sequence[Reach], y: float) -> Reach:
+    """In how many cases an end falls, beside what is taken of the row already: on its own side or the other, in short where room is."""
+    for words in (end + falls, falls):
+        wide = width(words, style.SMALL, True)
+        sides = [(zone.left, zone.left + wide), (zone.right - wide, zone.right)]
+        for left, right in reversed(sides) if more else sides:
+            if all(right + 1.0 < a or b + 1.0 < left for a, b in taken):
+                _clear(page, left, y, words, bold=True)
+                return left, right
+    return zone.left, zone.left
 
 
 def _values(
     page: Page, panel: Panel, reached: Sequence[tuple[float, Reading, bool]], across: Callable[[float], float], y: float
-) -> None:
-    """The value of each end outside the row, on the side it lies."""
+) -> list[Reach]:
+    """The value of each end outside the row, on the side it lies; what that takes of the row, with the rings."""
+    taken = [(across(value) - RING, across(value) + RING) for value, _, _ in reached]
     for k, (value, _, _) in enumerate(sorted(reached, key=lambda r: r[0])):
         words = panel.write(value) if math.isfinite(value) else ABSENT
         last = k == len(reached) - 1
         x = across(value) + (RING + 1.5 if last else -RING - 1.5)
         start = x if last else x - width(words, style.SMALL)
         _clear(page, start, y, words)
+        taken.append((start, start + width(words, style.SMALL)))
+    return [(min(a for a, _ in taken), max(b for _, b in taken))] if taken else []
 
 
 def _clear(page: Page, start: float, y: float, words: str, colour: str = style.INK, bold: bool = False) -> None:

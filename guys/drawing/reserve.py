@@ -7,6 +7,7 @@ colour of loads: the motion it goes in, its size chosen.  Rings mark where a cab
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -41,7 +42,7 @@ def draw_reserves(found: Reserves, paper: str, units: Units) -> Figure:
 def draw_reserve_page(found: Reserves, paper: str, units: Units) -> Page:
     """The page with what was placed on it."""
     shown, left_out = found.lowest_first[:ROWS], found.lowest_first[ROWS:]
-    below = [*_left_out(left_out), *(f"{s.case}: {s.verdict}: {s.words}" for s in found.every if not s.reserves), *found.notes]
+    below = [*_left_out(left_out), *_without_path(found), *found.notes]
     needed = KEY + max(ROW * len(shown), 12.0)
     page, zone = leaf(paper, Words(found.scenario.title, "stability reserve", below, found.cautions), needed)
     if not shown:
@@ -56,11 +57,20 @@ def draw_reserve_page(found: Reserves, paper: str, units: Units) -> Page:
 
 def row_words(standing: Standing, reserve: Reserve) -> str:
     """Case, wind, which loads, and the factor."""
-    toward = rounding.bearing(standing.wind_from)
-    wind = "" if toward == rounding.ABSENT else f", wind from {toward}"
+    wind = "" if math.isnan(standing.wind_from) else f", wind from {rounding.bearing(standing.wind_from)}"
     at = rounding.reserve(reserve.factor, reserve.stands_to, reserve.failed)
     how = f"lost at {at} times" if math.isfinite(reserve.factor) else f"{at} times"
     return f"{standing.case}{wind}: {standing.verdict}; equilibrium {how} {'the wind' if reserve.loads == 'wind' else 'all loads'}"
+
+
+def _without_path(found: Reserves) -> Iterator[str]:
+    """The cases that have no reserve: those of one verdict together, with their winds, and in words how the first of them goes."""
+    for case, verdict in dict.fromkeys((s.case, s.verdict) for s in found.every if not s.reserves):
+        alike = [s for s in found.every if not s.reserves and (s.case, s.verdict) == (case, verdict)]
+        winds = [rounding.bearing(s.wind_from) for s in alike if not math.isnan(s.wind_from)]
+        wind = f", wind from {', '.join(winds)}" if winds else ""
+        first = f"from {winds[0]}: " if len(winds) > 1 else ""
+        yield f"{case}{wind}: {verdict}: {first}{alike[0].words}"
 
 
 def _left_out(pairs: tuple[tuple[Standing, Reserve], ...]) -> list[str]:
