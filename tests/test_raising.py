@@ -14,7 +14,7 @@ from raisings import ELASTIC, MAST, STANDING, WIND, raised, turned
 from test_tilting import EXPECTED
 from toml_text import changed, dumps_tables
 
-from guys import cli, parse_scenario, read_scenario
+from guys import cli, parse_scenario, read_scenario, tilting
 from guys.constants import STANDARD_GRAVITY as G
 from guys.exchange import raising as exchange
 from guys.studies import hoisting, part_raised
@@ -22,7 +22,7 @@ from guys.studies.raising import Raised, solve
 
 SHIPPED = Path(__file__).parent.parent / "scenarios/tilt-up-mast.toml"
 THREADS = 1e-5
-"""Relative: the lines' own weight, a millionth of a kilogram a metre, and the solver's tolerance."""
+"""Relative: the lines' own weight, a ten-millionth of a kilogram a metre, and the solver's tolerance."""
 SECOND_ORDER = 0.03
 """Relative: a spar that bends by a hundredth of its length moves its weight by so much of their levers."""
 GIN, SPAR = ("raise", "gin_pole"), ("spar", 0)
@@ -53,8 +53,6 @@ def test_angles_side_by_side_give_the_same_bytes() -> None:
 
 
 def test_gin_pole_and_lifting_line_are_those_of_rigid_statics() -> None:
-    from guys import tilting
-
     found = raised(COARSE)
     pole = tilting.turning_pole(found.lift.rig, found.rigid)
     assert found.gin_pole[:-1] == pytest.approx(pole.thrust[:-1], abs=THREADS * 3e3)
@@ -148,8 +146,6 @@ def test_wind_along_the_plane_by_hand() -> None:
     """Pressure q on 1.2 x 0.1 m: across the spar q sin(a)^2 a metre, its moment q sin(a)^2 L^2/2; from the east it helps to raise."""
     found = raised((("wind",), WIND), (("raise", "angles"), ["30 deg", "60 deg"]))
     q = 0.5 * 1.225 * 12.0**2 * 1.2 * 0.1
-    from guys import tilting
-
     lever = tilting.lever(found.lift.rig, found.lift.rig.lifts)
     east, west = winds(found, 90.0), winds(found, 270.0)
     change = q * np.sin(found.angle) ** 2 * 12.0**2 / 2 / lever
@@ -168,6 +164,25 @@ def test_the_load_changes_side_earlier_in_wind(shipped: Raised) -> None:
     assert (shipped.holding[over, 0] > 1.0).all()
     assert (shipped.holding[~over, 0] < 1.0).all()
     assert (shipped.hoist[over, 0] < 1.0).all()
+
+
+PLAY = 0.02
+"""Of a pull near the line's dead point: what the play in it moves the spar, a millimetre, changes its lever."""
+
+
+def test_where_the_wind_turns_the_load_round_the_other_line_takes_it_over() -> None:
+    """Of a rigid spar near the change of side, by moments about the hinge: the hoist line carries it, or the holding line.
+
+    A holding line with any play to speak of would let the spar swing over before it held; one too short would pull against the other.
+    """
+    found = raised((("wind",), WIND), (("raise", "angles"), ["82 deg", "84 deg", "86 deg", "88 deg"]))
+    rig, moment = found.lift.rig, found.moment
+    turned_round = np.sign(moment[:, 1:]) != np.sign(moment[:, :1])
+    assert turned_round[moment[:, 0] < 0].any()
+    assert turned_round[moment[:, 0] > 0].any()
+    held = np.maximum(moment, 0.0) / -tilting.lever(rig, rig.holds)[:, None]
+    assert found.hoist == pytest.approx(found.rigid, rel=PLAY, abs=1.0)
+    assert found.holding == pytest.approx(held, rel=PLAY, abs=1.0)
 
 
 def test_raising_has_a_wind_speed_of_its_own() -> None:

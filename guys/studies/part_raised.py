@@ -24,7 +24,7 @@ HOIST, LIFTING, HOLDING = "hoist line", "lifting line", "holding line"
 TACKLE = (HOIST, LIFTING, HOLDING)
 MARK = "[raise] "
 """Keeps names of the tackle apart from names of the file, which cannot clash with it in one scenario by more than chance."""
-THREAD = 1e-6
+THREAD = 1e-7
 """Mass [kg/m] and [m] diameter of the tackle's lines: nothing beside what hangs on them, yet a slack one has a shape."""
 STRETCH = 1e-4
 """Stretch of a line of no given rope under all the weight raised: a millimetre in ten metres."""

@@ -2,7 +2,7 @@
 
 At each angle the spar as it is then (`guys.studies.part_raised`) goes through the one line of the house: setting, wind cases, recovery.
 The winch has let the hoist line be as long as a rigid spar needs to rest at that angle; rigid statics (`guys.tilting`) gives that length,
-tells which line carries, and stands beside the answer as its check.  The line that does not carry in still air is just free of slack, so
+tells which line carries, and stands beside the answer as its check.  The line that does not carry in still air is as good as straight, so
 it takes over in a wind that turns the load round.  In the rigid statics side guys pull on straight lines, half of their weight at the top.
 """
 
@@ -183,9 +183,24 @@ def _setting(lift: Lift, rigid: tilting.Pulls, k: int, structure: Structure) -> 
     chords = _chords(lift, k)
     lengths = {c: chords[c] / (1.0 + tension / lift.stiffness[c == len(chords) - 1]) for c, tension in carrying.items()}
     try:
-        return find(_strung(structure, lengths))
+        return _drawn_in(lift, find(_strung(structure, lengths)), [c for c in range(len(chords)) if c not in carrying])
     except ScenarioError:
         return find(_strung(structure, {**dict(enumerate(chords)), **lengths}))
+
+
+def _drawn_in(lift: Lift, setting: Setting, slack: list[int]) -> Setting:
+    """The setting with the lines that carry nothing longer than the straight way by what the weight raised would stretch them.
+
+    So they do not pull against the line that carries while its stretch goes, and take over when it has gone.  Tight in the sense of a
+    catenary, a pull at mid-length of its own weight, would be 4 % longer however light the line: the spar would swing far first.
+    """
+    if not setting.stands:
+        return setting
+    length = setting.length.copy()
+    straight = np.linalg.norm(setting.problem.chords(setting.state)[2][0, slack], axis=-1)
+    stiffness = np.array([lift.stiffness[part_raised.names(lift)[c].endswith(part_raised.HOLDING)] for c in slack])
+    length[slack] = (1.0 + lift.weight / stiffness) * straight
+    return replace(setting, length=length, problem=replace(setting.problem, length=length))
 
 
 def _strung(structure: Structure, lengths: dict[int, float]) -> Structure:
