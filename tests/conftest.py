@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Iterator
+from typing import Any
 
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 """Set before numpy is first imported: more threads only cost time at these sizes, and change the last bits."""
@@ -33,6 +34,25 @@ def strict_numbers() -> Iterator[None]:
     """Underflow is allowed: exact zeros are what it gives."""
     with np.errstate(invalid="raise", divide="raise", over="raise"):
         yield
+
+
+@pytest.fixture
+def one_format(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Commands save each figure once, as SVG; its bytes stand for the other formats too.
+
+    For tests of what a command computes, tells and names: `test_doors.py` and `test_drawing_files.py` save every format.
+    """
+    from guys.doors import common
+
+    kept: dict[int, tuple[Any, bytes]] = {}
+
+    def saved(figure: Any, kind: str, title: str, version: str) -> bytes:
+        if id(figure) not in kept:
+            kept[id(figure)] = figure, figure_bytes(figure, "svg", title, version)
+        return kept[id(figure)][1]
+
+    figure_bytes = common.figure_bytes
+    monkeypatch.setattr(common, "figure_bytes", saved)
 
 
 @pytest.fixture

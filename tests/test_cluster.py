@@ -6,6 +6,13 @@ import subprocess
 import sys
 from pathlib import Path
 
+import scenarios_made as made
+
+STEEPER = """
+[[layout]]
+name = "steep"
+anchor = [{ name = "A", bearing = "0 deg", radius = "5 m" }]
+"""
 PROGRAM = """
 import sys
 from distributed import Client, LocalCluster
@@ -22,7 +29,8 @@ if __name__ == "__main__":
 
 
 def test_a_local_cluster_gives_the_same_bytes(tmp_path: Path) -> None:
-    scenario = Path(__file__).parent.parent / "scenarios/bench-mast.toml"
+    scenario = tmp_path / "mast.toml"
+    scenario.write_text(made.text(made.ring_mast(3)) + STEEPER, encoding="utf-8")
     (tmp_path / "spread.py").write_text(PROGRAM, encoding="utf-8")
     done = subprocess.run([sys.executable, str(tmp_path / "spread.py"), str(scenario)], capture_output=True, text=True, check=True)
     size, same = done.stdout.split()

@@ -107,7 +107,9 @@ def test_blocks_are_heavy_enough_for_the_pull(found: Comparison) -> None:
         assert each.values["mass"].value > 0.9 * least
 
 
-def test_any_executor_gives_the_same_bytes(scenario: Scenario, found: Comparison) -> None:
+def test_any_executor_gives_the_same_bytes() -> None:
+    scenario = parse_scenario(made.text(made.ring_mast(3)) + layout("wide", ("A", 0.0, 11.0)) + layout("steep", ("A", 0.0, 5.0)))
+    found = compare([scenario], by="uplift")
     with ProcessPoolExecutor(2) as processes, ThreadPoolExecutor(2) as threads:
         for executor in (processes, threads):
             other = compare([scenario], by="uplift", executor=executor)
@@ -161,6 +163,7 @@ def test_all_plans_stand_in_one_figure_at_one_scale(found: Comparison) -> None:
     assert max(scales) == pytest.approx(min(scales), rel=ROUNDING)
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_command_over_two_files(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     for name in ("a", "b"):
         (tmp_path / f"{name}.toml").write_text(made.text(made.mast(0.0)), encoding="utf-8")

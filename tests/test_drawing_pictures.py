@@ -77,6 +77,7 @@ def test_a_structure_without_wind_or_that_falls_still_gets_its_page() -> None:
     assert draw_pictures(nothing, "A3", "SI").get_size_inches()[0] > 0
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_option_of_solve(tmp_path: Path) -> None:
     (tmp_path / "mast.toml").write_text(made.text(made.mast()), encoding="utf-8")
     assert cli.run(["solve", str(tmp_path / "mast.toml"), "--out", str(tmp_path / "out"), "--pictures"]) in (0, 3)

@@ -142,6 +142,7 @@ def test_pages_in_both_systems(found: Field) -> None:
     assert tuple(draw_field(slack, "letter", "US")) == PAGES
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_command_writes_every_file(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "mast.toml"
     file.write_text(made.text(made.mast()), encoding="utf-8")

@@ -125,6 +125,7 @@ def test_validate_echoes_what_moves(tmp_path: Path, capsys: pytest.CaptureFixtur
     assert told == ['layout "wide", anchor "A": bearing 15 deg, radius 9 m (29.53 ft), level 0 m (0 ft)']
 
 
+@pytest.mark.usefixtures("one_format")
 def test_one_layout_is_solved_by_name(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     path = tmp_path / "mast.toml"
     path.write_text(made.text(made.mast()) + WIDE, encoding="utf-8")

@@ -242,6 +242,7 @@ def test_exit_status_tells_whether_the_scenarios_wind_is_past_the_limit(
     assert told["lower_in_s"] == (1200.0 if "limit" in document else None)
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_and_table(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "pole.toml"
     file.write_text(made.text(pole(10.0)), encoding="utf-8")

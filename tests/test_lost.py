@@ -245,6 +245,7 @@ def test_a_suddenness_below_one_is_refused(tmp_path: Path, capsys: pytest.Captur
     assert "lost.sudden: 0.9 will not do; it must be at least 1" in capsys.readouterr().err
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_table_and_exit_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "a.toml"
     file.write_text(made.text(made.ring_mast(3)))

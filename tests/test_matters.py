@@ -213,6 +213,7 @@ def test_wrong_ranges_are_refused(key: str, words: str, tmp_path: Path, capsys: 
     assert words in capsys.readouterr().err
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_and_exit_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "a.toml"
     file.write_text(made.text(made.mast(20.0, ranges={**NOTHING, "drag": 0.15, "tension": 0.1})))

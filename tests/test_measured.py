@@ -160,6 +160,7 @@ def files(filled: tuple[str, str], tmp_path: Path) -> tuple[Path, Path]:
     return paths
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_form_filled_in_as_set_asks_for_no_change(files: tuple[Path, Path], capsys: pytest.CaptureFixture[str]) -> None:
     scenario, form = files
     out = scenario.parent / "found"

@@ -246,6 +246,7 @@ def test_a_peg_nearer_the_mast_bears_what_the_scenario_says_it_does() -> None:
 # ---------------------------------------------------------------- the command
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_command_writes_every_file(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     (tmp_path / "mast.toml").write_text(made.text(made.mast()), encoding="utf-8")
     assert cli.run(["setout", str(tmp_path / "mast.toml"), "--out", str(tmp_path / "out"), "--paper", "A4"]) == 0

@@ -336,6 +336,7 @@ def test_json_and_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> 
     assert "nothing holds the spar" in out
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_are_written(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     status, out, _ = run("raise", written(tmp_path, COARSE), "--out", str(tmp_path / "out"), "--units", "both", capsys=capsys)
     assert status == 0
@@ -362,6 +363,7 @@ def test_a_file_without_the_table_is_refused(tmp_path: Path, capsys: pytest.Capt
     assert "raise: missing; give [raise]" in err
 
 
+@pytest.mark.usefixtures("one_format")
 def test_solving_a_file_that_is_only_raised_says_what_holds_it_not(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     status, out, _ = run("solve", written(tmp_path), "--out", str(tmp_path / "out"), capsys=capsys)
     assert status == 4

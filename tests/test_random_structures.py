@@ -121,7 +121,7 @@ def listed(document: made.Document) -> Batch | None:
     return join([first, solve_lines(setting, lines_of(s.scenario), True)]) if setting.stands else first
 
 
-@limits(max_examples=30)
+@limits(max_examples=20)
 @given(structures())
 def test_any_structure_has_an_equilibrium_that_balances_or_a_reason(document: made.Document) -> None:
     batch = listed(document)

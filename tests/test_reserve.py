@@ -273,6 +273,7 @@ def test_free_to_sway_is_neutral_and_free_to_spin_is_not() -> None:
 # ---------------------------------------------------------------- ways out
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_table_and_exit_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "pylon.toml"
     file.write_text(made.text(made.tipping()), encoding="utf-8")

@@ -67,6 +67,7 @@ def test_what_does_not_fit_is_refused() -> None:
         rings(made.scenario(cut))
 
 
+@pytest.mark.usefixtures("one_format")
 def test_the_command_and_its_files(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     (tmp_path / "mast.toml").write_text(made.text(made.mast(0.0)), encoding="utf-8")
     arguments = ["ring", str(tmp_path / "mast.toml"), "--ways", "3,4", "--radius", "6 m", "12 m", "--steps", "3", "--workers", "1"]

@@ -167,6 +167,7 @@ def test_a_file_without_stages_is_told_what_to_write(tmp_path: Path, capsys: pyt
     assert "give [[stage]] with name" in capsys.readouterr().err
 
 
+@pytest.mark.usefixtures("one_format")
 def test_files_table_and_exit_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file = tmp_path / "a.toml"
     rows = [{"name": "no guys", "cables": [], "wind": 5.0}, {"name": "up", "wind": 5.0}]

@@ -10,7 +10,6 @@ import warnings
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from concurrent.futures import Executor, ProcessPoolExecutor
 from contextlib import ExitStack, contextmanager
-from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
@@ -71,12 +70,8 @@ def workers(count: int | None) -> Iterator[Executor | None]:
 
 
 def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
-    """A figure as `stem`.pdf, .svg and .png, side by side."""
-    kinds = ("pdf", "svg", "png")
-    with workers(None) as executor:
-        every = map if executor is None else executor.map
-        contents = list(every(partial(figure_bytes, figure, title=title, version=__version__), kinds))
-    return {f"{stem}.{kind}": content for kind, content in zip(kinds, contents, strict=True)}
+    """A figure as `stem`.pdf, .svg and .png."""
+    return {f"{stem}.{kind}": figure_bytes(figure, kind, title, __version__) for kind in ("pdf", "svg", "png")}
 
 
 def told(groups: Iterable[tuple[str, Sequence[str]]], stream: TextIO) -> None:
