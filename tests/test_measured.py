@@ -33,10 +33,11 @@ EXACT = FieldWork(time_error=1e-7, sag_error=1e-9, sight_error=1e-9, gauge_error
 
 
 STILL = [{"name": "still", "wind": 0.0}]
+RIGID = made.ring_mast(3, tension=2000.0, case=STILL)
 
 
-def plan_of(work: FieldWork, sides: int = 3) -> Field:
-    return field(made.scenario(made.mast(sides=sides, case=STILL)).model_copy(update={"field": work}))
+def plan_of(work: FieldWork, document: made.Document | None = None) -> Field:
+    return field(made.scenario(made.mast(case=STILL) if document is None else document).model_copy(update={"field": work}))
 
 
 @cache
@@ -94,8 +95,7 @@ def test_balance_takes_out_what_misreading_puts_in() -> None:
     """Three guys of one level, alike, on a plumb pinned mast: one tension balances, so what is found is the mean of what is read, and its
     error that of one reading over the root of three."""
     work = FieldWork(gauge_error=0.02, plumb_error=1e-6)
-    scenario = made.scenario(made.ring_mast(3, tension=2000.0, case=STILL)).model_copy(update={"field": work})
-    plan = field(scenario)
+    plan = plan_of(work, RIGID)
     off = np.array([1.03, 0.99, 1.0])
     found = measured(plan, taken(plan, plan.still, "gauge", factor=off))
     weight = (0.02 * off) ** -2.0
@@ -106,16 +106,16 @@ def test_balance_takes_out_what_misreading_puts_in() -> None:
 
 def test_readings_of_one_cable_are_weighed_together() -> None:
     work = FieldWork(gauge_error=0.04, mass_error=0.0, time_error=0.2)
-    plan = plan_of(work)
+    plan = plan_of(work, RIGID)
     once, twice = (measured(plan, taken(plan, plan.still, *ways)) for ways in (("gauge",), ("gauge", "gauge")))
     assert twice.error == pytest.approx(once.error / math.sqrt(2))
     assert once.error == pytest.approx(0.04 * once.read)
-    heavier = measured(plan_of(FieldWork(time_error=1e-9, mass_error=0.03)), taken(plan, plan.still, "swing"))
+    heavier = measured(plan_of(FieldWork(time_error=1e-9, mass_error=0.03), RIGID), taken(plan, plan.still, "swing"))
     assert heavier.error == pytest.approx(0.03 * heavier.read, rel=1e-4)
 
 
 def test_what_is_told_of_bad_readings() -> None:
-    plan = plan_of(FieldWork(gauge_error=0.01))
+    plan = plan_of(FieldWork(gauge_error=0.01), RIGID)
     first = np.where(np.arange(len(plan.tension)) == 0, 1.3, 1.0)
     found = measured(plan, replace(taken(plan, plan.still, "gauge", factor=first), signed=False))
     assert any("balances the others" in w and plan.scenario.cable[0].name in w for w in found.warnings)
