@@ -68,10 +68,10 @@ def report(raised: Raised, findings: tuple[Finding, ...], units: Units, stream: 
     """Every stage in still air and in the worst wind, what is judged, and every warning."""
     systems: tuple[System, ...] = ("SI", "US") if units == "both" else (units,)
     lift = raised.lift
-    stages = len(raised.angle)
+    stages = f"{len(raised.angle)} angle" + "s" * (len(raised.angle) != 1)
     winds = f" and {len(raised.wind_from) - 1} winds" if len(raised.wind_from) > 1 else ""
     stream.write(
-        f"{lift.scenario.title}\n{lift.spar.name} raised by a {lift.raising.gin_pole.kind} gin pole: {stages} angles in still air{winds}\n"
+        f"{lift.scenario.title}\n{lift.spar.name} raised by a {lift.raising.gin_pole.kind} gin pole: {stages} in still air{winds}\n"
     )
     _stages(raised, "In still air", lambda value: value[:, 0], systems, stream)
     if winds:
