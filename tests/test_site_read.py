@@ -167,6 +167,11 @@ def test_a_file_too_large_or_missing(tmp_path: Path) -> None:
     assert "is 200 MB" in faults(tmp_path, {"boundary": "b.json"}, {})
 
 
+def test_more_shapes_than_a_site_has(tmp_path: Path) -> None:
+    many = collection(*[feature("Point", [30.0 + k, 10.0], kind="mast") for k in range(1_001)])
+    assert "holds 1,001 shapes; more than 1,000 are no site" in faults(tmp_path, {"obstacles": "o.json"}, {"o.json": many})
+
+
 @pytest.mark.parametrize(
     ("properties", "told"),
     [

@@ -29,6 +29,8 @@ if TYPE_CHECKING:
 Array = NDArray[np.float64]
 LARGEST = 20_000_000
 """Bytes a site file may have."""
+MOST = 1_000
+"""Shapes a site file may have: each is looked at beside every anchor and cable, and drawn."""
 FAR = 5_000.0
 """[m] from the origin, beyond which nothing of a site can be meant: millimetres of a fence 5 m away taken for metres."""
 TINY = 0.05
@@ -120,6 +122,8 @@ def _layer(path: Path, content: bytes, drawing_unit: float | None) -> Layer:
     if not layer.features:
         passed = f", only {', '.join(layer.passed_over)}" if layer.passed_over else ""
         raise FeatureError(f"holds no shapes{passed}; leave the key out where there are none")
+    if len(layer.features) > MOST:
+        raise FeatureError(f"holds {len(layer.features):,} shapes; more than {MOST:,} are no site: cut it down to the surroundings")
     return layer
 
 
