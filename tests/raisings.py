@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import cache
 from typing import Any
 
 from scenarios_made import Document
@@ -38,7 +39,13 @@ ELASTIC = {"length": "12 m", "mass": "15 kg/m", "EA": "300 MN", "EI": "700 kN m2
 
 
 def raised(*changes: tuple[tuple[str | int, ...], Any], document: Document = MAST) -> Raised:
-    return solve(parse_scenario(dumps_tables(changed(document, *changes))))
+    """The raising of the changed document (kept: it is frozen)."""
+    return _raised(dumps_tables(changed(document, *changes)))
+
+
+@cache
+def _raised(written: str) -> Raised:
+    return solve(parse_scenario(written))
 
 
 def turned(document: Document, degrees: float, mirrored: bool = False) -> Document:

@@ -279,7 +279,7 @@ def test_moved_signs_go_through_the_whole_line() -> None:
     """A mast that carries a sign on one side of two arms of guys: solved, swept, and the twist in the moment on its fixed foot."""
     document = with_fitting(SIGN, 0.0, 180.0)
     document["spar"][0] |= {"rigid": False, "section": [made.bar(12.0, 5.0, 5e6)]}
-    solution = made.solve(made.scenario(document))
+    solution = made.solved(document)
     assert solution.case[1:] == tuple(n for a in ("", *attached.ASIDE) for n in [f"gust{', sign force ' if a else ''}{a}"] * 2)
     assert solution.sweep is not None
     assert set(solution.sweep.case) == {"gust", "gust, sign force to the left", "gust, sign force to the right"}
