@@ -10,6 +10,7 @@ import warnings
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from concurrent.futures import Executor, ProcessPoolExecutor
 from contextlib import ExitStack, contextmanager
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
@@ -69,9 +70,11 @@ def workers(count: int | None) -> Iterator[Executor | None]:
         executor.shutdown(cancel_futures=True)
 
 
-def pictures(stem: str, figure: Figure, title: str) -> dict[str, bytes]:
-    """A figure as `stem`.pdf, .svg and .png."""
-    return {f"{stem}.{kind}": figure_bytes(figure, kind, title, __version__) for kind in ("pdf", "svg", "png")}
+def pictures(stem: str, figure: Figure, title: str, executor: Executor | None = None) -> dict[str, bytes]:
+    """A figure as `stem`.pdf, .svg and .png, one after another or side by side."""
+    kinds, saved = ("pdf", "svg", "png"), partial(figure_bytes, figure, title=title, version=__version__)
+    contents = map(saved, kinds) if executor is None else executor.map(saved, kinds)
+    return {f"{stem}.{kind}": content for kind, content in zip(kinds, contents, strict=True)}
 
 
 def told(groups: Iterable[tuple[str, Sequence[str]]], stream: TextIO) -> None:

@@ -35,7 +35,7 @@ def raise_command(file: str, side_by_side: int | None, out: str | None, as_json:
     findings = hoisting.findings(raised)
     deliver(
         out,
-        lambda: contents(raised, findings, units, paper),
+        lambda: contents(raised, findings, units, paper, side_by_side),
         as_json,
         lambda: exchange.as_text(raised, findings),
         lambda stream: report(raised, findings, units, stream),
@@ -58,10 +58,12 @@ def exit_status(raised: Raised, findings: tuple[Finding, ...]) -> int:
     return 3 if any(f.verdict == "past" for f in findings) else 0
 
 
-def contents(raised: Raised, findings: tuple[Finding, ...], units: Units, paper: Paper) -> dict[str, bytes]:
+def contents(raised: Raised, findings: tuple[Finding, ...], units: Units, paper: Paper, side_by_side: int | None) -> dict[str, bytes]:
     """Every file of a raising."""
     tables = {"raise.json": exchange.as_text(raised, findings).encode(), "raise.csv": exchange.table(raised).encode()}
-    return tables | pictures("raise", draw_raising(raised, paper, units), raised.lift.scenario.title)
+    figure = draw_raising(raised, paper, units)
+    with workers(side_by_side) as executor:  # forked now, with the figure and all that draws it
+        return tables | pictures("raise", figure, raised.lift.scenario.title, executor)
 
 
 def report(raised: Raised, findings: tuple[Finding, ...], units: Units, stream: TextIO) -> None:
