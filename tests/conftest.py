@@ -38,7 +38,7 @@ def strict_numbers() -> Iterator[None]:
 
 @pytest.fixture
 def one_format(monkeypatch: pytest.MonkeyPatch) -> None:
-    """Commands save each figure once, as SVG; its bytes stand for the other formats too.
+    """Commands save each figure once, as SVG; its bytes stand for the other formats too.  All in one process, unless told otherwise.
 
     For tests of what a command computes, tells and names: `test_doors.py` and `test_drawing_files.py` save every format.
     """
@@ -53,6 +53,7 @@ def one_format(monkeypatch: pytest.MonkeyPatch) -> None:
 
     figure_bytes = common.figure_bytes
     monkeypatch.setattr(common, "figure_bytes", saved)
+    monkeypatch.setattr("os.cpu_count", lambda: 1)
 
 
 @pytest.fixture

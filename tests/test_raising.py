@@ -336,7 +336,6 @@ def test_json_and_status(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> 
     assert "nothing holds the spar" in out
 
 
-@pytest.mark.usefixtures("one_format")
 def test_files_are_written(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     status, out, _ = run("raise", written(tmp_path, COARSE), "--out", str(tmp_path / "out"), "--units", "both", capsys=capsys)
     assert status == 0
