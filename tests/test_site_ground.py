@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from scipy.interpolate import LinearNDInterpolator
 
 from guys.site import ground
 from guys.site.ground import GroundError
@@ -33,6 +34,18 @@ def test_corners_and_edges_belong_to_the_ground() -> None:
 
 def test_outside_there_is_no_level() -> None:
     assert np.isnan(surface(SQUARE).level(10.01, 0.0))
+
+
+def test_many_heights_at_many_places(rng: np.random.Generator) -> None:
+    """3,000 heights of two planes that meet at east = 0, against scipy's own interpolation on the same triangles; NaN where there is none."""
+    points = rng.uniform(-100.0, 100.0, (3000, 3))
+    points[:, 2] = np.where(points[:, 0] < 0, 0.1, 0.4) * points[:, 0] + 5.0
+    places = rng.uniform(-120.0, 120.0, (400, 2))
+    places[7] = np.nan
+    expected = LinearNDInterpolator(points[:, :2], points[:, 2])(places)
+    levels = ground.joined(points).level(places[:, 0].reshape(20, 20), places[:, 1].reshape(20, 20))
+    assert levels.reshape(-1) == pytest.approx(expected, abs=ROUNDING, nan_ok=True)
+    assert 0 < np.isnan(levels).sum() < 200
 
 
 def test_units_and_order_of_columns_come_from_the_header() -> None:

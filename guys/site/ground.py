@@ -19,6 +19,7 @@ import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -60,32 +61,38 @@ class Ground:
     def level(self, east: Array | float, north: Array | float) -> Array:
         """Level [m] at places [m] from the origin, of any shape; NaN outside the surveyed ground."""
         places = np.stack(np.broadcast_arrays(np.asarray(east, float), np.asarray(north, float)), axis=-1)
-        return np.array([self._level(place) for place in places.reshape(-1, 2)]).reshape(places.shape[:-1])
+        flat = places.reshape(-1, 2)
+        place, level = self._hits(flat)
+        first, at = np.unique(place, return_index=True)
+        out = np.full(len(flat), math.nan)
+        out[first] = level[at]
+        return out.reshape(places.shape[:-1])
 
     @cached_property
-    def _corners(self) -> Array:
-        """(triangle, corner, 3)."""
-        return self.points[self.triangles]
+    def _boxes(self) -> Any:
+        """An index of the boxes round all triangles, a little more for rounding."""
+        import shapely
 
-    @cached_property
-    def _box(self) -> tuple[Array, Array]:
-        """Least and greatest east and north of every triangle, a little more for rounding."""
-        low, high = self._corners[:, :, :2].min(axis=1), self._corners[:, :, :2].max(axis=1)
-        return low - ON_EDGE, high + ON_EDGE
+        corners = self.points[self.triangles][:, :, :2]
+        low, high = corners.min(axis=1) - ON_EDGE, corners.max(axis=1) + ON_EDGE
+        return shapely.STRtree(shapely.box(low[:, 0], low[:, 1], high[:, 0], high[:, 1]))
 
-    def _level(self, place: Array) -> float:
-        low, high = self._box
-        near = self._corners[np.flatnonzero(((place >= low) & (place <= high)).all(axis=1))]
-        a, b, c = near[:, 0], near[:, 1], near[:, 2]
-        u, v, w = (b - a)[:, :2].T, (c - a)[:, :2].T, (place - a[:, :2]).T
+    def _hits(self, places: Array) -> tuple[NDArray[np.int64], Array]:
+        """Which of the places (place, 2) lie in a triangle, ascending and each once for every triangle, and the level [m] there."""
+        import shapely
+
+        known = np.flatnonzero(np.isfinite(places).all(axis=1))
+        row, triangle = self._boxes.query(shapely.points(places[known]))
+        order = np.lexsort((triangle, row))
+        place = known[row[order]]
+        a, b, c = np.moveaxis(self.points[self.triangles[triangle[order]]], 1, 0)
+        u, v, w = (b - a)[:, :2].T, (c - a)[:, :2].T, (places[place] - a[:, :2]).T
         twice = u[0] * v[1] - u[1] * v[0]
         s, t = (w[0] * v[1] - w[1] * v[0]) / twice, (u[0] * w[1] - u[1] * w[0]) / twice
         slack = ON_EDGE / np.sqrt(np.abs(twice))
         inside = np.flatnonzero((s >= -slack) & (t >= -slack) & (s + t <= 1 + slack))
-        if not len(inside):
-            return math.nan
-        k = inside[0]
-        return float(a[k, 2] + s[k] * (b[k, 2] - a[k, 2]) + t[k] * (c[k, 2] - a[k, 2]))
+        level = a[:, 2] + s * (b[:, 2] - a[:, 2]) + t * (c[:, 2] - a[:, 2])
+        return place[inside], level[inside]
 
 
 def joined(points: Array, triangles: NDArray[np.int64] | None = None) -> Ground:
