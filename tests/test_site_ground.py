@@ -37,7 +37,7 @@ def test_outside_there_is_no_level() -> None:
 
 
 def test_many_heights_at_many_places(rng: np.random.Generator) -> None:
-    """3,000 heights of two planes that meet at east = 0, against scipy's own interpolation on the same triangles; NaN where there is none."""
+    """3,000 heights of two planes that meet at east = 0, against scipy's interpolation on the same triangles; NaN where there is none."""
     points = rng.uniform(-100.0, 100.0, (3000, 3))
     points[:, 2] = np.where(points[:, 0] < 0, 0.1, 0.4) * points[:, 0] + 5.0
     places = rng.uniform(-120.0, 120.0, (400, 2))
