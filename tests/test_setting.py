@@ -7,6 +7,8 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 import scenarios_made as made
+from hypothesis import given
+from hypothesis import strategies as st
 
 from guys import cable, lengths, solver, stability, structure
 from guys import setting as initial
@@ -18,6 +20,8 @@ OFF_PLUMB = 1e-6
 """[m] a micrometre at the head."""
 LEVEL_BALANCE = 1e-3
 """Net pull of a level over the greatest horizontal pull of its guys: what a head a micrometre off leaves in the guys' stiffness."""
+BOUNDED = 1e-11
+"""Rounding of a least squares with numbers of about one, for each unit of its conditioning."""
 DIFFERENCES = 1e-5
 """Relative to the greatest: second differences of a catenary's tension over 1e-6 of its length."""
 
@@ -295,3 +299,18 @@ def test_a_mast_that_the_search_turns_upside_down_falls_and_does_not_crash() -> 
     section = made.weightless(10.0) | {"mass": 20.0}
     document = made.stayed(made.spar(length=10.0, rigid=True, section=[section]), 0.0, tension=300.0, straight=True)
     assert not made.setting(document).stands
+
+
+@given(st.integers(0, 2**32 - 1))
+def test_bounded_least_squares_keeps_the_conditions_of_a_least(seed: int) -> None:
+    """Karush, Kuhn and Tucker: bounds kept, no push from one that does not bind, none pulls, and what is left over is their push alone."""
+    rng = np.random.default_rng(seed)
+    a, wanted, g = rng.normal(size=(6, 4)), rng.normal(size=6), rng.normal(size=(4, 4))
+    least = g @ rng.normal(size=4) - rng.uniform(0.0, 0.5, 4)
+    x = initial._bounded(a, wanted, g, least)
+    spare = g @ x - least
+    push = np.linalg.solve(g.T, a.T @ (a @ x - wanted))
+    size = np.linalg.cond(g) * np.linalg.cond(a) ** 2 * BOUNDED
+    assert spare.min() > -size
+    assert push.min() > -size
+    assert np.abs(spare * push).max() < size * (1.0 + np.abs(push).max() + np.abs(spare).max())

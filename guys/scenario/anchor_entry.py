@@ -10,11 +10,9 @@ from guys.scenario import quantity as q
 from guys.scenario.table import Model
 
 
-class AnchorEntry(Model):
-    """A point on the ground that cables run to: bearing and radius from the first spar's foot, or east and north."""
+class Place(Model):
+    """Where an anchor stands or may stand: bearing and radius from the first spar's foot, east and north, or latitude and longitude."""
 
-    name: q.Name
-    """Name, unique among anchors."""
     bearing: q.Angle | None = None
     """Bearing from the first spar's foot."""
     radius: q.PositiveLength | None = None
@@ -27,6 +25,13 @@ class AnchorEntry(Model):
     """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
     lon: q.Longitude | None = None
     """Longitude, degrees east, WGS 84; a bare number."""
+
+
+class AnchorEntry(Place):
+    """A point on the ground that cables run to."""
+
+    name: q.Name
+    """Name, unique among anchors."""
     level: q.Length | None = None
     """Height above the origin's level; left out: that of the ground there, or of the first spar's foot."""
     give: q.Spring | None = None

@@ -13,13 +13,14 @@ from typing import Any
 
 from guys import units
 from guys.scenario import drawn, place, resolve, rigging
-from guys.scenario.anchor_entry import AnchorEntry, LayoutEntry
+from guys.scenario.anchor_entry import AnchorEntry, LayoutEntry, Place
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, items, nearest
 from guys.scenario.model import AS_DRAWN, Anchor, GroundFoot, Scenario
 from guys.site import Site
 
-PLACE = ("bearing", "radius", "east", "north", "lat", "lon")
+PLACE = tuple(Place.model_fields)
+"""Keys of which any moves the anchor."""
 
 
 def findings(draft: Draft, site: Site | None) -> Iterator[Finding]:

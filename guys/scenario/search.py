@@ -7,6 +7,7 @@ from typing import Annotated, Literal
 from pydantic import Field
 
 from guys.scenario import quantity as q
+from guys.scenario.anchor_entry import Place
 from guys.scenario.table import Model
 
 Measured = Literal["pull", "uplift", "tension", "thrust", "sideways", "bending", "lean", "use", "mass", "rope"]
@@ -14,23 +15,6 @@ Measured = Literal["pull", "uplift", "tension", "thrust", "sideways", "bending",
 Whole = Annotated[int, Field(strict=True)]
 FEWEST, MOST = 3, 12
 """Anchors of a ring."""
-
-
-class SearchPlace(Model):
-    """A place an anchor may stand: bearing and radius from the first spar's foot, east and north, or latitude and longitude."""
-
-    bearing: q.Angle | None = None
-    """Bearing from the first spar's foot."""
-    radius: q.PositiveLength | None = None
-    """Level distance from the first spar's foot."""
-    east: q.Length | None = None
-    """Distance east of the origin."""
-    north: q.Length | None = None
-    """Distance north of the origin."""
-    lat: q.Latitude | None = None
-    """Latitude, degrees north, WGS 84; a bare number, with lon in place of the others."""
-    lon: q.Longitude | None = None
-    """Longitude, degrees east, WGS 84; a bare number."""
 
 
 class SearchMove(Model):
@@ -45,7 +29,7 @@ class SearchMove(Model):
     as drawn."""
     turn: Annotated[list[q.Angle], Field(min_length=2, max_length=2)] | None = None
     """Least and greatest angle all of them turn by from where they are drawn; left out: none."""
-    places: Annotated[list[SearchPlace], Field(min_length=2)] | None = None
+    places: Annotated[list[Place], Field(min_length=2)] | None = None
     """In place of the rest: the places it may stand; several anchors take as many different ones, in their order round the foot."""
 
 

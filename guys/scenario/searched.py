@@ -6,10 +6,11 @@ import math
 from collections.abc import Iterator, Sequence
 
 from guys.scenario import ring
+from guys.scenario.anchor_entry import Place
 from guys.scenario.degrees import SAID, WAYS, from_degrees
 from guys.scenario.draft import Draft
 from guys.scenario.keys import Finding, Key, clipped, nearest, written
-from guys.scenario.search import Search, SearchMove, SearchPlace
+from guys.scenario.search import Search, SearchMove
 from guys.site import Grid
 
 
@@ -86,7 +87,7 @@ def _move(move: SearchMove, key: Key, many: int) -> Iterator[Finding]:
         yield Finding((*key, "bearing"), "both are the same; give the first and the last bearing, clockwise")
 
 
-def _place(place: SearchPlace, key: Key, grid: Grid | None) -> Iterator[Finding]:
+def _place(place: Place, key: Key, grid: Grid | None) -> Iterator[Finding]:
     given = [name for way in WAYS for name in way if getattr(place, name) is not None]
     if tuple(given) not in WAYS:
         yield Finding(key, f"give {SAID}")
@@ -121,7 +122,7 @@ def _in_metres(move: SearchMove, grid: Grid | None) -> SearchMove:
         return move
     found = [None if p.lat is None or p.lon is None else from_degrees(p.lat, p.lon, grid) for p in move.places]
     pairs = zip(move.places, found, strict=True)
-    return move.model_copy(update={"places": [SearchPlace(east=at[0], north=at[1]) if isinstance(at, tuple) else p for p, at in pairs]})
+    return move.model_copy(update={"places": [Place(east=at[0], north=at[1]) if isinstance(at, tuple) else p for p, at in pairs]})
 
 
 def clockwise(first: float, last: float) -> float:

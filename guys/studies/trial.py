@@ -16,8 +16,9 @@ from dataclasses import dataclass, replace
 from guys.checks import plan
 from guys.results import Finding, Solution
 from guys.scenario import Scenario, drawn
+from guys.scenario.anchor_entry import Place
 from guys.scenario.model import Anchor
-from guys.scenario.search import SearchMove, SearchPlace
+from guys.scenario.search import SearchMove
 from guys.scenario.searched import clockwise
 from guys.setting import Setting, find_each
 from guys.structure import build
@@ -156,7 +157,7 @@ def _in_order(places: Sequence[tuple[float, float]], anchors: Sequence[Anchor], 
         yield places[(order.index(n) + first) % many]
 
 
-def _listed(place: SearchPlace, foot: drawn.Point) -> tuple[float, float]:
+def _listed(place: Place, foot: drawn.Point) -> tuple[float, float]:
     if place.bearing is not None and place.radius is not None:
         return foot[0] + place.radius * math.sin(place.bearing), foot[1] + place.radius * math.cos(place.bearing)
     return place.east or 0.0, place.north or 0.0
